@@ -1,0 +1,57 @@
+//! Published equations: head in, flow out. One family a file.
+//!
+//! Nothing here knows a device, a roof or a file. Every function takes SI quantities, says its symbols, units, range and
+//! source, and refuses outside that range where the source gives one; the ranges stand once, in [`limits`]. Heads are
+//! measured up from the crest or the invert in the pond clear of the drawdown, three to four heads away from the opening.
+
+use crate::units::Length;
+
+pub mod limits;
+pub mod practice;
+
+/// Acceleration of gravity, m/s2: standard value, exact by definition.
+pub const GRAVITY: f64 = 9.806_65;
+
+/// Why an equation gives no flow.
+#[derive(Clone, Copy, Debug, PartialEq, thiserror::Error)]
+#[non_exhaustive]
+pub enum FlowError {
+    /// An argument lies outside the range that the source of the equation states.
+    #[error("{found:.4} is outside the range of {range}", found = .found / .range.shown_per)]
+    OutsideRange {
+        /// The argument, in SI.
+        found: f64,
+        /// The range it should lie in.
+        range: &'static limits::Range,
+    },
+    /// An argument is not a finite number, or is negative where that has no meaning.
+    #[error("{what} must be a finite number, {least}, not {found}", least = if *.zero_passes { "zero or more" } else { "above zero" })]
+    Unusable {
+        /// The argument's name.
+        what: &'static str,
+        /// Its value, in SI.
+        found: f64,
+        /// Whether zero would have passed.
+        zero_passes: bool,
+    },
+}
+
+/// Refuses a length that is not finite or not above zero.
+pub(crate) fn positive(what: &'static str, length: Length) -> Result<f64, FlowError> {
+    let found = length.m();
+    if found.is_finite() && found > 0.0 {
+        Ok(found)
+    } else {
+        Err(FlowError::Unusable { what, found, zero_passes: false })
+    }
+}
+
+/// Refuses a length that is not finite or below zero.
+pub(crate) fn not_negative(what: &'static str, length: Length) -> Result<f64, FlowError> {
+    let found = length.m();
+    if found.is_finite() && found >= 0.0 {
+        Ok(found)
+    } else {
+        Err(FlowError::Unusable { what, found, zero_passes: true })
+    }
+}

@@ -1,0 +1,3 @@
+//! Sizes the overflow drainage of low-slope roofs.
+pub mod hydraulics;
+pub mod units;

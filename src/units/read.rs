@@ -1,0 +1,488 @@
+//! Reading quantities as people type them: `"6 in"`, `"9,600 ft2"`, `"1.4 kPa"`, `"14 / in"`.
+//!
+//! A quantity is one number and one unit. What does not pass is refused with what would: no unit, a unit of something else,
+//! an unknown unit with a near one, a comma that could be a decimal point. Nothing is guessed.
+
+use std::fmt;
+use std::str::FromStr;
+
+use super::{
+    Area, CUBIC_METRES_PER_GALLON, Flow, Intensity, Length, Load, METRES_PER_FOOT, METRES_PER_INCH, Money,
+    PASCALS_PER_PSF, ReturnPeriod, Time,
+};
+
+/// What a quantity measures.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Dimension {
+    /// Lengths, depths and heights.
+    Length,
+    /// Areas.
+    Area,
+    /// Volume flows.
+    Flow,
+    /// Rain intensities.
+    Intensity,
+    /// Loads on a surface.
+    Load,
+    /// Spans of time.
+    Time,
+    /// Return periods.
+    ReturnPeriod,
+}
+
+/// One unit: the spellings that pass, the first of them the one that messages show, and its size in SI.
+type Unit = (&'static [&'static str], f64);
+
+const LENGTHS: &[Unit] = &[
+    (&["in", "inch", "inches", "\"", "\u{2033}", "\u{201d}"], METRES_PER_INCH),
+    (&["ft", "foot", "feet", "'", "\u{2032}", "\u{2019}"], METRES_PER_FOOT),
+    (&["mm", "millimetre", "millimetres", "millimeter", "millimeters"], 0.001),
+    (&["cm", "centimetre", "centimetres", "centimeter", "centimeters"], 0.01),
+    (&["m", "metre", "metres", "meter", "meters"], 1.0),
+    (&["yd", "yard", "yards"], 3.0 * METRES_PER_FOOT),
+];
+const AREAS: &[Unit] = &[
+    (&["ft2", "ft\u{b2}", "ft^2", "sq ft", "sqft", "sq. ft.", "sf", "square feet"], METRES_PER_FOOT * METRES_PER_FOOT),
+    (&["m2", "m\u{b2}", "m^2", "sq m", "sqm", "square metres", "square meters"], 1.0),
+    (&["in2", "in\u{b2}", "in^2", "sq in"], METRES_PER_INCH * METRES_PER_INCH),
+    (&["mm2", "mm\u{b2}", "mm^2", "sq mm"], 1e-6),
+    (&["cm2", "cm\u{b2}", "cm^2", "sq cm"], 1e-4),
+    (&["ha"], 1e4),
+];
+const FLOWS: &[Unit] = &[
+    (&["gpm", "gal/min", "usgpm"], CUBIC_METRES_PER_GALLON / 60.0),
+    (&["l/s", "lps", "L/s"], 0.001),
+    (&["m3/s", "m\u{b3}/s", "m^3/s"], 1.0),
+    (&["cfs", "ft3/s", "ft\u{b3}/s", "ft^3/s"], METRES_PER_FOOT * METRES_PER_FOOT * METRES_PER_FOOT),
+    (&["l/min", "L/min", "lpm"], 0.001 / 60.0),
+    (&["m3/h", "m\u{b3}/h", "m^3/h"], 1.0 / 3600.0),
+];
+const INTENSITIES: &[Unit] = &[
+    (&["in/h", "in/hr", "inch/h", "in./hr", "iph", "inches/hour", "in per hour"], METRES_PER_INCH / 3600.0),
+    (&["mm/h", "mm/hr", "mm per hour"], 0.001 / 3600.0),
+    (&["mm/min"], 0.001 / 60.0),
+    (&["l/(s m2)", "l/s/m2", "l/(s\u{b7}m\u{b2})", "l/s\u{b7}m\u{b2}"], 0.001),
+    (&["l/(s ha)", "l/s/ha", "l/(s\u{b7}ha)"], 1e-7),
+];
+const LOADS: &[Unit] = &[
+    (&["psf", "lb/ft2", "lbf/ft2", "lb/ft\u{b2}", "lb/sq ft"], PASCALS_PER_PSF),
+    (&["kPa", "kN/m2", "kN/m\u{b2}", "kN/m^2"], 1000.0),
+    (&["Pa", "N/m2", "N/m\u{b2}", "N/m^2"], 1.0),
+];
+const TIMES: &[Unit] = &[
+    (&["min", "minute", "minutes", "mins"], 60.0),
+    (&["h", "hr", "hour", "hours"], 3600.0),
+    (&["s", "sec", "second", "seconds"], 1.0),
+];
+const RETURN_PERIODS: &[Unit] = &[(&["yr", "year", "years", "yrs", "y"], 1.0)];
+
+impl Dimension {
+    const ALL: [Self; 7] =
+        [Self::Length, Self::Area, Self::Flow, Self::Intensity, Self::Load, Self::Time, Self::ReturnPeriod];
+
+    fn units(self) -> &'static [Unit] {
+        match self {
+            Self::Length => LENGTHS,
+            Self::Area => AREAS,
+            Self::Flow => FLOWS,
+            Self::Intensity => INTENSITIES,
+            Self::Load => LOADS,
+            Self::Time => TIMES,
+            Self::ReturnPeriod => RETURN_PERIODS,
+        }
+    }
+
+    /// With its article, as a message says it.
+    fn with_article(self) -> &'static str {
+        match self {
+            Self::Length => "a length",
+            Self::Area => "an area",
+            Self::Flow => "a flow",
+            Self::Intensity => "a rain intensity",
+            Self::Load => "a load",
+            Self::Time => "a duration",
+            Self::ReturnPeriod => "a return period",
+        }
+    }
+
+    fn find(self, unit: &str) -> Option<f64> {
+        let same = |names: &&[&str]| names.iter().any(|name| name.eq_ignore_ascii_case(unit));
+        self.units().iter().find(|(names, _)| same(names)).map(|&(_, size)| size)
+    }
+
+    /// The value in SI of a quantity of this dimension.
+    ///
+    /// # Errors
+    /// A [`Fault`] that says what was found; [`would_pass`] says what would pass.
+    pub fn read(self, text: &str) -> Result<f64, Fault> {
+        let (value, unit) = number_and_unit(text)?;
+        if unit.is_empty() {
+            return Err(Fault::NoUnit { found: text.trim().into(), needs: self });
+        }
+        match self.find(unit) {
+            Some(size) => Ok(value * size),
+            None => Err(self.refuse(unit)),
+        }
+    }
+
+    fn refuse(self, unit: &str) -> Fault {
+        if let Some(is) = Self::ALL.into_iter().find(|dimension| dimension.find(unit).is_some()) {
+            return Fault::WrongDimension { unit: unit.into(), is, needs: self };
+        }
+        if unit.chars().any(|c| c.is_ascii_digit())
+            && unit.contains(['/', '-'])
+            && unit.starts_with(|c: char| c.is_ascii_digit() || c == '/' || c == '-')
+        {
+            return Fault::Fraction { found: unit.into() };
+        }
+        let near = self
+            .units()
+            .iter()
+            .flat_map(|(names, _)| names.iter())
+            .map(|name| (strsim::osa_distance(name, &unit.to_lowercase()), *name))
+            .min()
+            .filter(|(distance, name)| *distance <= 1.max(name.len() / 3) && *distance < name.len())
+            .map(|(_, name)| name);
+        Fault::UnknownUnit { unit: unit.into(), near, needs: self }
+    }
+}
+
+/// The units of a dimension in the spelling that messages use: `in, ft, mm, cm, m or yd`.
+pub fn would_pass(dimension: Dimension) -> String {
+    let names: Vec<_> = dimension.units().iter().map(|(names, _)| names[0]).collect();
+    match names.split_last() {
+        Some((last, [])) => (*last).to_string(),
+        Some((last, rest)) => format!("{} or {last}", rest.join(", ")),
+        None => String::new(),
+    }
+}
+
+/// Why a text is not the quantity that is wanted.
+#[derive(Clone, Debug, PartialEq)]
+#[non_exhaustive]
+pub enum Fault {
+    /// It does not begin with a number.
+    NoNumber {
+        /// What stands there.
+        found: String,
+    },
+    /// The number is not finite, or too great to hold.
+    NotFinite {
+        /// What stands there.
+        found: String,
+    },
+    /// A comma where it could be a decimal point or a separator of thousands.
+    Comma {
+        /// The number as typed.
+        found: String,
+        /// It with the comma as a point.
+        as_point: String,
+        /// It with the comma taken out.
+        taken_out: String,
+    },
+    /// A fraction or feet and inches in one text.
+    Fraction {
+        /// The part that is not a unit.
+        found: String,
+    },
+    /// A number without a unit.
+    NoUnit {
+        /// The number as typed.
+        found: String,
+        /// What the place wants.
+        needs: Dimension,
+    },
+    /// A unit of something else.
+    WrongDimension {
+        /// The unit as typed.
+        unit: String,
+        /// What it measures.
+        is: Dimension,
+        /// What the place wants.
+        needs: Dimension,
+    },
+    /// A unit nobody knows.
+    UnknownUnit {
+        /// The unit as typed.
+        unit: String,
+        /// One that is spelt nearly so.
+        near: Option<&'static str>,
+        /// What the place wants.
+        needs: Dimension,
+    },
+    /// A price that should be an amount per unit.
+    NotAPrice {
+        /// What stands there.
+        found: String,
+        /// What the price is per.
+        per: Dimension,
+    },
+}
+
+impl fmt::Display for Fault {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self {
+            Self::NoNumber { found } if found.is_empty() => write!(f, "this is empty"),
+            Self::NoNumber { found } => write!(f, "`{found}` does not begin with a number"),
+            Self::NotFinite { found } => write!(f, "`{found}` is not a finite number"),
+            Self::Comma { found, .. } => write!(f, "the comma in `{found}` can be read in two ways"),
+            Self::Fraction { found } => {
+                write!(f, "`{found}` is not a unit: a quantity is one decimal number and one unit")
+            }
+            Self::NoUnit { found, needs } => write!(f, "`{found}` has no unit; this is {}", needs.with_article()),
+            Self::WrongDimension { unit, is, needs } => {
+                write!(f, "`{unit}` is a unit of {}; this is {}", bare(is.with_article()), needs.with_article())
+            }
+            Self::UnknownUnit { unit, needs, .. } => {
+                write!(f, "`{unit}` is not a unit of {} known here", bare(needs.with_article()))
+            }
+            Self::NotAPrice { found, .. } => write!(f, "`{found}` is not a price per unit"),
+        }
+    }
+}
+
+impl Fault {
+    /// What would pass instead.
+    pub fn help(&self) -> String {
+        match self {
+            Self::NoNumber { .. } | Self::NotFinite { .. } => "write a number and a unit, such as \"6 in\"".into(),
+            Self::Comma { as_point, taken_out, .. } => format!(
+                "write {as_point} if the comma is a decimal point, {taken_out} if it parts thousands; \
+                 a comma passes only before whole groups of three digits in a whole number"
+            ),
+            Self::Fraction { .. } => "write 2.5 in for 2 1/2 in, and 30 in for 2 ft 6 in".into(),
+            Self::NoUnit { found, needs } => {
+                format!("write \"{} {}\"; {} would pass", found, needs.units()[0].0[0], would_pass(*needs))
+            }
+            Self::WrongDimension { needs, .. } => format!("{} would pass", would_pass(*needs)),
+            Self::UnknownUnit { near: Some(near), needs, .. } => {
+                format!("did you mean `{near}`? {} would pass", would_pass(*needs))
+            }
+            Self::UnknownUnit { near: None, needs, .. } => format!("{} would pass", would_pass(*needs)),
+            Self::NotAPrice { per, .. } => {
+                format!(
+                    "write an amount, a slash and a unit: \"14 / {}\"; {} would pass",
+                    per.units()[0].0[0],
+                    would_pass(*per)
+                )
+            }
+        }
+    }
+}
+
+/// The noun without its article.
+fn bare(with_article: &str) -> &str {
+    with_article.split_once(' ').map_or(with_article, |(_, noun)| noun)
+}
+
+/// Splits a text into its number and the unit behind it.
+fn number_and_unit(text: &str) -> Result<(f64, &str), Fault> {
+    let text = text.trim();
+    let is_part = |c: char| c.is_ascii_digit() || ".,+-_".contains(c);
+    let mut end = text.find(|c| !is_part(c)).unwrap_or(text.len());
+    // An exponent belongs to the number only where digits follow: "1e3 ft2", not "3 edges".
+    if text[end..].starts_with(['e', 'E']) {
+        let digits = text[end + 1..].trim_start_matches(['+', '-']);
+        if end > 0 && digits.starts_with(|c: char| c.is_ascii_digit()) {
+            let sign = text[end + 1..].len() - digits.len();
+            let length = digits.find(|c: char| !c.is_ascii_digit()).unwrap_or(digits.len());
+            end += 1 + sign + length;
+        }
+    }
+    let (number, unit) = (&text[..end], text[end..].trim());
+    if !number.contains(|c: char| c.is_ascii_digit()) {
+        let word = text.trim_start_matches(['+', '-']).to_ascii_lowercase();
+        let not_finite = ["nan", "inf"].iter().any(|name| word.starts_with(name) && !word.starts_with("inch"));
+        let found = text.to_string();
+        return Err(if not_finite { Fault::NotFinite { found } } else { Fault::NoNumber { found } });
+    }
+    let plain = without_commas(number)?;
+    let value: f64 = plain.parse().map_err(|_| Fault::NoNumber { found: text.to_string() })?;
+    if value.is_finite() { Ok((value, unit)) } else { Err(Fault::NotFinite { found: text.to_string() }) }
+}
+
+/// Takes commas out of a whole number from 1,000 whose groups behind the first are whole; refuses any other comma.
+fn without_commas(number: &str) -> Result<String, Fault> {
+    if !number.contains(',') {
+        return Ok(number.to_string());
+    }
+    let taken_out: String = number.chars().filter(|&c| c != ',').collect();
+    let digits = number.trim_start_matches(['+', '-']);
+    let mut groups = digits.split(',');
+    let first = groups.next().unwrap_or("");
+    let all_digits = |group: &str| group.bytes().all(|b| b.is_ascii_digit());
+    let opens = (1..=3).contains(&first.len()) && all_digits(first) && !first.starts_with('0');
+    if opens && groups.all(|group| group.len() == 3 && all_digits(group)) {
+        return Ok(taken_out);
+    }
+    let as_point = match number.matches(',').count() {
+        1 if !number.contains('.') => number.replace(',', "."),
+        _ => number.replace('.', "").replacen(',', ".", 1).replace(',', ""),
+    };
+    Err(Fault::Comma { found: number.to_string(), as_point, taken_out })
+}
+
+/// A price for each unit of a length or of an area, held per SI unit.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Priced(f64);
+
+impl Priced {
+    /// The amount for so many SI units.
+    pub fn for_si(self, size: f64) -> f64 {
+        self.0 * size
+    }
+
+    /// The amount for one SI unit.
+    pub fn per_si(self) -> f64 {
+        self.0
+    }
+}
+
+/// Reads a price per unit of `per`: `"14 / in"`, `"0.2 / in2"`.
+///
+/// # Errors
+/// The [`Fault`] of the amount or of the unit.
+pub fn read_price(text: &str, per: Dimension) -> Result<Priced, Fault> {
+    let not_a_price = || Fault::NotAPrice { found: text.trim().into(), per };
+    let (amount, unit) = text.split_once('/').ok_or_else(not_a_price)?;
+    let (value, rest) = number_and_unit(amount)?;
+    let unit = unit.trim();
+    if !rest.is_empty() || unit.is_empty() {
+        return Err(not_a_price());
+    }
+    per.find(unit).map(|size| Priced(value / size)).ok_or_else(|| per.refuse(unit))
+}
+
+macro_rules! from_text {
+    ($($quantity:ident: $make:path),+ $(,)?) => {$(
+        impl FromStr for $quantity {
+            type Err = Fault;
+            fn from_str(text: &str) -> Result<Self, Fault> {
+                Dimension::$quantity.read(text).map($make)
+            }
+        }
+    )+};
+}
+
+from_text! {
+    Area: Area::from_m2,
+    Flow: Flow::from_m3_per_s,
+    Intensity: Intensity::from_m_per_s,
+    Load: Load::from_pa,
+    Time: Time::from_s,
+    ReturnPeriod: ReturnPeriod::from_years,
+}
+
+impl FromStr for Length {
+    type Err = Fault;
+    fn from_str(text: &str) -> Result<Self, Fault> {
+        Dimension::Length.read(text).map(|value| Self::from_m(value).on_grid())
+    }
+}
+
+/// An amount of money without a unit, as a catalog's `each` gives it.
+impl FromStr for Money {
+    type Err = Fault;
+    fn from_str(text: &str) -> Result<Self, Fault> {
+        let (value, unit) = number_and_unit(text)?;
+        if unit.is_empty() { Ok(Self::nearest(value)) } else { Err(Fault::NoNumber { found: text.trim().into() }) }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::units::System;
+    use approx::assert_relative_eq;
+
+    fn length(text: &str) -> Result<f64, Fault> {
+        Dimension::Length.read(text)
+    }
+
+    #[test]
+    fn spellings_that_people_type() {
+        for text in ["6 in", "6in", "6\"", "6 inch", "0.5 ft", "0.5'", "152.4 mm", " 15.24 cm "] {
+            assert_relative_eq!(length(text).unwrap(), 0.1524, max_relative = 1e-12);
+        }
+        for text in ["9600 ft2", "9,600 sq ft", "9600 ft\u{b2}", "9.6e3 sf", "891.869184 m\u{b2}"] {
+            assert_relative_eq!(Dimension::Area.read(text).unwrap(), 891.869_184, max_relative = 1e-12);
+        }
+        for text in ["3.6 in/h", "3.6 in/hr", "91.44 mm/h", "91.44 mm/hr"] {
+            assert_relative_eq!(Dimension::Intensity.read(text).unwrap(), 2.54e-5, max_relative = 1e-12);
+        }
+        for text in ["1.4 kPa", "1.4 kN/m2", "1.4 kN/m\u{b2}", "1400 Pa"] {
+            assert_relative_eq!(Dimension::Load.read(text).unwrap(), 1400.0, max_relative = 1e-12);
+        }
+        for text in ["2 l/s", "2 L/s"] {
+            assert_relative_eq!(Dimension::Flow.read(text).unwrap(), 0.002, max_relative = 1e-12);
+        }
+        assert_relative_eq!(Dimension::Time.read("0.25 h").unwrap(), Dimension::Time.read("15 min").unwrap());
+        assert_relative_eq!(Dimension::ReturnPeriod.read("100 yr").unwrap(), 100.0);
+    }
+
+    /// 100 mm/h is 277.78 l/(s ha) and 1.667 mm/min. Source: hydraulics reference figures, unit arithmetic.
+    #[test]
+    fn intensities_in_the_forms_of_several_codes() {
+        let hundred = Dimension::Intensity.read("100 mm/h").unwrap();
+        for (text, tolerance) in [("277.778 l/(s ha)", 1e-5), ("1.6667 mm/min", 1e-4), ("0.0277778 l/(s m2)", 1e-5)] {
+            assert_relative_eq!(Dimension::Intensity.read(text).unwrap(), hundred, max_relative = tolerance);
+        }
+    }
+
+    #[test]
+    fn a_comma_passes_only_between_thousands() {
+        assert_relative_eq!(length("1,234 mm").unwrap(), 1.234);
+        assert_relative_eq!(length("12,345,678 mm").unwrap(), 12_345.678);
+        for (text, as_point, taken_out) in [
+            ("1,4 kPa", "1.4", "14"),
+            ("0,600 m", "0.600", "0600"),
+            ("1,2345 m", "1.2345", "12345"),
+            ("1,234.5 m", "1.2345", "1234.5"),
+            ("1.234,5 m", "1234.5", "1.2345"),
+        ] {
+            match number_and_unit(text) {
+                Err(Fault::Comma { as_point: point, taken_out: out, .. }) => {
+                    assert_eq!((point.as_str(), out.as_str()), (as_point, taken_out), "{text}");
+                }
+                other => panic!("{text}: {other:?}"),
+            }
+        }
+    }
+
+    #[test]
+    fn refusals_say_what_was_found_and_what_would_pass() {
+        let shown = |fault: Fault| format!("{fault}; {}", fault.help());
+        assert_eq!(
+            shown(length("6").unwrap_err()),
+            "`6` has no unit; this is a length; write \"6 in\"; in, ft, mm, cm, m or yd would pass"
+        );
+        assert_eq!(
+            shown(length("6 gpm").unwrap_err()),
+            "`gpm` is a unit of flow; this is a length; in, ft, mm, cm, m or yd would pass"
+        );
+        assert_eq!(
+            shown(length("6 inn").unwrap_err()),
+            "`inn` is not a unit of length known here; did you mean `in`? in, ft, mm, cm, m or yd would pass"
+        );
+        assert_eq!(
+            shown(length("2 1/2 in").unwrap_err()),
+            "`1/2 in` is not a unit: a quantity is one decimal number and one unit; write 2.5 in for 2 1/2 in, and 30 in for 2 ft 6 in"
+        );
+        assert_eq!(
+            shown(length("nan in").unwrap_err()),
+            "`nan in` is not a finite number; write a number and a unit, such as \"6 in\""
+        );
+        assert_eq!(length("1e999 in"), Err(Fault::NotFinite { found: "1e999 in".into() }));
+        assert_eq!(length(""), Err(Fault::NoNumber { found: String::new() }));
+    }
+
+    #[test]
+    fn prices_per_unit() {
+        let price = read_price("14 / in", Dimension::Length).unwrap();
+        assert_relative_eq!(price.for_si(0.3048), 168.0, max_relative = 1e-12);
+        assert!(read_price("14", Dimension::Length).is_err());
+        assert!(read_price("14 / gpm", Dimension::Length).is_err());
+        assert_eq!("250".parse::<Money>().unwrap(), Money::nearest(250.0));
+        assert_eq!(System::Us.to_string(), "us");
+    }
+}
