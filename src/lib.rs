@@ -1,3 +1,5 @@
 //! Sizes the overflow drainage of low-slope roofs.
+pub mod device;
 pub mod hydraulics;
+pub mod roof;
 pub mod units;

@@ -1,0 +1,191 @@
+//! The roof: its storm, its areas and what runs onto what, the cases it must withstand, and the water on it.
+//!
+//! An area has one low point; all heights in it are above that point. For one area in one case a [`Situation`] holds all
+//! that decides: the flow that must leave, the limits, the ponding head. A [`Pool`] is a layout as it stands in a case: all
+//! its devices see one level. Steady flow: no credit is taken for water stored on the roof, nor for the primary drains.
+
+use std::ops::RangeInclusive;
+
+use crate::device::{Kind, Size};
+use crate::units::{Area, Flow, Intensity, Length, Load, ReturnPeriod, System, Time};
+
+pub mod demand;
+pub mod layout;
+mod pool;
+pub mod root;
+mod situation;
+
+pub use pool::{Outlet, Pool, Share, working, working_capacity};
+pub use situation::{Governing, LimitKind, Limits, Situation};
+
+/// Weight of water that loads are computed with: 62.4 lb/ft3, which is 5.2 psf for each inch of depth.
+pub const UNIT_WEIGHT_LB_FT3: f64 = 62.4;
+
+/// Pascals for each metre of water.
+pub(crate) const PASCALS_PER_METRE: f64 = UNIT_WEIGHT_LB_FT3 * crate::units::NEWTONS_PER_POUND
+    / (crate::units::METRES_PER_FOOT * crate::units::METRES_PER_FOOT * crate::units::METRES_PER_FOOT);
+
+/// Load of a depth of water.
+pub fn load_of(depth: Length) -> Load {
+    Load::from_pa(PASCALS_PER_METRE * depth.m())
+}
+
+/// Depth of water that weighs a load.
+pub fn depth_of(load: Load) -> Length {
+    Length::from_m(load.pa() / PASCALS_PER_METRE)
+}
+
+/// The design rain.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Storm {
+    /// Intensity that every area is sized for.
+    pub intensity: Intensity,
+    /// Duration over which it is that intense, where stated.
+    pub duration: Option<Time>,
+    /// How often it is met or passed, where stated.
+    pub return_period: Option<ReturnPeriod>,
+    /// Where the figure comes from, where stated.
+    pub source: Option<String>,
+}
+
+/// One situation that every layout must withstand. A case changes the design, never the area: all zero and one is "as
+/// designed".
+#[derive(Clone, Debug, PartialEq)]
+pub struct Case {
+    /// Its name.
+    pub name: String,
+    /// How many of the most effective single devices carry nothing.
+    pub blocked: u32,
+    /// How much higher every sill is built.
+    pub sill_error: Length,
+    /// What is lost off each side of a scupper's opening.
+    pub opening_loss: Length,
+    /// Factor on the intensity.
+    pub rain: f64,
+    /// Factor on every device's flow.
+    pub discharge: f64,
+}
+
+impl Case {
+    /// The layout as drawn, the storm as given.
+    pub fn as_designed() -> Self {
+        Self {
+            name: "as designed".into(),
+            blocked: 0,
+            sill_error: Length::ZERO,
+            opening_loss: Length::ZERO,
+            rain: 1.0,
+            discharge: 1.0,
+        }
+    }
+}
+
+/// The parapet of an area.
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
+pub struct Parapet {
+    /// Height of its top above the low point; the level may not pass it.
+    pub height: Option<Length>,
+    /// Thickness, which is the length of a scupper's throat.
+    pub thickness: Option<Length>,
+}
+
+/// What an area receives from another.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Receipt {
+    /// Index of the other area.
+    pub from: usize,
+    /// The part of its demand that runs here.
+    pub share: f64,
+}
+
+/// A part of the roof with one low point, where water ponds at one level.
+#[derive(Clone, Debug)]
+pub struct Catchment {
+    /// Its name.
+    pub name: String,
+    /// Horizontal projection.
+    pub area: Area,
+    /// Wall that sheds on it.
+    pub wall: Area,
+    /// The part of that wall that counts.
+    pub wall_share: f64,
+    /// Length of parapet that scuppers may use; none where it is not limited.
+    pub edge: Option<Length>,
+    /// Least clear distance between openings.
+    pub gap: Length,
+    /// Its parapet.
+    pub parapet: Parapet,
+    /// Roof surface at the parapet above the low point; edge devices stand no lower.
+    pub roof_at_wall: Length,
+    /// What runs onto it from other areas.
+    pub receives: Vec<Receipt>,
+    /// Extra depth from deflection, where given.
+    pub ponding_head: Option<Length>,
+    /// Kinds of device that may stand here; none where any may.
+    pub kinds: Option<Vec<Kind>>,
+    /// Least and most devices, all groups together.
+    pub count: RangeInclusive<u32>,
+    /// Set heights above the low point at which devices may stand, rising; none where only a device's own count.
+    pub set_heights: Option<Vec<Length>>,
+    /// What holds in each case of the roof, in their order.
+    pub limits: Vec<Limits>,
+}
+
+impl Catchment {
+    /// Whether a kind of device may stand here.
+    pub fn takes(&self, kind: Kind) -> bool {
+        self.kinds.as_ref().is_none_or(|kinds| kinds.contains(&kind))
+    }
+}
+
+/// The whole roof, ready to be computed.
+#[derive(Clone, Debug)]
+pub struct Roof {
+    /// Its title.
+    pub title: String,
+    /// The units a report speaks in.
+    pub system: System,
+    /// The design rain.
+    pub storm: Storm,
+    /// The cases, in the order of the file; never empty.
+    pub cases: Vec<Case>,
+    /// The areas, in the order of the file.
+    pub areas: Vec<Catchment>,
+    /// Every size of every catalog, in the order of the files.
+    pub sizes: Vec<Size>,
+    /// Flow that each area must pass under the storm, in the order of the areas; from [`demand::flows`].
+    pub demands: Vec<Flow>,
+}
+
+impl Roof {
+    /// Everything that decides about one area in one case.
+    pub fn situation(&self, area: usize, case: usize) -> Situation<'_> {
+        let catchment = &self.areas[area];
+        Situation {
+            case: &self.cases[case],
+            demand: self.demands[area] * self.cases[case].rain,
+            limits: catchment.limits[case],
+            ponding_head: catchment.ponding_head.unwrap_or(Length::ZERO),
+            parapet: catchment.parapet.height,
+        }
+    }
+
+    /// One area in every case, in the order of the cases.
+    pub fn situations(&self, area: usize) -> Vec<Situation<'_>> {
+        (0..self.cases.len()).map(|case| self.situation(area, case)).collect()
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use approx::assert_relative_eq;
+
+    /// 62.4 / 12 = 5.2 psf for an inch; 9.80 kPa for a metre. Source: IBC 2021 eq. 16-19 as adopted, R = 5.2 (ds + dh).
+    #[test]
+    fn an_inch_of_water_weighs_5_2_psf() {
+        assert_relative_eq!(load_of(Length::inches(5.0)).to_psf(), 26.0, max_relative = 1e-12);
+        assert_relative_eq!(load_of(Length::mm(1.0)).pa(), 9.80, max_relative = 3e-4);
+        assert_relative_eq!(depth_of(Load::psf(26.0)).to_inches(), 5.0, max_relative = 1e-12);
+    }
+}

@@ -1,0 +1,157 @@
+//! A layout in an area: its groups, how it stands in a case, and how high its sills may be built.
+
+use crate::device::{Regime, Size};
+use crate::units::{Flow, Length, Load, Money};
+
+use super::pool::{MOST_GROUPS, Outlet, Pool, Share};
+use super::root::crossing;
+use super::situation::{Governing, Situation};
+
+/// So many of one size at one set height.
+#[derive(Clone, Copy, Debug)]
+pub struct Group<'r> {
+    /// The size.
+    pub size: &'r Size,
+    /// How many.
+    pub count: u32,
+    /// Sill or rim above the low point.
+    pub set_height: Length,
+}
+
+/// What one group does in a case.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct GroupState {
+    /// Head, flow and regime.
+    pub share: Share,
+    /// Sill as it stands in the case, above the low point.
+    pub sill: Length,
+    /// Top of the opening as it stands in the case less the level; none for a device without a top.
+    pub freeboard: Option<Length>,
+}
+
+/// A layout in one case.
+#[derive(Clone, Debug, PartialEq)]
+pub struct CaseState {
+    /// Flow that must leave.
+    pub demand: Flow,
+    /// The level, the load and the limit it uses most; none where the layout is overwhelmed.
+    pub water: Option<Water>,
+    /// Its groups, in order; overwhelmed groups at the most they carry.
+    pub groups: Vec<GroupState>,
+}
+
+/// The water that a layout leaves on an area.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Water {
+    /// Level above the low point.
+    pub level: Length,
+    /// Rain load, ponding head included.
+    pub load: Load,
+    /// The limit that governs.
+    pub governing: Governing,
+}
+
+/// The groups as they stand in a case: sills raised, openings narrowed, the most effective blocked.
+///
+/// # Panics
+/// For more than three groups, which no layout has.
+pub fn pool(groups: &[Group<'_>], situation: &Situation<'_>) -> Pool {
+    assert!(groups.len() <= MOST_GROUPS, "a layout has at most {MOST_GROUPS} groups");
+    let case = situation.case;
+    let outlet = |group: &Group<'_>| {
+        let (device, rise) = group.size.device.narrowed(case.opening_loss);
+        Outlet { device, sill: group.set_height + case.sill_error + rise, count: group.count }
+    };
+    Pool { outlets: groups.iter().map(outlet).collect(), blocked: case.blocked, discharge: case.discharge }
+}
+
+/// The groups in a case: level, load, and what each group carries.
+pub fn state(groups: &[Group<'_>], situation: &Situation<'_>) -> CaseState {
+    let pool = pool(groups, situation);
+    // Device flows are finite at every finite level, so the solver has no reason to refuse.
+    let level = pool.level(situation.demand).unwrap_or(None);
+    let shares = pool.shares(level.unwrap_or(Length::from_m(DROWNED)));
+    let group = |(outlet, share): (&Outlet, Share)| GroupState {
+        share,
+        sill: outlet.sill,
+        freeboard: level.and_then(|level| outlet.device.height().map(|height| outlet.sill + height - level)),
+    };
+    let water = |level| Water { level, load: situation.load(level), governing: situation.governing(level) };
+    CaseState {
+        demand: situation.demand,
+        water: level.map(water),
+        groups: pool.outlets.iter().zip(shares).map(group).collect(),
+    }
+}
+
+/// A level, m, at which every table is at its end.
+const DROWNED: f64 = 1e4;
+
+/// Cost of all groups; none where one of them has no price.
+pub fn cost(groups: &[Group<'_>]) -> Option<Money> {
+    groups.iter().map(|group| group.size.price.map(|price| price * group.count)).sum()
+}
+
+/// A group and the heights within which it may be lifted.
+#[derive(Clone, Copy, Debug)]
+pub struct Liftable<'r> {
+    /// The group at the lowest of its heights.
+    pub group: Group<'r>,
+    /// The highest of them.
+    pub highest: Length,
+}
+
+impl<'r> Liftable<'r> {
+    /// The group lifted, or at the top of its range where that is lower.
+    pub fn lifted(&self, lift: Length) -> Group<'r> {
+        Group { set_height: (self.group.set_height + lift).min(self.highest), ..self.group }
+    }
+}
+
+/// What is asked of every lift in a window, besides the limits.
+#[derive(Clone, Copy, Debug, Default)]
+pub struct Asked {
+    /// Least distance from the level up to the top of every closed opening.
+    pub freeboard: Option<Length>,
+}
+
+/// Whether the groups hold a situation, decided by what they carry at the highest level allowed.
+pub fn holds(groups: &[Group<'_>], situation: &Situation<'_>, asked: Asked) -> bool {
+    spare(groups, situation, asked) >= 0.0
+}
+
+/// What the groups can carry at the highest level allowed, less the demand, m3/s.
+fn spare(groups: &[Group<'_>], situation: &Situation<'_>, asked: Asked) -> f64 {
+    let pool = pool(groups, situation);
+    let tops = pool.outlets.iter().filter_map(|outlet| outlet.device.height().map(|height| outlet.sill + height));
+    let ceiling = asked.freeboard.and_then(|freeboard| tops.map(|top| top - freeboard).reduce(Length::min));
+    let level = ceiling.map_or(situation.allowable_level(), |ceiling| ceiling.min(situation.allowable_level()));
+    (pool.capacity(level) - situation.demand).m3_per_s()
+}
+
+/// The highest common lift at which every case still meets every limit; none where the lowest heights already do not.
+///
+/// All groups are lifted by the same amount, each stopping at the top of its own range. Lifting sills raises the level by
+/// at most the lift, so limits that hold at one lift hold at every lower one. Freeboard grows while its opening is lifted
+/// and falls once it has stopped, so it too, held at the lowest heights, ends once: the lifts that pass are one stretch.
+pub fn highest_lift(groups: &[Liftable<'_>], situations: &[Situation<'_>], asked: Asked) -> Option<Length> {
+    let least_spare = |lift: f64| {
+        let lifted: Vec<_> = groups.iter().map(|group| group.lifted(Length::from_m(lift))).collect();
+        situations.iter().map(|situation| spare(&lifted, situation, asked)).fold(f64::INFINITY, f64::min)
+    };
+    let most = groups.iter().map(|group| group.highest - group.group.set_height).fold(Length::ZERO, Length::max).m();
+    if least_spare(0.0) < 0.0 {
+        return None;
+    }
+    if least_spare(most) >= 0.0 {
+        return Some(Length::from_m(most));
+    }
+    // The first lift that fails has a neighbour that passes; where even the second number fails, nothing may be lifted.
+    crossing(|lift| -least_spare(lift), 0.0, most)
+        .map_or(Some(Length::ZERO), |(passes, _)| Some(Length::from_m(passes)))
+}
+
+/// Whether any working device is read past the end of its table.
+pub fn table_held(state: &CaseState) -> bool {
+    state.groups.iter().any(|group| group.share.working > 0 && group.share.each.regime == Regime::TableHeld)
+}

@@ -1,0 +1,131 @@
+//! One area in one case: what must leave, and how high the water may stand.
+
+use crate::units::{Flow, Length, Load};
+
+use super::{Case, PASCALS_PER_METRE, depth_of, load_of};
+
+/// The most that is allowed: a load, a depth, or both.
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
+pub struct Limits {
+    /// Greatest rain load, ponding head included.
+    pub load: Option<Load>,
+    /// Greatest water depth above the low point, ponding head left out.
+    pub depth: Option<Length>,
+}
+
+/// Which limit a level is held against.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum LimitKind {
+    /// The rain load.
+    Load,
+    /// The water depth.
+    Depth,
+    /// The top of the parapet.
+    Parapet,
+}
+
+impl LimitKind {
+    /// The name in reports.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::Load => "load",
+            Self::Depth => "depth",
+            Self::Parapet => "parapet",
+        }
+    }
+}
+
+/// The limit that a level comes nearest to, or passes by most.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Governing {
+    /// Which limit.
+    pub limit: LimitKind,
+    /// Demand over limit: 1 at the limit.
+    pub utilisation: f64,
+}
+
+/// Everything that decides about one area in one case.
+#[derive(Clone, Copy, Debug)]
+pub struct Situation<'r> {
+    /// The case.
+    pub case: &'r Case,
+    /// Flow that must leave.
+    pub demand: Flow,
+    /// What holds here.
+    pub limits: Limits,
+    /// Extra depth from deflection, counted in the load alone.
+    pub ponding_head: Length,
+    /// Height of the parapet's top above the low point, where given.
+    pub parapet: Option<Length>,
+}
+
+impl Situation<'_> {
+    /// Rain load at a level: unit weight times level and ponding head.
+    pub fn load(&self, level: Length) -> Load {
+        load_of(level + self.ponding_head)
+    }
+
+    /// The highest level at which no limit is used beyond `utilisation`; at 1, the highest level allowed.
+    ///
+    /// It may stand below the low point, where the ponding head alone uses up the load.
+    pub fn level_at(&self, utilisation: f64) -> Length {
+        let load = self.limits.load.map(|limit| depth_of(limit * utilisation) - self.ponding_head);
+        let depth = self.limits.depth.map(|limit| limit * utilisation);
+        let parapet = self.parapet.map(|top| top * utilisation);
+        [load, depth, parapet].into_iter().flatten().fold(Length::from_m(f64::INFINITY), Length::min)
+    }
+
+    /// The highest level allowed.
+    pub fn allowable_level(&self) -> Length {
+        self.level_at(1.0)
+    }
+
+    /// The limit that a level uses most; ties go to load, then depth.
+    pub fn governing(&self, level: Length) -> Governing {
+        let uses = [
+            (
+                LimitKind::Load,
+                self.limits.load.map(|limit| PASCALS_PER_METRE * (level + self.ponding_head).m() / limit.pa()),
+            ),
+            (LimitKind::Depth, self.limits.depth.map(|limit| level / limit)),
+            (LimitKind::Parapet, self.parapet.map(|top| level / top)),
+        ];
+        let none = Governing { limit: LimitKind::Load, utilisation: f64::NEG_INFINITY };
+        uses.into_iter().fold(none, |most, (limit, used)| match used {
+            Some(utilisation) if utilisation > most.utilisation => Governing { limit, utilisation },
+            _ => most,
+        })
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use approx::assert_relative_eq;
+
+    fn situation(case: &Case) -> Situation<'_> {
+        Situation {
+            case,
+            demand: Flow::gpm(100.0),
+            limits: Limits { load: Some(Load::psf(26.0)), depth: Some(Length::inches(4.8)) },
+            ponding_head: Length::inches(0.4),
+            parapet: Some(Length::inches(4.0)),
+        }
+    }
+
+    /// 26 / 5.2 - 0.4 = 4.6 in by load, 4.8 in by depth, 4 in to the parapet's top. Worked by hand.
+    #[test]
+    fn the_least_of_load_depth_and_parapet_holds() {
+        let case = Case::as_designed();
+        let mut here = situation(&case);
+        assert_relative_eq!(here.allowable_level().to_inches(), 4.0, max_relative = 1e-12);
+        assert_eq!(here.governing(Length::inches(4.0)).limit, LimitKind::Parapet);
+        here.parapet = None;
+        assert_relative_eq!(here.allowable_level().to_inches(), 4.6, max_relative = 1e-12);
+        let governing = here.governing(Length::inches(4.6));
+        assert_eq!(governing.limit, LimitKind::Load);
+        assert_relative_eq!(governing.utilisation, 1.0, max_relative = 1e-12);
+        here.limits.load = None;
+        assert_relative_eq!(here.level_at(0.5).to_inches(), 2.4, max_relative = 1e-12);
+    }
+}
