@@ -256,6 +256,16 @@ impl Device {
         }
     }
 
+    /// How much more a straight line between rated rows gives than one on logarithms; none for a device without rows.
+    pub fn chord_excess(&self, head: Head) -> Flow {
+        match self {
+            Self::Rated { rating, .. } if head.length() > Length::ZERO => {
+                rating.discharge(head.length()).flow - rating.log_log(head.length())
+            }
+            _ => Flow::ZERO,
+        }
+    }
+
     /// The published ranges that the device leaves under a head, each with the value in SI that lies outside.
     pub fn beyond_range(&self, head: Head) -> Vec<(&'static Range, f64)> {
         if head.length() <= Length::ZERO {

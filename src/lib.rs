@@ -2,4 +2,6 @@
 pub mod device;
 pub mod hydraulics;
 pub mod roof;
+pub mod rules;
+pub mod search;
 pub mod units;

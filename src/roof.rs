@@ -15,7 +15,7 @@ mod pool;
 pub mod root;
 mod situation;
 
-pub use pool::{Outlet, Pool, Share, working, working_capacity};
+pub use pool::{MOST_GROUPS, Outlet, Pool, Share, working, working_capacity};
 pub use situation::{Governing, LimitKind, Limits, Situation};
 
 /// Weight of water that loads are computed with: 62.4 lb/ft3, which is 5.2 psf for each inch of depth.

@@ -1,0 +1,221 @@
+//! The search: from an area's limits to the layouts that hold them, ranked.
+//!
+//! It is exact over the declared grid: every size of every catalog, every count, up to `mix` groups; a layout is left out
+//! only by a bound that is proven where it is used (`dive`). Cost does not depend on the set height and the load rises with
+//! it, so a layout is its sizes and counts, with a window of set heights that starts at the lowest. The answer does not
+//! depend on the number of threads, and equal input gives equal answers to the last bit.
+
+use rayon::prelude::*;
+
+use crate::device::Size;
+use crate::hydraulics::limits::Range;
+use crate::roof::layout::{self, CaseState, Group, highest_lift};
+use crate::roof::{Governing, Roof, Situation};
+use crate::rules::Misfit;
+use crate::units::{Length, Money};
+
+mod best;
+mod dive;
+mod infeasible;
+mod problem;
+mod rank;
+
+pub use rank::Criterion;
+
+use best::{Best, Found, reported};
+use dive::{Aim, dive};
+use problem::Problem;
+
+/// What is asked of the search.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Options {
+    /// Criteria in the order in which they decide.
+    pub rank_by: Vec<Criterion>,
+    /// How many layouts to keep for each area.
+    pub keep: usize,
+    /// Most groups in one layout, 1 to 3.
+    pub mix: usize,
+    /// Least distance from the water up to the top of every closed opening, in every case.
+    pub freeboard: Option<Length>,
+    /// Whether only the best layout of each family, the same tags and the same count of each, is listed.
+    pub fold: bool,
+}
+
+/// A group of a ranked layout with its window.
+#[derive(Clone, Copy, Debug)]
+pub struct Placed<'r> {
+    /// The group at its reported set height.
+    pub group: Group<'r>,
+    /// The lowest set height of its window.
+    pub from: Length,
+    /// The highest set height at which, all groups lifted alike, every case still holds.
+    pub to: Length,
+}
+
+/// A layout and all that is known of it.
+#[derive(Clone, Debug)]
+pub struct Ranked<'r> {
+    /// Its groups, in catalog order.
+    pub groups: Vec<Placed<'r>>,
+    /// Its cost; none where one of its devices has no price.
+    pub cost: Option<Money>,
+    /// How it stands in each case, in the order of the cases.
+    pub states: Vec<CaseState>,
+    /// The case that governs.
+    pub case: usize,
+    /// The limit that governs there; none where the layout is overwhelmed.
+    pub governing: Option<Governing>,
+    /// Published ranges that it leaves in some case, each once with the value farthest out.
+    pub beyond: Vec<(&'static Range, f64)>,
+    /// The most by which straight lines between rated rows raise its flow over logarithmic ones, as a part of the demand.
+    pub chord: f64,
+}
+
+/// How the search of one area ended.
+#[derive(Clone, Debug)]
+pub enum Outcome<'r> {
+    /// The best layouts, in order: every other was tried or excluded by a bound.
+    Optimal(Vec<Ranked<'r>>),
+    /// No layout holds, and this is why.
+    Infeasible(Why<'r>),
+}
+
+/// Why an area has no layout.
+#[derive(Clone, Debug)]
+#[non_exhaustive]
+pub enum Why<'r> {
+    /// No size may stand in the area.
+    NothingStands {
+        /// Every size with the rule it breaks.
+        misfits: Vec<(&'r Size, Misfit)>,
+    },
+    /// Sizes may stand, but not as many as the area asks for.
+    NothingFits {
+        /// Least number of devices.
+        least: u32,
+    },
+    /// No layout keeps under the limits.
+    Limits {
+        /// The layout with the least governing utilisation.
+        best: Box<Ranked<'r>>,
+        /// Cases that no layout holds, whatever the other cases.
+        alone: Vec<usize>,
+        /// Cases that each can be held but not together; empty where one is impossible alone.
+        together: Vec<usize>,
+    },
+    /// Layouts keep under the limits, but none with the freeboard asked for.
+    Freeboard {
+        /// The freeboard asked for.
+        asked: Length,
+        /// The most that a layout keeps, negative where the water stands over the top; and that layout.
+        best: Option<(Length, Box<Ranked<'r>>)>,
+    },
+}
+
+/// The answer for one area.
+#[derive(Clone, Debug)]
+pub struct Answer<'r> {
+    /// Index of the area.
+    pub area: usize,
+    /// How its search ended.
+    pub outcome: Outcome<'r>,
+}
+
+/// Ranks the layouts of the given areas, in their order.
+///
+/// # Example
+/// ```
+/// # use std::path::Path;
+/// use brimline::{input, search};
+/// let project = input::read(Path::new("examples/harbour-depot.toml")).expect("the example reads");
+/// let answers = search::size(&project.roof, &project.options, &[0]);
+/// assert!(matches!(&answers[0].outcome, search::Outcome::Optimal(layouts) if !layouts.is_empty()));
+/// ```
+pub fn size<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<Answer<'r>> {
+    let answer = |&area: &usize| Answer { area, outcome: size_area(roof, area, options) };
+    if areas.len() < 2 { areas.iter().map(answer).collect() } else { areas.par_iter().map(answer).collect() }
+}
+
+fn size_area<'r>(roof: &'r Roof, area: usize, options: &Options) -> Outcome<'r> {
+    let (problem, misfits) = Problem::new(roof, area, options);
+    if problem.candidates.is_empty() {
+        return Outcome::Infeasible(Why::NothingStands { misfits });
+    }
+    let found = dive(&problem, Aim::Rank, Best::new(options.keep, options.fold)).into_found();
+    if found.is_empty() {
+        return Outcome::Infeasible(infeasible::why(problem));
+    }
+    Outcome::Optimal(found.iter().map(|found| ranked(&problem, found)).collect())
+}
+
+/// All that is reported of a layout.
+fn ranked<'r>(problem: &Problem<'r>, found: &Found) -> Ranked<'r> {
+    let groups = reported(problem, &found.groups);
+    let liftable = problem.liftable(&found.groups);
+    let lift = highest_lift(&liftable, &problem.situations, problem.asked).unwrap_or(Length::ZERO);
+    let placed = groups.iter().zip(&liftable).map(|(&group, liftable)| Placed {
+        group,
+        from: liftable.group.set_height,
+        to: liftable.lifted(lift).set_height,
+    });
+    let states: Vec<_> = problem.situations.iter().map(|situation| layout::state(&groups, situation)).collect();
+    let (case, governing) = governing(&states);
+    Ranked {
+        cost: layout::cost(&groups),
+        case,
+        governing,
+        beyond: beyond(&groups, &states, &problem.situations),
+        chord: chord(&groups, &states, &problem.situations),
+        groups: placed.collect(),
+        states,
+    }
+}
+
+/// The case with the highest utilisation, the first of equals; an overwhelmed case governs over all.
+fn governing(states: &[CaseState]) -> (usize, Option<Governing>) {
+    let used = |state: &CaseState| state.water.map_or(f64::INFINITY, |water| water.governing.utilisation);
+    let mut most = 0;
+    for (case, state) in states.iter().enumerate() {
+        if used(state) > used(&states[most]) {
+            most = case;
+        }
+    }
+    (most, states[most].water.map(|water| water.governing))
+}
+
+fn beyond(groups: &[Group<'_>], states: &[CaseState], situations: &[Situation<'_>]) -> Vec<(&'static Range, f64)> {
+    let mut all: Vec<(&'static Range, f64)> = Vec::new();
+    for (state, situation) in states.iter().zip(situations) {
+        for (group, stands) in groups.iter().zip(&state.groups) {
+            if stands.share.working == 0 {
+                continue;
+            }
+            let (device, _) = group.size.device.narrowed(situation.case.opening_loss);
+            for (range, value) in device.beyond_range(stands.share.head) {
+                let out = |value: f64| (range.low - value).max(value - range.high);
+                match all.iter_mut().find(|(known, _)| std::ptr::eq(*known, range)) {
+                    Some((_, known)) if out(value) > out(*known) => *known = value,
+                    Some(_) => {}
+                    None => all.push((range, value)),
+                }
+            }
+        }
+    }
+    all
+}
+
+fn chord(groups: &[Group<'_>], states: &[CaseState], situations: &[Situation<'_>]) -> f64 {
+    let of_case = |(state, situation): (&CaseState, &Situation<'_>)| {
+        let excess: f64 = groups
+            .iter()
+            .zip(&state.groups)
+            .map(|(group, stands)| {
+                group.size.device.chord_excess(stands.share.head).m3_per_s()
+                    * situation.case.discharge
+                    * f64::from(stands.share.working)
+            })
+            .sum();
+        excess / state.demand.m3_per_s()
+    };
+    states.iter().zip(situations).map(of_case).fold(0.0, f64::max)
+}

@@ -1,0 +1,280 @@
+//! Every layout of an area, or a proof that it cannot rank: depth first, one group after another, in catalog order.
+//!
+//! # What is left out, and why it may be
+//!
+//! A branch is a prefix of groups, with more groups to come from the sizes behind the last. Write c(s) for what one device
+//! of size s carries in a case at the highest level allowed there, Q for the case's demand, N for the greatest count, and
+//! k for the blocked devices.
+//!
+//! 1. *What must be installed.* With k of n devices blocked, the n - k weakest remain; they carry at most (n - k)/n of the
+//!    total, which is at most (N - k)/N of it. So every layout that holds the case has a total of at least Q N/(N - k).
+//! 2. *Capacity.* If the prefix's total plus (devices left) x (greatest c(s) behind the prefix) is less, no layout in the
+//!    branch holds the case.
+//! 3. *Price of what is missing.* Where layouts rank by cost, count or width first, what the prefix lacks costs at least
+//!    (missing flow) x (least price of a unit of flow behind the prefix). If the prefix and that are above the last layout
+//!    kept, every layout in the branch ranks behind it.
+//! 4. *Fewest of the last.* Of the last group fewer than (missing flow) / c(s) do not suffice.
+//!
+//! Where the water level comes first in the rank, c(s) is taken at the level of the last layout kept: whoever ranks as high
+//! must carry the demand there, which is the same question at a lower level, and is asked anew whenever the list improves.
+//! Totals found before such a change are too great by then, never too small, so every bound above stays one.
+//!
+//! Nothing else is left out. Layouts of one group are tried first, then of two, then of three: good layouts early make the
+//! bounds tight.
+
+use crate::roof::MOST_GROUPS;
+
+use super::best::Best;
+use super::problem::{Class, Problem, Table};
+use super::rank::{Criterion, Sums};
+
+/// How a search is run.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Aim {
+    /// The best layouts that hold every case.
+    Rank,
+    /// The layout that comes nearest to its limits, whether it holds them or not.
+    Reach,
+    /// Any layout that holds every case.
+    Any,
+}
+
+/// The best layouts of an area.
+pub(super) fn dive(problem: &Problem<'_>, aim: Aim, best: Best) -> Best {
+    let mut best = best;
+    for class in problem.classes() {
+        best.change_class();
+        let limits = (aim != Aim::Reach)
+            .then(|| problem.table(&problem.allowable_levels(class), |candidate| Some(candidate.lowest())));
+        let mut dive = Dive {
+            problem,
+            aim,
+            class,
+            members: problem.members(class),
+            bounds: Bounds::default(),
+            limits,
+            best,
+            chosen: [(0, 0); MOST_GROUPS],
+            totals: vec![0.0; (MOST_GROUPS + 1) * problem.situations.len()],
+            done: false,
+        };
+        dive.tighten();
+        for groups in 1..=problem.mix {
+            dive.extend(groups, 0, 0, Used::default());
+        }
+        best = dive.best;
+    }
+    best
+}
+
+/// What the chosen groups use up.
+#[derive(Clone, Copy, Default)]
+struct Used {
+    sums: Sums,
+    devices: u32,
+    openings: i64,
+    edge: i64,
+    has_lowest_top: bool,
+}
+
+/// What bounds are computed with; from the limits, or from what the last layout kept asks.
+#[derive(Default)]
+struct Bounds {
+    /// Flow of one member in each case, members in order.
+    flows: Vec<f64>,
+    /// Greatest flow of one device in each case, over the members from an index on.
+    greatest: Vec<f64>,
+    /// Least of the leading criterion for a unit of flow, over the members from an index on.
+    dearest: Vec<f64>,
+    /// Total that a layout must have in each case.
+    needed: Vec<f64>,
+}
+
+struct Dive<'p, 'r> {
+    problem: &'p Problem<'r>,
+    aim: Aim,
+    class: Class,
+    /// Candidates in the game, in catalog order.
+    members: Vec<usize>,
+    bounds: Bounds,
+    limits: Option<Table>,
+    best: Best,
+    chosen: [(usize, u32); MOST_GROUPS],
+    /// Total flow of the groups chosen so far, one row of cases for each depth.
+    totals: Vec<f64>,
+    done: bool,
+}
+
+impl Dive<'_, '_> {
+    /// The first criterion, where it is a sum that every further device raises.
+    fn lead(&self) -> Option<Criterion> {
+        let first = self.problem.order.criteria()[0];
+        matches!(first, Criterion::Cost | Criterion::Count | Criterion::Width).then_some(first)
+    }
+
+    fn lead_of_one(&self, member: usize) -> i64 {
+        let candidate = &self.problem.candidates[self.members[member]];
+        match self.lead() {
+            Some(Criterion::Cost) => candidate.price,
+            Some(Criterion::Count) => 1,
+            Some(Criterion::Width) => candidate.width,
+            _ => 0,
+        }
+    }
+
+    /// The leading criterion of the last layout kept: no layout above it can rank.
+    fn lead_allowed(&self) -> i64 {
+        match (self.lead(), self.best.last()) {
+            (Some(lead), Some(last)) => last.sums.value(lead),
+            _ => i64::MAX,
+        }
+    }
+
+    /// Computes the bounds from the strictest table that every layout worth finding must pass.
+    fn tighten(&mut self) {
+        let problem = self.problem;
+        let asked = if problem.order.sums().is_empty() { self.best.last_screen(problem, self.class) } else { None };
+        let Some(table) = asked.or(self.limits.as_ref()) else {
+            self.bounds = Bounds::default();
+            return;
+        };
+        let cases = problem.situations.len();
+        let count = self.members.len();
+        let mut bounds = Bounds {
+            flows: Vec::with_capacity(count * cases),
+            greatest: vec![0.0; (count + 1) * cases],
+            dearest: vec![f64::INFINITY; (count + 1) * cases],
+            needed: Vec::with_capacity(cases),
+        };
+        for &member in &self.members {
+            bounds.flows.extend_from_slice(table.of(member));
+        }
+        for member in (0..count).rev() {
+            let lead = self.lead_of_one(member) as f64;
+            for case in 0..cases {
+                let (here, behind) = (member * cases + case, (member + 1) * cases + case);
+                let flow = bounds.flows[here];
+                bounds.greatest[here] = flow.max(bounds.greatest[behind]);
+                let price = if flow > 0.0 { lead / flow } else { f64::INFINITY };
+                bounds.dearest[here] = price.min(bounds.dearest[behind]);
+            }
+        }
+        let most = f64::from(problem.most);
+        for situation in &problem.situations {
+            let left = most - f64::from(situation.case.blocked);
+            let share = if left > 0.0 { most / left } else { f64::INFINITY };
+            // A little less, so that rounding never makes a bound of what is none.
+            bounds.needed.push(situation.demand.m3_per_s() * share * (1.0 - SLACK));
+        }
+        self.bounds = bounds;
+    }
+
+    /// Extends the groups chosen so far to `groups` groups, by members from an index on.
+    fn extend(&mut self, groups: usize, depth: usize, from: usize, used: Used) {
+        let to_come = u32::try_from(groups - depth - 1).unwrap_or(0);
+        let Some(most) = self.problem.most.checked_sub(used.devices + to_come).filter(|&most| most > 0) else { return };
+        let last = to_come == 0;
+        for member in from..self.members.len() {
+            if self.done || !self.can_rank(depth, member, most + to_come, used) {
+                return;
+            }
+            let least = if last { self.least_of_last(depth, member, used) } else { 1 };
+            for count in least..=most {
+                let Some(used) = self.choose(depth, member, count, used) else { break };
+                if last {
+                    self.offer(groups, used);
+                } else {
+                    self.extend(groups, depth + 1, member + 1, used);
+                }
+                if self.done {
+                    return;
+                }
+            }
+        }
+    }
+
+    /// Bounds 2 and 3: whether the members from an index on can make a layout worth having of the groups chosen so far.
+    fn can_rank(&self, depth: usize, from: usize, devices_left: u32, used: Used) -> bool {
+        let cases = self.problem.situations.len();
+        let lead = self.lead();
+        let allowed = self.lead_allowed();
+        self.bounds.needed.iter().enumerate().all(|(case, needed)| {
+            let missing = needed - self.totals[depth * cases + case];
+            if missing <= 0.0 {
+                return true;
+            }
+            let at = from * cases + case;
+            if missing > f64::from(devices_left) * self.bounds.greatest[at] {
+                return false;
+            }
+            let so_far = lead.map_or(0, |lead| used.sums.value(lead)) as f64;
+            lead.is_none() || (so_far + missing * self.bounds.dearest[at]) * (1.0 - SLACK) <= allowed as f64
+        })
+    }
+
+    /// Bound 4: fewest of a last group that can suffice.
+    fn least_of_last(&self, depth: usize, member: usize, used: Used) -> u32 {
+        let cases = self.problem.situations.len();
+        let mut least = self.problem.least.saturating_sub(used.devices).max(1);
+        for (case, needed) in self.bounds.needed.iter().enumerate() {
+            let missing = needed - self.totals[depth * cases + case];
+            if missing > 0.0 {
+                let flow = self.bounds.flows[member * cases + case];
+                let wanted = if flow > 0.0 { (missing / flow * (1.0 - SLACK)).ceil() } else { f64::INFINITY };
+                // A float above the greatest count ends the loop over counts before it begins.
+                least = least.max(wanted.min(f64::from(u32::MAX)) as u32);
+            }
+        }
+        least
+    }
+
+    /// Adds a group; none where it does not fit the edge, or already ranks behind the last layout kept.
+    fn choose(&mut self, depth: usize, member: usize, count: u32, used: Used) -> Option<Used> {
+        let index = self.members[member];
+        let candidate = &self.problem.candidates[index];
+        let many = i64::from(count);
+        let mut used = used;
+        used.devices += count;
+        used.sums.count += many;
+        used.sums.cost += candidate.price.saturating_mul(many);
+        used.sums.width += candidate.width.saturating_mul(many);
+        used.sums.sizes += 1;
+        if candidate.at_edge {
+            used.openings += many;
+            used.edge += candidate.width.saturating_mul(many);
+        }
+        used.has_lowest_top |= candidate.top == self.class;
+        let edge = used.edge.saturating_add(self.problem.gap.saturating_mul((used.openings - 1).max(0)));
+        if self.problem.edge.is_some_and(|most| edge > most) {
+            return None;
+        }
+        if self.lead().is_some_and(|lead| used.sums.value(lead) > self.lead_allowed()) {
+            return None;
+        }
+        self.chosen[depth] = (index, count);
+        let cases = self.problem.situations.len();
+        if !self.bounds.flows.is_empty() {
+            for case in 0..cases {
+                let flow = self.bounds.flows[member * cases + case];
+                self.totals[(depth + 1) * cases + case] = self.totals[depth * cases + case] + flow * f64::from(count);
+            }
+        }
+        Some(used)
+    }
+
+    fn offer(&mut self, groups: usize, used: Used) {
+        if used.devices < self.problem.least || (self.class.is_some() && !used.has_lowest_top) {
+            return;
+        }
+        let chosen = &self.chosen[..groups];
+        let changed = self.best.offer(self.problem, self.class, self.limits.as_ref(), chosen, used.sums);
+        if changed && self.aim == Aim::Any {
+            self.done = true;
+        } else if changed && self.problem.order.sums().is_empty() {
+            self.tighten();
+        }
+    }
+}
+
+/// Relative slack by which every bound is loosened; rounding in a sum of a few flows is far below it.
+const SLACK: f64 = 1e-9;

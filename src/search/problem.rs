@@ -1,0 +1,219 @@
+//! One area as the search sees it: the sizes that may stand there, their heights, and what one of each can carry.
+//!
+//! In one area and one case the highest level allowed is one number, so what a single device can carry there is one number
+//! too, whatever stands beside it: a table of candidates by cases, computed once. A layout holds a case exactly when the
+//! table's entries, times their counts, less the blocked, reach the demand.
+//!
+//! Freeboard makes the level depend on the layout: water must stay under its lowest opening. Layouts are therefore searched
+//! by classes of equal lowest top ([`Problem::classes`]), and within a class the level is one number again.
+
+use crate::device::{Place, Size};
+use crate::roof::layout::{Asked, Group, Liftable};
+use crate::roof::{Catchment, MOST_GROUPS, Roof, Situation, working_capacity};
+use crate::rules::{self, Misfit};
+use crate::units::Length;
+
+use super::Options;
+use super::rank::{Criterion, Order};
+
+/// A size that may stand in the area.
+#[derive(Debug)]
+pub(super) struct Candidate<'r> {
+    pub(super) size: &'r Size,
+    /// A number for its tag, the same for all its sizes.
+    pub(super) tag: u32,
+    /// Where it may stand, rising; never empty.
+    pub(super) heights: Vec<Length>,
+    /// Price in millionths; zero where the catalog has none.
+    pub(super) price: i64,
+    /// Clear width in nanometres.
+    pub(super) width: i64,
+    /// Whether it uses up edge.
+    pub(super) at_edge: bool,
+    /// Top of its opening at its lowest set height, nanometres; none where it has no top.
+    pub(super) top: Option<i64>,
+}
+
+impl Candidate<'_> {
+    pub(super) fn lowest(&self) -> Length {
+        self.heights[0]
+    }
+
+    pub(super) fn highest(&self) -> Length {
+        self.heights[self.heights.len() - 1]
+    }
+}
+
+/// One area, the cases it is searched for, and what is asked of a layout.
+pub(super) struct Problem<'r> {
+    pub(super) situations: Vec<Situation<'r>>,
+    pub(super) candidates: Vec<Candidate<'r>>,
+    pub(super) least: u32,
+    pub(super) most: u32,
+    pub(super) mix: usize,
+    /// Edge in nanometres; none where it is not limited.
+    pub(super) edge: Option<i64>,
+    pub(super) gap: i64,
+    pub(super) asked: Asked,
+    pub(super) order: Order,
+}
+
+/// Layouts whose lowest opening has its top at one height; none for those without any closed opening.
+pub(super) type Class = Option<i64>;
+
+/// What one device of each candidate carries in each case, m3/s, under given levels and at given heights.
+#[derive(Clone, Debug)]
+pub(super) struct Table {
+    cases: usize,
+    flows: Vec<f64>,
+}
+
+impl Table {
+    pub(super) fn of(&self, candidate: usize) -> &[f64] {
+        &self.flows[candidate * self.cases..(candidate + 1) * self.cases]
+    }
+}
+
+impl<'r> Problem<'r> {
+    /// The area with every size that may stand in it; beside it the sizes that may not, and why.
+    pub(super) fn new(roof: &'r Roof, area: usize, options: &Options) -> (Self, Vec<(&'r Size, Misfit)>) {
+        let catchment = &roof.areas[area];
+        let mut tags: Vec<&str> = Vec::new();
+        let (mut candidates, mut misfits) = (Vec::new(), Vec::new());
+        for size in &roof.sizes {
+            // Sizes of one device follow one another, so its tag is nearly always the last.
+            let tag = tags.iter().rposition(|&known| known == &*size.tag).unwrap_or_else(|| {
+                tags.push(&size.tag);
+                tags.len() - 1
+            });
+            match rules::stands(size, catchment) {
+                Ok(heights) => candidates.push(candidate(size, u32::try_from(tag).unwrap_or(u32::MAX), heights)),
+                Err(misfit) => misfits.push((size, misfit)),
+            }
+        }
+        let priced = candidates.iter().all(|candidate| candidate.size.price.is_some());
+        let problem = Self {
+            situations: roof.situations(area),
+            candidates,
+            least: *catchment.count.start(),
+            most: *catchment.count.end(),
+            mix: options.mix,
+            edge: limited_edge(catchment),
+            gap: catchment.gap.nm(),
+            asked: Asked { freeboard: options.freeboard },
+            order: Order::new(&options.rank_by, priced),
+        };
+        (problem, misfits)
+    }
+
+    /// The classes of layouts: one for all where no freeboard is asked, else one for each height of an opening's top.
+    pub(super) fn classes(&self) -> Vec<Class> {
+        if self.asked.freeboard.is_none() {
+            return vec![None];
+        }
+        let mut tops: Vec<_> = self.candidates.iter().filter_map(|candidate| candidate.top).collect();
+        tops.sort_unstable();
+        tops.dedup();
+        std::iter::once(None).chain(tops.into_iter().map(Some)).collect()
+    }
+
+    /// The candidates that a layout of a class may be made of, in catalog order.
+    pub(super) fn members(&self, class: Class) -> Vec<usize> {
+        let belongs = |candidate: &Candidate<'_>| match (self.asked.freeboard, class, candidate.top) {
+            (None, _, _) | (Some(_), _, None) => true,
+            (Some(_), None, Some(_)) => false,
+            (Some(_), Some(lowest), Some(top)) => top >= lowest,
+        };
+        (0..self.candidates.len()).filter(|&index| belongs(&self.candidates[index])).collect()
+    }
+
+    /// The highest level allowed in each case, to layouts of a class.
+    pub(super) fn allowable_levels(&self, class: Class) -> Vec<Length> {
+        let under_the_top = |situation: &Situation<'_>| {
+            let case = situation.case;
+            // A loss lowers the top by as much as it raises the sill.
+            let top = Length::from_nm(class?) + case.sill_error - case.opening_loss;
+            Some(top - self.asked.freeboard?)
+        };
+        let level = |situation: &Situation<'_>| {
+            let allowed = situation.allowable_level();
+            under_the_top(situation).map_or(allowed, |ceiling| ceiling.min(allowed))
+        };
+        self.situations.iter().map(level).collect()
+    }
+
+    /// What one of each candidate carries under one level a case, each at the set height that `height` gives; a candidate
+    /// without a height cannot be part of the layout at all.
+    pub(super) fn table(&self, levels: &[Length], height: impl Fn(&Candidate<'r>) -> Option<Length>) -> Table {
+        let mut flows = Vec::with_capacity(self.candidates.len() * levels.len());
+        for candidate in &self.candidates {
+            let height = height(candidate);
+            for (situation, &level) in self.situations.iter().zip(levels) {
+                let one = |set_height| {
+                    let group = Group { size: candidate.size, count: 1, set_height };
+                    let mut pool = crate::roof::layout::pool(&[group], situation);
+                    pool.blocked = 0;
+                    pool.capacity(level).m3_per_s()
+                };
+                flows.push(height.map_or(f64::NEG_INFINITY, one));
+            }
+        }
+        Table { cases: levels.len(), flows }
+    }
+
+    /// Whether groups of candidates carry every case's demand by a table.
+    pub(super) fn carries(&self, table: &Table, groups: &[(usize, u32)]) -> bool {
+        self.situations.iter().enumerate().all(|(case, situation)| {
+            let mut flows = [(0.0, 0); MOST_GROUPS];
+            for (slot, &(candidate, count)) in flows.iter_mut().zip(groups) {
+                *slot = (table.of(candidate)[case], count);
+            }
+            working_capacity(&flows, groups.len(), situation.case.blocked) >= situation.demand.m3_per_s()
+        })
+    }
+
+    /// The groups at the lowest of their heights, with the highest they may be lifted to.
+    pub(super) fn liftable(&self, groups: &[(usize, u32)]) -> Vec<Liftable<'r>> {
+        let liftable = |&(index, count): &(usize, u32)| {
+            let candidate = &self.candidates[index];
+            let group = Group { size: candidate.size, count, set_height: candidate.lowest() };
+            Liftable { group, highest: candidate.highest() }
+        };
+        groups.iter().map(liftable).collect()
+    }
+
+    /// This area, held to some of its cases only.
+    pub(super) fn with_cases(&self, keep: &[usize]) -> Problem<'r> {
+        Problem {
+            situations: keep.iter().map(|&case| self.situations[case]).collect(),
+            candidates: self.candidates.iter().map(|c| candidate(c.size, c.tag, c.heights.clone())).collect(),
+            asked: self.asked,
+            order: self.order.clone(),
+            ..*self
+        }
+    }
+
+    /// This area, ranked by how near a layout comes to its limits.
+    pub(super) fn by_utilisation(mut self) -> Self {
+        let priced = self.order.criteria().contains(&Criterion::Cost);
+        self.order = Order::new(&[Criterion::Utilisation], priced);
+        self.asked = Asked::default();
+        self
+    }
+}
+
+fn candidate(size: &Size, tag: u32, heights: Vec<Length>) -> Candidate<'_> {
+    Candidate {
+        tag,
+        price: size.price.map_or(0, crate::units::Money::millionths),
+        width: size.clear_width().nm(),
+        at_edge: size.place == Place::Edge,
+        top: size.device.height().map(|height| (heights[0] + height).nm()),
+        heights,
+        size,
+    }
+}
+
+fn limited_edge(area: &Catchment) -> Option<i64> {
+    area.edge.map(Length::nm)
+}
