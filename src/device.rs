@@ -132,8 +132,10 @@ pub struct Discharge {
 pub struct Law {
     /// The name in files and reports.
     pub name: &'static str,
-    /// The equations, in words a reviewer can check.
-    pub form: &'static str,
+    /// The equations as a reviewer checks them, in gal/min and inches.
+    pub form_us: &'static str,
+    /// The same in m3/s and metres.
+    pub form_si: &'static str,
     /// Where they are published.
     pub source: &'static str,
 }
@@ -141,14 +143,16 @@ pub struct Law {
 /// The thin-plate form of North American practice, the law of scuppers.
 pub static THIN_PLATE: Law = Law {
     name: "thin-plate",
-    form: "2.9 b H^1.5 gpm, and 4.3 b h sqrt(H - h/2) gpm if less once H > h (inches)",
+    form_us: "2.9 b H^1.5 gpm, and 4.3 b h sqrt(H - h/2) gpm if less once H > h (inches)",
+    form_si: "1.7794 b H^1.5 m3/s, and 2.6384 b h sqrt(H - h/2) m3/s if less once H > h (metres)",
     source: "ASCE 7 commentary and insurance Data Sheet 1-54, from memory",
 };
 
 /// The table of a rated device.
 pub static RATING_TABLE: Law = Law {
     name: "rating table",
-    form: "straight lines between rows; below the first row Q1 (H/H1)^1.5; above the last row its flow, held",
+    form_us: "straight lines between rows; below the first row Q1 (H/H1)^1.5; above the last row its flow, held",
+    form_si: "straight lines between rows; below the first row Q1 (H/H1)^1.5; above the last row its flow, held",
     source: "the table named in the catalog",
 };
 

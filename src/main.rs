@@ -1,1 +1,5 @@
-fn main() {}
+//! Runs one command of `brimline` and returns its exit code.
+
+fn main() -> std::process::ExitCode {
+    brimline::cli::run()
+}

@@ -164,7 +164,7 @@ fn ranked<'r>(problem: &Problem<'r>, found: &Found) -> Ranked<'r> {
         cost: layout::cost(&groups),
         case,
         governing,
-        beyond: beyond(&groups, &states, &problem.situations),
+        beyond: beyond(&groups, &states),
         chord: chord(&groups, &states, &problem.situations),
         groups: placed.collect(),
         states,
@@ -183,15 +183,15 @@ fn governing(states: &[CaseState]) -> (usize, Option<Governing>) {
     (most, states[most].water.map(|water| water.governing))
 }
 
-fn beyond(groups: &[Group<'_>], states: &[CaseState], situations: &[Situation<'_>]) -> Vec<(&'static Range, f64)> {
+/// The published ranges that the drawn openings leave, or that their heads leave in some case.
+fn beyond(groups: &[Group<'_>], states: &[CaseState]) -> Vec<(&'static Range, f64)> {
     let mut all: Vec<(&'static Range, f64)> = Vec::new();
-    for (state, situation) in states.iter().zip(situations) {
+    for state in states {
         for (group, stands) in groups.iter().zip(&state.groups) {
             if stands.share.working == 0 {
                 continue;
             }
-            let (device, _) = group.size.device.narrowed(situation.case.opening_loss);
-            for (range, value) in device.beyond_range(stands.share.head) {
+            for (range, value) in group.size.device.beyond_range(stands.share.head) {
                 let out = |value: f64| (range.low - value).max(value - range.high);
                 match all.iter_mut().find(|(known, _)| std::ptr::eq(*known, range)) {
                     Some((_, known)) if out(value) > out(*known) => *known = value,

@@ -1,0 +1,92 @@
+//! The command line: flags, streams and exit codes. Everything a command does, the library can do.
+
+use std::io::{self, IsTerminal, Write};
+use std::path::PathBuf;
+use std::process::ExitCode;
+
+use clap::{Parser, Subcommand};
+
+mod size;
+
+/// Exit code for input that cannot be used.
+const UNUSABLE: u8 = 2;
+
+/// Sizes the overflow drainage of low-slope roofs: from a limit on load or depth to ranked scuppers and overflow drains.
+#[derive(Debug, Parser)]
+#[command(
+    version,
+    about,
+    disable_help_subcommand = true,
+    after_help = "A project is a TOML file; README.md shows how to write one.\n\
+                  Results support, and do not replace, the adopted code and a licensed professional's review."
+)]
+struct Cli {
+    #[command(subcommand)]
+    command: Command,
+}
+
+#[derive(Debug, Subcommand)]
+enum Command {
+    Size(size::Args),
+}
+
+/// Why a command ends without a result.
+#[derive(Debug)]
+enum Failure {
+    /// A message for the user; exit code 2.
+    Message(String),
+    /// The reader of our output went away: not our fault, and nobody is there to be told.
+    PipeClosed,
+}
+
+impl From<io::Error> for Failure {
+    fn from(error: io::Error) -> Self {
+        match error.kind() {
+            io::ErrorKind::BrokenPipe => Self::PipeClosed,
+            _ => Self::Message(format!("error: cannot write: {error}")),
+        }
+    }
+}
+
+/// Runs the command that the arguments name.
+///
+/// Exit codes: 0 done, 1 an area has no layout, 2 the input or the flags cannot be used.
+pub fn run() -> ExitCode {
+    let cli = Cli::parse();
+    let done = match &cli.command {
+        Command::Size(args) => size::run(args),
+    };
+    match done {
+        Ok(code) => code,
+        Err(Failure::PipeClosed) => ExitCode::SUCCESS,
+        Err(Failure::Message(message)) => {
+            let _ = writeln!(io::stderr(), "{message}");
+            ExitCode::from(UNUSABLE)
+        }
+    }
+}
+
+/// Whether messages on stderr take colour: on a terminal, unless `NO_COLOR` is set.
+fn coloured_messages() -> bool {
+    io::stderr().is_terminal() && std::env::var_os("NO_COLOR").is_none_or(|value| value.is_empty())
+}
+
+/// Width of the reader's terminal in characters; that of a printed page where there is none.
+fn width() -> usize {
+    const PAGE: usize = 120;
+    const NARROWEST: usize = 60;
+    comfy_table::Table::new().width().map_or(PAGE, |width| usize::from(width).clamp(NARROWEST, PAGE))
+}
+
+/// Writes a result to a file, or to stdout.
+fn deliver(text: &str, file: Option<&PathBuf>) -> Result<(), Failure> {
+    match file {
+        Some(path) => std::fs::write(path, text)
+            .map_err(|error| Failure::Message(format!("error: cannot write `{}`: {error}", path.display()))),
+        None => {
+            let mut out = io::stdout().lock();
+            out.write_all(text.as_bytes())?;
+            Ok(out.flush()?)
+        }
+    }
+}

@@ -1,0 +1,96 @@
+//! `size`: rank the layouts that keep each area within its limits.
+
+use std::io::{self, Write};
+use std::path::PathBuf;
+use std::process::ExitCode;
+
+use clap::ValueEnum;
+
+use crate::input::{self, Project};
+use crate::report::{self, Format, Sized};
+use crate::search::{self, Outcome};
+
+use super::{Failure, coloured_messages, deliver, width};
+
+/// Rank the layouts that keep each area of a roof within its limits.
+///
+/// Every layout that the catalogs and the ranges of the project allow is tried, or excluded by a proven bound. Exit code 0:
+/// every area has a layout; 1: an area has none, and the report says why; 2: the input cannot be used.
+#[derive(Debug, clap::Args)]
+pub(super) struct Args {
+    /// The project file.
+    roof: PathBuf,
+    /// Form of the result.
+    #[arg(long, value_enum, default_value_t = Form::Table)]
+    format: Form,
+    /// Write the result to a file instead of stdout.
+    #[arg(long, value_name = "FILE")]
+    output: Option<PathBuf>,
+    /// Only this area; may be given several times.
+    #[arg(long, value_name = "NAME")]
+    area: Vec<String>,
+    /// How many layouts to list for each area, in place of the project's `keep`.
+    #[arg(long, value_name = "N", value_parser = clap::value_parser!(u32).range(1..=10_000))]
+    keep: Option<u32>,
+    /// List every layout, not only the best with the same number of each device.
+    #[arg(long)]
+    all: bool,
+    /// Write out the arithmetic of each area's first layout, as by hand.
+    #[arg(long)]
+    work: bool,
+}
+
+#[derive(Clone, Copy, Debug, ValueEnum)]
+enum Form {
+    /// Tables for reading.
+    Table,
+    /// One JSON document, SI, for other programs.
+    Json,
+    /// A schedule, one row for each group of each layout.
+    Csv,
+    /// Markdown.
+    Md,
+}
+
+pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
+    let project = input::read(&args.roof).map_err(|faults| Failure::Message(faults.render(coloured_messages())))?;
+    for warning in &project.warnings.0 {
+        let _ = writeln!(io::stderr(), "{}\n", warning.render(coloured_messages()));
+    }
+    let areas = wanted(args, &project)?;
+    let mut options = project.options.clone();
+    options.fold = !args.all;
+    if let Some(keep) = args.keep {
+        options.keep = keep as usize;
+    }
+    let answers = search::size(&project.roof, &options, &areas);
+    let sized =
+        Sized { roof: &project.roof, options: &options, assumed: &project.assumed, answers: &answers, work: args.work };
+    let format = match args.format {
+        Form::Table => Format::Table,
+        Form::Json => Format::Json,
+        Form::Csv => Format::Csv,
+        Form::Md => Format::Markdown,
+    };
+    deliver(&report::size(&sized, format, width()), args.output.as_ref())?;
+    let infeasible = answers.iter().any(|answer| matches!(answer.outcome, Outcome::Infeasible(_)));
+    Ok(if infeasible { ExitCode::from(1) } else { ExitCode::SUCCESS })
+}
+
+/// Indices of the areas asked for, in the order of the file; all of them where none is named.
+fn wanted(args: &Args, project: &Project) -> Result<Vec<usize>, Failure> {
+    let names = || project.roof.areas.iter().map(|area| area.name.as_str());
+    for asked in &args.area {
+        if !names().any(|name| name == asked) {
+            let near = input::nearest(asked, names()).map_or(String::new(), |near| format!("; did you mean `{near}`?"));
+            let all: Vec<_> = names().take(12).collect();
+            return Err(Failure::Message(format!(
+                "error: there is no area `{asked}` in {}{near}\n  = help: areas are {}",
+                args.roof.display(),
+                all.join(", ")
+            )));
+        }
+    }
+    let chosen = |name: &str| args.area.is_empty() || args.area.iter().any(|asked| asked == name);
+    Ok(names().enumerate().filter(|(_, name)| chosen(name)).map(|(index, _)| index).collect())
+}

@@ -1,0 +1,54 @@
+//! Files into the model: project, catalogs, ratings. Every fault with its place, all of them in one run.
+
+use std::path::Path;
+
+use crate::roof::Roof;
+use crate::search::Options;
+
+mod area;
+mod catalog;
+mod defaults;
+mod fault;
+mod file;
+mod grid;
+mod project;
+mod rating;
+mod section;
+
+pub use defaults::{DEFAULTS, Default};
+pub use fault::{Fault, Faults, Place, Severity, Source, Span};
+
+/// A project as its files give it.
+#[derive(Clone, Debug)]
+pub struct Project {
+    /// The roof, ready to be computed.
+    pub roof: Roof,
+    /// What is asked of the search.
+    pub options: Options,
+    /// What was taken where the files say nothing.
+    pub assumed: Vec<Assumed>,
+    /// What in the files is probably not meant; they can be used all the same.
+    pub warnings: Faults,
+}
+
+/// A default that was taken.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Assumed {
+    /// The default.
+    pub default: &'static Default,
+    /// Names of the areas for which it was taken; empty where it holds for the whole roof.
+    pub areas: Vec<String>,
+}
+
+/// Reads a project and all files that it names.
+///
+/// # Errors
+/// Every fault of every file, each with its place, what was found and what would pass.
+pub fn read(path: &Path) -> Result<Project, Faults> {
+    project::read(path)
+}
+
+/// The names of a list, for a message about one that is not among them: the nearest, where one is near.
+pub fn nearest<'n>(typed: &str, names: impl IntoIterator<Item = &'n str>) -> Option<&'n str> {
+    section::near(typed, names)
+}

@@ -1,0 +1,69 @@
+//! What is taken where a file says nothing, once: the code, the messages and the README's table read it here.
+
+use std::ops::RangeInclusive;
+
+use crate::search::Criterion;
+
+/// Most groups in one layout.
+pub(super) const MIX: u32 = 1;
+/// Layouts listed for each area.
+pub(super) const KEEP: u32 = 8;
+/// Least and most devices in one area.
+pub(super) const COUNT: RangeInclusive<u32> = 1..=8;
+/// Part of a wall that counts.
+pub(super) const WALL_SHARE: f64 = 0.5;
+/// Part of an area's demand that runs on to the one that receives from it.
+pub(super) const SHARE: f64 = 1.0;
+/// What layouts are ranked by.
+pub(super) const RANK_BY: [Criterion; 2] = [Criterion::Cost, Criterion::Load];
+
+/// One default: the key, what is taken, and what that means.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct Default {
+    /// The key, with the table it belongs to.
+    pub key: &'static str,
+    /// What is taken.
+    pub value: &'static str,
+    /// What that means, in words.
+    pub meaning: &'static str,
+}
+
+/// Every default, in the order of the files.
+pub static DEFAULTS: [Default; 11] = [
+    entry("search.rank_by", "cost, load", "the cheapest first; of equals the one with less load"),
+    entry("search.keep", "8", "eight layouts are listed for each area"),
+    entry("search.mix", "1", "all devices of a layout are of one size"),
+    entry("search.count", "1 to 8", "from one to eight devices in an area, all groups together"),
+    entry("case", "as designed", "one case: the layout as drawn, the storm as given"),
+    entry("area.wall", "0", "no wall sheds on the area"),
+    entry("area.wall_share", "0.5", "half of a wall counts"),
+    entry("area.edge", "unlimited", "openings may use any length of parapet"),
+    entry("area.gap", "0", "openings may stand side by side"),
+    entry("area.roof_at_wall", "0", "the roof at the parapet is as low as the low point"),
+    entry("receives.share", "1", "all that leaves the other area arrives"),
+];
+
+const fn entry(key: &'static str, value: &'static str, meaning: &'static str) -> Default {
+    Default { key, value, meaning }
+}
+
+/// The default of a key; the keys are those of [`DEFAULTS`].
+pub(super) fn default(key: &str) -> &'static Default {
+    DEFAULTS.iter().find(|default| default.key == key).unwrap_or(&DEFAULTS[0])
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn the_table_says_what_the_code_takes() {
+        let value = |key| default(key).value.to_string();
+        assert_eq!(value("search.mix"), MIX.to_string());
+        assert_eq!(value("search.keep"), KEEP.to_string());
+        assert_eq!(value("search.count"), format!("{} to {}", COUNT.start(), COUNT.end()));
+        assert_eq!(value("area.wall_share"), WALL_SHARE.to_string());
+        assert_eq!(value("receives.share"), SHARE.to_string());
+        assert_eq!(value("search.rank_by"), RANK_BY.map(Criterion::name).join(", "));
+    }
+}

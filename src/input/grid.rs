@@ -1,0 +1,77 @@
+//! Lengths given as one value, a list, or a range with a step.
+//!
+//! A range is walked in whole steps counted in whole nanometres: no running sum, and the last value belongs to it when it
+//! falls on the grid.
+
+use crate::units::Length;
+
+use super::section::{Cell, Keys};
+
+/// Most values that one grid may have, and most sizes in all catalogs.
+pub(super) const MOST: usize = 1_000_000;
+
+static RANGE: Keys = Keys { table: "a range", known: &["from", "to", "step"], unsupported: &[] };
+
+/// What values a grid may have.
+#[derive(Clone, Copy, PartialEq, Eq)]
+pub(super) enum Least {
+    /// Zero and more.
+    Zero,
+    /// Above zero only.
+    AboveZero,
+}
+
+/// The values of a grid, rising, each once; never empty.
+pub(super) fn lengths(cell: &Cell<'_>, least: Least) -> Option<Vec<Length>> {
+    let one = |cell: &Cell<'_>| match least {
+        Least::Zero => cell.length(),
+        Least::AboveZero => cell.positive_length(),
+    };
+    if cell.is_table() {
+        let range = cell.section(&RANGE)?;
+        let from_cell =
+            range.need("from", "write from, to and step: { from = \"6 in\", to = \"12 in\", step = \"1 in\" }");
+        let to_cell = range.need("to", "write from, to and step: { from = \"6 in\", to = \"12 in\", step = \"1 in\" }");
+        let step = range.need("step", "write from, to and step: { from = \"6 in\", to = \"12 in\", step = \"1 in\" }");
+        let (from_cell, to_cell) = (from_cell?, to_cell?);
+        let (from, to, step) = (one(&from_cell), one(&to_cell), step.and_then(|step| step.positive_length()));
+        let (from, to, step) = (from?.nm(), to?.nm(), step?.nm());
+        if from > to {
+            from_cell.at_fault(
+                format!("`from` stands above `to` in `{}`", cell.key),
+                "this is the greater",
+                "give the lesser value as `from`",
+            );
+            return None;
+        }
+        if step == 0 {
+            cell.at_fault(format!("the step of `{}` is less than a nanometre", cell.key), "", "give a wider step");
+            return None;
+        }
+        let steps = (to - from) / step;
+        if steps.unsigned_abs() >= MOST as u64 {
+            too_many(cell, steps.unsigned_abs() as usize + 1);
+            return None;
+        }
+        return Some((0..=steps).map(|index| Length::from_nm(from + index * step)).collect());
+    }
+    let items = cell.items();
+    if items.is_empty() {
+        cell.at_fault(format!("`{}` is an empty list", cell.key), "no value stands here", "give at least one value");
+        return None;
+    }
+    let values: Vec<Option<Length>> = items.iter().map(one).collect();
+    let mut values: Vec<Length> = values.into_iter().collect::<Option<_>>()?;
+    values.sort_by_key(|length| length.nm());
+    values.dedup();
+    Some(values)
+}
+
+/// Logs a grid that is too fine.
+pub(super) fn too_many(cell: &Cell<'_>, count: usize) {
+    cell.at_fault(
+        format!("`{}` makes {count} values; the search takes up to {MOST}", cell.key),
+        "too fine, or too wide",
+        "give a coarser step or a narrower range",
+    );
+}

@@ -1,0 +1,190 @@
+//! The answers as one JSON document: SI, with the unit in each key, all digits, versioned.
+
+use serde::Serialize;
+
+use crate::search::{Answer, Outcome, Placed, Ranked};
+use crate::units::Length;
+
+use super::words::Words;
+use super::{Sized, notes, ranking};
+
+#[derive(Serialize)]
+struct Document<'a> {
+    format: &'static str,
+    title: &'a str,
+    storm: Storm<'a>,
+    areas: Vec<Area<'a>>,
+    assumptions: Vec<String>,
+    cautions: Vec<String>,
+}
+
+#[derive(Serialize)]
+struct Storm<'a> {
+    intensity_m_s: f64,
+    duration_s: Option<f64>,
+    return_period_yr: Option<f64>,
+    source: Option<&'a str>,
+}
+
+#[derive(Serialize)]
+struct Area<'a> {
+    name: &'a str,
+    demand_m3_s: f64,
+    outcome: &'static str,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    why: Option<String>,
+    layouts: Vec<Layout<'a>>,
+}
+
+#[derive(Serialize)]
+struct Layout<'a> {
+    rank: usize,
+    cost: Option<f64>,
+    groups: Vec<Group<'a>>,
+    governing: Governing<'a>,
+    cases: Vec<Case<'a>>,
+    beyond_range: bool,
+    straight_line_excess: f64,
+    notes: Vec<String>,
+}
+
+#[derive(Serialize)]
+struct Group<'a> {
+    device: &'a str,
+    kind: &'static str,
+    width_m: Option<f64>,
+    height_m: Option<f64>,
+    count: u32,
+    set_height_m: f64,
+    set_height_from_m: f64,
+    set_height_to_m: f64,
+    law: &'static str,
+}
+
+#[derive(Serialize)]
+struct Governing<'a> {
+    case: &'a str,
+    limit: Option<&'static str>,
+    utilisation: Option<f64>,
+}
+
+#[derive(Serialize)]
+struct Case<'a> {
+    name: &'a str,
+    demand_m3_s: f64,
+    load_limit_pa: Option<f64>,
+    depth_limit_m: Option<f64>,
+    water_depth_m: Option<f64>,
+    load_pa: Option<f64>,
+    utilisation: Option<f64>,
+    groups: Vec<GroupState>,
+}
+
+#[derive(Serialize)]
+struct GroupState {
+    head_m: Option<f64>,
+    flow_m3_s: f64,
+    working: u32,
+    regime: &'static str,
+    freeboard_m: Option<f64>,
+}
+
+pub(super) fn document(sized: &Sized<'_, '_>) -> String {
+    let storm = &sized.roof.storm;
+    let document = Document {
+        format: "brimline size 1",
+        title: &sized.roof.title,
+        storm: Storm {
+            intensity_m_s: storm.intensity.m_per_s(),
+            duration_s: storm.duration.map(crate::units::Time::s),
+            return_period_yr: storm.return_period.map(crate::units::ReturnPeriod::years),
+            source: storm.source.as_deref(),
+        },
+        areas: sized.answers.iter().map(|answer| area(sized, answer)).collect(),
+        assumptions: notes::assumptions(sized),
+        cautions: notes::cautions(sized),
+    };
+    // Only text, finite numbers and lists are in it: nothing that JSON cannot hold.
+    let mut text = serde_json::to_string_pretty(&document).unwrap_or_default();
+    text.push('\n');
+    text
+}
+
+fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
+    let (outcome, why, layouts) = match &answer.outcome {
+        Outcome::Optimal(layouts) => ("optimal", None, &layouts[..]),
+        Outcome::Infeasible(why) => {
+            let words = Words(sized.roof.system);
+            ("infeasible", Some(ranking::infeasible(sized.roof, answer.area, why, words)), &[][..])
+        }
+    };
+    let layouts = layouts.iter().enumerate().map(|(index, ranked)| layout(sized, answer.area, index + 1, ranked));
+    Area {
+        name: &sized.roof.areas[answer.area].name,
+        demand_m3_s: sized.roof.demands[answer.area].m3_per_s(),
+        outcome,
+        why,
+        layouts: layouts.collect(),
+    }
+}
+
+fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranked<'_>) -> Layout<'a> {
+    let words = Words(sized.roof.system);
+    let mut remarks: Vec<String> =
+        ranked.beyond.iter().map(|&(range, value)| ranking::out_of_range(range, value, words)).collect();
+    if ranked.chord > notes::CHORD_TOLD {
+        remarks.push("straight lines between rated rows decide by more than 2 % of flow".into());
+    }
+    let cases = ranked.states.iter().enumerate().map(|(index, state)| {
+        let limits = sized.roof.areas[area].limits[index];
+        Case {
+            name: &sized.roof.cases[index].name,
+            demand_m3_s: state.demand.m3_per_s(),
+            load_limit_pa: limits.load.map(crate::units::Load::pa),
+            depth_limit_m: limits.depth.map(Length::m),
+            water_depth_m: state.water.map(|water| water.level.m()),
+            load_pa: state.water.map(|water| water.load.pa()),
+            utilisation: state.water.map(|water| water.governing.utilisation),
+            groups: state
+                .groups
+                .iter()
+                .map(|stands| GroupState {
+                    head_m: state.water.map(|_| stands.share.head.length().m()),
+                    flow_m3_s: stands.share.flow().m3_per_s(),
+                    working: stands.share.working,
+                    regime: stands.share.each.regime.name(),
+                    freeboard_m: stands.freeboard.map(Length::m),
+                })
+                .collect(),
+        }
+    });
+    Layout {
+        rank,
+        cost: ranked.cost.map(crate::units::Money::amount),
+        groups: ranked.groups.iter().map(group).collect(),
+        governing: Governing {
+            case: &sized.roof.cases[ranked.case].name,
+            limit: ranked.governing.map(|governing| governing.limit.name()),
+            utilisation: ranked.governing.map(|governing| governing.utilisation),
+        },
+        cases: cases.collect(),
+        beyond_range: !ranked.beyond.is_empty(),
+        straight_line_excess: ranked.chord,
+        notes: remarks,
+    }
+}
+
+fn group<'a>(placed: &Placed<'a>) -> Group<'a> {
+    let size = placed.group.size;
+    Group {
+        device: &size.tag,
+        kind: size.device.kind().name(),
+        width_m: size.device.width().map(Length::m),
+        height_m: size.device.height().map(Length::m),
+        count: placed.group.count,
+        set_height_m: placed.group.set_height.m(),
+        set_height_from_m: placed.from.m(),
+        set_height_to_m: placed.to.m(),
+        law: size.device.law().name,
+    }
+}

@@ -1,0 +1,278 @@
+//! What every reader of a report must know besides its numbers: the laws, the assumptions, the cautions of this very roof.
+
+use crate::device::{Kind, Place, Regime, Size};
+use crate::search::{Outcome, Ranked};
+use crate::units::{Area, Length, System};
+
+use super::Sized;
+use super::ranking::ranked_by;
+use super::words::{self, Words, list, trimmed};
+
+/// Excess of straight lines over logarithmic ones, as a part of the demand, from which it is told.
+pub(super) const CHORD_TOLD: f64 = 0.02;
+
+/// Head under which surface tension, membrane edges and levels decide: 1 in. Common practice.
+const LOW_HEAD: Length = Length::inches(1.0);
+/// Set height under which an overflow runs in ordinary storms: 2 in. ASCE 7-22 and training notes of the UPC, from memory.
+const LOW_SILL: Length = Length::inches(2.0);
+
+fn layouts<'a, 'r>(sized: &Sized<'a, 'r>) -> impl Iterator<Item = &'a Ranked<'r>> {
+    sized.answers.iter().flat_map(|answer| match &answer.outcome {
+        Outcome::Optimal(layouts) => &layouts[..],
+        Outcome::Infeasible(_) => &[],
+    })
+}
+
+fn sizes<'r>(sized: &Sized<'_, 'r>) -> Vec<&'r Size> {
+    let mut sizes: Vec<&Size> = Vec::new();
+    for placed in layouts(sized).flat_map(|layout| &layout.groups) {
+        if !sizes.iter().any(|known| known.tag == placed.group.size.tag) {
+            sizes.push(placed.group.size);
+        }
+    }
+    sizes
+}
+
+/// The devices that the layouts are made of, with their laws and sources; devices of one law in one line.
+pub(super) fn laws(sized: &Sized<'_, '_>, words: Words) -> Vec<String> {
+    let mut lines: Vec<(String, Vec<String>)> = Vec::new();
+    for size in sizes(sized) {
+        let law = size.device.law();
+        let form = if words.0 == System::Us { law.form_us } else { law.form_si };
+        let place = if size.place == Place::Interior { "inside the roof" } else { "in the parapet" };
+        let source = match (&size.source, size.device.kind()) {
+            (Some(source), _) => source.to_string(),
+            (None, Kind::Rated) => "not stated in the catalog".to_string(),
+            (None, _) => law.source.to_string(),
+        };
+        let line = format!("{place}. Law {}: {form}. Source: {source}.", law.name);
+        let device = format!("{} ({})", size.tag, size.device.kind());
+        match lines.iter_mut().find(|(known, _)| *known == line) {
+            Some((_, devices)) => devices.push(device),
+            None => lines.push((line, vec![device])),
+        }
+    }
+    if lines.is_empty() {
+        return vec!["No layout is listed.".into()];
+    }
+    lines.into_iter().map(|(line, devices)| format!("{}, {line}", list(&devices))).collect()
+}
+
+/// What was taken as given, and every default that was taken.
+pub(super) fn assumptions(sized: &Sized<'_, '_>) -> Vec<String> {
+    let words = Words(sized.roof.system);
+    let weight = match sized.roof.system {
+        System::Us => "Water weighs 62.4 lb/ft3: 5.2 psf for each inch of depth",
+        System::Si => "Water weighs 9.802 kN/m3 (62.4 lb/ft3): 0.0098 kPa for each mm of depth",
+    };
+    let mut lines = vec![
+        "The primary drains carry nothing.".to_string(),
+        format!("{weight}. Load = unit weight x (water depth + ponding head)."),
+        "Depths and set heights are above the low point of each area, where the primary inlet sits; water ponds level."
+            .into(),
+        "Flow is steady: no credit for water stored on the roof.".into(),
+        match sized.roof.system {
+            System::Us => {
+                "Rain runs off entirely, Q = i A; the practice constant 0.0104 (gpm, ft2, in/h) is 0.10 % higher."
+            }
+            System::Si => "Rain runs off entirely: Q = i A.",
+        }
+        .into(),
+        "Widths and heights are clear openings, after flashing and membrane.".into(),
+        format!(
+            "Layouts are ranked by {}; of layouts with the same number of each device the best is {}.",
+            ranked_by(&sized.options.rank_by),
+            if sized.options.fold { "listed" } else { "listed first" }
+        ),
+    ];
+    for assumed in sized.assumed {
+        let default = assumed.default;
+        let whom = if assumed.areas.is_empty() { String::new() } else { format!(" in {}", list(&assumed.areas)) };
+        lines.push(format!("Not given, taken as {}: `{}`{whom}; {}.", default.value, default.key, default.meaning));
+    }
+    if let Some(freeboard) = sized.options.freeboard {
+        lines.push(format!(
+            "At least {} is kept between the water and the top of every closed opening.",
+            words.size(freeboard)
+        ));
+    }
+    lines
+}
+
+/// The cautions that apply to this roof and these layouts.
+pub(super) fn cautions(sized: &Sized<'_, '_>) -> Vec<String> {
+    let mut lines = vec![
+        "This supports, and does not replace, the adopted code with its local amendments and the review of a licensed \
+         professional."
+            .to_string(),
+        "The limit is for rain alone: take dead load, equipment and ballast off the roof's capacity before it is given."
+            .to_string(),
+    ];
+    storm(sized, &mut lines);
+    structure(sized, &mut lines);
+    openings(sized, &mut lines);
+    cases(sized, &mut lines);
+    lines.push(
+        "Ice, snow, hail and leaves before an opening, and water driven along a parapet by wind, are in none of the formulas."
+            .into(),
+    );
+    lines.push(
+        "What follows a device is not checked here: a leader, conductor head or pipe that backs up raises the water. \
+         Overflow must discharge apart from the primary, where it is seen."
+            .into(),
+    );
+    lines
+}
+
+fn storm(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
+    let storm = &sized.roof.storm;
+    match storm.duration {
+        None => lines.push(
+            "The duration of the storm is not stated: a 1 h rate in place of the 15 min rate that load standards ask for \
+             halves the flow."
+                .into(),
+        ),
+        Some(duration) if duration.s() > 15.0 * 60.0 => lines.push(format!(
+            "The storm lasts {}; load standards ask for the 15 min rate, which is about twice the 1 h rate.",
+            words::duration(duration)
+        )),
+        Some(_) => {}
+    }
+    match storm.return_period {
+        None => lines.push("The return period of the storm is not stated.".into()),
+        Some(period) if period.years() < 100.0 => lines.push(format!(
+            "The storm is met or passed once in {} years; load standards ask for 100 years or more.",
+            trimmed(period.years(), 1)
+        )),
+        Some(_) => {}
+    }
+    if storm.source.is_none() {
+        lines.push("The source of the intensity is not stated.".into());
+    }
+}
+
+fn names<'a>(sized: &Sized<'a, '_>, wanted: impl Fn(&crate::roof::Catchment) -> bool) -> Vec<&'a str>
+where
+{
+    let areas: Vec<_> = sized.answers.iter().map(|answer| &sized.roof.areas[answer.area]).collect();
+    areas.into_iter().filter(|area| wanted(area)).map(|area| area.name.as_str()).collect()
+}
+
+fn structure(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
+    let without =
+        names(sized, |area| area.ponding_head.is_none() && area.limits.iter().any(|limits| limits.load.is_some()));
+    if !without.is_empty() {
+        lines.push(format!(
+            "No ponding head is given for {}: a roof that sags under water gathers more. On slopes under 1/4 in/ft (2 %) and \
+             flexible bays the framing must be checked for ponding.",
+            list(&without)
+        ));
+    }
+    let with = names(sized, |area| area.ponding_head.is_some());
+    if !with.is_empty() {
+        lines.push(format!(
+            "The ponding head of {} is a fixed figure: it holds only up to the load it was found for.",
+            list(&with)
+        ));
+    }
+    let walls = names(sized, |area| area.wall == Area::ZERO);
+    if !walls.is_empty() {
+        lines.push(format!(
+            "No wall is counted for {}: walls and higher roofs that shed on an area count only where they are given.",
+            list(&walls)
+        ));
+    }
+    let depths = names(sized, |area| area.limits.iter().any(|limits| limits.depth.is_some()));
+    if !depths.is_empty() {
+        lines.push(format!(
+            "A depth limit is held at the low point of {}: state it above that, not above the sill, the drain's rim or the \
+             roof at the wall.",
+            list(&depths)
+        ));
+    }
+    lines.push(
+        "Water is taken as level over each area: where it must run along a valley, a cricket or a gutter to the opening, \
+         the far end stands deeper."
+            .into(),
+    );
+}
+
+fn openings(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
+    let scuppers = sizes(sized).iter().any(|size| size.device.kind() != Kind::Rated);
+    if scuppers {
+        let thick: Vec<_> = sized
+            .answers
+            .iter()
+            .filter_map(|answer| {
+                let area = &sized.roof.areas[answer.area];
+                area.parapet
+                    .thickness
+                    .map(|thickness| format!("{} in {}", Words(sized.roof.system).size(thickness), area.name))
+            })
+            .collect();
+        let given = if thick.is_empty() { String::new() } else { format!(" (parapet {})", list(&thick)) };
+        lines.push(format!(
+            "The thin-plate law has no wall thickness and no end contraction: through a thick parapet{given} a scupper \
+             carries 13 to 20 % less, and a narrow one less still."
+        ));
+    }
+    let states = || {
+        layouts(sized).flat_map(|layout| {
+            layout.states.iter().flat_map(move |state| {
+                layout.groups.iter().zip(&state.groups).filter(|(_, stands)| stands.share.working > 0)
+            })
+        })
+    };
+    let met = |regime| states().any(|(_, stands)| stands.share.each.regime == regime);
+    if met(Regime::Orifice) {
+        lines.push("Some openings run full in some case: their flow then rises slowly with depth, and debris catches at the top.".into());
+    }
+    if met(Regime::TableHeld) {
+        lines.push("Some rated devices are read above the last row of their table, where its flow is held: nothing was measured there.".into());
+    }
+    if met(Regime::BelowTable) {
+        lines.push(
+            "Some rated devices are read below the first row of their table, where a weir's curve is taken.".into(),
+        );
+    }
+    if layouts(sized).any(|layout| !layout.beyond.is_empty()) {
+        lines.push(
+            "Layouts marked as beyond range rest on the equations outside the published scupper table (6 to 24 in wide, 4 to \
+             6 in high, heads of 1 to 8 in)."
+                .into(),
+        );
+    }
+    if states().any(|(_, stands)| {
+        let head = stands.share.head.length();
+        head > Length::ZERO && head < LOW_HEAD
+    }) {
+        lines.push(
+            "Some devices run under less than 1 in (25 mm) of head, where surface tension, the membrane's edge and the level \
+             of the sill decide: their flow there is uncertain."
+                .into(),
+        );
+    }
+    if layouts(sized).flat_map(|layout| &layout.groups).any(|placed| placed.group.set_height.nm() < LOW_SILL.nm()) {
+        lines.push(
+            "Some sills stand less than 2 in (50 mm) above the low point: they run in ordinary storms, and a blocked primary \
+             goes unnoticed."
+                .into(),
+        );
+    }
+    if sizes(sized).iter().any(|size| size.device.kind() == Kind::Rated) {
+        lines.push("A rating holds for the body, dome and dam that were tested, and for no other.".into());
+    }
+}
+
+fn cases(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
+    let cases = &sized.roof.cases;
+    if cases.iter().all(|case| case.blocked == 0) {
+        lines.push("No case blocks a device: a blocked overflow is not covered.".into());
+    }
+    if cases.iter().all(|case| case.sill_error == Length::ZERO && case.opening_loss == Length::ZERO) {
+        lines.push("No case covers sills built high or openings built narrow: each half inch of sill is 2.6 psf (13 mm: 0.12 kPa).".into());
+    }
+    if cases.iter().all(|case| case.rain <= 1.0) {
+        lines.push("No case has more rain than the design storm.".into());
+    }
+}

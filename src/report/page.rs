@@ -1,0 +1,175 @@
+//! A page of headings, paragraphs, tables and lists, drawn for a terminal or as Markdown.
+//!
+//! A report is written once, as blocks; what differs between the two is here and nowhere else.
+
+use comfy_table::{Cell, CellAlignment, ColumnConstraint, ContentArrangement, Table as Grid, Width, presets};
+
+/// One part of a page.
+#[derive(Clone, Debug, PartialEq)]
+pub(super) enum Block {
+    /// The title of the page.
+    Title(String),
+    /// The heading of a part.
+    Heading(String),
+    /// A paragraph.
+    Text(String),
+    /// Short texts one below another.
+    List(Vec<String>),
+    /// Lines whose columns stand under one another: a calculation.
+    Lines(Vec<(String, String)>),
+    /// A table.
+    Table(Table),
+}
+
+/// A table: its head, its rows, and which columns are numbers.
+#[derive(Clone, Debug, Default, PartialEq)]
+pub(super) struct Table {
+    pub(super) head: Vec<String>,
+    pub(super) rows: Vec<Vec<String>>,
+    pub(super) numbers: Vec<bool>,
+}
+
+impl Table {
+    /// A table of columns: head, whether it is of numbers, and the cells.
+    pub(super) fn of(columns: Vec<(String, bool, Vec<String>)>) -> Self {
+        let mut table = Self::default();
+        let height = columns.first().map_or(0, |(_, _, cells)| cells.len());
+        table.rows = vec![Vec::with_capacity(columns.len()); height];
+        for (head, numbers, cells) in columns {
+            table.head.push(head);
+            table.numbers.push(numbers);
+            for (row, cell) in table.rows.iter_mut().zip(cells) {
+                row.push(cell);
+            }
+        }
+        table
+    }
+
+    fn grid(&self, preset: comfy_table::TableStyle, width: Option<usize>) -> String {
+        let mut grid = Grid::new();
+        grid.load_style(preset);
+        // Colours and the terminal's own width are not asked for: the same input gives the same bytes.
+        grid.force_no_tty();
+        if let Some(width) = width {
+            grid.set_content_arrangement(ContentArrangement::Dynamic)
+                .set_width(u16::try_from(width).unwrap_or(u16::MAX));
+        }
+        grid.set_header(&self.head);
+        for row in &self.rows {
+            grid.add_row(row.iter().map(Cell::new));
+        }
+        for (index, &numbers) in self.numbers.iter().enumerate() {
+            let Some(column) = grid.column_mut(index) else { continue };
+            if numbers {
+                column.set_cell_alignment(CellAlignment::Right);
+                column.set_constraint(ColumnConstraint::ContentWidth);
+            } else {
+                column.set_constraint(ColumnConstraint::LowerBoundary(Width::Fixed(TEXT_COLUMN)));
+            }
+        }
+        grid.to_string()
+    }
+}
+
+/// Narrowest column of text, in characters.
+const TEXT_COLUMN: u16 = 12;
+
+/// Draws a page for a terminal so many characters wide.
+pub(super) fn text(blocks: &[Block], width: usize) -> String {
+    let mut out = String::new();
+    for block in blocks {
+        match block {
+            Block::Title(title) => {
+                out += &wrapped(title, "", "", width);
+                out += &format!("{}\n", "=".repeat(widest(title).min(width)));
+            }
+            Block::Heading(heading) => out += &format!("\n{heading}\n{}\n", "-".repeat(widest(heading).min(width))),
+            Block::Text(text) => out += &wrapped(text, "", "", width),
+            Block::List(items) => items.iter().for_each(|item| out += &wrapped(item, "- ", "  ", width)),
+            Block::Lines(lines) => {
+                let left = lines.iter().map(|(label, _)| widest(label)).max().unwrap_or(0);
+                for (label, line) in lines {
+                    let lead = format!("{label}{}  ", " ".repeat(left - widest(label)));
+                    out += &wrapped(line, &lead, &" ".repeat(left + 2), width);
+                }
+            }
+            Block::Table(table) => {
+                let grid = table.grid(presets::UTF8_FULL_CONDENSED, Some(width));
+                let lines: Vec<_> = grid.lines().map(str::trim_end).collect();
+                out += &format!("{}\n", lines.join("\n"));
+            }
+        }
+    }
+    out
+}
+
+/// Draws a page as Markdown.
+pub(super) fn markdown(blocks: &[Block]) -> String {
+    let mut out = String::new();
+    for block in blocks {
+        out += &match block {
+            Block::Title(title) => format!("# {title}\n\n"),
+            Block::Heading(heading) => format!("## {heading}\n\n"),
+            Block::Text(text) => format!("{text}\n\n"),
+            Block::List(items) => items.iter().map(|item| format!("- {item}\n")).collect::<String>() + "\n",
+            Block::Lines(lines) => {
+                let rows = lines.iter().map(|(label, line)| vec![label.clone(), line.clone()]).collect();
+                let head = vec!["Step".to_string(), "Arithmetic".to_string()];
+                let table = Table { head, rows, numbers: vec![false, false] };
+                format!("{}\n\n", table.grid(presets::ASCII_MARKDOWN, None))
+            }
+            Block::Table(table) => format!("{}\n\n", table.grid(presets::ASCII_MARKDOWN, None)),
+        };
+    }
+    out.truncate(out.trim_end().len());
+    out + "\n"
+}
+
+fn widest(text: &str) -> usize {
+    unicode_width::UnicodeWidthStr::width(text)
+}
+
+/// A text in lines no wider than `width`, the first led by `first` and the others by `rest`.
+fn wrapped(text: &str, first: &str, rest: &str, width: usize) -> String {
+    let mut out = String::from(first);
+    let mut used = widest(first);
+    let mut bare = true;
+    for word in text.split_whitespace() {
+        let wide = widest(word);
+        if !bare && used + 1 + wide > width {
+            out.push('\n');
+            out += rest;
+            used = widest(rest);
+            bare = true;
+        }
+        if !bare {
+            out.push(' ');
+            used += 1;
+        }
+        out += word;
+        used += wide;
+        bare = false;
+    }
+    out.push('\n');
+    out
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn a_page_in_both_forms() {
+        let table = Table::of(vec![
+            ("rank".into(), true, vec!["1".into(), "10".into()]),
+            ("layout".into(), false, vec!["two".into(), "three of them".into()]),
+        ]);
+        let page = [Block::Title("Roof".into()), Block::Text("one two three four".into()), Block::Table(table)];
+        assert_eq!(
+            markdown(&page),
+            "# Roof\n\none two three four\n\n| rank | layout        |\n|------|---------------|\n|    1 | two           |\n|   10 | three of them |\n"
+        );
+        let drawn = text(&page, 12);
+        assert!(drawn.starts_with("Roof\n====\none two\nthree four\n"), "{drawn}");
+    }
+}

@@ -1,0 +1,391 @@
+//! The report of `size`: for each area its demand and its limit in words, then the ranked layouts, or why there are none.
+
+use crate::hydraulics::limits::Range;
+use crate::roof::{Case, LimitKind, Limits, Roof, demand};
+use crate::rules::Misfit;
+use crate::search::{Answer, Criterion, Outcome, Ranked, Why};
+use crate::units::{Area, Length};
+
+use super::page::{Block, Table};
+use super::words::{self, Words, list, trimmed};
+use super::{Sized, notes, work};
+
+/// The mark behind a layout that leaves the published range of its law.
+const BEYOND: &str = "*";
+/// The mark behind a layout whose flow rests on straight lines between rated rows.
+const CHORD: &str = "~";
+
+pub(super) fn page(sized: &Sized<'_, '_>) -> Vec<Block> {
+    let words = Words(sized.roof.system);
+    let mut blocks = vec![
+        Block::Title(format!("{}: overflow drainage, primary drains blocked", sized.roof.title)),
+        Block::Text(storm(sized.roof, words)),
+    ];
+    let cases: Vec<_> = sized.roof.cases.iter().map(|case| case_in_words(case, words)).collect();
+    if sized.roof.cases.len() > 1 || sized.roof.cases[0] != Case::as_designed() {
+        blocks.push(Block::Text("Every layout withstands these cases:".into()));
+        blocks.push(Block::List(cases));
+    }
+    for answer in sized.answers {
+        area(sized, answer, words, &mut blocks);
+    }
+    blocks.push(Block::Heading("Devices".into()));
+    blocks.push(Block::List(notes::laws(sized, words)));
+    blocks.push(Block::Heading("Assumptions".into()));
+    blocks.push(Block::List(notes::assumptions(sized)));
+    blocks.push(Block::Heading("Cautions".into()));
+    blocks.push(Block::List(notes::cautions(sized)));
+    blocks
+}
+
+fn storm(roof: &Roof, words: Words) -> String {
+    let storm = &roof.storm;
+    let duration = storm.duration.map(|duration| format!("for {}", words::duration(duration)));
+    let period = storm.return_period.map(|period| format!("once in {} years", trimmed(period.years(), 1)));
+    let when: Vec<_> = duration.into_iter().chain(period).collect();
+    let when = if when.is_empty() { String::new() } else { format!(" ({})", when.join(", ")) };
+    let source = storm.source.as_ref().map_or(String::new(), |source| format!(" Source: {source}."));
+    format!("Storm: {}{when}.{source}", words.intensity(storm.intensity))
+}
+
+/// What a case does to the design.
+fn case_in_words(case: &Case, words: Words) -> String {
+    let mut parts = Vec::new();
+    match case.blocked {
+        0 => {}
+        1 => parts.push("the device that carries most carries nothing".to_string()),
+        many => parts.push(format!("the {many} devices that carry most carry nothing")),
+    }
+    if case.sill_error > Length::ZERO {
+        parts.push(format!("every sill stands {} higher", words.size(case.sill_error)));
+    }
+    if case.opening_loss > Length::ZERO {
+        parts.push(format!("{} is lost on each side of every scupper", words.size(case.opening_loss)));
+    }
+    let changed = |factor: f64| (factor - 1.0).abs() > 1e-12;
+    if changed(case.rain) {
+        parts.push(format!("rain times {}", trimmed(case.rain, 3)));
+    }
+    if changed(case.discharge) {
+        parts.push(format!("flow of every device times {}", trimmed(case.discharge, 3)));
+    }
+    if parts.is_empty() {
+        parts.push("as drawn, under the storm as given".into());
+    }
+    format!("{}: {}", case.name, list(&parts))
+}
+
+fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut Vec<Block>) {
+    let roof = sized.roof;
+    let catchment = &roof.areas[answer.area];
+    blocks.push(Block::Heading(catchment.name.clone()));
+    blocks.push(Block::Text(demand_in_words(roof, answer.area, words)));
+    blocks.push(Block::Text(limit_in_words(roof, answer.area, words)));
+    match &answer.outcome {
+        Outcome::Optimal(layouts) => {
+            ranking(sized, answer.area, layouts, words, blocks);
+            if sized.work {
+                blocks.push(Block::Text(format!("The first layout by hand, {}:", words.layout(&layouts[0]))));
+                blocks.push(Block::Lines(work::lines(roof, answer.area, &layouts[0], words)));
+            }
+        }
+        Outcome::Infeasible(why) => {
+            blocks.push(Block::Text(format!("No layout. {}", infeasible(roof, answer.area, why, words))));
+        }
+    }
+}
+
+/// What the area must pass, and the same by the constant that practice writes.
+fn demand_in_words(roof: &Roof, area: usize, words: Words) -> String {
+    let catchment = &roof.areas[area];
+    let catching = demand::catching(catchment);
+    let mut parts = vec![format!("{} of roof", words.area(catchment.area))];
+    if catchment.wall > Area::ZERO {
+        let share = trimmed(catchment.wall_share, 3);
+        parts.push(format!("{share} of {} of wall", words.area(catchment.wall)));
+    }
+    let mut text = format!(
+        "Demand {}: {} on {}",
+        words.flow(roof.demands[area]),
+        words.intensity(roof.storm.intensity),
+        list(&parts)
+    );
+    for receipt in &catchment.receives {
+        let share = if (receipt.share - 1.0).abs() < 1e-12 {
+            String::new()
+        } else {
+            format!("{} of ", trimmed(receipt.share, 3))
+        };
+        let (from, flow) = (&roof.areas[receipt.from].name, roof.demands[receipt.from]);
+        text += &format!(", and {share}the {} of {from}", words.flow(flow));
+    }
+    if roof.system == crate::units::System::Us {
+        let by_hand = 0.0104 * catching.to_ft2() * roof.storm.intensity.to_inches_per_hour();
+        text += &format!(
+            ". By hand 0.0104 x {} x {} = {} gpm{}",
+            words.bare_area(catching),
+            trimmed(roof.storm.intensity.to_inches_per_hour(), 3),
+            words::grouped(by_hand, 0),
+            if catchment.receives.is_empty() { "" } else { " for its own rain" }
+        );
+    }
+    text + "."
+}
+
+/// The limits in effect, case by case where they differ.
+fn limit_in_words(roof: &Roof, area: usize, words: Words) -> String {
+    let catchment = &roof.areas[area];
+    let ponding = catchment.ponding_head.unwrap_or(Length::ZERO);
+    let water = |limits: Limits| {
+        let level = roof.situation(area, 0);
+        let level = crate::roof::Situation { limits, ..level }.allowable_level();
+        format!("{}, water up to {}", words.limits(limits), words.depth(level))
+    };
+    let mut text = String::from("Limit: ");
+    let first = catchment.limits[0];
+    text += &water(first);
+    for (case, limits) in catchment.limits.iter().enumerate().skip(1) {
+        let before = catchment.limits[..case].iter().position(|known| known == limits);
+        if before.is_none() {
+            let alike: Vec<_> = (case..catchment.limits.len())
+                .filter(|&other| catchment.limits[other] == *limits)
+                .map(|other| format!("\"{}\"", roof.cases[other].name))
+                .collect();
+            text += &format!("; in {}: {}", list(&alike), water(*limits));
+        }
+    }
+    if ponding > Length::ZERO {
+        text += &format!("; a ponding head of {} counts in the load", words.size(ponding));
+    }
+    if let Some(height) = catchment.parapet.height {
+        text += &format!("; the parapet's top at {}", words.size(height));
+    }
+    if let Some(edge) = catchment.edge {
+        text += &format!("; {} of edge for openings", words.long(edge));
+    }
+    text + "."
+}
+
+/// One column of the ranking: its head, whether it is of numbers, its cells, and how a constant one is said.
+struct Column {
+    head: String,
+    numbers: bool,
+    cells: Vec<String>,
+    constant: &'static str,
+}
+
+fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Words, blocks: &mut Vec<Block>) {
+    let water = |layout: &Ranked<'_>| layout.states[layout.case].water;
+    let column = |head: String, numbers, constant, cell: &dyn Fn(&Ranked<'_>) -> String| Column {
+        head,
+        numbers,
+        cells: layouts.iter().map(cell).collect(),
+        constant,
+    };
+    let governing_limit =
+        |layout: &Ranked<'_>| layout.governing.map_or("overwhelmed", |governing| governing.limit.name());
+    let columns = [
+        column("cost".into(), true, "cost", &|layout| layout.cost.map_or("-".into(), words::money)),
+        column(format!("depth {}", words.small_unit()), true, "water depth", &|layout| {
+            water(layout).map_or("-".into(), |water| words.bare_depth(water.level))
+        }),
+        column(format!("load {}", words.load_unit()), true, "load", &|layout| {
+            water(layout).map_or("-".into(), |water| words.bare_load(water.load))
+        }),
+        column("used".into(), true, "part of the limit used", &|layout| {
+            layout.governing.map_or("-".into(), |governing| format!("{:.3}", governing.utilisation))
+        }),
+        column("case".into(), false, "governing case", &|layout| sized.roof.cases[layout.case].name.clone()),
+        column("by".into(), false, "governing limit", &|layout| governing_limit(layout).to_string()),
+        column(format!("set height {}", words.small_unit()), false, "set height may run", &|layout| {
+            words.window(&layout.groups)
+        }),
+    ];
+    let mut kept = vec![
+        ("rank".to_string(), true, (1..=layouts.len()).map(|rank| rank.to_string()).collect()),
+        ("layout".to_string(), false, layouts.iter().map(|layout| marked(layout, words)).collect()),
+    ];
+    let mut constants = Vec::new();
+    for column in columns {
+        let same = column.cells.iter().all(|cell| *cell == column.cells[0]);
+        let without = column.cells[0] == "-";
+        if same && layouts.len() > 1 || same && without {
+            let unit = column.head.rsplit_once(' ').map_or(String::new(), |(_, unit)| format!(" {unit}"));
+            if !without {
+                constants.push(format!("{} {}{unit}", column.constant, column.cells[0]));
+            }
+        } else {
+            kept.push((column.head, column.numbers, column.cells));
+        }
+    }
+    blocks.push(Block::Table(Table::of(kept)));
+    let several = sized.roof.cases.len() > 1;
+    let mut under = Vec::new();
+    if !constants.is_empty() {
+        under.push(format!("The same in every row: {}.", constants.join("; ")));
+    }
+    if several && area == sized.answers[0].area {
+        under.push(
+            "Depth, load and part used are those of the governing case, the one that uses most of its limit.".into(),
+        );
+    }
+    if !under.is_empty() {
+        blocks.push(Block::Text(under.join(" ")));
+    }
+    for text in marks(layouts, words) {
+        blocks.push(Block::Text(text));
+    }
+}
+
+fn marked(layout: &Ranked<'_>, words: Words) -> String {
+    let mut text = words.layout(layout);
+    if !layout.beyond.is_empty() {
+        text += &format!(" {BEYOND}");
+    }
+    if layout.chord > notes::CHORD_TOLD {
+        text += &format!(" {CHORD}");
+    }
+    text
+}
+
+fn marks(layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
+    let mut texts = Vec::new();
+    let mut beyond: Vec<(&Range, f64)> = Vec::new();
+    for &(range, value) in layouts.iter().flat_map(|layout| &layout.beyond) {
+        let low = value < range.low;
+        match beyond.iter_mut().find(|(known, other)| std::ptr::eq(*known, range) && (*other < range.low) == low) {
+            Some((_, known)) => *known = if low { known.min(value) } else { known.max(value) },
+            None => beyond.push((range, value)),
+        }
+    }
+    if !beyond.is_empty() {
+        let parts: Vec<_> = beyond.iter().map(|&(range, value)| out_of_range(range, value, words)).collect();
+        texts.push(format!("{BEYOND} beyond the published scupper table, as far as {}.", list(&parts)));
+    }
+    let most = layouts.iter().map(|layout| layout.chord).fold(0.0, f64::max);
+    if most > notes::CHORD_TOLD {
+        texts.push(format!(
+            "{CHORD} straight lines between rated rows give up to {} % more flow than a weir's curve through them would.",
+            trimmed(most * 100.0, 1)
+        ));
+    }
+    texts
+}
+
+/// A value that lies outside a range, and the end that it passes.
+pub(super) fn out_of_range(range: &Range, value: f64, words: Words) -> String {
+    let shown = |value: f64| words.depth(Length::from_m(value));
+    let end = |value: f64| words.size(Length::from_m(value));
+    if value < range.low {
+        format!("{} {} under {}", range.what, shown(value), end(range.low))
+    } else {
+        format!("{} {} over {}", range.what, shown(value), end(range.high))
+    }
+}
+
+/// Why there is no layout, in a few sentences.
+pub(super) fn infeasible(roof: &Roof, area: usize, why: &Why<'_>, words: Words) -> String {
+    let name = &roof.areas[area].name;
+    match why {
+        Why::NothingStands { misfits } => {
+            let mut told: Vec<String> = Vec::new();
+            let mut tags: Vec<&str> = Vec::new();
+            for (size, misfit) in misfits {
+                if !tags.contains(&&*size.tag) {
+                    tags.push(&size.tag);
+                    told.push(misfit_in_words(&words.name(size), misfit, words));
+                }
+            }
+            format!("Nothing in the catalogs can stand in {name}: {}.", told.join("; "))
+        }
+        Why::NothingFits { least } => {
+            let edge = roof.areas[area].edge.map_or("the area".into(), |edge| format!("{} of edge", words.long(edge)));
+            format!("{name} asks for at least {least} devices, and no {least} of the catalogs' sizes fit {edge}.")
+        }
+        Why::Limits { best, alone, together } => limits_not_held(roof, area, best, alone, together, words),
+        Why::Freeboard { asked, best } => {
+            let reached = best.as_ref().map_or(String::new(), |(kept, layout)| {
+                format!(": the best keeps {} with {}", words.depth(*kept), words.layout(layout))
+            });
+            format!("Layouts hold {name} under its limits, but none with {} of freeboard{reached}.", words.size(*asked))
+        }
+    }
+}
+
+fn limits_not_held(
+    roof: &Roof,
+    area: usize,
+    best: &Ranked<'_>,
+    alone: &[usize],
+    together: &[usize],
+    words: Words,
+) -> String {
+    let name = &roof.areas[area].name;
+    let situation = roof.situation(area, best.case);
+    let case = |case: usize| format!("\"{}\"", roof.cases[case].name);
+    let Some(governing) = best.governing else {
+        return format!(
+            "Nothing here carries the {} of {name} in {}: every layout of rated devices is overwhelmed, its tables at \
+             their end, as is {}.",
+            words.flow(situation.demand),
+            case(best.case),
+            words.layout(best)
+        );
+    };
+    let water = best.states[best.case].water;
+    let reached = water.map_or(String::new(), |water| match governing.limit {
+        LimitKind::Load => words.load(water.load),
+        LimitKind::Depth | LimitKind::Parapet => words.depth(water.level),
+    });
+    let limit = words.limit(governing.limit, situation.limits, situation.parapet);
+    let mut text = format!(
+        "Nothing here holds {name} under {limit} in {}: the best reaches {reached} with {}.",
+        case(best.case),
+        words.layout(best)
+    );
+    let others: Vec<_> = alone.iter().filter(|&&other| other != best.case).map(|&other| case(other)).collect();
+    if !others.is_empty() {
+        text += &format!(" Nor can {} be held, even alone.", list(&others));
+    }
+    if !together.is_empty() {
+        let names: Vec<_> = together.iter().map(|&other| case(other)).collect();
+        text += &format!(" Each case can be held alone, but not {} together.", list(&names));
+    }
+    let highest = words.depth(situation.allowable_level());
+    let sills = best.groups.iter().map(|placed| placed.from).fold(Length::from_m(f64::INFINITY), Length::min);
+    if situation.allowable_level() <= sills {
+        text += &format!(" The limit allows water up to {highest}, which is not above the lowest sill.");
+    }
+    text
+}
+
+fn misfit_in_words(size: &str, misfit: &Misfit, words: Words) -> String {
+    let between = |(low, high): (Length, Length)| {
+        if low == high { words.size(low) } else { format!("{} to {}", words.bare_size(low), words.size(high)) }
+    };
+    match misfit {
+        Misfit::Kind { found } => format!("{size} is a {found}, which the area does not take"),
+        Misfit::SetHeight { own, area } => {
+            format!("{size} stands at {} only, the area asks for {}", between(*own), between(*area))
+        }
+        Misfit::RoofAtWall { highest, roof } => format!(
+            "{size} would stand at {} at most, below the roof at the parapet at {}",
+            words.size(*highest),
+            words.size(*roof)
+        ),
+        Misfit::Parapet { top, parapet } => format!(
+            "the top of {size} at its lowest, {}, is not below the parapet's top at {}",
+            words.size(*top),
+            words.size(*parapet)
+        ),
+        Misfit::Edge { edge, .. } if *edge == Length::ZERO => format!("{size} needs edge, and there is none"),
+        Misfit::Edge { width, edge } => {
+            format!("{size} is {} wide, the edge {}", words.size(*width), words.size(*edge))
+        }
+    }
+}
+
+/// The criteria of a ranking, in words.
+pub(super) fn ranked_by(criteria: &[Criterion]) -> String {
+    criteria.iter().map(|criterion| criterion.name()).collect::<Vec<_>>().join(", then ")
+}

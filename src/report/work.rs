@@ -1,0 +1,247 @@
+//! The arithmetic of one layout, from rain to load, as one would write it by hand.
+
+use crate::device::{Device, Regime};
+use crate::roof::layout::GroupState;
+use crate::roof::{Roof, Situation, demand};
+use crate::search::{Placed, Ranked};
+use crate::units::{Area, Length, System};
+
+use super::words::{Words, grouped, trimmed};
+
+/// Each step with its arithmetic.
+pub(super) fn lines(roof: &Roof, area: usize, layout: &Ranked<'_>, words: Words) -> Vec<(String, String)> {
+    let mut lines = vec![catching(roof, area, words)];
+    for (case, state) in layout.states.iter().enumerate() {
+        let situation = roof.situation(area, case);
+        let name = &situation.case.name;
+        lines.push((format!("{name}: demand"), flow_demanded(roof, area, &situation, words)));
+        lines.push((format!("{name}: level allowed"), level_allowed(&situation, words)));
+        let Some(water) = state.water else {
+            lines.push((format!("{name}: level"), "none: every table is at its end".into()));
+            continue;
+        };
+        lines.push((
+            format!("{name}: level"),
+            format!(
+                "{} above the low point, found so that the flows below add up to the demand",
+                fine(words, water.level)
+            ),
+        ));
+        for (placed, stands) in layout.groups.iter().zip(&state.groups) {
+            lines.push((
+                format!("{name}: {}", words.name(placed.group.size)),
+                group(placed, stands, &situation, water.level, words),
+            ));
+        }
+        let flows: Vec<_> =
+            state.groups.iter().map(|stands| fine_flow(words, stands.share.flow().m3_per_s())).collect();
+        let total: f64 = state.groups.iter().map(|stands| stands.share.flow().m3_per_s()).sum();
+        lines.push((
+            format!("{name}: sum"),
+            format!("{} = {} {}", flows.join(" + "), fine_flow(words, total), flow_unit(words)),
+        ));
+        lines.push((format!("{name}: load"), load(&situation, water.level, water.governing.utilisation, words)));
+    }
+    lines
+}
+
+fn us(words: Words) -> bool {
+    words.0 == System::Us
+}
+
+fn flow_unit(words: Words) -> &'static str {
+    if us(words) { "gpm" } else { "l/s" }
+}
+
+/// A flow with a digit more than a table shows, so that sums can be checked.
+fn fine_flow(words: Words, m3_per_s: f64) -> String {
+    let flow = crate::units::Flow::from_m3_per_s(m3_per_s);
+    if us(words) { grouped(flow.to_gpm(), 1) } else { grouped(m3_per_s * 1000.0, 3) }
+}
+
+/// A depth with a digit more than a table shows.
+fn fine(words: Words, depth: Length) -> String {
+    format!("{} {}", fine_bare(words, depth), words.small_unit())
+}
+
+fn fine_bare(words: Words, depth: Length) -> String {
+    grouped(words.small(depth), if us(words) { 3 } else { 1 })
+}
+
+fn catching(roof: &Roof, area: usize, words: Words) -> (String, String) {
+    let catchment = &roof.areas[area];
+    let total = words.area(demand::catching(catchment));
+    let text = if catchment.wall > Area::ZERO {
+        format!(
+            "A = {} + {} x {} = {total}",
+            words.bare_area(catchment.area),
+            trimmed(catchment.wall_share, 3),
+            words.bare_area(catchment.wall)
+        )
+    } else {
+        format!("A = {total}")
+    };
+    ("rain falls on".into(), text)
+}
+
+fn flow_demanded(roof: &Roof, area: usize, situation: &Situation<'_>, words: Words) -> String {
+    let catchment = &roof.areas[area];
+    let bare = words.bare_area(demand::catching(catchment));
+    let rain = roof.storm.intensity;
+    let mut sum = if us(words) {
+        format!("0.0103896 x {bare} x {}", trimmed(rain.to_inches_per_hour(), 3))
+    } else {
+        format!("{bare} x {} / 3600", trimmed(rain.m_per_s() * 3.6e6, 2))
+    };
+    for receipt in &catchment.receives {
+        let from = fine_flow(words, roof.demands[receipt.from].m3_per_s());
+        sum += &format!(" + {} x {from}", trimmed(receipt.share, 3));
+    }
+    let factor = situation.case.rain;
+    let sum = if (factor - 1.0).abs() > 1e-12 { format!("{} x ({sum})", trimmed(factor, 3)) } else { sum };
+    let by_practice = if us(words) && catchment.receives.is_empty() {
+        let flow = 0.0104 * demand::catching(catchment).to_ft2() * rain.to_inches_per_hour() * factor;
+        format!(" (with 0.0104: {} gpm)", grouped(flow, 1))
+    } else {
+        String::new()
+    };
+    format!("Q = {sum} = {} {}{by_practice}", fine_flow(words, situation.demand.m3_per_s()), flow_unit(words))
+}
+
+/// Weight of a unit of depth, in the project's units.
+fn weight(words: Words) -> &'static str {
+    if us(words) { "5.2" } else { "0.0098023" }
+}
+
+fn level_allowed(situation: &Situation<'_>, words: Words) -> String {
+    let mut parts = Vec::new();
+    if let Some(load) = situation.limits.load {
+        let given = trimmed(words.in_load_unit(load), 3);
+        let less = if situation.ponding_head > Length::ZERO {
+            format!(" - {}", words.bare_size(situation.ponding_head))
+        } else {
+            String::new()
+        };
+        let level = crate::roof::depth_of(load) - situation.ponding_head;
+        parts.push(format!("{given} / {}{less} = {} by load", weight(words), fine(words, level)));
+    }
+    if let Some(depth) = situation.limits.depth {
+        parts.push(format!("{} by depth", words.size(depth)));
+    }
+    if let Some(parapet) = situation.parapet {
+        parts.push(format!("{} by the parapet's top", words.size(parapet)));
+    }
+    parts.join("; ")
+}
+
+fn group(placed: &Placed<'_>, stands: &GroupState, situation: &Situation<'_>, level: Length, words: Words) -> String {
+    let size = placed.group.size;
+    let (device, _) = size.device.narrowed(situation.case.opening_loss);
+    let head = stands.share.head.length();
+    let working = stands.share.working;
+    let blocked = placed.group.count - working;
+    let mut text = sill(placed, stands, words);
+    text += &format!("H = {} - {} = {}", fine_bare(words, level), fine_bare(words, stands.sill), fine(words, head));
+    let each = stands.share.each.flow.m3_per_s();
+    let reduced = if (situation.case.discharge - 1.0).abs() > 1e-12 {
+        format!(" x {}", trimmed(situation.case.discharge, 3))
+    } else {
+        String::new()
+    };
+    let form = form(&device, stands.share.each.regime, head, words);
+    text += &format!("; {form}{reduced} = {} {}", fine_flow(words, each), flow_unit(words));
+    let out = if blocked > 0 { format!(", {blocked} blocked") } else { String::new() };
+    text += &format!("; x {working} working{out} = {}", fine_flow(words, stands.share.flow().m3_per_s()));
+    if let Some(freeboard) = stands.freeboard {
+        text += &format!("; top of the opening {} above the water", words.depth(freeboard));
+    }
+    text
+}
+
+/// The sill as the case leaves it, where that differs from the drawing.
+fn sill(placed: &Placed<'_>, stands: &GroupState, words: Words) -> String {
+    let rise = stands.sill - placed.group.set_height;
+    if rise.nm() == 0 {
+        return String::new();
+    }
+    format!(
+        "sill {} + {} = {}; ",
+        words.bare_size(placed.group.set_height),
+        words.bare_size(rise),
+        words.size(stands.sill)
+    )
+}
+
+/// The equation with its numbers.
+fn form(device: &Device, regime: Regime, head: Length, words: Words) -> String {
+    let shown = |length: Length| if us(words) { fine_bare(words, length) } else { grouped(length.m(), 4) };
+    let size = |length: Length| if us(words) { words.bare_size(length) } else { trimmed(length.m(), 4) };
+    let (weir, orifice, unit) = if us(words) { ("2.9", "4.3", "") } else { ("1779.4", "2638.4", "") };
+    let width = device.width().unwrap_or(Length::ZERO);
+    match (device, regime) {
+        (_, Regime::Dry) => "dry, q".into(),
+        (_, Regime::Shut) => "shut by the loss, q".into(),
+        (Device::Closed { height, .. }, Regime::Orifice) => format!(
+            "runs full, q = {orifice} x {} x {} x sqrt({} - {}/2){unit}",
+            size(width),
+            size(*height),
+            shown(head),
+            size(*height)
+        ),
+        (Device::Open { .. } | Device::Closed { .. }, _) => {
+            format!("q = {weir} x {} x {}^1.5{unit}", size(width), shown(head))
+        }
+        (Device::Rated { rating, .. }, _) => rated(rating.rows(), regime, head, words),
+    }
+}
+
+fn rated(rows: &[(Length, crate::units::Flow)], regime: Regime, head: Length, words: Words) -> String {
+    let flow = |flow: crate::units::Flow| fine_flow(words, flow.m3_per_s());
+    let at = rows.partition_point(|&(row, _)| row < head);
+    match regime {
+        Regime::BelowTable => {
+            let (first, least) = rows[0];
+            format!(
+                "below the table, q = {} x ({} / {})^1.5",
+                flow(least),
+                fine_bare(words, head),
+                words.bare_size(first)
+            )
+        }
+        Regime::TableHeld => {
+            format!("above the table's last row at {}, its flow held, q", words.size(rows[rows.len() - 1].0))
+        }
+        _ if at == 0 || at == rows.len() => "at a row of the table, q".into(),
+        _ => {
+            let ((low, less), (high, more)) = (rows[at - 1], rows[at]);
+            format!(
+                "between rows, q = {} + ({} - {}) / ({} - {}) x ({} - {})",
+                flow(less),
+                fine_bare(words, head),
+                words.bare_size(low),
+                words.bare_size(high),
+                words.bare_size(low),
+                flow(more),
+                flow(less)
+            )
+        }
+    }
+}
+
+fn load(situation: &Situation<'_>, level: Length, utilisation: f64, words: Words) -> String {
+    let depth = fine_bare(words, level);
+    let weighed = if situation.ponding_head > Length::ZERO {
+        format!("({depth} + {})", words.bare_size(situation.ponding_head))
+    } else {
+        depth
+    };
+    let governing = situation.governing(level);
+    let limit = words.limit(governing.limit, situation.limits, situation.parapet);
+    format!(
+        "R = {} x {weighed} = {}; {} governs: {:.3} of {limit}",
+        weight(words),
+        words.load(situation.load(level)),
+        governing.limit.name(),
+        utilisation
+    )
+}
