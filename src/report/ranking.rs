@@ -209,7 +209,7 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
     for column in columns {
         let same = column.cells.iter().all(|cell| *cell == column.cells[0]);
         let without = column.cells[0] == "-";
-        if same && layouts.len() > 1 || same && without {
+        if same && (layouts.len() > 1 || without) {
             let unit = column.head.rsplit_once(' ').map_or(String::new(), |(_, unit)| format!(" {unit}"));
             if !without {
                 constants.push(format!("{} {}{unit}", column.constant, column.cells[0]));

@@ -65,22 +65,30 @@ pub fn pool(groups: &[Group<'_>], situation: &Situation<'_>) -> Pool {
     Pool { outlets: groups.iter().map(outlet).collect(), blocked: case.blocked, discharge: case.discharge }
 }
 
+/// Top of a group's opening as it stands in a case, above the low point; none where it has no top.
+///
+/// A loss that shuts an opening leaves its top under its sill: water that keeps under it keeps under the opening.
+pub fn top(group: &Group<'_>, situation: &Situation<'_>) -> Option<Length> {
+    let case = situation.case;
+    group.size.device.height().map(|height| (group.set_height + height) + case.sill_error - case.opening_loss)
+}
+
 /// The groups in a case: level, load, and what each group carries.
 pub fn state(groups: &[Group<'_>], situation: &Situation<'_>) -> CaseState {
     let pool = pool(groups, situation);
     // Device flows are finite at every finite level, so the solver has no reason to refuse.
     let level = pool.level(situation.demand).unwrap_or(None);
     let shares = pool.shares(level.unwrap_or(Length::from_m(DROWNED)));
-    let group = |(outlet, share): (&Outlet, Share)| GroupState {
+    let group = |((outlet, group), share): ((&Outlet, &Group<'_>), Share)| GroupState {
         share,
         sill: outlet.sill,
-        freeboard: level.and_then(|level| outlet.device.height().map(|height| outlet.sill + height - level)),
+        freeboard: level.and_then(|level| top(group, situation).map(|top| top - level)),
     };
     let water = |level| Water { level, load: situation.load(level), governing: situation.governing(level) };
     CaseState {
         demand: situation.demand,
         water: level.map(water),
-        groups: pool.outlets.iter().zip(shares).map(group).collect(),
+        groups: pool.outlets.iter().zip(groups).zip(shares).map(group).collect(),
     }
 }
 
@@ -123,7 +131,7 @@ pub fn holds(groups: &[Group<'_>], situation: &Situation<'_>, asked: Asked) -> b
 /// What the groups can carry at the highest level allowed, less the demand, m3/s.
 fn spare(groups: &[Group<'_>], situation: &Situation<'_>, asked: Asked) -> f64 {
     let pool = pool(groups, situation);
-    let tops = pool.outlets.iter().filter_map(|outlet| outlet.device.height().map(|height| outlet.sill + height));
+    let tops = groups.iter().filter_map(|group| top(group, situation));
     let ceiling = asked.freeboard.and_then(|freeboard| tops.map(|top| top - freeboard).reduce(Length::min));
     let level = ceiling.map_or(situation.allowable_level(), |ceiling| ceiling.min(situation.allowable_level()));
     (pool.capacity(level) - situation.demand).m3_per_s()

@@ -82,6 +82,9 @@ impl Found {
                 }
                 Criterion::Utilisation => None,
                 Criterion::SetHeight => {
+                    // Lifting an opening lifts its top, so the class's ceiling does not bind here.
+                    let allowed: Vec<_> =
+                        problem.situations.iter().map(crate::roof::Situation::allowable_level).collect();
                     let least = Length::from_nm(levels.set_height);
                     let stands = |highest: Length| highest.nm() >= levels.set_height;
                     let height = |low: Length, highest| stands(highest).then_some(low.max(least));

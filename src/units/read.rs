@@ -254,11 +254,12 @@ impl Fault {
             Self::NoUnit { found, needs } => {
                 format!("write \"{} {}\"; {} would pass", found, needs.units()[0].0[0], would_pass(*needs))
             }
-            Self::WrongDimension { needs, .. } => format!("{} would pass", would_pass(*needs)),
             Self::UnknownUnit { near: Some(near), needs, .. } => {
                 format!("did you mean `{near}`? {} would pass", would_pass(*needs))
             }
-            Self::UnknownUnit { near: None, needs, .. } => format!("{} would pass", would_pass(*needs)),
+            Self::WrongDimension { needs, .. } | Self::UnknownUnit { near: None, needs, .. } => {
+                format!("{} would pass", would_pass(*needs))
+            }
             Self::NotAPrice { per, .. } => {
                 format!(
                     "write an amount, a slash and a unit: \"14 / {}\"; {} would pass",

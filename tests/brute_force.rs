@@ -1,0 +1,340 @@
+//! The search against trying everything: random small roofs, every layout, no bound, the same list to the last key.
+//!
+//! What is tried here is written from the rules of the search alone: which layouts fit, which hold every case, in which order
+//! they rank. Capacities and levels are the library's, so that equal layouts have equal keys; the physics behind them is
+//! checked by other means in `physics.rs`.
+
+use std::cmp::Ordering;
+use std::collections::HashSet;
+use std::sync::Arc;
+
+use brimline::device::{Device, Kind, Place, Rating, Size};
+use brimline::roof::layout::{self, Asked, Group, Liftable};
+use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm};
+use brimline::search::{self, Criterion, Options, Outcome};
+use brimline::units::{Area, Flow, Intensity, Length, Load, Money, System};
+
+/// A small generator of its own, so that a failing seed can be run again anywhere.
+struct Dice(u64);
+
+impl Dice {
+    fn next(&mut self) -> u64 {
+        self.0 ^= self.0 << 13;
+        self.0 ^= self.0 >> 7;
+        self.0 ^= self.0 << 17;
+        self.0.wrapping_mul(0x2545_f491_4f6c_dd1d) >> 33
+    }
+
+    fn upto(&mut self, most: u64) -> u64 {
+        self.next() % (most + 1)
+    }
+
+    fn pick<T: Copy>(&mut self, from: &[T]) -> T {
+        from[self.upto(from.len() as u64 - 1) as usize]
+    }
+
+    fn one_in(&mut self, many: u64) -> bool {
+        self.upto(many - 1) == 0
+    }
+
+    fn inches(&mut self, from: u64, to: u64) -> Length {
+        Length::inches((from + self.upto(to - from)) as f64).max(Length::ZERO)
+    }
+}
+
+fn on_grid(length: Length) -> Length {
+    Length::from_nm(length.nm())
+}
+
+fn sizes(dice: &mut Dice) -> Vec<Size> {
+    let tags: Vec<Arc<str>> = ["A", "B", "C"].into_iter().map(Arc::from).collect();
+    let count = 2 + dice.upto(4);
+    let mut sizes: Vec<Size> = (0..count)
+        .map(|_| {
+            let kind = dice.upto(3);
+            let width = on_grid(dice.inches(4, 16));
+            let (device, tag, place) = match kind {
+                0 => (Device::Open { width }, 0, Place::Edge),
+                1 | 2 => (Device::Closed { width, height: on_grid(dice.inches(2, 5)) }, 1, Place::Edge),
+                _ => {
+                    let first = 20.0 + dice.upto(40) as f64;
+                    let rows: Vec<_> = (1..=3)
+                        .map(|row| (on_grid(Length::inches(f64::from(row))), Flow::gpm(first * f64::from(row) * 1.4)))
+                        .collect();
+                    let rating = Arc::new(Rating::new(&rows).expect("rises"));
+                    let width = dice.one_in(2).then_some(width);
+                    let place = if dice.one_in(2) { Place::Edge } else { Place::Interior };
+                    (Device::Rated { width, rating }, 2, place)
+                }
+            };
+            let own = dice.one_in(4).then(|| {
+                let mut heights = vec![on_grid(dice.inches(1, 3)), on_grid(dice.inches(2, 5))];
+                heights.sort_by_key(|height| height.nm());
+                heights.dedup();
+                Arc::from(heights)
+            });
+            Size {
+                tag: Arc::clone(&tags[tag]),
+                device,
+                place,
+                price: Some(Money::nearest(100.0 * (1 + dice.upto(5)) as f64)),
+                set_heights: own,
+                source: None,
+            }
+        })
+        .collect();
+    sizes.sort_by(|a, b| a.tag.cmp(&b.tag));
+    sizes
+}
+
+fn cases(dice: &mut Dice) -> Vec<Case> {
+    let count = 1 + dice.upto(2);
+    (0..count)
+        .map(|index| Case {
+            name: format!("case {index}"),
+            blocked: dice.pick(&[0, 0, 1, 2]),
+            sill_error: on_grid(Length::inches(dice.pick(&[0.0, 0.0, 0.5]))),
+            opening_loss: on_grid(Length::inches(dice.pick(&[0.0, 0.0, 0.25, 1.5]))),
+            rain: dice.pick(&[1.0, 1.0, 1.3]),
+            discharge: dice.pick(&[1.0, 1.0, 0.8]),
+        })
+        .collect()
+}
+
+fn roof(dice: &mut Dice) -> Roof {
+    let sizes = sizes(dice);
+    let cases = cases(dice);
+    let limits = cases
+        .iter()
+        .map(|_| Limits {
+            load: (!dice.one_in(4)).then(|| Load::psf(14.0 + dice.upto(26) as f64)),
+            depth: dice.one_in(3).then(|| Length::inches(3.0 + dice.upto(4) as f64)),
+        })
+        .map(
+            |limits| {
+                if limits == Limits::default() { Limits { load: Some(Load::psf(30.0)), depth: None } } else { limits }
+            },
+        )
+        .collect();
+    let least = 1 + dice.upto(1) as u32;
+    let grid_start = 1 + dice.upto(2);
+    let catchment = Catchment {
+        name: "area".into(),
+        area: Area::from_m2(20.0 + dice.upto(900) as f64),
+        wall: Area::ZERO,
+        wall_share: 0.5,
+        edge: dice.one_in(2).then(|| on_grid(dice.inches(0, 60))),
+        gap: on_grid(dice.inches(0, 6)),
+        parapet: Parapet { height: dice.one_in(2).then(|| on_grid(dice.inches(4, 10))), thickness: None },
+        roof_at_wall: on_grid(dice.inches(0, 2)),
+        receives: Vec::new(),
+        ponding_head: dice.one_in(2).then(|| Length::inches(0.4)),
+        kinds: dice.one_in(5).then(|| vec![Kind::ClosedScupper, Kind::Rated]),
+        count: least..=least + dice.upto(3) as u32,
+        set_heights: Some((0..=2).map(|step| on_grid(Length::inches((grid_start + step) as f64 * 0.75))).collect()),
+        limits,
+    };
+    let storm = Storm { intensity: Intensity::from_m_per_s(3e-5), duration: None, return_period: None, source: None };
+    let demands = vec![storm.intensity * catchment.area];
+    Roof { title: String::new(), system: System::Us, storm, cases, areas: vec![catchment], sizes, demands }
+}
+
+fn options(dice: &mut Dice) -> Options {
+    let mut rank_by = Criterion::ALL.to_vec();
+    for place in 0..rank_by.len() {
+        let other = place + dice.upto((rank_by.len() - 1 - place) as u64) as usize;
+        rank_by.swap(place, other);
+    }
+    rank_by.truncate(1 + dice.upto(2) as usize);
+    Options {
+        rank_by,
+        keep: 1 + dice.upto(6) as usize,
+        mix: 1 + dice.upto(2) as usize,
+        freeboard: dice.one_in(3).then(|| Length::inches(dice.pick(&[0.0, 0.5, 1.0]))),
+        fold: !dice.one_in(3),
+    }
+}
+
+/// The heights at which a size may stand, by the words of the search's rules.
+fn heights(size: &Size, area: &Catchment) -> Vec<Length> {
+    let grid = area.set_heights.as_ref().expect("given above");
+    let (least, most) = (grid[0], grid[grid.len() - 1]);
+    let mut heights: Vec<Length> = match &size.set_heights {
+        Some(own) => own.iter().copied().filter(|&height| height >= least && height <= most).collect(),
+        None => grid.clone(),
+    };
+    if size.place == Place::Edge {
+        heights.retain(|&height| height >= area.roof_at_wall);
+        if let (Some(parapet), Some(opening)) = (area.parapet.height, size.device.height()) {
+            heights.retain(|&height| (height + opening).nm() < parapet.nm());
+        }
+    }
+    heights
+}
+
+struct Tried {
+    groups: Vec<(usize, u32)>,
+    key: Vec<f64>,
+    reported: Vec<Length>,
+}
+
+fn try_layout(roof: &Roof, options: &Options, situations: &[Situation<'_>], groups: &[(usize, u32)]) -> Option<Tried> {
+    let area = &roof.areas[0];
+    let count: u32 = groups.iter().map(|&(_, count)| count).sum();
+    if !area.count.contains(&count) {
+        return None;
+    }
+    let mut openings = 0;
+    let mut edge = 0;
+    let mut liftable = Vec::new();
+    let mut stands = Vec::new();
+    for &(index, count) in groups {
+        let size = &roof.sizes[index];
+        let heights = heights(size, area);
+        if !area.takes(size.device.kind()) || heights.is_empty() {
+            return None;
+        }
+        if size.place == Place::Edge {
+            openings += i64::from(count);
+            edge += size.device.width().map_or(0, Length::nm) * i64::from(count);
+        }
+        let group = Group { size, count, set_height: heights[0] };
+        liftable.push(Liftable { group, highest: heights[heights.len() - 1] });
+        stands.push(heights);
+    }
+    if let Some(most) = area.edge
+        && openings > 0
+        && (most == Length::ZERO || edge + area.gap.nm() * (openings - 1) > most.nm())
+    {
+        return None;
+    }
+    let lowest: Vec<Group<'_>> = liftable.iter().map(|liftable| liftable.group).collect();
+    let asked = Asked { freeboard: options.freeboard };
+    if !situations.iter().all(|situation| layout::holds(&lowest, situation, asked)) {
+        return None;
+    }
+    let place = |wanted| options.rank_by.iter().position(|&criterion| criterion == wanted);
+    let high = match (place(Criterion::SetHeight), place(Criterion::Load)) {
+        (Some(set_height), Some(load)) => set_height < load,
+        (Some(_), None) => true,
+        (None, _) => false,
+    };
+    let reported: Vec<Group<'_>> = if high {
+        let lift = layout::highest_lift(&liftable, situations, asked).expect("holds at the lowest");
+        let mut lifted = Vec::new();
+        for (liftable, heights) in liftable.iter().zip(&stands) {
+            let end = liftable.lifted(lift).set_height;
+            let on_grid = heights.iter().copied().filter(|&height| height <= end);
+            lifted.push(Group { set_height: on_grid.fold(heights[0], Length::max), ..liftable.group });
+        }
+        lifted
+    } else {
+        lowest
+    };
+    let load = situations
+        .iter()
+        .map(|situation| layout::state(&reported, situation).water.map_or(f64::INFINITY, |water| water.level.m()))
+        .fold(f64::NEG_INFINITY, f64::max);
+    let value = |criterion| match criterion {
+        Criterion::Cost => layout::cost(&reported).expect("all priced").amount(),
+        Criterion::Load => load,
+        Criterion::Count => f64::from(count),
+        Criterion::Width => groups
+            .iter()
+            .map(|&(index, count)| roof.sizes[index].device.width().map_or(0, Length::nm) * i64::from(count))
+            .sum::<i64>() as f64,
+        Criterion::Sizes => groups.len() as f64,
+        Criterion::SetHeight => -reported.iter().map(|group| group.set_height.m()).fold(f64::INFINITY, f64::min),
+        _ => unreachable!("not in a file"),
+    };
+    let rest = Criterion::ALL.into_iter().filter(|criterion| !options.rank_by.contains(criterion));
+    let key = options.rank_by.iter().copied().chain(rest).map(value).collect();
+    Some(Tried { groups: groups.to_vec(), key, reported: reported.iter().map(|group| group.set_height).collect() })
+}
+
+fn everything(roof: &Roof, options: &Options) -> Vec<Tried> {
+    let situations = roof.situations(0);
+    let most = *roof.areas[0].count.end();
+    let mut tried = Vec::new();
+    let mut stack: Vec<Vec<(usize, u32)>> = vec![Vec::new()];
+    while let Some(groups) = stack.pop() {
+        if !groups.is_empty() {
+            tried.extend(try_layout(roof, options, &situations, &groups));
+        }
+        if groups.len() < options.mix {
+            let from = groups.last().map_or(0, |&(index, _)| index + 1);
+            for index in from..roof.sizes.len() {
+                for count in 1..=most {
+                    let mut more = groups.clone();
+                    more.push((index, count));
+                    stack.push(more);
+                }
+            }
+        }
+    }
+    let order = |a: &Tried, b: &Tried| {
+        let keys = a.key.iter().zip(&b.key).map(|(a, b)| a.total_cmp(b)).find(|ordering| ordering.is_ne());
+        keys.unwrap_or(Ordering::Equal).then_with(|| a.groups.cmp(&b.groups))
+    };
+    tried.sort_by(order);
+    let mut families = HashSet::new();
+    if options.fold {
+        tried.retain(|tried| {
+            let mut family: Vec<(&str, u32)> = Vec::new();
+            for &(index, count) in &tried.groups {
+                let tag = &*roof.sizes[index].tag;
+                match family.iter_mut().find(|(known, _)| *known == tag) {
+                    Some((_, total)) => *total += count,
+                    None => family.push((tag, count)),
+                }
+            }
+            family.sort_unstable();
+            families.insert(format!("{family:?}"))
+        });
+    }
+    tried.truncate(options.keep);
+    tried
+}
+
+#[test]
+fn the_search_finds_what_trying_everything_finds() {
+    let (mut feasible, mut infeasible) = (0, 0);
+    for seed in 1..=1500_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15));
+        let (roof, options) = (roof(&mut dice), options(&mut dice));
+        let expected = everything(&roof, &options);
+        let answer = search::size(&roof, &options, &[0]).remove(0);
+        match answer.outcome {
+            Outcome::Optimal(layouts) => {
+                feasible += 1;
+                let found: Vec<_> = layouts
+                    .iter()
+                    .map(|layout| {
+                        let index =
+                            |size: &Size| roof.sizes.iter().position(|known| std::ptr::eq(known, size)).unwrap();
+                        let groups = layout.groups.iter();
+                        groups
+                            .map(|placed| (index(placed.group.size), placed.group.count, placed.group.set_height))
+                            .collect::<Vec<_>>()
+                    })
+                    .collect();
+                let wanted: Vec<_> = expected
+                    .iter()
+                    .map(|tried| {
+                        let groups = tried.groups.iter().zip(&tried.reported);
+                        groups.map(|(&(index, count), &height)| (index, count, height)).collect::<Vec<_>>()
+                    })
+                    .collect();
+                assert_eq!(found, wanted, "seed {seed}, {options:?}");
+            }
+            Outcome::Infeasible(_) => {
+                infeasible += 1;
+                assert!(expected.is_empty(), "seed {seed}: the search found none of {}", expected.len());
+            }
+        }
+    }
+    assert!(
+        feasible > 300 && infeasible > 300,
+        "{feasible} feasible, {infeasible} not: the roofs are not varied enough"
+    );
+}
