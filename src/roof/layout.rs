@@ -112,7 +112,10 @@ pub struct Liftable<'r> {
 impl<'r> Liftable<'r> {
     /// The group lifted, or at the top of its range where that is lower.
     pub fn lifted(&self, lift: Length) -> Group<'r> {
-        Group { set_height: (self.group.set_height + lift).min(self.highest), ..self.group }
+        // The whole of its range leads to its end, whatever a rounded sum says.
+        let whole = lift >= self.highest - self.group.set_height;
+        let set_height = if whole { self.highest } else { (self.group.set_height + lift).min(self.highest) };
+        Group { set_height, ..self.group }
     }
 }
 

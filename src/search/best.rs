@@ -3,8 +3,8 @@
 use std::cell::OnceCell;
 use std::cmp::Ordering;
 
-use crate::roof::MOST_GROUPS;
-use crate::roof::layout::{self, Group, highest_lift};
+use crate::roof::layout::{self, Group};
+use crate::roof::{MOST_GROUPS, Situation};
 use crate::units::Length;
 
 use super::problem::{Class, Problem, Table};
@@ -17,40 +17,51 @@ pub(super) type Groups = Vec<(usize, u32)>;
 #[derive(Debug)]
 pub(super) struct Found {
     pub(super) groups: Groups,
-    pub(super) sums: Sums,
+    sums: Sums,
     family: u128,
+    set_height: OnceCell<i64>,
     levels: OnceCell<Levels>,
     screen: OnceCell<Option<Table>>,
+    strict_screen: OnceCell<Option<Table>>,
 }
 
-/// What of a layout's rank needs a water level.
+/// What of a layout's rank is a water level.
 #[derive(Debug)]
 struct Levels {
     /// Worst level of all cases, m; infinite where the layout is overwhelmed. Load follows it, the ponding head being one.
     worst: f64,
     /// Governing utilisation of all cases; infinite where the layout is overwhelmed.
     utilisation: f64,
-    /// Set height of the lowest sill as reported, nanometres.
-    set_height: i64,
 }
 
 impl Found {
-    pub(super) fn new(groups: Groups, sums: Sums, family: u128) -> Self {
-        Self { groups, sums, family, levels: OnceCell::new(), screen: OnceCell::new() }
+    fn new(groups: Groups, sums: Sums, family: u128) -> Self {
+        Self {
+            groups,
+            sums,
+            family,
+            set_height: OnceCell::new(),
+            levels: OnceCell::new(),
+            screen: OnceCell::new(),
+            strict_screen: OnceCell::new(),
+        }
+    }
+
+    /// Set height of the lowest sill as reported, nanometres.
+    fn set_height(&self, problem: &Problem<'_>) -> i64 {
+        let lowest = || reported(problem, &self.groups).iter().map(|group| group.set_height.nm()).min();
+        *self.set_height.get_or_init(|| lowest().unwrap_or(i64::MAX))
     }
 
     fn levels(&self, problem: &Problem<'_>) -> &Levels {
         self.levels.get_or_init(|| {
             let groups = reported(problem, &self.groups);
-            let mut levels = Levels { worst: f64::NEG_INFINITY, utilisation: f64::NEG_INFINITY, set_height: i64::MAX };
+            let mut levels = Levels { worst: f64::NEG_INFINITY, utilisation: f64::NEG_INFINITY };
             for situation in &problem.situations {
                 let water = layout::state(&groups, situation).water;
                 levels.worst = levels.worst.max(water.map_or(f64::INFINITY, |water| water.level.m()));
                 let utilisation = water.map_or(f64::INFINITY, |water| water.governing.utilisation);
                 levels.utilisation = levels.utilisation.max(utilisation);
-            }
-            for group in &groups {
-                levels.set_height = levels.set_height.min(group.set_height.nm());
             }
             levels
         })
@@ -61,7 +72,7 @@ impl Found {
         let by = |criterion: Criterion| match criterion {
             Criterion::Load => self.levels(problem).worst.total_cmp(&other.levels(problem).worst),
             Criterion::Utilisation => self.levels(problem).utilisation.total_cmp(&other.levels(problem).utilisation),
-            Criterion::SetHeight => other.levels(problem).set_height.cmp(&self.levels(problem).set_height),
+            Criterion::SetHeight => other.set_height(problem).cmp(&self.set_height(problem)),
             sum => self.sums.value(sum).cmp(&other.sums.value(sum)),
         };
         let decided = problem.order.criteria().iter().map(|&criterion| by(criterion)).find(|ordering| ordering.is_ne());
@@ -71,52 +82,65 @@ impl Found {
     /// What one of each candidate carries where a layout of equal sums must carry the demand to rank as high as this one:
     /// at this one's worst level, at its utilisation, or with no sill under its set height. None asks nothing.
     fn screen(&self, problem: &Problem<'_>, class: Class) -> Option<&Table> {
-        let table = || {
-            let levels = self.levels(problem);
-            let allowed = problem.allowable_levels(class);
-            match problem.order.first_level() {
-                Criterion::Utilisation if levels.utilisation.is_finite() => {
-                    let levels: Vec<_> =
-                        problem.situations.iter().map(|situation| situation.level_at(levels.utilisation)).collect();
-                    Some(problem.table(&levels, |candidate| Some(candidate.lowest())))
-                }
-                Criterion::Utilisation => None,
-                Criterion::SetHeight => {
-                    // Lifting an opening lifts its top, so the class's ceiling does not bind here.
-                    let allowed: Vec<_> =
-                        problem.situations.iter().map(crate::roof::Situation::allowable_level).collect();
-                    let least = Length::from_nm(levels.set_height);
-                    let stands = |highest: Length| highest.nm() >= levels.set_height;
-                    let height = |low: Length, highest| stands(highest).then_some(low.max(least));
-                    Some(problem.table(&allowed, |candidate| height(candidate.lowest(), candidate.highest())))
-                }
-                _ => {
-                    let worst = Length::from_m(levels.worst);
-                    let levels: Vec<_> = allowed.into_iter().map(|level| level.min(worst)).collect();
-                    Some(problem.table(&levels, |candidate| Some(candidate.lowest())))
-                }
+        let table = || match problem.order.first_level() {
+            Criterion::Utilisation => {
+                let used = self.levels(problem).utilisation;
+                let levels: Vec<_> = problem.situations.iter().map(|situation| situation.level_at(used)).collect();
+                used.is_finite().then(|| problem.table(&levels, |candidate| Some(candidate.lowest())))
+            }
+            Criterion::SetHeight => {
+                let least = self.set_height(problem);
+                Some(with_sills(problem, |height| height >= least))
+            }
+            _ => {
+                let worst = Length::from_m(self.levels(problem).worst);
+                let levels: Vec<_> =
+                    problem.allowable_levels(class).into_iter().map(|level| level.min(worst)).collect();
+                Some(problem.table(&levels, |candidate| Some(candidate.lowest())))
             }
         };
         self.screen.get_or_init(table).as_ref()
     }
+
+    /// The screen that a layout must pass to rank above this one by the first level alone. Only set heights, which stand
+    /// on a grid, tie so often that it tells more than [`Found::screen`].
+    fn strict_screen(&self, problem: &Problem<'_>, class: Class) -> Option<&Table> {
+        if problem.order.first_level() != Criterion::SetHeight {
+            return self.screen(problem, class);
+        }
+        let least = self.set_height(problem);
+        self.strict_screen.get_or_init(|| Some(with_sills(problem, |height| height > least))).as_ref()
+    }
+}
+
+/// What one of each candidate carries at the lowest of its heights that pass; no layout has one for which none passes.
+///
+/// Every sill of the layout stands at least there, and lifting an opening lifts its top, so no freeboard binds: what the
+/// layout carries at the levels allowed is no more than this.
+fn with_sills(problem: &Problem<'_>, passes: impl Fn(i64) -> bool) -> Table {
+    let allowed: Vec<_> = problem.situations.iter().map(Situation::allowable_level).collect();
+    problem.table(&allowed, |candidate| candidate.heights.iter().copied().find(|height| passes(height.nm())))
 }
 
 /// The groups at the set heights that are reported: the lowest, or the highest on the grid that the window reaches where
 /// the set height is preferred to the load.
 pub(super) fn reported<'r>(problem: &Problem<'r>, groups: &[(usize, u32)]) -> Vec<Group<'r>> {
     let liftable = problem.liftable(groups);
-    let lowest = || liftable.iter().map(|group| group.group).collect();
     if !problem.order.prefers_high_sills() {
-        return lowest();
+        return liftable.iter().map(|group| group.group).collect();
     }
-    let Some(lift) = highest_lift(&liftable, &problem.situations, problem.asked) else { return lowest() };
-    let on_grid = |(liftable, &(index, _)): (&layout::Liftable<'r>, &(usize, u32))| {
-        let end = liftable.lifted(lift).set_height;
-        let heights = &problem.candidates[index].heights;
-        let highest = heights.iter().rev().copied().find(|&height| height <= end);
-        Group { set_height: highest.unwrap_or(liftable.group.set_height), ..liftable.group }
+    let passes = |lift: Length| {
+        let lifted: Vec<_> = liftable.iter().map(|group| group.lifted(lift)).collect();
+        problem.situations.iter().all(|situation| layout::holds(&lifted, situation, problem.asked))
     };
-    liftable.iter().zip(groups).map(on_grid).collect()
+    let mut placed = Vec::with_capacity(groups.len());
+    for (liftable, &(index, _)) in liftable.iter().zip(groups) {
+        let heights = &problem.candidates[index].heights;
+        // The lifts that pass are one stretch from the lowest heights on.
+        let reached = heights.partition_point(|&height| height == heights[0] || passes(height - heights[0]));
+        placed.push(Group { set_height: heights[reached - 1], ..liftable.group });
+    }
+    placed
 }
 
 /// At most `keep` layouts in order, each the best of its family.
@@ -127,16 +151,22 @@ pub(super) struct Best {
     keep: usize,
     fold: bool,
     found: Vec<Found>,
+    changes: u64,
 }
 
 impl Best {
     pub(super) fn new(keep: usize, fold: bool) -> Self {
-        Self { keep, fold, found: Vec::with_capacity(keep.min(1024) + 1) }
+        Self { keep, fold, found: Vec::with_capacity(keep.min(1024) + 1), changes: 0 }
     }
 
     /// The layout that every new family must beat; none while there is room.
-    pub(super) fn last(&self) -> Option<&Found> {
+    fn last(&self) -> Option<&Found> {
         self.found.get(self.keep - 1)
+    }
+
+    /// The most of a criterion that any layout may have to rank.
+    pub(super) fn allowance(&self, lead: Criterion) -> i64 {
+        self.last().map_or(i64::MAX, |last| last.sums.value(lead))
     }
 
     pub(super) fn into_found(self) -> Vec<Found> {
@@ -147,6 +177,7 @@ impl Best {
     pub(super) fn change_class(&mut self) {
         for found in &mut self.found {
             found.screen = OnceCell::new();
+            found.strict_screen = OnceCell::new();
         }
     }
 
@@ -162,29 +193,28 @@ impl Best {
         groups: &[(usize, u32)],
         sums: Sums,
     ) -> bool {
-        let by = problem.order.sums();
-        if self.last().is_some_and(|last| sums.compare(&last.sums, by).is_gt()) {
-            return false;
-        }
         let family = self.family(problem, groups);
-        let own = if self.fold { self.found.iter().position(|found| found.family == family) } else { None };
+        let own = self.own(family);
         let to_beat = own.map(|own| &self.found[own]).or_else(|| self.last());
-        let against = to_beat.map(|found| (found, sums.compare(&found.sums, by)));
-        if against.is_some_and(|(_, ordering)| ordering.is_gt()) {
-            return false;
+        let against = to_beat.map(|found| (found, sums.compare(&found.sums, problem.order.sums())));
+        let tied = match against {
+            Some((_, Ordering::Greater)) => return false,
+            Some((found, Ordering::Equal)) => Some(found),
+            _ => None,
+        };
+        if let Some(found) = tied {
+            let later = sums.compare(&found.sums, problem.order.sums_behind_level());
+            let screen = if later.is_gt() { found.strict_screen(problem, class) } else { found.screen(problem, class) };
+            if screen.is_some_and(|screen| !problem.carries(screen, groups)) {
+                return false;
+            }
         }
         if limits.is_some_and(|limits| !problem.carries(limits, groups)) {
             return false;
         }
         let new = Found::new(groups.to_vec(), sums, family);
-        if let Some((found, ordering)) = against {
-            let tied = ordering.is_eq();
-            if tied && found.screen(problem, class).is_some_and(|screen| !problem.carries(screen, groups)) {
-                return false;
-            }
-            if tied && new.compare(found, problem).is_ge() {
-                return false;
-            }
+        if tied.is_some_and(|found| new.compare(found, problem).is_ge()) {
+            return false;
         }
         if let Some(own) = own {
             self.found.remove(own);
@@ -192,7 +222,38 @@ impl Best {
         let place = self.found.partition_point(|found| found.compare(&new, problem).is_lt());
         self.found.insert(place, new);
         self.found.truncate(self.keep);
+        self.changes += 1;
         true
+    }
+
+    fn own(&self, family: u128) -> Option<usize> {
+        if self.fold { self.found.iter().position(|found| found.family == family) } else { None }
+    }
+
+    /// How often the list has changed.
+    pub(super) fn changes(&self) -> u64 {
+        self.changes
+    }
+
+    /// The most of a criterion that a layout may have to rank, for each count of one more group of a tag: that of its
+    /// family's best, or of the last layout kept.
+    pub(super) fn allowances(
+        &self,
+        problem: &Problem<'_>,
+        groups: &[(usize, u32)],
+        tag: u32,
+        lead: Criterion,
+        into: &mut [i64],
+    ) {
+        into.fill(self.last().map_or(i64::MAX, |last| last.sums.value(lead)));
+        if !self.fold {
+            return;
+        }
+        for (count, allowance) in (0..).zip(into) {
+            if let Some(own) = self.own(family_of(problem, groups, Some((tag, count)))) {
+                *allowance = self.found[own].sums.value(lead);
+            }
+        }
     }
 
     /// What the last layout kept asks of every other, where that is known before any sum.
@@ -200,27 +261,26 @@ impl Best {
         self.last().and_then(|last| last.screen(problem, class))
     }
 
-    /// The family: how many of each tag. Unfolded, no two layouts are of one family.
+    /// The family of a layout; unfolded, no two layouts are of one family.
     fn family(&self, problem: &Problem<'_>, groups: &[(usize, u32)]) -> u128 {
-        if !self.fold {
-            return 0;
-        }
-        let mut tags = [(u32::MAX, 0_u32); MOST_GROUPS];
-        let mut used = 0;
-        for &(candidate, count) in groups {
-            let tag = problem.candidates[candidate].tag;
-            match tags[..used].iter_mut().find(|(known, _)| *known == tag) {
-                Some((_, total)) => *total += count,
-                None => {
-                    tags[used] = (tag, count);
-                    used += 1;
-                }
+        if self.fold { family_of(problem, groups, None) } else { 0 }
+    }
+}
+
+/// How many of each tag, as one number: twenty-one bits for a tag and as many for a count, more than input allows.
+fn family_of(problem: &Problem<'_>, groups: &[(usize, u32)], more: Option<(u32, u32)>) -> u128 {
+    let mut tags = [(u32::MAX, 0_u32); MOST_GROUPS];
+    let mut used = 0;
+    let of_tags = groups.iter().map(|&(candidate, count)| (problem.candidates[candidate].tag, count));
+    for (tag, count) in of_tags.chain(more) {
+        match tags[..used].iter_mut().find(|(known, _)| *known == tag) {
+            Some((_, total)) => *total += count,
+            None => {
+                tags[used] = (tag, count);
+                used += 1;
             }
         }
-        tags[..used].sort_unstable();
-        // Twenty-one bits for a tag and as many for a count: input allows no more of either.
-        tags[..used]
-            .iter()
-            .fold(0, |family, &(tag, count)| (family << 42) | (u128::from(tag) << 21) | u128::from(count))
     }
+    tags[..used].sort_unstable();
+    tags[..used].iter().fold(0, |family, &(tag, count)| (family << 42) | (u128::from(tag) << 21) | u128::from(count))
 }

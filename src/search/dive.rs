@@ -25,7 +25,7 @@
 use crate::roof::MOST_GROUPS;
 
 use super::best::Best;
-use super::problem::{Class, Problem, Table};
+use super::problem::{Candidate, Class, Problem, Table};
 use super::rank::{Criterion, Sums};
 
 /// How a search is run.
@@ -56,6 +56,7 @@ pub(super) fn dive(problem: &Problem<'_>, aim: Aim, best: Best) -> Best {
             best,
             chosen: [(0, 0); MOST_GROUPS],
             totals: vec![0.0; (MOST_GROUPS + 1) * problem.situations.len()],
+            gate: Gate { lead: lead(problem), allowances: vec![i64::MAX; problem.most as usize + 1], stands_for: None },
             done: false,
         };
         dive.tighten();
@@ -90,6 +91,24 @@ struct Bounds {
     needed: Vec<f64>,
 }
 
+impl Used {
+    /// With one more group.
+    fn with(mut self, candidate: &Candidate<'_>, count: u32, class: Class) -> Self {
+        let many = i64::from(count);
+        self.devices += count;
+        self.sums.count += many;
+        self.sums.cost += candidate.price.saturating_mul(many);
+        self.sums.width += candidate.width.saturating_mul(many);
+        self.sums.sizes += 1;
+        if candidate.at_edge {
+            self.openings += many;
+            self.edge += candidate.width.saturating_mul(many);
+        }
+        self.has_lowest_top |= candidate.top == class;
+        self
+    }
+}
+
 struct Dive<'p, 'r> {
     problem: &'p Problem<'r>,
     aim: Aim,
@@ -102,19 +121,29 @@ struct Dive<'p, 'r> {
     chosen: [(usize, u32); MOST_GROUPS],
     /// Total flow of the groups chosen so far, one row of cases for each depth.
     totals: Vec<f64>,
+    gate: Gate,
     done: bool,
 }
 
-impl Dive<'_, '_> {
+/// What a last group may bring of the leading criterion, by its count.
+struct Gate {
     /// The first criterion, where it is a sum that every further device raises.
-    fn lead(&self) -> Option<Criterion> {
-        let first = self.problem.order.criteria()[0];
-        matches!(first, Criterion::Cost | Criterion::Count | Criterion::Width).then_some(first)
-    }
+    lead: Option<Criterion>,
+    allowances: Vec<i64>,
+    /// Changes of the list and tag of the last group for which the allowances stand.
+    stands_for: Option<(u64, u32)>,
+}
 
+/// The first criterion of a problem, where it is a sum that every further device raises.
+fn lead(problem: &Problem<'_>) -> Option<Criterion> {
+    let first = problem.order.criteria()[0];
+    matches!(first, Criterion::Cost | Criterion::Count | Criterion::Width).then_some(first)
+}
+
+impl Dive<'_, '_> {
     fn lead_of_one(&self, member: usize) -> i64 {
         let candidate = &self.problem.candidates[self.members[member]];
-        match self.lead() {
+        match self.gate.lead {
             Some(Criterion::Cost) => candidate.price,
             Some(Criterion::Count) => 1,
             Some(Criterion::Width) => candidate.width,
@@ -124,10 +153,7 @@ impl Dive<'_, '_> {
 
     /// The leading criterion of the last layout kept: no layout above it can rank.
     fn lead_allowed(&self) -> i64 {
-        match (self.lead(), self.best.last()) {
-            (Some(lead), Some(last)) => last.sums.value(lead),
-            _ => i64::MAX,
-        }
+        self.gate.lead.map_or(i64::MAX, |lead| self.best.allowance(lead))
     }
 
     /// Computes the bounds from the strictest table that every layout worth finding must pass.
@@ -173,30 +199,62 @@ impl Dive<'_, '_> {
     fn extend(&mut self, groups: usize, depth: usize, from: usize, used: Used) {
         let to_come = u32::try_from(groups - depth - 1).unwrap_or(0);
         let Some(most) = self.problem.most.checked_sub(used.devices + to_come).filter(|&most| most > 0) else { return };
-        let last = to_come == 0;
+        self.gate.stands_for = None;
         for member in from..self.members.len() {
             if self.done || !self.can_rank(depth, member, most + to_come, used) {
                 return;
             }
-            let least = if last { self.least_of_last(depth, member, used) } else { 1 };
-            for count in least..=most {
-                let Some(used) = self.choose(depth, member, count, used) else { break };
-                if last {
-                    self.offer(groups, used);
-                } else {
+            if to_come == 0 {
+                self.close(depth, member, most, used);
+            } else {
+                for count in 1..=most {
+                    let Some(used) = self.choose(depth, member, count, used) else { break };
                     self.extend(groups, depth + 1, member + 1, used);
                 }
-                if self.done {
-                    return;
-                }
             }
+        }
+    }
+
+    /// Closes the groups chosen so far with a last one, of every count that can rank.
+    fn close(&mut self, depth: usize, member: usize, most: u32, used: Used) {
+        let index = self.members[member];
+        let candidate = &self.problem.candidates[index];
+        let lead_of_one = self.lead_of_one(member);
+        let lead_used = self.gate.lead.map_or(0, |lead| used.sums.value(lead));
+        for count in self.least_of_last(depth, member, used)..=most {
+            self.look_up(depth, candidate.tag);
+            let lead = lead_used.saturating_add(lead_of_one.saturating_mul(i64::from(count)));
+            if lead > self.gate.allowances[count as usize] {
+                if lead > self.lead_allowed() {
+                    break;
+                }
+                continue;
+            }
+            let used = used.with(candidate, count, self.class);
+            if !self.fits(&used) {
+                break;
+            }
+            self.chosen[depth] = (index, count);
+            self.offer(depth + 1, used);
+            if self.done {
+                return;
+            }
+        }
+    }
+
+    /// Brings the allowances up to date for the groups chosen so far and a last one of a tag.
+    fn look_up(&mut self, depth: usize, tag: u32) {
+        let wanted = Some((self.best.changes(), tag));
+        if let (Some(lead), true) = (self.gate.lead, self.gate.stands_for != wanted) {
+            self.best.allowances(self.problem, &self.chosen[..depth], tag, lead, &mut self.gate.allowances);
+            self.gate.stands_for = wanted;
         }
     }
 
     /// Bounds 2 and 3: whether the members from an index on can make a layout worth having of the groups chosen so far.
     fn can_rank(&self, depth: usize, from: usize, devices_left: u32, used: Used) -> bool {
         let cases = self.problem.situations.len();
-        let lead = self.lead();
+        let lead = self.gate.lead;
         let allowed = self.lead_allowed();
         self.bounds.needed.iter().enumerate().all(|(case, needed)| {
             let missing = needed - self.totals[depth * cases + case];
@@ -228,27 +286,11 @@ impl Dive<'_, '_> {
         least
     }
 
-    /// Adds a group; none where it does not fit the edge, or already ranks behind the last layout kept.
+    /// Adds a group that is not the last; none where it does not fit, or already ranks behind the last layout kept.
     fn choose(&mut self, depth: usize, member: usize, count: u32, used: Used) -> Option<Used> {
         let index = self.members[member];
-        let candidate = &self.problem.candidates[index];
-        let many = i64::from(count);
-        let mut used = used;
-        used.devices += count;
-        used.sums.count += many;
-        used.sums.cost += candidate.price.saturating_mul(many);
-        used.sums.width += candidate.width.saturating_mul(many);
-        used.sums.sizes += 1;
-        if candidate.at_edge {
-            used.openings += many;
-            used.edge += candidate.width.saturating_mul(many);
-        }
-        used.has_lowest_top |= candidate.top == self.class;
-        let edge = used.edge.saturating_add(self.problem.gap.saturating_mul((used.openings - 1).max(0)));
-        if self.problem.edge.is_some_and(|most| edge > most) {
-            return None;
-        }
-        if self.lead().is_some_and(|lead| used.sums.value(lead) > self.lead_allowed()) {
+        let used = used.with(&self.problem.candidates[index], count, self.class);
+        if !self.fits(&used) || self.gate.lead.is_some_and(|lead| used.sums.value(lead) > self.lead_allowed()) {
             return None;
         }
         self.chosen[depth] = (index, count);
@@ -260,6 +302,12 @@ impl Dive<'_, '_> {
             }
         }
         Some(used)
+    }
+
+    /// Whether the openings and the gaps between them fit the edge.
+    fn fits(&self, used: &Used) -> bool {
+        let gaps = self.problem.gap.saturating_mul((used.openings - 1).max(0));
+        self.problem.edge.is_none_or(|edge| used.edge.saturating_add(gaps) <= edge)
     }
 
     fn offer(&mut self, groups: usize, used: Used) {

@@ -76,6 +76,13 @@ impl Order {
         &self.criteria[..self.sums]
     }
 
+    /// Those between the first criterion that needs a water level and the next that does.
+    pub(super) fn sums_behind_level(&self) -> &[Criterion] {
+        let behind = &self.criteria[self.sums + 1..];
+        let count = behind.iter().take_while(|criterion| criterion.is_sum()).count();
+        &behind[..count]
+    }
+
     /// The first criterion that needs a water level; one always stands in the order.
     pub(super) fn first_level(&self) -> Criterion {
         self.criteria[self.sums]
