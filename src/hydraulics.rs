@@ -6,8 +6,12 @@
 
 use crate::units::{Flow, Length};
 
+pub mod critical;
 pub mod limits;
+mod powers;
 pub mod practice;
+mod section;
+mod solve;
 
 /// Acceleration of gravity, m/s2: standard value, exact by definition.
 pub const GRAVITY: f64 = 9.806_65;
