@@ -12,6 +12,9 @@ mod powers;
 pub mod practice;
 mod section;
 mod solve;
+pub mod submergence;
+pub mod thin_plate;
+pub mod weir;
 
 /// Acceleration of gravity, m/s2: standard value, exact by definition.
 pub const GRAVITY: f64 = 9.806_65;
