@@ -6,6 +6,8 @@
 
 use crate::units::{Flow, Length};
 
+pub mod crest;
+pub mod crest_table;
 pub mod critical;
 pub mod limits;
 mod powers;
