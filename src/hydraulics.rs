@@ -6,10 +6,12 @@
 
 use crate::units::{Flow, Length};
 
+pub mod circular;
 pub mod crest;
 pub mod crest_table;
 pub mod critical;
 pub mod limits;
+pub mod orifice;
 mod powers;
 pub mod practice;
 mod section;
