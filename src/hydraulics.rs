@@ -10,6 +10,7 @@ pub mod circular;
 pub mod crest;
 pub mod crest_table;
 pub mod critical;
+pub mod inlet;
 pub mod limits;
 pub mod orifice;
 mod powers;
