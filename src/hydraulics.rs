@@ -19,6 +19,7 @@ mod section;
 mod solve;
 pub mod submergence;
 pub mod thin_plate;
+pub mod throat;
 pub mod weir;
 
 /// Acceleration of gravity, m/s2: standard value, exact by definition.
