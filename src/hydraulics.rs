@@ -10,6 +10,8 @@ pub mod circular;
 pub mod crest;
 pub mod crest_table;
 pub mod critical;
+pub mod gutter;
+pub mod gutter_rules;
 pub mod inlet;
 pub mod leader;
 pub mod limits;
