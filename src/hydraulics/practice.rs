@@ -29,12 +29,12 @@ const SI_PER_GPM_IN: f64 =
 /// offered: the flow would jump by 4.8 % there, and no head would belong to the flows in the gap.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
 pub enum Transition {
-    /// The lesser of the two, which meet at H = 1.0916 h. Continuous without a further number; up to 1.5 % above the
+    /// The lesser of the two, which meet at H = 1.0916 h. Continuous without a further number; 1 to 2 % above the
     /// published entry next above h.
     #[default]
     LesserOf,
     /// A straight line from the weir at h to the orifice at 1.4 h, the band of FHWA-NHI-10-009 (HEC-22, 3rd ed., 2009) for
-    /// curb openings. The lowest of the three, 2 to 3.5 % under [`Transition::LesserOf`].
+    /// curb openings. The lowest of the three, up to 4.1 % under [`Transition::LesserOf`].
     Linear,
     /// A straight line from the weir at h to the orifice at 1.3 h: the end of the line is fitted, so that the entries of
     /// the published table next above h (5 in for 4 in of height, 7 in for 6 in) come out within 0.5 %. It is a law
@@ -198,7 +198,7 @@ mod tests {
         Length::inches(value)
     }
 
-    /// Coefficients of both forms in SI and in feet. Source: conversion by hand, hydraulics reference figures 2.18 to 2.20.
+    /// Coefficients of both forms in SI and in feet. Source: conversion by hand.
     #[test]
     fn coefficients_convert_exactly() {
         let one = weir(Length::from_m(1.0), Length::from_m(1.0)).unwrap().m3_per_s();
