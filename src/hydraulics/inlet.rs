@@ -278,9 +278,12 @@ impl Inlet {
         let chord = (high - low) / (ORIFICE_FROM - WEIR_TO);
         match self.transition {
             Transition::Line => Gap { low, high, low_slope: chord, high_slope: chord },
-            // End slopes within three times the chord keep a cubic from turning back (Fritsch and Carlson, 1980).
             Transition::Curve => {
-                Gap { low, high, low_slope: low_slope.min(3.0 * chord), high_slope: high_slope.min(3.0 * chord) }
+                // A cubic turns back unless its end slopes, over the chord, stay in a circle of radius 3 (Fritsch and
+                // Carlson, 1980). Thin projecting walls need that: their two parts nearly meet.
+                let steepness = (low_slope * low_slope + high_slope * high_slope).sqrt() / chord;
+                let tamed = (3.0 / steepness).min(1.0);
+                Gap { low, high, low_slope: low_slope * tamed, high_slope: high_slope * tamed }
             }
         }
     }
