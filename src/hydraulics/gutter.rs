@@ -12,7 +12,7 @@ use super::powers::{four_thirds, three_halves, two_thirds};
 use super::{FlowError, GRAVITY, limits, not_negative, positive, solve, zero_or_more};
 
 /// Steps along the profile. Depths agree with the closed form to six digits.
-const STEPS: u32 = 48;
+const STEPS: u32 = 32;
 
 /// What the gutter empties into.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -129,8 +129,9 @@ impl Gutter {
                 return Ok(first_slope);
             }
             let here = flow * (1.0 - root * root / self.length).max(0.0);
-            let froude = self.froude(here, depth);
-            if froude >= 1.0 || depth <= 0.0 {
+            // Where the floor rises out of the water there is no depth left, however slow the flow.
+            let froude = if depth > 0.0 { self.froude(here, depth) } else { f64::INFINITY };
+            if froude >= 1.0 {
                 return Err(FlowError::OutsideRange { found: froude, range: &limits::GUTTER_FROUDE });
             }
             // q of the resistance is that of the whole length, hence the flow at the outlet beside the one here.
@@ -215,6 +216,14 @@ pub fn level_dead_end_depth(flow: Flow, width: Length, outlet: Outlet) -> Result
 ///
 /// # Source
 /// As [`level_dead_end_depth`].
+///
+/// # Example
+/// ```
+/// # use brimline::{hydraulics::gutter::{self, Outlet}, units::{Flow, Length}};
+/// let half_way = gutter::level_depth_at(Flow::from_m3_per_s(0.02), Length::from_m(0.3), Outlet::Free, 0.5)?;
+/// assert_eq!(format!("{:.4}", half_way.m()), "0.1261");
+/// # Ok::<(), brimline::hydraulics::FlowError>(())
+/// ```
 pub fn level_depth_at(flow: Flow, width: Length, outlet: Outlet, share: f64) -> Result<Length, FlowError> {
     let flow = zero_or_more("flow", flow.m3_per_s())?;
     let critical = rectangle_depth(flow / positive("width", width)?);
