@@ -162,6 +162,14 @@ pub fn through_wall(diameter: Length, head: Length, coefficient: f64) -> Result<
 ///
 /// # Source
 /// As the two branches; the lesser of them is common practice.
+///
+/// # Example
+/// ```
+/// # use brimline::{hydraulics::circular, units::Length};
+/// let (flow, _) = circular::pipe(Length::inches(6.0), Length::inches(4.0))?;
+/// assert_eq!(format!("{:.0}", flow.to_gpm()), "90"); // as in the table of round scuppers, from memory
+/// # Ok::<(), brimline::hydraulics::FlowError>(())
+/// ```
 pub fn pipe(diameter: Length, head: Length) -> Result<(Flow, Branch), FlowError> {
     let free = critical::circle_flow(diameter, head)? * THROUGH_WALL;
     if head <= diameter {

@@ -153,6 +153,14 @@ pub fn circle(flow: Flow, diameter: Length) -> Result<Length, FlowError> {
 ///
 /// # Errors
 /// As [`circle`].
+///
+/// # Example
+/// ```
+/// # use brimline::{hydraulics::critical, units::{Flow, Length}};
+/// let energy = critical::circle_energy(Flow::from_m3_per_s(0.01), Length::mm(200.0))?;
+/// assert_eq!(format!("{:.4}", energy.m()), "0.1165");
+/// # Ok::<(), brimline::hydraulics::FlowError>(())
+/// ```
 pub fn circle_energy(flow: Flow, diameter: Length) -> Result<Length, FlowError> {
     let (flow, d) = (zero_or_more("flow", flow.m3_per_s())?, positive("diameter", diameter)?);
     Ok(Length::from_m(critical_at_flow(flow, d).critical_energy() * d))
@@ -172,6 +180,14 @@ pub fn circle_energy(flow: Flow, diameter: Length) -> Result<Length, FlowError> 
 ///
 /// # Source
 /// As [`circle`].
+///
+/// # Example
+/// ```
+/// # use brimline::{hydraulics::critical, units::Length};
+/// let flow = critical::circle_flow(Length::mm(200.0), Length::mm(116.511))?;
+/// assert_eq!(format!("{:.4}", flow.m3_per_s()), "0.0100");
+/// # Ok::<(), brimline::hydraulics::FlowError>(())
+/// ```
 pub fn circle_flow(diameter: Length, energy: Length) -> Result<Flow, FlowError> {
     let (d, energy) = (positive("diameter", diameter)?, not_negative("energy", energy)?);
     let scaled = critical_at_energy(energy, d).critical_flow();

@@ -123,6 +123,14 @@ pub fn terminal_velocity(flow: Flow, diameter: Length) -> Result<f64, FlowError>
 ///
 /// # Source
 /// As [`terminal_velocity`].
+///
+/// # Example
+/// ```
+/// # use brimline::{hydraulics::leader, units::{Flow, Length, METRES_PER_FOOT}};
+/// let fall = leader::terminal_length(Flow::gpm(144.0), Length::inches(4.0))?;
+/// assert_eq!(format!("{:.2}", fall.m() / METRES_PER_FOOT), "8.23");
+/// # Ok::<(), brimline::hydraulics::FlowError>(())
+/// ```
 pub fn terminal_length(flow: Flow, diameter: Length) -> Result<Length, FlowError> {
     let feet_per_second = terminal_velocity(flow, diameter)? / METRES_PER_FOOT;
     Ok(Length::from_m(0.052 * feet_per_second * feet_per_second * METRES_PER_FOOT))

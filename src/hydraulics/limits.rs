@@ -321,3 +321,24 @@ pub static ALL: [&Range; 39] = [
     &GUTTER_FALL,
     &GUTTER_FROUDE,
 ];
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn every_range_is_one_and_says_where_it_stands() {
+        for range in ALL {
+            assert!(range.low < range.high && !range.source.is_empty(), "{range}");
+            assert!(range.holds(range.low) && range.shown_per > 0.0, "{range}");
+        }
+    }
+
+    #[test]
+    fn a_range_reads_as_its_source_prints_it() {
+        assert_eq!(FRANCIS.to_string(), "Francis weir: head / width up to 0.3333");
+        assert_eq!(KINDSVATER_HEAD.to_string(), "Kindsvater-Carter weir: head from 0.03 m");
+        assert_eq!(CREST_TABLE_HEAD_US.to_string(), "HEC-22 Table 8-1 (US): head 0.2 to 5.5 ft");
+        assert_eq!(PRACTICE_HEAD.to_string(), "practice form: head 1 to 8 in");
+    }
+}

@@ -131,6 +131,13 @@ pub fn riser(diameter: Length, head: Length) -> Result<(Flow, Branch), FlowError
 ///
 /// # Source
 /// As [`riser`].
+///
+/// # Example
+/// ```
+/// # use brimline::{hydraulics::outlet, units::Length};
+/// assert_eq!(format!("{:.4}", outlet::riser_switch(Length::from_m(0.53))?.m()), "0.1916");
+/// # Ok::<(), brimline::hydraulics::FlowError>(())
+/// ```
 pub fn riser_switch(diameter: Length) -> Result<Length, FlowError> {
     let d = positive("diameter", diameter)?;
     Ok(Length::from_m(orifice::CIRCULAR_FACTOR * d / (RISER_RIM * std::f64::consts::PI)))
@@ -204,6 +211,16 @@ pub fn throat(throat: Length, depth: Length) -> Result<Flow, FlowError> {
 ///
 /// # Source
 /// As [`ring_dam`] and [`throat`]; lesser-of as for the [`riser`].
+///
+/// # Example
+/// ```
+/// # use brimline::{hydraulics::{Branch, outlet}, units::Length};
+/// let inches = Length::inches;
+/// let (flow, branch) =
+///     outlet::ring_dam_drain(inches(8.0), outlet::THIN_RIM_US, inches(4.026), inches(2.0), inches(2.0))?;
+/// assert_eq!((format!("{:.1}", flow.to_gpm()).as_str(), branch), ("110.3", Branch::Orifice));
+/// # Ok::<(), brimline::hydraulics::FlowError>(())
+/// ```
 pub fn ring_dam_drain(
     ring: Length,
     coefficient_us: f64,

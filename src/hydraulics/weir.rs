@@ -92,6 +92,14 @@ pub fn francis(width: Length, head: Length, contractions: EndContractions) -> Re
 ///
 /// # Source
 /// As [`francis`].
+///
+/// # Example
+/// ```
+/// # use brimline::{hydraulics::weir::{self, EndContractions}, units::Length};
+/// let flow = weir::francis_beyond(Length::inches(12.0), Length::inches(3.0293), EndContractions::Two)?;
+/// assert_eq!(format!("{:.0}", flow.to_gpm()), "180");
+/// # Ok::<(), brimline::hydraulics::FlowError>(())
+/// ```
 pub fn francis_beyond(width: Length, head: Length, contractions: EndContractions) -> Result<Flow, FlowError> {
     let (width, head) = (positive("width", width)?, not_negative("head", head)?);
     Ok(Flow::from_m3_per_s(francis_si() * francis_width(width, head, contractions) * three_halves(head)))
