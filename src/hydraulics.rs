@@ -4,10 +4,29 @@
 //! source, and refuses outside that range where the source gives one; the ranges stand once, in [`limits`]. Heads are
 //! measured up from the crest or the invert in the pond clear of the drawdown, three to four heads away from the opening.
 
-use crate::units::Length;
+use crate::units::{Flow, Length};
 
+pub mod circular;
+pub mod crest;
+pub mod crest_table;
+pub mod critical;
+pub mod gutter;
+pub mod gutter_rules;
+pub mod inlet;
+pub mod leader;
 pub mod limits;
+pub mod manning;
+pub mod orifice;
+pub mod outlet;
+mod powers;
 pub mod practice;
+pub mod sag;
+mod section;
+mod solve;
+pub mod submergence;
+pub mod thin_plate;
+pub mod throat;
+pub mod weir;
 
 /// Acceleration of gravity, m/s2: standard value, exact by definition.
 pub const GRAVITY: f64 = 9.806_65;
@@ -36,9 +55,24 @@ pub enum FlowError {
     },
 }
 
-/// Refuses a length that is not finite or not above zero.
-pub(crate) fn positive(what: &'static str, length: Length) -> Result<f64, FlowError> {
-    let found = length.m();
+/// Which part of an equation set carries the flow.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Branch {
+    /// A free surface over the sill or the rim.
+    Weir,
+    /// On the way from the one to the other, where a set joins them by a line or a curve.
+    Transition,
+    /// The opening runs full.
+    Orifice,
+}
+
+/// The lesser of a weir and an orifice at one head: what a device with both can pass.
+pub(crate) fn lesser_of(weir: Flow, orifice: Flow) -> (Flow, Branch) {
+    if orifice < weir { (orifice, Branch::Orifice) } else { (weir, Branch::Weir) }
+}
+
+/// Refuses a number that is not finite or not above zero.
+pub(crate) fn above_zero(what: &'static str, found: f64) -> Result<f64, FlowError> {
     if found.is_finite() && found > 0.0 {
         Ok(found)
     } else {
@@ -46,12 +80,21 @@ pub(crate) fn positive(what: &'static str, length: Length) -> Result<f64, FlowEr
     }
 }
 
-/// Refuses a length that is not finite or below zero.
-pub(crate) fn not_negative(what: &'static str, length: Length) -> Result<f64, FlowError> {
-    let found = length.m();
+/// Refuses a number that is not finite or below zero.
+pub(crate) fn zero_or_more(what: &'static str, found: f64) -> Result<f64, FlowError> {
     if found.is_finite() && found >= 0.0 {
         Ok(found)
     } else {
         Err(FlowError::Unusable { what, found, zero_passes: true })
     }
+}
+
+/// Refuses a length that is not finite or not above zero.
+pub(crate) fn positive(what: &'static str, length: Length) -> Result<f64, FlowError> {
+    above_zero(what, length.m())
+}
+
+/// Refuses a length that is not finite or below zero.
+pub(crate) fn not_negative(what: &'static str, length: Length) -> Result<f64, FlowError> {
+    zero_or_more(what, length.m())
 }

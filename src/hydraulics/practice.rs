@@ -10,7 +10,9 @@
 
 use crate::units::{Flow, Length, METRES_PER_INCH};
 
-use super::{FlowError, not_negative, positive};
+use super::{FlowError, lesser_of, not_negative, positive};
+
+pub use super::Branch;
 
 /// Weir coefficient, gal/min and inches: Q = 2.9 b H^1.5.
 pub const WEIR_GPM_IN: f64 = 2.9;
@@ -21,13 +23,34 @@ pub const ORIFICE_GPM_IN: f64 = 4.3;
 const SI_PER_GPM_IN: f64 =
     231.0 * METRES_PER_INCH * METRES_PER_INCH * METRES_PER_INCH / 60.0 / (METRES_PER_INCH * METRES_PER_INCH);
 
-/// Which branch of the form carries the flow.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum Branch {
-    /// A free surface over the sill.
-    Weir,
-    /// The opening runs full.
-    Orifice,
+/// How a closed opening passes from weir to orifice.
+///
+/// The weir holds up to H = h and the orifice well above it; between, the sources differ. Changing over at H = h is not
+/// offered: the flow would jump by 4.8 % there, and no head would belong to the flows in the gap.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Transition {
+    /// The lesser of the two, which meet at H = 1.0916 h. Continuous without a further number; 1 to 2 % above the
+    /// published entry next above h.
+    #[default]
+    LesserOf,
+    /// A straight line from the weir at h to the orifice at 1.4 h, the band of FHWA-NHI-10-009 (HEC-22, 3rd ed., 2009) for
+    /// curb openings. The lowest of the three, up to 4.1 % under [`Transition::LesserOf`].
+    Linear,
+    /// A straight line from the weir at h to the orifice at 1.3 h: the end of the line is fitted, so that the entries of
+    /// the published table next above h (5 in for 4 in of height, 7 in for 6 in) come out within 0.5 %. It is a law
+    /// through the table, for every size; the entries themselves belong in a rating table.
+    Table,
+}
+
+impl Transition {
+    /// Where the straight line ends, as H / h.
+    const fn line_ends_at(self) -> Option<f64> {
+        match self {
+            Self::LesserOf => None,
+            Self::Linear => Some(1.4),
+            Self::Table => Some(1.3),
+        }
+    }
 }
 
 /// Flow over the sill with a free surface, Q = 2.9 b H^1.5.
@@ -98,7 +121,43 @@ pub fn orifice(width: Length, height: Length, head: Length) -> Result<Flow, Flow
 /// As [`weir`] and [`orifice`]; lesser-of as in FHWA-NHI-10-009 (HEC-22, 3rd ed., 2009), section 8.4.4 for risers.
 pub fn closed(width: Length, height: Length, head: Length) -> Result<(Flow, Branch), FlowError> {
     let (b, h) = (positive("width", width)?, positive("height", height)?);
-    Ok(closed_flow(b, h, not_negative("head", head)?))
+    Ok(closed_flow(b, h, not_negative("head", head)?, Transition::LesserOf))
+}
+
+/// Flow through a closed opening at any head, with the transition of one's choice.
+///
+/// | symbol | argument | unit | range |
+/// |---|---|---|---|
+/// | b | `width`, clear opening | in | above 0; tabulated 6 to 24 |
+/// | h | `height`, clear opening | in | above 0; tabulated 4 and 6 |
+/// | H | `head` over the sill | in | 0 or more; tabulated 1 to 8 |
+/// | | `transition` | | |
+///
+/// # Errors
+/// [`FlowError::Unusable`] for a dimension that is not above zero or a head below zero.
+///
+/// # Source
+/// As [`weir`] and [`orifice`]; the band 1.0 to 1.4 h is in FHWA-NHI-10-009 (HEC-22, 3rd ed., 2009), section 4.4.5.
+///
+/// # Example
+/// ```
+/// # use brimline::{hydraulics::practice::{self, Transition}, units::Length};
+/// let flow = |transition| {
+///     practice::closed_by(Length::inches(12.0), Length::inches(4.0), Length::inches(5.0), transition)
+/// };
+/// assert_eq!(format!("{:.1}", flow(Transition::Linear)?.0.to_gpm()), "349.2");
+/// assert_eq!(format!("{:.0}", flow(Transition::Table)?.0.to_gpm()), "354"); // as printed in the table
+/// assert_eq!(format!("{:.1}", flow(Transition::LesserOf)?.0.to_gpm()), "357.5");
+/// # Ok::<(), brimline::hydraulics::FlowError>(())
+/// ```
+pub fn closed_by(
+    width: Length,
+    height: Length,
+    head: Length,
+    transition: Transition,
+) -> Result<(Flow, Branch), FlowError> {
+    let (b, h) = (positive("width", width)?, positive("height", height)?);
+    Ok(closed_flow(b, h, not_negative("head", head)?, transition))
 }
 
 fn weir_flow(b: f64, head: f64) -> Flow {
@@ -110,13 +169,19 @@ fn orifice_flow(b: f64, h: f64, head: f64) -> Flow {
     Flow::from_m3_per_s(ORIFICE_GPM_IN * SI_PER_GPM_IN * per_root_inch(b * h * (head - h / 2.0).sqrt()))
 }
 
-fn closed_flow(b: f64, h: f64, head: f64) -> (Flow, Branch) {
+fn closed_flow(b: f64, h: f64, head: f64, transition: Transition) -> (Flow, Branch) {
     let weir = weir_flow(b, head);
     if head <= h {
         return (weir, Branch::Weir);
     }
-    let orifice = orifice_flow(b, h, head);
-    if orifice < weir { (orifice, Branch::Orifice) } else { (weir, Branch::Weir) }
+    match transition.line_ends_at().map(|ratio| ratio * h) {
+        None => lesser_of(weir, orifice_flow(b, h, head)),
+        Some(end) if head < end => {
+            let (low, high) = (weir_flow(b, h), orifice_flow(b, h, end));
+            (low + (high - low) * ((head - h) / (end - h)), Branch::Transition)
+        }
+        Some(_) => (orifice_flow(b, h, head), Branch::Orifice),
+    }
 }
 
 /// Metres to the power 2.5 as square metres times root inches.
@@ -133,7 +198,7 @@ mod tests {
         Length::inches(value)
     }
 
-    /// Coefficients of both forms in SI and in feet. Source: conversion by hand, hydraulics reference figures 2.18 to 2.20.
+    /// Coefficients of both forms in SI and in feet. Source: conversion by hand.
     #[test]
     fn coefficients_convert_exactly() {
         let one = weir(Length::from_m(1.0), Length::from_m(1.0)).unwrap().m3_per_s();
