@@ -87,6 +87,8 @@ pub enum Regime {
     Shut,
     /// Free surface over the sill.
     Weir,
+    /// Between free surface and full.
+    Transition,
     /// The opening runs full.
     Orifice,
     /// Between two rows of the rating table.
@@ -104,6 +106,7 @@ impl Regime {
             Self::Dry => "dry",
             Self::Shut => "shut",
             Self::Weir => "weir",
+            Self::Transition => "transition",
             Self::Orifice => "orifice",
             Self::Table => "table",
             Self::BelowTable => "below table",
@@ -240,6 +243,7 @@ impl Device {
             Self::Closed { width, height } => practice::closed(*width, *height, head).map(|(flow, branch)| {
                 let regime = match branch {
                     Branch::Weir => Regime::Weir,
+                    Branch::Transition => Regime::Transition,
                     Branch::Orifice => Regime::Orifice,
                 };
                 Discharge { flow, regime }

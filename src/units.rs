@@ -1,6 +1,6 @@
 //! Quantities: a number with a unit is a type, SI inside.
 //!
-//! Units are read at the edge of the program ([`read`]) and shown at its edge (`report`); everything between computes in
+//! Units are read at the edge of the program (their `FromStr`) and shown at its edge (`report`); everything between computes in
 //! metres, cubic metres a second and pascals. A length typed as `"6 in"` is kept on a whole number of nanometres, so that
 //! `"6 in"`, `"152.4 mm"` and `"0.5 ft"` are the same [`Length`] to the last bit; widths are added and compared as whole
 //! nanometres ([`Length::nm`]) and never as rounded sums.

@@ -421,7 +421,7 @@ mod tests {
         assert_relative_eq!(Dimension::ReturnPeriod.read("100 yr").unwrap(), 100.0);
     }
 
-    /// 100 mm/h is 277.78 l/(s ha) and 1.667 mm/min. Source: hydraulics reference figures, unit arithmetic.
+    /// 100 mm/h is 277.78 l/(s ha) and 1.667 mm/min. 1 ha is 1e4 m2, 1 l is 1e-3 m3: unit arithmetic.
     #[test]
     fn intensities_in_the_forms_of_several_codes() {
         let hundred = Dimension::Intensity.read("100 mm/h").unwrap();
