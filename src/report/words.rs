@@ -166,18 +166,28 @@ impl Words {
         format!("{} of {} at {}", group.count, self.name(group.size), self.size(group.set_height))
     }
 
-    /// All groups of a layout.
+    /// All groups of a layout; a set height that they share is said once.
     pub(super) fn layout(self, layout: &Ranked<'_>) -> String {
-        layout.groups.iter().map(|placed| self.group(&placed.group)).collect::<Vec<_>>().join(" + ")
+        let groups: Vec<_> = layout.groups.iter().map(|placed| placed.group).collect();
+        let shared = groups.iter().all(|group| group.set_height.nm() == groups[0].set_height.nm());
+        if groups.len() < 2 || !shared {
+            return groups.iter().map(|group| self.group(group)).collect::<Vec<_>>().join(" + ");
+        }
+        let sizes: Vec<_> =
+            groups.iter().map(|group| format!("{} of {}", group.count, self.name(group.size))).collect();
+        format!("{}, all at {}", sizes.join(" + "), self.size(groups[0].set_height))
     }
 
-    /// The windows of a layout's groups; one where all are alike.
+    /// The windows of a layout's groups: one where all are alike, else each with its tag.
     pub(super) fn window(self, groups: &[Placed<'_>]) -> String {
         let one = |placed: &Placed<'_>| {
             let (from, to) = (self.bare_size(placed.from), self.depth_down(placed.to));
             if placed.from.nm() == placed.to.nm() { format!("{from} only") } else { format!("{from} to {to}") }
         };
         let mut all: Vec<_> = groups.iter().map(one).collect();
+        if all.iter().any(|window| *window != all[0]) {
+            all = groups.iter().map(|placed| format!("{} {}", placed.group.size.tag, one(placed))).collect();
+        }
         all.dedup();
         all.join(", ")
     }

@@ -1,0 +1,238 @@
+//! The whole program: examples and README as they stand, formats, exit codes, and the same bytes each time.
+
+use std::path::Path;
+use std::process::{Command, Output};
+
+fn brimline(arguments: &[&str]) -> Output {
+    let binary = snapbox::cmd::cargo_bin!("brimline");
+    let mut command = Command::new(binary);
+    command.args(arguments).current_dir(env!("CARGO_MANIFEST_DIR")).env("NO_COLOR", "1");
+    command.output().expect("the program starts")
+}
+
+fn stdout(output: &Output) -> String {
+    String::from_utf8(output.stdout.clone()).expect("UTF-8")
+}
+
+fn json(example: &str, more: &[&str]) -> serde_json::Value {
+    let path = format!("examples/{example}.toml");
+    let output = brimline(&[&["size", &path, "--format", "json"], more].concat());
+    serde_json::from_slice(&output.stdout).expect("JSON")
+}
+
+fn examples() -> Vec<String> {
+    let folder = Path::new(env!("CARGO_MANIFEST_DIR")).join("examples");
+    let entries = std::fs::read_dir(folder).expect("examples");
+    let mut names: Vec<String> = entries
+        .map(|entry| entry.expect("an entry").path())
+        .filter(|path| path.extension().is_some_and(|extension| extension == "toml"))
+        .map(|path| path.file_stem().expect("a name").to_string_lossy().into_owned())
+        .collect();
+    names.sort();
+    names
+}
+
+#[test]
+fn every_example_says_what_it_shows_and_runs() {
+    let names = examples();
+    assert!(names.len() >= 4, "{names:?}");
+    for name in names {
+        let path = format!("examples/{name}.toml");
+        let text = std::fs::read_to_string(Path::new(env!("CARGO_MANIFEST_DIR")).join(&path)).expect("readable");
+        assert!(text.starts_with("# ") && text.lines().next().is_some_and(|line| line.len() > 40), "{name}");
+        for format in ["table", "json", "csv", "md"] {
+            let output = brimline(&["size", &path, "--format", format]);
+            let wanted = i32::from(name.contains("infeasible"));
+            assert_eq!(output.status.code(), Some(wanted), "{name} as {format}");
+            assert!(output.stderr.is_empty(), "{name} as {format}: {}", String::from_utf8_lossy(&output.stderr));
+            assert!(!output.stdout.is_empty(), "{name} as {format}");
+        }
+    }
+}
+
+/// A line of dots stands for any number of lines.
+fn matches(wanted: &[&str], found: &[&str]) -> bool {
+    match wanted {
+        [] => found.is_empty(),
+        ["...", rest @ ..] => (0..=found.len()).any(|skipped| matches(rest, &found[skipped..])),
+        [line, rest @ ..] => found.first().is_some_and(|first| first.trim_end() == *line) && matches(rest, &found[1..]),
+    }
+}
+
+/// Arguments of a command line, with words in double quotes kept whole.
+fn words(line: &str) -> Vec<String> {
+    let mut words = Vec::new();
+    for (index, part) in line.split('"').enumerate() {
+        if index % 2 == 1 {
+            words.push(part.to_string());
+        } else {
+            words.extend(part.split_whitespace().map(str::to_string));
+        }
+    }
+    words
+}
+
+#[test]
+fn every_command_of_the_readme_prints_what_stands_there() {
+    let readme = std::fs::read_to_string(Path::new(env!("CARGO_MANIFEST_DIR")).join("README.md")).expect("readable");
+    let blocks: Vec<&str> =
+        readme.split("```console\n").skip(1).map(|rest| rest.split("```").next().expect("a block")).collect();
+    assert!(blocks.len() >= 2, "the README shows commands");
+    for block in blocks {
+        let mut lines = block.lines();
+        let command = lines.next().and_then(|line| line.strip_prefix("$ ")).expect("a command line");
+        let arguments = command.strip_prefix("cargo run --release -- ").or(command.strip_prefix("brimline "));
+        let arguments = words(arguments.unwrap_or_else(|| panic!("not a command of ours: {command}")));
+        let mut wanted: Vec<&str> = lines.collect();
+        let code = wanted.first().and_then(|line| line.strip_prefix("? ")).map(|code| code.parse().expect("a code"));
+        if code.is_some() {
+            wanted.remove(0);
+        }
+        let output = brimline(&arguments.iter().map(String::as_str).collect::<Vec<_>>());
+        assert_eq!(output.status.code(), Some(code.unwrap_or(0)), "{command}");
+        let text = stdout(&output);
+        let found: Vec<&str> = text.lines().collect();
+        assert!(matches(&wanted, &found), "{command} prints:\n{text}\nThe README says:\n{}", wanted.join("\n"));
+    }
+}
+
+#[test]
+fn the_project_of_the_readme_reads_and_has_layouts() {
+    let root = Path::new(env!("CARGO_MANIFEST_DIR"));
+    let readme = std::fs::read_to_string(root.join("README.md")).expect("readable");
+    let project = readme.split("```toml\n").nth(1).and_then(|rest| rest.split("```").next()).expect("a project");
+    // Beside the catalogs, as the README says.
+    let path = root.join("target").join("readme-project.toml");
+    std::fs::write(&path, project.replace("catalogs/", "../catalogs/")).expect("writable");
+    let output = brimline(&["size", path.to_str().expect("UTF-8")]);
+    assert_eq!(output.status.code(), Some(0), "{}", String::from_utf8_lossy(&output.stderr));
+    assert!(stdout(&output).contains("main roof"));
+}
+
+#[test]
+fn the_readme_lists_every_default_as_the_code_takes_it() {
+    let readme = std::fs::read_to_string(Path::new(env!("CARGO_MANIFEST_DIR")).join("README.md")).expect("readable");
+    for default in &brimline::input::DEFAULTS {
+        let row = format!("| `{}` | {} | {} |", default.key, default.value, default.meaning);
+        assert!(readme.contains(&row), "the README lacks: {row}");
+    }
+}
+
+#[test]
+fn json_has_the_promised_keys_and_adds_up() {
+    let document = json("harbour-depot", &[]);
+    assert_eq!(document["format"], "brimline size 1");
+    assert_eq!(document["title"], "Harbour depot");
+    assert!(document["assumptions"].as_array().is_some_and(|lines| !lines.is_empty()));
+    assert!(document["cautions"].as_array().is_some_and(|lines| !lines.is_empty()));
+    let areas = document["areas"].as_array().expect("areas");
+    assert_eq!(areas.len(), 3);
+    for area in areas {
+        assert_eq!(area["outcome"], "optimal");
+        assert!(area.get("why").is_none());
+        for (index, layout) in area["layouts"].as_array().expect("layouts").iter().enumerate() {
+            assert_eq!(layout["rank"], index + 1);
+            assert!(layout["cost"].is_f64() && layout["beyond_range"].is_boolean());
+            let mut most = 0.0_f64;
+            for case in layout["cases"].as_array().expect("cases") {
+                let demand = case["demand_m3_s"].as_f64().expect("a demand");
+                let groups = case["groups"].as_array().expect("groups");
+                let sum: f64 = groups.iter().map(|group| group["flow_m3_s"].as_f64().expect("a flow")).sum();
+                assert!((sum - demand).abs() < 1e-9 * demand, "{sum} of {demand}");
+                for group in groups {
+                    for key in ["head_m", "flow_m3_s", "working", "regime", "freeboard_m"] {
+                        assert!(group.get(key).is_some(), "{key}");
+                    }
+                }
+                // 62.4 lb/ft3 is 9802.3 N/m3; the north bay has 0.4 in of ponding head.
+                let ponding = if area["name"] == "north bay" { 0.4 * 0.0254 } else { 0.0 };
+                let depth = case["water_depth_m"].as_f64().expect("a depth");
+                let load = case["load_pa"].as_f64().expect("a load");
+                assert!((load - 9802.3 * (depth + ponding)).abs() < 0.5, "{load} at {depth}");
+                most = most.max(case["utilisation"].as_f64().expect("a utilisation"));
+            }
+            assert!(most <= 1.0 + 1e-12);
+            assert_eq!(layout["governing"]["utilisation"].as_f64(), Some(most));
+            for group in layout["groups"].as_array().expect("groups") {
+                for key in ["device", "kind", "width_m", "height_m", "count", "set_height_m", "law"] {
+                    assert!(group.get(key).is_some(), "{key}");
+                }
+                let height = |key: &str| group[key].as_f64().expect("a height");
+                assert!(height("set_height_from_m") <= height("set_height_m"));
+                assert!(height("set_height_m") <= height("set_height_to_m") + 1e-12);
+            }
+        }
+    }
+}
+
+#[test]
+fn an_area_without_a_layout_says_why_and_the_others_are_answered() {
+    let output = brimline(&["size", "examples/light-roof-infeasible.toml", "--format", "json"]);
+    assert_eq!(output.status.code(), Some(1));
+    let document: serde_json::Value = serde_json::from_slice(&output.stdout).expect("JSON");
+    assert_eq!(document["areas"][0]["outcome"], "infeasible");
+    assert!(document["areas"][0]["layouts"].as_array().is_some_and(Vec::is_empty));
+    let why = document["areas"][0]["why"].as_str().expect("a reason");
+    assert!(
+        why.starts_with("Nothing here holds long span under 20 psf in \"one blocked\": the best reaches "),
+        "{why}"
+    );
+    assert_eq!(document["areas"][1]["outcome"], "optimal");
+}
+
+#[test]
+fn one_thread_and_two_give_the_same_bytes() {
+    let binary = snapbox::cmd::cargo_bin!("brimline");
+    let run = |threads: &str| {
+        let mut command = Command::new(binary);
+        command.args(["size", "examples/harbour-depot.toml", "--format", "json", "--all", "--keep", "50"]);
+        command.current_dir(env!("CARGO_MANIFEST_DIR")).env("RAYON_NUM_THREADS", threads);
+        command.output().expect("the program starts").stdout
+    };
+    let one = run("1");
+    assert!(one.len() > 10_000);
+    assert_eq!(one, run("2"));
+    assert_eq!(one, run("2"));
+}
+
+#[test]
+fn an_area_and_a_number_can_be_asked_for() {
+    let document = json("harbour-depot", &["--area", "south bay", "--keep", "2"]);
+    let areas = document["areas"].as_array().expect("areas");
+    assert_eq!(areas.len(), 1);
+    assert_eq!(areas[0]["name"], "south bay");
+    assert_eq!(areas[0]["layouts"].as_array().map(Vec::len), Some(2));
+}
+
+#[test]
+fn the_schedule_has_a_row_for_each_group() {
+    let text = stdout(&brimline(&["size", "examples/mixed-pool.toml", "--format", "csv"]));
+    let document = json("mixed-pool", &[]);
+    let layouts = document["areas"][0]["layouts"].as_array().expect("layouts");
+    let groups: usize = layouts.iter().map(|layout| layout["groups"].as_array().map_or(0, Vec::len)).sum();
+    assert_eq!(text.lines().count(), groups + 1);
+    assert!(text.starts_with("area,outcome,rank,cost,device,kind,width_in,height_in,count,set_height_in,"), "{text}");
+}
+
+#[test]
+fn the_work_repeats_the_numbers_of_the_table() {
+    let text = stdout(&brimline(&["size", "examples/harbour-depot.toml", "--area", "south bay", "--work"]));
+    // 0.0103896 * 7400 * 6.3 = 484.4; 30 / 5.2 = 5.769. Worked by hand.
+    assert!(text.contains("Q = 0.0103896 x 7,400 x 6.3 = 484.4 gpm (with 0.0104: 484.8 gpm)"), "{text}");
+    assert!(text.contains("30 / 5.2 = 5.769 in by load"), "{text}");
+}
+
+#[test]
+fn a_result_goes_to_a_file_when_one_is_named() {
+    let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("target").join("program-output.md");
+    let _ = std::fs::remove_file(&path);
+    let output =
+        brimline(&["size", "examples/mixed-pool.toml", "--format", "md", "--output", path.to_str().expect("UTF-8")]);
+    assert_eq!(output.status.code(), Some(0));
+    assert!(output.stdout.is_empty());
+    let text = std::fs::read_to_string(&path).expect("written");
+    assert!(text.starts_with("# Mixed pool: overflow drainage, primary drains blocked\n\n"));
+    let rows: Vec<&str> = text.lines().filter(|line| line.starts_with('|')).collect();
+    let columns = |row: &str| row.matches('|').count();
+    assert!(rows.len() > 3 && rows.iter().all(|row| columns(row) == columns(rows[0])), "{text}");
+}
