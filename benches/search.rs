@@ -2,7 +2,7 @@
 
 use std::sync::Arc;
 
-use brimline::device::{Device, Place, Size};
+use brimline::device::{Choice, Device, Following, Place, Size};
 use brimline::roof::layout::{self, Group};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm, demand, working_capacity};
 use brimline::search::{self, Answer, Criterion, Options, Outcome};
@@ -25,6 +25,9 @@ fn sizes() -> Vec<Size> {
         price: Some(Money::nearest(250.0 + 14.0 * f64::from(width) + 9.0 * f64::from(height))),
         set_heights: None,
         source: None,
+        law: None,
+        screen: 1.0,
+        following: Following::default(),
     };
     (6..=36).flat_map(|width| [4, 6, 8, 10].map(|height| size(width, height))).collect()
 }
@@ -60,6 +63,7 @@ fn area(index: u32) -> Catchment {
         count: 1..=12,
         set_heights: Some((8..=16).map(|quarter| Length::from_nm(quarter * 6_350_000)).collect()),
         limits: vec![load(28), load(34), load(30)],
+        channel: None,
     }
 }
 
@@ -72,7 +76,16 @@ fn roof(areas: u32) -> Roof {
         source: None,
     };
     let demands = demand::flows(&storm, &areas).expect("no circle");
-    Roof { title: "bench".into(), system: System::Us, storm, cases: cases(), areas, sizes: sizes(), demands }
+    Roof {
+        title: "bench".into(),
+        system: System::Us,
+        storm,
+        cases: cases(),
+        areas,
+        sizes: sizes(),
+        choice: Choice::default(),
+        demands,
+    }
 }
 
 fn options(rank_by: &[Criterion], mix: usize) -> Options {

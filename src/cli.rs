@@ -4,8 +4,13 @@ use std::io::{self, IsTerminal, Write};
 use std::path::PathBuf;
 use std::process::ExitCode;
 
-use clap::{Parser, Subcommand};
+use clap::{Parser, Subcommand, ValueEnum};
 
+use crate::input::Faults;
+use crate::report::Format;
+
+mod catalog;
+mod rate;
 mod size;
 
 /// Exit code for input that cannot be used.
@@ -28,6 +33,32 @@ struct Cli {
 #[derive(Debug, Subcommand)]
 enum Command {
     Size(size::Args),
+    Rate(Box<rate::Args>),
+    Catalog(catalog::Args),
+}
+
+/// The forms of a result.
+#[derive(Clone, Copy, Debug, ValueEnum)]
+enum Form {
+    /// Tables for reading.
+    Table,
+    /// One JSON document, SI, for other programs.
+    Json,
+    /// Rows for a spreadsheet.
+    Csv,
+    /// Markdown.
+    Md,
+}
+
+impl From<Form> for Format {
+    fn from(form: Form) -> Self {
+        match form {
+            Form::Table => Self::Table,
+            Form::Json => Self::Json,
+            Form::Csv => Self::Csv,
+            Form::Md => Self::Markdown,
+        }
+    }
 }
 
 /// Why a command ends without a result.
@@ -37,6 +68,18 @@ enum Failure {
     Message(String),
     /// The reader of our output went away: not our fault, and nobody is there to be told.
     PipeClosed,
+}
+
+impl Failure {
+    /// A message about the command line, with what would pass.
+    fn said(what: &str, help: &str) -> Self {
+        Self::Message(format!("error: {what}\n  = help: {help}"))
+    }
+}
+
+/// All faults of the files that were read.
+fn faults(found: &Faults) -> Failure {
+    Failure::Message(found.render(coloured_messages()))
 }
 
 impl From<io::Error> for Failure {
@@ -55,6 +98,8 @@ pub fn run() -> ExitCode {
     let cli = Cli::parse();
     let done = match &cli.command {
         Command::Size(args) => size::run(args),
+        Command::Rate(args) => rate::run(args),
+        Command::Catalog(args) => catalog::run(args),
     };
     match done {
         Ok(code) => code,
@@ -71,10 +116,13 @@ fn coloured_messages() -> bool {
     io::stderr().is_terminal() && std::env::var_os("NO_COLOR").is_none_or(|value| value.is_empty())
 }
 
-/// Width of the reader's terminal in characters; that of a printed page where there is none.
-fn width() -> usize {
+/// Width of the reader's terminal in characters; that of a printed page where there is none, or the result goes to a file.
+fn width(file: Option<&PathBuf>) -> usize {
     const PAGE: usize = 120;
     const NARROWEST: usize = 60;
+    if file.is_some() {
+        return PAGE;
+    }
     comfy_table::Table::new().width().map_or(PAGE, |width| usize::from(width).clamp(NARROWEST, PAGE))
 }
 

@@ -2,6 +2,7 @@
 
 use std::path::Path;
 
+use crate::device::Size;
 use crate::roof::Roof;
 use crate::search::Options;
 
@@ -10,6 +11,7 @@ mod catalog;
 mod defaults;
 mod fault;
 mod file;
+mod flow;
 mod grid;
 mod project;
 mod rating;
@@ -38,6 +40,26 @@ pub struct Assumed {
     pub default: &'static Default,
     /// Names of the areas for which it was taken; empty where it holds for the whole roof.
     pub areas: Vec<String>,
+}
+
+/// A catalog as its file gives it.
+#[derive(Clone, Debug)]
+pub struct Catalog {
+    /// Its title, or its path where it has none.
+    pub title: String,
+    /// Every size of every device, in the order of the file.
+    pub sizes: Vec<Size>,
+}
+
+/// Reads a catalog and the rating tables that it names.
+///
+/// # Errors
+/// Every fault of the catalog and its tables, each with its place.
+pub fn read_catalog(path: &Path) -> Result<Catalog, Faults> {
+    let log = fault::Log::default();
+    let catalog = catalog::read_alone(path, &log);
+    let faults = log.into_faults();
+    catalog.filter(|_| !faults.any_error()).ok_or(faults)
 }
 
 /// Reads a project and all files that it names.

@@ -35,6 +35,7 @@
 //! - [`roof`][mod@roof]: storm, areas, cases, limits, the level of a pond
 //! - [`device`][mod@device]: what lets water out, and how much
 //! - [`hydraulics`][mod@hydraulics]: published equations with their ranges and sources
+//! - [`root`][mod@root]: where a function changes its sign, by argmin
 //! - [`units`][mod@units]: quantities
 
 pub mod cli;
@@ -43,6 +44,7 @@ pub mod hydraulics;
 pub mod input;
 pub mod report;
 pub mod roof;
+pub mod root;
 pub mod rules;
 pub mod search;
 pub mod units;

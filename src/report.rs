@@ -3,14 +3,18 @@
 //! Nothing here computes a level or a rank; it says what the model and the search hand over, in the units of the project
 //! (JSON: SI, with the unit in each key), with the assumptions that were made and the cautions that apply to this very roof.
 
+use crate::device::{Law, Site, Size};
 use crate::input::Assumed;
 use crate::roof::Roof;
-use crate::search::{Answer, Options};
+use crate::search::{Answer, Options, UnderLaw};
+use crate::units::{Flow, Length, System};
 
+mod contents;
 mod json;
 mod notes;
 mod page;
 mod ranking;
+mod rate;
 mod schedule;
 mod words;
 mod work;
@@ -41,6 +45,8 @@ pub struct Sized<'a, 'r> {
     pub answers: &'a [Answer<'r>],
     /// Whether the arithmetic of each area's first layout is written out.
     pub work: bool,
+    /// Each answer's first layout under every law that it can follow; empty where that is not asked for.
+    pub laws: &'a [Vec<UnderLaw>],
 }
 
 /// Writes a report of sized areas; `width` is that of the terminal, in characters.
@@ -51,4 +57,53 @@ pub fn size(sized: &Sized<'_, '_>, format: Format, width: usize) -> String {
         Format::Json => json::document(sized),
         Format::Csv => schedule::rows(sized),
     }
+}
+
+/// What a report of one device's flows is made of.
+#[derive(Clone, Debug)]
+pub struct Rated<'a> {
+    /// The device.
+    pub size: &'a Size,
+    /// Where it stands.
+    pub site: Site,
+    /// Its sill above the roof before it, for laws that ask.
+    pub sill: Length,
+    /// The laws, in the order in which they are shown.
+    pub laws: Vec<Law>,
+    /// Whether every law of its kind was asked for.
+    pub all: bool,
+    /// The heads at which flows are shown.
+    pub heads: Vec<Length>,
+    /// The flow for which heads are shown instead.
+    pub flow: Option<Flow>,
+    /// The units.
+    pub system: System,
+}
+
+pub use rate::head_for;
+
+/// Writes what a device passes under each law.
+pub fn rate(rated: &Rated<'_>, format: Format, width: usize) -> String {
+    rate::write(rated, format, width)
+}
+
+/// Writes what is in a catalog.
+pub fn contents(sizes: &[Size], title: &str, system: System, format: Format, width: usize) -> String {
+    contents::write(sizes, title, system, format, width)
+}
+
+/// A number for another program: no separator of thousands, no zeros at its end.
+fn plain(value: f64, decimals: usize) -> String {
+    let text = format!("{value:.decimals$}");
+    if text.contains('.') { text.trim_end_matches('0').trim_end_matches('.').to_string() } else { text }
+}
+
+/// Rows as CSV.
+fn written(rows: &[Vec<String>]) -> String {
+    let mut writer = csv::Writer::from_writer(Vec::new());
+    for row in rows {
+        // Writing to memory does not fail.
+        let _ = writer.write_record(row);
+    }
+    writer.into_inner().ok().and_then(|bytes| String::from_utf8(bytes).ok()).unwrap_or_default()
 }

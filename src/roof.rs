@@ -6,13 +6,13 @@
 
 use std::ops::RangeInclusive;
 
-use crate::device::{Kind, Size};
+use crate::device::{Choice, Kind, Law, Site, Size};
 use crate::units::{Area, Flow, Intensity, Length, Load, ReturnPeriod, System, Time};
 
+pub mod channel;
 pub mod demand;
 pub mod layout;
 mod pool;
-pub mod root;
 mod situation;
 
 pub use pool::{MOST_GROUPS, Outlet, Pool, Share, working, working_capacity};
@@ -64,6 +64,8 @@ pub struct Case {
     pub rain: f64,
     /// Factor on every device's flow.
     pub discharge: f64,
+    /// The flow law of every device that can follow it, in place of the project's choice.
+    pub law: Option<Law>,
 }
 
 impl Case {
@@ -76,6 +78,7 @@ impl Case {
             opening_loss: Length::ZERO,
             rain: 1.0,
             discharge: 1.0,
+            law: None,
         }
     }
 }
@@ -129,6 +132,8 @@ pub struct Catchment {
     pub set_heights: Option<Vec<Length>>,
     /// What holds in each case of the roof, in their order.
     pub limits: Vec<Limits>,
+    /// The gutter or valley between its far end and its devices, where there is one.
+    pub channel: Option<channel::Channel>,
 }
 
 impl Catchment {
@@ -153,11 +158,23 @@ pub struct Roof {
     pub areas: Vec<Catchment>,
     /// Every size of every catalog, in the order of the files.
     pub sizes: Vec<Size>,
+    /// The flow laws chosen.
+    pub choice: Choice,
     /// Flow that each area must pass under the storm, in the order of the areas; from [`demand::flows`].
     pub demands: Vec<Flow>,
 }
 
 impl Roof {
+    /// What the flow of an area's devices depends on besides their dimensions, under another law where one is given.
+    pub fn site(&self, area: usize, law: Option<Law>) -> Site {
+        let catchment = &self.areas[area];
+        Site {
+            choice: law.map_or(self.choice, |law| self.choice.under(law)),
+            thickness: catchment.parapet.thickness,
+            floor: catchment.roof_at_wall,
+        }
+    }
+
     /// Everything that decides about one area in one case.
     pub fn situation(&self, area: usize, case: usize) -> Situation<'_> {
         let catchment = &self.areas[area];
@@ -167,6 +184,8 @@ impl Roof {
             limits: catchment.limits[case],
             ponding_head: catchment.ponding_head.unwrap_or(Length::ZERO),
             parapet: catchment.parapet.height,
+            site: self.site(area, self.cases[case].law),
+            channel: catchment.channel,
         }
     }
 

@@ -46,7 +46,16 @@ pub enum Misfit {
     },
 }
 
-/// The set heights at which a size may stand in an area, rising.
+/// Where a size may stand in an area.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Stand {
+    /// The set heights that a layout may be reported at, rising; never empty.
+    pub heights: Vec<Length>,
+    /// The highest to which it may be lifted: the end of its range, or where the top of its opening meets the parapet's.
+    pub highest: Length,
+}
+
+/// The set heights at which a size may stand in an area.
 ///
 /// They are the size's own that lie within the area's range, or the area's where the size has none; for an edge device
 /// those not below the roof surface at the parapet; for a closed opening under a parapet of known height those at which
@@ -54,7 +63,7 @@ pub enum Misfit {
 ///
 /// # Errors
 /// The rule that leaves none, in that order.
-pub fn stands(size: &Size, area: &Catchment) -> Result<Vec<Length>, Misfit> {
+pub fn stands(size: &Size, area: &Catchment) -> Result<Stand, Misfit> {
     let kind = size.device.kind();
     if !area.takes(kind) {
         return Err(Misfit::Kind { found: kind });
@@ -73,14 +82,17 @@ pub fn stands(size: &Size, area: &Catchment) -> Result<Vec<Length>, Misfit> {
             return Err(Misfit::RoofAtWall { highest, roof: area.roof_at_wall });
         }
     }
+    let mut highest = heights[heights.len() - 1];
     if let (true, Some(parapet), Some(opening)) = (at_edge, area.parapet.height, size.device.height()) {
         let top = heights[0] + opening;
-        heights.retain(|&height| (height + opening).nm() < parapet.nm());
+        let under = Length::from_nm(parapet.nm() - opening.nm() - 1);
+        heights.retain(|&height| height <= under);
         if heights.is_empty() {
             return Err(Misfit::Parapet { top, parapet });
         }
+        highest = highest.min(under);
     }
-    Ok(heights)
+    Ok(Stand { heights, highest })
 }
 
 fn in_range(size: &Size, area: &Catchment) -> Result<Vec<Length>, Misfit> {

@@ -7,9 +7,9 @@
 
 use rayon::prelude::*;
 
-use crate::device::Size;
+use crate::device::{Law, Regime, Site, Size};
 use crate::hydraulics::limits::Range;
-use crate::roof::layout::{self, CaseState, Group, highest_lift};
+use crate::roof::layout::{self, CaseState, Group, Water, highest_lift};
 use crate::roof::{Governing, Roof, Situation};
 use crate::rules::Misfit;
 use crate::units::{Length, Money};
@@ -61,14 +61,32 @@ pub struct Ranked<'r> {
     pub cost: Option<Money>,
     /// How it stands in each case, in the order of the cases.
     pub states: Vec<CaseState>,
+    /// The highest level that each case allows.
+    pub allowed: Vec<Length>,
     /// The case that governs.
     pub case: usize,
     /// The limit that governs there; none where the layout is overwhelmed.
     pub governing: Option<Governing>,
     /// Published ranges that it leaves in some case, each once with the value farthest out.
     pub beyond: Vec<(&'static Range, f64)>,
+    /// The same layout under the laws of a thick wall, where the thickness of the parapet is given and it has scuppers that
+    /// follow a thinner one.
+    pub thick_wall: Vec<UnderLaw>,
     /// The most by which straight lines between rated rows raise its flow over logarithmic ones, as a part of the demand.
     pub chord: f64,
+}
+
+/// A layout under another flow law.
+#[derive(Clone, Copy, Debug)]
+pub struct UnderLaw {
+    /// The law, followed by every device that can.
+    pub law: Law,
+    /// The case that governs the layout under the project's law.
+    pub case: usize,
+    /// The water in it; none where the layout is overwhelmed.
+    pub water: Option<Water>,
+    /// The first case in which the layout no longer holds.
+    pub breaks: Option<usize>,
 }
 
 /// How the search of one area ended.
@@ -164,11 +182,64 @@ fn ranked<'r>(problem: &Problem<'r>, found: &Found) -> Ranked<'r> {
         cost: layout::cost(&groups),
         case,
         governing,
-        beyond: beyond(&groups, &states),
+        beyond: beyond(&groups, &states, &problem.situations),
+        thick_wall: thick_wall(problem, &groups, case),
         chord: chord(&groups, &states, &problem.situations),
         groups: placed.collect(),
         states,
+        allowed: problem.allowed.clone(),
     }
+}
+
+/// The layout under the laws of a thick wall, where they differ from those it has.
+fn thick_wall(problem: &Problem<'_>, groups: &[Group<'_>], case: usize) -> Vec<UnderLaw> {
+    let site = &problem.situations[case].site;
+    if site.thickness.is_none() {
+        return Vec::new();
+    }
+    let differs = |law: Law| {
+        groups.iter().any(|group| {
+            let own = group.size.law_at(site);
+            own != law
+                && !own.needs_thickness()
+                && group.size.law_at(&Site { choice: site.choice.under(law), ..*site }) == law
+        })
+    };
+    let laws = [Law::Throat, Law::ShortCrest].into_iter().filter(|&law| differs(law));
+    laws.map(|law| under_law(&problem.situations, &problem.allowed, groups, case, law)).collect()
+}
+
+/// An answer's layout under every law that one of its devices can follow.
+pub fn under_every_law(roof: &Roof, area: usize, layout: &Ranked<'_>) -> Vec<UnderLaw> {
+    let situations = roof.situations(area);
+    let allowed: Vec<_> = situations.iter().map(Situation::allowable_level).collect();
+    let groups: Vec<_> = layout.groups.iter().map(|placed| placed.group).collect();
+    let can = |law: &Law| {
+        let site = roof.site(area, Some(*law));
+        let thick = site.thickness.is_some() || !law.needs_thickness();
+        thick
+            && groups.iter().any(|group| group.size.law_at(&site) == *law && group.size.device.kind().laws().len() > 1)
+    };
+    let laws = Law::ALL.into_iter().filter(can);
+    laws.map(|law| under_law(&situations, &allowed, &groups, layout.case, law)).collect()
+}
+
+fn under_law(
+    situations: &[Situation<'_>],
+    allowed: &[Length],
+    groups: &[Group<'_>],
+    case: usize,
+    law: Law,
+) -> UnderLaw {
+    let mut situations = situations.to_vec();
+    for situation in &mut situations {
+        situation.site.choice = situation.site.choice.under(law);
+    }
+    let holds = |(situation, &allowed): (&Situation<'_>, &Length)| {
+        layout::pool(groups, situation).capacity(allowed) >= situation.demand
+    };
+    let breaks = situations.iter().zip(allowed).position(|pair| !holds(pair));
+    UnderLaw { law, case, water: layout::state(groups, &situations[case]).water, breaks }
 }
 
 /// The case with the highest utilisation, the first of equals; an overwhelmed case governs over all.
@@ -176,22 +247,27 @@ fn governing(states: &[CaseState]) -> (usize, Option<Governing>) {
     let used = |state: &CaseState| state.water.map_or(f64::INFINITY, |water| water.governing.utilisation);
     let mut most = 0;
     for (case, state) in states.iter().enumerate() {
-        if used(state) > used(&states[most]) {
+        // A last bit does not make one case govern over another.
+        if used(state) > used(&states[most]) + 1e-9 {
             most = case;
         }
     }
     (most, states[most].water.map(|water| water.governing))
 }
 
-/// The published ranges that the drawn openings leave, or that their heads leave in some case.
-fn beyond(groups: &[Group<'_>], states: &[CaseState]) -> Vec<(&'static Range, f64)> {
+/// The published ranges that the drawn openings leave, or that their heads leave in some case; of an opening whose flow a law
+/// had to be continued for, also those that it leaves as built.
+fn beyond(groups: &[Group<'_>], states: &[CaseState], situations: &[Situation<'_>]) -> Vec<(&'static Range, f64)> {
     let mut all: Vec<(&'static Range, f64)> = Vec::new();
-    for state in states {
-        for (group, stands) in groups.iter().zip(&state.groups) {
-            if stands.share.working == 0 {
-                continue;
-            }
-            for (range, value) in group.size.device.beyond_range(stands.share.head) {
+    for (state, situation) in states.iter().zip(situations) {
+        for (group, stands) in groups.iter().zip(&state.groups).filter(|(_, stands)| stands.share.working > 0) {
+            let left = |loss| {
+                let (curve, _) = group.size.curve(&situation.site, group.set_height, loss);
+                curve.beyond_range(stands.share.head)
+            };
+            let continued = stands.share.each.regime == Regime::BeyondRange;
+            let as_built = if continued { left(situation.case.opening_loss) } else { Vec::new() };
+            for (range, value) in left(Length::ZERO).into_iter().chain(as_built) {
                 let out = |value: f64| (range.low - value).max(value - range.high);
                 match all.iter_mut().find(|(known, _)| std::ptr::eq(*known, range)) {
                     Some((_, known)) if out(value) > out(*known) => *known = value,
@@ -210,9 +286,9 @@ fn chord(groups: &[Group<'_>], states: &[CaseState], situations: &[Situation<'_>
             .iter()
             .zip(&state.groups)
             .map(|(group, stands)| {
-                group.size.device.chord_excess(stands.share.head).m3_per_s()
-                    * situation.case.discharge
-                    * f64::from(stands.share.working)
+                let (curve, _) = group.size.curve(&situation.site, group.set_height, situation.case.opening_loss);
+                let each = curve.chord_excess(stands.share.head).m3_per_s() * situation.case.discharge;
+                each * f64::from(stands.share.working)
             })
             .sum();
         excess / state.demand.m3_per_s()

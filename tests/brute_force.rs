@@ -8,7 +8,7 @@ use std::cmp::Ordering;
 use std::collections::HashSet;
 use std::sync::Arc;
 
-use brimline::device::{Device, Kind, Place, Rating, Size};
+use brimline::device::{Choice, Device, Following, Kind, Place, Rating, Size};
 use brimline::roof::layout::{self, Asked, Group, Liftable};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm};
 use brimline::search::{self, Criterion, Options, Outcome, Why};
@@ -80,6 +80,9 @@ fn sizes(dice: &mut Dice) -> Vec<Size> {
                 price: Some(Money::nearest(100.0 * (1 + dice.upto(5)) as f64)),
                 set_heights: own,
                 source: None,
+                law: None,
+                screen: 1.0,
+                following: Following::default(),
             }
         })
         .collect();
@@ -97,6 +100,7 @@ fn cases(dice: &mut Dice) -> Vec<Case> {
             opening_loss: on_grid(Length::inches(dice.pick(&[0.0, 0.0, 0.25, 1.5]))),
             rain: dice.pick(&[1.0, 1.0, 1.3]),
             discharge: dice.pick(&[1.0, 1.0, 0.8]),
+            law: None,
         })
         .collect()
 }
@@ -133,10 +137,20 @@ fn roof(dice: &mut Dice) -> Roof {
         count: least..=least + dice.upto(3) as u32,
         set_heights: Some((0..=2).map(|step| on_grid(Length::inches((grid_start + step) as f64 * 0.75))).collect()),
         limits,
+        channel: None,
     };
     let storm = Storm { intensity: Intensity::from_m_per_s(3e-5), duration: None, return_period: None, source: None };
     let demands = vec![storm.intensity * catchment.area];
-    Roof { title: String::new(), system: System::Us, storm, cases, areas: vec![catchment], sizes, demands }
+    Roof {
+        title: String::new(),
+        system: System::Us,
+        storm,
+        cases,
+        areas: vec![catchment],
+        sizes,
+        choice: Choice::default(),
+        demands,
+    }
 }
 
 fn options(dice: &mut Dice) -> Options {
@@ -155,21 +169,23 @@ fn options(dice: &mut Dice) -> Options {
     }
 }
 
-/// The heights at which a size may stand, by the words of the search's rules.
-fn heights(size: &Size, area: &Catchment) -> Vec<Length> {
+/// The heights at which a size may stand and the highest it may be lifted to, by the words of the search's rules.
+fn heights(size: &Size, area: &Catchment) -> (Vec<Length>, Length) {
     let grid = area.set_heights.as_ref().expect("given above");
     let (least, most) = (grid[0], grid[grid.len() - 1]);
     let mut heights: Vec<Length> = match &size.set_heights {
         Some(own) => own.iter().copied().filter(|&height| height >= least && height <= most).collect(),
         None => grid.clone(),
     };
+    let mut highest = heights.last().copied().unwrap_or(Length::ZERO);
     if size.place == Place::Edge {
         heights.retain(|&height| height >= area.roof_at_wall);
         if let (Some(parapet), Some(opening)) = (area.parapet.height, size.device.height()) {
             heights.retain(|&height| (height + opening).nm() < parapet.nm());
+            highest = highest.min(Length::from_nm(parapet.nm() - opening.nm() - 1));
         }
     }
-    heights
+    (heights, highest)
 }
 
 struct Tried {
@@ -190,7 +206,7 @@ fn fit<'r>(roof: &'r Roof, groups: &[(usize, u32)]) -> Option<(Vec<Liftable<'r>>
     let mut stands = Vec::new();
     for &(index, count) in groups {
         let size = &roof.sizes[index];
-        let heights = heights(size, area);
+        let (heights, highest) = heights(size, area);
         if !area.takes(size.device.kind()) || heights.is_empty() {
             return None;
         }
@@ -199,7 +215,7 @@ fn fit<'r>(roof: &'r Roof, groups: &[(usize, u32)]) -> Option<(Vec<Liftable<'r>>
             edge += size.device.width().map_or(0, Length::nm) * i64::from(count);
         }
         let group = Group { size, count, set_height: heights[0] };
-        liftable.push(Liftable { group, highest: heights[heights.len() - 1] });
+        liftable.push(Liftable { group, highest });
         stands.push(heights);
     }
     if let Some(most) = area.edge
@@ -221,7 +237,12 @@ fn utilisation(groups: &[Group<'_>], situations: &[Situation<'_>]) -> f64 {
     situations.iter().map(used).fold(f64::NEG_INFINITY, f64::max)
 }
 
-fn try_layout(roof: &Roof, options: &Options, situations: &[Situation<'_>], groups: &[(usize, u32)]) -> Option<Tried> {
+fn try_layout<'r>(
+    roof: &'r Roof,
+    options: &Options,
+    situations: &[Situation<'r>],
+    groups: &[(usize, u32)],
+) -> Option<Tried> {
     let (liftable, stands) = fit(roof, groups)?;
     let count: u32 = groups.iter().map(|&(_, count)| count).sum();
     let lowest = at_lowest(&liftable);
@@ -236,20 +257,35 @@ fn try_layout(roof: &Roof, options: &Options, situations: &[Situation<'_>], grou
         (None, _) => false,
     };
     let reported: Vec<Group<'_>> = if high {
-        let lift = layout::highest_lift(&liftable, situations, asked).expect("holds at the lowest");
-        let mut lifted = Vec::new();
-        for (liftable, heights) in liftable.iter().zip(&stands) {
-            let end = liftable.lifted(lift).set_height;
-            let on_grid = heights.iter().copied().filter(|&height| height <= end);
-            lifted.push(Group { set_height: on_grid.fold(heights[0], Length::max), ..liftable.group });
+        let end = layout::highest_lift(&liftable, situations, asked).expect("holds at the lowest");
+        let mut lifts: Vec<Length> = stands.iter().flat_map(|h| h.iter().map(move |&height| height - h[0])).collect();
+        lifts.retain(|&lift| lift <= end);
+        lifts.sort_by(|a, b| b.m().total_cmp(&a.m()));
+        let standing = lifts.iter().map(|&lift| {
+            let down = |(liftable, heights): (&Liftable<'r>, &Vec<Length>)| {
+                let at = liftable.lifted(lift).set_height;
+                let on_grid = heights.iter().copied().filter(|&height| height <= at);
+                Group { set_height: on_grid.fold(heights[0], Length::max), ..liftable.group }
+            };
+            liftable.iter().zip(&stands).map(down).collect::<Vec<_>>()
+        });
+        let holds =
+            |groups: &Vec<Group<'_>>| situations.iter().all(|situation| layout::holds(groups, situation, asked));
+        let reported = standing.into_iter().find(holds).unwrap_or(lowest);
+        if let Some(freeboard) = options.freeboard {
+            for state in situations.iter().map(|situation| layout::state(&reported, situation)) {
+                assert!(state.groups.iter().all(|g| g.freeboard.is_none_or(|kept| kept.m() >= freeboard.m() - 1e-12)));
+            }
         }
-        lifted
+        reported
     } else {
         lowest
     };
     let load = situations
         .iter()
-        .map(|situation| layout::state(&reported, situation).water.map_or(f64::INFINITY, |water| water.level.m()))
+        .map(|situation| {
+            layout::state(&reported, situation).water.map_or(f64::INFINITY, |water| water.level.nm() as f64)
+        })
         .fold(f64::NEG_INFINITY, f64::max);
     let value = |criterion| match criterion {
         Criterion::Cost => layout::cost(&reported).expect("all priced").amount(),

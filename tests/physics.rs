@@ -2,7 +2,7 @@
 //! and bisection, and the laws that hold whatever the numbers.
 
 use approx::assert_abs_diff_eq;
-use brimline::device::{Device, Place, Rating, Size};
+use brimline::device::{Device, Following, Place, Rating, Site, Size};
 use brimline::roof::layout::{self, Asked, Group, Liftable};
 use brimline::roof::{Case, Limits, Situation};
 use brimline::search::{self, Criterion, Outcome};
@@ -17,7 +17,17 @@ fn inches(value: f64) -> Length {
 }
 
 fn size(device: Device, place: Place) -> Size {
-    Size { tag: "T".into(), device, place, price: None, set_heights: None, source: None }
+    Size {
+        tag: "T".into(),
+        device,
+        place,
+        price: None,
+        set_heights: None,
+        source: None,
+        law: None,
+        screen: 1.0,
+        following: Following::default(),
+    }
 }
 
 /// One whole roof by hand. Area 5000 ft2 and half of 800 ft2 of wall, 4 in/h:
@@ -79,6 +89,8 @@ fn published_example_of_a_rain_load() {
         limits: Limits { load: Some(Load::psf(30.0)), depth: None },
         ponding_head: Length::ZERO,
         parapet: None,
+        site: Site::default(),
+        channel: None,
     };
     let group = Group { size: &channel, count: 1, set_height: inches(2.0) };
     let water = layout::state(&[group], &situation).water.unwrap();
@@ -100,6 +112,8 @@ fn published_example_of_a_drain() {
         limits: Limits { load: Some(Load::psf(30.0)), depth: None },
         ponding_head: Length::ZERO,
         parapet: None,
+        site: Site::default(),
+        channel: None,
     };
     let water = layout::state(&[Group { size: &drain, count: 1, set_height: inches(2.0) }], &situation).water.unwrap();
     assert_abs_diff_eq!(water.load.to_psf(), 16.611, epsilon = 1e-3);
@@ -128,6 +142,7 @@ fn random() -> impl Strategy<Value = Random> {
             opening_loss: inches(loss),
             rain,
             discharge,
+            law: None,
         };
         (pieces, case, gpm)
     })
@@ -160,6 +175,8 @@ fn situation(case: &Case, gpm: f64) -> Situation<'_> {
         limits: Limits { load: Some(Load::psf(28.0)), depth: None },
         ponding_head: inches(0.3),
         parapet: None,
+        site: Site::default(),
+        channel: None,
     }
 }
 

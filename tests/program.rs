@@ -211,7 +211,10 @@ fn the_schedule_has_a_row_for_each_group() {
     let layouts = document["areas"][0]["layouts"].as_array().expect("layouts");
     let groups: usize = layouts.iter().map(|layout| layout["groups"].as_array().map_or(0, Vec::len)).sum();
     assert_eq!(text.lines().count(), groups + 1);
-    assert!(text.starts_with("area,outcome,rank,cost,device,kind,width_in,height_in,count,set_height_in,"), "{text}");
+    assert!(
+        text.starts_with("area,outcome,rank,cost,device,kind,width_in,height_in,diameter_in,count,set_height_in,"),
+        "{text}"
+    );
 }
 
 #[test]

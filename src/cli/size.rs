@@ -4,13 +4,11 @@ use std::io::{self, Write};
 use std::path::PathBuf;
 use std::process::ExitCode;
 
-use clap::ValueEnum;
-
 use crate::input::{self, Project};
 use crate::report::{self, Format, Sized};
-use crate::search::{self, Outcome};
+use crate::search::{self, Answer, Outcome};
 
-use super::{Failure, coloured_messages, deliver, width};
+use super::{Failure, Form, coloured_messages, deliver, faults, width};
 
 /// Rank the layouts that keep each area of a roof within its limits.
 ///
@@ -38,22 +36,13 @@ pub(super) struct Args {
     /// Write out the arithmetic of each area's first layout, as by hand.
     #[arg(long)]
     work: bool,
-}
-
-#[derive(Clone, Copy, Debug, ValueEnum)]
-enum Form {
-    /// Tables for reading.
-    Table,
-    /// One JSON document, SI, for other programs.
-    Json,
-    /// A schedule, one row for each group of each layout.
-    Csv,
-    /// Markdown.
-    Md,
+    /// Show each area's first layout under every flow law that its devices can follow.
+    #[arg(long)]
+    laws: bool,
 }
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
-    let project = input::read(&args.roof).map_err(|faults| Failure::Message(faults.render(coloured_messages())))?;
+    let project = input::read(&args.roof).map_err(|found| faults(&found))?;
     for warning in &project.warnings.0 {
         let _ = writeln!(io::stderr(), "{}\n", warning.render(coloured_messages()));
     }
@@ -64,15 +53,20 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         options.keep = keep as usize;
     }
     let answers = search::size(&project.roof, &options, &areas);
-    let sized =
-        Sized { roof: &project.roof, options: &options, assumed: &project.assumed, answers: &answers, work: args.work };
-    let format = match args.format {
-        Form::Table => Format::Table,
-        Form::Json => Format::Json,
-        Form::Csv => Format::Csv,
-        Form::Md => Format::Markdown,
+    let first = |answer: &Answer<'_>| match &answer.outcome {
+        Outcome::Optimal(layouts) => search::under_every_law(&project.roof, answer.area, &layouts[0]),
+        Outcome::Infeasible(_) => Vec::new(),
     };
-    deliver(&report::size(&sized, format, width()), args.output.as_ref())?;
+    let laws: Vec<_> = if args.laws { answers.iter().map(first).collect() } else { Vec::new() };
+    let sized = Sized {
+        roof: &project.roof,
+        options: &options,
+        assumed: &project.assumed,
+        answers: &answers,
+        work: args.work,
+        laws: &laws,
+    };
+    deliver(&report::size(&sized, Format::from(args.format), width(args.output.as_ref())), args.output.as_ref())?;
     let infeasible = answers.iter().any(|answer| matches!(answer.outcome, Outcome::Infeasible(_)));
     Ok(if infeasible { ExitCode::from(1) } else { ExitCode::SUCCESS })
 }

@@ -8,10 +8,21 @@ use crate::units::{Flow, Length};
 
 use super::{Discharge, Regime};
 
+/// How a table is read between two of its rows.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Interpolation {
+    /// On a straight line, as the codes allow.
+    #[default]
+    Linear,
+    /// On a straight line through logarithms of head and flow: exact where the device is a weir.
+    LogLog,
+}
+
 /// A head-flow table: heads above zero and rising, flows above zero and never falling.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Rating {
     rows: Vec<(Length, Flow)>,
+    interpolation: Interpolation,
 }
 
 /// Why rows are no rating; the index is that of the offending row as given.
@@ -69,7 +80,7 @@ impl Rating {
         if rows.is_empty() && faults.is_empty() {
             faults.push(RatingFault::Empty);
         }
-        if faults.is_empty() { Ok(Self { rows }) } else { Err(faults) }
+        if faults.is_empty() { Ok(Self { rows, interpolation: Interpolation::Linear }) } else { Err(faults) }
     }
 
     /// The rows, heads rising.
@@ -87,23 +98,54 @@ impl Rating {
         self.rows[self.rows.len() - 1].0
     }
 
-    /// Flow under a head above zero, straight lines between rows.
+    /// The same table, read in another way between its rows.
+    #[must_use]
+    pub fn read_by(self, interpolation: Interpolation) -> Self {
+        Self { interpolation, ..self }
+    }
+
+    /// How it is read between its rows.
+    pub fn interpolation(&self) -> Interpolation {
+        self.interpolation
+    }
+
+    /// The table of a width between two: where both have rows, the straight line between them in width.
+    ///
+    /// `share` is 0 at the first and 1 at the second. Between the rows of either table both are straight in head, so a row
+    /// at each of their heads is all that is needed.
+    ///
+    /// # Errors
+    /// The faults of the rows between; none where the tables share a range of heads.
+    pub fn between(low: &Self, high: &Self, share: f64) -> Result<Self, Vec<RatingFault>> {
+        let first = low.rows[0].0.max(high.rows[0].0);
+        let last = low.last_head().min(high.last_head());
+        let mut heads: Vec<Length> = low.rows.iter().chain(&high.rows).map(|&(head, _)| head).collect();
+        heads.sort_by_key(|head| head.nm());
+        heads.dedup_by_key(|head| head.nm());
+        heads.retain(|&head| head >= first && head <= last);
+        let flow = |head| low.linear(head) * (1.0 - share) + high.linear(head) * share;
+        Self::new(&heads.into_iter().map(|head| (head, flow(head))).collect::<Vec<_>>())
+    }
+
+    /// Flow under a head above zero, read in its own way between rows.
     pub(super) fn discharge(&self, head: Length) -> Discharge {
-        self.read(head, |(head_a, flow_a), (head_b, flow_b)| {
-            flow_a + (flow_b - flow_a) * ((head - head_a) / (head_b - head_a))
-        })
+        match self.interpolation {
+            Interpolation::Linear => self.read(head, straight(head)),
+            Interpolation::LogLog => self.read(head, logarithmic(head)),
+        }
     }
 
-    /// Flow under a head above zero, read on logarithms of head and flow between rows: exact where the device is a weir.
+    /// Flow under a head above zero, straight lines between rows.
+    pub fn linear(&self, head: Length) -> Flow {
+        self.read(head, straight(head)).flow
+    }
+
+    /// Flow under a head above zero, read on logarithms of head and flow between rows.
     pub fn log_log(&self, head: Length) -> Flow {
-        let between = |(head_a, flow_a): (Length, Flow), (head_b, flow_b): (Length, Flow)| {
-            let share = (head / head_a).ln() / (head_b / head_a).ln();
-            flow_a * (share * (flow_b / flow_a).ln()).exp()
-        };
-        self.read(head, between).flow
+        self.read(head, logarithmic(head)).flow
     }
 
-    fn read(&self, head: Length, between: impl Fn((Length, Flow), (Length, Flow)) -> Flow) -> Discharge {
+    fn read(&self, head: Length, between: impl Fn(Row, Row) -> Flow) -> Discharge {
         let above = self.rows.partition_point(|&(row, _)| row < head);
         let (flow, regime) = match above {
             0 if head == self.rows[0].0 => (self.rows[0].1, Regime::Table),
@@ -117,6 +159,19 @@ impl Rating {
             row => (between(self.rows[row - 1], self.rows[row]).min(self.rows[row].1), Regime::Table),
         };
         Discharge { flow, regime }
+    }
+}
+
+type Row = (Length, Flow);
+
+fn straight(head: Length) -> impl Fn(Row, Row) -> Flow {
+    move |(head_a, flow_a), (head_b, flow_b)| flow_a + (flow_b - flow_a) * ((head - head_a) / (head_b - head_a))
+}
+
+fn logarithmic(head: Length) -> impl Fn(Row, Row) -> Flow {
+    move |(head_a, flow_a), (head_b, flow_b)| {
+        let share = (head / head_a).ln() / (head_b / head_a).ln();
+        flow_a * (share * (flow_b / flow_a).ln()).exp()
     }
 }
 

@@ -226,6 +226,11 @@ impl Inlet {
         Ok(Flow::from_m3_per_s(x * self.unit_flow))
     }
 
+    /// The x of a flow, Ku Q / (A D^0.5), by which the parts of the form are told apart.
+    pub fn unit_ratio(&self, flow: Flow) -> f64 {
+        flow.m3_per_s() / self.unit_flow
+    }
+
     fn x(&self, flow: Flow) -> Result<f64, FlowError> {
         Ok(zero_or_more("flow", flow.m3_per_s())? / self.unit_flow)
     }

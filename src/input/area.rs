@@ -1,17 +1,20 @@
 //! The areas of a project, and what runs onto what.
 
 use std::collections::HashMap;
+use std::ops::RangeInclusive;
 
 use crate::device::Kind;
-use crate::roof::demand::Circle;
-use crate::roof::{Catchment, Limits, Parapet, Receipt};
-use crate::units::{Area, Dimension, Length};
+use crate::roof::demand::{self, Circle};
+use crate::roof::{Catchment, Limits, Parapet, Receipt, Roof, Storm};
+use crate::units::{Area, Dimension, Flow, Intensity, Length};
 
 use super::Assumed;
-use super::defaults::{SHARE, WALL_SHARE, default};
+use super::catalog::Offer;
+use super::defaults::{COUNT, SHARE, WALL_SHARE, default};
 use super::fault::{Fault, Span};
+use super::flow;
 use super::grid::{self, Least};
-use super::project::{Setting, limits_of, read_count, unique};
+use super::project::{Setting, is_named, limits_of, read_count, unique};
 use super::section::{Cell, Keys, Section, any_of, near, optional};
 
 static AREA: Keys = Keys {
@@ -33,9 +36,9 @@ static AREA: Keys = Keys {
         "kinds",
         "count",
         "set_height",
+        "channel",
     ],
     unsupported: &[
-        ("channel", "a gutter or valley between the far end and the device"),
         ("low_point", "elevations above a project datum"),
         ("slope", "the slope of the roof"),
         ("distance", "the distance from the low point to the parapet"),
@@ -58,50 +61,88 @@ static RECEIPT: Keys = Keys {
     unsupported: &[("what", "the choice between overflow and primary flow")],
 };
 
-/// An area as the file gives it, with the names of those it receives from still to be found.
-struct Given<'a> {
-    area: Catchment,
-    receives: Vec<(Cell<'a>, String, f64)>,
+/// What one area receives, with the name of the other still to be found.
+struct GivenReceipt<'a> {
+    cell: Cell<'a>,
+    from: String,
+    share: f64,
 }
 
-pub(super) fn read_all(
-    project: &Section<'_>,
-    setting: &Setting<'_>,
-    assumed: &mut Vec<Assumed>,
-) -> Option<Vec<Catchment>> {
-    let tables = project.sections("area", &AREA);
-    if tables.is_empty() && project.get("area").is_none() {
+/// An area as the file gives it: of what is at fault nothing.
+#[derive(Default)]
+struct Given<'a> {
+    name: Option<String>,
+    /// Kinds that may stand there, an inner none for any.
+    kinds: Option<Option<Vec<Kind>>>,
+    receives: Vec<GivenReceipt<'a>>,
+    /// All of it but what it receives.
+    area: Option<Catchment>,
+}
+
+/// The areas of a project.
+pub(super) struct Areas {
+    /// All of them, where none is at fault.
+    pub(super) complete: Option<Vec<Catchment>>,
+    /// Kinds that may stand in each area whose kinds can be read, none for any.
+    pub(super) kinds: Vec<Option<Vec<Kind>>>,
+}
+
+pub(super) fn read_all(project: &Section<'_>, setting: &Setting<'_>, assumed: &mut Vec<Assumed>) -> Areas {
+    if project.get("area").is_none() {
         project.missing("the project has no [[area]]", "give one [[area]] for each low point, with name and area");
-        return None;
     }
+    let tables = project.sections("area", &AREA, "a list of areas, each under [[area]]").unwrap_or_default();
     let mut names: Vec<(String, Span)> = Vec::new();
     let mut taken = Taken::default();
-    let given: Vec<_> = tables.iter().map(|table| read_area(table, setting, &mut names, &mut taken)).collect();
-    let index: HashMap<&str, usize> =
-        names.iter().enumerate().map(|(index, (name, _))| (name.as_str(), index)).collect();
-    // A name that is nowhere given is told even where another area is at fault.
-    let mut sound = true;
-    let mut sent = vec![(0.0, None); names.len()];
-    let mut areas = Vec::with_capacity(given.len());
-    for given in given {
-        let Some(mut given) = given else {
-            sound = false;
-            continue;
-        };
-        for (cell, from, share) in given.receives {
-            if let Some(&from) = index.get(from.as_str()) {
-                given.area.receives.push(Receipt { from, share });
-                sent[from].0 += share;
-                sent[from].1 = Some(cell);
-            } else {
-                unknown_area(&cell, &from, index.keys().copied());
-                sound = false;
-            }
-        }
-        areas.push(given.area);
+    let given: Vec<Given<'_>> = tables
+        .iter()
+        .map(|table| match table {
+            Some(table) => read_area(table, setting, &mut names, &mut taken),
+            None => Given::default(),
+        })
+        .collect();
+    if tables.iter().flatten().any(|table| table.get("count").is_none()) {
+        blocked_under_count(project, setting, setting.search.count.as_ref(), setting.search.count_at.as_ref(), None);
     }
-    for ((name, _), (share, last)) in names.iter().zip(&sent) {
-        if let (true, Some(cell)) = (*share > 1.0 + 1e-9, last) {
+    let receipts = find_receipts(&given, tables.iter().all(|table| is_named(table.as_ref())));
+    let runs_one_way = report_circles(project, &given, &receipts);
+    let kinds = given.iter().filter_map(|given| given.kinds.clone()).collect();
+    let complete = given
+        .into_iter()
+        .zip(receipts)
+        .map(|(given, receipts)| {
+            Some(Catchment { receives: receipts.into_iter().collect::<Option<_>>()?, ..given.area? })
+        })
+        .collect::<Option<Vec<_>>>()
+        .filter(|areas| runs_one_way && !areas.is_empty());
+    taken.tell(assumed, tables.len());
+    Areas { complete, kinds }
+}
+
+/// What each area receives, by the index of the other; none where there is no such area, which is told where all are named.
+fn find_receipts(given: &[Given<'_>], all_named: bool) -> Vec<Vec<Option<Receipt>>> {
+    let index: HashMap<&str, usize> =
+        given.iter().enumerate().filter_map(|(index, given)| Some((given.name.as_deref()?, index))).collect();
+    let mut sent = vec![(0.0, None); given.len()];
+    let mut receipts = Vec::with_capacity(given.len());
+    for to in given {
+        let mut found = Vec::with_capacity(to.receives.len());
+        for GivenReceipt { cell, from, share } in &to.receives {
+            let receipt = index.get(from.as_str()).map(|&from| Receipt { from, share: *share });
+            match &receipt {
+                Some(receipt) => {
+                    sent[receipt.from].0 += share;
+                    sent[receipt.from].1 = Some(cell);
+                }
+                None if all_named => unknown_area(cell, from, index.keys().copied()),
+                None => {}
+            }
+            found.push(receipt);
+        }
+        receipts.push(found);
+    }
+    for (given, (share, last)) in given.iter().zip(&sent) {
+        if let (true, Some(cell), Some(name)) = (*share > 1.0 + 1e-9, last, &given.name) {
             cell.reader.warn(
                 cell.span(),
                 format!("areas receive {share} of what leaves `{name}`, more than all of it"),
@@ -110,8 +151,7 @@ pub(super) fn read_all(
             );
         }
     }
-    taken.tell(assumed, areas.len());
-    sound.then_some(areas)
+    receipts
 }
 
 /// The areas for which each default was taken.
@@ -142,7 +182,7 @@ fn read_area<'a>(
     setting: &Setting<'_>,
     names: &mut Vec<(String, Span)>,
     taken: &mut Taken,
-) -> Option<Given<'a>> {
+) -> Given<'a> {
     let name =
         section.need("name", "name the area: name = \"north bay\"").and_then(|cell| unique(&cell, names, "area"));
     let called = name.clone().unwrap_or_default();
@@ -189,27 +229,30 @@ fn read_area<'a>(
         ponding.need("head", "give the extra depth: ponding = { head = \"0.4 in\" }")?.length().map(Some)
     });
     let kinds = section.get("kinds").map_or(Some(None), |cell| read_kinds(&cell, setting).map(Some));
-    let count = section.get("count").map_or(Some(setting.count.clone()), |cell| read_count(&cell));
-    let set_heights = section.get("set_height").map_or_else(
-        || Some(setting.set_heights.map(<[Length]>::to_vec)),
-        |cell| grid::lengths(&cell, Least::Zero).map(Some),
-    );
-    let limits = read_limits(section, setting, &called);
-    let receives = read_receives(section, taken, &called);
-    if let Some(count) = &count {
-        blocked_under_count(section, setting, *count.end(), &called);
+    let count = section.get("count").map_or(setting.search.count.clone(), |cell| read_count(&cell));
+    let set_heights = section
+        .get("set_height")
+        .map_or_else(|| setting.search.set_heights.clone(), |cell| grid::lengths(&cell, Least::Zero).map(Some));
+    let channel = section.get("channel").map(|cell| flow::channel(&cell));
+    if let (Some(kinds), Some(parapet)) = (&kinds, &parapet) {
+        thickness_given(section, setting, kinds.as_ref(), parapet, &called);
     }
-    let (kinds, set_heights) = (kinds?, set_heights?);
-    if set_heights.is_none() && (setting.needs_set_height)(&kinds) {
+    let limits = read_limits(section, setting, &called);
+    let receives = read_receives(section, taken, &called).unwrap_or_default();
+    if let Some(cell) = section.get("count") {
+        blocked_under_count(section, setting, count.as_ref(), Some(&cell.span()), Some(&called));
+    }
+    if let (Some(kinds), Some(None)) = (&kinds, &set_heights)
+        && setting.catalogs.offers.iter().any(|offer| !offer.has_set_heights && takes(kinds.as_ref(), offer.kind))
+    {
         section.missing(
             &format!("no set height is given for `{called}`"),
             "give [search] set_height = { from = \"2 in\", to = \"4 in\", step = \"0.25 in\" }, or set_height in the area",
         );
-        return None;
     }
-    Some(Given {
-        area: Catchment {
-            name: name?,
+    let whole = || {
+        Some(Catchment {
+            name: name.clone()?,
             area: area?,
             wall: wall?,
             wall_share: wall_share?,
@@ -219,13 +262,68 @@ fn read_area<'a>(
             roof_at_wall: roof_at_wall?,
             receives: Vec::new(),
             ponding_head: ponding_head?,
-            kinds,
+            kinds: kinds.clone()?,
             count: count?,
-            set_heights,
+            set_heights: set_heights?,
             limits: limits?,
-        },
-        receives: receives?,
-    })
+            channel: optional(channel)?,
+        })
+    };
+    Given { area: whole(), name, kinds, receives }
+}
+
+/// Refuses an area whose parapet has no thickness where a scupper would follow a law that needs it.
+fn thickness_given(
+    section: &Section<'_>,
+    setting: &Setting<'_>,
+    kinds: Option<&Vec<Kind>>,
+    parapet: &Parapet,
+    called: &str,
+) {
+    let (Some(choice), None) = (setting.choice, parapet.thickness) else { return };
+    let laws = setting.search.laws.iter().flatten().copied();
+    for law in laws.chain([choice.scupper]).chain(setting.catalogs.offers.iter().filter_map(|offer| offer.law)) {
+        let follows = |offer: &Offer| {
+            let chosen = offer.law.is_none_or(|own| own == law);
+            chosen && offer.kind.laws().contains(&law) && takes(kinds, offer.kind)
+        };
+        if law.needs_thickness() && setting.catalogs.offers.iter().any(follows) {
+            section.missing(
+                &format!("the law `{}` needs the thickness of the parapet of `{called}`", law.name()),
+                "give parapet = { thickness = \"10 in\" }",
+            );
+            return;
+        }
+    }
+}
+
+/// Whether the flow in every channel stays subcritical, in every case; where it does not, that is told with its numbers.
+pub(super) fn channels_flow(project: &Section<'_>, roof: &Roof) -> bool {
+    let tables = project.sections("area", &AREA, "a list of areas, each under [[area]]").unwrap_or_default();
+    let mut flows = true;
+    for (index, area) in roof.areas.iter().enumerate() {
+        let cell = tables.get(index).and_then(Option::as_ref).and_then(|table| table.get("channel"));
+        let (Some(channel), Some(cell)) = (area.channel, cell) else { continue };
+        let demand = roof.cases.iter().map(|case| roof.demands[index] * case.rain).fold(Flow::ZERO, Flow::max);
+        if let Err(error) = channel.reach(demand, Length::ZERO) {
+            cell.at_fault(
+                format!(
+                    "the channel of `{}` turns supercritical under {:.4} m3/s: {error}",
+                    area.name,
+                    demand.m3_per_s()
+                ),
+                "water runs faster here than a level can follow",
+                "give a gentler slope or a wider channel, or take it out and hold the limit at the devices",
+            );
+            flows = false;
+        }
+    }
+    flows
+}
+
+/// Whether a kind is among those that may stand somewhere; none for any.
+fn takes(kinds: Option<&Vec<Kind>>, kind: Kind) -> bool {
+    kinds.is_none_or(|kinds| kinds.contains(&kind))
 }
 
 fn read_kinds(cell: &Cell<'_>, setting: &Setting<'_>) -> Option<Vec<Kind>> {
@@ -237,14 +335,13 @@ fn read_kinds(cell: &Cell<'_>, setting: &Setting<'_>) -> Option<Vec<Kind>> {
     }
     let kinds: Vec<Option<Kind>> = items.iter().map(|item| item.word(&choices)).collect();
     let kinds: Vec<Kind> = kinds.into_iter().collect::<Option<_>>()?;
-    if !setting.kinds_in_catalogs.is_empty() && !kinds.iter().any(|kind| setting.kinds_in_catalogs.contains(kind)) {
-        let has: Vec<_> =
-            Kind::ALL.iter().filter(|kind| setting.kinds_in_catalogs.contains(kind)).map(|kind| kind.name()).collect();
-        cell.at_fault(
-            "no catalog has a device of these kinds",
-            "nothing could stand here",
-            format!("the catalogs have {}", any_of(&has)),
-        );
+    let offered = |kind: Kind| setting.catalogs.offers.iter().any(|offer| offer.kind == kind);
+    if setting.catalogs.complete && !kinds.iter().any(|&kind| offered(kind)) {
+        let has: Vec<_> = Kind::ALL.into_iter().filter(|&kind| offered(kind)).map(Kind::name).collect();
+        let fault = Fault::error("no catalog has a device of these kinds")
+            .at(cell.reader.source, cell.span(), "nothing could stand here")
+            .help(format!("the catalogs have {}", any_of(&has)));
+        cell.reader.log.put(fault.absent());
         return None;
     }
     Some(kinds)
@@ -253,34 +350,35 @@ fn read_kinds(cell: &Cell<'_>, setting: &Setting<'_>) -> Option<Vec<Kind>> {
 /// What holds in each case: key by key the area's own limit for the case, its own, the case's, the roof's.
 fn read_limits(section: &Section<'_>, setting: &Setting<'_>, called: &str) -> Option<Vec<Limits>> {
     let own = section.get("limit").map_or(Some(Limits::default()), |cell| limits_of(&cell));
-    let mut in_case = vec![Limits::default(); setting.cases.len()];
+    let cases = &setting.cases.given;
+    let mut in_case = vec![Limits::default(); cases.len()];
     let mut sound = true;
     if let Some(cell) = section.get("limit_in") {
-        for (entry, key) in cell.entries("a table of cases: limit_in = { \"one blocked\" = { load = \"36 psf\" } }") {
-            match setting.cases.iter().position(|given| given.case.name == entry.key) {
-                Some(case) => match limits_of(&entry) {
-                    Some(limits) => in_case[case] = limits,
-                    None => sound = false,
-                },
+        let entries = cell.entries("a table of cases, such as { \"one blocked\" = { load = \"36 psf\" } }");
+        sound = entries.is_some();
+        for (entry, key) in entries.unwrap_or_default() {
+            let limits = limits_of(&entry);
+            sound &= limits.is_some();
+            match cases.iter().position(|given| given.case.name == entry.key) {
+                Some(case) => in_case[case] = limits.unwrap_or_default(),
+                None if setting.cases.names.iter().any(|name| name == entry.key) => {}
                 None => {
-                    unknown_case(&entry, key, setting);
                     sound = false;
+                    if setting.cases.names_complete {
+                        unknown_case(&entry, key, &setting.cases.names);
+                    }
                 }
             }
         }
     }
-    let own = own?;
+    let (own, roof) = (own?, setting.limits?);
     let pick = |given: &[Limits; 4]| Limits {
         load: given.iter().find_map(|limits| limits.load),
         depth: given.iter().find_map(|limits| limits.depth),
     };
-    let limits: Vec<Limits> = setting
-        .cases
-        .iter()
-        .zip(&in_case)
-        .map(|(given, in_case)| pick(&[*in_case, own, given.limits, setting.limits]))
-        .collect();
-    for (given, limits) in setting.cases.iter().zip(&limits) {
+    let limits: Vec<Limits> =
+        cases.iter().zip(&in_case).map(|(given, in_case)| pick(&[*in_case, own, given.limits, roof])).collect();
+    for (given, limits) in cases.iter().zip(&limits) {
         if limits.load.is_none() && limits.depth.is_none() && sound {
             section.missing(
                 &format!("`{called}` has no limit in the case `{}`", given.case.name),
@@ -292,16 +390,14 @@ fn read_limits(section: &Section<'_>, setting: &Setting<'_>, called: &str) -> Op
     sound.then_some(limits)
 }
 
-fn unknown_case(entry: &Cell<'_>, key: Span, setting: &Setting<'_>) {
-    let names: Vec<&str> = setting.cases.iter().map(|given| given.case.name.as_str()).collect();
+fn unknown_case(entry: &Cell<'_>, key: Span, names: &[String]) {
+    let names: Vec<&str> = names.iter().map(String::as_str).collect();
     let did_you =
         near(entry.key, names.iter().copied()).map_or(String::new(), |near| format!("did you mean \"{near}\"? "));
-    entry.reader.fault(
-        key,
-        format!("there is no case `{}`", entry.key),
-        "not a case of this project",
-        format!("{did_you}the cases are {}", any_of(&names)),
-    );
+    let fault = Fault::error(format!("there is no case `{}`", entry.key))
+        .at(entry.reader.source, key, "not a case of this project")
+        .help(format!("{did_you}the cases are {}", any_of(&names)));
+    entry.reader.log.put(fault.absent());
 }
 
 fn unknown_area<'n>(cell: &Cell<'_>, from: &str, names: impl Iterator<Item = &'n str>) {
@@ -309,17 +405,19 @@ fn unknown_area<'n>(cell: &Cell<'_>, from: &str, names: impl Iterator<Item = &'n
     names.sort_unstable();
     let did_you = near(from, names.iter().copied()).map_or(String::new(), |near| format!("did you mean \"{near}\"? "));
     names.truncate(12);
-    cell.at_fault(
-        format!("there is no area `{from}`"),
-        "not an area of this project",
-        format!("{did_you}areas are {}", any_of(&names)),
-    );
+    let fault = Fault::error(format!("there is no area `{from}`"))
+        .at(cell.reader.source, cell.span(), "not an area of this project")
+        .help(format!("{did_you}areas are {}", any_of(&names)));
+    cell.reader.log.put(fault.absent());
 }
 
-fn read_receives<'a>(section: &Section<'a>, taken: &mut Taken, called: &str) -> Option<Vec<(Cell<'a>, String, f64)>> {
-    let entries = section.sections("receives", &RECEIPT);
+fn read_receives<'a>(section: &Section<'a>, taken: &mut Taken, called: &str) -> Option<Vec<GivenReceipt<'a>>> {
+    let wanted = "a list, such as [{ from = \"north bay\", share = 0.5 }]";
+    if section.get("receives").is_none() {
+        return Some(Vec::new());
+    }
     let mut receives = Vec::new();
-    for entry in &entries {
+    for entry in section.sections("receives", &RECEIPT, wanted)?.into_iter().flatten() {
         let from = entry.need("from", "name the area it comes from: from = \"north bay\"");
         let share = match entry.get("share") {
             Some(cell) => cell.number_positive().filter(|&share| {
@@ -333,41 +431,87 @@ fn read_receives<'a>(section: &Section<'a>, taken: &mut Taken, called: &str) -> 
                 Some(SHARE)
             }
         };
-        let from = from?;
-        receives.push((from, from.text()?.to_string(), share?));
+        // A share at fault is told; where the water comes from is looked at all the same.
+        if let Some((cell, from)) = from.and_then(|cell| Some((cell, cell.text()?.to_string()))) {
+            receives.push(GivenReceipt { cell, from, share: share.unwrap_or(0.0) });
+        }
     }
     Some(receives)
 }
 
-/// Refuses a case that blocks every device an area may have.
-fn blocked_under_count(section: &Section<'_>, setting: &Setting<'_>, most: u32, called: &str) {
-    for given in setting.cases {
+/// Refuses a case that blocks every device an area may have: an area with a count of its own, or all that have none.
+fn blocked_under_count(
+    section: &Section<'_>,
+    setting: &Setting<'_>,
+    count: Option<&RangeInclusive<u32>>,
+    count_at: Option<&Span>,
+    called: Option<&str>,
+) {
+    let Some(most) = count.map(|count| *count.end()) else { return };
+    for given in &setting.cases.given {
         let (Some(at), true) = (&given.blocked_at, given.case.blocked >= most) else { continue };
+        let place = called.map_or(String::new(), |called| format!(" in `{called}`"));
         let mut fault = Fault::error(format!(
-            "the case `{}` blocks {} of at most {most} devices in `{called}`: none would be left",
+            "the case `{}` blocks {} of at most {most} devices{place}: none would be left",
             given.case.name, given.case.blocked
         ))
         .at(section.reader.source, at.clone(), "not less than the greatest count");
-        if let Some(cell) = section.get("count") {
-            fault = fault.at(section.reader.source, cell.span(), "the greatest count here");
+        if let Some(at) = count_at {
+            fault = fault.at(section.reader.source, at.clone(), "the greatest count");
         }
         section.reader.log.put(fault.help("block fewer devices, or raise the greatest count"));
     }
 }
 
-/// Names the areas that receive from one another in a circle.
-pub(super) fn report_circle(project: &Section<'_>, areas: &[Catchment], circle: &Circle) {
-    let names: Vec<_> = circle.0.iter().map(|&area| format!("`{}`", areas[area].name)).collect();
-    let tables = project.sections("area", &AREA);
-    let title = match &circle.0[..] {
-        [one, _] => format!("`{}` receives from itself", areas[*one].name),
-        _ => format!("areas receive from one another in a circle: {} from {}", names[0], names[1..].join(" from ")),
-    };
-    let mut fault = Fault::error(title);
-    for pair in circle.0.windows(2) {
-        if let Some(cell) = tables.get(pair[0]).and_then(|table| table.get("receives")) {
-            fault = fault.at(project.reader.source, cell.span(), format!("from {}", areas[pair[1]].name));
+/// Names areas that receive from one another in a circle, circle by circle; tells whether there are none.
+fn report_circles(project: &Section<'_>, given: &[Given<'_>], receipts: &[Vec<Option<Receipt>>]) -> bool {
+    // Circles are looked for among areas that have nothing else: faults of other values do not hide them.
+    let dry = Storm { intensity: Intensity::ZERO, duration: None, return_period: None, source: None };
+    let mut areas: Vec<Catchment> =
+        receipts.iter().map(|receives| without_size(receives.iter().flatten().copied().collect())).collect();
+    let mut runs_one_way = true;
+    while let Err(Circle(circle)) = demand::flows(&dry, &areas) {
+        runs_one_way = false;
+        let name = |area: usize| given[area].name.as_deref().unwrap_or_default();
+        let title = match &circle[..] {
+            [one, _] => format!("`{}` receives from itself", name(*one)),
+            _ => {
+                let names: Vec<_> = circle.iter().map(|&area| format!("`{}`", name(area))).collect();
+                format!("areas receive from one another in a circle: {}", names.join(" from "))
+            }
+        };
+        let mut fault = Fault::error(title);
+        for pair in circle.windows(2) {
+            if let Some(receipt) = given[pair[0]].receives.iter().find(|receipt| receipt.from == name(pair[1])) {
+                fault = fault.at(project.reader.source, receipt.cell.span(), format!("runs to `{}`", name(pair[0])));
+            }
+        }
+        project.reader.log.put(fault.help("water runs one way: take one of these out"));
+        // The circle is cut where it closes, so that the next one is seen.
+        if let [.., before, last] = circle[..] {
+            areas[before].receives.retain(|receipt| receipt.from != last);
         }
     }
-    project.reader.log.put(fault.help("water runs one way: take one of these out"));
+    runs_one_way
+}
+
+/// An area that only passes on what it receives.
+fn without_size(receives: Vec<Receipt>) -> Catchment {
+    Catchment {
+        name: String::new(),
+        area: Area::ZERO,
+        wall: Area::ZERO,
+        wall_share: WALL_SHARE,
+        edge: None,
+        gap: Length::ZERO,
+        parapet: Parapet::default(),
+        roof_at_wall: Length::ZERO,
+        receives,
+        ponding_head: None,
+        kinds: None,
+        count: COUNT,
+        set_heights: None,
+        limits: Vec::new(),
+        channel: None,
+    }
 }

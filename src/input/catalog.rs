@@ -1,41 +1,82 @@
 //! Catalogs: devices with a value, a list or a range for each free dimension, and every size that these make.
 
 use std::collections::HashMap;
-use std::path::Path;
+use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
-use crate::device::{Device, Kind, Place, Rating, Size};
-use crate::units::{Dimension, Length, Money, Priced, read_price};
+use crate::device::{Device, Following, Interpolation, Kind, Law, Place, Rating, RingDrain, Size};
+use crate::units::{Area, Dimension, Length, Money, Priced, read_price};
 
+use super::Catalog;
 use super::fault::{Fault, Log, Source, Span};
 use super::grid::{self, Least};
+use super::rating::{self, Ratings};
 use super::section::{Cell, Keys, Reader, Section, optional};
-use super::{file, rating};
+use super::{file, flow};
 
 static CATALOG: Keys = Keys { table: "a catalog", known: &["title", "note", "device"], unsupported: &[] };
 
 static DEVICE: Keys = Keys {
     table: "a [[device]]",
-    known: &["tag", "kind", "width", "height", "place", "rating", "set_height", "price", "source", "note"],
-    unsupported: &[
-        ("law", "a flow law of its own"),
-        ("diameter", "round openings"),
-        ("dam", "ring dams"),
-        ("leader", "what follows the device: a leader"),
-        ("conductor_head", "what follows the device: a conductor head"),
-        ("screen", "a guard in front of the opening"),
-        ("interpolation", "other ways of reading a rating table between its rows"),
+    known: &[
+        "tag",
+        "kind",
+        "width",
+        "height",
+        "diameter",
+        "dam",
+        "dam_height",
+        "free_area",
+        "place",
+        "rating",
+        "interpolation",
+        "law",
+        "screen",
+        "leader",
+        "conductor_head",
+        "set_height",
+        "price",
+        "source",
+        "note",
     ],
+    unsupported: &[],
 };
 
 static PRICE: Keys =
     Keys { table: "`price`", known: &["each", "per_width", "per_height", "per_area"], unsupported: &[] };
 
-const KINDS: [(&str, Kind); 3] = [
-    (Kind::OpenScupper.name(), Kind::OpenScupper),
-    (Kind::ClosedScupper.name(), Kind::ClosedScupper),
-    (Kind::Rated.name(), Kind::Rated),
-];
+/// The dimensions that a kind has, those that it must have first, with how many they are.
+fn dimensions(kind: Kind) -> (&'static [&'static str], usize) {
+    match kind {
+        Kind::OpenScupper | Kind::RoofEdge => (&["width"], 1),
+        Kind::ClosedScupper => (&["width", "height"], 2),
+        Kind::PipeScupper | Kind::Standpipe => (&["diameter"], 1),
+        Kind::OverflowDrain => (&["diameter", "dam", "dam_height", "free_area"], 2),
+        Kind::Rated => (&["rating", "place", "width", "interpolation"], 2),
+    }
+}
+
+/// How a key that a kind must have is written.
+fn example(key: &str) -> &'static str {
+    match key {
+        "width" => "give a value, a list or a range: width = { from = \"6 in\", to = \"24 in\", step = \"1 in\" }",
+        "height" => "give a value, a list or a range: height = [\"4 in\", \"6 in\"]",
+        "diameter" => "give a value, a list or a range of inside diameters: diameter = [\"4 in\", \"6 in\"]",
+        "dam" => "give the diameter of the ring dam: dam = \"10 in\"",
+        "rating" => "name a CSV file of heads and flows: rating = \"drain-4in.csv\"",
+        _ => "say where it stands: place = \"edge\" or place = \"interior\"",
+    }
+}
+
+/// Why a key does not belong to a kind, and what to do about it.
+fn foreign(kind: Kind, key: &str) -> (&'static str, &'static str) {
+    match (kind, key) {
+        (Kind::OpenScupper, "height") => ("it is open at the top", "take it out, or make it a \"closed scupper\""),
+        (Kind::Rated, "height") => ("its table says what it carries", "take it out"),
+        (_, "rating") => ("its flow comes from a law", "take it out, or make the device \"rated\""),
+        _ => ("it has no such dimension", "take it out"),
+    }
+}
 
 /// Where a device stands in its catalog, for messages about it.
 #[derive(Clone, Debug)]
@@ -44,35 +85,96 @@ pub(super) struct Entry {
     pub(super) span: Span,
 }
 
-/// All sizes of all catalogs, and where each tag was given.
-#[derive(Debug, Default)]
-pub(super) struct Catalogs {
-    pub(super) sizes: Vec<Size>,
-    pub(super) entries: HashMap<Arc<str>, Entry>,
+/// What a device would offer if no value of it were at fault: other files are held against it all the same.
+#[derive(Debug)]
+pub(super) struct Offer {
+    pub(super) kind: Kind,
+    pub(super) has_set_heights: bool,
+    pub(super) has_price: bool,
+    /// The law that it follows whatever the project chooses.
+    pub(super) law: Option<Law>,
+    /// Its tag, where it has one.
+    pub(super) tag: Option<Arc<str>>,
+    /// Its tag or its table.
+    pub(super) at: Entry,
 }
 
-/// Reads a catalog that a project names.
-pub(super) fn read(project: &Path, named: &Cell<'_>, log: &Log, into: &mut Catalogs) {
-    let Some(name) = named.text() else { return };
-    let path = file::beside(project, name);
-    let Some(source) = file::read(&path, name, Some(named), log) else { return };
-    let (table, whole) = file::parse(&source, log);
-    let reader = Reader { source: &source, log };
+/// All sizes of all catalogs, and where each tag was given.
+#[derive(Debug)]
+pub(super) struct Catalogs {
+    pub(super) sizes: Vec<Size>,
+    pub(super) offers: Vec<Offer>,
+    /// Whether every catalog was read, and the kind of every device in it.
+    pub(super) complete: bool,
+    entries: HashMap<Arc<str>, Entry>,
+}
+
+impl Catalogs {
+    /// Those that a project names.
+    pub(super) fn read(project: &Path, named: &[Cell<'_>], log: &Log) -> Self {
+        let mut into =
+            Self { sizes: Vec::new(), offers: Vec::new(), complete: !named.is_empty(), entries: HashMap::new() };
+        let mut names: Vec<(PathBuf, Span)> = Vec::new();
+        for cell in named {
+            let Some(name) = cell.text() else {
+                into.complete = false;
+                continue;
+            };
+            let path = file::beside(project, name);
+            let same_file = path.canonicalize().unwrap_or_else(|_| path.clone());
+            if let Some((_, first)) = names.iter().find(|(known, _)| *known == same_file) {
+                let fault = Fault::error(format!("the catalog `{name}` is named twice"))
+                    .at(cell.reader.source, cell.span(), "again here")
+                    .at(cell.reader.source, first.clone(), "first here")
+                    .help("name each catalog once");
+                log.put(fault);
+                continue;
+            }
+            names.push((same_file, cell.span()));
+            into.complete &= read(&path, name, cell, log, &mut into).is_some();
+        }
+        into
+    }
+}
+
+/// A catalog by itself.
+pub(super) fn read_alone(path: &Path, log: &Log) -> Option<Catalog> {
+    let as_written = path.display().to_string();
+    let source = file::read(path, &as_written, None, log)?;
+    let mut into = Catalogs { sizes: Vec::new(), offers: Vec::new(), complete: true, entries: HashMap::new() };
+    let title = read_source(path, &as_written, &source, log, &mut into).0;
+    Some(Catalog { title: title.unwrap_or(as_written), sizes: into.sizes })
+}
+
+/// Reads a catalog; none where it cannot be told what all its devices are.
+fn read(path: &Path, name: &str, named: &Cell<'_>, log: &Log, into: &mut Catalogs) -> Option<()> {
+    let source = file::read(path, name, Some(named), log)?;
+    read_source(path, name, &source, log, into).1
+}
+
+/// The title of a catalog, and whether it can be told what all its devices are.
+fn read_source(
+    path: &Path,
+    name: &str,
+    source: &Arc<Source>,
+    log: &Log,
+    into: &mut Catalogs,
+) -> (Option<String>, Option<()>) {
+    let mut mended = String::new();
+    let table = file::parse(source, &mut mended, log);
+    let reader = Reader { source, log };
     let catalog = Section::open(reader, &CATALOG, table.get_ref(), 0..0);
-    let devices = catalog.sections("device", &DEVICE);
-    if devices.is_empty() && whole && catalog.get("device").is_none() {
-        log.put(
-            Fault::error(format!("`{name}` has no [[device]]"))
-                .at(&source, 0..0, "this file")
-                .help("a catalog is a list of [[device]] tables, each with a tag and a kind"),
-        );
+    let text = |key| catalog.get(key).and_then(|cell| cell.text()).map(str::to_string);
+    let (title, _) = (text("title"), text("note"));
+    let devices = catalog.sections("device", &DEVICE, "a list of devices, each under [[device]]");
+    if catalog.get("device").is_none() {
+        let help = "a catalog is a list of [[device]] tables, each with a tag and a kind";
+        catalog.missing(&format!("`{name}` has no [[device]]"), help);
     }
-    for text in ["title", "note"] {
-        let _ = catalog.get(text).and_then(|cell| cell.text());
-    }
-    for device in devices {
-        read_device(&path, &device, log, into);
-    }
+    let Some(devices) = devices else { return (title, None) };
+    let kinds_known: Vec<Option<()>> =
+        devices.iter().map(|device| read_device(path, device.as_ref()?, log, into)).collect();
+    (title, kinds_known.into_iter().collect::<Option<()>>().filter(|()| log.is_whole(source)))
 }
 
 /// A device as its table gives it. Of each optional key: none where it is absent, and an inner none where its value is at
@@ -80,37 +182,78 @@ pub(super) fn read(project: &Path, named: &Cell<'_>, log: &Log, into: &mut Catal
 struct Given {
     widths: Option<Option<Vec<Length>>>,
     heights: Option<Option<Vec<Length>>>,
+    diameters: Option<Option<Vec<Length>>>,
+    dam: Option<Option<Length>>,
+    dam_height: Option<Option<Length>>,
+    free_area: Option<Option<Area>>,
     set_heights: Option<Option<Vec<Length>>>,
     place: Option<Option<Place>>,
-    rating: Option<Option<Rating>>,
+    rating: Option<Option<Ratings>>,
+    interpolation: Option<Option<Interpolation>>,
+    screen: Option<Option<f64>>,
+    following: Option<Following>,
     price: Option<Option<Price>>,
     source: Option<Arc<str>>,
 }
 
-fn read_device(catalog: &Path, section: &Section<'_>, log: &Log, into: &mut Catalogs) {
+/// Reads a device and adds its sizes; none where its kind cannot be told.
+fn read_device(catalog: &Path, section: &Section<'_>, log: &Log, into: &mut Catalogs) -> Option<()> {
+    let tag_cell = section.get("tag");
     let tag = section
         .need("tag", "a tag is a short name, such as tag = \"RS\"")
         .and_then(|cell| read_tag(&cell, section, log, into));
     let kind = section
-        .need("kind", "a kind is \"open scupper\", \"closed scupper\" or \"rated\"")
-        .and_then(|cell| cell.word(&KINDS));
+        .need("kind", "a kind is what the device is, such as kind = \"closed scupper\"")
+        .and_then(|cell| cell.word(&Kind::ALL.map(|kind| (kind.name(), kind))));
     let _ = section.get("note").and_then(|cell| cell.text());
     let lengths = |key, least| section.get(key).map(|cell| grid::lengths(&cell, least));
     let given = Given {
         widths: lengths("width", Least::AboveZero),
         heights: lengths("height", Least::AboveZero),
+        diameters: lengths("diameter", Least::AboveZero),
+        dam: section.get("dam").map(|cell| cell.positive_length()),
+        dam_height: section.get("dam_height").map(|cell| cell.length()),
+        free_area: section.get("free_area").map(|cell| cell.positive(Dimension::Area, Area::m2)),
         set_heights: lengths("set_height", Least::Zero),
         place: section.get("place").map(|cell| cell.word(&[("edge", Place::Edge), ("interior", Place::Interior)])),
         rating: section.get("rating").map(|cell| rating::read(catalog, &cell, log)),
+        interpolation: section
+            .get("interpolation")
+            .map(|cell| cell.word(&[("linear", Interpolation::Linear), ("log-log", Interpolation::LogLog)])),
+        screen: section.get("screen").map(|cell| read_screen(&cell)),
+        following: flow::following(section),
         price: section.section("price", &PRICE).map(|price| Price::read(&price)),
         source: section.get("source").and_then(|cell| cell.text()).map(Arc::from),
     };
-    let Some(kind) = kind else { return };
+    let kind = kind?;
+    let law = section.get("law").map(|cell| flow::law(&cell, kind));
+    into.offers.push(Offer {
+        kind,
+        law: law.flatten(),
+        has_set_heights: given.set_heights.is_some(),
+        has_price: section.get("price").is_some(),
+        tag: tag_cell.and_then(|cell| cell.text()).map(Arc::from),
+        at: Entry {
+            source: Arc::clone(section.reader.source),
+            span: tag_cell.map_or(section.span.clone(), |cell| cell.span()),
+        },
+    });
     let belongs = given.belongs_to(kind, section);
-    let complete = given.completes(kind, section);
+    let complete = Given::completes(kind, section);
     if let (Some(tag), true, true) = (tag, belongs, complete) {
-        given.make(kind, &tag, section, into);
+        given.make(kind, law, &tag, section, into);
     }
+    Some(())
+}
+
+/// The part of its flow that a guard lets pass.
+fn read_screen(cell: &Cell<'_>) -> Option<f64> {
+    let screen = cell.number_positive()?;
+    if screen > 1.0 {
+        cell.at_fault("`screen` must be a part of one", "above 1", "0.7 lets seven tenths of the flow pass");
+        return None;
+    }
+    Some(screen)
 }
 
 fn read_tag(cell: &Cell<'_>, section: &Section<'_>, log: &Log, into: &mut Catalogs) -> Option<Arc<str>> {
@@ -131,33 +274,36 @@ fn read_tag(cell: &Cell<'_>, section: &Section<'_>, log: &Log, into: &mut Catalo
 impl Given {
     /// Whether every key that is given has a meaning for the kind.
     fn belongs_to(&self, kind: Kind, section: &Section<'_>) -> bool {
-        let refuse = |key: &'static str, why: &str, help: &str| match section.get(key) {
-            Some(cell) => {
+        let (own, _) = dimensions(kind);
+        let all = ["width", "height", "diameter", "dam", "dam_height", "free_area", "rating", "interpolation"];
+        let mut belongs = true;
+        for key in all.into_iter().filter(|key| !own.contains(key)) {
+            if let Some(cell) = section.get(key) {
+                let (why, help) = foreign(kind, key);
                 cell.at_fault(format!("`{key}` does not belong to a device of kind \"{kind}\""), why, help);
-                false
+                belongs = false;
             }
-            None => true,
-        };
-        let scupper = kind != Kind::Rated;
-        let mut belongs = match kind {
-            Kind::OpenScupper => {
-                refuse("height", "it is open at the top", "take it out, or make it a \"closed scupper\"")
-            }
-            Kind::ClosedScupper => true,
-            Kind::Rated => refuse("height", "its table says what it carries", "take it out"),
-        };
-        belongs &=
-            !scupper || refuse("rating", "its flow comes from a law", "take it out, or make the device \"rated\"");
-        if let (true, Some(Some(Place::Interior)), Some(cell)) = (scupper, self.place, section.get("place")) {
-            cell.at_fault(
-                "a scupper stands in the parapet",
-                "not inside the roof",
-                "write \"edge\", or take the key out",
-            );
+        }
+        if let (Some(at_edge), Some(Some(place)), Some(cell)) = (kind.at_edge(), self.place, section.get("place"))
+            && at_edge != (place == Place::Edge)
+        {
+            let (title, label, right) = if at_edge {
+                ("stands in the parapet", "not inside the roof", "edge")
+            } else {
+                ("stands inside the roof", "not in the parapet", "interior")
+            };
+            let named = match kind {
+                Kind::OverflowDrain => "an overflow drain",
+                Kind::Standpipe => "a standpipe",
+                Kind::RoofEdge => "a roof edge",
+                _ => "a scupper",
+            };
+            cell.at_fault(format!("{named} {title}"), label, format!("write \"{right}\", or take the key out"));
             belongs = false;
         }
         let several = self.widths.iter().flatten().any(|widths| widths.len() > 1);
-        if let (false, true, Some(cell)) = (scupper, several, section.get("width")) {
+        let one_table = matches!(self.rating, Some(Some(Ratings::One(_))));
+        if let (true, true, Some(cell)) = (one_table, several, section.get("width")) {
             cell.at_fault(
                 "a rated device has one width: that of its table",
                 "several are given",
@@ -165,54 +311,84 @@ impl Given {
             );
             belongs = false;
         }
+        let (has_width, has_height) = match kind {
+            Kind::OpenScupper | Kind::RoofEdge => (true, false),
+            Kind::ClosedScupper | Kind::PipeScupper => (true, true),
+            Kind::OverflowDrain | Kind::Standpipe => (false, false),
+            Kind::Rated => (self.widths.is_some() || matches!(self.rating, Some(Some(Ratings::ByWidth(_)))), false),
+        };
+        let priced = [
+            ("per_width", has_width, "width"),
+            ("per_height", has_height, "height"),
+            ("per_area", has_width && has_height, "width and height"),
+        ];
+        let price = section.section("price", &PRICE);
+        for (key, _, dimension) in priced.into_iter().filter(|&(_, has_it, _)| !has_it) {
+            if let Some(cell) = price.as_ref().and_then(|price| price.get(key)) {
+                let title = format!("`{key}` needs a device with {dimension}");
+                cell.at_fault(title, "this device has none", "price it with `each`");
+                belongs = false;
+            }
+        }
         belongs
     }
 
     /// Whether every key that the kind needs is given.
-    fn completes(&self, kind: Kind, section: &Section<'_>) -> bool {
-        let needed: &[(bool, &str, &str)] = match kind {
-            Kind::OpenScupper | Kind::ClosedScupper => &[
-                (
-                    self.widths.is_some(),
-                    "width",
-                    "give a value, a list or a range: width = { from = \"6 in\", to = \"24 in\", step = \"1 in\" }",
-                ),
-                (
-                    self.heights.is_some() || kind == Kind::OpenScupper,
-                    "height",
-                    "give a value, a list or a range: height = [\"4 in\", \"6 in\"]",
-                ),
-            ],
-            Kind::Rated => &[
-                (self.rating.is_some(), "rating", "name a CSV file of heads and flows: rating = \"drain-4in.csv\""),
-                (self.place.is_some(), "place", "say where it stands: place = \"edge\" or place = \"interior\""),
-            ],
-        };
-        for (_, key, help) in needed.iter().filter(|(given, ..)| !given) {
-            section.missing(&format!("`{key}` is missing in a device of kind \"{kind}\""), help);
+    fn completes(kind: Kind, section: &Section<'_>) -> bool {
+        let (own, needed) = dimensions(kind);
+        let missing: Vec<_> = own[..needed].iter().filter(|&&key| section.get(key).is_none()).collect();
+        for key in &missing {
+            section.missing(&format!("`{key}` is missing in a device of kind \"{kind}\""), example(key));
         }
-        needed.iter().all(|&(given, ..)| given)
+        missing.is_empty()
+    }
+
+    /// Every device that the dimensions make; none where one of them is at fault.
+    fn devices(&mut self, kind: Kind, section: &Section<'_>) -> Option<Vec<Device>> {
+        let widths = optional(self.widths.take())?;
+        let diameters = optional(self.diameters.take())?;
+        Some(match kind {
+            Kind::OpenScupper => widths?.into_iter().map(|width| Device::Open { width }).collect(),
+            Kind::RoofEdge => widths?.into_iter().map(|width| Device::Edge { width }).collect(),
+            Kind::ClosedScupper => closed(section, &widths?, &self.heights.take()??)?,
+            Kind::PipeScupper => diameters?.into_iter().map(|diameter| Device::Pipe { diameter }).collect(),
+            Kind::Standpipe => diameters?.into_iter().map(|diameter| Device::Standpipe { diameter }).collect(),
+            Kind::OverflowDrain => {
+                let (dam, free_area) = (self.dam??, optional(self.free_area)?);
+                let dam_height = optional(self.dam_height)?.unwrap_or(Length::ZERO);
+                let drain = |throat| Device::Drain(RingDrain { dam, dam_height, throat, free_area });
+                diameters?.into_iter().map(drain).collect()
+            }
+            Kind::Rated => {
+                let by = optional(self.interpolation)?.unwrap_or_default();
+                rated(section, &self.rating.take()??, widths, by)?
+            }
+        })
     }
 
     /// Adds every size that the device makes, unless one of its values is at fault.
-    fn make(self, kind: Kind, tag: &Arc<str>, section: &Section<'_>, into: &mut Catalogs) {
-        let made = || {
-            let widths = optional(self.widths)?;
-            let devices = match kind {
-                Kind::OpenScupper => widths?.into_iter().map(|width| Device::Open { width }).collect(),
-                Kind::ClosedScupper => closed(section, &widths?, &self.heights??)?,
-                Kind::Rated => {
-                    let rating = Arc::new(self.rating??);
-                    vec![Device::Rated { width: widths.and_then(|widths| widths.first().copied()), rating }]
-                }
+    fn make(
+        mut self,
+        kind: Kind,
+        law: Option<Option<Law>>,
+        tag: &Arc<str>,
+        section: &Section<'_>,
+        into: &mut Catalogs,
+    ) {
+        let source = self.source.clone();
+        let mut made = || {
+            let devices = self.devices(kind, section)?;
+            let place = match kind.at_edge() {
+                Some(true) => Place::Edge,
+                Some(false) => Place::Interior,
+                None => self.place??,
             };
-            let place = if kind == Kind::Rated { self.place?? } else { Place::Edge };
-            let price = optional(self.price)?;
-            let set_heights: Option<Arc<[Length]>> = optional(self.set_heights)?.map(Arc::from);
-            let suits = price.as_ref().is_none_or(|price| price.suits(section, &devices[0]));
-            suits.then_some((devices, place, price, set_heights))
+            let price = optional(self.price.take())?;
+            let set_heights: Option<Arc<[Length]>> = optional(self.set_heights.take())?.map(Arc::from);
+            let (law, screen) = (optional(law)?, optional(self.screen)?.unwrap_or(1.0));
+            Some((devices, place, price, set_heights, law, screen, self.following?))
         };
-        let Some((devices, place, price, set_heights)) = made() else { return };
+        let Some((devices, place, price, set_heights, law, screen, following)) = made() else { return };
         if into.sizes.len() + devices.len() > grid::MOST {
             section.reader.fault(
                 section.span.clone(),
@@ -228,7 +404,10 @@ impl Given {
             device,
             place,
             set_heights: set_heights.clone(),
-            source: self.source.clone(),
+            source: source.clone(),
+            law,
+            screen,
+            following,
         }));
     }
 }
@@ -236,13 +415,44 @@ impl Given {
 fn closed(section: &Section<'_>, widths: &[Length], heights: &[Length]) -> Option<Vec<Device>> {
     let count = widths.len().saturating_mul(heights.len());
     if count > grid::MOST {
-        if let Some(cell) = section.get("height") {
-            grid::too_many(&cell, count);
+        if let Some(cell) = section.get("width") {
+            let (wide, high) = (widths.len(), heights.len());
+            let title = format!("{wide} widths and {high} heights make {count} sizes; up to {} would pass", grid::MOST);
+            grid::too_many(&cell, title);
         }
         return None;
     }
     let of_width = |&width: &Length| heights.iter().map(move |&height| Device::Closed { width, height });
     Some(widths.iter().flat_map(of_width).collect())
+}
+
+/// The sizes of a rated device: one, or one for each width that is asked for of a table by width.
+fn rated(
+    section: &Section<'_>,
+    ratings: &Ratings,
+    widths: Option<Vec<Length>>,
+    by: Interpolation,
+) -> Option<Vec<Device>> {
+    let one = |width, rating: Rating| Device::Rated { width, rating: Arc::new(rating.read_by(by)) };
+    let tables = match ratings {
+        Ratings::One(rating) => {
+            return Some(vec![one(widths.and_then(|widths| widths.first().copied()), rating.clone())]);
+        }
+        Ratings::ByWidth(tables) => tables,
+    };
+    let (least, greatest) = (tables.first()?.0, tables.last()?.0);
+    let widths = widths.unwrap_or_else(|| tables.iter().map(|&(width, _)| width).collect());
+    let outside = widths.iter().any(|width| width.nm() < least.nm() || width.nm() > greatest.nm());
+    if let (true, Some(cell)) = (outside, section.get("width")) {
+        let inches = |length: Length| (length.to_inches() * 1000.0).round() / 1000.0;
+        cell.at_fault(
+            "a width lies outside its rating table",
+            "nothing was measured there",
+            format!("the table runs from {} in to {} in", inches(least), inches(greatest)),
+        );
+        return None;
+    }
+    widths.into_iter().map(|width| Some(one(Some(width), ratings.at(width)?))).collect()
 }
 
 /// What a device costs: so much each, and so much for its dimensions.
@@ -270,30 +480,6 @@ impl Price {
             per_height: optional(height)?,
             per_area: optional(area)?,
         })
-    }
-
-    /// Whether the device has every dimension that the price counts.
-    fn suits(&self, section: &Section<'_>, device: &Device) -> bool {
-        let lacks = |priced: bool, dimension: Option<Length>| priced && dimension.is_none();
-        let (width, height) = (device.width(), device.height());
-        let lacking = [
-            (lacks(self.per_width.is_some(), width), "per_width", "width"),
-            (lacks(self.per_height.is_some(), height), "per_height", "height"),
-            (lacks(self.per_area.is_some(), width.and(height)), "per_area", "width and height"),
-        ];
-        let mut suits = true;
-        for (_, key, dimension) in lacking.into_iter().filter(|&(lacking, ..)| lacking) {
-            suits = false;
-            let price = section.section("price", &PRICE);
-            if let Some(cell) = price.and_then(|price| price.get(key)) {
-                cell.at_fault(
-                    format!("`{key}` needs a device with {dimension}"),
-                    "this device has none",
-                    "price it with `each`",
-                );
-            }
-        }
-        suits
     }
 
     fn of(&self, device: &Device) -> Money {

@@ -166,6 +166,21 @@ impl std::error::Error for Faults {}
 #[derive(Debug, Default)]
 pub(super) struct Log {
     faults: RefCell<Vec<Fault>>,
+    /// The files in the order in which they were opened.
+    opened: RefCell<Vec<Arc<Source>>>,
+    broken: RefCell<Vec<Broken>>,
+}
+
+/// A file with faults of form.
+#[derive(Debug)]
+struct Broken {
+    source: Arc<Source>,
+    /// Faults of its form.
+    faults: Vec<Fault>,
+    /// Where the reader of its form stumbled: what stands there says nothing more.
+    stumbled: Vec<Span>,
+    /// Whether all of it was read in spite of them.
+    complete: bool,
 }
 
 impl Log {
@@ -177,24 +192,42 @@ impl Log {
         }
     }
 
+    /// Notes that a file was opened: faults are told in this order of files.
+    pub(super) fn open(&self, source: &Arc<Source>) {
+        self.opened.borrow_mut().push(Arc::clone(source));
+    }
+
+    /// Notes the faults of a file's form, where its reader stumbled, and whether it read all of it in spite of them.
+    pub(super) fn broken(&self, source: &Arc<Source>, faults: Vec<Fault>, stumbled: Vec<Span>, complete: bool) {
+        self.broken.borrow_mut().push(Broken { source: Arc::clone(source), faults, stumbled, complete });
+    }
+
+    /// Whether a file could be read whole, so far as its form goes.
+    pub(super) fn is_whole(&self, source: &Arc<Source>) -> bool {
+        !self.broken.borrow().iter().any(|broken| !broken.complete && Arc::ptr_eq(&broken.source, source))
+    }
+
     /// All faults, those of one file by their place in it.
+    ///
+    /// Of a file that could not be read whole, nothing is told as absent, nor what stands where its reader stumbled.
     pub(super) fn into_faults(self) -> Faults {
-        let mut faults = self.faults.into_inner();
-        let mut files: Vec<Arc<Source>> = Vec::new();
-        for fault in &faults {
-            if let Some(place) = fault.places.first()
-                && !files.iter().any(|known| Arc::ptr_eq(known, &place.source))
-            {
-                files.push(Arc::clone(&place.source));
-            }
-        }
-        let order = |fault: &Fault| {
+        let (files, broken) = (self.opened.into_inner(), self.broken.into_inner());
+        let is_doubtful = |fault: &Fault| {
+            broken.iter().any(|broken| {
+                let mut here = fault.places.iter().filter(|place| Arc::ptr_eq(&place.source, &broken.source));
+                let in_doubt =
+                    |place: &Place| broken.stumbled.iter().any(|stumbled| stumbled.contains(&place.span.start));
+                here.any(|place| (fault.absence && !broken.complete) || in_doubt(place))
+            })
+        };
+        let mut faults: Vec<Fault> = self.faults.into_inner().into_iter().filter(|fault| !is_doubtful(fault)).collect();
+        faults.extend(broken.iter().flat_map(|broken| broken.faults.iter().cloned()));
+        faults.sort_by_key(|fault| {
             fault.places.first().map(|place| {
                 let file = files.iter().position(|known| Arc::ptr_eq(known, &place.source));
                 (file, place.span.start)
             })
-        };
-        faults.sort_by_key(order);
+        });
         Faults(faults)
     }
 }

@@ -8,7 +8,7 @@ use std::sync::Arc;
 use toml::Spanned;
 use toml::de::DeTable;
 
-use super::fault::{Fault, Log, Source};
+use super::fault::{Fault, Log, Source, Span};
 use super::section::Cell;
 
 /// A file named in another, found from where that one lies.
@@ -43,33 +43,97 @@ pub(super) fn read(path: &Path, as_written: &str, named_in: Option<&Cell<'_>>, l
         }
     };
     match String::from_utf8(bytes) {
-        Ok(text) => Some(Arc::new(Source { path: as_written.to_string(), text })),
+        Ok(text) => {
+            // Some editors mark a file as UTF-8 by a first character that nobody sees.
+            let text = text.strip_prefix('\u{feff}').map(str::to_string).unwrap_or(text);
+            let source = Arc::new(Source { path: as_written.to_string(), text });
+            log.open(&source);
+            Some(source)
+        }
         Err(error) => {
-            let at = error.utf8_error().valid_up_to();
-            let line = error.as_bytes()[..at].split(|&byte| byte == b'\n').count();
-            refuse(format!("`{as_written}` is not UTF-8 text: line {line}, byte {at}"), "save it as UTF-8")
+            let sound = String::from_utf8_lossy(&error.as_bytes()[..error.utf8_error().valid_up_to()]);
+            let (line, before) = (sound.matches('\n').count() + 1, sound.rsplit('\n').next().unwrap_or(""));
+            let column = before.chars().count() + 1;
+            refuse(format!("`{as_written}` is not UTF-8 text: line {line}, column {column}"), "save it as UTF-8")
         }
     }
 }
 
-/// Parses a TOML file; every fault of its form is logged, and what can be read all the same is given.
-///
-/// The flag tells whether the file could be read whole: of one that could not, nothing that is absent is to be believed.
-pub(super) fn parse<'a>(source: &'a Arc<Source>, log: &Log) -> (Spanned<DeTable<'a>>, bool) {
-    let (table, mut errors) = DeTable::parse_recoverable(&source.text);
+/// Parses a TOML file; every fault of its form is logged, and what can be read all the same is given. What is read borrows
+/// from `mended`: the text with blanks in place of lines that the parser cannot get past.
+pub(super) fn parse<'a>(source: &Arc<Source>, mended: &'a mut String, log: &Log) -> Spanned<DeTable<'a>> {
+    mended.clone_from(&source.text);
+    let mut errors = take_out_dead_ends(mended);
+    let (table, more) = DeTable::parse_recoverable(mended);
+    errors.extend(more);
+    if !errors.is_empty() {
+        report(source, errors, log);
+    }
+    table
+}
+
+/// Blanks out lines that hide all below them, and gives the errors that stand there.
+fn take_out_dead_ends(text: &mut String) -> Vec<toml::de::Error> {
+    let mut errors = Vec::new();
+    // A key without `=` takes all behind it along: with its line gone, the rest is read. A file that is something else than
+    // TOML is not taken apart line by line.
+    for _ in 0..MOST_MENDED {
+        let found = DeTable::parse_recoverable(text).1.into_iter().find(|error| error.message() == NO_VALUE);
+        let Some(error) = found else { break };
+        let line = line_of(text, error.span().map_or(0, |span| span.start));
+        text.replace_range(line.clone(), &" ".repeat(line.len()));
+        errors.push(error);
+    }
+    errors
+}
+
+/// Logs the faults of a file's form, one a line: the parser may stumble over the rest of a line once more.
+fn report(source: &Arc<Source>, mut errors: Vec<toml::de::Error>, log: &Log) {
     errors.sort_by_key(|error| error.span().map_or(0, |span| span.start));
+    let text = &source.text;
+    let (mut faults, mut stumbled) = (Vec::new(), Vec::<Span>::new());
     let mut line_before = None;
+    let mut complete = true;
     for error in &errors {
         let span = error.span().unwrap_or(0..0);
-        let line = source.text[..span.start.min(source.text.len())].matches('\n').count();
-        // The parser goes on behind a fault and may stumble over its rest; one message a line is told.
-        if line_before == Some(line) {
+        let line = line_of(text, span.start);
+        if line_before.replace(line.start) == Some(line.start) {
             continue;
         }
-        line_before = Some(line);
-        let title = format!("this is not TOML: {}", error.message().trim());
-        let help = "a line is `key = value`; a quantity stands in quotes, such as \"6 in\"";
-        log.put(Fault::error(title).at(source, span, "").help(help));
+        let is_head = text[line.clone()].trim_start().starts_with('[');
+        // The head of a table that is lost takes all with it that stands below, up to the next head.
+        let next_head = || text[line.end..].find("\n[").map_or(text.len(), |length| line.end + length);
+        stumbled.push(line.start..if is_head { next_head() } else { line.end } + 1);
+        complete &= error.message() == DUPLICATE && !is_head;
+        faults.push(form(error.message().trim(), text, &span).at(source, span, ""));
     }
-    (table, errors.is_empty())
+    log.broken(source, faults, stumbled, complete);
+}
+
+/// Most lines that are left out so that the rest can be read.
+const MOST_MENDED: usize = 20;
+
+// What the parser says of slips that it cannot get past, or that are told in better words here.
+const NO_VALUE: &str = "key with no value, expected `=`";
+const DUPLICATE: &str = "duplicate key";
+const NO_QUOTES: &str = "string values must be quoted, expected literal string";
+
+/// A fault of the form of a file, in the words of the parser where there are no better ones.
+fn form(message: &str, text: &str, span: &Span) -> Fault {
+    let found = text.get(span.clone()).unwrap_or("").trim();
+    match message {
+        DUPLICATE => {
+            Fault::error(format!("`{found}` stands twice in one table")).help("give each key and each table once")
+        }
+        NO_QUOTES if !found.is_empty() => Fault::error(format!("`{found}` stands without quotes"))
+            .help("only numbers, true and false stand without: write \"6 in\", not 6 in"),
+        _ => Fault::error(format!("this is not TOML: {message}"))
+            .help("a line is `key = value`; a quantity stands in quotes, such as \"6 in\""),
+    }
+}
+
+/// The line that a place stands in, without its end.
+fn line_of(text: &str, at: usize) -> Span {
+    let start = text[..at].rfind('\n').map_or(0, |before| before + 1);
+    start..text[at..].find('\n').map_or(text.len(), |length| at + length)
 }

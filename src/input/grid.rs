@@ -29,13 +29,12 @@ pub(super) fn lengths(cell: &Cell<'_>, least: Least) -> Option<Vec<Length>> {
     };
     if cell.is_table() {
         let range = cell.section(&RANGE)?;
-        let from_cell =
-            range.need("from", "write from, to and step: { from = \"6 in\", to = \"12 in\", step = \"1 in\" }");
-        let to_cell = range.need("to", "write from, to and step: { from = \"6 in\", to = \"12 in\", step = \"1 in\" }");
-        let step = range.need("step", "write from, to and step: { from = \"6 in\", to = \"12 in\", step = \"1 in\" }");
-        let (from_cell, to_cell) = (from_cell?, to_cell?);
-        let (from, to, step) = (one(&from_cell), one(&to_cell), step.and_then(|step| step.positive_length()));
-        let (from, to, step) = (from?.nm(), to?.nm(), step?.nm());
+        let part =
+            |key| range.need(key, "write from, to and step: { from = \"6 in\", to = \"12 in\", step = \"1 in\" }");
+        let (from_cell, to_cell, step_cell) = (part("from"), part("to"), part("step"));
+        let (from, to) = (from_cell.and_then(|cell| one(&cell)), to_cell.and_then(|cell| one(&cell)));
+        let step = step_cell.and_then(|cell| cell.positive_length());
+        let (from_cell, from, to) = (from_cell?, from?.nm(), to?.nm());
         if from > to {
             from_cell.at_fault(
                 format!("`from` stands above `to` in `{}`", cell.key),
@@ -44,13 +43,11 @@ pub(super) fn lengths(cell: &Cell<'_>, least: Least) -> Option<Vec<Length>> {
             );
             return None;
         }
-        if step == 0 {
-            cell.at_fault(format!("the step of `{}` is less than a nanometre", cell.key), "", "give a wider step");
-            return None;
-        }
+        let step = step?.nm();
         let steps = (to - from) / step;
         if steps.unsigned_abs() >= MOST as u64 {
-            too_many(cell, steps.unsigned_abs() as usize + 1);
+            let title = format!("`{}` makes {} values; up to {MOST} would pass", cell.key, steps.unsigned_abs() + 1);
+            too_many(cell, title);
             return None;
         }
         return Some((0..=steps).map(|index| Length::from_nm(from + index * step)).collect());
@@ -68,10 +65,6 @@ pub(super) fn lengths(cell: &Cell<'_>, least: Least) -> Option<Vec<Length>> {
 }
 
 /// Logs a grid that is too fine.
-pub(super) fn too_many(cell: &Cell<'_>, count: usize) {
-    cell.at_fault(
-        format!("`{}` makes {count} values; the search takes up to {MOST}", cell.key),
-        "too fine, or too wide",
-        "give a coarser step or a narrower range",
-    );
+pub(super) fn too_many(cell: &Cell<'_>, title: String) {
+    cell.at_fault(title, "too fine, or too wide", "give a coarser step or a narrower range");
 }

@@ -2,26 +2,24 @@
 
 use std::ops::RangeInclusive;
 use std::path::Path;
-use std::sync::Arc;
 
-use crate::device::Kind;
-use crate::roof::{Case, Catchment, Limits, Roof, Storm, demand};
+use crate::device::{Choice, Kind, Law};
+use crate::roof::{Case, Limits, Roof, Storm, demand};
 use crate::search::{Criterion, Options};
 use crate::units::{Dimension, Intensity, Length, Load, ReturnPeriod, System, Time};
 
-use super::catalog::{self, Catalogs};
+use super::catalog::{Catalogs, Offer};
 use super::defaults::{self, COUNT, KEEP, MIX, RANK_BY};
 use super::fault::{Fault, Faults, Log, Span};
 use super::grid::{self, Least};
 use super::section::{Cell, Keys, Reader, Section, optional};
-use super::{Assumed, Project, area, file};
+use super::{Assumed, Project, area, file, flow};
 
 static PROJECT: Keys = Keys {
     table: "the project",
-    known: &["title", "note", "units", "catalogs", "storm", "limit", "search", "case", "area"],
+    known: &["title", "note", "units", "catalogs", "storm", "limit", "flow", "search", "case", "area"],
     unsupported: &[
         ("rules", "sets of code rules to hold every layout against"),
-        ("flow", "the choice of flow law"),
         ("layout", "given layouts to be checked"),
         ("structure", "the price of a stronger roof"),
     ],
@@ -37,11 +35,10 @@ static LIMIT: Keys = Keys { table: "a limit", known: &["load", "depth"], unsuppo
 
 static SEARCH: Keys = Keys {
     table: "[search]",
-    known: &["rank_by", "keep", "mix", "set_height", "count", "freeboard"],
+    known: &["rank_by", "keep", "mix", "set_height", "count", "freeboard", "laws"],
     unsupported: &[
         ("sizes", "the most distinct sizes on the whole roof"),
         ("size_price", "the price of one more distinct size"),
-        ("laws", "holding every layout under several flow laws"),
         ("made_to_measure", "openings of any width"),
         ("round", "rounding of openings made to measure"),
     ],
@@ -65,15 +62,23 @@ pub(super) struct GivenCase {
     pub(super) blocked_at: Option<Span>,
 }
 
-/// What of the project an area is read against.
+/// The cases that can be read, and the names of all.
+pub(super) struct Cases {
+    pub(super) given: Vec<GivenCase>,
+    pub(super) names: Vec<String>,
+    /// Whether the name of every case is known, and whether every case can be read.
+    pub(super) names_complete: bool,
+    pub(super) complete: bool,
+}
+
+/// What of the project an area is read against; none where it is at fault, which is told where it stands.
 pub(super) struct Setting<'s> {
-    pub(super) cases: &'s [GivenCase],
-    pub(super) limits: Limits,
-    pub(super) count: RangeInclusive<u32>,
-    pub(super) set_heights: Option<&'s [Length]>,
-    pub(super) kinds_in_catalogs: &'s [Kind],
-    /// Whether some device has no set height of its own, by kind.
-    pub(super) needs_set_height: &'s dyn Fn(&Option<Vec<Kind>>) -> bool,
+    pub(super) cases: &'s Cases,
+    pub(super) limits: Option<Limits>,
+    pub(super) search: &'s Search,
+    /// The flow laws chosen; none where they are at fault.
+    pub(super) choice: Option<Choice>,
+    pub(super) catalogs: &'s Catalogs,
 }
 
 pub(super) fn read(path: &Path) -> Result<Project, Faults> {
@@ -89,18 +94,10 @@ pub(super) fn read(path: &Path) -> Result<Project, Faults> {
 fn read_logged(path: &Path, log: &Log) -> Option<Project> {
     let as_written = path.display().to_string();
     let source = file::read(path, &as_written, None, log)?;
-    let (table, whole) = file::parse(&source, log);
-    // Of a file that could not be read whole, nothing is told as absent.
-    let reading = Log::default();
-    let reader = Reader { source: &source, log: &reading };
-    let section = Section::open(reader, &PROJECT, table.get_ref(), 0..0);
-    let project = read_sections(path, &section);
-    for fault in reading.into_faults().0 {
-        if whole || !fault.absence {
-            log.put(fault);
-        }
-    }
-    project
+    let mut mended = String::new();
+    let table = file::parse(&source, &mut mended, log);
+    let section = Section::open(Reader { source: &source, log }, &PROJECT, table.get_ref(), 0..0);
+    read_sections(path, &section)
 }
 
 fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
@@ -114,63 +111,87 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
     let system = section
         .need("units", "write units = \"us\" for inches and psf, units = \"si\" for mm and kPa")
         .and_then(|cell| cell.word(&[("us", System::Us), ("si", System::Si)]));
-    let mut catalogs = Catalogs::default();
     let named = section.need("catalogs", "name at least one file: catalogs = [\"scuppers.toml\"]");
-    for cell in named.iter().flat_map(Cell::items) {
-        catalog::read(path, &cell, log, &mut catalogs);
-    }
+    let catalogs = Catalogs::read(path, &named.map_or(Vec::new(), |cell| cell.items()), log);
     if let Some(cell) = named.filter(|cell| cell.items().is_empty()) {
         cell.at_fault("`catalogs` is an empty list", "no catalog stands here", "name at least one file");
     }
-    let storm = match section.section("storm", &STORM) {
-        Some(storm) => read_storm(&storm),
-        None if section.get("storm").is_none() => {
-            section.missing("[storm] is missing in the project", "give [storm] with intensity = \"6.3 in/h\"");
-            None
-        }
-        None => None,
-    };
-    let limits = section.section("limit", &LIMIT).map_or(Some(Limits::default()), |limit| read_limits(&limit));
+    let storm = section.section("storm", &STORM).and_then(|storm| read_storm(&storm));
+    if section.get("storm").is_none() {
+        section.missing("[storm] is missing in the project", "give [storm] with intensity = \"6.3 in/h\"");
+    }
+    let limits = section.get("limit").map_or(Some(Limits::default()), |cell| limits_of(&cell));
     let search = match section.get("search") {
-        Some(cell) => read_search(&cell.section(&SEARCH)?, &mut assumed),
-        None => Some(Search::assumed(&mut assumed)),
+        Some(cell) => cell.section(&SEARCH).map_or(Search::unknown(), |search| read_search(&search, &mut assumed)),
+        None => Search::assumed(&mut assumed),
     };
+    let choice = match section.get("flow") {
+        Some(cell) => cell.section(&flow::FLOW).and_then(|section| flow::choice(&section)),
+        None => Some(Choice::default()),
+    };
+    laws_fit(section, choice, &search, &catalogs);
+    // A fault above does not keep the areas from being read: whatever is at fault in any file is told in one run.
     let cases = read_cases(section, &mut assumed);
-    let (limits, search, cases) = (limits?, search?, cases?);
-    let needs_set_height = |kinds: &Option<Vec<Kind>>| {
-        let takes = |kind| kinds.as_ref().is_none_or(|kinds: &Vec<Kind>| kinds.contains(&kind));
-        catalogs.sizes.iter().any(|size| size.set_heights.is_none() && takes(size.device.kind()))
-    };
-    let mut kinds: Vec<Kind> = catalogs.sizes.iter().map(|size| size.device.kind()).collect();
-    kinds.dedup();
-    let setting = Setting {
-        cases: &cases,
-        limits,
-        count: search.count.clone(),
-        set_heights: search.set_heights.as_deref(),
-        kinds_in_catalogs: &kinds,
-        needs_set_height: &needs_set_height,
-    };
-    let areas = area::read_all(section, &setting, &mut assumed)?;
-    prices(section, &search, &areas, &catalogs);
-    let storm = storm?;
-    let demands = match demand::flows(&storm, &areas) {
-        Ok(demands) => demands,
-        Err(circle) => {
-            area::report_circle(section, &areas, &circle);
-            return None;
-        }
-    };
+    let setting = Setting { cases: &cases, limits, search: &search, choice, catalogs: &catalogs };
+    let areas = area::read_all(section, &setting, &mut assumed);
+    prices(section, &search, &areas.kinds, &catalogs);
+    let (areas, storm) = (areas.complete?, storm?);
     let roof = Roof {
         title: title?,
         system: system?,
+        demands: demand::flows(&storm, &areas).ok()?,
         storm,
-        cases: cases.into_iter().map(|given| given.case).collect(),
+        cases: if cases.complete { cases.given.into_iter().map(|given| given.case).collect() } else { return None },
         areas,
         sizes: catalogs.sizes,
-        demands,
+        choice: choice?,
     };
-    Some(Project { roof, options: search.options, assumed, warnings: Faults::default() })
+    let roof = under_each_law(roof, search.laws.as_deref()?);
+    if !area::channels_flow(section, &roof) {
+        return None;
+    }
+    Some(Project { roof, options: search.options()?, assumed, warnings: Faults::default() })
+}
+
+/// The roof with each case held under each law: as many cases as there are pairs, named after both.
+fn under_each_law(mut roof: Roof, laws: &[Law]) -> Roof {
+    if laws.is_empty() {
+        return roof;
+    }
+    let under = |case: &Case, &law: &Law| Case {
+        name: format!("{} ({})", case.name, law.name()),
+        law: Some(law),
+        ..case.clone()
+    };
+    roof.cases = roof.cases.iter().flat_map(|case| laws.iter().map(|law| under(case, law))).collect();
+    for area in &mut roof.areas {
+        area.limits = area.limits.iter().flat_map(|&limits| vec![limits; laws.len()]).collect();
+    }
+    roof
+}
+
+/// Refuses a law that a device in the catalogs cannot follow: inlet control has no form for an opening without a top.
+fn laws_fit(section: &Section<'_>, choice: Option<Choice>, search: &Search, catalogs: &Catalogs) {
+    let mut chosen: Vec<(Law, Option<Cell<'_>>)> = Vec::new();
+    if let (Some(choice), Some(flow)) = (choice, section.get("flow").and_then(|cell| cell.section(&flow::FLOW))) {
+        chosen.push((choice.scupper, flow.get("scupper")));
+    }
+    if let Some(search_section) = section.get("search").and_then(|cell| cell.section(&SEARCH)) {
+        chosen.extend(search.laws.iter().flatten().map(|&law| (law, search_section.get("laws"))));
+    }
+    for (law, cell) in chosen {
+        let cannot = |offer: &&Offer| {
+            offer.kind == Kind::OpenScupper && offer.law.is_none() && !offer.kind.laws().contains(&law)
+        };
+        if let (Some(offer), Some(cell)) = (catalogs.offers.iter().find(cannot), cell) {
+            let tag = offer.tag.as_deref().unwrap_or("a device");
+            let fault = Fault::error(format!("`{tag}` is an {}: it has no law `{}`", offer.kind, law.name()))
+                .at(cell.reader.source, cell.span(), "chosen here")
+                .at(&offer.at.source, offer.at.span.clone(), "without a law of its own")
+                .help("choose another law, or give the device a `law` of its own");
+            cell.reader.log.put(fault);
+        }
+    }
 }
 
 fn read_storm(section: &Section<'_>) -> Option<Storm> {
@@ -204,21 +225,61 @@ fn read_limits(section: &Section<'_>) -> Option<Limits> {
     Some(Limits { load: optional(load)?, depth: optional(depth)? })
 }
 
-struct Search {
-    options: Options,
-    count: RangeInclusive<u32>,
-    set_heights: Option<Vec<Length>>,
+/// What is asked of the search; none where a value is at fault.
+pub(super) struct Search {
+    rank_by: Option<Vec<Criterion>>,
+    keep: Option<u32>,
+    mix: Option<u32>,
+    freeboard: Option<Option<Length>>,
+    /// Laws under each of which every case is held; none for that of the project alone.
+    pub(super) laws: Option<Vec<Law>>,
+    pub(super) count: Option<RangeInclusive<u32>>,
+    /// An inner none where no set heights are given for the roof.
+    pub(super) set_heights: Option<Option<Vec<Length>>>,
     rank_by_at: Option<Span>,
+    pub(super) count_at: Option<Span>,
 }
 
 impl Search {
+    /// One of which nothing is known.
+    fn unknown() -> Self {
+        Self {
+            rank_by: None,
+            keep: None,
+            mix: None,
+            freeboard: None,
+            laws: None,
+            count: None,
+            set_heights: None,
+            rank_by_at: None,
+            count_at: None,
+        }
+    }
+
     fn assumed(assumed: &mut Vec<Assumed>) -> Self {
         for key in ["search.rank_by", "search.keep", "search.mix", "search.count"] {
             assume(assumed, key);
         }
-        let options =
-            Options { rank_by: RANK_BY.to_vec(), keep: KEEP as usize, mix: MIX as usize, freeboard: None, fold: true };
-        Self { options, count: COUNT, set_heights: None, rank_by_at: None }
+        Self {
+            rank_by: Some(RANK_BY.to_vec()),
+            keep: Some(KEEP),
+            mix: Some(MIX),
+            freeboard: Some(None),
+            laws: Some(Vec::new()),
+            count: Some(COUNT),
+            set_heights: Some(None),
+            ..Self::unknown()
+        }
+    }
+
+    fn options(self) -> Option<Options> {
+        Some(Options {
+            rank_by: self.rank_by?,
+            keep: self.keep? as usize,
+            mix: self.mix? as usize,
+            freeboard: self.freeboard?,
+            fold: true,
+        })
     }
 }
 
@@ -227,7 +288,7 @@ fn assume(assumed: &mut Vec<Assumed>, key: &str) {
     assumed.push(Assumed { default: defaults::default(key), areas: Vec::new() });
 }
 
-fn read_search(section: &Section<'_>, assumed: &mut Vec<Assumed>) -> Option<Search> {
+fn read_search(section: &Section<'_>, assumed: &mut Vec<Assumed>) -> Search {
     let rank_by = match section.get("rank_by") {
         Some(cell) => read_rank_by(&cell),
         None => {
@@ -253,18 +314,36 @@ fn read_search(section: &Section<'_>, assumed: &mut Vec<Assumed>) -> Option<Sear
     };
     let set_heights = section.get("set_height").map(|cell| grid::lengths(&cell, Least::Zero));
     let freeboard = section.get("freeboard").map(|cell| cell.length());
-    Some(Search {
-        options: Options {
-            rank_by: rank_by?,
-            keep: keep? as usize,
-            mix: mix? as usize,
-            freeboard: optional(freeboard)?,
-            fold: true,
-        },
-        count: count?,
-        set_heights: optional(set_heights)?,
-        rank_by_at: section.get("rank_by").map(|cell| cell.span()),
-    })
+    let at = |key| section.get(key).map(|cell| cell.span());
+    Search {
+        rank_by,
+        keep,
+        mix,
+        freeboard: optional(freeboard),
+        laws: section.get("laws").map_or(Some(Vec::new()), |cell| read_laws(&cell)),
+        count,
+        set_heights: optional(set_heights),
+        rank_by_at: at("rank_by"),
+        count_at: at("count"),
+    }
+}
+
+/// Laws of scuppers, each once.
+fn read_laws(cell: &Cell<'_>) -> Option<Vec<Law>> {
+    let items = cell.items();
+    let laws: Vec<Option<Law>> = items.iter().map(|item| flow::law(item, Kind::ClosedScupper)).collect();
+    let mut laws: Vec<Law> = laws.into_iter().collect::<Option<_>>()?;
+    laws.sort_unstable();
+    laws.dedup();
+    if laws.len() < items.len() || laws.is_empty() {
+        cell.at_fault(
+            "`laws` must name each law once",
+            "none, or one twice",
+            "write laws = [\"thin-plate\", \"throat\"]",
+        );
+        return None;
+    }
+    Some(laws)
 }
 
 fn read_rank_by(cell: &Cell<'_>) -> Option<Vec<Criterion>> {
@@ -293,14 +372,16 @@ fn read_rank_by(cell: &Cell<'_>) -> Option<Vec<Criterion>> {
     sound.then_some(criteria)
 }
 
-/// A count: one whole number, or a range.
+/// A count: one whole number, or a range with both its ends.
 pub(super) fn read_count(cell: &Cell<'_>) -> Option<RangeInclusive<u32>> {
     if !cell.is_table() {
         return cell.whole(1, MOST_DEVICES).map(|exactly| exactly..=exactly);
     }
     let range = cell.section(&COUNT_RANGE)?;
-    let end = |key, otherwise: u32| range.get(key).map_or(Some(otherwise), |cell| cell.whole(1, MOST_DEVICES));
-    let (from, to) = (end("from", *COUNT.start()), end("to", *COUNT.end()));
+    let end = |key| {
+        range.need(key, "write both ends: count = { from = 2, to = 8 }").and_then(|cell| cell.whole(1, MOST_DEVICES))
+    };
+    let (from, to) = (end("from"), end("to"));
     let (from, to) = (from?, to?);
     if from > to {
         let at = range.get("from").or(range.get("to")).unwrap_or(*cell);
@@ -314,18 +395,22 @@ pub(super) fn read_count(cell: &Cell<'_>) -> Option<RangeInclusive<u32>> {
     Some(from..=to)
 }
 
-fn read_cases(section: &Section<'_>, assumed: &mut Vec<Assumed>) -> Option<Vec<GivenCase>> {
-    let tables = section.sections("case", &CASE);
-    if tables.is_empty() {
-        if section.get("case").is_some() {
-            return None;
-        }
+fn read_cases(section: &Section<'_>, assumed: &mut Vec<Assumed>) -> Cases {
+    if section.get("case").is_none() {
         assume(assumed, "case");
-        return Some(vec![GivenCase { case: Case::as_designed(), limits: Limits::default(), blocked_at: None }]);
+        let as_designed = GivenCase { case: Case::as_designed(), limits: Limits::default(), blocked_at: None };
+        let names = vec![as_designed.case.name.clone()];
+        return Cases { given: vec![as_designed], names, names_complete: true, complete: true };
     }
     let mut names: Vec<(String, Span)> = Vec::new();
-    let cases: Vec<Option<GivenCase>> = tables.iter().map(|table| read_case(table, &mut names)).collect();
-    cases.into_iter().collect()
+    let tables = section.sections("case", &CASE, "a list of cases, each under [[case]]").unwrap_or_default();
+    let cases: Vec<Option<GivenCase>> = tables.iter().map(|table| read_case(table.as_ref()?, &mut names)).collect();
+    Cases {
+        names_complete: !tables.is_empty() && tables.iter().all(|table| is_named(table.as_ref())),
+        complete: !cases.is_empty() && cases.iter().all(Option::is_some),
+        given: cases.into_iter().flatten().collect(),
+        names: names.into_iter().map(|(name, _)| name).collect(),
+    }
 }
 
 fn read_case(section: &Section<'_>, names: &mut Vec<(String, Span)>) -> Option<GivenCase> {
@@ -345,10 +430,16 @@ fn read_case(section: &Section<'_>, names: &mut Vec<(String, Span)>) -> Option<G
             opening_loss: opening_loss?,
             rain: rain?,
             discharge: discharge?,
+            law: None,
         },
         limits: limits?,
         blocked_at: section.get("blocked").map(|cell| cell.span()),
     })
+}
+
+/// Whether a table of a list has a name, be it one that another has too.
+pub(super) fn is_named(table: Option<&Section<'_>>) -> bool {
+    table.and_then(|table| table.get("name")).and_then(|cell| cell.text()).is_some()
 }
 
 /// A name that nothing else of its sort has.
@@ -366,25 +457,26 @@ pub(super) fn unique(cell: &Cell<'_>, names: &mut Vec<(String, Span)>, sort: &st
     Some(name.to_string())
 }
 
-/// Refuses to rank by cost where a device that may stand somewhere has no price.
-fn prices(section: &Section<'_>, search: &Search, areas: &[Catchment], catalogs: &Catalogs) {
-    if !search.options.rank_by.contains(&Criterion::Cost) {
+/// Refuses to rank by cost where a device that may stand somewhere has no price. Of each area, the kinds that may stand in
+/// it are given, an inner none for any.
+fn prices(section: &Section<'_>, search: &Search, kinds: &[Option<Vec<Kind>>], catalogs: &Catalogs) {
+    let reader = section.reader;
+    let by_cost = search.rank_by.as_ref().is_some_and(|rank_by| rank_by.contains(&Criterion::Cost));
+    // What a broken file seems not to say is no default.
+    if !by_cost || (search.rank_by_at.is_none() && !reader.log.is_whole(reader.source)) {
         return;
     }
-    let mut told: Vec<&Arc<str>> = Vec::new();
-    for size in catalogs.sizes.iter().filter(|size| size.price.is_none()) {
-        let in_play = areas.iter().any(|area| area.takes(size.device.kind()));
-        if !in_play || told.contains(&&size.tag) {
+    for offer in catalogs.offers.iter().filter(|offer| !offer.has_price) {
+        if !kinds.iter().any(|kinds| kinds.as_ref().is_none_or(|kinds| kinds.contains(&offer.kind))) {
             continue;
         }
-        told.push(&size.tag);
-        let Some(entry) = catalogs.entries.get(&size.tag) else { continue };
-        let mut fault = Fault::error(format!("`{}` has no price, and layouts are ranked by cost", size.tag))
-            .at(&entry.source, entry.span.clone(), "nothing is free by omission")
+        let named = offer.tag.as_ref().map_or("a device".to_string(), |tag| format!("`{tag}`"));
+        let mut fault = Fault::error(format!("{named} has no price, and layouts are ranked by cost"))
+            .at(&offer.at.source, offer.at.span.clone(), "nothing is free by omission")
             .help("give the device a price, or leave \"cost\" out of `rank_by`: [\"count\", \"load\"] would pass");
         if let Some(at) = &search.rank_by_at {
-            fault = fault.at(section.reader.source, at.clone(), "ranked by cost here");
+            fault = fault.at(reader.source, at.clone(), "ranked by cost here");
         }
-        section.reader.log.put(fault);
+        reader.log.put(fault.absent());
     }
 }

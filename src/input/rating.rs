@@ -1,24 +1,48 @@
 //! Rating tables: CSV files with a column of heads and one of flows, the unit in each column's head.
 
 use std::path::Path;
+use std::sync::Arc;
 
 use crate::device::{Rating, RatingFault};
 use crate::units::{Flow, Length};
 
 use super::fault::{Fault, Log, Source, Span};
 use super::file;
-use super::section::{Cell, any_of, near};
-use std::sync::Arc;
+use super::section::{Cell, any_of, near, optional};
 
 const HEADS: [(&str, f64); 3] = [("head_in", 0.0254), ("head_mm", 0.001), ("head_m", 1.0)];
+const WIDTHS: [(&str, f64); 3] = [("width_in", 0.0254), ("width_mm", 0.001), ("width_m", 1.0)];
 const FLOWS: [(&str, f64); 3] =
     [("flow_gpm", 231.0 * 0.0254 * 0.0254 * 0.0254 / 60.0), ("flow_l_s", 0.001), ("flow_m3_s", 1.0)];
 
 /// Reads the rating that a catalog names.
-pub(super) fn read(catalog: &Path, named: &Cell<'_>, log: &Log) -> Option<Rating> {
+pub(super) fn read(catalog: &Path, named: &Cell<'_>, log: &Log) -> Option<Ratings> {
     let name = named.text()?;
     let source = file::read(&file::beside(catalog, name), name, Some(named), log)?;
     parse(&source, log)
+}
+
+/// What a rating file holds.
+#[derive(Clone, Debug)]
+pub(super) enum Ratings {
+    /// One table.
+    One(Rating),
+    /// A table for each width, widths rising: never fewer than one.
+    ByWidth(Vec<(Length, Rating)>),
+}
+
+impl Ratings {
+    /// The table of a width: its own, or on the straight line between its neighbours; none beyond the outermost.
+    pub(super) fn at(&self, width: Length) -> Option<Rating> {
+        let Self::ByWidth(tables) = self else { return None };
+        let above = tables.partition_point(|(known, _)| known.nm() < width.nm());
+        let (high, rating) = tables.get(above)?;
+        if high.nm() == width.nm() {
+            return Some(rating.clone());
+        }
+        let (low, less) = tables.get(above.checked_sub(1)?)?;
+        Rating::between(less, rating, (width - *low) / (*high - *low)).ok()
+    }
 }
 
 /// A cell of the table: its text and where it stands.
@@ -31,6 +55,7 @@ struct Entry<'t> {
 struct Columns {
     heads: (usize, f64),
     flows: (usize, f64),
+    widths: Option<(usize, f64)>,
     count: usize,
 }
 
@@ -40,38 +65,63 @@ struct Table<'t> {
     log: &'t Log,
 }
 
-fn parse(source: &Arc<Source>, log: &Log) -> Option<Rating> {
+fn parse(source: &Arc<Source>, log: &Log) -> Option<Ratings> {
     let table = Table { source, log };
-    let mut records = table.records()?.into_iter();
+    let mut records = records(source).into_iter();
     let Some(head) = records.next() else {
         table.refuse(0..0, format!("`{}` is empty", source.path), "no row stands here", FORM);
         return None;
     };
-    let columns = table.columns(&head)?;
-    let mut rows = Vec::new();
-    let mut spans = Vec::new();
-    let mut sound = true;
+    let (columns, mut sound) = table.columns(&head)?;
+    let mut tables: Vec<Rows> = Vec::new();
     for row in records {
         match table.row(&row, &columns) {
-            Some((values, places)) => {
-                rows.push(values);
-                spans.push(places);
+            Some((width, values, places)) => {
+                let place = tables.iter().position(|rows| rows.width.map(Length::nm) == width.map(Length::nm));
+                let place = place.unwrap_or_else(|| {
+                    tables.push(Rows { width, ..Rows::default() });
+                    tables.len() - 1
+                });
+                tables[place].values.push(values);
+                tables[place].places.push(places);
             }
             None => sound = false,
         }
     }
-    match Rating::new(&rows) {
-        Ok(rating) => sound.then_some(rating),
-        Err(faults) => {
-            for fault in faults {
-                // Where rows could not be read, an empty table is no news.
-                if sound || fault != RatingFault::Empty {
-                    table.report(fault, &spans);
-                }
-            }
-            None
-        }
+    if tables.is_empty() {
+        tables.push(Rows::default());
     }
+    let ratings: Vec<Option<(Option<Length>, Rating)>> = tables
+        .iter()
+        .map(|rows| match Rating::new(&rows.values) {
+            Ok(rating) => Some((rows.width, rating)),
+            Err(faults) => {
+                for fault in faults {
+                    // Where rows could not be read, an empty table is no news.
+                    if sound || fault != RatingFault::Empty {
+                        table.report(fault, &rows.values, &rows.places);
+                    }
+                }
+                None
+            }
+        })
+        .collect();
+    let mut ratings: Vec<_> = ratings.into_iter().collect::<Option<_>>().filter(|_| sound)?;
+    if columns.widths.is_none() {
+        return ratings.pop().map(|(_, rating)| Ratings::One(rating));
+    }
+    let mut by_width: Vec<(Length, Rating)> =
+        ratings.into_iter().filter_map(|(width, rating)| Some((width?, rating))).collect();
+    by_width.sort_by_key(|(width, _)| width.nm());
+    Some(Ratings::ByWidth(by_width))
+}
+
+/// The rows of one width, or of a table without widths.
+#[derive(Default)]
+struct Rows {
+    width: Option<Length>,
+    values: Vec<(Length, Flow)>,
+    places: Vec<Places>,
 }
 
 const FORM: &str = "a table has one column of heads and one of flows, such as `head_in,flow_gpm`";
@@ -79,42 +129,24 @@ const FORM: &str = "a table has one column of heads and one of flows, such as `h
 /// The places of a row's head and flow.
 type Places = (Span, Span);
 
-impl<'t> Table<'t> {
+impl Table<'_> {
     fn refuse(&self, span: Span, title: impl Into<String>, label: impl Into<String>, help: impl Into<String>) {
         self.log.put(Fault::error(title).at(self.source, span, label).help(help));
     }
 
-    fn records(&self) -> Option<Vec<Vec<Entry<'t>>>> {
-        let mut reader = csv::ReaderBuilder::new()
-            .has_headers(false)
-            .flexible(true)
-            .comment(Some(b'#'))
-            .trim(csv::Trim::All)
-            .from_reader(self.source.text.as_bytes());
-        let mut records = Vec::new();
-        for record in reader.records() {
-            match record {
-                Ok(record) => records.push(entries(self.source, &record)),
-                Err(error) => {
-                    self.refuse(0..0, format!("this is not CSV: {error}"), "", "write two columns parted by commas");
-                    return None;
-                }
-            }
-        }
-        Some(records)
-    }
-
-    fn columns(&self, head: &[Entry<'_>]) -> Option<Columns> {
+    /// Where heads and flows stand, and whether no other column is at fault.
+    fn columns(&self, head: &[Entry<'_>]) -> Option<(Columns, bool)> {
         if let [only] = head
-            && only.text.contains(';')
+            && let Some(mark) = only.text.chars().find(|mark| ";\t".contains(*mark))
         {
+            let mark = if mark == ';' { "semicolons" } else { "tabs" };
+            let title = format!("the columns are parted by {mark}");
             let help = "part columns by commas, and write decimals with a point";
-            self.refuse(
-                only.span.clone(),
-                "the columns are parted by semicolons",
-                "one column only is seen here",
-                help,
-            );
+            self.refuse(only.span.clone(), title, "one column only is seen here", help);
+            return None;
+        }
+        if head.iter().all(|entry| entry.text.parse::<f64>().is_ok()) {
+            self.refuse(whole(head), "the columns have no names", "the first row is one of numbers", FORM);
             return None;
         }
         let find = |names: &[(&'static str, f64)]| {
@@ -122,15 +154,27 @@ impl<'t> Table<'t> {
                 .enumerate()
                 .find_map(|(at, entry)| names.iter().find(|(name, _)| *name == entry.text).map(|&(_, size)| (at, size)))
         };
-        let (heads, flows) = (find(&HEADS), find(&FLOWS));
+        let (heads, flows, widths) = (find(&HEADS), find(&FLOWS), find(&WIDTHS));
         let known: Vec<&str> = HEADS.iter().chain(&FLOWS).map(|&(name, _)| name).collect();
         let mut sound = true;
         for (at, entry) in head.iter().enumerate() {
-            if [heads, flows].iter().flatten().any(|&(column, _)| column == at) {
+            if [heads, flows, widths].iter().flatten().any(|&(column, _)| column == at) {
                 continue;
             }
-            let near = near(entry.text, known.iter().copied());
-            let did_you = near.map_or(String::new(), |near| format!("did you mean `{near}`? "));
+            sound = false;
+            if let Some(name) = known.iter().find(|name| **name == entry.text) {
+                let sort = if name.starts_with("head") { "heads" } else { "flows" };
+                let title = format!("`{name}` is a second column of {sort}");
+                self.refuse(entry.span.clone(), title, "one is wanted", FORM);
+                continue;
+            }
+            // "head" is near to several: it lacks its unit, and which is not guessed.
+            let without_unit = known.iter().any(|name| name.split('_').next() == Some(entry.text));
+            let did_you = match near(entry.text, known.iter().copied()) {
+                Some(_) if without_unit => "a column's head has the unit: ".to_string(),
+                Some(near) => format!("did you mean `{near}`? "),
+                None => String::new(),
+            };
             let title = match entry.text {
                 "" => "a column has no name".to_string(),
                 name => format!("unknown column `{name}`"),
@@ -141,18 +185,18 @@ impl<'t> Table<'t> {
                 "not a column of a rating",
                 format!("{did_you}{} would pass", any_of(&known)),
             );
-            sound = false;
         }
         if sound && (heads.is_none() || flows.is_none()) {
             let missing = if heads.is_none() { "heads" } else { "flows" };
             self.refuse(whole(head), format!("the table has no column of {missing}"), "these columns are given", FORM);
         }
-        if sound { Some(Columns { heads: heads?, flows: flows?, count: head.len() }) } else { None }
+        Some((Columns { heads: heads?, flows: flows?, widths, count: head.len() }, sound))
     }
 
-    fn row(&self, row: &[Entry<'_>], columns: &Columns) -> Option<((Length, Flow), Places)> {
+    fn row(&self, row: &[Entry<'_>], columns: &Columns) -> Option<(Option<Length>, (Length, Flow), Places)> {
         if row.len() != columns.count {
-            let title = format!("this row has {} cells; the head has {}", row.len(), columns.count);
+            let cells = if row.len() == 1 { "1 cell".to_string() } else { format!("{} cells", row.len()) };
+            let title = format!("this row has {cells}; the head has {}", columns.count);
             let help = "a comma parts cells: write decimals with a point, thousands without a comma";
             self.refuse(whole(row), title, "this row", help);
             return None;
@@ -160,7 +204,10 @@ impl<'t> Table<'t> {
         let number = |(at, size): (usize, f64)| {
             let value = row[at].text.parse::<f64>().ok().filter(|value| value.is_finite());
             if value.is_none() {
-                let title = format!("`{}` is not a number", row[at].text);
+                let title = match row[at].text {
+                    "" => "a cell is empty".to_string(),
+                    text => format!("`{text}` is not a number"),
+                };
                 self.refuse(
                     row[at].span.clone(),
                     title,
@@ -171,25 +218,38 @@ impl<'t> Table<'t> {
             value.map(|value| value * size)
         };
         let (head, flow) = (number(columns.heads), number(columns.flows));
+        let width = columns.widths.map(|column| {
+            let width = number(column).map(|width| Length::from_m(width).on_grid());
+            if width.is_some_and(|width| width <= Length::ZERO) {
+                self.refuse(
+                    row[column.0].span.clone(),
+                    "a width must be above zero",
+                    "not above zero",
+                    "write a width above zero",
+                );
+            }
+            width.filter(|&width| width > Length::ZERO)
+        });
         let places = (row[columns.heads.0].span.clone(), row[columns.flows.0].span.clone());
-        Some(((Length::from_m(head?).on_grid(), Flow::from_m3_per_s(flow?)), places))
+        Some((optional(width)?, (Length::from_m(head?).on_grid(), Flow::from_m3_per_s(flow?)), places))
     }
 
-    fn report(&self, fault: RatingFault, places: &[Places]) {
+    fn report(&self, fault: RatingFault, rows: &[(Length, Flow)], places: &[Places]) {
         let text = |span: &Span| self.source.text[span.clone()].to_string();
         let head = |row: usize| places[row].0.clone();
         let flow = |row: usize| places[row].1.clone();
+        // A row with a fault of its own is no measure for the next.
+        let before = |row: usize| (0..row).rev().find(|&row| rows[row].0 > Length::ZERO && rows[row].1 > Flow::ZERO);
         let (span, label, help) = match fault {
             RatingFault::Empty => {
                 let end = self.source.text.trim_end().len();
                 let start = self.source.text[..end].rfind('\n').map_or(0, |at| at + 1);
                 (start..end, "nothing but this".into(), "give at least one row with a head and a flow")
             }
-            RatingFault::Negative(row) => (
-                head(row),
-                format!("{} and {}", text(&head(row)), text(&flow(row))),
-                "heads and flows are zero or more",
-            ),
+            RatingFault::Negative(row) => {
+                let span = if rows[row].0 < Length::ZERO { head(row) } else { flow(row) };
+                (span, "below zero".into(), "heads and flows are zero or more")
+            }
             RatingFault::FlowAtZeroHead(row) => {
                 (flow(row), "flow without head".into(), "head is above the rim: a row 0, 0 or none at all")
             }
@@ -200,12 +260,12 @@ impl<'t> Table<'t> {
             ),
             RatingFault::HeadNotRising(row) => (
                 head(row),
-                format!("{} after {}", text(&head(row)), text(&head(row.saturating_sub(1)))),
+                format!("{} after {}", text(&head(row)), before(row).map_or("0".into(), |row| text(&head(row)))),
                 "sort the rows by head, each head once",
             ),
             RatingFault::FlowFalls(row) => (
                 flow(row),
-                format!("{} after {}", text(&flow(row)), text(&flow(row.saturating_sub(1)))),
+                format!("{} after {}", text(&flow(row)), before(row).map_or("0".into(), |row| text(&flow(row)))),
                 "more head never gives less flow: check this row",
             ),
         };
@@ -218,28 +278,32 @@ fn whole(row: &[Entry<'_>]) -> Span {
     row.first().map_or(0, |entry| entry.span.start)..row.last().map_or(0, |entry| entry.span.end)
 }
 
-/// The cells of a record with their places. A record lies on one line: no cell of numbers is quoted.
-fn entries<'t>(source: &'t Arc<Source>, record: &csv::StringRecord) -> Vec<Entry<'t>> {
-    let text = &source.text;
-    let start = record.position().map_or(0, |position| position.byte() as usize).min(text.len());
-    // The position may be that of empty or commented lines before the record.
-    let mut line_start = start;
-    let mut line = "";
-    for candidate in text[start..].split_inclusive('\n') {
-        line = candidate.trim_end_matches(['\n', '\r']);
-        if !line.trim().is_empty() && !line.starts_with('#') {
-            break;
+/// The rows of a table that are neither empty nor a comment.
+///
+/// No cell of numbers runs over the end of a line, so a row is a line: a quote that is not closed spoils its own row, and
+/// does not swallow those below.
+fn records(source: &Source) -> Vec<Vec<Entry<'_>>> {
+    let mut records = Vec::new();
+    let mut at = 0;
+    for line in source.text.split_inclusive(['\n', '\r']) {
+        if !line.trim().is_empty() && !line.trim_start().starts_with('#') {
+            records.push(entries(line.trim_end_matches(['\n', '\r']), at));
         }
-        line_start += candidate.len();
+        at += line.len();
     }
-    let mut entries = Vec::new();
+    records
+}
+
+/// The cells of a line with their places; blanks and a pair of quotes around a cell are left out.
+fn entries(line: &str, line_start: usize) -> Vec<Entry<'_>> {
     let mut at = line_start;
-    for cell in line.split(',') {
-        let lead = cell.len() - cell.trim_start_matches(['\u{feff}', ' ', '\t']).len();
-        let bare = cell.trim_matches(['\u{feff}', ' ', '\t', '"']);
-        let from = at + lead;
-        entries.push(Entry { text: bare, span: from..from + bare.len() });
-        at += cell.len() + 1;
-    }
-    entries
+    line.split(',')
+        .map(|cell| {
+            let bare = cell.trim();
+            let text = bare.strip_prefix('"').and_then(|rest| rest.strip_suffix('"')).map_or(bare, str::trim);
+            let from = at + cell.find(text).unwrap_or(0);
+            at += cell.len() + 1;
+            Entry { text, span: from..from + text.len() }
+        })
+        .collect()
 }

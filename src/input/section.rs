@@ -79,6 +79,16 @@ fn kind_of(value: &DeValue<'_>) -> &'static str {
     }
 }
 
+/// A fall as a ratio.
+struct Slope(f64);
+
+impl FromStr for Slope {
+    type Err = units::Fault;
+    fn from_str(text: &str) -> Result<Self, units::Fault> {
+        Dimension::Slope.read(text).map(Self)
+    }
+}
+
 /// The name in a list that is spelt most like `typed`, where one is near.
 pub(super) fn near<'n>(typed: &str, names: impl IntoIterator<Item = &'n str>) -> Option<&'n str> {
     let typed = typed.to_lowercase();
@@ -86,7 +96,7 @@ pub(super) fn near<'n>(typed: &str, names: impl IntoIterator<Item = &'n str>) ->
         .into_iter()
         .map(|name| (strsim::osa_distance(&name.to_lowercase(), &typed), name))
         .min_by_key(|&(distance, _)| distance)
-        .filter(|&(distance, name)| distance <= 1.max(name.chars().count() / 3))
+        .filter(|&(distance, name)| distance <= 1.max(name.chars().count() / 3) && distance < name.chars().count())
         .map(|(_, name)| name)
 }
 
@@ -152,9 +162,9 @@ impl<'a> Section<'a> {
 
     /// Logs that something the table must have is absent.
     pub(super) fn missing(&self, title: &str, help: &str) {
-        self.reader
-            .log
-            .put(Fault::error(title).at(self.reader.source, self.span.clone(), "this table").help(help).absent());
+        // The table that is the whole file has no head that could be shown.
+        let label = if self.span.is_empty() { "this file" } else { "this table" };
+        self.reader.log.put(Fault::error(title).at(self.reader.source, self.span.clone(), label).help(help).absent());
     }
 
     /// The table under a key.
@@ -162,16 +172,25 @@ impl<'a> Section<'a> {
         self.get(key)?.section(keys)
     }
 
-    /// The tables under a key: `[[key]]`.
-    pub(super) fn sections(&self, key: &'static str, keys: &'static Keys) -> Vec<Section<'a>> {
-        let Some(cell) = self.get(key) else { return Vec::new() };
+    /// The tables under a key, none for an entry that is not a table; no list at all where the key is absent or at fault.
+    pub(super) fn sections(
+        &self,
+        key: &'static str,
+        keys: &'static Keys,
+        wanted: &str,
+    ) -> Option<Vec<Option<Section<'a>>>> {
+        let cell = self.get(key)?;
         match cell.value {
+            DeValue::Array(tables) if tables.is_empty() => {
+                cell.at_fault(format!("`{key}` is an empty list"), "nothing stands here", format!("write {wanted}"));
+                None
+            }
             DeValue::Array(tables) => {
-                tables.iter().filter_map(|table| Cell::new(self.reader, cell.key, table).section(keys)).collect()
+                Some(tables.iter().map(|table| Cell::new(self.reader, cell.key, table).section(keys)).collect())
             }
             _ => {
-                cell.refuse(&format!("a list of tables, each under [[{key}]]"));
-                Vec::new()
+                cell.refuse(wanted);
+                None
             }
         }
     }
@@ -204,14 +223,14 @@ impl<'a> Cell<'a> {
     }
 
     /// The entries of a table whose keys are names, not fixed words.
-    pub(super) fn entries(&self, wanted: &str) -> Vec<(Cell<'a>, Span)> {
+    pub(super) fn entries(&self, wanted: &str) -> Option<Vec<(Cell<'a>, Span)>> {
         match self.value {
-            DeValue::Table(table) => {
-                table.iter().map(|(key, value)| (Cell::new(self.reader, key.get_ref(), value), key.span())).collect()
-            }
+            DeValue::Table(table) => Some(
+                table.iter().map(|(key, value)| (Cell::new(self.reader, key.get_ref(), value), key.span())).collect(),
+            ),
             _ => {
                 self.refuse(wanted);
-                Vec::new()
+                None
             }
         }
     }
@@ -255,6 +274,11 @@ impl<'a> Cell<'a> {
 
     /// One of a few words.
     pub(super) fn word<T: Copy>(&self, choices: &[(&'static str, T)]) -> Option<T> {
+        if !matches!(self.value, DeValue::String(_)) {
+            let quoted: Vec<_> = choices.iter().map(|(name, _)| format!("\"{name}\"")).collect();
+            self.refuse(&any_of(&quoted.iter().map(String::as_str).collect::<Vec<_>>()));
+            return None;
+        }
         let text = self.text()?;
         if let Some(&(_, choice)) = choices.iter().find(|(name, _)| *name == text) {
             return Some(choice);
@@ -274,18 +298,32 @@ impl<'a> Cell<'a> {
             DeValue::Integer(number) => number.as_str().to_string(),
             DeValue::Float(number) => number.as_str().to_string(),
             _ => {
-                let (unit, _) = dimension_example(dimension);
-                self.refuse(&format!("a number with a unit in quotes, such as \"{unit}\""));
+                self.refuse(&format!("a number with a unit in quotes, such as \"{}\"", dimension.example()));
                 return None;
             }
         };
         match text.parse() {
             Ok(quantity) => Some(quantity),
             Err(fault) => {
-                self.at_fault(format!("`{}`: {fault}", self.key), dimension_example(dimension).1, fault.help());
+                let label = format!("{} belongs here", dimension.with_article());
+                self.at_fault(format!("`{}`: {fault}", self.key), label, fault.help());
                 None
             }
         }
+    }
+
+    /// A fall of zero or more, as a ratio: with its unit, or as `1:80`.
+    pub(super) fn slope(&self) -> Option<f64> {
+        let ratio = match self.value {
+            DeValue::String(text) => text.split_once(':').and_then(|(rise, run)| {
+                let (rise, run) = (rise.trim().parse::<f64>().ok()?, run.trim().parse::<f64>().ok()?);
+                (run > 0.0 && rise.is_finite() && run.is_finite()).then(|| rise / run)
+            }),
+            _ => None,
+        };
+        ratio
+            .or_else(|| self.quantity::<Slope>(Dimension::Slope).map(|slope| slope.0))
+            .filter(|&fall| self.not_negative(fall))
     }
 
     /// A length of zero or more.
@@ -369,6 +407,7 @@ impl<'a> Cell<'a> {
     pub(super) fn whole(&self, least: u32, most: u32) -> Option<u32> {
         let whole = match self.value {
             DeValue::Integer(number) => i64::from_str_radix(&number.as_str().replace('_', ""), number.radix()).ok(),
+            DeValue::Float(_) => None,
             _ => {
                 self.refuse(&format!("a whole number from {least} to {most}"));
                 return None;
@@ -378,23 +417,10 @@ impl<'a> Cell<'a> {
         if fits.is_none() {
             self.at_fault(
                 format!("`{}` must be a whole number from {least} to {most}", self.key),
-                "outside that range",
+                if matches!(self.value, DeValue::Float(_)) { "not a whole number" } else { "outside that range" },
                 format!("{least} to {most} would pass"),
             );
         }
         fits
-    }
-}
-
-/// An example of a quantity, and what the place wants, for messages.
-fn dimension_example(dimension: Dimension) -> (&'static str, &'static str) {
-    match dimension {
-        Dimension::Length => ("6 in", "a length belongs here"),
-        Dimension::Area => ("9600 ft2", "an area belongs here"),
-        Dimension::Flow => ("250 gpm", "a flow belongs here"),
-        Dimension::Intensity => ("6.3 in/h", "a rain intensity belongs here"),
-        Dimension::Load => ("30 psf", "a load belongs here"),
-        Dimension::Time => ("15 min", "a duration belongs here"),
-        Dimension::ReturnPeriod => ("100 yr", "a return period belongs here"),
     }
 }

@@ -2,7 +2,8 @@
 
 use serde::Serialize;
 
-use crate::search::{Answer, Outcome, Placed, Ranked};
+use crate::device::{Kind, Site};
+use crate::search::{Answer, Outcome, Placed, Ranked, UnderLaw};
 use crate::units::Length;
 
 use super::words::Words;
@@ -45,6 +46,7 @@ struct Layout<'a> {
     cases: Vec<Case<'a>>,
     beyond_range: bool,
     straight_line_excess: f64,
+    under_other_laws: Vec<Under<'a>>,
     notes: Vec<String>,
 }
 
@@ -54,11 +56,13 @@ struct Group<'a> {
     kind: &'static str,
     width_m: Option<f64>,
     height_m: Option<f64>,
+    diameter_m: Option<f64>,
     count: u32,
     set_height_m: f64,
     set_height_from_m: f64,
     set_height_to_m: f64,
     law: &'static str,
+    law_source: &'static str,
 }
 
 #[derive(Serialize)]
@@ -74,7 +78,11 @@ struct Case<'a> {
     demand_m3_s: f64,
     load_limit_pa: Option<f64>,
     depth_limit_m: Option<f64>,
+    parapet_m: Option<f64>,
+    allowable_level_m: Option<f64>,
     water_depth_m: Option<f64>,
+    far_end_level_m: Option<f64>,
+    deepest_m: Option<f64>,
     load_pa: Option<f64>,
     utilisation: Option<f64>,
     groups: Vec<GroupState>,
@@ -87,6 +95,17 @@ struct GroupState {
     working: u32,
     regime: &'static str,
     freeboard_m: Option<f64>,
+    backs_up_above_sill_m: Option<f64>,
+}
+
+#[derive(Serialize)]
+struct Under<'a> {
+    law: &'static str,
+    case: &'a str,
+    water_depth_m: Option<f64>,
+    load_pa: Option<f64>,
+    utilisation: Option<f64>,
+    breaks_in: Option<&'a str>,
 }
 
 pub(super) fn document(sized: &Sized<'_, '_>) -> String {
@@ -135,6 +154,10 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
     if ranked.chord > notes::CHORD_TOLD {
         remarks.push("straight lines between rated rows decide by more than 2 % of flow".into());
     }
+    let site = sized.roof.site(area, None);
+    // The first layout under every law where that is asked for; else each under the laws of a thick wall.
+    let asked = sized.answers.iter().position(|answer| answer.area == area).and_then(|at| sized.laws.get(at));
+    let others: &[UnderLaw] = asked.filter(|_| rank == 1).map_or(&ranked.thick_wall, |laws| laws);
     let cases = ranked.states.iter().enumerate().map(|(index, state)| {
         let limits = sized.roof.areas[area].limits[index];
         Case {
@@ -142,7 +165,11 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
             demand_m3_s: state.demand.m3_per_s(),
             load_limit_pa: limits.load.map(crate::units::Load::pa),
             depth_limit_m: limits.depth.map(Length::m),
+            parapet_m: sized.roof.areas[area].parapet.height.map(Length::m),
+            allowable_level_m: Some(ranked.allowed[index].m()).filter(|level| level.is_finite()),
             water_depth_m: state.water.map(|water| water.level.m()),
+            far_end_level_m: state.water.and_then(|water| water.reach).map(|reach| reach.far_level.m()),
+            deepest_m: state.water.map(|water| water.depth().m()),
             load_pa: state.water.map(|water| water.load.pa()),
             utilisation: state.water.map(|water| water.governing.utilisation),
             groups: state
@@ -154,6 +181,7 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
                     working: stands.share.working,
                     regime: stands.share.each.regime.name(),
                     freeboard_m: stands.freeboard.map(Length::m),
+                    backs_up_above_sill_m: stands.backs_up.map(Length::m),
                 })
                 .collect(),
         }
@@ -161,7 +189,7 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
     Layout {
         rank,
         cost: ranked.cost.map(crate::units::Money::amount),
-        groups: ranked.groups.iter().map(group).collect(),
+        groups: ranked.groups.iter().map(|placed| group(placed, &site)).collect(),
         governing: Governing {
             case: &sized.roof.cases[ranked.case].name,
             limit: ranked.governing.map(|governing| governing.limit.name()),
@@ -170,21 +198,38 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
         cases: cases.collect(),
         beyond_range: !ranked.beyond.is_empty(),
         straight_line_excess: ranked.chord,
+        under_other_laws: others.iter().map(|under| under_law(sized, under)).collect(),
         notes: remarks,
     }
 }
 
-fn group<'a>(placed: &Placed<'a>) -> Group<'a> {
+fn under_law<'a>(sized: &Sized<'a, '_>, under: &UnderLaw) -> Under<'a> {
+    let case = |case: usize| sized.roof.cases[case].name.as_str();
+    Under {
+        law: under.law.name(),
+        case: case(under.case),
+        water_depth_m: under.water.map(|water| water.level.m()),
+        load_pa: under.water.map(|water| water.load.pa()),
+        utilisation: under.water.map(|water| water.governing.utilisation),
+        breaks_in: under.breaks.map(case),
+    }
+}
+
+fn group<'a>(placed: &Placed<'a>, site: &Site) -> Group<'a> {
     let size = placed.group.size;
+    let law = size.law_at(site);
+    let round = size.device.kind() == Kind::PipeScupper;
     Group {
         device: &size.tag,
         kind: size.device.kind().name(),
-        width_m: size.device.width().map(Length::m),
-        height_m: size.device.height().map(Length::m),
+        width_m: size.device.width().filter(|_| !round).map(Length::m),
+        height_m: size.device.height().filter(|_| !round).map(Length::m),
+        diameter_m: size.device.diameter().map(Length::m),
         count: placed.group.count,
         set_height_m: placed.group.set_height.m(),
         set_height_from_m: placed.from.m(),
         set_height_to_m: placed.to.m(),
-        law: size.device.law().name,
+        law: law.name(),
+        law_source: law.account(size.device.kind()).source,
     }
 }

@@ -1,6 +1,7 @@
 //! What every reader of a report must know besides its numbers: the laws, the assumptions, the cautions of this very roof.
 
-use crate::device::{Kind, Place, Regime, Size};
+use crate::device::{Kind, Law, Place, Regime, Size};
+use crate::roof::layout::GroupState;
 use crate::search::{Outcome, Ranked};
 use crate::units::{Area, Length, System};
 
@@ -13,8 +14,8 @@ pub(super) const CHORD_TOLD: f64 = 0.02;
 
 /// Head under which surface tension, membrane edges and levels decide: 1 in. Common practice.
 const LOW_HEAD: Length = Length::inches(1.0);
-/// Set height under which an overflow runs in ordinary storms: 2 in. ASCE 7-22 and training notes of the UPC, from memory.
-const LOW_SILL: Length = Length::inches(2.0);
+/// Set height under which an overflow runs in ordinary storms: 2 in, or 50 mm where metric. ASCE 7-22 and training notes of the UPC, from memory.
+const LOW_SILL: Length = Length::mm(50.0);
 
 fn layouts<'a, 'r>(sized: &Sized<'a, 'r>) -> impl Iterator<Item = &'a Ranked<'r>> {
     sized.answers.iter().flat_map(|answer| match &answer.outcome {
@@ -36,26 +37,62 @@ fn sizes<'r>(sized: &Sized<'_, 'r>) -> Vec<&'r Size> {
 /// The devices that the layouts are made of, with their laws and sources; devices of one law in one line.
 pub(super) fn laws(sized: &Sized<'_, '_>, words: Words) -> Vec<String> {
     let mut lines: Vec<(String, Vec<String>)> = Vec::new();
+    let area = sized.answers.first().map_or(0, |answer| answer.area);
     for size in sizes(sized) {
-        let law = size.device.law();
-        let form = if words.0 == System::Us { law.form_us } else { law.form_si };
-        let place = if size.place == Place::Interior { "inside the roof" } else { "in the parapet" };
-        let source = match (&size.source, size.device.kind()) {
-            (Some(source), _) => source.to_string(),
-            (None, Kind::Rated) => "not stated in the catalog".to_string(),
-            (None, _) => law.source.to_string(),
-        };
-        let line = format!("{place}. Law {}: {form}. Source: {source}.", law.name);
-        let device = format!("{} ({})", size.tag, size.device.kind());
-        match lines.iter_mut().find(|(known, _)| *known == line) {
-            Some((_, devices)) => devices.push(device),
-            None => lines.push((line, vec![device])),
+        let kind = size.device.kind();
+        let mut laws: Vec<Law> =
+            sized.roof.cases.iter().map(|case| size.law_at(&sized.roof.site(area, case.law))).collect();
+        laws.sort_unstable();
+        laws.dedup();
+        for law in laws {
+            let account = law.account(kind);
+            let place = if size.place == Place::Interior { "inside the roof" } else { "in the parapet" };
+            let source = match &size.source {
+                Some(source) if kind == Kind::Rated => source.to_string(),
+                None if kind == Kind::Rated => "not stated in the catalog".to_string(),
+                _ => account.source.to_string(),
+            };
+            let line = format!("{place}. Law {}: {}. Source: {source}.", law.name(), account.form(words.0));
+            let device = format!("{} ({kind})", size.tag);
+            match lines.iter_mut().find(|(known, _)| *known == line) {
+                Some((_, devices)) => devices.push(device),
+                None => lines.push((line, vec![device])),
+            }
         }
     }
     if lines.is_empty() {
         return vec!["No layout is listed.".into()];
     }
-    lines.into_iter().map(|(line, devices)| format!("{}, {line}", list(&devices))).collect()
+    let mut lines: Vec<_> = lines.into_iter().map(|(line, devices)| format!("{}, {line}", list(&devices))).collect();
+    lines.extend(following(sized, words));
+    lines
+}
+
+/// What guards and follows the devices, and from which head it governs.
+fn following(sized: &Sized<'_, '_>, words: Words) -> Vec<String> {
+    let mut lines: Vec<String> = Vec::new();
+    for answer in sized.answers {
+        let Outcome::Optimal(layouts) = &answer.outcome else { continue };
+        let site = sized.roof.site(answer.area, None);
+        for placed in layouts.iter().flat_map(|layout| &layout.groups) {
+            let size = placed.group.size;
+            let mut parts = Vec::new();
+            if (size.screen - 1.0).abs() > 1e-12 {
+                parts.push(format!("a guard lets {} of its flow pass", trimmed(size.screen, 3)));
+            }
+            let (curve, _) = size.curve(&site, placed.group.set_height, Length::ZERO);
+            if let Some((head, regime)) = curve.governed_from() {
+                parts.push(format!("the {regime} governs above {} of head", words.depth(head)));
+            } else if size.following.capacity().is_some() {
+                parts.push("what follows it carries all that it passes".into());
+            }
+            let line = format!("{}: {}.", words.name(size), list(&parts));
+            if !parts.is_empty() && !lines.contains(&line) {
+                lines.push(line);
+            }
+        }
+    }
+    lines
 }
 
 /// What was taken as given, and every default that was taken.
@@ -80,15 +117,16 @@ pub(super) fn assumptions(sized: &Sized<'_, '_>) -> Vec<String> {
         .into(),
         "Widths and heights are clear openings, after flashing and membrane.".into(),
         format!(
-            "Layouts are ranked by {}; of layouts with the same number of each device the best is {}.",
+            "Layouts are ranked by {}; ties go by cost, load, count, width, sizes, set-height, then catalog order.{}",
             ranked_by(&sized.options.rank_by),
-            if sized.options.fold { "listed" } else { "listed first" }
+            if sized.options.fold { " Of layouts with the same number of each device the best is listed." } else { "" }
         ),
+        "In a window all groups rise together, each stopping at the top of its own range.".into(),
     ];
     for assumed in sized.assumed {
         let default = assumed.default;
         let whom = if assumed.areas.is_empty() { String::new() } else { format!(" in {}", list(&assumed.areas)) };
-        lines.push(format!("Not given, taken as {}: `{}`{whom}; {}.", default.value, default.key, default.meaning));
+        lines.push(format!("Not given: `{}`{whom}. Taken: {}; {}.", default.key, default.value, default.meaning));
     }
     if let Some(freeboard) = sized.options.freeboard {
         lines.push(format!(
@@ -116,11 +154,13 @@ pub(super) fn cautions(sized: &Sized<'_, '_>) -> Vec<String> {
         "Ice, snow, hail and leaves before an opening, and water driven along a parapet by wind, are in none of the formulas."
             .into(),
     );
-    lines.push(
-        "What follows a device is not checked here: a leader, conductor head or pipe that backs up raises the water. \
+    if sizes(sized).iter().any(|size| size.following.capacity().is_none()) {
+        lines.push(
+            "What follows a device is checked only where the catalog gives it: a leader, conductor head or pipe that backs up raises the water. \
          Overflow must discharge apart from the primary, where it is seen."
-            .into(),
-    );
+                .into(),
+        );
+    }
     lines
 }
 
@@ -151,9 +191,7 @@ fn storm(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
     }
 }
 
-fn names<'a>(sized: &Sized<'a, '_>, wanted: impl Fn(&crate::roof::Catchment) -> bool) -> Vec<&'a str>
-where
-{
+fn names<'a>(sized: &Sized<'a, '_>, wanted: impl Fn(&crate::roof::Catchment) -> bool) -> Vec<&'a str> {
     let areas: Vec<_> = sized.answers.iter().map(|answer| &sized.roof.areas[answer.area]).collect();
     areas.into_iter().filter(|area| wanted(area)).map(|area| area.name.as_str()).collect()
 }
@@ -190,16 +228,20 @@ fn structure(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
             list(&depths)
         ));
     }
-    lines.push(
-        "Water is taken as level over each area: where it must run along a valley, a cricket or a gutter to the opening, \
-         the far end stands deeper."
-            .into(),
-    );
+    let level = names(sized, |area| area.channel.is_none());
+    if !level.is_empty() {
+        lines.push(format!(
+            "Water is taken as level over {}: where it must run along a valley, a cricket or a gutter to the opening, the far \
+             end stands deeper.",
+            list(&level)
+        ));
+    }
 }
 
 fn openings(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
-    let scuppers = sizes(sized).iter().any(|size| size.device.kind() != Kind::Rated);
-    if scuppers {
+    let site = sized.roof.site(sized.answers.first().map_or(0, |answer| answer.area), None);
+    let thin = |law: Law| matches!(law, Law::ThinPlate | Law::Contracted | Law::KindsvaterCarter);
+    if sizes(sized).iter().any(|size| size.device.kind().is_scupper() && thin(size.law_at(&site))) {
         let thick: Vec<_> = sized
             .answers
             .iter()
@@ -212,10 +254,15 @@ fn openings(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
             .collect();
         let given = if thick.is_empty() { String::new() } else { format!(" (parapet {})", list(&thick)) };
         lines.push(format!(
-            "The thin-plate law has no wall thickness and no end contraction: through a thick parapet{given} a scupper \
-             carries 13 to 20 % less, and a narrow one less still."
+            "A thin-plate law has no wall thickness, and the practice form no end contraction: through a thick parapet{given} \
+             a scupper carries 13 to 20 % less, and a narrow one less still."
         ));
     }
+    regimes(sized, lines);
+    heights(sized, lines);
+}
+
+fn regimes(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
     let states = || {
         layouts(sized).flat_map(|layout| {
             layout.states.iter().flat_map(move |state| {
@@ -224,8 +271,16 @@ fn openings(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
         })
     };
     let met = |regime| states().any(|(_, stands)| stands.share.each.regime == regime);
-    if met(Regime::Orifice) {
-        lines.push("Some openings run full in some case: their flow then rises slowly with depth, and debris catches at the top.".into());
+    let full = |stands: &GroupState| {
+        matches!(stands.share.each.regime, Regime::Orifice | Regime::Transition)
+            || stands.freeboard.is_some_and(|freeboard| freeboard < Length::ZERO)
+    };
+    if states().any(|(_, stands)| full(stands)) {
+        lines.push(
+            "Water stands over the top of some openings in some case: their flow then rises slowly with depth, and debris \
+             catches at the top."
+                .into(),
+        );
     }
     if met(Regime::TableHeld) {
         lines.push("Some rated devices are read above the last row of their table, where its flow is held: nothing was measured there.".into());
@@ -252,12 +307,45 @@ fn openings(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
                 .into(),
         );
     }
+    if met(Regime::BeyondRange) {
+        lines.push("Some flows are continued past the range in which their law is published: they are marked.".into());
+    }
+    if sizes(sized).iter().any(|size| matches!(size.device.kind(), Kind::OverflowDrain | Kind::Standpipe)) {
+        lines.push(
+            "The computed flow of an overflow drain or standpipe is an upper bound: vortex, dome and bowl take their part. A \
+             measured rating of the very body is better."
+                .into(),
+        );
+    }
+    if states().any(|(_, stands)| stands.backs_up.is_some()) {
+        lines.push(
+            "A conductor head would back up above the sill under what its scupper passes: only what it carries with water at \
+             the sill is credited. Enlarge its outlet or its overflow, or lower its lip."
+                .into(),
+        );
+    }
+}
+
+/// Cautions on where devices stand.
+fn heights(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
     if layouts(sized).flat_map(|layout| &layout.groups).any(|placed| placed.group.set_height.nm() < LOW_SILL.nm()) {
         lines.push(
             "Some sills stand less than 2 in (50 mm) above the low point: they run in ordinary storms, and a blocked primary \
              goes unnoticed."
                 .into(),
         );
+    }
+    for size in sizes(sized) {
+        if let (Some(heights), true) = (&size.set_heights, size.place == Place::Interior) {
+            let words = Words(sized.roof.system);
+            let heights: Vec<_> = heights.iter().take(8).map(|&height| words.bare_size(height)).collect();
+            lines.push(format!(
+                "{} comes at set heights of {} {} only: of its window only these can be built.",
+                size.tag,
+                list(&heights),
+                words.small_unit()
+            ));
+        }
     }
     if sizes(sized).iter().any(|size| size.device.kind() == Kind::Rated) {
         lines.push("A rating holds for the body, dome and dam that were tested, and for no other.".into());

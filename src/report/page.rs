@@ -45,6 +45,17 @@ impl Table {
         table
     }
 
+    /// The widest column of text: the one that gives way on a narrow terminal.
+    fn widest(&self) -> Option<usize> {
+        let wide = |&index: &usize| self.rows.iter().map(|row| widest(&row[index])).max().unwrap_or(0);
+        (0..self.head.len()).filter(|&index| !self.numbers[index]).max_by_key(|index| (wide(index), usize::MAX - index))
+    }
+
+    fn escaped(&self) -> Self {
+        let cells = |row: &Vec<String>| row.iter().map(|cell| escaped(cell)).collect();
+        Self { head: cells(&self.head), rows: self.rows.iter().map(cells).collect(), numbers: self.numbers.clone() }
+    }
+
     fn grid(&self, preset: comfy_table::TableStyle, width: Option<usize>) -> String {
         let mut grid = Grid::new();
         grid.load_style(preset);
@@ -62,17 +73,27 @@ impl Table {
             let Some(column) = grid.column_mut(index) else { continue };
             if numbers {
                 column.set_cell_alignment(CellAlignment::Right);
-                column.set_constraint(ColumnConstraint::ContentWidth);
+            }
+            if width.is_none() {
+                continue;
+            }
+            if self.widest() == Some(index) {
+                let content =
+                    self.rows.iter().map(|row| widest(&row[index])).max().unwrap_or(0).max(widest(&self.head[index]));
+                let least = u16::try_from(content + PADDING).unwrap_or(TEXT_COLUMN).min(TEXT_COLUMN);
+                column.set_constraint(ColumnConstraint::LowerBoundary(Width::Fixed(least)));
             } else {
-                column.set_constraint(ColumnConstraint::LowerBoundary(Width::Fixed(TEXT_COLUMN)));
+                column.set_constraint(ColumnConstraint::ContentWidth);
             }
         }
         grid.to_string()
     }
 }
 
-/// Narrowest column of text, in characters.
-const TEXT_COLUMN: u16 = 12;
+/// Narrowest that the widest column of text may become, in characters.
+const TEXT_COLUMN: u16 = 24;
+/// Blanks on both sides of a cell.
+const PADDING: usize = 2;
 
 /// Draws a page for a terminal so many characters wide.
 pub(super) fn text(blocks: &[Block], width: usize) -> String {
@@ -103,26 +124,41 @@ pub(super) fn text(blocks: &[Block], width: usize) -> String {
     out
 }
 
-/// Draws a page as Markdown.
+/// Draws a page as Markdown; what its reader would take for a mark of Markdown is escaped.
 pub(super) fn markdown(blocks: &[Block]) -> String {
     let mut out = String::new();
     for block in blocks {
         out += &match block {
-            Block::Title(title) => format!("# {title}\n\n"),
-            Block::Heading(heading) => format!("## {heading}\n\n"),
-            Block::Text(text) => format!("{text}\n\n"),
-            Block::List(items) => items.iter().map(|item| format!("- {item}\n")).collect::<String>() + "\n",
+            Block::Title(title) => format!("# {}\n\n", escaped(title)),
+            Block::Heading(heading) => format!("## {}\n\n", escaped(heading)),
+            Block::Text(text) => format!("{}\n\n", escaped(text)),
+            Block::List(items) => items.iter().map(|item| format!("- {}\n", escaped(item))).collect::<String>() + "\n",
             Block::Lines(lines) => {
                 let rows = lines.iter().map(|(label, line)| vec![label.clone(), line.clone()]).collect();
                 let head = vec!["Step".to_string(), "Arithmetic".to_string()];
                 let table = Table { head, rows, numbers: vec![false, false] };
-                format!("{}\n\n", table.grid(presets::ASCII_MARKDOWN, None))
+                format!("{}\n\n", table.escaped().grid(presets::ASCII_MARKDOWN, None))
             }
-            Block::Table(table) => format!("{}\n\n", table.grid(presets::ASCII_MARKDOWN, None)),
+            Block::Table(table) => format!("{}\n\n", table.escaped().grid(presets::ASCII_MARKDOWN, None)),
         };
     }
     out.truncate(out.trim_end().len());
     out + "\n"
+}
+
+/// A text in which no character is a mark of Markdown; back-ticked words stay as they are.
+fn escaped(text: &str) -> String {
+    let mut out = String::with_capacity(text.len());
+    let mut quoted = false;
+    for c in text.chars() {
+        if c == '`' {
+            quoted = !quoted;
+        } else if "\\*_<>|".contains(c) && (!quoted || c == '|') {
+            out.push('\\');
+        }
+        out.push(c);
+    }
+    out
 }
 
 fn widest(text: &str) -> usize {
@@ -162,14 +198,14 @@ mod tests {
     fn a_page_in_both_forms() {
         let table = Table::of(vec![
             ("rank".into(), true, vec!["1".into(), "10".into()]),
-            ("layout".into(), false, vec!["two".into(), "three of them".into()]),
+            ("layout".into(), false, vec!["two".into(), "a|b of them".into()]),
         ]);
-        let page = [Block::Title("Roof".into()), Block::Text("one two three four".into()), Block::Table(table)];
+        let page = [Block::Title("Roof".into()), Block::Text("one * two three `a_b`".into()), Block::Table(table)];
         assert_eq!(
             markdown(&page),
-            "# Roof\n\none two three four\n\n| rank | layout        |\n|------|---------------|\n|    1 | two           |\n|   10 | three of them |\n"
+            "# Roof\n\none \\* two three `a_b`\n\n| rank | layout       |\n|------|--------------|\n|    1 | two          |\n|   10 | a\\|b of them |\n"
         );
         let drawn = text(&page, 12);
-        assert!(drawn.starts_with("Roof\n====\none two\nthree four\n"), "{drawn}");
+        assert!(drawn.starts_with("Roof\n====\none * two\nthree `a_b`\n"), "{drawn}");
     }
 }

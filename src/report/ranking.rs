@@ -1,19 +1,20 @@
 //! The report of `size`: for each area its demand and its limit in words, then the ranked layouts, or why there are none.
 
+use crate::device::{Kind, Law};
 use crate::hydraulics::limits::Range;
 use crate::roof::{Case, LimitKind, Limits, Roof, demand};
 use crate::rules::Misfit;
-use crate::search::{Answer, Criterion, Outcome, Ranked, Why};
-use crate::units::{Area, Length};
+use crate::search::{Answer, Criterion, Outcome, Ranked, UnderLaw, Why};
+use crate::units::{Area, Length, Load};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list, trimmed};
 use super::{Sized, notes, work};
 
 /// The mark behind a layout that leaves the published range of its law.
-const BEYOND: &str = "*";
+const BEYOND: &str = "\u{2020}";
 /// The mark behind a layout whose flow rests on straight lines between rated rows.
-const CHORD: &str = "~";
+const CHORD: &str = "\u{2021}";
 
 pub(super) fn page(sized: &Sized<'_, '_>) -> Vec<Block> {
     let words = Words(sized.roof.system);
@@ -23,7 +24,7 @@ pub(super) fn page(sized: &Sized<'_, '_>) -> Vec<Block> {
     ];
     let cases: Vec<_> = sized.roof.cases.iter().map(|case| case_in_words(case, words)).collect();
     if sized.roof.cases.len() > 1 || sized.roof.cases[0] != Case::as_designed() {
-        blocks.push(Block::Text("Every layout withstands these cases:".into()));
+        blocks.push(Block::Text("Cases that a layout must withstand:".into()));
         blocks.push(Block::List(cases));
     }
     for answer in sized.answers {
@@ -84,6 +85,10 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
     match &answer.outcome {
         Outcome::Optimal(layouts) => {
             ranking(sized, answer.area, layouts, words, blocks);
+            let asked = sized.answers.iter().position(|known| known.area == answer.area);
+            if let Some(laws) = asked.and_then(|at| sized.laws.get(at)).filter(|laws| !laws.is_empty()) {
+                every_law(roof, answer.area, &layouts[0], laws, words, blocks);
+            }
             if sized.work {
                 blocks.push(Block::Text(format!("The first layout by hand, {}:", words.layout(&layouts[0]))));
                 blocks.push(Block::Lines(work::lines(roof, answer.area, &layouts[0], words)));
@@ -125,7 +130,7 @@ fn demand_in_words(roof: &Roof, area: usize, words: Words) -> String {
             ". By hand 0.0104 x {} x {} = {} gpm{}",
             words.bare_area(catching),
             trimmed(roof.storm.intensity.to_inches_per_hour(), 3),
-            words::grouped(by_hand, 0),
+            words::gpm_by_hand(by_hand),
             if catchment.receives.is_empty() { "" } else { " for its own rain" }
         );
     }
@@ -163,6 +168,13 @@ fn limit_in_words(roof: &Roof, area: usize, words: Words) -> String {
     if let Some(edge) = catchment.edge {
         text += &format!("; {} of edge for openings", words.long(edge));
     }
+    if let Some(channel) = catchment.channel {
+        text += &format!(
+            "; held along a channel {} wide and {} long, whose tailwater is the level at the devices",
+            words.long(channel.width),
+            words.long(channel.length)
+        );
+    }
     text + "."
 }
 
@@ -182,6 +194,18 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
         cells: layouts.iter().map(cell).collect(),
         constant,
     };
+    let load_of = |layout: &Ranked<'_>, case: usize| layout.states[case].water.map(|water| water.load.pa());
+    // Where another case bears more load than the governing one, layouts rank by that, and it is shown beside.
+    let unlike = layouts
+        .iter()
+        .any(|layout| (0..layout.states.len()).any(|case| load_of(layout, case) > load_of(layout, layout.case)));
+    let worst = |layout: &Ranked<'_>| {
+        let loads = layout.states.iter().map(|state| state.water.map(|water| water.load));
+        match loads.collect::<Option<Vec<_>>>() {
+            Some(loads) if unlike => words.bare_load(loads.into_iter().fold(Load::ZERO, Load::max)),
+            _ => "-".into(),
+        }
+    };
     let governing_limit =
         |layout: &Ranked<'_>| layout.governing.map_or("overwhelmed", |governing| governing.limit.name());
     let columns = [
@@ -189,14 +213,18 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
         column(format!("depth {}", words.small_unit()), true, "water depth", &|layout| {
             water(layout).map_or("-".into(), |water| words.bare_depth(water.level))
         }),
+        column(format!("far end {}", words.small_unit()), true, "level at the far end", &|layout| {
+            water(layout).and_then(|water| water.reach).map_or("-".into(), |reach| words.bare_depth(reach.far_level))
+        }),
         column(format!("load {}", words.load_unit()), true, "load", &|layout| {
             water(layout).map_or("-".into(), |water| words.bare_load(water.load))
         }),
-        column("used".into(), true, "part of the limit used", &|layout| {
+        column(format!("worst {}", words.load_unit()), true, "greatest load of all cases", &worst),
+        column("util.".into(), true, "utilisation", &|layout| {
             layout.governing.map_or("-".into(), |governing| format!("{:.3}", governing.utilisation))
         }),
-        column("case".into(), false, "governing case", &|layout| sized.roof.cases[layout.case].name.clone()),
-        column("by".into(), false, "governing limit", &|layout| governing_limit(layout).to_string()),
+        column("governing case".into(), false, "governing case", &|layout| sized.roof.cases[layout.case].name.clone()),
+        column("limit".into(), false, "governing limit", &|layout| governing_limit(layout).to_string()),
         column(format!("set height {}", words.small_unit()), false, "set height may run", &|layout| {
             words.window(&layout.groups)
         }),
@@ -210,7 +238,12 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
         let same = column.cells.iter().all(|cell| *cell == column.cells[0]);
         let without = column.cells[0] == "-";
         if same && (layouts.len() > 1 || without) {
-            let unit = column.head.rsplit_once(' ').map_or(String::new(), |(_, unit)| format!(" {unit}"));
+            let unit = column.head.strip_prefix(column.head.trim_end_matches(|c: char| c != ' ')).unwrap_or("");
+            let unit = if [words.small_unit(), words.load_unit()].contains(&unit) {
+                format!(" {unit}")
+            } else {
+                String::new()
+            };
             if !without {
                 constants.push(format!("{} {}{unit}", column.constant, column.cells[0]));
             }
@@ -225,9 +258,7 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
         under.push(format!("The same in every row: {}.", constants.join("; ")));
     }
     if several && area == sized.answers[0].area {
-        under.push(
-            "Depth, load and part used are those of the governing case, the one that uses most of its limit.".into(),
-        );
+        under.push("Depth and load are those of the governing case, the one that uses most of its limit.".into());
     }
     if !under.is_empty() {
         blocks.push(Block::Text(under.join(" ")));
@@ -235,6 +266,74 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
     for text in marks(layouts, words) {
         blocks.push(Block::Text(text));
     }
+    let thick = thick_walls(sized.roof, area, layouts, words);
+    if !thick.is_empty() {
+        blocks.push(Block::Text("Under the laws of a thick wall, in the governing case:".into()));
+        blocks.push(Block::List(thick));
+    }
+}
+
+/// One line for each layout: its level under the laws of a thick wall, and whether that breaks a limit.
+fn thick_walls(roof: &Roof, area: usize, layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
+    let Some(thickness) = roof.areas[area].parapet.thickness else { return Vec::new() };
+    let wall = format!(" ({} parapet)", words.size(thickness));
+    let one = |(index, under): (usize, &UnderLaw)| {
+        let (wall, is) = if index == 0 { (wall.as_str(), "the level is ") } else { ("", "") };
+        format!("under `{}`{wall} {is}{}", under.law.name(), under_in_words(roof, area, under, words))
+    };
+    let numbered = layouts.iter().enumerate().filter(|(_, layout)| !layout.thick_wall.is_empty());
+    numbered
+        .map(|(index, layout)| {
+            format!("{}: {}", index + 1, layout.thick_wall.iter().enumerate().map(one).collect::<Vec<_>>().join("; "))
+        })
+        .collect()
+}
+
+/// The level under another law, beside what is allowed where it passes that.
+fn under_in_words(roof: &Roof, area: usize, under: &UnderLaw, words: Words) -> String {
+    let Some(water) = under.water else { return "without end: overwhelmed".into() };
+    let level = words.depth(water.level);
+    let breaks = |case: usize| {
+        let allowed = roof.situation(area, case).allowable_level();
+        if case == under.case {
+            format!(", over the {} limit", words.depth(allowed))
+        } else {
+            format!(", and \"{}\" passes its {}", roof.cases[case].name, words.depth(allowed))
+        }
+    };
+    // The governing case is told first where it breaks, though another may stand before it.
+    let own = water.governing.utilisation > 1.0;
+    let broken = if own { Some(under.case) } else { under.breaks };
+    level + &broken.map_or(String::new(), breaks)
+}
+
+/// The first layout of an area under every law that it can follow.
+fn every_law(roof: &Roof, area: usize, first: &Ranked<'_>, laws: &[UnderLaw], words: Words, blocks: &mut Vec<Block>) {
+    let kind = |law: Law| {
+        let kinds = first.groups.iter().map(|placed| placed.group.size.device.kind());
+        kinds.into_iter().find(|kind| kind.laws().contains(&law)).unwrap_or(Kind::Rated)
+    };
+    let cell = |tell: &dyn Fn(&UnderLaw) -> String| laws.iter().map(tell).collect::<Vec<_>>();
+    blocks.push(Block::Text(format!(
+        "The first layout under every law, in the case \"{}\" (water up to {}):",
+        roof.cases[first.case].name,
+        words.depth(roof.situation(area, first.case).allowable_level())
+    )));
+    let water = |tell: &dyn Fn(&crate::roof::layout::Water) -> String| {
+        cell(&|under| under.water.as_ref().map_or("-".into(), tell))
+    };
+    let holds = |under: &UnderLaw| match under.breaks {
+        None => "yes".to_string(),
+        Some(case) => format!("no, {}", roof.cases[case].name),
+    };
+    blocks.push(Block::Table(Table::of(vec![
+        ("law".into(), false, cell(&|under| under.law.name().into())),
+        (format!("depth {}", words.small_unit()), true, water(&|water| words.bare_depth(water.level))),
+        (format!("load {}", words.load_unit()), true, water(&|water| words.bare_load(water.load))),
+        ("util.".into(), true, water(&|water| format!("{:.3}", water.governing.utilisation))),
+        ("holds".into(), false, cell(&holds)),
+        ("source".into(), false, cell(&|under| under.law.account(kind(under.law)).source.into())),
+    ])));
 }
 
 fn marked(layout: &Ranked<'_>, words: Words) -> String {
@@ -260,7 +359,7 @@ fn marks(layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
     }
     if !beyond.is_empty() {
         let parts: Vec<_> = beyond.iter().map(|&(range, value)| out_of_range(range, value, words)).collect();
-        texts.push(format!("{BEYOND} beyond the published scupper table, as far as {}.", list(&parts)));
+        texts.push(format!("{BEYOND} beyond the published range of its law, as far as {}.", list(&parts)));
     }
     let most = layouts.iter().map(|layout| layout.chord).fold(0.0, f64::max);
     if most > notes::CHORD_TOLD {
@@ -274,13 +373,10 @@ fn marks(layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
 
 /// A value that lies outside a range, and the end that it passes.
 pub(super) fn out_of_range(range: &Range, value: f64, words: Words) -> String {
-    let shown = |value: f64| words.depth(Length::from_m(value));
-    let end = |value: f64| words.size(Length::from_m(value));
-    if value < range.low {
-        format!("{} {} under {}", range.what, shown(value), end(range.low))
-    } else {
-        format!("{} {} over {}", range.what, shown(value), end(range.high))
-    }
+    let shown = |value: f64| if range.unit.is_empty() { trimmed(value, 3) } else { words.depth(Length::from_m(value)) };
+    let end = |value: f64| if range.unit.is_empty() { trimmed(value, 3) } else { words.size(Length::from_m(value)) };
+    let (side, limit) = if value < range.low { ("under", range.low) } else { ("over", range.high) };
+    format!("{} {} {side} {} ({})", range.what, shown(value), end(limit), range.law)
 }
 
 /// Why there is no layout, in a few sentences.
@@ -304,8 +400,17 @@ pub(super) fn infeasible(roof: &Roof, area: usize, why: &Why<'_>, words: Words) 
         }
         Why::Limits { best, alone, together } => limits_not_held(roof, area, best, alone, together, words),
         Why::Freeboard { asked, best } => {
+            let least = |layout: &Ranked<'_>| {
+                let of_case = |case: &usize| {
+                    let freeboards = layout.states[*case].groups.iter().filter_map(|group| group.freeboard);
+                    freeboards.map(Length::m).fold(f64::INFINITY, f64::min)
+                };
+                let cases: Vec<usize> = (0..layout.states.len()).collect();
+                cases.into_iter().min_by(|a, b| of_case(a).total_cmp(&of_case(b))).unwrap_or(0)
+            };
             let reached = best.as_ref().map_or(String::new(), |(kept, layout)| {
-                format!(": the best keeps {} with {}", words.depth(*kept), words.layout(layout))
+                let case = &roof.cases[least(layout)].name;
+                format!(": the best keeps {} in \"{case}\" with {}", words.depth(*kept), words.layout(layout))
             });
             format!("Layouts hold {name} under its limits, but none with {} of freeboard{reached}.", words.size(*asked))
         }
@@ -323,6 +428,7 @@ fn limits_not_held(
     let name = &roof.areas[area].name;
     let situation = roof.situation(area, best.case);
     let case = |case: usize| format!("\"{}\"", roof.cases[case].name);
+    let all = |cases: &[usize]| list(&cases.iter().map(|&one| case(one)).collect::<Vec<_>>());
     let Some(governing) = best.governing else {
         return format!(
             "Nothing here carries the {} of {name} in {}: every layout of rated devices is overwhelmed, its tables at \
@@ -335,26 +441,40 @@ fn limits_not_held(
     let water = best.states[best.case].water;
     let reached = water.map_or(String::new(), |water| match governing.limit {
         LimitKind::Load => words.load(water.load),
-        LimitKind::Depth | LimitKind::Parapet => words.depth(water.level),
+        LimitKind::Depth => words.depth(water.depth()),
+        LimitKind::Parapet => words.depth(water.reach.map_or(water.level, |reach| reach.far_level)),
     });
     let limit = words.limit(governing.limit, situation.limits, situation.parapet);
-    let mut text = format!(
-        "Nothing here holds {name} under {limit} in {}: the best reaches {reached} with {}.",
-        case(best.case),
-        words.layout(best)
-    );
-    let others: Vec<_> = alone.iter().filter(|&&other| other != best.case).map(|&other| case(other)).collect();
-    if !others.is_empty() {
-        text += &format!(" Nor can {} be held, even alone.", list(&others));
-    }
-    if !together.is_empty() {
-        let names: Vec<_> = together.iter().map(|&other| case(other)).collect();
-        text += &format!(" Each case can be held alone, but not {} together.", list(&names));
-    }
-    let highest = words.depth(situation.allowable_level());
+    let layout = words.layout(best);
+    let mut text = if alone.contains(&best.case) {
+        let others: Vec<usize> = alone.iter().copied().filter(|&other| other != best.case).collect();
+        let nor =
+            if others.is_empty() { String::new() } else { format!(" Nor can {} be held, even alone.", all(&others)) };
+        format!(
+            "Nothing here holds {name} under {limit} in {}: the best reaches {reached} with {layout}.{nor}",
+            case(best.case)
+        )
+    } else if alone.is_empty() {
+        format!(
+            "Each case can be held alone, but nothing here holds {name} in {} together: the nearest is {layout}, which \
+             reaches {reached} of {limit} in {}.",
+            all(together),
+            case(best.case)
+        )
+    } else {
+        format!(
+            "Nothing here holds {name} in {}, even alone. The nearest in all cases is {layout}, which reaches {reached} of \
+             {limit} in {}.",
+            all(alone),
+            case(best.case)
+        )
+    };
     let sills = best.groups.iter().map(|placed| placed.from).fold(Length::from_m(f64::INFINITY), Length::min);
-    if situation.allowable_level() <= sills {
-        text += &format!(" The limit allows water up to {highest}, which is not above the lowest sill.");
+    let allowed = situation.allowable_level();
+    if allowed <= sills && allowed > Length::ZERO {
+        text += &format!(" The limit allows water up to {}, which is not above the lowest sill.", words.depth(allowed));
+    } else if allowed <= Length::ZERO {
+        text += " The limit leaves no depth of water at all.";
     }
     text
 }

@@ -1,10 +1,11 @@
 //! The ranked layouts as a schedule: CSV, one row for each group of each layout, in the units of the project.
 
+use crate::device::Kind;
 use crate::search::{Outcome, Placed, Ranked};
 use crate::units::Length;
 
 use super::words::Words;
-use super::{Sized, ranking};
+use super::{Sized, plain, ranking, written};
 
 pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
     let words = Words(sized.roof.system);
@@ -18,6 +19,7 @@ pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
         "kind".into(),
         format!("width_{small}"),
         format!("height_{small}"),
+        format!("diameter_{small}"),
         "count".into(),
         format!("set_height_{small}"),
         format!("set_height_from_{small}"),
@@ -38,7 +40,7 @@ pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
             Outcome::Optimal(layouts) => {
                 for (index, layout) in layouts.iter().enumerate() {
                     let groups = layout.groups.iter();
-                    rows.extend(groups.map(|placed| row(sized, area, index + 1, layout, placed, words)));
+                    rows.extend(groups.map(|placed| row(sized, answer.area, index + 1, layout, placed, words)));
                 }
             }
             Outcome::Infeasible(why) => {
@@ -55,30 +57,32 @@ pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
 
 fn row(
     sized: &Sized<'_, '_>,
-    area: &str,
+    area: usize,
     rank: usize,
     layout: &Ranked<'_>,
     placed: &Placed<'_>,
     words: Words,
 ) -> Vec<String> {
     let device = &placed.group.size.device;
+    let round = device.kind() == Kind::PipeScupper;
     let small = |length: Length| plain(words.small(length), 4);
     let optional = |length: Option<Length>| length.map_or(String::new(), small);
     let water = layout.states[layout.case].water;
     vec![
-        area.to_string(),
+        sized.roof.areas[area].name.clone(),
         "optimal".into(),
         rank.to_string(),
         layout.cost.map_or(String::new(), |cost| plain(cost.amount(), 2)),
         placed.group.size.tag.to_string(),
         device.kind().to_string(),
-        optional(device.width()),
-        optional(device.height()),
+        optional(device.width().filter(|_| !round)),
+        optional(device.height().filter(|_| !round)),
+        optional(device.diameter()),
         placed.group.count.to_string(),
         small(placed.group.set_height),
         small(placed.from),
         words.depth_down(placed.to).replace(',', ""),
-        device.law().name.to_string(),
+        placed.group.size.law_at(&sized.roof.site(area, None)).name().to_string(),
         sized.roof.cases[layout.case].name.clone(),
         layout.governing.map_or("overwhelmed".into(), |governing| governing.limit.name().to_string()),
         optional(water.map(|water| water.level)),
@@ -87,19 +91,4 @@ fn row(
         if layout.beyond.is_empty() { "no" } else { "yes" }.to_string(),
         String::new(),
     ]
-}
-
-/// A number for another program: no separator of thousands, no zeros at its end.
-fn plain(value: f64, decimals: usize) -> String {
-    let text = format!("{value:.decimals$}");
-    if text.contains('.') { text.trim_end_matches('0').trim_end_matches('.').to_string() } else { text }
-}
-
-fn written(rows: &[Vec<String>]) -> String {
-    let mut writer = csv::Writer::from_writer(Vec::new());
-    for row in rows {
-        // Writing to memory does not fail.
-        let _ = writer.write_record(row);
-    }
-    writer.into_inner().ok().and_then(|bytes| String::from_utf8(bytes).ok()).unwrap_or_default()
 }

@@ -1,6 +1,6 @@
 //! Quantities and layouts in words: the digits that the sources support, in the units of the project.
 
-use crate::device::{Kind, Size};
+use crate::device::{Device, Size};
 use crate::roof::layout::Group;
 use crate::roof::{LimitKind, Limits};
 use crate::search::{Placed, Ranked};
@@ -116,11 +116,31 @@ impl Words {
         }
     }
 
+    /// A computed depth with a digit more than a table of layouts shows, for comparing laws; without its unit.
+    pub(super) fn fine_depth(self, depth: Length) -> String {
+        grouped(self.small(depth), if self.us() { 3 } else { 1 })
+    }
+
+    /// The unit of flows.
+    pub(super) fn flow_unit(self) -> &'static str {
+        if self.us() { "gpm" } else { "l/s" }
+    }
+
+    /// A flow in its unit.
+    pub(super) fn in_flow_unit(self, flow: Flow) -> f64 {
+        if self.us() { flow.to_gpm() } else { flow.m3_per_s() * 1000.0 }
+    }
+
+    /// A flow without its unit, to the digits that an equation supports.
+    pub(super) fn bare_flow(self, flow: Flow) -> String {
+        grouped(self.in_flow_unit(flow), if self.us() { 1 } else { 2 })
+    }
+
     /// A flow.
     pub(super) fn flow(self, flow: Flow) -> String {
         if self.us() {
             let gpm = flow.to_gpm();
-            format!("{} gpm", grouped(gpm, usize::from(gpm < 100.0)))
+            format!("{} gpm", gpm_by_hand(gpm))
         } else {
             let litres = flow.m3_per_s() * 1000.0;
             format!("{} l/s", grouped(litres, if litres < 10.0 { 2 } else { 1 }))
@@ -152,12 +172,16 @@ impl Words {
     /// A size: its tag and its dimensions.
     pub(super) fn name(self, size: &Size) -> String {
         let tag = &size.tag;
-        match (size.device.kind(), size.device.width(), size.device.height()) {
-            (Kind::Rated, ..) | (_, None, _) => tag.to_string(),
-            (_, Some(width), Some(height)) => {
-                format!("{tag} {} x {} {}", self.bare_size(width), self.bare_size(height), self.small_unit())
+        match &size.device {
+            Device::Rated { .. } => tag.to_string(),
+            Device::Open { width } | Device::Edge { width } => format!("{tag} {}", self.size(*width)),
+            Device::Closed { width, height } => {
+                format!("{tag} {} x {} {}", self.bare_size(*width), self.bare_size(*height), self.small_unit())
             }
-            (_, Some(width), None) => format!("{tag} {}", self.size(width)),
+            Device::Pipe { diameter } | Device::Standpipe { diameter } => {
+                format!("{tag} {} dia.", self.size(*diameter))
+            }
+            Device::Drain(drain) => format!("{tag} {}, dam {}", self.size(drain.throat), self.size(drain.dam)),
         }
     }
 
@@ -178,14 +202,23 @@ impl Words {
         format!("{}, all at {}", sizes.join(" + "), self.size(groups[0].set_height))
     }
 
-    /// The windows of a layout's groups: one where all are alike, else each with its tag.
+    /// The windows of a layout's groups: one where all are alike, their common rise where only their starts are not, else each
+    /// with its tag.
     pub(super) fn window(self, groups: &[Placed<'_>]) -> String {
         let one = |placed: &Placed<'_>| {
             let (from, to) = (self.bare_size(placed.from), self.depth_down(placed.to));
-            if placed.from.nm() == placed.to.nm() { format!("{from} only") } else { format!("{from} to {to}") }
+            // An end that rounds down to the start leaves no room that a builder could use.
+            if from == to { format!("{from} only") } else { format!("{from} to {to}") }
         };
         let mut all: Vec<_> = groups.iter().map(one).collect();
         if all.iter().any(|window| *window != all[0]) {
+            let rise = |placed: &Placed<'_>| placed.to.nm() - placed.from.nm();
+            if groups.iter().all(|placed| (rise(placed) - rise(&groups[0])).abs() <= 1) {
+                return match self.depth_down(groups[0].to - groups[0].from) {
+                    none if none == "0" => "these only".into(),
+                    rise => format!("up to {rise} higher"),
+                };
+            }
             all = groups.iter().map(|placed| format!("{} {}", placed.group.size.tag, one(placed))).collect();
         }
         all.dedup();
@@ -202,6 +235,11 @@ impl Words {
             }
         }
     }
+}
+
+/// A flow in gal/min as a hand calculation gives it: to the digits of the exact one beside it.
+pub(super) fn gpm_by_hand(gpm: f64) -> String {
+    grouped(gpm, usize::from(gpm < 100.0) + usize::from(gpm < 10.0))
 }
 
 /// A duration, in minutes up to two hours.

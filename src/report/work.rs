@@ -1,7 +1,7 @@
 //! The arithmetic of one layout, from rain to load, as one would write it by hand.
 
-use crate::device::{Device, Regime};
-use crate::roof::layout::GroupState;
+use crate::device::{Device, Interpolation, Law, Rating, Regime};
+use crate::roof::layout::{GroupState, Water};
 use crate::roof::{Roof, Situation, demand};
 use crate::search::{Placed, Ranked};
 use crate::units::{Area, Length, System};
@@ -38,19 +38,21 @@ pub(super) fn lines(roof: &Roof, area: usize, layout: &Ranked<'_>, words: Words)
         let total: f64 = state.groups.iter().map(|stands| stands.share.flow().m3_per_s()).sum();
         lines.push((
             format!("{name}: sum"),
-            format!("{} = {} {}", flows.join(" + "), fine_flow(words, total), flow_unit(words)),
+            format!("{} = {} {}", flows.join(" + "), fine_flow(words, total), words.flow_unit()),
         ));
-        lines.push((format!("{name}: load"), load(&situation, water.level, water.governing.utilisation, words)));
+        if let Some(reach) = water.reach {
+            let deepest = format!("{} at its deepest", fine(words, reach.deepest));
+            let far = format!("{} above the low point at its far end", fine(words, reach.far_level));
+            lines
+                .push((format!("{name}: channel"), format!("spatially varied flow from that level: {far}, {deepest}")));
+        }
+        lines.push((format!("{name}: load"), load(&situation, water, words)));
     }
     lines
 }
 
 fn us(words: Words) -> bool {
     words.0 == System::Us
-}
-
-fn flow_unit(words: Words) -> &'static str {
-    if us(words) { "gpm" } else { "l/s" }
 }
 
 /// A flow with a digit more than a table shows, so that sums can be checked.
@@ -61,11 +63,7 @@ fn fine_flow(words: Words, m3_per_s: f64) -> String {
 
 /// A depth with a digit more than a table shows.
 fn fine(words: Words, depth: Length) -> String {
-    format!("{} {}", fine_bare(words, depth), words.small_unit())
-}
-
-fn fine_bare(words: Words, depth: Length) -> String {
-    grouped(words.small(depth), if us(words) { 3 } else { 1 })
+    format!("{} {}", words.fine_depth(depth), words.small_unit())
 }
 
 fn catching(roof: &Roof, area: usize, words: Words) -> (String, String) {
@@ -105,7 +103,7 @@ fn flow_demanded(roof: &Roof, area: usize, situation: &Situation<'_>, words: Wor
     } else {
         String::new()
     };
-    format!("Q = {sum} = {} {}{by_practice}", fine_flow(words, situation.demand.m3_per_s()), flow_unit(words))
+    format!("Q = {sum} = {} {}{by_practice}", fine_flow(words, situation.demand.m3_per_s()), words.flow_unit())
 }
 
 /// Weight of a unit of depth, in the project's units.
@@ -137,19 +135,27 @@ fn level_allowed(situation: &Situation<'_>, words: Words) -> String {
 fn group(placed: &Placed<'_>, stands: &GroupState, situation: &Situation<'_>, level: Length, words: Words) -> String {
     let size = placed.group.size;
     let (device, _) = size.device.narrowed(situation.case.opening_loss);
+    let law = size.law_at(&situation.site);
     let head = stands.share.head.length();
     let working = stands.share.working;
     let blocked = placed.group.count - working;
     let mut text = sill(placed, stands, words);
-    text += &format!("H = {} - {} = {}", fine_bare(words, level), fine_bare(words, stands.sill), fine(words, head));
+    text += &format!("H = {} - {} = {}", words.fine_depth(level), words.fine_depth(stands.sill), fine(words, head));
     let each = stands.share.each.flow.m3_per_s();
     let reduced = if (situation.case.discharge - 1.0).abs() > 1e-12 {
         format!(" x {}", trimmed(situation.case.discharge, 3))
     } else {
         String::new()
     };
-    let form = form(&device, stands.share.each.regime, head, words);
-    text += &format!("; {form}{reduced} = {} {}", fine_flow(words, each), flow_unit(words));
+    let form = form(&device, law, stands.share.each.regime, head, words);
+    let guarded = if (size.screen - 1.0).abs() > 1e-12
+        && !matches!(stands.share.each.regime, Regime::Leader | Regime::ConductorHead)
+    {
+        format!(" x {}", trimmed(size.screen, 3))
+    } else {
+        String::new()
+    };
+    text += &format!("; {form}{guarded}{reduced} = {} {}", fine_flow(words, each), words.flow_unit());
     let out = if blocked > 0 { format!(", {blocked} blocked") } else { String::new() };
     text += &format!("; x {working} working{out} = {}", fine_flow(words, stands.share.flow().m3_per_s()));
     if let Some(freeboard) = stands.freeboard {
@@ -172,30 +178,52 @@ fn sill(placed: &Placed<'_>, stands: &GroupState, words: Words) -> String {
     )
 }
 
-/// The equation with its numbers.
-fn form(device: &Device, regime: Regime, head: Length, words: Words) -> String {
-    let shown = |length: Length| if us(words) { fine_bare(words, length) } else { grouped(length.m(), 4) };
+/// The equation with its numbers; for a law that no line of arithmetic holds, its name.
+fn form(device: &Device, law: Law, regime: Regime, head: Length, words: Words) -> String {
+    let shown = |length: Length| if us(words) { words.fine_depth(length) } else { grouped(length.m(), 4) };
     let size = |length: Length| if us(words) { words.bare_size(length) } else { trimmed(length.m(), 4) };
-    let (weir, orifice, unit) = if us(words) { ("2.9", "4.3", "") } else { ("1779.4", "2638.4", "") };
+    let coefficient = |us_value: &'static str, si: &'static str| if us(words) { us_value } else { si };
     let width = device.width().unwrap_or(Length::ZERO);
-    match (device, regime) {
-        (_, Regime::Dry) => "dry, q".into(),
-        (_, Regime::Shut) => "shut by the loss, q".into(),
-        (Device::Closed { height, .. }, Regime::Orifice) => format!(
-            "runs full, q = {orifice} x {} x {} x sqrt({} - {}/2){unit}",
+    let over = |coefficient: &str| format!("q = {coefficient} x {} x {}^1.5", size(width), shown(head));
+    match (device, law, regime) {
+        (_, _, Regime::Dry) => "dry, q".into(),
+        (_, _, Regime::Shut) => "shut by the loss, q".into(),
+        (_, _, Regime::Leader | Regime::ConductorHead) => format!("the {regime} governs, q"),
+        (Device::Closed { height, .. }, Law::ThinPlate, Regime::Orifice) => format!(
+            "runs full, q = {} x {} x {} x sqrt({} - {}/2)",
+            coefficient("4.3", "2638.4"),
             size(width),
             size(*height),
             shown(head),
             size(*height)
         ),
-        (Device::Open { .. } | Device::Closed { .. }, _) => {
-            format!("q = {weir} x {} x {}^1.5{unit}", size(width), shown(head))
+        (Device::Closed { height, .. }, Law::ThinPlate, Regime::Weir) if head > *height => format!(
+            "{}, less than running full, {} x {} x {} x sqrt({} - {}/2)",
+            over(coefficient("2.9", "1779.4")),
+            coefficient("4.3", "2638.4"),
+            size(width),
+            size(*height),
+            shown(head),
+            size(*height)
+        ),
+        (Device::Open { .. } | Device::Closed { .. } | Device::Edge { .. }, Law::ThinPlate, Regime::Weir) => {
+            over(coefficient("2.9", "1779.4"))
         }
-        (Device::Rated { rating, .. }, _) => rated(rating.rows(), regime, head, words),
+        (Device::Open { .. } | Device::Closed { .. }, Law::Contracted, Regime::Weir) => format!(
+            "q = {} x ({} - 0.2 x {}) x {}^1.5",
+            coefficient("2.996", "1838.5"),
+            size(width),
+            shown(head),
+            shown(head)
+        ),
+        (Device::Edge { .. }, Law::CriticalDepth, _) => over(coefficient("2.778", "1704.6")),
+        (Device::Rated { rating, .. }, _, _) => rated(rating, regime, head, words),
+        _ => format!("law {}, {regime}, q", law.name()),
     }
 }
 
-fn rated(rows: &[(Length, crate::units::Flow)], regime: Regime, head: Length, words: Words) -> String {
+fn rated(rating: &Rating, regime: Regime, head: Length, words: Words) -> String {
+    let rows = rating.rows();
     let flow = |flow: crate::units::Flow| fine_flow(words, flow.m3_per_s());
     let at = rows.partition_point(|&(row, _)| row < head);
     match regime {
@@ -204,7 +232,7 @@ fn rated(rows: &[(Length, crate::units::Flow)], regime: Regime, head: Length, wo
             format!(
                 "below the table, q = {} x ({} / {})^1.5",
                 flow(least),
-                fine_bare(words, head),
+                words.fine_depth(head),
                 words.bare_size(first)
             )
         }
@@ -212,12 +240,19 @@ fn rated(rows: &[(Length, crate::units::Flow)], regime: Regime, head: Length, wo
             format!("above the table's last row at {}, its flow held, q", words.size(rows[rows.len() - 1].0))
         }
         _ if at == 0 || at == rows.len() => "at a row of the table, q".into(),
+        _ if rating.interpolation() == Interpolation::LogLog => format!(
+            "on logarithms between {} at {} and {} at {}, q",
+            flow(rows[at - 1].1),
+            words.size(rows[at - 1].0),
+            flow(rows[at].1),
+            words.size(rows[at].0)
+        ),
         _ => {
             let ((low, less), (high, more)) = (rows[at - 1], rows[at]);
             format!(
                 "between rows, q = {} + ({} - {}) / ({} - {}) x ({} - {})",
                 flow(less),
-                fine_bare(words, head),
+                words.fine_depth(head),
                 words.bare_size(low),
                 words.bare_size(high),
                 words.bare_size(low),
@@ -228,20 +263,20 @@ fn rated(rows: &[(Length, crate::units::Flow)], regime: Regime, head: Length, wo
     }
 }
 
-fn load(situation: &Situation<'_>, level: Length, utilisation: f64, words: Words) -> String {
-    let depth = fine_bare(words, level);
+fn load(situation: &Situation<'_>, water: Water, words: Words) -> String {
+    let depth = words.fine_depth(water.depth());
     let weighed = if situation.ponding_head > Length::ZERO {
         format!("({depth} + {})", words.bare_size(situation.ponding_head))
     } else {
         depth
     };
-    let governing = situation.governing(level);
+    let governing = water.governing;
     let limit = words.limit(governing.limit, situation.limits, situation.parapet);
     format!(
         "R = {} x {weighed} = {}; {} governs: {:.3} of {limit}",
         weight(words),
-        words.load(situation.load(level)),
+        words.load(water.load),
         governing.limit.name(),
-        utilisation
+        governing.utilisation
     )
 }

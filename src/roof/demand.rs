@@ -80,6 +80,7 @@ mod tests {
             count: 1..=8,
             set_heights: None,
             limits: Vec::new(),
+            channel: None,
         }
     }
 

@@ -1,10 +1,12 @@
 //! A layout in an area: its groups, how it stands in a case, and how high its sills may be built.
 
-use crate::device::{Regime, Size};
+use crate::device::Size;
+use crate::root::crossing;
 use crate::units::{Flow, Length, Load, Money};
 
-use super::pool::{MOST_GROUPS, Outlet, Pool, Share};
-use super::root::crossing;
+use super::channel::Reach;
+use super::pool::{GREATEST_HEAD, MOST_GROUPS, Outlet, Pool, Share};
+
 use super::situation::{Governing, Situation};
 
 /// So many of one size at one set height.
@@ -27,6 +29,9 @@ pub struct GroupState {
     pub sill: Length,
     /// Top of the opening as it stands in the case less the level; none for a device without a top.
     pub freeboard: Option<Length>,
+    /// How far above the sill the conductor head behind would back up under what the device itself passes; none where it
+    /// keeps below. That flow is not credited.
+    pub backs_up: Option<Length>,
 }
 
 /// A layout in one case.
@@ -49,6 +54,15 @@ pub struct Water {
     pub load: Load,
     /// The limit that governs.
     pub governing: Governing,
+    /// The water along the channel to the devices, where there is one.
+    pub reach: Option<Reach>,
+}
+
+impl Water {
+    /// The depth that limits are held against: the level, or the deepest along a channel.
+    pub fn depth(&self) -> Length {
+        self.reach.map_or(self.level, |reach| reach.deepest)
+    }
 }
 
 /// The groups as they stand in a case: sills raised, openings narrowed, the most effective blocked.
@@ -59,15 +73,16 @@ pub fn pool(groups: &[Group<'_>], situation: &Situation<'_>) -> Pool {
     assert!(groups.len() <= MOST_GROUPS, "a layout has at most {MOST_GROUPS} groups");
     let case = situation.case;
     let outlet = |group: &Group<'_>| {
-        let (device, rise) = group.size.device.narrowed(case.opening_loss);
-        Outlet { device, sill: group.set_height + case.sill_error + rise, count: group.count }
+        let raised = group.set_height + case.sill_error;
+        let (curve, rise) = group.size.curve(&situation.site, raised, case.opening_loss);
+        Outlet { curve, sill: raised + rise, count: group.count }
     };
     Pool { outlets: groups.iter().map(outlet).collect(), blocked: case.blocked, discharge: case.discharge }
 }
 
 /// Top of a group's opening as it stands in a case, above the low point; none where it has no top.
 ///
-/// A loss that shuts an opening leaves its top under its sill: water that keeps under it keeps under the opening.
+/// A loss beyond half the height leaves the top under the sill: a shut opening of negative height.
 pub fn top(group: &Group<'_>, situation: &Situation<'_>) -> Option<Length> {
     let case = situation.case;
     group.size.device.height().map(|height| (group.set_height + height) + case.sill_error - case.opening_loss)
@@ -78,22 +93,25 @@ pub fn state(groups: &[Group<'_>], situation: &Situation<'_>) -> CaseState {
     let pool = pool(groups, situation);
     // Device flows are finite at every finite level, so the solver has no reason to refuse.
     let level = pool.level(situation.demand).unwrap_or(None);
-    let shares = pool.shares(level.unwrap_or(Length::from_m(DROWNED)));
+    let shares = pool.shares(level.unwrap_or(GREATEST_HEAD));
     let group = |((outlet, group), share): ((&Outlet, &Group<'_>), Share)| GroupState {
         share,
         sill: outlet.sill,
         freeboard: level.and_then(|level| top(group, situation).map(|top| top - level)),
+        backs_up: group.size.following.backs_up_to(outlet.curve.own(share.head).flow * situation.case.discharge),
     };
-    let water = |level| Water { level, load: situation.load(level), governing: situation.governing(level) };
+    let water = |level| Water {
+        level,
+        load: situation.load(level),
+        governing: situation.governing(level),
+        reach: situation.reach(level),
+    };
     CaseState {
         demand: situation.demand,
         water: level.map(water),
         groups: pool.outlets.iter().zip(groups).zip(shares).map(group).collect(),
     }
 }
-
-/// A level, m, at which every table is at its end.
-const DROWNED: f64 = 1e4;
 
 /// Cost of all groups; none where one of them has no price.
 pub fn cost(groups: &[Group<'_>]) -> Option<Money> {
@@ -128,15 +146,20 @@ pub struct Asked {
 
 /// Whether the groups hold a situation, decided by what they carry at the highest level allowed.
 pub fn holds(groups: &[Group<'_>], situation: &Situation<'_>, asked: Asked) -> bool {
-    spare(groups, situation, asked) >= 0.0
+    holds_at(groups, situation, situation.allowable_level(), asked)
+}
+
+/// Whether the groups hold a situation whose highest level allowed is known already.
+pub(crate) fn holds_at(groups: &[Group<'_>], situation: &Situation<'_>, allowed: Length, asked: Asked) -> bool {
+    spare(groups, situation, allowed, asked) >= 0.0
 }
 
 /// What the groups can carry at the highest level allowed, less the demand, m3/s.
-fn spare(groups: &[Group<'_>], situation: &Situation<'_>, asked: Asked) -> f64 {
+fn spare(groups: &[Group<'_>], situation: &Situation<'_>, allowed: Length, asked: Asked) -> f64 {
     let pool = pool(groups, situation);
     let tops = groups.iter().filter_map(|group| top(group, situation));
     let ceiling = asked.freeboard.and_then(|freeboard| tops.map(|top| top - freeboard).reduce(Length::min));
-    let level = ceiling.map_or(situation.allowable_level(), |ceiling| ceiling.min(situation.allowable_level()));
+    let level = ceiling.map_or(allowed, |ceiling| ceiling.min(allowed));
     (pool.capacity(level) - situation.demand).m3_per_s()
 }
 
@@ -146,9 +169,11 @@ fn spare(groups: &[Group<'_>], situation: &Situation<'_>, asked: Asked) -> f64 {
 /// at most the lift, so limits that hold at one lift hold at every lower one. Freeboard grows while its opening is lifted
 /// and falls once it has stopped, so it too, held at the lowest heights, ends once: the lifts that pass are one stretch.
 pub fn highest_lift(groups: &[Liftable<'_>], situations: &[Situation<'_>], asked: Asked) -> Option<Length> {
+    let allowed: Vec<Length> = situations.iter().map(Situation::allowable_level).collect();
     let least_spare = |lift: f64| {
         let lifted: Vec<_> = groups.iter().map(|group| group.lifted(Length::from_m(lift))).collect();
-        situations.iter().map(|situation| spare(&lifted, situation, asked)).fold(f64::INFINITY, f64::min)
+        let spare = |(situation, &allowed)| spare(&lifted, situation, allowed, asked);
+        situations.iter().zip(&allowed).map(spare).fold(f64::INFINITY, f64::min)
     };
     let most = groups.iter().map(|group| group.highest - group.group.set_height).fold(Length::ZERO, Length::max).m();
     if least_spare(0.0) < 0.0 {
@@ -160,9 +185,4 @@ pub fn highest_lift(groups: &[Liftable<'_>], situations: &[Situation<'_>], asked
     // The first lift that fails has a neighbour that passes; where even the second number fails, nothing may be lifted.
     crossing(|lift| -least_spare(lift), 0.0, most)
         .map_or(Some(Length::ZERO), |(passes, _)| Some(Length::from_m(passes)))
-}
-
-/// Whether any working device is read past the end of its table.
-pub fn table_held(state: &CaseState) -> bool {
-    state.groups.iter().any(|group| group.share.working > 0 && group.share.each.regime == Regime::TableHeld)
 }

@@ -4,16 +4,15 @@
 //! n - k smallest flows; each of them rises with the level, so the sum does, and a level has one capacity, a demand one
 //! least level.
 
-use crate::device::{Device, Discharge, Head};
+use crate::device::{Curve, Discharge, Head};
+use crate::root::{RootError, crossing};
 use crate::units::{Flow, Length};
-
-use super::root::{RootError, crossing};
 
 /// Devices of one group as built in a case.
 #[derive(Clone, Debug)]
 pub struct Outlet {
-    /// The device, narrowed.
-    pub device: Device,
+    /// The device as built, under its law.
+    pub curve: Curve,
     /// Its sill above the low point, raised.
     pub sill: Length,
     /// How many.
@@ -92,7 +91,7 @@ impl Pool {
     }
 
     fn each(&self, outlet: &Outlet, level: Length) -> Discharge {
-        let found = outlet.device.discharge(Head::above(outlet.sill, level));
+        let found = outlet.curve.discharge(Head::above(outlet.sill, level));
         Discharge { flow: found.flow * self.discharge, ..found }
     }
 
@@ -112,6 +111,15 @@ impl Pool {
         self.outlets.iter().zip(&left).map(share).collect()
     }
 
+    /// The most that leaves at any level; none where more depth always gives more flow.
+    fn greatest(&self) -> Option<Flow> {
+        let mut flows = [(0.0, 0); MOST_GROUPS];
+        for (slot, outlet) in flows.iter_mut().zip(&self.outlets) {
+            *slot = (outlet.curve.greatest_flow()?.m3_per_s() * self.discharge, outlet.count);
+        }
+        Some(Flow::from_m3_per_s(working_capacity(&flows, self.outlets.len(), self.blocked)))
+    }
+
     /// The least level at which the demand leaves; none where it never does: every table at its end.
     ///
     /// It is the least number `y` with `capacity(y) >= demand`, to the last bit.
@@ -120,11 +128,14 @@ impl Pool {
     /// [`RootError`] where a capacity is not finite, which no device gives.
     pub fn level(&self, demand: Flow) -> Result<Option<Length>, RootError> {
         let lowest = self.outlets.iter().map(|outlet| outlet.sill).fold(Length::from_m(f64::INFINITY), Length::min);
+        if self.greatest().is_some_and(|most| most < demand) {
+            return Ok(None);
+        }
         let mut low = lowest.m();
         let short = |level: f64| (self.capacity(Length::from_m(level)) - demand).m3_per_s();
         let mut high = low + FIRST_HEAD;
         while short(high) < 0.0 {
-            if high - lowest.m() > GREATEST_HEAD {
+            if high - lowest.m() > GREATEST_HEAD.m() {
                 return Ok(None);
             }
             low = high;
@@ -136,19 +147,35 @@ impl Pool {
 
 /// Head at which the search for a bracket of the level starts, m: that of a middling overflow.
 const FIRST_HEAD: f64 = 0.1;
-/// Head, m, beyond which a pool that still does not carry its demand is taken as overwhelmed. No roof holds it.
-const GREATEST_HEAD: f64 = 1e4;
+/// Head beyond which a pool that still does not carry its demand is taken as overwhelmed. No roof holds it.
+pub(super) const GREATEST_HEAD: Length = Length::from_m(1e4);
 
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::device::Rating;
+    use crate::device::{Device, Following, Place, Rating, Site, Size};
     use crate::units::METRES_PER_INCH;
     use approx::assert_relative_eq;
     use std::sync::Arc;
 
     fn open(width: f64, sill: f64, count: u32) -> Outlet {
-        Outlet { device: Device::Open { width: Length::inches(width) }, sill: Length::inches(sill), count }
+        outlet(Device::Open { width: Length::inches(width) }, sill, count)
+    }
+
+    fn outlet(device: Device, sill: f64, count: u32) -> Outlet {
+        let size = Size {
+            tag: "T".into(),
+            device,
+            place: Place::Edge,
+            price: None,
+            set_heights: None,
+            source: None,
+            law: None,
+            screen: 1.0,
+            following: Following::default(),
+        };
+        let sill = Length::inches(sill);
+        Outlet { curve: size.curve(&Site::default(), sill, Length::ZERO).0, sill, count }
     }
 
     fn pool(outlets: Vec<Outlet>, blocked: u32) -> Pool {
@@ -198,7 +225,7 @@ mod tests {
             Rating::new(&[(Length::inches(1.0), Flow::gpm(80.0)), (Length::inches(2.0), Flow::gpm(170.0))]).unwrap();
         let drain = |count| {
             let device = Device::Rated { width: None, rating: Arc::new(rating.clone()) };
-            pool(vec![Outlet { device, sill: Length::inches(2.0), count }], 0)
+            pool(vec![outlet(device, 2.0, count)], 0)
         };
         assert_eq!(drain(1).level(Flow::gpm(171.0)).unwrap(), None);
         // Exactly the last row's flow is reached at the last row, though every higher level carries it too.

@@ -2,7 +2,9 @@
 
 use crate::units::{Flow, Length, Load};
 
+use super::channel::{Channel, Reach};
 use super::{Case, PASCALS_PER_METRE, depth_of, load_of};
+use crate::device::Site;
 
 /// The most that is allowed: a load, a depth, or both.
 #[derive(Clone, Copy, Debug, Default, PartialEq)]
@@ -57,22 +59,49 @@ pub struct Situation<'r> {
     pub ponding_head: Length,
     /// Height of the parapet's top above the low point, where given.
     pub parapet: Option<Length>,
+    /// What the flow of its devices depends on besides their dimensions.
+    pub site: Site,
+    /// The way to its devices, where that is a channel.
+    pub channel: Option<Channel>,
 }
 
 impl Situation<'_> {
-    /// Rain load at a level: unit weight times level and ponding head.
+    /// The water along the channel to the devices, at their level; none where water is taken as level.
+    ///
+    /// A reach that turns supercritical, which input refuses, would stand infinitely deep: no limit would hold it.
+    pub fn reach(&self, level: Length) -> Option<Reach> {
+        let none = Length::from_m(f64::INFINITY);
+        let refused = Reach { far_level: none, deepest: none };
+        self.channel.map(|channel| channel.reach(self.demand, level).unwrap_or(refused))
+    }
+
+    /// Depth that the limits on load and depth are held against, at a level of the devices: the greatest along a channel.
+    pub fn depth(&self, level: Length) -> Length {
+        self.reach(level).map_or(level, |reach| reach.deepest)
+    }
+
+    /// Rain load at a level: unit weight times depth and ponding head.
     pub fn load(&self, level: Length) -> Load {
-        load_of(level + self.ponding_head)
+        load_of(self.depth(level) + self.ponding_head)
     }
 
     /// The highest level at which no limit is used beyond `utilisation`; at 1, the highest level allowed.
     ///
-    /// It may stand below the low point, where the ponding head alone uses up the load.
+    /// It may stand below the low point, where the ponding head alone uses up the load, or where a channel stands too deep
+    /// whatever its devices do.
     pub fn level_at(&self, utilisation: f64) -> Length {
         let load = self.limits.load.map(|limit| depth_of(limit * utilisation) - self.ponding_head);
         let depth = self.limits.depth.map(|limit| limit * utilisation);
-        let parapet = self.parapet.map(|top| top * utilisation);
-        [load, depth, parapet].into_iter().flatten().fold(Length::from_m(f64::INFINITY), Length::min)
+        let depth = load.into_iter().chain(depth).fold(NONE, Length::min);
+        self.level_for(depth, self.parapet.map_or(NONE, |top| top * utilisation))
+    }
+
+    /// The highest level of the devices at which the water nowhere stands deeper than `depth`, nor above `top`.
+    pub fn level_for(&self, depth: Length, top: Length) -> Length {
+        match self.channel {
+            Some(channel) => channel.level_for(self.demand, depth, top).unwrap_or(-NONE),
+            None => depth.min(top),
+        }
     }
 
     /// The highest level allowed.
@@ -92,11 +121,15 @@ impl Situation<'_> {
         ];
         let none = Governing { limit: LimitKind::Load, utilisation: f64::NEG_INFINITY };
         uses.into_iter().fold(none, |most, (limit, used)| match used {
-            Some(utilisation) if utilisation > most.utilisation => Governing { limit, utilisation },
+            // A last bit does not make one limit govern over another.
+            Some(utilisation) if utilisation > most.utilisation + 1e-9 => Governing { limit, utilisation },
             _ => most,
         })
     }
 }
+
+/// No height at all.
+const NONE: Length = Length::from_m(f64::INFINITY);
 
 #[cfg(test)]
 mod tests {
@@ -110,6 +143,8 @@ mod tests {
             limits: Limits { load: Some(Load::psf(26.0)), depth: Some(Length::inches(4.8)) },
             ponding_head: Length::inches(0.4),
             parapet: Some(Length::inches(4.0)),
+            site: Site::default(),
+            channel: None,
         }
     }
 

@@ -3,8 +3,8 @@
 use std::cell::OnceCell;
 use std::cmp::Ordering;
 
+use crate::roof::MOST_GROUPS;
 use crate::roof::layout::{self, Group};
-use crate::roof::{MOST_GROUPS, Situation};
 use crate::units::Length;
 
 use super::problem::{Class, Problem, Table};
@@ -28,11 +28,16 @@ pub(super) struct Found {
 /// What of a layout's rank is a water level.
 #[derive(Debug)]
 struct Levels {
-    /// Worst level of all cases, m; infinite where the layout is overwhelmed. Load follows it, the ponding head being one.
-    worst: f64,
-    /// Governing utilisation of all cases; infinite where the layout is overwhelmed.
-    utilisation: f64,
+    /// Greatest depth of all cases, along a channel the deepest, in whole nanometres; the greatest number where the layout is
+    /// overwhelmed. Load follows it, the ponding head being one. Layouts that differ by the last bits of a solved level are
+    /// equal, and what they cost decides.
+    worst: i64,
+    /// Governing utilisation of all cases in whole billionths; the greatest number where the layout is overwhelmed.
+    utilisation: i64,
 }
+
+/// Parts of one in which utilisations are compared.
+const BILLION: f64 = 1e9;
 
 impl Found {
     fn new(groups: Groups, sums: Sums, family: u128) -> Self {
@@ -56,12 +61,12 @@ impl Found {
     fn levels(&self, problem: &Problem<'_>) -> &Levels {
         self.levels.get_or_init(|| {
             let groups = reported(problem, &self.groups);
-            let mut levels = Levels { worst: f64::NEG_INFINITY, utilisation: f64::NEG_INFINITY };
+            let mut levels = Levels { worst: i64::MIN, utilisation: i64::MIN };
             for situation in &problem.situations {
                 let water = layout::state(&groups, situation).water;
-                levels.worst = levels.worst.max(water.map_or(f64::INFINITY, |water| water.level.m()));
-                let utilisation = water.map_or(f64::INFINITY, |water| water.governing.utilisation);
-                levels.utilisation = levels.utilisation.max(utilisation);
+                let utilisation = water.map(|water| (water.governing.utilisation * BILLION).round() as i64);
+                levels.worst = levels.worst.max(water.map_or(i64::MAX, |water| water.depth().nm()));
+                levels.utilisation = levels.utilisation.max(utilisation.unwrap_or(i64::MAX));
             }
             levels
         })
@@ -70,8 +75,8 @@ impl Found {
     /// The order of two layouts by all criteria, then by catalog order.
     fn compare(&self, other: &Self, problem: &Problem<'_>) -> Ordering {
         let by = |criterion: Criterion| match criterion {
-            Criterion::Load => self.levels(problem).worst.total_cmp(&other.levels(problem).worst),
-            Criterion::Utilisation => self.levels(problem).utilisation.total_cmp(&other.levels(problem).utilisation),
+            Criterion::Load => self.levels(problem).worst.cmp(&other.levels(problem).worst),
+            Criterion::Utilisation => self.levels(problem).utilisation.cmp(&other.levels(problem).utilisation),
             Criterion::SetHeight => other.set_height(problem).cmp(&self.set_height(problem)),
             sum => self.sums.value(sum).cmp(&other.sums.value(sum)),
         };
@@ -84,16 +89,20 @@ impl Found {
     fn screen(&self, problem: &Problem<'_>, class: Class) -> Option<&Table> {
         let table = || match problem.order.first_level() {
             Criterion::Utilisation => {
+                // Up to the middle between two steps all values are equal in rank.
                 let used = self.levels(problem).utilisation;
-                let levels: Vec<_> = problem.situations.iter().map(|situation| situation.level_at(used)).collect();
-                used.is_finite().then(|| problem.table(&levels, |candidate| Some(candidate.lowest())))
+                let most = (used as f64 + 0.5) / BILLION;
+                let levels = || problem.situations.iter().map(|situation| situation.level_at(most)).collect::<Vec<_>>();
+                (used < i64::MAX).then(|| problem.table(&levels(), |candidate| Some(candidate.lowest())))
             }
             Criterion::SetHeight => {
                 let least = self.set_height(problem);
                 Some(with_sills(problem, |height| height >= least))
             }
             _ => {
-                let worst = Length::from_m(self.levels(problem).worst);
+                // Up to the middle between two nanometres all depths are equal in rank.
+                let worst = self.levels(problem).worst;
+                let worst = Length::from_m((worst as f64 + 0.5) / 1e9);
                 let levels: Vec<_> =
                     problem.allowable_levels(class).into_iter().map(|level| level.min(worst)).collect();
                 Some(problem.table(&levels, |candidate| Some(candidate.lowest())))
@@ -118,29 +127,43 @@ impl Found {
 /// Every sill of the layout stands at least there, and lifting an opening lifts its top, so no freeboard binds: what the
 /// layout carries at the levels allowed is no more than this.
 fn with_sills(problem: &Problem<'_>, passes: impl Fn(i64) -> bool) -> Table {
-    let allowed: Vec<_> = problem.situations.iter().map(Situation::allowable_level).collect();
-    problem.table(&allowed, |candidate| candidate.heights.iter().copied().find(|height| passes(height.nm())))
+    problem.table(&problem.allowed, |candidate| candidate.heights.iter().copied().find(|height| passes(height.nm())))
 }
 
 /// The groups at the set heights that are reported: the lowest, or the highest on the grid that the window reaches where
 /// the set height is preferred to the load.
+///
+/// All groups are lifted by one amount, each then down to its own grid. Lowering a sill never hurts a limit, but it lowers the
+/// top of its opening: where freeboard is asked, the layout is taken at the greatest lift at which it holds as it then stands.
 pub(super) fn reported<'r>(problem: &Problem<'r>, groups: &[(usize, u32)]) -> Vec<Group<'r>> {
     let liftable = problem.liftable(groups);
+    let lowest: Vec<Group<'r>> = liftable.iter().map(|group| group.group).collect();
     if !problem.order.prefers_high_sills() {
-        return liftable.iter().map(|group| group.group).collect();
+        return lowest;
     }
-    let passes = |lift: Length| {
-        let lifted: Vec<_> = liftable.iter().map(|group| group.lifted(lift)).collect();
-        problem.situations.iter().all(|situation| layout::holds(&lifted, situation, problem.asked))
+    let holds = |groups: &[Group<'r>]| {
+        let mut situations = problem.situations.iter().zip(&problem.allowed);
+        situations.all(|(situation, &allowed)| layout::holds_at(groups, situation, allowed, problem.asked))
     };
-    let mut placed = Vec::with_capacity(groups.len());
-    for (liftable, &(index, _)) in liftable.iter().zip(groups) {
-        let heights = &problem.candidates[index].heights;
-        // The lifts that pass are one stretch from the lowest heights on.
-        let reached = heights.partition_point(|&height| height == heights[0] || passes(height - heights[0]));
-        placed.push(Group { set_height: heights[reached - 1], ..liftable.group });
-    }
-    placed
+    let heights = |index: usize| &problem.candidates[index].heights;
+    let mut lifts: Vec<Length> = groups
+        .iter()
+        .flat_map(|&(index, _)| heights(index).iter().map(move |&height| height - heights(index)[0]))
+        .collect();
+    lifts.sort_by(|a, b| a.m().total_cmp(&b.m()));
+    let together = |lift: Length| liftable.iter().map(|group| group.lifted(lift)).collect::<Vec<_>>();
+    // The lifts that pass are one stretch from the lowest heights on.
+    let passing = lifts.partition_point(|&lift| lift == Length::ZERO || holds(&together(lift)));
+    let on_grid = |lift: Length| {
+        let down = |(group, &(index, _)): (Group<'r>, &(usize, u32))| {
+            let heights = heights(index);
+            let reached = heights.partition_point(|&height| height <= group.set_height).max(1);
+            Group { set_height: heights[reached - 1], ..group }
+        };
+        together(lift).into_iter().zip(groups).map(down).collect::<Vec<_>>()
+    };
+    let standing = lifts[..passing].iter().rev().map(|&lift| on_grid(lift));
+    standing.into_iter().find(|groups| problem.asked.freeboard.is_none() || holds(groups)).unwrap_or(lowest)
 }
 
 /// At most `keep` layouts in order, each the best of its family.

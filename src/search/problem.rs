@@ -10,20 +10,22 @@
 use crate::device::{Place, Size};
 use crate::roof::layout::{Asked, Group, Liftable};
 use crate::roof::{Catchment, MOST_GROUPS, Roof, Situation, working_capacity};
-use crate::rules::{self, Misfit};
+use crate::rules::{self, Misfit, Stand};
 use crate::units::Length;
 
 use super::Options;
 use super::rank::{Criterion, Order};
 
 /// A size that may stand in the area.
-#[derive(Debug)]
+#[derive(Clone, Debug)]
 pub(super) struct Candidate<'r> {
     pub(super) size: &'r Size,
     /// A number for its tag, the same for all its sizes.
     pub(super) tag: u32,
     /// Where it may stand, rising; never empty.
     pub(super) heights: Vec<Length>,
+    /// The highest to which it may be lifted.
+    pub(super) highest: Length,
     /// Price in millionths; zero where the catalog has none.
     pub(super) price: i64,
     /// Clear width in nanometres.
@@ -38,15 +40,13 @@ impl Candidate<'_> {
     pub(super) fn lowest(&self) -> Length {
         self.heights[0]
     }
-
-    pub(super) fn highest(&self) -> Length {
-        self.heights[self.heights.len() - 1]
-    }
 }
 
 /// One area, the cases it is searched for, and what is asked of a layout.
 pub(super) struct Problem<'r> {
     pub(super) situations: Vec<Situation<'r>>,
+    /// The highest level that each situation allows, to any layout.
+    pub(super) allowed: Vec<Length>,
     pub(super) candidates: Vec<Candidate<'r>>,
     pub(super) least: u32,
     pub(super) most: u32,
@@ -87,13 +87,15 @@ impl<'r> Problem<'r> {
                 tags.len() - 1
             });
             match rules::stands(size, catchment) {
-                Ok(heights) => candidates.push(candidate(size, u32::try_from(tag).unwrap_or(u32::MAX), heights)),
+                Ok(stand) => candidates.push(candidate(size, u32::try_from(tag).unwrap_or(u32::MAX), stand)),
                 Err(misfit) => misfits.push((size, misfit)),
             }
         }
         let priced = candidates.iter().all(|candidate| candidate.size.price.is_some());
+        let situations = roof.situations(area);
         let problem = Self {
-            situations: roof.situations(area),
+            allowed: situations.iter().map(Situation::allowable_level).collect(),
+            situations,
             candidates,
             least: *catchment.count.start(),
             most: *catchment.count.end(),
@@ -135,11 +137,10 @@ impl<'r> Problem<'r> {
             let top = Length::from_nm(class?) + case.sill_error - case.opening_loss;
             Some(top - self.asked.freeboard?)
         };
-        let level = |situation: &Situation<'_>| {
-            let allowed = situation.allowable_level();
+        let level = |(situation, &allowed): (&Situation<'_>, &Length)| {
             under_the_top(situation).map_or(allowed, |ceiling| ceiling.min(allowed))
         };
-        self.situations.iter().map(level).collect()
+        self.situations.iter().zip(&self.allowed).map(level).collect()
     }
 
     /// What one of each candidate carries under one level a case, each at the set height that `height` gives; a candidate
@@ -177,7 +178,7 @@ impl<'r> Problem<'r> {
         let liftable = |&(index, count): &(usize, u32)| {
             let candidate = &self.candidates[index];
             let group = Group { size: candidate.size, count, set_height: candidate.lowest() };
-            Liftable { group, highest: candidate.highest() }
+            Liftable { group, highest: candidate.highest }
         };
         groups.iter().map(liftable).collect()
     }
@@ -186,7 +187,8 @@ impl<'r> Problem<'r> {
     pub(super) fn with_cases(&self, keep: &[usize]) -> Problem<'r> {
         Problem {
             situations: keep.iter().map(|&case| self.situations[case]).collect(),
-            candidates: self.candidates.iter().map(|c| candidate(c.size, c.tag, c.heights.clone())).collect(),
+            allowed: keep.iter().map(|&case| self.allowed[case]).collect(),
+            candidates: self.candidates.clone(),
             asked: self.asked,
             order: self.order.clone(),
             ..*self
@@ -202,14 +204,15 @@ impl<'r> Problem<'r> {
     }
 }
 
-fn candidate(size: &Size, tag: u32, heights: Vec<Length>) -> Candidate<'_> {
+fn candidate(size: &Size, tag: u32, stand: Stand) -> Candidate<'_> {
     Candidate {
         tag,
         price: size.price.map_or(0, crate::units::Money::millionths),
         width: size.clear_width().nm(),
         at_edge: size.place == Place::Edge,
-        top: size.device.height().map(|height| (heights[0] + height).nm()),
-        heights,
+        top: size.device.height().map(|height| (stand.heights[0] + height).nm()),
+        heights: stand.heights,
+        highest: stand.highest,
         size,
     }
 }

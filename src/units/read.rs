@@ -28,6 +28,8 @@ pub enum Dimension {
     Time,
     /// Return periods.
     ReturnPeriod,
+    /// Falls, as a ratio.
+    Slope,
 }
 
 /// One unit: the spellings that pass, the first of them the one that messages show, and its size in SI.
@@ -74,11 +76,21 @@ const TIMES: &[Unit] = &[
     (&["h", "hr", "hour", "hours"], 3600.0),
     (&["s", "sec", "second", "seconds"], 1.0),
 ];
+const SLOPES: &[Unit] =
+    &[(&["in/ft"], 1.0 / 12.0), (&["mm/m"], 0.001), (&["%", "percent"], 0.01), (&["ft/ft"], 1.0), (&["m/m"], 1.0)];
 const RETURN_PERIODS: &[Unit] = &[(&["yr", "year", "years", "yrs", "y"], 1.0)];
 
 impl Dimension {
-    const ALL: [Self; 7] =
-        [Self::Length, Self::Area, Self::Flow, Self::Intensity, Self::Load, Self::Time, Self::ReturnPeriod];
+    const ALL: [Self; 8] = [
+        Self::Length,
+        Self::Area,
+        Self::Flow,
+        Self::Intensity,
+        Self::Load,
+        Self::Time,
+        Self::ReturnPeriod,
+        Self::Slope,
+    ];
 
     fn units(self) -> &'static [Unit] {
         match self {
@@ -89,11 +101,26 @@ impl Dimension {
             Self::Load => LOADS,
             Self::Time => TIMES,
             Self::ReturnPeriod => RETURN_PERIODS,
+            Self::Slope => SLOPES,
+        }
+    }
+
+    /// A quantity as a file writes it, for messages.
+    pub(crate) fn example(self) -> &'static str {
+        match self {
+            Self::Length => "6 in",
+            Self::Area => "9600 ft2",
+            Self::Flow => "250 gpm",
+            Self::Intensity => "6.3 in/h",
+            Self::Load => "30 psf",
+            Self::Time => "15 min",
+            Self::ReturnPeriod => "100 yr",
+            Self::Slope => "0.25 in/ft",
         }
     }
 
     /// With its article, as a message says it.
-    fn with_article(self) -> &'static str {
+    pub(crate) fn with_article(self) -> &'static str {
         match self {
             Self::Length => "a length",
             Self::Area => "an area",
@@ -102,6 +129,7 @@ impl Dimension {
             Self::Load => "a load",
             Self::Time => "a duration",
             Self::ReturnPeriod => "a return period",
+            Self::Slope => "a slope",
         }
     }
 
@@ -115,12 +143,16 @@ impl Dimension {
     /// # Errors
     /// A [`Fault`] that says what was found; [`would_pass`] says what would pass.
     pub fn read(self, text: &str) -> Result<f64, Fault> {
-        let (value, unit) = number_and_unit(text)?;
+        let (value, unit) = number_and_unit(text, Some(self))?;
         if unit.is_empty() {
             return Err(Fault::NoUnit { found: text.trim().into(), needs: self });
         }
-        match self.find(unit) {
-            Some(size) => Ok(value * size),
+        if is_more_than_a_unit(unit) {
+            return Err(Fault::Several { found: text.trim().into() });
+        }
+        match self.find(unit).map(|size| value * size) {
+            Some(value) if value.is_finite() => Ok(value),
+            Some(_) => Err(Fault::NotFinite { found: text.trim().into(), needs: Some(self) }),
             None => Err(self.refuse(unit)),
         }
     }
@@ -129,17 +161,11 @@ impl Dimension {
         if let Some(is) = Self::ALL.into_iter().find(|dimension| dimension.find(unit).is_some()) {
             return Fault::WrongDimension { unit: unit.into(), is, needs: self };
         }
-        if unit.chars().any(|c| c.is_ascii_digit())
-            && unit.contains(['/', '-'])
-            && unit.starts_with(|c: char| c.is_ascii_digit() || c == '/' || c == '-')
-        {
-            return Fault::Fraction { found: unit.into() };
-        }
         let near = self
             .units()
             .iter()
             .flat_map(|(names, _)| names.iter())
-            .map(|name| (strsim::osa_distance(name, &unit.to_lowercase()), *name))
+            .map(|name| (strsim::osa_distance(&name.to_lowercase(), &unit.to_lowercase()), *name))
             .min()
             .filter(|(distance, name)| *distance <= 1.max(name.len() / 3) && *distance < name.len())
             .map(|(_, name)| name);
@@ -165,11 +191,22 @@ pub enum Fault {
     NoNumber {
         /// What stands there.
         found: String,
+        /// What the place wants; none where it is a number without a unit.
+        needs: Option<Dimension>,
+    },
+    /// It begins with digits and signs that make no number.
+    NotANumber {
+        /// Those digits and signs.
+        found: String,
+        /// What the place wants; none where it is a number without a unit.
+        needs: Option<Dimension>,
     },
     /// The number is not finite, or too great to hold.
     NotFinite {
         /// What stands there.
         found: String,
+        /// What the place wants; none where it is a number without a unit.
+        needs: Option<Dimension>,
     },
     /// A comma where it could be a decimal point or a separator of thousands.
     Comma {
@@ -180,9 +217,9 @@ pub enum Fault {
         /// It with the comma taken out.
         taken_out: String,
     },
-    /// A fraction or feet and inches in one text.
-    Fraction {
-        /// The part that is not a unit.
+    /// A fraction, feet and inches, or several numbers in one text.
+    Several {
+        /// What stands there.
         found: String,
     },
     /// A number without a unit.
@@ -222,13 +259,12 @@ pub enum Fault {
 impl fmt::Display for Fault {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         match self {
-            Self::NoNumber { found } if found.is_empty() => write!(f, "this is empty"),
-            Self::NoNumber { found } => write!(f, "`{found}` does not begin with a number"),
-            Self::NotFinite { found } => write!(f, "`{found}` is not a finite number"),
+            Self::NoNumber { found, .. } if found.is_empty() => write!(f, "this is empty"),
+            Self::NoNumber { found, .. } => write!(f, "`{found}` does not begin with a number"),
+            Self::NotANumber { found, .. } => write!(f, "`{found}` is not a number"),
+            Self::NotFinite { found, .. } => write!(f, "`{found}` is not a finite number"),
             Self::Comma { found, .. } => write!(f, "the comma in `{found}` can be read in two ways"),
-            Self::Fraction { found } => {
-                write!(f, "`{found}` is not a unit: a quantity is one decimal number and one unit")
-            }
+            Self::Several { found } => write!(f, "`{found}` is not one decimal number with one unit"),
             Self::NoUnit { found, needs } => write!(f, "`{found}` has no unit; this is {}", needs.with_article()),
             Self::WrongDimension { unit, is, needs } => {
                 write!(f, "`{unit}` is a unit of {}; this is {}", bare(is.with_article()), needs.with_article())
@@ -245,12 +281,18 @@ impl Fault {
     /// What would pass instead.
     pub fn help(&self) -> String {
         match self {
-            Self::NoNumber { .. } | Self::NotFinite { .. } => "write a number and a unit, such as \"6 in\"".into(),
+            Self::NoNumber { needs: Some(needs), .. } | Self::NotFinite { needs: Some(needs), .. } => {
+                format!("write a number and a unit, such as \"{}\"", needs.example())
+            }
+            Self::NotANumber { needs: Some(needs), .. } => {
+                format!("write digits and at most one decimal point, such as \"{}\"", needs.example())
+            }
+            Self::NoNumber { .. } | Self::NotANumber { .. } | Self::NotFinite { .. } => "write a bare number".into(),
             Self::Comma { as_point, taken_out, .. } => format!(
                 "write {as_point} if the comma is a decimal point, {taken_out} if it parts thousands; \
                  a comma passes only before whole groups of three digits in a whole number"
             ),
-            Self::Fraction { .. } => "write 2.5 in for 2 1/2 in, and 30 in for 2 ft 6 in".into(),
+            Self::Several { .. } => "write 2.5 in for 2 1/2 in, and 30 in for 2 ft 6 in".into(),
             Self::NoUnit { found, needs } => {
                 format!("write \"{} {}\"; {} would pass", found, needs.units()[0].0[0], would_pass(*needs))
             }
@@ -276,8 +318,25 @@ fn bare(with_article: &str) -> &str {
     with_article.split_once(' ').map_or(with_article, |(_, noun)| noun)
 }
 
+/// Whether what stands behind a number is a fraction, a second number, or a unit with one more quantity behind it:
+/// `1/2 in` of `2 1/2 in`, `- 8 in` of `6 - 8 in`, `ft 6 in` of `2 ft 6 in`.
+fn is_more_than_a_unit(text: &str) -> bool {
+    let is_digit = |c: char| c.is_ascii_digit();
+    let is_unit = |text: &str| Dimension::ALL.iter().any(|dimension| dimension.find(text).is_some());
+    if is_unit(text) {
+        return false;
+    }
+    if text.trim_start_matches(['/', '-', ' ']).starts_with(is_digit) {
+        return true;
+    }
+    // "ft3/min" has a digit too, but no unit of its own behind it.
+    text.find(is_digit).zip(text.rfind(is_digit)).is_some_and(|(first, last)| {
+        is_unit(text[..first].trim_end_matches(['-', ' '])) && is_unit(text[last + 1..].trim_start())
+    })
+}
+
 /// Splits a text into its number and the unit behind it.
-fn number_and_unit(text: &str) -> Result<(f64, &str), Fault> {
+fn number_and_unit(text: &str, needs: Option<Dimension>) -> Result<(f64, &str), Fault> {
     let text = text.trim();
     let is_part = |c: char| c.is_ascii_digit() || ".,+-_".contains(c);
     let mut end = text.find(|c| !is_part(c)).unwrap_or(text.len());
@@ -295,11 +354,19 @@ fn number_and_unit(text: &str) -> Result<(f64, &str), Fault> {
         let word = text.trim_start_matches(['+', '-']).to_ascii_lowercase();
         let not_finite = ["nan", "inf"].iter().any(|name| word.starts_with(name) && !word.starts_with("inch"));
         let found = text.to_string();
-        return Err(if not_finite { Fault::NotFinite { found } } else { Fault::NoNumber { found } });
+        return Err(if not_finite { Fault::NotFinite { found, needs } } else { Fault::NoNumber { found, needs } });
     }
     let plain = without_commas(number)?;
-    let value: f64 = plain.parse().map_err(|_| Fault::NoNumber { found: text.to_string() })?;
-    if value.is_finite() { Ok((value, unit)) } else { Err(Fault::NotFinite { found: text.to_string() }) }
+    let Ok(value) = plain.parse::<f64>() else {
+        // "2-1/2 in" is a fraction that a hyphen joins to its whole number.
+        let fraction = unit.starts_with('/') && unit.contains(|c: char| c.is_ascii_digit());
+        return Err(if fraction {
+            Fault::Several { found: text.to_string() }
+        } else {
+            Fault::NotANumber { found: number.to_string(), needs }
+        });
+    };
+    if value.is_finite() { Ok((value, unit)) } else { Err(Fault::NotFinite { found: text.to_string(), needs }) }
 }
 
 /// Takes commas out of a whole number from 1,000 whose groups behind the first are whole; refuses any other comma.
@@ -346,12 +413,20 @@ impl Priced {
 pub fn read_price(text: &str, per: Dimension) -> Result<Priced, Fault> {
     let not_a_price = || Fault::NotAPrice { found: text.trim().into(), per };
     let (amount, unit) = text.split_once('/').ok_or_else(not_a_price)?;
-    let (value, rest) = number_and_unit(amount)?;
+    let (value, rest) = match number_and_unit(amount, None) {
+        Err(comma @ Fault::Comma { .. }) => return Err(comma),
+        Err(_) => return Err(not_a_price()),
+        Ok(amount) => amount,
+    };
     let unit = unit.trim();
     if !rest.is_empty() || unit.is_empty() {
         return Err(not_a_price());
     }
-    per.find(unit).map(|size| Priced(value / size)).ok_or_else(|| per.refuse(unit))
+    match per.find(unit).map(|size| value / size) {
+        Some(price) if price.is_finite() => Ok(Priced(price)),
+        Some(_) => Err(not_a_price()),
+        None => Err(per.refuse(unit)),
+    }
 }
 
 macro_rules! from_text {
@@ -385,8 +460,9 @@ impl FromStr for Length {
 impl FromStr for Money {
     type Err = Fault;
     fn from_str(text: &str) -> Result<Self, Fault> {
-        let (value, unit) = number_and_unit(text)?;
-        if unit.is_empty() { Ok(Self::nearest(value)) } else { Err(Fault::NoNumber { found: text.trim().into() }) }
+        let (value, unit) = number_and_unit(text, None)?;
+        let refused = || Fault::NoNumber { found: text.trim().into(), needs: None };
+        if unit.is_empty() { Ok(Self::nearest(value)) } else { Err(refused()) }
     }
 }
 
@@ -441,7 +517,7 @@ mod tests {
             ("1,234.5 m", "1.2345", "1234.5"),
             ("1.234,5 m", "1234.5", "1.2345"),
         ] {
-            match number_and_unit(text) {
+            match number_and_unit(text, None) {
                 Err(Fault::Comma { as_point: point, taken_out: out, .. }) => {
                     assert_eq!((point.as_str(), out.as_str()), (as_point, taken_out), "{text}");
                 }
@@ -466,15 +542,51 @@ mod tests {
             "`inn` is not a unit of length known here; did you mean `in`? in, ft, mm, cm, m or yd would pass"
         );
         assert_eq!(
-            shown(length("2 1/2 in").unwrap_err()),
-            "`1/2 in` is not a unit: a quantity is one decimal number and one unit; write 2.5 in for 2 1/2 in, and 30 in for 2 ft 6 in"
-        );
-        assert_eq!(
             shown(length("nan in").unwrap_err()),
             "`nan in` is not a finite number; write a number and a unit, such as \"6 in\""
         );
-        assert_eq!(length("1e999 in"), Err(Fault::NotFinite { found: "1e999 in".into() }));
-        assert_eq!(length(""), Err(Fault::NoNumber { found: String::new() }));
+        assert_eq!(
+            shown(Dimension::Load.read("heavy").unwrap_err()),
+            "`heavy` does not begin with a number; write a number and a unit, such as \"30 psf\""
+        );
+        let needs = Some(Dimension::Length);
+        assert_eq!(length("1e999 in"), Err(Fault::NotFinite { found: "1e999 in".into(), needs }));
+        assert_eq!(Dimension::Area.read("1e308 ha").unwrap_err().to_string(), "`1e308 ha` is not a finite number");
+        assert_eq!(length(""), Err(Fault::NoNumber { found: String::new(), needs }));
+    }
+
+    #[test]
+    fn a_quantity_is_one_number_and_one_unit() {
+        let several = [
+            "2 1/2 in",
+            "2-1/2 in",
+            "1/2 in",
+            "2 ft 6 in",
+            "2ft6in",
+            "2' 6\"",
+            "2'-6\"",
+            "6 - 8 in",
+            "1 234 mm",
+            "6/12",
+        ];
+        for text in several {
+            let fault = length(text).unwrap_err();
+            assert_eq!(fault.to_string(), format!("`{text}` is not one decimal number with one unit"));
+            assert_eq!(fault.help(), "write 2.5 in for 2 1/2 in, and 30 in for 2 ft 6 in");
+        }
+        for (text, number) in [("9_600 mm", "9_600"), ("6-8 in", "6-8"), ("1.2.3 in", "1.2.3"), ("--3 in", "--3")] {
+            assert_eq!(
+                length(text),
+                Err(Fault::NotANumber { found: number.into(), needs: Some(Dimension::Length) }),
+                "{text}"
+            );
+        }
+        assert_eq!(length("6 ft2").unwrap_err().to_string(), "`ft2` is a unit of area; this is a length");
+        assert_eq!(
+            Dimension::Flow.read("6 m3/min").unwrap_err().to_string(),
+            "`m3/min` is not a unit of flow known here"
+        );
+        assert_eq!(length("6 ft3").unwrap_err().to_string(), "`ft3` is not a unit of length known here");
     }
 
     #[test]

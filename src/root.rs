@@ -47,7 +47,7 @@ impl<F: Fn(f64) -> f64> CostFunction for Scalar<F> {
 
 /// Two neighbouring numbers between which `f` first ceases to be negative: `f(first) < 0 <= f(second)`.
 ///
-/// `f` must not fall where it is negative, and must stay at or above zero once it is there; on `[low, high]`.
+/// Only the sign of `f` is trusted: once at or above zero it must stay there, on `[low, high]`. It need not rise evenly.
 ///
 /// # Errors
 /// [`RootError::NoCrossing`] unless `f(low) < 0 <= f(high)`; [`RootError::NotFinite`] for a value that is not.
