@@ -8,7 +8,8 @@ use std::cmp::Ordering;
 use std::collections::HashSet;
 use std::sync::Arc;
 
-use brimline::device::{Choice, Device, Following, Kind, Place, Rating, Size};
+use brimline::device::{Choice, Device, Following, Kind, Law, Place, Rating, Size};
+use brimline::roof::channel::Channel;
 use brimline::roof::layout::{self, Asked, Group, Liftable};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm};
 use brimline::search::{self, Criterion, Options, Outcome, Why};
@@ -129,7 +130,10 @@ fn roof(dice: &mut Dice) -> Roof {
         wall_share: 0.5,
         edge: dice.one_in(2).then(|| on_grid(dice.inches(0, 60))),
         gap: on_grid(dice.inches(0, 6)),
-        parapet: Parapet { height: dice.one_in(2).then(|| on_grid(dice.inches(4, 10))), thickness: None },
+        parapet: Parapet {
+            height: dice.one_in(2).then(|| on_grid(dice.inches(4, 10))),
+            thickness: Some(Length::inches(8.0)),
+        },
         roof_at_wall: on_grid(dice.inches(0, 2)),
         receives: Vec::new(),
         ponding_head: dice.one_in(2).then(|| Length::inches(0.4)),
@@ -137,20 +141,21 @@ fn roof(dice: &mut Dice) -> Roof {
         count: least..=least + dice.upto(3) as u32,
         set_heights: Some((0..=2).map(|step| on_grid(Length::inches((grid_start + step) as f64 * 0.75))).collect()),
         limits,
-        channel: None,
+        channel: dice.one_in(12).then(|| Channel {
+            width: on_grid(dice.inches(8, 40)),
+            length: Length::from_m(5.0 + dice.upto(20) as f64),
+            slope: dice.pick(&[0.0, 0.0, 0.001]),
+            roughness: 0.013,
+        }),
     };
     let storm = Storm { intensity: Intensity::from_m_per_s(3e-5), duration: None, return_period: None, source: None };
     let demands = vec![storm.intensity * catchment.area];
-    Roof {
-        title: String::new(),
-        system: System::Us,
-        storm,
-        cases,
-        areas: vec![catchment],
-        sizes,
-        choice: Choice::default(),
-        demands,
+    let mut choice = Choice::default();
+    if dice.one_in(6) {
+        choice.scupper =
+            dice.pick(&[Law::Contracted, Law::KindsvaterCarter, Law::ShortCrest, Law::En12056, Law::Throat]);
     }
+    Roof { title: String::new(), system: System::Us, storm, cases, areas: vec![catchment], sizes, choice, demands }
 }
 
 fn options(dice: &mut Dice) -> Options {
@@ -284,7 +289,7 @@ fn try_layout<'r>(
     let load = situations
         .iter()
         .map(|situation| {
-            layout::state(&reported, situation).water.map_or(f64::INFINITY, |water| water.level.nm() as f64)
+            layout::state(&reported, situation).water.map_or(f64::INFINITY, |water| water.depth().nm() as f64)
         })
         .fold(f64::NEG_INFINITY, f64::max);
     let value = |criterion| match criterion {

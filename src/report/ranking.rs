@@ -223,7 +223,7 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
         column("util.".into(), true, "utilisation", &|layout| {
             layout.governing.map_or("-".into(), |governing| format!("{:.3}", governing.utilisation))
         }),
-        column("governing case".into(), false, "governing case", &|layout| sized.roof.cases[layout.case].name.clone()),
+        column("case".into(), false, "governing case", &|layout| sized.roof.cases[layout.case].name.clone()),
         column("limit".into(), false, "governing limit", &|layout| governing_limit(layout).to_string()),
         column(format!("set height {}", words.small_unit()), false, "set height may run", &|layout| {
             words.window(&layout.groups)

@@ -129,6 +129,14 @@ fn level_allowed(situation: &Situation<'_>, words: Words) -> String {
     if let Some(parapet) = situation.parapet {
         parts.push(format!("{} by the parapet's top", words.size(parapet)));
     }
+    if situation.channel.is_some() {
+        let allowed = situation.allowable_level();
+        parts.push(if allowed > Length::ZERO {
+            format!("at the devices {}, so that the water nowhere along the channel passes these", fine(words, allowed))
+        } else {
+            "nothing at the devices: the channel stands too deep whatever they do".into()
+        });
+    }
     parts.join("; ")
 }
 

@@ -111,13 +111,13 @@ impl Situation<'_> {
 
     /// The limit that a level uses most; ties go to load, then depth.
     pub fn governing(&self, level: Length) -> Governing {
+        let reach = self.reach(level);
+        let (depth, top) = reach.map_or((level, level), |reach| (reach.deepest, reach.far_level.max(level)));
+        let weighed = PASCALS_PER_METRE * (depth + self.ponding_head).m();
         let uses = [
-            (
-                LimitKind::Load,
-                self.limits.load.map(|limit| PASCALS_PER_METRE * (level + self.ponding_head).m() / limit.pa()),
-            ),
-            (LimitKind::Depth, self.limits.depth.map(|limit| level / limit)),
-            (LimitKind::Parapet, self.parapet.map(|top| level / top)),
+            (LimitKind::Load, self.limits.load.map(|limit| weighed / limit.pa())),
+            (LimitKind::Depth, self.limits.depth.map(|limit| depth / limit)),
+            (LimitKind::Parapet, self.parapet.map(|parapet| top / parapet)),
         ];
         let none = Governing { limit: LimitKind::Load, utilisation: f64::NEG_INFINITY };
         uses.into_iter().fold(none, |most, (limit, used)| match used {
@@ -149,6 +149,27 @@ mod tests {
     }
 
     /// 26 / 5.2 - 0.4 = 4.6 in by load, 4.8 in by depth, 4 in to the parapet's top. Worked by hand.
+    /// Along a channel the limits hold where it stands deepest: at its far end, sqrt(3) critical depths and more.
+    #[test]
+    fn a_channel_is_held_at_its_far_end() {
+        let case = Case::as_designed();
+        let channel =
+            Channel { width: Length::from_m(0.3), length: Length::from_m(10.0), slope: 0.0, roughness: 0.011 };
+        let limits = Limits { load: None, depth: Some(Length::from_m(0.16)) };
+        let here = Situation {
+            demand: Flow::from_m3_per_s(0.02),
+            limits,
+            parapet: None,
+            channel: Some(channel),
+            ..situation(&case)
+        };
+        let allowed = here.allowable_level();
+        assert!(allowed < Length::from_m(0.14), "{allowed:?}");
+        assert_relative_eq!(here.governing(allowed).utilisation, 1.0, max_relative = 1e-9);
+        assert_relative_eq!(here.depth(allowed).m(), 0.16, max_relative = 1e-9);
+        assert_relative_eq!(here.load(allowed).to_psf(), load_of(Length::from_m(0.16) + here.ponding_head).to_psf());
+    }
+
     #[test]
     fn the_least_of_load_depth_and_parapet_holds() {
         let case = Case::as_designed();
