@@ -45,6 +45,9 @@ static DEVICE: Keys = Keys {
 static PRICE: Keys =
     Keys { table: "`price`", known: &["each", "per_width", "per_height", "per_area"], unsupported: &[] };
 
+/// Most that one device may cost: ten thousand of them are still an amount.
+const MOST_AMOUNT: f64 = 9e8;
+
 /// The dimensions that a kind has, those that it must have first, with how many they are.
 fn dimensions(kind: Kind) -> (&'static [&'static str], usize) {
     match kind {
@@ -315,7 +318,8 @@ impl Given {
             Kind::OpenScupper | Kind::RoofEdge => (true, false),
             Kind::ClosedScupper | Kind::PipeScupper => (true, true),
             Kind::OverflowDrain | Kind::Standpipe => (false, false),
-            Kind::Rated => (self.widths.is_some() || matches!(self.rating, Some(Some(Ratings::ByWidth(_)))), false),
+            // A table that cannot be read may be one by width.
+            Kind::Rated => (self.widths.is_some() || !matches!(self.rating, None | Some(Some(Ratings::One(_)))), false),
         };
         let priced = [
             ("per_width", has_width, "width"),
@@ -385,6 +389,9 @@ impl Given {
             };
             let price = optional(self.price.take())?;
             let set_heights: Option<Arc<[Length]>> = optional(self.set_heights.take())?.map(Arc::from);
+            if price.as_ref().is_some_and(|price| !price.can_be_held(tag, section, &devices)) {
+                return None;
+            }
             let (law, screen) = (optional(law)?, optional(self.screen)?.unwrap_or(1.0));
             Some((devices, place, price, set_heights, law, screen, self.following?))
         };
@@ -480,6 +487,19 @@ impl Price {
             per_height: optional(height)?,
             per_area: optional(area)?,
         })
+    }
+
+    /// Whether sums of the devices' prices stay within what an amount can hold.
+    fn can_be_held(&self, tag: &str, section: &Section<'_>, devices: &[Device]) -> bool {
+        let dearest = devices.iter().map(|device| self.of(device).amount()).fold(0.0, f64::max);
+        if let (true, Some(cell)) = (dearest > MOST_AMOUNT, section.get("price")) {
+            cell.at_fault(
+                format!("the price of `{tag}` is too great"),
+                "makes an amount of more than 900 million",
+                "give all prices in thousands, or check this one",
+            );
+        }
+        dearest <= MOST_AMOUNT
     }
 
     fn of(&self, device: &Device) -> Money {

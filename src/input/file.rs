@@ -97,7 +97,9 @@ fn report(source: &Arc<Source>, mut errors: Vec<toml::de::Error>, log: &Log) {
     for error in &errors {
         let span = error.span().unwrap_or(0..0);
         let line = line_of(text, span.start);
-        if line_before.replace(line.start) == Some(line.start) {
+        // What stands twice because its table does is told with the table.
+        let follows = error.message() == DUPLICATE && stumbled.last().is_some_and(|last| last.contains(&span.start));
+        if line_before.replace(line.start) == Some(line.start) || follows {
             continue;
         }
         let is_head = text[line.clone()].trim_start().starts_with('[');

@@ -15,6 +15,9 @@ const WIDTHS: [(&str, f64); 3] = [("width_in", 0.0254), ("width_mm", 0.001), ("w
 const FLOWS: [(&str, f64); 3] =
     [("flow_gpm", 231.0 * 0.0254 * 0.0254 * 0.0254 / 60.0), ("flow_l_s", 0.001), ("flow_m3_s", 1.0)];
 
+/// Most that a head or a flow may be, in SI units.
+const MOST: f64 = 1e9;
+
 /// Reads the rating that a catalog names.
 pub(super) fn read(catalog: &Path, named: &Cell<'_>, log: &Log) -> Option<Ratings> {
     let name = named.text()?;
@@ -155,7 +158,7 @@ impl Table<'_> {
                 .find_map(|(at, entry)| names.iter().find(|(name, _)| *name == entry.text).map(|&(_, size)| (at, size)))
         };
         let (heads, flows, widths) = (find(&HEADS), find(&FLOWS), find(&WIDTHS));
-        let known: Vec<&str> = HEADS.iter().chain(&FLOWS).map(|&(name, _)| name).collect();
+        let known: Vec<&str> = HEADS.iter().chain(&FLOWS).chain(&WIDTHS).map(|&(name, _)| name).collect();
         let mut sound = true;
         for (at, entry) in head.iter().enumerate() {
             if [heads, flows, widths].iter().flatten().any(|&(column, _)| column == at) {
@@ -163,7 +166,8 @@ impl Table<'_> {
             }
             sound = false;
             if let Some(name) = known.iter().find(|name| **name == entry.text) {
-                let sort = if name.starts_with("head") { "heads" } else { "flows" };
+                let sort =
+                    ["heads", "flows", "widths"].into_iter().find(|sort| name[..4] == sort[..4]).unwrap_or("these");
                 let title = format!("`{name}` is a second column of {sort}");
                 self.refuse(entry.span.clone(), title, "one is wanted", FORM);
                 continue;
@@ -202,10 +206,11 @@ impl Table<'_> {
             return None;
         }
         let number = |(at, size): (usize, f64)| {
-            let value = row[at].text.parse::<f64>().ok().filter(|value| value.is_finite());
+            let value = row[at].text.parse::<f64>().ok().filter(|value| (value * size).abs() <= MOST);
             if value.is_none() {
                 let title = match row[at].text {
                     "" => "a cell is empty".to_string(),
+                    text if text.parse::<f64>().is_ok_and(f64::is_finite) => format!("`{text}` is too great"),
                     text => format!("`{text}` is not a number"),
                 };
                 self.refuse(

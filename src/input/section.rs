@@ -67,6 +67,9 @@ pub(super) struct Cell<'a> {
     span_end: usize,
 }
 
+/// Most that a bare number may be: sums of prices stay within what an amount can hold.
+const MOST: f64 = 1e12;
+
 /// What kind of value stands there, in words.
 fn kind_of(value: &DeValue<'_>) -> &'static str {
     match value {
@@ -381,6 +384,14 @@ impl<'a> Cell<'a> {
             }
         };
         match number.filter(|number| number.is_finite()) {
+            Some(number) if number.abs() > MOST => {
+                self.at_fault(
+                    format!("`{}` is too great", self.key),
+                    "too great",
+                    format!("up to {MOST:e} would pass"),
+                );
+                None
+            }
             Some(number) => Some(number),
             None => {
                 self.at_fault(

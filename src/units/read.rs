@@ -80,6 +80,11 @@ const SLOPES: &[Unit] =
     &[(&["in/ft"], 1.0 / 12.0), (&["mm/m"], 0.001), (&["%", "percent"], 0.01), (&["ft/ft"], 1.0), (&["m/m"], 1.0)];
 const RETURN_PERIODS: &[Unit] = &[(&["yr", "year", "years", "yrs", "y"], 1.0)];
 
+/// Most that a quantity may be, in SI units: beyond it lengths would leave their grid of nanometres.
+const MOST: f64 = 1e9;
+/// Most that a price may be for one SI unit.
+const MOST_PRICE: f64 = 1e15;
+
 impl Dimension {
     const ALL: [Self; 8] = [
         Self::Length,
@@ -151,8 +156,8 @@ impl Dimension {
             return Err(Fault::Several { found: text.trim().into() });
         }
         match self.find(unit).map(|size| value * size) {
-            Some(value) if value.is_finite() => Ok(value),
-            Some(_) => Err(Fault::NotFinite { found: text.trim().into(), needs: Some(self) }),
+            Some(value) if value.abs() <= MOST => Ok(value),
+            Some(_) => Err(Fault::TooGreat { found: text.trim().into() }),
             None => Err(self.refuse(unit)),
         }
     }
@@ -201,12 +206,17 @@ pub enum Fault {
         /// What the place wants; none where it is a number without a unit.
         needs: Option<Dimension>,
     },
-    /// The number is not finite, or too great to hold.
+    /// The number is not finite.
     NotFinite {
         /// What stands there.
         found: String,
         /// What the place wants; none where it is a number without a unit.
         needs: Option<Dimension>,
+    },
+    /// It is greater than anything on a roof.
+    TooGreat {
+        /// What stands there.
+        found: String,
     },
     /// A comma where it could be a decimal point or a separator of thousands.
     Comma {
@@ -263,6 +273,7 @@ impl fmt::Display for Fault {
             Self::NoNumber { found, .. } => write!(f, "`{found}` does not begin with a number"),
             Self::NotANumber { found, .. } => write!(f, "`{found}` is not a number"),
             Self::NotFinite { found, .. } => write!(f, "`{found}` is not a finite number"),
+            Self::TooGreat { found } => write!(f, "`{found}` is too great"),
             Self::Comma { found, .. } => write!(f, "the comma in `{found}` can be read in two ways"),
             Self::Several { found } => write!(f, "`{found}` is not one decimal number with one unit"),
             Self::NoUnit { found, needs } => write!(f, "`{found}` has no unit; this is {}", needs.with_article()),
@@ -288,11 +299,12 @@ impl Fault {
                 format!("write digits and at most one decimal point, such as \"{}\"", needs.example())
             }
             Self::NoNumber { .. } | Self::NotANumber { .. } | Self::NotFinite { .. } => "write a bare number".into(),
+            Self::TooGreat { .. } => "no roof needs so much: check the number and its unit".into(),
             Self::Comma { as_point, taken_out, .. } => format!(
                 "write {as_point} if the comma is a decimal point, {taken_out} if it parts thousands; \
                  a comma passes only before whole groups of three digits in a whole number"
             ),
-            Self::Several { .. } => "write 2.5 in for 2 1/2 in, and 30 in for 2 ft 6 in".into(),
+            Self::Several { .. } => "write 0.25 for 1/4, 2.5 in for 2 1/2 in, and 30 in for 2 ft 6 in".into(),
             Self::NoUnit { found, needs } => {
                 format!("write \"{} {}\"; {} would pass", found, needs.units()[0].0[0], would_pass(*needs))
             }
@@ -423,8 +435,8 @@ pub fn read_price(text: &str, per: Dimension) -> Result<Priced, Fault> {
         return Err(not_a_price());
     }
     match per.find(unit).map(|size| value / size) {
-        Some(price) if price.is_finite() => Ok(Priced(price)),
-        Some(_) => Err(not_a_price()),
+        Some(price) if price.abs() <= MOST_PRICE => Ok(Priced(price)),
+        Some(_) => Err(Fault::TooGreat { found: text.trim().into() }),
         None => Err(per.refuse(unit)),
     }
 }
@@ -551,7 +563,10 @@ mod tests {
         );
         let needs = Some(Dimension::Length);
         assert_eq!(length("1e999 in"), Err(Fault::NotFinite { found: "1e999 in".into(), needs }));
-        assert_eq!(Dimension::Area.read("1e308 ha").unwrap_err().to_string(), "`1e308 ha` is not a finite number");
+        assert_eq!(
+            shown(Dimension::Area.read("1e308 ha").unwrap_err()),
+            "`1e308 ha` is too great; no roof needs so much: check the number and its unit"
+        );
         assert_eq!(length(""), Err(Fault::NoNumber { found: String::new(), needs }));
     }
 
@@ -572,7 +587,7 @@ mod tests {
         for text in several {
             let fault = length(text).unwrap_err();
             assert_eq!(fault.to_string(), format!("`{text}` is not one decimal number with one unit"));
-            assert_eq!(fault.help(), "write 2.5 in for 2 1/2 in, and 30 in for 2 ft 6 in");
+            assert_eq!(fault.help(), "write 0.25 for 1/4, 2.5 in for 2 1/2 in, and 30 in for 2 ft 6 in");
         }
         for (text, number) in [("9_600 mm", "9_600"), ("6-8 in", "6-8"), ("1.2.3 in", "1.2.3"), ("--3 in", "--3")] {
             assert_eq!(
