@@ -4,7 +4,7 @@ use std::path::Path;
 
 use crate::device::Size;
 use crate::roof::Roof;
-use crate::search::Options;
+use crate::search::{Options, PlanAsked};
 
 mod area;
 mod catalog;
@@ -27,6 +27,8 @@ pub struct Project {
     pub roof: Roof,
     /// What is asked of the search.
     pub options: Options,
+    /// What is asked of the whole roof, where a plan is asked for.
+    pub plan: Option<PlanAsked>,
     /// What was taken where the files say nothing.
     pub assumed: Vec<Assumed>,
     /// What in the files is probably not meant; they can be used all the same.

@@ -6,13 +6,14 @@
 use crate::device::{Law, Site, Size};
 use crate::input::Assumed;
 use crate::roof::Roof;
-use crate::search::{Answer, Options, UnderLaw};
+use crate::search::{Answer, Options, PlanAsked, Plans, UnderLaw};
 use crate::units::{Flow, Length, System};
 
 mod contents;
 mod json;
 mod notes;
 mod page;
+mod plan;
 mod ranking;
 mod rate;
 mod schedule;
@@ -47,6 +48,17 @@ pub struct Sized<'a, 'r> {
     pub work: bool,
     /// Each answer's first layout under every law that it can follow; empty where that is not asked for.
     pub laws: &'a [Vec<UnderLaw>],
+    /// The plans of the whole roof, where one was asked for.
+    pub plans: Option<Asked<'a, 'r>>,
+}
+
+/// What was asked of the whole roof, and what was found.
+#[derive(Clone, Copy, Debug)]
+pub struct Asked<'a, 'r> {
+    /// What was asked.
+    pub asked: PlanAsked,
+    /// The plans; none where a device has no price.
+    pub found: Option<&'a Plans<'r>>,
 }
 
 /// Writes a report of sized areas; `width` is that of the terminal, in characters.

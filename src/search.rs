@@ -17,9 +17,11 @@ use crate::units::{Length, Money};
 mod best;
 mod dive;
 mod infeasible;
+mod plan;
 mod problem;
 mod rank;
 
+pub use plan::{Asked as PlanAsked, Plan, Plans, plan};
 pub use rank::Criterion;
 
 use best::{Best, Found, reported};

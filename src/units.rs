@@ -261,6 +261,11 @@ impl Money {
         self.0 as f64 / 1e6
     }
 
+    /// From whole millionths.
+    pub const fn from_millionths(count: i64) -> Self {
+        Self(count)
+    }
+
     /// The amount in whole millionths.
     pub const fn millionths(self) -> i64 {
         self.0

@@ -241,7 +241,7 @@ error: unknown key `mxi` in [search]
 14 | mxi = 2
    | ^^^ not a key of this table
    |
-   = help: did you mean `mix`? [search] takes rank_by, keep, mix, set_height, count, freeboard or laws
+   = help: did you mean `mix`? [search] takes rank_by, keep, mix, set_height, count, freeboard, laws, sizes or size_price
 
 error: `blocked` must be a whole number from 0 to 10000
   --> roof.toml:25:11
@@ -679,7 +679,7 @@ error: unknown key `set_hight` in [search]
 17 | set_hight = "2 in"
    | ^^^^^^^^^ not a key of this table
    |
-   = help: did you mean `set_height`? [search] takes rank_by, keep, mix, set_height, count, freeboard or laws
+   = help: did you mean `set_height`? [search] takes rank_by, keep, mix, set_height, count, freeboard, laws, sizes or size_price
 
 error: `step` is missing in a range
   --> roof.toml:18:14
@@ -788,14 +788,6 @@ error: `table` in [storm] is not supported in this version
   | ^^^^^ meant for a rainfall table to look the intensity up in
   |
   = help: take the key out: the answer would not heed it
-
-error: `sizes` in [search] is not supported in this version
-  --> roof.toml:18:1
-   |
-18 | sizes = 2
-   | ^^^^^ meant for the most distinct sizes on the whole roof
-   |
-   = help: take the key out: the answer would not heed it
 
 error: `round` in [search] is not supported in this version
   --> roof.toml:19:1

@@ -12,7 +12,7 @@ use brimline::device::{Choice, Device, Following, Kind, Law, Place, Rating, Size
 use brimline::roof::channel::Channel;
 use brimline::roof::layout::{self, Asked, Group, Liftable};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm};
-use brimline::search::{self, Criterion, Options, Outcome, Why};
+use brimline::search::{self, Criterion, Options, Outcome, PlanAsked, Why};
 use brimline::units::{Area, Flow, Intensity, Length, Load, Money, System};
 
 /// A small generator of its own, so that a failing seed can be run again anywhere.
@@ -442,4 +442,83 @@ fn check_why(roof: &Roof, options: &Options, why: &Why<'_>, seed: u64) {
         }
         _ => unreachable!("seed {seed}: a reason unknown to this test"),
     }
+}
+
+/// The cheapest plan of a few areas against trying every set of sizes with every layout of each area.
+#[test]
+fn the_plan_is_that_of_trying_everything() {
+    let (mut found, mut none) = (0, 0);
+    for seed in 1..=700_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0xd134_2543_de82_ef95));
+        let mut whole = roof(&mut dice);
+        let mut options = options(&mut dice);
+        options.mix = options.mix.min(2);
+        options.keep = 1;
+        for _ in 0..dice.upto(3) {
+            let other = roof(&mut dice).areas.remove(0);
+            let limits = whole.cases.iter().map(|_| other.limits[0]).collect();
+            whole.areas.push(Catchment { limits, ..other });
+        }
+        whole.demands = whole.areas.iter().map(|area| whole.storm.intensity * area.area).collect();
+        let asked = PlanAsked {
+            sizes: dice.one_in(4).then_some(()).map_or(Some(1 + dice.upto(2) as u32), |()| None),
+            size_price: Money::nearest(100.0 * dice.upto(3) as f64),
+        };
+        let areas: Vec<usize> = (0..whole.areas.len()).collect();
+        // Every area's layouts by cost: what each costs and which sizes it needs.
+        let layouts: Vec<Vec<(i64, u32)>> = areas
+            .iter()
+            .map(|&area| {
+                let alone = Roof {
+                    areas: vec![whole.areas[area].clone()],
+                    demands: vec![whole.demands[area]],
+                    ..whole.clone()
+                };
+                let situations = alone.situations(0);
+                let tried = every_choice(&alone, &options)
+                    .iter()
+                    .filter_map(|groups| try_layout(&alone, &options, &situations, groups))
+                    .map(|tried| {
+                        let cost = tried.groups.iter().map(|&(size, count)| {
+                            alone.sizes[size].price.expect("priced").millionths() * i64::from(count)
+                        });
+                        (cost.sum(), tried.groups.iter().fold(0, |mask, &(size, _)| mask | 1 << size))
+                    })
+                    .collect();
+                tried
+            })
+            .collect();
+        let most = asked.sizes.unwrap_or(u32::MAX);
+        let least = (1_u32..1 << whole.sizes.len())
+            .filter(|set| set.count_ones() <= most)
+            .filter_map(|set| {
+                let of_area = |layouts: &Vec<(i64, u32)>| {
+                    layouts.iter().filter(|(_, needs)| needs & !set == 0).map(|&(cost, _)| cost).min()
+                };
+                let costs = layouts.iter().map(of_area).collect::<Option<Vec<i64>>>()?;
+                Some(costs.iter().sum::<i64>() + asked.size_price.millionths() * i64::from(set.count_ones()))
+            })
+            .min();
+        let plans = search::plan(&whole, &options, asked, &areas).expect("all priced");
+        let best = plans.plans.first();
+        assert_eq!(best.map(|plan| plan.cost.millionths()), least, "seed {seed}");
+        let Some(plan) = best else {
+            none += 1;
+            continue;
+        };
+        found += 1;
+        let of_layouts: i64 = plan.layouts.iter().map(|layout| layout.cost.expect("priced").millionths()).sum();
+        let of_sizes = asked.size_price.millionths() * plan.sizes.len() as i64;
+        assert_eq!(of_layouts + of_sizes, plan.cost.millionths(), "seed {seed}: the layouts cost what the plan says");
+        assert!(plan.sizes.len() as u32 <= most);
+        for (layout, &area) in plan.layouts.iter().zip(&areas) {
+            let groups: Vec<_> = layout.groups.iter().map(|placed| placed.group).collect();
+            assert!(groups.iter().all(|group| plan.sizes.iter().any(|size| std::ptr::eq(*size, group.size))));
+            let asked = Asked { freeboard: options.freeboard };
+            assert!(whole.situations(area).iter().all(|situation| layout::holds(&groups, situation, asked)));
+        }
+        let costs: Vec<_> = plans.by_sizes.iter().filter_map(|(_, cost)| *cost).collect();
+        assert!(costs.is_sorted_by(|a, b| a >= b), "seed {seed}: more sizes allowed are never dearer");
+    }
+    assert!(found > 100 && none > 100, "{found} plans, {none} without: the roofs are not varied enough");
 }

@@ -58,6 +58,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         Outcome::Infeasible(_) => Vec::new(),
     };
     let laws: Vec<_> = if args.laws { answers.iter().map(first).collect() } else { Vec::new() };
+    let plans = project.plan.map(|asked| (asked, search::plan(&project.roof, &options, asked, &areas)));
     let sized = Sized {
         roof: &project.roof,
         options: &options,
@@ -65,10 +66,12 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         answers: &answers,
         work: args.work,
         laws: &laws,
+        plans: plans.as_ref().map(|(asked, found)| report::Asked { asked: *asked, found: found.as_ref() }),
     };
     deliver(&report::size(&sized, Format::from(args.format), width(args.output.as_ref())), args.output.as_ref())?;
     let infeasible = answers.iter().any(|answer| matches!(answer.outcome, Outcome::Infeasible(_)));
-    Ok(if infeasible { ExitCode::from(1) } else { ExitCode::SUCCESS })
+    let unplanned = plans.iter().any(|(_, found)| found.as_ref().is_none_or(|plans| plans.plans.is_empty()));
+    Ok(if infeasible || unplanned { ExitCode::from(1) } else { ExitCode::SUCCESS })
 }
 
 /// Indices of the areas asked for, in the order of the file; all of them where none is named.

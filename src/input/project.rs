@@ -5,8 +5,8 @@ use std::path::Path;
 
 use crate::device::{Choice, Kind, Law};
 use crate::roof::{Case, Limits, Roof, Storm, demand};
-use crate::search::{Criterion, Options};
-use crate::units::{Dimension, Intensity, Length, Load, ReturnPeriod, System, Time};
+use crate::search::{Criterion, Options, PlanAsked};
+use crate::units::{Dimension, Intensity, Length, Load, Money, ReturnPeriod, System, Time};
 
 use super::catalog::{Catalogs, Offer};
 use super::defaults::{self, COUNT, KEEP, MIX, RANK_BY};
@@ -35,13 +35,8 @@ static LIMIT: Keys = Keys { table: "a limit", known: &["load", "depth"], unsuppo
 
 static SEARCH: Keys = Keys {
     table: "[search]",
-    known: &["rank_by", "keep", "mix", "set_height", "count", "freeboard", "laws"],
-    unsupported: &[
-        ("sizes", "the most distinct sizes on the whole roof"),
-        ("size_price", "the price of one more distinct size"),
-        ("made_to_measure", "openings of any width"),
-        ("round", "rounding of openings made to measure"),
-    ],
+    known: &["rank_by", "keep", "mix", "set_height", "count", "freeboard", "laws", "sizes", "size_price"],
+    unsupported: &[("made_to_measure", "openings of any width"), ("round", "rounding of openings made to measure")],
 };
 
 static CASE: Keys = Keys {
@@ -51,6 +46,9 @@ static CASE: Keys = Keys {
 };
 
 static COUNT_RANGE: Keys = Keys { table: "`count`", known: &["from", "to"], unsupported: &[] };
+
+/// Most distinct sizes of a plan that a file may ask for.
+const MOST_SIZES: u32 = 12;
 
 /// Most devices of one area that a file may ask for.
 const MOST_DEVICES: u32 = 10_000;
@@ -150,7 +148,8 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
     if !area::channels_flow(section, &roof) {
         return None;
     }
-    Some(Project { roof, options: search.options()?, assumed, warnings: Faults::default() })
+    let plan = search.plan?;
+    Some(Project { roof, options: search.options()?, plan, assumed, warnings: Faults::default() })
 }
 
 /// The roof with each case held under each law: as many cases as there are pairs, named after both.
@@ -231,6 +230,8 @@ pub(super) struct Search {
     keep: Option<u32>,
     mix: Option<u32>,
     freeboard: Option<Option<Length>>,
+    /// What is asked of the whole roof, where that is asked for.
+    plan: Option<Option<PlanAsked>>,
     /// Laws under each of which every case is held; none for that of the project alone.
     pub(super) laws: Option<Vec<Law>>,
     pub(super) count: Option<RangeInclusive<u32>>,
@@ -248,6 +249,7 @@ impl Search {
             keep: None,
             mix: None,
             freeboard: None,
+            plan: None,
             laws: None,
             count: None,
             set_heights: None,
@@ -265,6 +267,7 @@ impl Search {
             keep: Some(KEEP),
             mix: Some(MIX),
             freeboard: Some(None),
+            plan: Some(None),
             laws: Some(Vec::new()),
             count: Some(COUNT),
             set_heights: Some(None),
@@ -320,12 +323,31 @@ fn read_search(section: &Section<'_>, assumed: &mut Vec<Assumed>) -> Search {
         keep,
         mix,
         freeboard: optional(freeboard),
+        plan: read_plan(section, mix),
         laws: section.get("laws").map_or(Some(Vec::new()), |cell| read_laws(&cell)),
         count,
         set_heights: optional(set_heights),
         rank_by_at: at("rank_by"),
         count_at: at("count"),
     }
+}
+
+/// The most sizes on the whole roof and the price of one more, where either is given.
+fn read_plan(section: &Section<'_>, mix: Option<u32>) -> Option<Option<PlanAsked>> {
+    let (sizes, size_price) = (section.get("sizes"), section.get("size_price"));
+    let Some(cell) = sizes.or(size_price) else { return Some(None) };
+    if mix == Some(3) {
+        cell.at_fault(
+            "a plan of the whole roof is of layouts with one or two groups",
+            "with mix = 3",
+            "write mix = 2, or take `sizes` and `size_price` out",
+        );
+        return None;
+    }
+    let most = sizes.map(|cell| cell.whole(1, MOST_SIZES));
+    let price = size_price.map_or(Some(0.0), |cell| cell.number_not_negative());
+    let sizes = optional(most);
+    Some(Some(PlanAsked { sizes: sizes?, size_price: Money::nearest(price?) }))
 }
 
 /// Laws of scuppers, each once.

@@ -1,13 +1,15 @@
 //! The answers as one JSON document: SI, with the unit in each key, all digits, versioned.
 
+use std::ops::Not;
+
 use serde::Serialize;
 
 use crate::device::{Kind, Site};
 use crate::search::{Answer, Outcome, Placed, Ranked, UnderLaw};
-use crate::units::Length;
+use crate::units::{Length, Money};
 
 use super::words::Words;
-use super::{Sized, notes, ranking};
+use super::{Asked, Sized, notes, ranking};
 
 #[derive(Serialize)]
 struct Document<'a> {
@@ -15,6 +17,10 @@ struct Document<'a> {
     title: &'a str,
     storm: Storm<'a>,
     areas: Vec<Area<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    plan: Option<Plan<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    plans: Option<Vec<Plan<'a>>>,
     assumptions: Vec<String>,
     cautions: Vec<String>,
 }
@@ -35,6 +41,39 @@ struct Area<'a> {
     #[serde(skip_serializing_if = "Option::is_none")]
     why: Option<String>,
     layouts: Vec<Layout<'a>>,
+}
+
+#[derive(Serialize)]
+struct Plan<'a> {
+    outcome: &'static str,
+    cost: Option<f64>,
+    bound: Option<f64>,
+    sizes: Vec<PlanSize<'a>>,
+    layouts: Vec<PlanLayout<'a>>,
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    by_sizes: Vec<BySizes>,
+}
+
+#[derive(Serialize)]
+struct PlanSize<'a> {
+    device: &'a str,
+    width_m: Option<f64>,
+    height_m: Option<f64>,
+    diameter_m: Option<f64>,
+}
+
+#[derive(Serialize)]
+struct PlanLayout<'a> {
+    area: &'a str,
+    cost: Option<f64>,
+    groups: Vec<Group<'a>>,
+    cases: Vec<Case<'a>>,
+}
+
+#[derive(Serialize)]
+struct BySizes {
+    sizes: u32,
+    cost: Option<f64>,
 }
 
 #[derive(Serialize)]
@@ -110,6 +149,7 @@ struct Under<'a> {
 
 pub(super) fn document(sized: &Sized<'_, '_>) -> String {
     let storm = &sized.roof.storm;
+    let mut plans = sized.plans.map_or(Vec::new(), |asked| self::plans(sized, &asked));
     let document = Document {
         format: "brimline size 1",
         title: &sized.roof.title,
@@ -120,6 +160,8 @@ pub(super) fn document(sized: &Sized<'_, '_>) -> String {
             source: storm.source.as_deref(),
         },
         areas: sized.answers.iter().map(|answer| area(sized, answer)).collect(),
+        plan: plans.is_empty().not().then(|| plans.remove(0)),
+        plans: (!plans.is_empty()).then_some(plans),
         assumptions: notes::assumptions(sized),
         cautions: notes::cautions(sized),
     };
@@ -127,6 +169,48 @@ pub(super) fn document(sized: &Sized<'_, '_>) -> String {
     let mut text = serde_json::to_string_pretty(&document).unwrap_or_default();
     text.push('\n');
     text
+}
+
+/// The plan and its runners-up; one that is infeasible where there is none.
+fn plans<'a>(sized: &Sized<'a, '_>, asked: &Asked<'a, '_>) -> Vec<Plan<'a>> {
+    let Some(found) = asked.found else { return Vec::new() };
+    let amount = |cost: Money| cost.amount();
+    let by_sizes = || found.by_sizes.iter().map(|&(sizes, cost)| BySizes { sizes, cost: cost.map(amount) }).collect();
+    if found.plans.is_empty() {
+        let (sizes, layouts) = (Vec::new(), Vec::new());
+        return vec![Plan { outcome: "infeasible", cost: None, bound: None, sizes, layouts, by_sizes: by_sizes() }];
+    }
+    let plan = |(index, plan): (usize, &'a crate::search::Plan<'_>)| Plan {
+        outcome: "optimal",
+        cost: Some(plan.cost.amount()),
+        bound: Some(plan.cost.amount()),
+        sizes: plan
+            .sizes
+            .iter()
+            .map(|size| PlanSize {
+                device: &size.tag,
+                width_m: size.device.width().map(Length::m),
+                height_m: size.device.height().map(Length::m),
+                diameter_m: size.device.diameter().map(Length::m),
+            })
+            .collect(),
+        layouts: sized
+            .answers
+            .iter()
+            .zip(&plan.layouts)
+            .map(|(answer, ranked)| {
+                let layout = layout(sized, answer.area, 1, ranked);
+                PlanLayout {
+                    area: &sized.roof.areas[answer.area].name,
+                    cost: layout.cost,
+                    groups: layout.groups,
+                    cases: layout.cases,
+                }
+            })
+            .collect(),
+        by_sizes: if index == 0 { by_sizes() } else { Vec::new() },
+    };
+    found.plans.iter().enumerate().map(plan).collect()
 }
 
 fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {

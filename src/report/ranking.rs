@@ -9,7 +9,7 @@ use crate::units::{Area, Length, Load};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Sized, notes, work};
+use super::{Sized, notes, plan, work};
 
 /// The mark behind a layout that leaves the published range of its law.
 const BEYOND: &str = "\u{2020}";
@@ -29,6 +29,9 @@ pub(super) fn page(sized: &Sized<'_, '_>) -> Vec<Block> {
     }
     for answer in sized.answers {
         area(sized, answer, words, &mut blocks);
+    }
+    if let Some(asked) = &sized.plans {
+        plan::blocks(sized, asked, words, &mut blocks);
     }
     blocks.push(Block::Heading("Devices".into()));
     blocks.push(Block::List(notes::laws(sized, words)));

@@ -20,6 +20,8 @@ use super::rank::{Criterion, Order};
 #[derive(Clone, Debug)]
 pub(super) struct Candidate<'r> {
     pub(super) size: &'r Size,
+    /// Its index among the roof's sizes.
+    pub(super) index: usize,
     /// A number for its tag, the same for all its sizes.
     pub(super) tag: u32,
     /// Where it may stand, rising; never empty.
@@ -80,14 +82,14 @@ impl<'r> Problem<'r> {
         let catchment = &roof.areas[area];
         let mut tags: Vec<&str> = Vec::new();
         let (mut candidates, mut misfits) = (Vec::new(), Vec::new());
-        for size in &roof.sizes {
+        for (index, size) in roof.sizes.iter().enumerate() {
             // Sizes of one device follow one another, so its tag is nearly always the last.
             let tag = tags.iter().rposition(|&known| known == &*size.tag).unwrap_or_else(|| {
                 tags.push(&size.tag);
                 tags.len() - 1
             });
             match rules::stands(size, catchment) {
-                Ok(stand) => candidates.push(candidate(size, u32::try_from(tag).unwrap_or(u32::MAX), stand)),
+                Ok(stand) => candidates.push(candidate(size, index, u32::try_from(tag).unwrap_or(u32::MAX), stand)),
                 Err(misfit) => misfits.push((size, misfit)),
             }
         }
@@ -195,6 +197,14 @@ impl<'r> Problem<'r> {
         }
     }
 
+    /// This area, with only the sizes of these indices among the roof's.
+    pub(super) fn with_sizes(&self, keep: &[usize]) -> Problem<'r> {
+        let all: Vec<usize> = (0..self.situations.len()).collect();
+        let mut problem = self.with_cases(&all);
+        problem.candidates.retain(|candidate| keep.contains(&candidate.index));
+        problem
+    }
+
     /// This area, ranked by how near a layout comes to its limits.
     pub(super) fn by_utilisation(mut self) -> Self {
         let priced = self.order.criteria().contains(&Criterion::Cost);
@@ -204,8 +214,9 @@ impl<'r> Problem<'r> {
     }
 }
 
-fn candidate(size: &Size, tag: u32, stand: Stand) -> Candidate<'_> {
+fn candidate(size: &Size, index: usize, tag: u32, stand: Stand) -> Candidate<'_> {
     Candidate {
+        index,
         tag,
         price: size.price.map_or(0, crate::units::Money::millionths),
         width: size.clear_width().nm(),

@@ -1,0 +1,107 @@
+//! Timings of the plan of a whole roof; the proven optimum is checked against a search by exchange from many starts, which
+//! must never find less.
+
+use std::sync::Arc;
+
+use brimline::device::{Choice, Device, Following, Kind, Place, Size};
+use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Storm, demand};
+use brimline::search::{self, Criterion, Options, PlanAsked};
+use brimline::units::{Area, Length, Load, Money, System};
+
+fn main() {
+    divan::main();
+}
+
+/// Closed scuppers by width and height: prices rise with the width, and a little unevenly, as price lists do.
+fn sizes(widths: std::ops::RangeInclusive<u32>, heights: &[u32]) -> Vec<Size> {
+    let tag: Arc<str> = "RS".into();
+    let size = |width: u32, height: u32| Size {
+        tag: Arc::clone(&tag),
+        device: Device::Closed {
+            width: Length::from_nm(i64::from(width) * 25_400_000),
+            height: Length::from_nm(i64::from(height) * 25_400_000),
+        },
+        place: Place::Edge,
+        price: Some(Money::nearest(f64::from(250 + 14 * width + 9 * height + (width * 7 + height * 5) % 11))),
+        set_heights: None,
+        source: None,
+        law: None,
+        screen: 1.0,
+        following: Following::default(),
+    };
+    widths.flat_map(|width| heights.iter().map(move |&height| size(width, height))).collect()
+}
+
+fn area(index: u32, unlike: bool) -> Catchment {
+    let load = |psf: u32| Limits {
+        load: Some(Load::psf(f64::from(if unlike { psf + index % 9 } else { psf }))),
+        depth: None,
+    };
+    Catchment {
+        name: format!("area {index}"),
+        area: Area::from_m2(150.0 + f64::from(index * 137 % 1201)),
+        wall: Area::ZERO,
+        wall_share: 0.5,
+        edge: unlike.then(|| Length::from_m(6.0 + f64::from(index % 13))),
+        gap: Length::inches(if unlike { 12.0 } else { 0.0 }),
+        parapet: Parapet::default(),
+        roof_at_wall: Length::ZERO,
+        receives: Vec::new(),
+        ponding_head: None,
+        kinds: (unlike && index % 5 == 0).then(|| vec![Kind::ClosedScupper]),
+        count: 1..=30,
+        set_heights: Some(vec![Length::inches(2.0)]),
+        limits: vec![load(26), load(32)],
+        channel: None,
+    }
+}
+
+fn roof(areas: u32, sizes: Vec<Size>, unlike: bool) -> Roof {
+    let areas: Vec<_> = (0..areas).map(|index| area(index, unlike)).collect();
+    let storm = Storm {
+        intensity: "6.3 in/h".parse().expect("an intensity"),
+        duration: None,
+        return_period: None,
+        source: None,
+    };
+    let designed = Case::as_designed();
+    let cases = vec![designed.clone(), Case { name: "one blocked".into(), blocked: 1, ..designed }];
+    let demands = demand::flows(&storm, &areas).expect("no circle");
+    Roof { title: "bench".into(), system: System::Us, storm, cases, areas, sizes, choice: Choice::default(), demands }
+}
+
+fn options(keep: usize) -> Options {
+    Options { rank_by: vec![Criterion::Cost, Criterion::Load], keep, mix: 2, freeboard: None, fold: true }
+}
+
+fn plan(bencher: divan::Bencher, roof: &Roof, most: u32, keep: usize) {
+    let areas: Vec<usize> = (0..roof.areas.len()).collect();
+    let asked = PlanAsked { sizes: Some(most), size_price: Money::nearest(300.0) };
+    let options = options(keep);
+    let cost = |most| {
+        let asked = PlanAsked { sizes: Some(most), ..asked };
+        search::plan(roof, &options, asked, &areas).and_then(|plans| plans.plans.first().map(|plan| plan.cost))
+    };
+    let (known, fewer) = (cost(most).expect("a plan"), cost(most - 1));
+    assert!(fewer.is_none_or(|fewer| fewer >= known), "more sizes are never dearer");
+    bencher.bench(|| {
+        let plans = search::plan(roof, &options, asked, &areas).expect("all priced");
+        assert_eq!(plans.plans[0].cost, known);
+        plans.by_sizes.len()
+    });
+}
+
+#[divan::bench(args = [3, 4, 5], sample_count = 20)]
+fn fifty_areas_alike(bencher: divan::Bencher, most: u32) {
+    plan(bencher, &roof(50, sizes(6..=36, &[4, 6, 8, 10]), false), most, 1);
+}
+
+#[divan::bench(args = [3, 4, 5], sample_count = 20)]
+fn fifty_areas_unlike(bencher: divan::Bencher, most: u32) {
+    plan(bencher, &roof(50, sizes(6..=36, &[4, 6, 8, 10]), true), most, 1);
+}
+
+#[divan::bench(args = [3, 4], sample_count = 10)]
+fn fifty_areas_eight_plans(bencher: divan::Bencher, most: u32) {
+    plan(bencher, &roof(50, sizes(6..=36, &[4, 6, 8, 10]), true), most, 8);
+}

@@ -1,0 +1,120 @@
+//! The plan of the whole roof: its cost, its sizes, each area's layout, and what one size fewer or more would cost.
+
+use crate::search::{Outcome, Plan, Plans};
+use crate::units::Money;
+
+use super::page::{Block, Table};
+use super::words::{self, Words, list};
+use super::{Asked, Sized};
+
+pub(super) fn blocks(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, words: Words, blocks: &mut Vec<Block>) {
+    blocks.push(Block::Heading("The whole roof".into()));
+    let Some(found) = asked.found else {
+        blocks.push(Block::Text("No plan: a device that may stand on the roof has no price.".into()));
+        return;
+    };
+    let Some((first, others)) = found.plans.split_first() else {
+        blocks.push(Block::Text(none(sized, asked)));
+        blocks.extend(by_sizes(found));
+        return;
+    };
+    blocks.push(Block::Text(told(asked, found, first, words)));
+    blocks.push(Block::Table(areas(sized, first, words)));
+    blocks.extend(by_sizes(found));
+    if !others.is_empty() {
+        blocks.push(Block::Text("The next plans, each with other sizes:".into()));
+        let line = |plan: &Plan<'_>| {
+            let more = Money::from_millionths(plan.cost.millionths() - first.cost.millionths());
+            format!("{} ({} more): {}", words::money(plan.cost), words::money(more), sizes(plan, words))
+        };
+        blocks.push(Block::List(others.iter().map(line).collect()));
+    }
+}
+
+/// Why there is no plan: an area without any layout, or too few sizes for all areas together.
+fn none(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>) -> String {
+    let infeasible = sized.answers.iter().filter(|answer| matches!(answer.outcome, Outcome::Infeasible(_)));
+    let without: Vec<&str> = infeasible.map(|answer| sized.roof.areas[answer.area].name.as_str()).collect();
+    if without.is_empty() {
+        let most = asked.asked.sizes.map_or(String::new(), |sizes| sizes.to_string());
+        format!("No plan: each area has layouts, but no {most} sizes serve all of them.")
+    } else {
+        format!("No plan: {} without a layout.", list(&without))
+    }
+}
+
+fn sizes(plan: &Plan<'_>, words: Words) -> String {
+    list(&plan.sizes.iter().map(|size| words.name(size)).collect::<Vec<_>>())
+}
+
+fn told(asked: &Asked<'_, '_>, found: &Plans<'_>, plan: &Plan<'_>, words: Words) -> String {
+    let price = asked.asked.size_price;
+    let most = asked.asked.sizes.map_or("any number of sizes".into(), |sizes| format!("at most {sizes} sizes"));
+    let count = plan.sizes.len();
+    let priced = if price > Money::default() {
+        format!(
+            ", {} of it for {count} distinct sizes at {}",
+            words::money(price * u32::try_from(count).unwrap_or(0)),
+            words::money(price)
+        )
+    } else {
+        String::new()
+    };
+    let alone = found.alone.map_or(String::new(), |alone| {
+        format!(" Each area by itself, whatever its sizes, would cost {} in all.", words::money(alone))
+    });
+    format!(
+        "The cheapest plan with {most} costs {}{priced}: {}.{alone} Proven: no other set of sizes costs less.",
+        words::money(plan.cost),
+        sizes(plan, words)
+    )
+}
+
+/// Each area with its layout in the plan and what the cheapest listed for it alone would cost.
+fn areas(sized: &Sized<'_, '_>, plan: &Plan<'_>, words: Words) -> Table {
+    let roof = sized.roof;
+    let rows = || sized.answers.iter().zip(&plan.layouts);
+    let alone = |outcome: &Outcome<'_>| match outcome {
+        Outcome::Optimal(layouts) => layouts.iter().filter_map(|layout| layout.cost).min(),
+        Outcome::Infeasible(_) => None,
+    };
+    Table::of(vec![
+        ("area".into(), false, rows().map(|(answer, _)| roof.areas[answer.area].name.clone()).collect()),
+        ("layout".into(), false, rows().map(|(_, layout)| words.layout(layout)).collect()),
+        ("cost".into(), true, rows().map(|(_, layout)| layout.cost.map_or("-".into(), words::money)).collect()),
+        (
+            "alone".into(),
+            true,
+            rows().map(|(answer, _)| alone(&answer.outcome).map_or("-".into(), words::money)).collect(),
+        ),
+        (
+            "util.".into(),
+            true,
+            rows()
+                .map(|(_, layout)| layout.governing.map_or("-".into(), |g| format!("{:.3}", g.utilisation)))
+                .collect(),
+        ),
+        ("case".into(), false, rows().map(|(_, layout)| roof.cases[layout.case].name.clone()).collect()),
+    ])
+}
+
+/// Least cost by the number of sizes allowed.
+fn by_sizes(found: &Plans<'_>) -> Vec<Block> {
+    let cost = |cost: Option<Money>| cost.map_or("no plan".into(), words::money);
+    let saved = |index: usize| match (
+        index.checked_sub(1).and_then(|before| found.by_sizes[before].1),
+        found.by_sizes[index].1,
+    ) {
+        (Some(before), Some(now)) => words::money(Money::from_millionths(before.millionths() - now.millionths())),
+        _ => "-".into(),
+    };
+    let rows = || 0..found.by_sizes.len();
+    vec![
+        Block::Text("Least cost by the number of sizes allowed, the price of sizes included:".into()),
+        Block::Table(Table::of(vec![
+            ("sizes".into(), true, rows().map(|row| found.by_sizes[row].0.to_string()).collect()),
+            ("cost".into(), true, rows().map(|row| cost(found.by_sizes[row].1)).collect()),
+            ("saved by one more".into(), true, rows().map(saved).collect()),
+        ])),
+    ]
+}
