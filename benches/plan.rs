@@ -33,10 +33,8 @@ fn sizes(widths: std::ops::RangeInclusive<u32>, heights: &[u32]) -> Vec<Size> {
 }
 
 fn area(index: u32, unlike: bool) -> Catchment {
-    let load = |psf: u32| Limits {
-        load: Some(Load::psf(f64::from(if unlike { psf + index % 9 } else { psf }))),
-        depth: None,
-    };
+    let load =
+        |psf: u32| Limits { load: Some(Load::psf(f64::from(if unlike { psf + index % 9 } else { psf }))), depth: None };
     Catchment {
         name: format!("area {index}"),
         area: Area::from_m2(150.0 + f64::from(index * 137 % 1201)),

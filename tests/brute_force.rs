@@ -475,7 +475,7 @@ fn the_plan_is_that_of_trying_everything() {
                     ..whole.clone()
                 };
                 let situations = alone.situations(0);
-                let tried = every_choice(&alone, &options)
+                every_choice(&alone, &options)
                     .iter()
                     .filter_map(|groups| try_layout(&alone, &options, &situations, groups))
                     .map(|tried| {
@@ -484,8 +484,7 @@ fn the_plan_is_that_of_trying_everything() {
                         });
                         (cost.sum(), tried.groups.iter().fold(0, |mask, &(size, _)| mask | 1 << size))
                     })
-                    .collect();
-                tried
+                    .collect()
             })
             .collect();
         let most = asked.sizes.unwrap_or(u32::MAX);
@@ -508,7 +507,7 @@ fn the_plan_is_that_of_trying_everything() {
         };
         found += 1;
         let of_layouts: i64 = plan.layouts.iter().map(|layout| layout.cost.expect("priced").millionths()).sum();
-        let of_sizes = asked.size_price.millionths() * plan.sizes.len() as i64;
+        let of_sizes = (asked.size_price * u32::try_from(plan.sizes.len()).expect("few")).millionths();
         assert_eq!(of_layouts + of_sizes, plan.cost.millionths(), "seed {seed}: the layouts cost what the plan says");
         assert!(plan.sizes.len() as u32 <= most);
         for (layout, &area) in plan.layouts.iter().zip(&areas) {
