@@ -79,8 +79,10 @@ pub fn plan<'r>(roof: &'r Roof, options: &Options, asked: Asked, areas: &[usize]
         asked.sizes.map_or(TABLE_TO, |sizes| sizes + 1).min(u32::try_from(field.sizes()).unwrap_or(u32::MAX));
     let by_sizes = (1..=table_to)
         .map(|most| {
-            let best = sets::best(&costs, price, most as usize, 1);
-            (most, best.first().map(|set| Money::from_millionths(set.cost as i64)))
+            // The plan itself is the row of as many sizes as were asked for.
+            let own = asked.sizes == Some(most);
+            let best = if own { sets.first().cloned() } else { sets::best(&costs, price, most as usize, 1).pop() };
+            (most, best.map(|set| Money::from_millionths(set.cost as i64)))
         })
         .collect();
     let everyone: Vec<usize> = (0..field.sizes()).collect();

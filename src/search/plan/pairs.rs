@@ -17,10 +17,11 @@ use crate::roof::Roof;
 use super::super::problem::{Problem, Table};
 use super::sets::Costs;
 
-/// The sizes of a roof that no other outdoes.
+/// The sizes of a roof that no other outdoes, and its areas.
 pub(super) struct Field {
     /// Indices into the roof's sizes, rising.
     sizes: Vec<usize>,
+    places: Vec<Place>,
 }
 
 /// One area: where each size of the roof is among its candidates, and what one of each carries, class by class.
@@ -65,7 +66,8 @@ impl Field {
                     && (other < size || !outdoes(problems, &places, size, other))
             })
         };
-        Self { sizes: standing.iter().copied().filter(|&size| !outdone(size)).collect() }
+        let sizes = standing.iter().copied().filter(|&size| !outdone(size)).collect();
+        Self { sizes, places }
     }
 
     pub(super) fn sizes(&self) -> usize {
@@ -81,7 +83,8 @@ impl Field {
     pub(super) fn costs(&self, problems: &[Problem<'_>]) -> Costs {
         let count = self.sizes.len();
         // Area by area, then turned round: areas innermost.
-        let columns: Vec<Vec<f64>> = problems.par_iter().map(|problem| self.column(problem)).collect();
+        let columns: Vec<Vec<f64>> =
+            problems.par_iter().zip(&self.places).map(|(problem, place)| self.column(problem, place)).collect();
         Costs::new(count, problems.len(), |i, j| {
             let at = j * (j + 1) / 2 + i;
             columns.iter().map(|column| column[at]).collect()
@@ -89,29 +92,17 @@ impl Field {
     }
 
     /// The cost of every pair in one area, pairs in triangular order.
-    fn column(&self, problem: &Problem<'_>) -> Vec<f64> {
-        let mut at = std::collections::HashMap::new();
-        for (index, candidate) in problem.candidates.iter().enumerate() {
-            at.insert(candidate.index, index);
-        }
-        let place = Place {
-            candidates: Vec::new(),
-            tables: problem
-                .classes()
-                .into_iter()
-                .map(|class| (class, problem.table(&problem.allowable_levels(class), |c| Some(c.lowest()))))
-                .collect(),
-        };
-        let mine: Vec<Option<usize>> = self.sizes.iter().map(|size| at.get(size).copied()).collect();
-        let singles: Vec<f64> =
-            mine.iter().map(|&index| index.map_or(f64::INFINITY, |i| single(problem, &place, i))).collect();
+    fn column(&self, problem: &Problem<'_>, place: &Place) -> Vec<f64> {
+        let mine: Vec<Option<usize>> = self.sizes.iter().map(|&size| place.candidates[size]).collect();
+        let alone = |&index: &Option<usize>| index.map_or(f64::INFINITY, |index| single(problem, place, index));
+        let singles: Vec<f64> = mine.iter().map(alone).collect();
         let mut column = Vec::with_capacity(mine.len() * (mine.len() + 1) / 2);
         for j in 0..mine.len() {
             for i in 0..=j {
                 let alone = singles[i].min(singles[j]);
                 column.push(match (mine[i], mine[j]) {
                     _ if i == j => singles[i],
-                    (Some(first), Some(second)) if problem.mix > 1 => pair(problem, &place, first, second, alone),
+                    (Some(first), Some(second)) if problem.mix > 1 => pair(problem, place, first, second, alone),
                     _ => alone,
                 });
             }

@@ -118,14 +118,13 @@ impl Kept {
         self.sets.get(self.keep - 1).map_or(f64::INFINITY, |set| set.cost)
     }
 
-    /// Takes a set in if it ranks and needs each of its sizes: one that is as good without is another set.
-    fn offer(&mut self, costs: &Costs, price: f64, set: &[usize]) {
-        let mut sizes = set.to_vec();
-        sizes.sort_unstable();
-        let cost = costs.total(&sizes, price);
+    /// Takes a set of a known cost in if it ranks and needs each of its sizes: one that is as good without is another set.
+    fn offer(&mut self, costs: &Costs, price: f64, set: &[usize], cost: f64) {
         if !cost.is_finite() || cost > self.threshold() {
             return;
         }
+        let mut sizes = set.to_vec();
+        sizes.sort_unstable();
         let order = |other: &SizeSet| {
             other.cost.total_cmp(&cost).then(other.sizes.len().cmp(&sizes.len())).then_with(|| other.sizes.cmp(&sizes))
         };
@@ -179,7 +178,9 @@ fn first_sets(costs: &Costs, price: f64, most: usize, kept: &mut Kept) {
             }
             set.push(size);
             let ranked = rank(&set);
-            kept.offer(costs, price, &set);
+            if ranked.0 == 0 {
+                kept.offer(costs, price, &set, ranked.1);
+            }
             if best.as_ref().is_none_or(|(known, _)| less(&ranked, known)) {
                 best = Some((ranked, size));
             }
@@ -209,7 +210,9 @@ fn exchange(
                 }
                 let before = std::mem::replace(&mut set[place], size);
                 let ranked = rank(set);
-                kept.offer(costs, price, set);
+                if ranked.0 == 0 {
+                    kept.offer(costs, price, set, ranked.1);
+                }
                 if less(&ranked, &best) {
                     best = ranked;
                     better = true;
@@ -227,8 +230,8 @@ fn exchange(
 /// Numbers t, and what they make of the bound.
 struct Bound {
     t: Vec<f64>,
-    /// W(i, j), a square.
-    pairs: Vec<f64>,
+    /// Half of the greatest W(i, .) of a size with so many others, by their number.
+    halves: Vec<Vec<f64>>,
     /// Sizes in the order in which they are tried, the heaviest first.
     order: Vec<usize>,
 }
@@ -272,8 +275,22 @@ impl Bound {
         let (singles, pairs) = weights(costs, &t, price);
         let mut order: Vec<usize> = (0..costs.sizes).collect();
         order.sort_by(|&a, &b| singles[b].total_cmp(&singles[a]).then(a.cmp(&b)));
-        Self { t, pairs, order }
+        let halves =
+            (0..costs.sizes).map(|size| halves(&pairs[size * costs.sizes..(size + 1) * costs.sizes], most)).collect();
+        Self { t, halves, order }
     }
+}
+
+/// Half of the sum of the greatest weights, by how many they are: none, one, and so on.
+fn halves(weights: &[f64], most: usize) -> Vec<f64> {
+    let mut greatest = weights.to_vec();
+    greatest.sort_by(|a, b| b.total_cmp(a));
+    let mut sums = vec![0.0];
+    for weight in greatest.iter().take(most) {
+        sums.push(sums[sums.len() - 1] + weight / 2.0);
+    }
+    sums.resize(most + 1, sums[sums.len() - 1]);
+    sums
 }
 
 /// How the bound changes with t(a): one less the savings that grow with it.
@@ -346,47 +363,36 @@ impl Walk<'_> {
     /// `cost` is what the chosen cost in each area, `near` what each size costs there with the chosen beside it.
     fn extend(&mut self, from: usize, cost: &[f64], near: &[Vec<f64>]) {
         let left = self.most - self.chosen.len();
-        let sizes = self.costs.sizes;
         // What the chosen cost already is a valid t, and a better one.
         let t: Vec<f64> = self.bound.t.iter().zip(cost).map(|(t, cost)| t.min(*cost)).collect();
         let base = sum(&t) + self.price * self.chosen.len() as f64;
         let rest = &self.bound.order[from..];
         let gains: Vec<f64> =
-            rest.iter().map(|&size| saved(&t, &near[size]) - self.price + self.half(size, rest, left - 1)).collect();
+            rest.iter().map(|&size| saved(&t, &near[size]) - self.price + self.bound.halves[size][left - 1]).collect();
         let mut greatest: Vec<f64> = gains.clone();
         greatest.sort_by(|a, b| b.total_cmp(a));
         // The greatest that may join one size: of the left - 1 others.
         let others: f64 = greatest.iter().take(left - 1).map(|gain| gain.max(0.0)).sum();
-        let order: Vec<usize> = rest.to_vec();
-        for (place, &size) in order.iter().enumerate() {
+        let rest = rest.to_vec();
+        for (place, &size) in rest.iter().enumerate() {
             if base - gains[place] - others > self.kept.threshold() {
                 continue;
             }
             self.chosen.push(size);
-            self.kept.offer(self.costs, self.price, &self.chosen);
+            let total = sum_of(cost.len(), |area| cost[area].min(near[size][area]));
+            let total = total + self.price * self.chosen.len() as f64;
+            self.kept.offer(self.costs, self.price, &self.chosen, total);
             if left > 1 {
                 let mut cost = cost.to_vec();
                 lower(&mut cost, &near[size]);
                 let mut nearer = near.to_vec();
-                for &other in &order[place + 1..] {
+                for &other in &rest[place + 1..] {
                     lower(&mut nearer[other], self.costs.of(size, other));
                 }
                 self.extend(from + place + 1, &cost, &nearer);
             }
             self.chosen.pop();
         }
-        debug_assert!(sizes >= order.len());
-    }
-
-    /// Half of the greatest savings of a size with so many of the rest.
-    fn half(&self, size: usize, rest: &[usize], count: usize) -> f64 {
-        if count == 0 {
-            return 0.0;
-        }
-        let mut weights: Vec<f64> =
-            rest.iter().map(|&other| self.bound.pairs[size * self.costs.sizes + other]).collect();
-        weights.sort_by(|a, b| b.total_cmp(a));
-        weights.iter().take(count).sum::<f64>() / 2.0
     }
 }
 
