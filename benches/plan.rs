@@ -46,7 +46,7 @@ fn area(index: u32, unlike: bool) -> Catchment {
         roof_at_wall: Length::ZERO,
         receives: Vec::new(),
         ponding_head: None,
-        kinds: (unlike && index % 5 == 0).then(|| vec![Kind::ClosedScupper]),
+        kinds: (unlike && index.is_multiple_of(5)).then(|| vec![Kind::ClosedScupper]),
         count: 1..=30,
         set_heights: Some(vec![Length::inches(2.0)]),
         limits: vec![load(26), load(32)],

@@ -8,10 +8,12 @@ use clap::{Parser, Subcommand, ValueEnum};
 
 use crate::input::Faults;
 use crate::report::Format;
+use crate::units::System;
 
 mod catalog;
 mod rate;
 mod size;
+mod start;
 
 /// Exit code for input that cannot be used.
 const UNUSABLE: u8 = 2;
@@ -35,6 +37,7 @@ enum Command {
     Size(size::Args),
     Rate(Box<rate::Args>),
     Catalog(catalog::Args),
+    Start(start::Args),
 }
 
 /// The forms of a result.
@@ -48,6 +51,24 @@ enum Form {
     Csv,
     /// Markdown.
     Md,
+}
+
+/// The units that a command is asked to speak.
+#[derive(Clone, Copy, Debug, ValueEnum)]
+enum Units {
+    /// Inches, feet, gallons a minute, pounds a square foot.
+    Us,
+    /// Millimetres, metres, litres a second, kilopascals.
+    Si,
+}
+
+impl From<Units> for System {
+    fn from(units: Units) -> Self {
+        match units {
+            Units::Us => Self::Us,
+            Units::Si => Self::Si,
+        }
+    }
 }
 
 impl From<Form> for Format {
@@ -100,6 +121,7 @@ pub fn run() -> ExitCode {
         Command::Size(args) => size::run(args),
         Command::Rate(args) => rate::run(args),
         Command::Catalog(args) => catalog::run(args),
+        Command::Start(args) => start::run(args),
     };
     match done {
         Ok(code) => code,

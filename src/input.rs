@@ -16,9 +16,12 @@ mod grid;
 mod project;
 mod rating;
 mod section;
+mod shipped;
+mod start;
 
 pub use defaults::{DEFAULTS, Default};
 pub use fault::{Fault, Faults, Place, Severity, Source, Span};
+pub use start::start;
 
 /// A project as its files give it.
 #[derive(Clone, Debug)]

@@ -239,3 +239,56 @@ fn a_result_goes_to_a_file_when_one_is_named() {
     let columns = |row: &str| row.matches('|').count();
     assert!(rows.len() > 3 && rows.iter().all(|row| columns(row) == columns(rows[0])), "{text}");
 }
+
+#[test]
+fn start_writes_a_project_that_runs_and_overwrites_nothing() {
+    for units in ["us", "si"] {
+        let folder = Path::new(env!("CARGO_MANIFEST_DIR")).join("target").join(format!("start-{units}"));
+        let _ = std::fs::remove_dir_all(&folder);
+        let project = folder.join("roof.toml");
+        let path = project.to_str().expect("UTF-8");
+        let output = brimline(&["start", path, "--units", units]);
+        assert_eq!(output.status.code(), Some(0), "{}", String::from_utf8_lossy(&output.stderr));
+        assert!(stdout(&output).lines().count() > 4, "{}", stdout(&output));
+        let output = brimline(&["size", path]);
+        assert_eq!(output.status.code(), Some(0), "{}", String::from_utf8_lossy(&output.stderr));
+        assert!(output.stderr.is_empty());
+        // A second start beside it leaves the catalogs as they are; one over it changes nothing.
+        assert_eq!(
+            brimline(&["start", folder.join("other.toml").to_str().expect("UTF-8"), "--units", units]).status.code(),
+            Some(0)
+        );
+        std::fs::write(&project, "mine").expect("writable");
+        let output = brimline(&["start", path, "--units", units]);
+        assert_eq!(output.status.code(), Some(2));
+        assert!(String::from_utf8_lossy(&output.stderr).contains("is there already"));
+        assert_eq!(std::fs::read_to_string(&project).expect("readable"), "mine");
+    }
+}
+
+#[test]
+fn the_catalogs_of_the_program_need_no_file() {
+    let folder = Path::new(env!("CARGO_MANIFEST_DIR")).join("target").join("builtin");
+    std::fs::create_dir_all(&folder).expect("a folder can be made");
+    let project = |catalog: &str| {
+        let text = format!(
+            "units = \"us\"\ncatalogs = [\"{catalog}\"]\n[storm]\nintensity = \"4 in/h\"\n[limit]\nload = \"30 psf\"\n\
+             [search]\nrank_by = [\"count\"]\nset_height = [\"1 in\", \"4 in\"]\n[[area]]\nname = \"roof\"\narea = \"3000 ft2\"\n"
+        );
+        let path = folder.join("roof.toml");
+        std::fs::write(&path, text).expect("writable");
+        brimline(&["size", path.to_str().expect("UTF-8")])
+    };
+    for entry in std::fs::read_dir(Path::new(env!("CARGO_MANIFEST_DIR")).join("catalogs")).expect("catalogs") {
+        let path = entry.expect("an entry").path();
+        if path.extension().is_some_and(|extension| extension == "toml") {
+            let name = path.file_stem().expect("a name").to_string_lossy().into_owned();
+            let output = project(&format!("builtin:{name}"));
+            assert_eq!(output.status.code(), Some(0), "{name}: {}", String::from_utf8_lossy(&output.stderr));
+        }
+    }
+    let output = project("builtin:through-wall-scupers");
+    assert_eq!(output.status.code(), Some(2));
+    let message = String::from_utf8_lossy(&output.stderr).into_owned();
+    assert!(message.contains("did you mean `builtin:through-wall-scuppers`?"), "{message}");
+}

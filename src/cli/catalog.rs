@@ -5,9 +5,8 @@ use std::process::ExitCode;
 
 use crate::input;
 use crate::report::{self, Format};
-use crate::units::System;
 
-use super::{Failure, Form, deliver, faults, width};
+use super::{Failure, Form, Units, deliver, faults, width};
 
 /// List what is in a catalog: devices, sizes, ranges, prices and sources; or every fault in it.
 #[derive(Debug, clap::Args)]
@@ -17,9 +16,9 @@ pub(super) struct Args {
     /// Form of the result.
     #[arg(long, value_enum, default_value_t = Form::Table)]
     format: Form,
-    /// Show millimetres in place of inches.
-    #[arg(long)]
-    si: bool,
+    /// Units of the result.
+    #[arg(long, value_enum, default_value_t = Units::Us)]
+    units: Units,
     /// Write the result to a file instead of stdout.
     #[arg(long, value_name = "FILE")]
     output: Option<PathBuf>,
@@ -27,11 +26,10 @@ pub(super) struct Args {
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let catalog = input::read_catalog(&args.catalog).map_err(|found| faults(&found))?;
-    let system = if args.si { System::Si } else { System::Us };
     let text = report::contents(
         &catalog.sizes,
         &catalog.title,
-        system,
+        args.units.into(),
         Format::from(args.format),
         width(args.output.as_ref()),
     );

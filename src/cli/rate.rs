@@ -6,9 +6,9 @@ use std::process::ExitCode;
 use crate::device::{Choice, Device, Following, Kind, Law, Place, RingDrain, Site, Size};
 use crate::input;
 use crate::report::{self, Format, Rated};
-use crate::units::{Area, Flow, Length, System};
+use crate::units::{Area, Flow, Length};
 
-use super::{Failure, Form, deliver, faults, width};
+use super::{Failure, Form, Units, deliver, faults, width};
 
 /// Show what a device of any size passes under any flow law: a table of heads and flows, or the head for a flow.
 ///
@@ -67,14 +67,6 @@ pub(super) struct Args {
     output: Option<PathBuf>,
 }
 
-#[derive(Clone, Copy, Debug, clap::ValueEnum)]
-enum Units {
-    /// Inches and gallons a minute.
-    Us,
-    /// Millimetres and litres a second.
-    Si,
-}
-
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let size = match (&args.device, &args.catalog, &args.kind) {
         (Some(tag), Some(catalog), _) => of_catalog(args, tag, catalog)?,
@@ -101,10 +93,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         site,
         laws,
         all,
-        system: match args.units {
-            Units::Us => System::Us,
-            Units::Si => System::Si,
-        },
+        system: args.units.into(),
     };
     let format = Format::from(args.format);
     deliver(&report::rate(&rated, format, width(args.output.as_ref())), args.output.as_ref())?;

@@ -9,11 +9,12 @@ use toml::Spanned;
 use toml::de::DeTable;
 
 use super::fault::{Fault, Log, Source, Span};
-use super::section::Cell;
+use super::section::{Cell, any_of, near};
+use super::shipped;
 
 /// A file named in another, found from where that one lies.
 pub(super) fn beside(holder: &Path, named: &str) -> PathBuf {
-    holder.parent().unwrap_or(Path::new("")).join(named)
+    shipped::path_of(named).unwrap_or_else(|| holder.parent().unwrap_or(Path::new("")).join(named))
 }
 
 /// Reads a file as text. `named_in` is the value that names it, none for a file named on the command line.
@@ -26,6 +27,21 @@ pub(super) fn read(path: &Path, as_written: &str, named_in: Option<&Cell<'_>>, l
         });
         None
     };
+    if shipped::is_shipped(path) {
+        let Some(text) = shipped::text(path) else {
+            let names = shipped::names();
+            let names: Vec<&str> = names.iter().map(String::as_str).collect();
+            let did_you = near(as_written, names.iter().copied())
+                .map_or(String::new(), |near| format!("did you mean `{near}`? "));
+            return refuse(
+                format!("there is no catalog `{as_written}`"),
+                &format!("{did_you}{} would pass", any_of(&names)),
+            );
+        };
+        let source = Arc::new(Source { path: as_written.to_string(), text: text.to_string() });
+        log.open(&source);
+        return Some(source);
+    }
     if path.is_dir() {
         return refuse(format!("`{as_written}` is a directory, not a file"), "name a file");
     }
