@@ -1,6 +1,6 @@
 //! Time of one flow and of one level for each kind of device under each law; the head is checked to lead back to its flow.
 
-use brimline::device::{Device, Following, Head, Kind, Law, Place, Rating, RingDrain, Site, Size};
+use brimline::device::{Device, Head, Kind, Law, Rating, RingDrain, Site, Size};
 use brimline::roof::layout::{self, Group};
 use brimline::roof::{Case, Limits, Situation};
 use brimline::units::{Flow, Length, Load};
@@ -42,17 +42,7 @@ fn size(name: &str) -> Size {
             Device::Rated { width: None, rating: Arc::new(Rating::new(&rows).expect("rises")) }
         }
     };
-    Size {
-        tag: "T".into(),
-        device,
-        place: Place::Edge,
-        price: None,
-        set_heights: None,
-        source: None,
-        law: Some(law),
-        screen: 1.0,
-        following: Following::default(),
-    }
+    Size { law: Some(law), ..Size::of(device) }
 }
 
 fn site() -> Site {

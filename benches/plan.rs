@@ -3,7 +3,7 @@
 
 use std::sync::Arc;
 
-use brimline::device::{Choice, Device, Following, Kind, Place, Size};
+use brimline::device::{Choice, Device, Kind, Size};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Storm, demand};
 use brimline::search::{self, Criterion, Options, PlanAsked};
 use brimline::units::{Area, Length, Load, Money, System};
@@ -17,17 +17,11 @@ fn sizes(widths: std::ops::RangeInclusive<u32>, heights: &[u32]) -> Vec<Size> {
     let tag: Arc<str> = "RS".into();
     let size = |width: u32, height: u32| Size {
         tag: Arc::clone(&tag),
-        device: Device::Closed {
+        price: Some(Money::nearest(f64::from(250 + 14 * width + 9 * height + (width * 7 + height * 5) % 11))),
+        ..Size::of(Device::Closed {
             width: Length::from_nm(i64::from(width) * 25_400_000),
             height: Length::from_nm(i64::from(height) * 25_400_000),
-        },
-        place: Place::Edge,
-        price: Some(Money::nearest(f64::from(250 + 14 * width + 9 * height + (width * 7 + height * 5) % 11))),
-        set_heights: None,
-        source: None,
-        law: None,
-        screen: 1.0,
-        following: Following::default(),
+        })
     };
     widths.flat_map(|width| heights.iter().map(move |&height| size(width, height))).collect()
 }

@@ -2,7 +2,7 @@
 
 use std::sync::Arc;
 
-use brimline::device::{Choice, Device, Following, Place, Size};
+use brimline::device::{Choice, Device, Size};
 use brimline::roof::layout::{self, Group};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm, demand, working_capacity};
 use brimline::search::{self, Answer, Criterion, Options, Outcome};
@@ -17,17 +17,11 @@ fn sizes() -> Vec<Size> {
     let tag: Arc<str> = "RS".into();
     let size = |width: u32, height: u32| Size {
         tag: Arc::clone(&tag),
-        device: Device::Closed {
+        price: Some(Money::nearest(250.0 + 14.0 * f64::from(width) + 9.0 * f64::from(height))),
+        ..Size::of(Device::Closed {
             width: Length::from_nm(i64::from(width) * 25_400_000),
             height: Length::from_nm(i64::from(height) * 25_400_000),
-        },
-        place: Place::Edge,
-        price: Some(Money::nearest(250.0 + 14.0 * f64::from(width) + 9.0 * f64::from(height))),
-        set_heights: None,
-        source: None,
-        law: None,
-        screen: 1.0,
-        following: Following::default(),
+        })
     };
     (6..=36).flat_map(|width| [4, 6, 8, 10].map(|height| size(width, height))).collect()
 }

@@ -144,6 +144,22 @@ pub struct Size {
 }
 
 impl Size {
+    /// A device by itself: without tag or price, at any height, where its kind stands.
+    pub fn of(device: Device) -> Self {
+        let place = if device.kind().at_edge() == Some(false) { Place::Interior } else { Place::Edge };
+        Self {
+            tag: "".into(),
+            device,
+            place,
+            price: None,
+            set_heights: None,
+            source: None,
+            law: None,
+            screen: 1.0,
+            following: Following::default(),
+        }
+    }
+
     /// Width that it takes up, zero where it has none.
     pub fn clear_width(&self) -> Length {
         self.device.width().unwrap_or(Length::ZERO)
@@ -169,18 +185,7 @@ mod tests {
     use approx::assert_relative_eq;
 
     fn closed(width: f64, height: f64) -> Size {
-        let device = Device::Closed { width: Length::inches(width), height: Length::inches(height) };
-        Size {
-            tag: "S".into(),
-            device,
-            place: Place::Edge,
-            price: None,
-            set_heights: None,
-            source: None,
-            law: None,
-            screen: 1.0,
-            following: Following::default(),
-        }
+        Size::of(Device::Closed { width: Length::inches(width), height: Length::inches(height) })
     }
 
     fn curve(size: &Size, loss: f64) -> Curve {

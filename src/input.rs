@@ -16,6 +16,7 @@ mod grid;
 mod project;
 mod rating;
 mod section;
+mod setting;
 mod shipped;
 mod start;
 

@@ -8,7 +8,7 @@ use std::cmp::Ordering;
 use std::collections::HashSet;
 use std::sync::Arc;
 
-use brimline::device::{Choice, Device, Following, Kind, Law, Place, Rating, Size};
+use brimline::device::{Choice, Device, Kind, Law, Place, Rating, Size};
 use brimline::roof::channel::Channel;
 use brimline::roof::layout::{self, Asked, Group, Liftable};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm};
@@ -76,14 +76,10 @@ fn sizes(dice: &mut Dice) -> Vec<Size> {
             });
             Size {
                 tag: Arc::clone(&tags[tag]),
-                device,
                 place,
                 price: Some(Money::nearest(100.0 * (1 + dice.upto(5)) as f64)),
                 set_heights: own,
-                source: None,
-                law: None,
-                screen: 1.0,
-                following: Following::default(),
+                ..Size::of(device)
             }
         })
         .collect();

@@ -2,8 +2,7 @@
 
 use approx::assert_relative_eq;
 use brimline::device::{
-    Choice, Curve, Device, Following, Head, Interpolation, Kind, Law, Leader, Place, Rating, Regime, RingDrain, Site,
-    Size,
+    Choice, Curve, Device, Following, Head, Interpolation, Kind, Law, Leader, Rating, Regime, RingDrain, Site, Size,
 };
 use brimline::hydraulics::leader::Fill;
 use brimline::hydraulics::practice::Transition;
@@ -16,23 +15,9 @@ fn inches(value: f64) -> Length {
     Length::inches(value)
 }
 
-fn size(device: Device) -> Size {
-    Size {
-        tag: "T".into(),
-        device,
-        place: Place::Edge,
-        price: None,
-        set_heights: None,
-        source: None,
-        law: None,
-        screen: 1.0,
-        following: Following::default(),
-    }
-}
-
 fn curve(device: Device, law: Law, thickness: f64) -> Curve {
     let site = Site { thickness: Some(inches(thickness)), ..Site::default() };
-    let size = Size { law: Some(law), ..size(device) };
+    let size = Size { law: Some(law), ..Size::of(device) };
     size.curve(&site, inches(2.0), Length::ZERO).0
 }
 
@@ -82,7 +67,7 @@ impl Draw {
         let leader =
             self.leader.map(|diameter| Leader { diameter: inches(diameter), fill: Fill::OneThird, length: None });
         let following = Following { leader, conductor_head: None };
-        let size = Size { law: Some(self.pair.1), screen: self.screen, following, ..size(device) };
+        let size = Size { law: Some(self.pair.1), screen: self.screen, following, ..Size::of(device) };
         let choice = Choice { transition: self.transition, ..Choice::default() };
         let site = Site { choice, thickness: Some(inches(self.thickness)), floor: Length::ZERO };
         size.curve(&site, inches(self.sill), inches(self.loss)).0

@@ -2,7 +2,7 @@
 //! and bisection, and the laws that hold whatever the numbers.
 
 use approx::assert_abs_diff_eq;
-use brimline::device::{Device, Following, Place, Rating, Site, Size};
+use brimline::device::{Device, Place, Rating, Site, Size};
 use brimline::roof::layout::{self, Asked, Group, Liftable};
 use brimline::roof::{Case, Limits, Situation};
 use brimline::search::{self, Criterion, Outcome};
@@ -17,17 +17,7 @@ fn inches(value: f64) -> Length {
 }
 
 fn size(device: Device, place: Place) -> Size {
-    Size {
-        tag: "T".into(),
-        device,
-        place,
-        price: None,
-        set_heights: None,
-        source: None,
-        law: None,
-        screen: 1.0,
-        following: Following::default(),
-    }
+    Size { place, ..Size::of(device) }
 }
 
 /// One whole roof by hand. Area 5000 ft2 and half of 800 ft2 of wall, 4 in/h:

@@ -3,7 +3,7 @@
 use std::path::PathBuf;
 use std::process::ExitCode;
 
-use crate::device::{Choice, Device, Following, Kind, Law, Place, RingDrain, Site, Size};
+use crate::device::{Choice, Device, Kind, Law, RingDrain, Site, Size};
 use crate::input;
 use crate::report::{self, Format, Rated};
 use crate::units::{Area, Flow, Length};
@@ -155,18 +155,7 @@ fn of_kind(args: &Args, name: &str) -> Result<Size, Failure> {
             free_area: quantity("--free-area", args.free_area.as_ref(), Area::m2)?,
         }),
     };
-    let place = if kind.at_edge() == Some(false) { Place::Interior } else { Place::Edge };
-    Ok(Size {
-        tag: "".into(),
-        device,
-        place,
-        price: None,
-        set_heights: None,
-        source: None,
-        law: None,
-        screen: 1.0,
-        following: Following::default(),
-    })
+    Ok(Size::of(device))
 }
 
 /// The one size of a catalog's device that the given dimensions leave.

@@ -14,8 +14,8 @@ use super::defaults::{COUNT, SHARE, WALL_SHARE, default};
 use super::fault::{Fault, Span};
 use super::flow;
 use super::grid::{self, Least};
-use super::project::{Setting, is_named, limits_of, read_count, unique};
 use super::section::{Cell, Keys, Section, any_of, near, optional};
+use super::setting::{Setting, is_named, limits_of, read_count, unique};
 
 static AREA: Keys = Keys {
     table: "an [[area]]",

@@ -1,18 +1,18 @@
 //! The project file: one roof.
 
-use std::ops::RangeInclusive;
 use std::path::Path;
 
 use crate::device::{Choice, Kind, Law};
 use crate::roof::{Case, Limits, Roof, Storm, demand};
 use crate::search::{Criterion, Options, PlanAsked};
-use crate::units::{Dimension, Intensity, Length, Load, Money, ReturnPeriod, System, Time};
+use crate::units::{Dimension, Intensity, Length, Money, ReturnPeriod, System, Time};
 
 use super::catalog::{Catalogs, Offer};
 use super::defaults::{self, COUNT, KEEP, MIX, RANK_BY};
 use super::fault::{Fault, Faults, Log, Span};
 use super::grid::{self, Least};
 use super::section::{Cell, Keys, Reader, Section, optional};
+use super::setting::{Cases, GivenCase, MOST_DEVICES, Search, Setting, is_named, limits_of, read_count, unique};
 use super::{Assumed, Project, area, file, flow};
 
 static PROJECT: Keys = Keys {
@@ -31,8 +31,6 @@ static STORM: Keys = Keys {
     unsupported: &[("table", "a rainfall table to look the intensity up in"), ("storms", "a sweep of several storms")],
 };
 
-static LIMIT: Keys = Keys { table: "a limit", known: &["load", "depth"], unsupported: &[] };
-
 static SEARCH: Keys = Keys {
     table: "[search]",
     known: &["rank_by", "keep", "mix", "set_height", "count", "freeboard", "laws", "sizes", "size_price"],
@@ -45,39 +43,8 @@ static CASE: Keys = Keys {
     unsupported: &[],
 };
 
-static COUNT_RANGE: Keys = Keys { table: "`count`", known: &["from", "to"], unsupported: &[] };
-
 /// Most distinct sizes of a plan that a file may ask for.
 const MOST_SIZES: u32 = 12;
-
-/// Most devices of one area that a file may ask for.
-const MOST_DEVICES: u32 = 10_000;
-
-/// A case as the file gives it, with where its name and its blocking stand.
-pub(super) struct GivenCase {
-    pub(super) case: Case,
-    pub(super) limits: Limits,
-    pub(super) blocked_at: Option<Span>,
-}
-
-/// The cases that can be read, and the names of all.
-pub(super) struct Cases {
-    pub(super) given: Vec<GivenCase>,
-    pub(super) names: Vec<String>,
-    /// Whether the name of every case is known, and whether every case can be read.
-    pub(super) names_complete: bool,
-    pub(super) complete: bool,
-}
-
-/// What of the project an area is read against; none where it is at fault, which is told where it stands.
-pub(super) struct Setting<'s> {
-    pub(super) cases: &'s Cases,
-    pub(super) limits: Option<Limits>,
-    pub(super) search: &'s Search,
-    /// The flow laws chosen; none where they are at fault.
-    pub(super) choice: Option<Choice>,
-    pub(super) catalogs: &'s Catalogs,
-}
 
 pub(super) fn read(path: &Path) -> Result<Project, Faults> {
     let log = Log::default();
@@ -207,38 +174,6 @@ fn read_storm(section: &Section<'_>) -> Option<Storm> {
         return_period: optional(return_period)?,
         source: optional(source)?,
     })
-}
-
-/// The limits of a table under a key that is a limit.
-pub(super) fn limits_of(cell: &Cell<'_>) -> Option<Limits> {
-    read_limits(&cell.section(&LIMIT)?)
-}
-
-fn read_limits(section: &Section<'_>) -> Option<Limits> {
-    let load = section.get("load").map(|cell| cell.positive(Dimension::Load, Load::pa));
-    let depth = section.get("depth").map(|cell| cell.positive_length());
-    if load.is_none() && depth.is_none() {
-        section.missing("a limit is empty", "give load = \"30 psf\", depth = \"5.5 in\", or both");
-        return None;
-    }
-    Some(Limits { load: optional(load)?, depth: optional(depth)? })
-}
-
-/// What is asked of the search; none where a value is at fault.
-pub(super) struct Search {
-    rank_by: Option<Vec<Criterion>>,
-    keep: Option<u32>,
-    mix: Option<u32>,
-    freeboard: Option<Option<Length>>,
-    /// What is asked of the whole roof, where that is asked for.
-    plan: Option<Option<PlanAsked>>,
-    /// Laws under each of which every case is held; none for that of the project alone.
-    pub(super) laws: Option<Vec<Law>>,
-    pub(super) count: Option<RangeInclusive<u32>>,
-    /// An inner none where no set heights are given for the roof.
-    pub(super) set_heights: Option<Option<Vec<Length>>>,
-    rank_by_at: Option<Span>,
-    pub(super) count_at: Option<Span>,
 }
 
 impl Search {
@@ -394,29 +329,6 @@ fn read_rank_by(cell: &Cell<'_>) -> Option<Vec<Criterion>> {
     sound.then_some(criteria)
 }
 
-/// A count: one whole number, or a range with both its ends.
-pub(super) fn read_count(cell: &Cell<'_>) -> Option<RangeInclusive<u32>> {
-    if !cell.is_table() {
-        return cell.whole(1, MOST_DEVICES).map(|exactly| exactly..=exactly);
-    }
-    let range = cell.section(&COUNT_RANGE)?;
-    let end = |key| {
-        range.need(key, "write both ends: count = { from = 2, to = 8 }").and_then(|cell| cell.whole(1, MOST_DEVICES))
-    };
-    let (from, to) = (end("from"), end("to"));
-    let (from, to) = (from?, to?);
-    if from > to {
-        let at = range.get("from").or(range.get("to")).unwrap_or(*cell);
-        at.at_fault(
-            format!("`count` runs from {from} to {to}"),
-            "the least is above the greatest",
-            "give the lesser number as `from`",
-        );
-        return None;
-    }
-    Some(from..=to)
-}
-
 fn read_cases(section: &Section<'_>, assumed: &mut Vec<Assumed>) -> Cases {
     if section.get("case").is_none() {
         assume(assumed, "case");
@@ -457,26 +369,6 @@ fn read_case(section: &Section<'_>, names: &mut Vec<(String, Span)>) -> Option<G
         limits: limits?,
         blocked_at: section.get("blocked").map(|cell| cell.span()),
     })
-}
-
-/// Whether a table of a list has a name, be it one that another has too.
-pub(super) fn is_named(table: Option<&Section<'_>>) -> bool {
-    table.and_then(|table| table.get("name")).and_then(|cell| cell.text()).is_some()
-}
-
-/// A name that nothing else of its sort has.
-pub(super) fn unique(cell: &Cell<'_>, names: &mut Vec<(String, Span)>, sort: &str) -> Option<String> {
-    let name = cell.text()?;
-    if let Some((_, first)) = names.iter().find(|(known, _)| known == name) {
-        let fault = Fault::error(format!("two {sort}s have the name `{name}`"))
-            .at(cell.reader.source, cell.span(), "again here")
-            .at(cell.reader.source, first.clone(), "first here")
-            .help(format!("give every {sort} a name of its own"));
-        cell.reader.log.put(fault);
-        return None;
-    }
-    names.push((name.to_string(), cell.span()));
-    Some(name.to_string())
 }
 
 /// Refuses to rank by cost where a device that may stand somewhere has no price. Of each area, the kinds that may stand in

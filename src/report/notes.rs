@@ -6,8 +6,7 @@ use crate::search::{Outcome, Ranked};
 use crate::units::{Area, Length, System};
 
 use super::Sized;
-use super::ranking::ranked_by;
-use super::words::{self, Words, list, trimmed};
+use super::words::{self, Words, list, ranked_by, trimmed};
 
 /// Excess of straight lines over logarithmic ones, as a part of the demand, from which it is told.
 pub(super) const CHORD_TOLD: f64 = 0.02;

@@ -4,7 +4,7 @@ use crate::device::{Kind, Law};
 use crate::hydraulics::limits::Range;
 use crate::roof::{Case, LimitKind, Limits, Roof, demand};
 use crate::rules::Misfit;
-use crate::search::{Answer, Criterion, Outcome, Ranked, UnderLaw, Why};
+use crate::search::{Answer, Outcome, Ranked, UnderLaw, Why};
 use crate::units::{Area, Length, Load};
 
 use super::page::{Block, Table};
@@ -506,9 +506,4 @@ fn misfit_in_words(size: &str, misfit: &Misfit, words: Words) -> String {
             format!("{size} is {} wide, the edge {}", words.size(*width), words.size(*edge))
         }
     }
-}
-
-/// The criteria of a ranking, in words.
-pub(super) fn ranked_by(criteria: &[Criterion]) -> String {
-    criteria.iter().map(|criterion| criterion.name()).collect::<Vec<_>>().join(", then ")
 }

@@ -3,7 +3,7 @@
 use crate::device::{Device, Size};
 use crate::roof::layout::Group;
 use crate::roof::{LimitKind, Limits};
-use crate::search::{Placed, Ranked};
+use crate::search::{Criterion, Placed, Ranked};
 use crate::units::{Area, Flow, Intensity, Length, Load, Money, System, Time};
 
 /// A number with its decimals, thousands parted by commas.
@@ -252,6 +252,11 @@ pub(super) fn duration(time: Time) -> String {
 pub(super) fn money(cost: Money) -> String {
     let amount = cost.amount();
     grouped(amount, if (amount - amount.round()).abs() < 0.005 { 0 } else { 2 })
+}
+
+/// The criteria of a ranking, in words.
+pub(super) fn ranked_by(criteria: &[Criterion]) -> String {
+    criteria.iter().map(|criterion| criterion.name()).collect::<Vec<_>>().join(", then ")
 }
 
 /// `a, b and c`.

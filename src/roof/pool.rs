@@ -153,7 +153,7 @@ pub(super) const GREATEST_HEAD: Length = Length::from_m(1e4);
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::device::{Device, Following, Place, Rating, Site, Size};
+    use crate::device::{Device, Rating, Site, Size};
     use crate::units::METRES_PER_INCH;
     use approx::assert_relative_eq;
     use std::sync::Arc;
@@ -163,17 +163,7 @@ mod tests {
     }
 
     fn outlet(device: Device, sill: f64, count: u32) -> Outlet {
-        let size = Size {
-            tag: "T".into(),
-            device,
-            place: Place::Edge,
-            price: None,
-            set_heights: None,
-            source: None,
-            law: None,
-            screen: 1.0,
-            following: Following::default(),
-        };
+        let size = Size::of(device);
         let sill = Length::inches(sill);
         Outlet { curve: size.curve(&Site::default(), sill, Length::ZERO).0, sill, count }
     }
