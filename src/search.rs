@@ -15,12 +15,14 @@ use crate::rules::Misfit;
 use crate::units::{Length, Money};
 
 mod best;
+mod cure;
 mod dive;
 mod infeasible;
 mod plan;
 mod problem;
 mod rank;
 
+pub use cure::{Cure, Cures, Relaxation, cures};
 pub use plan::{Asked as PlanAsked, Plan, Plans, plan};
 pub use rank::Criterion;
 

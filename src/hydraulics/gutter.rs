@@ -94,41 +94,49 @@ impl Gutter {
     /// As [`Gutter::dead_end_depth`].
     pub fn profile(&self, flow: Flow, outlet: Outlet) -> Result<Vec<Station>, FlowError> {
         let mut stations = Vec::with_capacity(STEPS as usize + 1);
-        self.surface(flow, outlet, |root, depth| {
-            let distance = Length::from_m((self.length - root * root).max(0.0));
+        self.surface(flow, outlet, |from_outlet, depth| {
+            let distance = Length::from_m((self.length - from_outlet).max(0.0));
             stations.push(Station { distance, depth: Length::from_m(depth) });
         })?;
         stations.reverse();
         Ok(stations)
     }
 
-    /// Marches up from the outlet over the root of the distance from it, and gives the depth at the dead end.
-    fn surface(&self, flow: Flow, outlet: Outlet, visit: impl FnMut(f64, f64)) -> Result<f64, FlowError> {
+    /// Marches up from the outlet, visits each distance from it with its depth, and gives the depth at the dead end.
+    ///
+    /// From critical depth the surface rises as the root of the distance, so it is marched over the root s. Above a pond that
+    /// stands a little higher the surface is, near the outlet, a stretch of the same curve further along: s starts where that
+    /// curve has the pond's depth, and no step ever divides by the nought of critical flow.
+    fn surface(&self, flow: Flow, outlet: Outlet, mut visit: impl FnMut(f64, f64)) -> Result<f64, FlowError> {
         let flow = zero_or_more("flow", flow.m3_per_s())?;
         let critical = rectangle_depth(flow / self.width);
         let pond = match outlet {
             Outlet::Free => 0.0,
             Outlet::Pond(depth) => not_negative("pond depth", depth)?,
         };
-        let far_end = self.length.sqrt();
         if flow == 0.0 {
             // A level pond, which a sloping floor may rise out of.
-            return solve::march(0.0, far_end, STEPS, |_, _| Ok(0.0), with_level(pond, self.slope, visit))
-                .map(|_| (pond - self.slope * self.length).max(0.0));
+            let level = |from_outlet: f64| (pond - self.slope * from_outlet).max(0.0);
+            (0..=STEPS).for_each(|step| {
+                let from_outlet = self.length * f64::from(step) / f64::from(STEPS);
+                visit(from_outlet, level(from_outlet));
+            });
+            return Ok(level(self.length));
         }
-        let excess = self.resistance(flow, critical) - self.slope;
-        let first_slope = if pond > critical {
-            0.0
-        } else {
+        if pond <= critical {
             let fall = self.slope - self.friction(flow, critical);
             limits::GUTTER_FALL.check((fall * self.length / (2.0 * critical)).max(0.0))?;
-            (excess.max(0.0) * critical * 2.0 / 3.0).sqrt()
-        };
+        }
+        let excess = self.resistance(flow, critical) - self.slope;
+        let first_slope = (excess.max(0.0) * critical * 2.0 / 3.0).sqrt();
+        let above = (pond - critical).max(0.0);
+        let ahead = if first_slope > 0.0 { (above / first_slope) * (above / first_slope) } else { 0.0 };
         let rise = |root: f64, depth: f64| {
-            if root == 0.0 {
-                return Ok(first_slope);
+            // So near critical depth the quotient below is rounding over rounding; this is its limit.
+            if root == 0.0 || depth - critical < 1e-6 * critical && root * root <= ahead * (1.0 + 1e-9) {
+                return Ok(if above > 0.0 && first_slope == 0.0 { 0.0 } else { first_slope });
             }
-            let here = flow * (1.0 - root * root / self.length).max(0.0);
+            let here = flow * (1.0 - (root * root - ahead) / self.length).clamp(0.0, 1.0);
             // Where the floor rises out of the water there is no depth left, however slow the flow.
             let froude = if depth > 0.0 { self.froude(here, depth) } else { f64::INFINITY };
             if froude >= 1.0 {
@@ -138,7 +146,9 @@ impl Gutter {
             let resistance = self.friction(here, depth) + self.inflow_drag(here, flow, depth);
             Ok(2.0 * root * (resistance - self.slope) / (1.0 - froude * froude))
         };
-        let depth = solve::march(pond.max(critical), far_end, STEPS, rise, visit)?;
+        let roots = (ahead.sqrt(), (self.length + ahead).sqrt());
+        let depth =
+            solve::march(pond.max(critical), roots, STEPS, rise, |root, depth| visit(root * root - ahead, depth))?;
         if depth > 0.0 {
             Ok(depth)
         } else {
@@ -168,11 +178,6 @@ impl Gutter {
     fn froude(&self, flow: f64, depth: f64) -> f64 {
         flow / (self.width * depth * (GRAVITY * depth).sqrt())
     }
-}
-
-/// Visits a level surface over a sloping floor instead of the depths it is handed.
-fn with_level(pond: f64, slope: f64, mut visit: impl FnMut(f64, f64)) -> impl FnMut(f64, f64) {
-    move |root, _| visit(root, (pond - slope * root * root).max(0.0))
 }
 
 /// Depth at the dead end of a level gutter without friction, y^2 = yL^2 + 2 yc^3 / yL; sqrt(3) yc with a free outlet.
@@ -298,6 +303,32 @@ mod tests {
             for Station { distance, depth } in gutter(10.0, 0.0, 0.0).profile(FLOW, outlet).unwrap() {
                 let there = level_depth_at(FLOW, Length::from_m(0.3), outlet, distance.m() / 10.0).unwrap();
                 assert_relative_eq!(depth, there, max_relative = 1e-5);
+            }
+        }
+    }
+
+    /// A pond a hair above critical depth is no other case than one at it: the dead end never falls as the pond rises, and
+    /// without friction meets the closed form.
+    #[test]
+    fn the_dead_end_rises_evenly_with_the_pond_through_critical_depth() {
+        let critical = rectangle_depth(0.02 / 0.3);
+        for roughness in [0.0, 0.011] {
+            let mut before = 0.0;
+            for step in 0..2000 {
+                let ratio = 0.9 + 0.3 * f64::from(step) / 2000.0;
+                let ratios = [ratio, 1.0 + f64::from(step) * 1e-9, 1.0 + f64::from(step) * 1e-6];
+                for (place, ratio) in ratios.into_iter().enumerate() {
+                    let outlet = Outlet::Pond(Length::from_m(critical * ratio));
+                    let depth = gutter(10.0, 0.0, roughness).dead_end_depth(FLOW, outlet).unwrap();
+                    if roughness == 0.0 {
+                        let closed = level_dead_end_depth(FLOW, Length::from_m(0.3), outlet).unwrap();
+                        assert_relative_eq!(depth, closed, max_relative = 1e-4);
+                    }
+                    if place == 0 {
+                        assert!(depth.m() >= before * (1.0 - 1e-6), "{ratio}: {} after {before}", depth.m());
+                        before = depth.m();
+                    }
+                }
             }
         }
     }

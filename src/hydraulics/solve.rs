@@ -62,19 +62,20 @@ pub(super) fn bracketed_from(low: f64, first: f64, function: impl Fn(f64) -> f64
     bracketed(low, high, function)
 }
 
-/// The values of `value' = slope(at, value)` at the ends of equal steps, by the classic fourth-order rule.
+/// The values of `value' = slope(at, value)` at the ends of equal steps between two places, by the classic fourth-order
+/// rule.
 pub(super) fn march(
     start: f64,
-    end: f64,
+    (from, to): (f64, f64),
     steps: u32,
     slope: impl Fn(f64, f64) -> Result<f64, FlowError>,
     mut visit: impl FnMut(f64, f64),
 ) -> Result<f64, FlowError> {
-    let step = end / f64::from(steps);
+    let step = (to - from) / f64::from(steps);
     let mut value = start;
-    visit(0.0, value);
+    visit(from, value);
     for index in 0..steps {
-        let at = f64::from(index) * step;
+        let at = from + f64::from(index) * step;
         let first = slope(at, value)?;
         let second = slope(at + step / 2.0, value + first * step / 2.0)?;
         let third = slope(at + step / 2.0, value + second * step / 2.0)?;
@@ -145,7 +146,7 @@ mod tests {
 
     #[test]
     fn steps_follow_an_exponential() {
-        let got = march(1.0, 1.0, 20, |_, y| Ok(y), |_, _| {}).unwrap();
+        let got = march(1.0, (0.0, 1.0), 20, |_, y| Ok(y), |_, _| {}).unwrap();
         assert_relative_eq!(got, std::f64::consts::E, max_relative = 1e-6);
     }
 

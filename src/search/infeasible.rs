@@ -28,7 +28,8 @@ pub(super) fn why(mut problem: Problem<'_>) -> Why<'_> {
     }
 }
 
-fn any(problem: &Problem<'_>) -> bool {
+/// Whether any layout holds.
+pub(super) fn any(problem: &Problem<'_>) -> bool {
     !dive(problem, Aim::Any, Best::new(1, false)).into_found().is_empty()
 }
 

@@ -1,0 +1,202 @@
+//! What would cure an area that has no layout: for each single relaxation the least change that makes one exist.
+//!
+//! More limit, lower sills, more devices, another group, wider or higher openings, a longer edge, less rain: each, by itself,
+//! can only add layouts or add to what they carry. So a change that cures has every greater change cure as well, and the least
+//! is found by halving, each step a search for any layout at all. The amount is then rounded up to a step that can be built
+//! or asked for, and the roof so changed is handed back: searching it shows the layouts that the change opens.
+
+use crate::device::{Device, Size};
+use crate::roof::{LimitKind, Roof};
+use crate::units::{Length, Load, System};
+
+use super::infeasible::any;
+use super::problem::Problem;
+use super::{Options, Outcome, Ranked, Why};
+
+/// One thing that may be changed.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Relaxation {
+    /// The load limit raised by this much, in every case.
+    Load(Load),
+    /// The depth limit raised by this much, in every case.
+    Depth(Length),
+    /// Every set height lowered by this much.
+    Sill(Length),
+    /// The greatest count raised by this many.
+    Devices(u32),
+    /// The most groups in a layout raised by this many.
+    Groups(u32),
+    /// Every scupper this much wider, or of a greater diameter.
+    Width(Length),
+    /// Every closed opening this much higher.
+    Height(Length),
+    /// The edge this much longer.
+    Edge(Length),
+    /// The demand, by a smaller area or less rain, times this.
+    Demand(f64),
+}
+
+/// A change that makes a layout exist.
+#[derive(Clone, Debug)]
+pub struct Cure {
+    /// The change.
+    pub change: Relaxation,
+    /// The area by itself, so changed.
+    pub roof: Roof,
+    /// What is asked of the search there.
+    pub options: Options,
+}
+
+impl Cure {
+    /// The first layout that the change opens.
+    pub fn layout(&self) -> Option<Ranked<'_>> {
+        match super::size(&self.roof, &self.options, &[0]).pop()?.outcome {
+            Outcome::Optimal(mut layouts) => (!layouts.is_empty()).then(|| layouts.swap_remove(0)),
+            Outcome::Infeasible(_) => None,
+        }
+    }
+}
+
+/// What a relaxation found: a cure, or that by itself it cures nothing.
+#[derive(Clone, Debug)]
+pub struct Cures {
+    /// The cures, by the cost of the first layout that each opens where prices are given, else as they were tried.
+    pub found: Vec<Cure>,
+    /// Changes that were tried as far as they go without effect.
+    pub useless: Vec<Relaxation>,
+}
+
+/// A relaxation on a scale of whole steps, from one step on.
+struct Scale {
+    steps: u32,
+    of: Box<dyn Fn(u32) -> Relaxation + Sync>,
+}
+
+/// The least single changes that cure an area without a layout.
+pub fn cures(roof: &Roof, options: &Options, area: usize, why: &Why<'_>) -> Cures {
+    let alone = alone(roof, area);
+    let options = Options { keep: 1, ..options.clone() };
+    let mut cures = Cures { found: Vec::new(), useless: Vec::new() };
+    for scale in scales(&alone, &options, why) {
+        let cured = |step: u32| {
+            let (roof, options) = changed(&alone, &options, (scale.of)(step));
+            let (problem, _) = Problem::new(&roof, 0, &options);
+            any(&problem)
+        };
+        if !cured(scale.steps) {
+            cures.useless.push((scale.of)(scale.steps));
+            continue;
+        }
+        let (mut fails, mut passes) = (0, scale.steps);
+        while passes - fails > 1 {
+            let middle = fails + (passes - fails) / 2;
+            if cured(middle) { passes = middle } else { fails = middle }
+        }
+        let change = (scale.of)(passes);
+        let (roof, options) = changed(&alone, &options, change);
+        cures.found.push(Cure { change, roof, options });
+    }
+    let cost = |cure: &Cure| cure.layout().and_then(|layout| layout.cost);
+    cures.found.sort_by_cached_key(|cure| cost(cure).map_or(i64::MAX, crate::units::Money::millionths));
+    cures
+}
+
+/// One area by itself, with the demand that it has among the others.
+fn alone(roof: &Roof, area: usize) -> Roof {
+    let mut one = roof.areas[area].clone();
+    one.receives.clear();
+    Roof { areas: vec![one], demands: vec![roof.demands[area]], ..roof.clone() }
+}
+
+/// What can be relaxed, on scales of steps that can be built or asked for.
+fn scales(roof: &Roof, options: &Options, why: &Why<'_>) -> Vec<Scale> {
+    let us = roof.system == System::Us;
+    let area = &roof.areas[0];
+    // A hundredth of an inch, or a tenth of a millimetre; a tenth of a pound, or five pascals.
+    let fine = if us { Length::inches(0.01) } else { Length::mm(0.1) };
+    let coarse = if us { Length::inches(0.25) } else { Length::mm(5.0) };
+    let load = if us { Load::psf(0.1) } else { Load::from_pa(5.0) };
+    let times = |step: Length| move |count: u32| Length::from_nm(step.nm() * i64::from(count));
+    let mut scales = Vec::new();
+    let mut add = |steps: u32, of: Box<dyn Fn(u32) -> Relaxation + Sync>| scales.push(Scale { steps, of });
+    let binding = match why {
+        Why::Limits { best, .. } => best.governing.map(|governing| governing.limit),
+        _ => None,
+    };
+    match binding {
+        Some(LimitKind::Load) => add(4000, Box::new(move |count| Relaxation::Load(load * f64::from(count)))),
+        Some(LimitKind::Depth) => add(4000, Box::new(move |count| Relaxation::Depth(times(fine)(count)))),
+        _ => {}
+    }
+    let lowest = area
+        .set_heights
+        .iter()
+        .flatten()
+        .chain(roof.sizes.iter().filter_map(|size| size.set_heights.as_ref()).flat_map(|heights| heights.iter()));
+    let lowest = lowest.map(|height| height.nm()).filter(|&height| height > 0).max().unwrap_or(0);
+    if let steps @ 1.. = u32::try_from(lowest / fine.nm()).unwrap_or(0) {
+        add(steps, Box::new(move |count| Relaxation::Sill(times(fine)(count))));
+    }
+    add(64, Box::new(Relaxation::Devices));
+    if options.mix < crate::roof::MOST_GROUPS {
+        add(u32::try_from(crate::roof::MOST_GROUPS - options.mix).unwrap_or(1), Box::new(Relaxation::Groups));
+    }
+    if roof.sizes.iter().any(|size| size.device.kind().is_scupper()) {
+        add(400, Box::new(move |count| Relaxation::Width(times(coarse)(count))));
+    }
+    if roof.sizes.iter().any(|size| matches!(size.device, Device::Closed { .. })) {
+        add(100, Box::new(move |count| Relaxation::Height(times(coarse)(count))));
+    }
+    if area.edge.is_some() {
+        let foot = if us { Length::inches(3.0) } else { Length::mm(50.0) };
+        add(4000, Box::new(move |count| Relaxation::Edge(times(foot)(count))));
+    }
+    // By tenths of a per cent, to a hundredth of the demand.
+    add(990, Box::new(|count| Relaxation::Demand(f64::from(1000 - count) / 1000.0)));
+    scales
+}
+
+/// The roof and the options with one thing changed.
+fn changed(roof: &Roof, options: &Options, change: Relaxation) -> (Roof, Options) {
+    let (mut roof, mut options) = (roof.clone(), options.clone());
+    let area = &mut roof.areas[0];
+    match change {
+        Relaxation::Load(more) => {
+            area.limits.iter_mut().for_each(|limits| limits.load = limits.load.map(|load| load + more));
+        }
+        Relaxation::Depth(more) => {
+            area.limits.iter_mut().for_each(|limits| limits.depth = limits.depth.map(|depth| depth + more));
+        }
+        Relaxation::Sill(less) => {
+            let lower = |height: Length| Length::from_nm((height.nm() - less.nm()).max(0));
+            for height in area.set_heights.iter_mut().flatten() {
+                *height = lower(*height);
+            }
+            for size in &mut roof.sizes {
+                size.set_heights = size.set_heights.as_ref().map(|heights| heights.iter().map(|&h| lower(h)).collect());
+            }
+        }
+        Relaxation::Devices(more) => area.count = *area.count.start()..=area.count.end() + more,
+        Relaxation::Groups(more) => options.mix += more as usize,
+        Relaxation::Width(more) => roof.sizes.iter_mut().for_each(|size| widen(size, more)),
+        Relaxation::Height(more) => roof.sizes.iter_mut().for_each(|size| heighten(size, more)),
+        Relaxation::Edge(more) => area.edge = area.edge.map(|edge| edge + more),
+        Relaxation::Demand(factor) => roof.demands[0] = roof.demands[0] * factor,
+    }
+    (roof, options)
+}
+
+/// A wider opening has no price in the catalog but that of the one it replaces: a lower bound on its cost.
+fn widen(size: &mut Size, more: Length) {
+    match &mut size.device {
+        Device::Open { width } | Device::Closed { width, .. } => *width = *width + more,
+        Device::Pipe { diameter } => *diameter = *diameter + more,
+        _ => {}
+    }
+}
+
+fn heighten(size: &mut Size, more: Length) {
+    if let Device::Closed { height, .. } = &mut size.device {
+        *height = *height + more;
+    }
+}
