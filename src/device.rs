@@ -167,7 +167,9 @@ impl Size {
 
     /// The law that it follows at a site.
     pub fn law_at(&self, site: &Site) -> Law {
-        self.law.unwrap_or_else(|| site.choice.law(self.device.kind()))
+        let kind = self.device.kind();
+        let forced = site.forced.filter(|law| kind.laws().contains(law));
+        forced.or(self.law).unwrap_or_else(|| site.choice.law(kind))
     }
 
     /// It as built at a site, `loss` taken off each side of its opening and its sill at a height above the low point before
@@ -230,7 +232,7 @@ mod tests {
     #[test]
     fn a_guard_and_a_leader_take_their_part() {
         let fill = crate::hydraulics::leader::Fill::SevenTwentyFourths;
-        let leader = Leader { diameter: Length::inches(4.0), fill, length: None };
+        let leader = Leader { diameter: Length::inches(4.0), fill };
         let following = Following { leader: Some(leader), conductor_head: None };
         let curve = curve(&Size { screen: 0.7, following, ..closed(12.0, 6.0) }, 0.0);
         assert_relative_eq!(gpm(&curve, 3.0), 126.58, max_relative = 1e-4);

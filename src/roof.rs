@@ -64,7 +64,7 @@ pub struct Case {
     pub rain: f64,
     /// Factor on every device's flow.
     pub discharge: f64,
-    /// The flow law of every device that can follow it, in place of the project's choice.
+    /// The flow law of scuppers, in place of the project's choice.
     pub law: Option<Law>,
 }
 
@@ -165,11 +165,12 @@ pub struct Roof {
 }
 
 impl Roof {
-    /// What the flow of an area's devices depends on besides their dimensions, under another law where one is given.
+    /// What the flow of an area's devices depends on besides their dimensions, scuppers under another law where one is given.
     pub fn site(&self, area: usize, law: Option<Law>) -> Site {
         let catchment = &self.areas[area];
         Site {
-            choice: law.map_or(self.choice, |law| self.choice.under(law)),
+            choice: Choice { scupper: law.unwrap_or(self.choice.scupper), ..self.choice },
+            forced: None,
             thickness: catchment.parapet.thickness,
             floor: catchment.roof_at_wall,
         }

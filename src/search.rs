@@ -7,7 +7,7 @@
 
 use rayon::prelude::*;
 
-use crate::device::{Law, Regime, Site, Size};
+use crate::device::{Law, Regime, Size};
 use crate::hydraulics::limits::Range;
 use crate::roof::layout::{self, CaseState, Group, Water, highest_lift};
 use crate::roof::{Governing, Roof, Situation};
@@ -202,14 +202,10 @@ fn thick_wall(problem: &Problem<'_>, groups: &[Group<'_>], case: usize) -> Vec<U
         return Vec::new();
     }
     let differs = |law: Law| {
-        groups.iter().any(|group| {
-            let own = group.size.law_at(site);
-            own != law
-                && !own.needs_thickness()
-                && group.size.law_at(&Site { choice: site.choice.under(law), ..*site }) == law
-        })
+        groups.iter().any(|group| group.size.device.kind().laws().contains(&law) && group.size.law_at(site) != law)
     };
-    let laws = [Law::Throat, Law::ShortCrest].into_iter().filter(|&law| differs(law));
+    // Inlet control says more where the top of a closed opening is under water.
+    let laws = [Law::Throat, Law::ShortCrest, Law::InletControl].into_iter().filter(|&law| differs(law));
     laws.map(|law| under_law(&problem.situations, &problem.allowed, groups, case, law)).collect()
 }
 
@@ -218,11 +214,13 @@ pub fn under_every_law(roof: &Roof, area: usize, layout: &Ranked<'_>) -> Vec<Und
     let situations = roof.situations(area);
     let allowed: Vec<_> = situations.iter().map(Situation::allowable_level).collect();
     let groups: Vec<_> = layout.groups.iter().map(|placed| placed.group).collect();
+    let thick = roof.areas[area].parapet.thickness.is_some();
     let can = |law: &Law| {
-        let site = roof.site(area, Some(*law));
-        let thick = site.thickness.is_some() || !law.needs_thickness();
-        thick
-            && groups.iter().any(|group| group.size.law_at(&site) == *law && group.size.device.kind().laws().len() > 1)
+        let follows = |group: &Group<'_>| {
+            let laws = group.size.device.kind().laws();
+            laws.len() > 1 && laws.contains(law)
+        };
+        (thick || !law.needs_thickness()) && groups.iter().any(follows)
     };
     let laws = Law::ALL.into_iter().filter(can);
     laws.map(|law| under_law(&situations, &allowed, &groups, layout.case, law)).collect()
@@ -237,7 +235,7 @@ fn under_law(
 ) -> UnderLaw {
     let mut situations = situations.to_vec();
     for situation in &mut situations {
-        situation.site.choice = situation.site.choice.under(law);
+        situation.site.forced = Some(law);
     }
     let holds = |(situation, &allowed): (&Situation<'_>, &Length)| {
         layout::pool(groups, situation).capacity(allowed) >= situation.demand

@@ -2132,7 +2132,7 @@ diameter = ["4 in", "0 in"]
 width = "4 in"
 place = "interior"
 screen = 1.5
-leader = { length = "10 ft", fill = "1/2", serves = 2 }
+leader = { fill = "1/2", serves = 2 }
 price = { each = 1 }
 
 [[device]]
@@ -2230,24 +2230,24 @@ error: `screen` must be a part of one
 error: `diameter` is missing in `leader`
  --> devices.toml:8:10
   |
-8 | leader = { length = "10 ft", fill = "1/2", serves = 2 }
-  |          ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ this table
+8 | leader = { fill = "1/2", serves = 2 }
+  |          ^^^^^^^^^^^^^^^^^^^^^^^^^^^^ this table
   |
   = help: give its inside diameter: leader = { diameter = "4 in" }
 
 error: `1/2` is not a value of `fill`
- --> devices.toml:8:37
+ --> devices.toml:8:19
   |
-8 | leader = { length = "10 ft", fill = "1/2", serves = 2 }
-  |                                     ^^^^^ not one of its values
+8 | leader = { fill = "1/2", serves = 2 }
+  |                   ^^^^^ not one of its values
   |
   = help: did you mean "1/3"? 7/24 or 1/3 would pass
 
 error: a leader shared by several devices is not computed
- --> devices.toml:8:53
+ --> devices.toml:8:35
   |
-8 | leader = { length = "10 ft", fill = "1/2", serves = 2 }
-  |                                                     ^ shared
+8 | leader = { fill = "1/2", serves = 2 }
+  |                                   ^ shared
   |
   = help: give each device a leader of its own, or rate them together with a table
 
@@ -2282,6 +2282,14 @@ error: `lip` is missing in `conductor_head`
    |                  ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ this table
    |
    = help: conductor_head = { outlet = "4 in", depth = "8 in", lip = "1 in", overflow_width = "12 in" }
+
+error: a device of kind "overflow drain" has no conductor head
+  --> devices.toml:16:18
+   |
+16 | conductor_head = { outlet = "4 in", depth = "8 in" }
+   |                  ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ it stands inside the roof
+   |
+   = help: give it a leader, or take the key out
 
 error: `per_width` needs a device with width
   --> devices.toml:17:33
@@ -2894,7 +2902,7 @@ tag = "PS"
 kind = "pipe scupper"
 diameter = ["4 in", "6 in"]
 screen = 0.8
-leader = { diameter = "4 in", length = "12 ft", fill = "1/3" }
+leader = { diameter = "4 in", fill = "1/3" }
 price = { each = 200 }
 
 [[device]]

@@ -64,12 +64,11 @@ impl Draw {
                 Device::Rated { width: None, rating: Arc::new(Rating::new(&rows).unwrap().read_by(by)) }
             }
         };
-        let leader =
-            self.leader.map(|diameter| Leader { diameter: inches(diameter), fill: Fill::OneThird, length: None });
+        let leader = self.leader.map(|diameter| Leader { diameter: inches(diameter), fill: Fill::OneThird });
         let following = Following { leader, conductor_head: None };
         let size = Size { law: Some(self.pair.1), screen: self.screen, following, ..Size::of(device) };
         let choice = Choice { transition: self.transition, ..Choice::default() };
-        let site = Site { choice, thickness: Some(inches(self.thickness)), floor: Length::ZERO };
+        let site = Site { choice, thickness: Some(inches(self.thickness)), ..Site::default() };
         size.curve(&site, inches(self.sill), inches(self.loss)).0
     }
 }

@@ -41,6 +41,12 @@ pub(super) struct Args {
     /// Height of the sill above the roof before it, for the law kindsvater-carter.
     #[arg(long, value_name = "LENGTH", default_value = "2 in")]
     sill: String,
+    /// Manning roughness of a throat.
+    #[arg(long, value_name = "N", default_value_t = Choice::default().roughness)]
+    roughness: f64,
+    /// Entrance loss of a throat in velocity heads.
+    #[arg(long, value_name = "KE", default_value_t = Choice::default().entrance_loss)]
+    entrance_loss: f64,
     /// The flow law, or `all`.
     #[arg(long, value_name = "LAW")]
     law: Option<String>,
@@ -75,7 +81,16 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     };
     let kind = size.device.kind();
     let thickness = length("--thickness", args.thickness.as_ref())?;
-    let site = Site { choice: Choice::default(), thickness, floor: Length::ZERO };
+    for (flag, value) in [("--roughness", args.roughness), ("--entrance-loss", args.entrance_loss)] {
+        if !(value.is_finite() && value >= 0.0) {
+            return Err(Failure::said(
+                &format!("{flag}: {value} is not a number of zero or more"),
+                "give zero or more",
+            ));
+        }
+    }
+    let choice = Choice { roughness: args.roughness, entrance_loss: args.entrance_loss, ..Choice::default() };
+    let site = Site { choice, thickness, floor: Length::ZERO, forced: None };
     let all = args.law.as_deref() == Some("all");
     let laws = match args.law.as_deref() {
         Some("all") => {
@@ -129,14 +144,41 @@ fn need<T>(flag: &str, found: Option<T>, kind: Kind) -> Result<T, Failure> {
     })
 }
 
+/// Refuses a dimension that a kind does not have: left unsaid, the result would seem to heed it.
+fn foreign(args: &Args, kind: Kind) -> Result<(), Failure> {
+    let own: &[&str] = match kind {
+        Kind::OpenScupper | Kind::RoofEdge => &["--width"],
+        Kind::ClosedScupper => &["--width", "--height"],
+        Kind::PipeScupper | Kind::Standpipe => &["--diameter"],
+        Kind::OverflowDrain | Kind::Rated => &["--diameter", "--dam", "--dam-height", "--free-area"],
+    };
+    let given = [
+        ("--width", &args.width),
+        ("--height", &args.height),
+        ("--diameter", &args.diameter),
+        ("--dam", &args.dam),
+        ("--dam-height", &args.dam_height),
+        ("--free-area", &args.free_area),
+    ];
+    match given.iter().find(|(flag, value)| value.is_some() && !own.contains(flag)) {
+        Some((flag, _)) => Err(Failure::said(
+            &format!("a device of kind \"{kind}\" has no {flag}"),
+            &format!("its dimensions are {}", own.join(", ")),
+        )),
+        None => Ok(()),
+    }
+}
+
 fn of_kind(args: &Args, name: &str) -> Result<Size, Failure> {
     let plain = name.replace('-', " ");
     let found = Kind::ALL.into_iter().find(|kind| kind.name() == plain && *kind != Kind::Rated);
     let Some(kind) = found else {
-        let near = input::nearest(&plain, Kind::ALL.iter().map(|kind| kind.name()));
+        let computed = Kind::ALL.iter().filter(|&&kind| kind != Kind::Rated);
+        let near = input::nearest(&plain, computed.map(|kind| kind.name()));
         let did_you = near.map_or(String::new(), |near| format!("did you mean {}? ", near.replace(' ', "-")));
         return Err(Failure::said(&format!("`{name}` is not a kind of device"), &(did_you + &kinds_would_pass())));
     };
+    foreign(args, kind)?;
     let width = || length("--width", args.width.as_ref()).and_then(|found| need("--width", found, kind));
     let diameter = || length("--diameter", args.diameter.as_ref()).and_then(|found| need("--diameter", found, kind));
     let device = match kind {

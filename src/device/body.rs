@@ -68,7 +68,7 @@ impl Kind {
             ],
             Self::PipeScupper => &[Law::CriticalDepth, Law::ThinPlate, Law::InletControl, Law::Published],
             Self::OverflowDrain | Self::Standpipe => &[Law::RimAndThroat, Law::En12056],
-            Self::RoofEdge => &[Law::CriticalDepth, Law::ThinPlate],
+            Self::RoofEdge => &[Law::SquareEdged, Law::CriticalDepth, Law::ThinPlate],
             Self::Rated => &[Law::RatingTable],
         }
     }

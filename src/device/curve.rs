@@ -46,10 +46,12 @@ enum Form {
     Ring(RingDrain),
     /// A standpipe.
     Riser { diameter: Length },
-    /// An outlet of EN 12056-3.
+    /// A drain by EN 12056-3, strained, and no more than its rim and dome let in.
+    Strained(RingDrain),
+    /// An open outlet by EN 12056-3.
     Outlet { diameter: Length },
-    /// A roof edge at critical depth.
-    Spill { width: Length },
+    /// A roof edge at critical depth, times a part of it.
+    Spill { width: Length, part: f64 },
     /// A measured rating.
     Rated(Arc<Rating>),
 }
@@ -117,12 +119,15 @@ impl Curve {
             }
             Form::Weir { weir, width, height } => {
                 let over = weir.discharge(*width, head)?;
+                // Up to the top the integral over the opening is that of a free surface, so that the lesser of the two is
+                // continuous there; a thin wall's weir coefficient may stand a few per cent above it.
                 match height {
-                    Some(height) if head > *height => {
+                    Some(height) => {
                         let through = orifice::rectangular(*width, *height, head, orifice::SQUARE_EDGE)?;
-                        if through < over.flow { Discharge { flow: through, regime: Regime::Orifice } } else { over }
+                        let regime = if head > *height { Regime::Orifice } else { over.regime };
+                        if through < over.flow { Discharge { flow: through, regime } } else { over }
                     }
-                    _ => over,
+                    None => over,
                 }
             }
             Form::Inlet(inlet) => {
@@ -143,8 +148,16 @@ impl Curve {
             Form::RoundTable { diameter } => published::round(*diameter, head),
             Form::Ring(drain) => ring(drain, head)?,
             Form::Riser { diameter } => branch(outlet::riser(*diameter, head)?),
+            Form::Strained(drain) => {
+                // A dome stands over the drain: the standard halves the flow behind a strainer.
+                let strained = branch(outlet::en_12056_circular(drain.throat, head, outlet::STRAINED)?);
+                let parts = ring(drain, head)?;
+                if parts.flow < strained.flow { parts } else { strained }
+            }
             Form::Outlet { diameter } => branch(outlet::en_12056_circular(*diameter, head, outlet::CLEAR)?),
-            Form::Spill { width } => Discharge { flow: crest::without_loss(*width, head)?, regime: Regime::Weir },
+            Form::Spill { width, part } => {
+                Discharge { flow: crest::without_loss(*width, head)? * *part, regime: Regime::Weir }
+            }
             Form::Rated(rating) => rating.discharge(head),
         })
     }
@@ -205,7 +218,15 @@ impl Curve {
                 (&limits::STAUS_HEAD, head.m()),
                 (&limits::STAUS_FILL, head / *diameter),
             ],
-            Form::RoundTable { diameter } => vec![(&published::DIAMETER, diameter.m()), (&published::HEAD, head.m())],
+            // The orifice beyond has no such range.
+            Form::Pipe { diameter }
+                if circular::pipe(*diameter, head).is_ok_and(|(_, branch)| branch == Branch::Weir) =>
+            {
+                vec![(&limits::PIPE_CRITICAL, head / *diameter)]
+            }
+            Form::RoundTable { diameter } => {
+                vec![(&limits::ROUND_TABLE_DIAMETER, diameter.m()), (&limits::ROUND_TABLE_HEAD, head.m())]
+            }
             _ => Vec::new(),
         };
         checks.into_iter().filter(|(range, value)| !range.holds(*value)).collect()
@@ -256,15 +277,15 @@ fn form(device: &Device, law: Law, site: &Site, sill: Length) -> Result<Form, Fl
             Law::Published => Form::RoundTable { diameter },
             _ => Form::Pipe { diameter },
         },
-        // Only the throat of a drain has the bell mouth that the standard's diameter means.
-        Device::Drain(drain) if law == Law::En12056 => Form::Outlet { diameter: drain.throat },
+        Device::Drain(drain) if law == Law::En12056 => Form::Strained(*drain),
         Device::Drain(drain) => Form::Ring(*drain),
         &Device::Standpipe { diameter } if law == Law::En12056 => Form::Outlet { diameter },
         &Device::Standpipe { diameter } => Form::Riser { diameter },
         &Device::Edge { width } if law == Law::ThinPlate => {
             Form::Practice { width, height: None, transition: site.choice.transition }
         }
-        &Device::Edge { width } => Form::Spill { width },
+        &Device::Edge { width } if law == Law::SquareEdged => Form::Spill { width, part: crest::SQUARE_EDGE },
+        &Device::Edge { width } => Form::Spill { width, part: 1.0 },
         Device::Rated { rating, .. } => Form::Rated(Arc::clone(rating)),
     })
 }

@@ -17,8 +17,6 @@ pub struct Leader {
     pub diameter: Length,
     /// The part of its section that water fills.
     pub fill: Fill,
-    /// Its length, where given; shorter than the terminal length it carries no less.
-    pub length: Option<Length>,
 }
 
 /// A conductor head: a box at the wall into which a scupper falls.
@@ -96,7 +94,7 @@ mod tests {
     /// 27.8 (7/24)^(5/3) 4^(8/3) = 143.8 gpm; the plumbing table prints 144.
     #[test]
     fn a_leader_carries_what_its_table_says() {
-        let leader = Leader { diameter: INCH(4.0), fill: Fill::SevenTwentyFourths, length: None };
+        let leader = Leader { diameter: INCH(4.0), fill: Fill::SevenTwentyFourths };
         assert_relative_eq!(leader.capacity().to_gpm(), 144.0, max_relative = 5e-3);
     }
 

@@ -26,6 +26,8 @@ pub enum Law {
     En12056,
     /// Critical depth at the inlet.
     CriticalDepth,
+    /// A long crest with square edges.
+    SquareEdged,
     /// The published table of round scuppers.
     Published,
     /// Rim, dome and throat of a drain, the least of them.
@@ -54,7 +56,7 @@ impl Account {
 
 impl Law {
     /// Every law.
-    pub const ALL: [Self; 11] = [
+    pub const ALL: [Self; 12] = [
         Self::ThinPlate,
         Self::Contracted,
         Self::KindsvaterCarter,
@@ -63,6 +65,7 @@ impl Law {
         Self::InletControl,
         Self::En12056,
         Self::CriticalDepth,
+        Self::SquareEdged,
         Self::Published,
         Self::RimAndThroat,
         Self::RatingTable,
@@ -79,6 +82,7 @@ impl Law {
             Self::InletControl => "inlet-control",
             Self::En12056 => "en-12056",
             Self::CriticalDepth => "critical-depth",
+            Self::SquareEdged => "square-edged",
             Self::Published => "table",
             Self::RimAndThroat => "rim-and-throat",
             Self::RatingTable => "rating table",
@@ -110,7 +114,7 @@ impl Law {
             (Self::Contracted, _) => Account {
                 form_us: "Francis, 2.996 (b - 0.2 H) H^1.5 gpm (inches), an orifice of 0.6 if less once H > h",
                 form_si: "Francis, 1.8385 (b - 0.2 H) H^1.5 m3/s (metres), an orifice of 0.6 if less once H > h",
-                source: "Francis 1883, as in EPA stormwater manual Vol. II eq. 6-18; orifice HEC-22 eq. 8-17",
+                source: "Francis 1883, as in EPA stormwater manual Vol. II eq. 6-18, full contraction (a sill of 2 H) taken; orifice HEC-22 eq. 8-17",
             },
             (Self::KindsvaterCarter, _) => same(
                 "Ce 2/3 sqrt(2g) (b + kb)(H + kh)^1.5, b/B = 0, an orifice of 0.6 if less once H > h",
@@ -139,12 +143,17 @@ impl Law {
                 form_si: "critical depth on the edge, 1.7046 b H^1.5 m3/s (metres)",
                 source: "least specific energy; HEC-22 section 8.4.4.2 rounds it",
             },
+            (Self::SquareEdged, _) => Account {
+                form_us: "0.848 of critical depth on the edge, 2.356 b H^1.5 gpm (inches)",
+                form_si: "0.848 of critical depth on the edge, 1.4455 b H^1.5 m3/s (metres)",
+                source: "ISO 3846, from memory; HEC-22 section 8.4.4.2 gives 1.44 for a sharp corner",
+            },
             (Self::CriticalDepth, _) => same(
                 "0.88 of critical depth at the energy H, an orifice of 0.6 if less once H > D",
                 "critical depth in a circle; 0.88 fitted to the published table; orifice HEC-22 eq. 8-17",
             ),
             (Self::Published, _) => same(
-                "rows of the table, straight lines between them in head and in diameter",
+                "rows of the table, logarithms between heads, straight lines between diameters",
                 "ASCE 7-16 commentary, Table C8.3-5, from memory",
             ),
             (Self::RimAndThroat, Kind::Standpipe) => same(

@@ -31,7 +31,7 @@ impl Default for Choice {
             scupper: Law::ThinPlate,
             pipe: Law::CriticalDepth,
             drain: Law::RimAndThroat,
-            edge: Law::CriticalDepth,
+            edge: Law::SquareEdged,
             transition: practice::Transition::LesserOf,
             roughness: 0.012,
             entrance_loss: throat::SQUARE_EDGE_LOSS,
@@ -50,22 +50,6 @@ impl Choice {
             Kind::Rated => Law::RatingTable,
         }
     }
-
-    /// With another law for every family that can follow it.
-    #[must_use]
-    pub fn under(mut self, law: Law) -> Self {
-        for (kind, slot) in [
-            (Kind::ClosedScupper, &mut self.scupper),
-            (Kind::PipeScupper, &mut self.pipe),
-            (Kind::OverflowDrain, &mut self.drain),
-            (Kind::RoofEdge, &mut self.edge),
-        ] {
-            if kind.laws().contains(&law) {
-                *slot = law;
-            }
-        }
-        self
-    }
 }
 
 /// What of an area the flow of a device depends on.
@@ -77,4 +61,6 @@ pub struct Site {
     pub thickness: Option<Length>,
     /// Roof surface before an edge device, above the low point.
     pub floor: Length,
+    /// A law that every device follows that can, whatever is chosen for it: to be shown beside.
+    pub forced: Option<Law>,
 }

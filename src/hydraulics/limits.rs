@@ -279,8 +279,34 @@ pub static GUTTER_FROUDE: Range = ratio(
     "the equation is integrated upstream, which holds for subcritical flow only",
 );
 
+const ROUND_TABLE: &str = "ASCE 7-16 commentary, Table C8.3-5, from memory";
+
+/// Table of round scuppers: diameter.
+pub static ROUND_TABLE_DIAMETER: Range = Range {
+    law: "table of round scuppers",
+    what: "diameter",
+    low: 5.0 * METRES_PER_INCH,
+    high: 16.0 * METRES_PER_INCH,
+    unit: "in",
+    shown_per: METRES_PER_INCH,
+    source: ROUND_TABLE,
+};
+
+/// Table of round scuppers: head.
+pub static ROUND_TABLE_HEAD: Range = Range {
+    law: "table of round scuppers",
+    what: "head",
+    low: METRES_PER_INCH,
+    high: 8.0 * METRES_PER_INCH,
+    unit: "in",
+    shown_per: METRES_PER_INCH,
+    source: ROUND_TABLE,
+};
+
 /// Every range of this module, for the manual.
-pub static ALL: [&Range; 39] = [
+pub static ALL: [&Range; 41] = [
+    &ROUND_TABLE_DIAMETER,
+    &ROUND_TABLE_HEAD,
     &PRACTICE_WIDTH,
     &PRACTICE_HEIGHT,
     &PRACTICE_HEAD,

@@ -77,6 +77,7 @@ fn foreign(kind: Kind, key: &str) -> (&'static str, &'static str) {
         (Kind::OpenScupper, "height") => ("it is open at the top", "take it out, or make it a \"closed scupper\""),
         (Kind::Rated, "height") => ("its table says what it carries", "take it out"),
         (_, "rating") => ("its flow comes from a law", "take it out, or make the device \"rated\""),
+        (_, "interpolation") => ("it has no rating table", "take it out"),
         _ => ("it has no such dimension", "take it out"),
     }
 }
@@ -314,6 +315,24 @@ impl Given {
             );
             belongs = false;
         }
+        if let (Some(Some(dam)), Some(Some(throats)), Some(cell)) = (self.dam, &self.diameters, section.get("dam"))
+            && throats.iter().any(|throat| throat.nm() > dam.nm())
+        {
+            cell.at_fault(
+                "the ring dam is narrower than the throat",
+                "less than `diameter`",
+                "give the diameter of its rim",
+            );
+            belongs = false;
+        }
+        if let (Some(false), Some(cell)) = (kind.at_edge(), section.get("conductor_head")) {
+            cell.at_fault(
+                format!("a device of kind \"{kind}\" has no conductor head"),
+                "it stands inside the roof",
+                "give it a leader, or take the key out",
+            );
+            belongs = false;
+        }
         let (has_width, has_height) = match kind {
             Kind::OpenScupper | Kind::RoofEdge => (true, false),
             Kind::ClosedScupper | Kind::PipeScupper => (true, true),
@@ -459,7 +478,16 @@ fn rated(
         );
         return None;
     }
-    widths.into_iter().map(|width| Some(one(Some(width), ratings.at(width)?))).collect()
+    let made: Option<Vec<Device>> =
+        widths.into_iter().map(|width| Some(one(Some(width), ratings.at(width)?))).collect();
+    if let (None, Some(cell)) = (&made, section.get("width")) {
+        cell.at_fault(
+            "a width lies between two tables that share no heads, or whose flows do not rise together",
+            "nothing can be read between them",
+            "give both tables rows over one range of heads, or name only widths that have a table",
+        );
+    }
+    made
 }
 
 /// What a device costs: so much each, and so much for its dimensions.

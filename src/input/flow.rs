@@ -13,7 +13,7 @@ pub(super) static FLOW: Keys = Keys {
     unsupported: &[],
 };
 
-static LEADER: Keys = Keys { table: "`leader`", known: &["diameter", "length", "fill", "serves"], unsupported: &[] };
+static LEADER: Keys = Keys { table: "`leader`", known: &["diameter", "fill", "serves"], unsupported: &[] };
 
 static CONDUCTOR_HEAD: Keys =
     Keys { table: "`conductor_head`", known: &["outlet", "depth", "lip", "overflow_width"], unsupported: &[] };
@@ -65,7 +65,6 @@ pub(super) fn following(section: &Section<'_>) -> Option<Following> {
 fn leader(section: &Section<'_>) -> Option<Leader> {
     let diameter = section.need("diameter", "give its inside diameter: leader = { diameter = \"4 in\" }");
     let diameter = diameter.and_then(|cell| cell.positive_length());
-    let length = section.get("length").map(|cell| cell.positive_length());
     let fill = section.get("fill").map_or(Some(Fill::SevenTwentyFourths), |cell| cell.word(&FILLS));
     if let Some(cell) = section.get("serves")
         && cell.whole(1, 1000)? > 1
@@ -77,7 +76,7 @@ fn leader(section: &Section<'_>) -> Option<Leader> {
         );
         return None;
     }
-    Some(Leader { diameter: diameter?, fill: fill?, length: optional(length)? })
+    Some(Leader { diameter: diameter?, fill: fill? })
 }
 
 fn conductor_head(section: &Section<'_>) -> Option<ConductorHead> {

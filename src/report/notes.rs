@@ -1,6 +1,7 @@
 //! What every reader of a report must know besides its numbers: the laws, the assumptions, the cautions of this very roof.
 
-use crate::device::{Kind, Law, Place, Regime, Size};
+use crate::device::{Kind, Law, Place, Regime, Site, Size};
+use crate::hydraulics::practice::Transition;
 use crate::roof::layout::GroupState;
 use crate::search::{Outcome, Ranked};
 use crate::units::{Area, Length, System};
@@ -63,8 +64,38 @@ pub(super) fn laws(sized: &Sized<'_, '_>, words: Words) -> Vec<String> {
         return vec!["No layout is listed.".into()];
     }
     let mut lines: Vec<_> = lines.into_iter().map(|(line, devices)| format!("{}, {line}", list(&devices))).collect();
+    let laws: Vec<Law> = sizes(sized)
+        .iter()
+        .flat_map(|size| sized.roof.cases.iter().map(|case| size.law_at(&sized.roof.site(area, case.law))))
+        .collect();
+    let mut sites: Vec<Site> = sized.answers.iter().map(|answer| sized.roof.site(answer.area, None)).collect();
+    sites.dedup_by_key(|site| site.thickness);
+    if laws.contains(&Law::Throat) || layouts(sized).any(|layout| !layout.thick_wall.is_empty()) {
+        let thick = sites.iter().filter(|site| site.thickness.is_some());
+        lines.extend(thick.map(|site| format!("The law {}", throat(site, words))));
+    }
+    if laws.contains(&Law::ThinPlate) {
+        lines.extend(sites.first().and_then(transition));
+    }
     lines.extend(following(sized, words));
     lines
+}
+
+/// The values that the law of a throat is computed with.
+pub(super) fn throat(site: &Site, words: Words) -> String {
+    let wall = site.thickness.map_or(String::new(), |thickness| format!("wall {}, ", words.size(thickness)));
+    let (roughness, loss) = (trimmed(site.choice.roughness, 4), trimmed(site.choice.entrance_loss, 3));
+    format!("throat is computed with {wall}roughness n = {roughness} and an entrance loss of {loss} velocity heads.")
+}
+
+/// How the practice form passes from weir to orifice, where it is not the lesser of both.
+fn transition(site: &Site) -> Option<String> {
+    let to = match site.choice.transition {
+        Transition::LesserOf => return None,
+        Transition::Linear => "1.4",
+        Transition::Table => "1.3",
+    };
+    Some(format!("Between H = h and H = {to} h the thin-plate law is a straight line from the weir to the orifice."))
 }
 
 /// What guards and follows the devices, and from which head it governs.
@@ -291,8 +322,8 @@ fn regimes(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
     }
     if layouts(sized).any(|layout| !layout.beyond.is_empty()) {
         lines.push(
-            "Layouts marked as beyond range rest on the equations outside the published scupper table (6 to 24 in wide, 4 to \
-             6 in high, heads of 1 to 8 in)."
+            "Layouts marked as beyond range rest on a law outside the range in which it is published; how far is told under \
+             each list."
                 .into(),
         );
     }

@@ -146,8 +146,15 @@ fn limit_in_words(roof: &Roof, area: usize, words: Words) -> String {
     let ponding = catchment.ponding_head.unwrap_or(Length::ZERO);
     let water = |limits: Limits| {
         let level = roof.situation(area, 0);
-        let level = crate::roof::Situation { limits, ..level }.allowable_level();
-        format!("{}, water up to {}", words.limits(limits), words.depth(level))
+        let level = crate::roof::Situation { limits, ..level };
+        let allowed = level.allowable_level();
+        if allowed > Length::ZERO {
+            return format!("{}, water up to {}", words.limits(limits), words.depth(allowed));
+        }
+        let free = level.reach(Length::ZERO).map_or(String::new(), |reach| {
+            format!(": with a free outlet its channel already stands {} deep", words.depth(reach.deepest))
+        });
+        format!("{}, which leaves no level at the devices{free}", words.limits(limits))
     };
     let mut text = String::from("Limit: ");
     let first = catchment.limits[0];
@@ -269,11 +276,36 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
     for text in marks(layouts, words) {
         blocks.push(Block::Text(text));
     }
+    let backing = backing_up(sized.roof, layouts, words);
+    if !backing.is_empty() {
+        blocks
+            .push(Block::Text("Conductor heads that would back up, were all that the device passes credited:".into()));
+        blocks.push(Block::List(backing));
+    }
     let thick = thick_walls(sized.roof, area, layouts, words);
     if !thick.is_empty() {
         blocks.push(Block::Text("Under the laws of a thick wall, in the governing case:".into()));
         blocks.push(Block::List(thick));
     }
+}
+
+/// One line for each layout and group whose conductor head would back up over the sill, at its worst.
+fn backing_up(roof: &Roof, layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
+    let mut lines = Vec::new();
+    for (index, layout) in layouts.iter().enumerate() {
+        for (place, placed) in layout.groups.iter().enumerate() {
+            let risen = layout
+                .states
+                .iter()
+                .enumerate()
+                .filter_map(|(case, state)| Some((state.groups[place].backs_up?, case)));
+            if let Some((rise, case)) = risen.max_by(|a, b| a.0.m().total_cmp(&b.0.m())) {
+                let (name, case) = (words.name(placed.group.size), &roof.cases[case].name);
+                lines.push(format!("{}: {name} to {} above its sill in \"{case}\"", index + 1, words.depth(rise)));
+            }
+        }
+    }
+    lines
 }
 
 /// One line for each layout: its level under the laws of a thick wall, and whether that breaks a limit.
@@ -367,7 +399,7 @@ fn marks(layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
     let most = layouts.iter().map(|layout| layout.chord).fold(0.0, f64::max);
     if most > notes::CHORD_TOLD {
         texts.push(format!(
-            "{CHORD} straight lines between rated rows give up to {} % more flow than a weir's curve through them would.",
+            "{CHORD} straight lines and logarithms between rated rows differ by up to {} % of the flow.",
             trimmed(most * 100.0, 1)
         ));
     }
@@ -477,7 +509,7 @@ fn limits_not_held(
     if allowed <= sills && allowed > Length::ZERO {
         text += &format!(" The limit allows water up to {}, which is not above the lowest sill.", words.depth(allowed));
     } else if allowed <= Length::ZERO {
-        text += " The limit leaves no depth of water at all.";
+        text += " The limit leaves no level at the devices at all.";
     }
     text
 }

@@ -7,15 +7,15 @@ use crate::root::crossing;
 use crate::units::{Flow, Length, System};
 
 use super::page::{self, Block, Table};
-use super::words::Words;
+use super::ranking::out_of_range;
+use super::words::{Words, list};
 use super::{Format, Rated};
 
 /// Head, m, up to which the head for a flow is looked for.
 const HIGHEST: f64 = 10.0;
 
 fn curve(size: &Size, site: &Site, sill: Length, law: Law) -> Curve {
-    let site = Site { choice: site.choice.under(law), ..*site };
-    Size { law: Some(law), ..size.clone() }.curve(&site, sill, Length::ZERO).0
+    Size { law: Some(law), ..size.clone() }.curve(site, sill, Length::ZERO).0
 }
 
 /// The least head under which a device passes a flow; none where it never does.
@@ -84,6 +84,10 @@ fn blocks(rated: &Rated<'_>) -> Vec<Block> {
             blocks.push(Block::Text("Laws:".into()));
         }
     }
+    let beyond = beyond(rated, words);
+    if !beyond.is_empty() {
+        blocks.push(Block::List(beyond));
+    }
     blocks.push(Block::List(sources(rated, words)));
     blocks
 }
@@ -106,6 +110,27 @@ fn regimes(curve: &Curve, heads: &[Length], words: Words) -> String {
         _ => format!("{regime} from {}", words.size(*from)),
     };
     runs.iter().enumerate().map(run).collect::<Vec<_>>().join(", ")
+}
+
+/// The published ranges that a law is read beyond at some of the heads.
+fn beyond(rated: &Rated<'_>, words: Words) -> Vec<String> {
+    let mut lines = Vec::new();
+    for (law, curve) in curves(rated) {
+        let mut told: Vec<&str> = Vec::new();
+        let needed = rated.flow.and_then(|flow| head_for(&curve, flow));
+        let heads = if rated.flow.is_some() { needed.into_iter().collect() } else { rated.heads.clone() };
+        let mut parts = Vec::new();
+        for (range, value) in heads.iter().flat_map(|&head| curve.beyond_range(Head::of(head))) {
+            if !told.contains(&range.what) {
+                told.push(range.what);
+                parts.push(out_of_range(range, value, words));
+            }
+        }
+        if !parts.is_empty() {
+            lines.push(format!("{}, beyond its published range: {}.", law.name(), list(&parts)));
+        }
+    }
+    lines
 }
 
 fn title(rated: &Rated<'_>, words: Words) -> String {
@@ -132,6 +157,9 @@ fn sources(rated: &Rated<'_>, words: Words) -> Vec<String> {
             format!("{}: {}. Source: {}.", law.name(), account.form(words.0), account.source)
         })
         .collect();
+    if rated.laws.contains(&Law::Throat) {
+        lines.push(super::notes::throat(&rated.site, words));
+    }
     for law in kind.laws().iter().filter(|law| !rated.laws.contains(law) && rated.all) {
         lines.push(format!("{}: left out, it needs the thickness of the wall (--thickness).", law.name()));
     }

@@ -173,8 +173,10 @@ impl Words {
     pub(super) fn name(self, size: &Size) -> String {
         let tag = &size.tag;
         match &size.device {
-            Device::Rated { .. } => tag.to_string(),
-            Device::Open { width } | Device::Edge { width } => format!("{tag} {}", self.size(*width)),
+            Device::Rated { width: None, .. } => tag.to_string(),
+            Device::Rated { width: Some(width), .. } | Device::Open { width } | Device::Edge { width } => {
+                format!("{tag} {}", self.size(*width))
+            }
             Device::Closed { width, height } => {
                 format!("{tag} {} x {} {}", self.bare_size(*width), self.bare_size(*height), self.small_unit())
             }
@@ -207,8 +209,9 @@ impl Words {
     pub(super) fn window(self, groups: &[Placed<'_>]) -> String {
         let one = |placed: &Placed<'_>| {
             let (from, to) = (self.bare_size(placed.from), self.depth_down(placed.to));
-            // An end that rounds down to the start leaves no room that a builder could use.
-            if from == to { format!("{from} only") } else { format!("{from} to {to}") }
+            // An end that rounds down to the start, or under it, leaves no room that a builder could use.
+            let room = self.small(placed.to - placed.from) >= if self.us() { 0.01 } else { 1.0 };
+            if room && from != to { format!("{from} to {to}") } else { format!("{from} only") }
         };
         let mut all: Vec<_> = groups.iter().map(one).collect();
         if all.iter().any(|window| *window != all[0]) {

@@ -148,7 +148,6 @@ mod tests {
         }
     }
 
-    /// 26 / 5.2 - 0.4 = 4.6 in by load, 4.8 in by depth, 4 in to the parapet's top. Worked by hand.
     /// Along a channel the limits hold where it stands deepest: at its far end, sqrt(3) critical depths and more.
     #[test]
     fn a_channel_is_held_at_its_far_end() {
@@ -170,6 +169,7 @@ mod tests {
         assert_relative_eq!(here.load(allowed).to_psf(), load_of(Length::from_m(0.16) + here.ponding_head).to_psf());
     }
 
+    /// 26 / 5.2 - 0.4 = 4.6 in by load, 4.8 in by depth, 4 in to the parapet's top. Worked by hand.
     #[test]
     fn the_least_of_load_depth_and_parapet_holds() {
         let case = Case::as_designed();
