@@ -6,10 +6,11 @@
 use crate::device::{Law, Site, Size};
 use crate::input::Assumed;
 use crate::roof::Roof;
-use crate::search::{Answer, Options, PlanAsked, Plans, UnderLaw};
+use crate::search::{Answer, Opened, Options, PlanAsked, Plans, UnderLaw};
 use crate::units::{Flow, Length, System};
 
 mod contents;
+mod cures;
 mod json;
 mod notes;
 mod page;
@@ -48,6 +49,8 @@ pub struct Sized<'a, 'r> {
     pub work: bool,
     /// Each answer's first layout under every law that it can follow; empty where that is not asked for.
     pub laws: &'a [Vec<UnderLaw>],
+    /// What would cure each answer that has no layout, in the order of the answers; none for one that has.
+    pub cures: &'a [Option<Opened<'a>>],
     /// The plans of the whole roof, where one was asked for.
     pub plans: Option<Asked<'a, 'r>>,
 }

@@ -22,7 +22,7 @@ mod plan;
 mod problem;
 mod rank;
 
-pub use cure::{Cure, Cures, Relaxation, cures};
+pub use cure::{Cure, Cures, Opened, Relaxation, cures, relaxed};
 pub use plan::{Asked as PlanAsked, Plan, Plans, plan};
 pub use rank::Criterion;
 

@@ -12,7 +12,7 @@ use brimline::device::{Choice, Device, Kind, Law, Place, Rating, Size};
 use brimline::roof::channel::Channel;
 use brimline::roof::layout::{self, Asked, Group, Liftable};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm};
-use brimline::search::{self, Criterion, Options, Outcome, PlanAsked, Why};
+use brimline::search::{self, Criterion, Options, Outcome, PlanAsked, Relaxation, Why};
 use brimline::units::{Area, Flow, Intensity, Length, Load, Money, System};
 
 /// A small generator of its own, so that a failing seed can be run again anywhere.
@@ -516,4 +516,51 @@ fn the_plan_is_that_of_trying_everything() {
         assert!(costs.is_sorted_by(|a, b| a >= b), "seed {seed}: more sizes allowed are never dearer");
     }
     assert!(found > 100 && none > 100, "{found} plans, {none} without: the roofs are not varied enough");
+}
+
+/// One step less of a change, in the steps of a US roof; none where that is no change at all.
+fn a_step_less(change: Relaxation) -> Option<Relaxation> {
+    let inches = |length: Length, step: f64| {
+        let less = Length::from_nm(length.nm() - Length::inches(step).nm());
+        (less > Length::ZERO).then_some(less)
+    };
+    match change {
+        Relaxation::Load(more) => Some(more - Load::psf(0.1)).filter(|less| less.to_psf() > 1e-6).map(Relaxation::Load),
+        Relaxation::Depth(more) => inches(more, 0.01).map(Relaxation::Depth),
+        Relaxation::Limits(more) => inches(more, 0.01).map(Relaxation::Limits),
+        Relaxation::Sill(less) => inches(less, 0.01).map(Relaxation::Sill),
+        Relaxation::Devices(more) => (more > 1).then(|| Relaxation::Devices(more - 1)),
+        Relaxation::Groups(more) => (more > 1).then(|| Relaxation::Groups(more - 1)),
+        Relaxation::Width(more) => inches(more, 0.25).map(Relaxation::Width),
+        Relaxation::Height(more) => inches(more, 0.25).map(Relaxation::Height),
+        Relaxation::Edge(more) => inches(more, 3.0).map(Relaxation::Edge),
+        Relaxation::Demand(factor) => (factor < 0.9989).then_some(Relaxation::Demand(factor + 0.001)),
+    }
+}
+
+/// Every cure cures, and a step less of it does not: by trying everything on the roof so changed.
+#[test]
+fn cures_are_the_least_changes_that_cure() {
+    let (mut cured, mut steps) = (0, 0);
+    for seed in 1..=260_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15));
+        let (roof, mut options) = (roof(&mut dice), options(&mut dice));
+        options.mix = options.mix.min(2);
+        let answer = search::size(&roof, &options, &[0]).remove(0);
+        let Outcome::Infeasible(why) = answer.outcome else { continue };
+        for cure in search::cures(&roof, &options, 0, &why).found {
+            if matches!(cure.change, Relaxation::Devices(more) if more > 6) {
+                continue;
+            }
+            assert!(cure.layout().is_some(), "seed {seed}: {:?}", cure.change);
+            assert!(!everything(&cure.roof, &cure.options).is_empty(), "seed {seed}: {:?}", cure.change);
+            cured += 1;
+            if let Some(less) = a_step_less(cure.change) {
+                let (roof, options) = search::relaxed(&roof, &options, less);
+                assert!(everything(&roof, &options).is_empty(), "seed {seed}: {less:?} cures too");
+                steps += 1;
+            }
+        }
+    }
+    assert!(cured > 150 && steps > 100, "{cured} cures, {steps} with a step less");
 }

@@ -6,7 +6,7 @@ use std::process::ExitCode;
 
 use crate::input::{self, Project};
 use crate::report::{self, Format, Sized};
-use crate::search::{self, Answer, Outcome};
+use crate::search::{self, Answer, Cures, Outcome};
 
 use super::{Failure, Form, coloured_messages, deliver, faults, width};
 
@@ -58,6 +58,12 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         Outcome::Infeasible(_) => Vec::new(),
     };
     let laws: Vec<_> = if args.laws { answers.iter().map(first).collect() } else { Vec::new() };
+    let cured = |answer: &Answer<'_>| match &answer.outcome {
+        Outcome::Infeasible(why) => Some(search::cures(&project.roof, &options, answer.area, why)),
+        Outcome::Optimal(_) => None,
+    };
+    let cures: Vec<_> = answers.iter().map(cured).collect();
+    let opened: Vec<_> = cures.iter().map(|cures| cures.as_ref().map(Cures::open)).collect();
     let plans = project.plan.map(|asked| (asked, search::plan(&project.roof, &options, asked, &areas)));
     let sized = Sized {
         roof: &project.roof,
@@ -66,6 +72,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         answers: &answers,
         work: args.work,
         laws: &laws,
+        cures: &opened,
         plans: plans.as_ref().map(|(asked, found)| report::Asked { asked: *asked, found: found.as_ref() }),
     };
     deliver(&report::size(&sized, Format::from(args.format), width(args.output.as_ref())), args.output.as_ref())?;

@@ -5,7 +5,7 @@ use std::ops::Not;
 use serde::Serialize;
 
 use crate::device::{Kind, Site};
-use crate::search::{Answer, Outcome, Placed, Ranked, UnderLaw};
+use crate::search::{Answer, Cure, Opened, Outcome, Placed, Ranked, UnderLaw};
 use crate::units::{Length, Money};
 
 use super::words::Words;
@@ -40,7 +40,16 @@ struct Area<'a> {
     outcome: &'static str,
     #[serde(skip_serializing_if = "Option::is_none")]
     why: Option<String>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    cures: Option<Vec<CureFound>>,
     layouts: Vec<Layout<'a>>,
+}
+
+#[derive(Serialize)]
+struct CureFound {
+    change: &'static str,
+    amount: f64,
+    cost: Option<f64>,
 }
 
 #[derive(Serialize)]
@@ -221,12 +230,14 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
             ("infeasible", Some(ranking::infeasible(sized.roof, answer.area, why, words)), &[][..])
         }
     };
+    let place = sized.answers.iter().position(|known| known.area == answer.area);
     let layouts = layouts.iter().enumerate().map(|(index, ranked)| layout(sized, answer.area, index + 1, ranked));
     Area {
         name: &sized.roof.areas[answer.area].name,
         demand_m3_s: sized.roof.demands[answer.area].m3_per_s(),
         outcome,
         why,
+        cures: place.and_then(|place| sized.cures.get(place)).and_then(Option::as_ref).map(found_cures),
         layouts: layouts.collect(),
     }
 }
@@ -285,6 +296,14 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
         under_other_laws: others.iter().map(|under| under_law(sized, under)).collect(),
         notes: remarks,
     }
+}
+
+fn found_cures(opened: &Opened<'_>) -> Vec<CureFound> {
+    let found = |(cure, layout): &(&Cure, Ranked<'_>)| {
+        let (change, amount) = super::cures::amount(cure.change);
+        CureFound { change, amount, cost: layout.cost.map(Money::amount) }
+    };
+    opened.cures.iter().map(found).collect()
 }
 
 fn under_law<'a>(sized: &Sized<'a, '_>, under: &UnderLaw) -> Under<'a> {

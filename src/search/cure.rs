@@ -1,13 +1,14 @@
 //! What would cure an area that has no layout: for each single relaxation the least change that makes one exist.
 //!
-//! More limit, lower sills, more devices, another group, wider or higher openings, a longer edge, less rain: each, by itself,
-//! can only add layouts or add to what they carry. So a change that cures has every greater change cure as well, and the least
-//! is found by halving, each step a search for any layout at all. The amount is then rounded up to a step that can be built
-//! or asked for, and the roof so changed is handed back: searching it shows the layouts that the change opens.
+//! A change is made in steps that can be built or asked for, each step tried by a search for any layout at all. More limit,
+//! more devices, another group, a longer edge, less rain: each can only add layouts or add to what they carry. Where such a
+//! change cures every greater one does, and the least is found by halving. Lower sills and wider or higher openings carry more
+//! too, but may come to lie under the roof, fill the edge, leave the parapet or lose their freeboard: there every step is tried,
+//! from the least on. The roof so changed is handed back: searching it shows the layouts that the change opens.
 
 use crate::device::{Device, Size};
-use crate::roof::{LimitKind, Roof};
-use crate::units::{Length, Load, System};
+use crate::roof::{LimitKind, Roof, load_of};
+use crate::units::{Length, Load, Money, System};
 
 use super::infeasible::any;
 use super::problem::Problem;
@@ -20,6 +21,8 @@ pub enum Relaxation {
     Load(Load),
     /// The depth limit raised by this much, in every case.
     Depth(Length),
+    /// Both limits raised by this much water, where neither alone cures.
+    Limits(Length),
     /// Every set height lowered by this much.
     Sill(Length),
     /// The greatest count raised by this many.
@@ -47,6 +50,34 @@ pub struct Cure {
     pub options: Options,
 }
 
+/// The cures of an area, and what by itself cures nothing.
+#[derive(Clone, Debug)]
+pub struct Cures {
+    /// The cures, as they were tried.
+    pub found: Vec<Cure>,
+    /// Changes that were tried as far as they go without effect.
+    pub useless: Vec<Relaxation>,
+}
+
+/// Cures with the first layout that each opens.
+#[derive(Clone, Debug)]
+pub struct Opened<'a> {
+    /// Each cure and its layout, by the cost of the layout where prices are given, else as they were tried.
+    pub cures: Vec<(&'a Cure, Ranked<'a>)>,
+    /// Changes that were tried as far as they go without effect.
+    pub useless: &'a [Relaxation],
+}
+
+impl Cures {
+    /// Searches every roof so changed for its first layout.
+    pub fn open(&self) -> Opened<'_> {
+        let first = |cure| Some((cure, Cure::layout(cure)?));
+        let mut cures: Vec<_> = self.found.iter().filter_map(first).collect();
+        cures.sort_by_key(|(_, layout)| layout.cost.map_or(i64::MAX, Money::millionths));
+        Opened { cures, useless: &self.useless }
+    }
+}
+
 impl Cure {
     /// The first layout that the change opens.
     pub fn layout(&self) -> Option<Ranked<'_>> {
@@ -57,19 +88,32 @@ impl Cure {
     }
 }
 
-/// What a relaxation found: a cure, or that by itself it cures nothing.
-#[derive(Clone, Debug)]
-pub struct Cures {
-    /// The cures, by the cost of the first layout that each opens where prices are given, else as they were tried.
-    pub found: Vec<Cure>,
-    /// Changes that were tried as far as they go without effect.
-    pub useless: Vec<Relaxation>,
-}
-
 /// A relaxation on a scale of whole steps, from one step on.
 struct Scale {
     steps: u32,
     of: Box<dyn Fn(u32) -> Relaxation + Sync>,
+}
+
+impl Scale {
+    /// The least step that cures, if any does.
+    fn least(&self, cured: impl Fn(Relaxation) -> bool) -> Option<Relaxation> {
+        let cured = |step: u32| cured((self.of)(step));
+        let step = match (self.of)(1) {
+            Relaxation::Sill(_) | Relaxation::Width(_) | Relaxation::Height(_) => {
+                (1..=self.steps).find(|&step| cured(step))
+            }
+            _ if !cured(self.steps) => None,
+            _ => {
+                let (mut fails, mut passes) = (0, self.steps);
+                while passes - fails > 1 {
+                    let middle = fails + (passes - fails) / 2;
+                    if cured(middle) { passes = middle } else { fails = middle }
+                }
+                Some(passes)
+            }
+        };
+        step.map(&self.of)
+    }
 }
 
 /// The least single changes that cure an area without a layout.
@@ -78,26 +122,23 @@ pub fn cures(roof: &Roof, options: &Options, area: usize, why: &Why<'_>) -> Cure
     let options = Options { keep: 1, ..options.clone() };
     let mut cures = Cures { found: Vec::new(), useless: Vec::new() };
     for scale in scales(&alone, &options, why) {
-        let cured = |step: u32| {
-            let (roof, options) = changed(&alone, &options, (scale.of)(step));
-            let (problem, _) = Problem::new(&roof, 0, &options);
-            any(&problem)
-        };
-        if !cured(scale.steps) {
-            cures.useless.push((scale.of)(scale.steps));
+        let limit_cures =
+            cures.found.iter().any(|cure| matches!(cure.change, Relaxation::Load(_) | Relaxation::Depth(_)));
+        if limit_cures && matches!((scale.of)(1), Relaxation::Limits(_)) {
             continue;
         }
-        let (mut fails, mut passes) = (0, scale.steps);
-        while passes - fails > 1 {
-            let middle = fails + (passes - fails) / 2;
-            if cured(middle) { passes = middle } else { fails = middle }
-        }
-        let change = (scale.of)(passes);
-        let (roof, options) = changed(&alone, &options, change);
+        let least = scale.least(|change| {
+            let (roof, options) = relaxed(&alone, &options, change);
+            let (problem, _) = Problem::new(&roof, 0, &options);
+            any(&problem)
+        });
+        let Some(change) = least else {
+            cures.useless.push((scale.of)(scale.steps));
+            continue;
+        };
+        let (roof, options) = relaxed(&alone, &options, change);
         cures.found.push(Cure { change, roof, options });
     }
-    let cost = |cure: &Cure| cure.layout().and_then(|layout| layout.cost);
-    cures.found.sort_by_cached_key(|cure| cost(cure).map_or(i64::MAX, crate::units::Money::millionths));
     cures
 }
 
@@ -128,6 +169,10 @@ fn scales(roof: &Roof, options: &Options, why: &Why<'_>) -> Vec<Scale> {
         Some(LimitKind::Depth) => add(4000, Box::new(move |count| Relaxation::Depth(times(fine)(count)))),
         _ => {}
     }
+    if area.limits.iter().any(|limits| limits.load.is_some()) && area.limits.iter().any(|limits| limits.depth.is_some())
+    {
+        add(4000, Box::new(move |count| Relaxation::Limits(times(fine)(count))));
+    }
     let lowest = area
         .set_heights
         .iter()
@@ -156,8 +201,8 @@ fn scales(roof: &Roof, options: &Options, why: &Why<'_>) -> Vec<Scale> {
     scales
 }
 
-/// The roof and the options with one thing changed.
-fn changed(roof: &Roof, options: &Options, change: Relaxation) -> (Roof, Options) {
+/// A roof of one area and its options, with one thing changed.
+pub fn relaxed(roof: &Roof, options: &Options, change: Relaxation) -> (Roof, Options) {
     let (mut roof, mut options) = (roof.clone(), options.clone());
     let area = &mut roof.areas[0];
     match change {
@@ -166,6 +211,12 @@ fn changed(roof: &Roof, options: &Options, change: Relaxation) -> (Roof, Options
         }
         Relaxation::Depth(more) => {
             area.limits.iter_mut().for_each(|limits| limits.depth = limits.depth.map(|depth| depth + more));
+        }
+        Relaxation::Limits(more) => {
+            for limits in &mut area.limits {
+                limits.load = limits.load.map(|load| load + load_of(more));
+                limits.depth = limits.depth.map(|depth| depth + more);
+            }
         }
         Relaxation::Sill(less) => {
             let lower = |height: Length| Length::from_nm((height.nm() - less.nm()).max(0));

@@ -1,0 +1,108 @@
+//! What would cure an area without a layout, each change with the first layout that it opens.
+
+use crate::roof::load_of;
+use crate::search::{Cure, Opened, Ranked, Relaxation};
+use crate::units::{Length, Money};
+
+use super::page::Block;
+use super::words::{self, Words, list, trimmed};
+
+pub(super) fn blocks(opened: &Opened<'_>, words: Words) -> Vec<Block> {
+    let mut blocks = Vec::new();
+    if let [(_, first), ..] = &opened.cures[..] {
+        let order = if first.cost.is_some() { ", the cheapest openings first" } else { "" };
+        blocks.push(Block::Text(format!("Any one of these would cure it, the least of each kind{order}:")));
+        blocks.push(Block::List(opened.cures.iter().map(|(cure, layout)| line(cure, layout, words)).collect()));
+    }
+    if !opened.useless.is_empty() {
+        let kinds: Vec<_> = opened.useless.iter().map(|change| bare(*change)).collect();
+        let kinds = list(&kinds).replace(" and ", " or ");
+        blocks.push(Block::Text(format!("By itself no change of {kinds} would.")));
+    }
+    blocks
+}
+
+fn line(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
+    let cost = layout.cost.map_or(String::new(), |cost| format!(", {}", priced(cure.change, cost)));
+    format!("{}: {}{cost}", change(cure, layout, words), words.layout(layout))
+}
+
+/// A cost; of openings that no catalog has, what those they replace would cost.
+fn priced(change: Relaxation, cost: Money) -> String {
+    match change {
+        Relaxation::Width(_) | Relaxation::Height(_) => format!("at least {}", words::money(cost)),
+        _ => words::money(cost),
+    }
+}
+
+/// The change in words, with what it leads to.
+fn change(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
+    let limits = &cure.roof.areas[0].limits;
+    let loads = || listed(limits.iter().filter_map(|limits| limits.load).map(|load| words.given_load(load)));
+    let depths = || listed(limits.iter().filter_map(|limits| limits.depth).map(|depth| words.size(depth)));
+    match cure.change {
+        Relaxation::Load(more) => format!("load limit + {}, to {}", words.given_load(more), loads()),
+        Relaxation::Depth(more) => format!("depth limit + {}, to {}", words.size(more), depths()),
+        Relaxation::Limits(more) => {
+            format!("both limits + {} of water, {}", words.size(more), words.load(load_of(more)))
+        }
+        Relaxation::Sill(less) => {
+            let low = layout.groups.iter().any(|placed| placed.from < Length::mm(50.0));
+            let caution = if low { " (under 2 in: check the least set height of the code)" } else { "" };
+            format!("sills - {}{caution}", words.size(less))
+        }
+        Relaxation::Devices(more) => format!("{more} more {}", if more == 1 { "device" } else { "devices" }),
+        Relaxation::Groups(more) => {
+            format!("{more} more {} of size in a layout", if more == 1 { "kind" } else { "kinds" })
+        }
+        Relaxation::Width(more) => format!("openings {} wider than the catalogs have", words.size(more)),
+        Relaxation::Height(more) => format!("openings {} higher than the catalogs have", words.size(more)),
+        Relaxation::Edge(more) => format!("edge + {}", words.long(more)),
+        Relaxation::Demand(factor) => {
+            format!("area or rain - {} %, to {}", trimmed((1.0 - factor) * 100.0, 1), words.flow(cure.roof.demands[0]))
+        }
+    }
+}
+
+/// Each text once, in the order of the first.
+fn listed(texts: impl Iterator<Item = String>) -> String {
+    let mut unlike = Vec::new();
+    for text in texts {
+        if !unlike.contains(&text) {
+            unlike.push(text);
+        }
+    }
+    list(&unlike)
+}
+
+/// What a change is of, without its amount.
+pub(super) fn bare(change: Relaxation) -> &'static str {
+    match change {
+        Relaxation::Load(_) => "the load limit",
+        Relaxation::Depth(_) => "the depth limit",
+        Relaxation::Limits(_) => "the limits",
+        Relaxation::Sill(_) => "the sills",
+        Relaxation::Devices(_) => "the number of devices",
+        Relaxation::Groups(_) => "the sizes in a layout",
+        Relaxation::Width(_) => "the width of openings",
+        Relaxation::Height(_) => "the height of openings",
+        Relaxation::Edge(_) => "the edge",
+        Relaxation::Demand(_) => "the area or the rain",
+    }
+}
+
+/// The amount of a change in SI, with the key that JSON gives it.
+pub(super) fn amount(change: Relaxation) -> (&'static str, f64) {
+    match change {
+        Relaxation::Load(more) => ("load_limit_more_pa", more.pa()),
+        Relaxation::Depth(more) => ("depth_limit_more_m", more.m()),
+        Relaxation::Limits(more) => ("limits_more_m", more.m()),
+        Relaxation::Sill(less) => ("sill_less_m", less.m()),
+        Relaxation::Devices(more) => ("devices_more", f64::from(more)),
+        Relaxation::Groups(more) => ("groups_more", f64::from(more)),
+        Relaxation::Width(more) => ("width_more_m", more.m()),
+        Relaxation::Height(more) => ("height_more_m", more.m()),
+        Relaxation::Edge(more) => ("edge_more_m", more.m()),
+        Relaxation::Demand(factor) => ("demand_factor", factor),
+    }
+}
