@@ -147,7 +147,8 @@ fn a_leader_caps_what_it_follows_and_says_from_where() {
     let text = String::from_utf8(output.stdout).expect("UTF-8");
     assert!(text.contains("2 of S 12 x 6 in at 2 in"), "{text}");
     assert!(text.contains("S 12 x 6 in: the leader governs above 1.54 in of head."), "{text}");
-    let shared = folder.with("c.toml", &format!("{ONE_SCUPPER}leader = {{ diameter = \"3 in\", serves = 2 }}\n"));
+    let shared = folder
+        .with("c.toml", &format!("{ONE_SCUPPER}leader = {{ diameter = \"3 in\", fill = \"1/3\", serves = 2 }}\n"));
     assert!(shared.refused(&["size", "p.toml"]).contains("a leader shared by several devices is not computed"));
 }
 

@@ -233,7 +233,7 @@ fn read_area<'a>(
     let set_heights = section
         .get("set_height")
         .map_or_else(|| setting.search.set_heights.clone(), |cell| grid::lengths(&cell, Least::Zero).map(Some));
-    let channel = section.get("channel").map(|cell| flow::channel(&cell));
+    let channel = section.get("channel").map(|cell| flow::channel(&cell, |name| taken.take(name, &called)));
     if let (Some(kinds), Some(parapet)) = (&kinds, &parapet) {
         thickness_given(section, setting, kinds.as_ref(), parapet, &called);
     }

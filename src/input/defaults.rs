@@ -14,6 +14,10 @@ pub(super) const COUNT: RangeInclusive<u32> = 1..=8;
 pub(super) const WALL_SHARE: f64 = 0.5;
 /// Part of an area's demand that runs on to the one that receives from it.
 pub(super) const SHARE: f64 = 1.0;
+/// Slope of a channel: the least that a gutter or valley has, and the deepest water.
+pub(super) const CHANNEL_SLOPE: f64 = 0.0;
+/// Roughness of a channel, Manning's n: membrane or sheet metal. Common practice.
+pub(super) const CHANNEL_ROUGHNESS: f64 = 0.013;
 /// What layouts are ranked by.
 pub(super) const RANK_BY: [Criterion; 2] = [Criterion::Cost, Criterion::Load];
 
@@ -29,7 +33,7 @@ pub struct Default {
 }
 
 /// Every default, in the order of the files.
-pub static DEFAULTS: [Default; 11] = [
+pub static DEFAULTS: [Default; 13] = [
     entry("search.rank_by", "cost, load", "the cheapest first; of equals the one with less load"),
     entry("search.keep", "8", "eight layouts are listed for each area"),
     entry("search.mix", "1", "all devices of a layout are of one size"),
@@ -40,6 +44,8 @@ pub static DEFAULTS: [Default; 11] = [
     entry("area.edge", "unlimited", "openings may use any length of parapet"),
     entry("area.gap", "0", "openings may stand side by side"),
     entry("area.roof_at_wall", "0", "the roof at the parapet is as low as the low point"),
+    entry("channel.slope", "0", "the channel is level, which stands deepest"),
+    entry("channel.roughness", "0.013", "Manning's n of membrane or sheet metal"),
     entry("receives.share", "1", "all that leaves the other area arrives"),
 ];
 
@@ -63,6 +69,8 @@ mod tests {
         assert_eq!(value("search.keep"), KEEP.to_string());
         assert_eq!(value("search.count"), format!("{} to {}", COUNT.start(), COUNT.end()));
         assert_eq!(value("area.wall_share"), WALL_SHARE.to_string());
+        assert_eq!(value("channel.slope"), CHANNEL_SLOPE.to_string());
+        assert_eq!(value("channel.roughness"), CHANNEL_ROUGHNESS.to_string());
         assert_eq!(value("receives.share"), SHARE.to_string());
         assert_eq!(value("search.rank_by"), RANK_BY.map(Criterion::name).join(", "));
     }

@@ -5,6 +5,7 @@ use crate::hydraulics::leader::Fill;
 use crate::hydraulics::practice::Transition;
 use crate::roof::channel::Channel;
 
+use super::defaults::{CHANNEL_ROUGHNESS, CHANNEL_SLOPE};
 use super::section::{Cell, Keys, Section, optional};
 
 pub(super) static FLOW: Keys = Keys {
@@ -65,7 +66,8 @@ pub(super) fn following(section: &Section<'_>) -> Option<Following> {
 fn leader(section: &Section<'_>) -> Option<Leader> {
     let diameter = section.need("diameter", "give its inside diameter: leader = { diameter = \"4 in\" }");
     let diameter = diameter.and_then(|cell| cell.positive_length());
-    let fill = section.get("fill").map_or(Some(Fill::SevenTwentyFourths), |cell| cell.word(&FILLS));
+    let fill = section.need("fill", "say how full it may run: fill = \"7/24\", the lesser, or \"1/3\"");
+    let fill = fill.and_then(|cell| cell.word(&FILLS));
     if let Some(cell) = section.get("serves")
         && cell.whole(1, 1000)? > 1
     {
@@ -88,16 +90,21 @@ fn conductor_head(section: &Section<'_>) -> Option<ConductorHead> {
     Some(ConductorHead { outlet: outlet?, depth: depth?, lip: lip?, overflow_width: overflow_width? })
 }
 
-/// Roughness of a channel where none is given: membrane or sheet metal. Common practice.
-const CHANNEL_ROUGHNESS: f64 = 0.013;
-
-/// The gutter or valley of an area.
-pub(super) fn channel(cell: &Cell<'_>) -> Option<Channel> {
+/// The gutter or valley of an area; `taken` hears of each default.
+pub(super) fn channel(cell: &Cell<'_>, mut taken: impl FnMut(&'static str)) -> Option<Channel> {
     let section = cell.section(&CHANNEL)?;
     let example = "channel = { width = \"3 ft\", length = \"40 ft\", slope = \"0 in/ft\" }";
     let length = |key| section.need(key, example).and_then(|cell| cell.positive_length());
     let (width, length) = (length("width"), length("length"));
-    let slope = section.get("slope").map_or(Some(0.0), |cell| cell.slope());
-    let roughness = section.get("roughness").map_or(Some(CHANNEL_ROUGHNESS), |cell| cell.number_not_negative());
+    let mut otherwise = |key: &'static str, name| {
+        let cell = section.get(key);
+        if cell.is_none() {
+            taken(name);
+        }
+        cell
+    };
+    let slope = otherwise("slope", "channel.slope").map_or(Some(CHANNEL_SLOPE), |cell| cell.slope());
+    let roughness = otherwise("roughness", "channel.roughness");
+    let roughness = roughness.map_or(Some(CHANNEL_ROUGHNESS), |cell| cell.number_not_negative());
     Some(Channel { width: width?, length: length?, slope: slope?, roughness: roughness? })
 }
