@@ -297,3 +297,24 @@ fn catalog_lists_every_device_and_every_fault() {
     let document = folder.json(&["catalog", &shipped, "--format", "json"]);
     assert_eq!(document["sizes"].as_array().map(Vec::len), Some(5 + 2 + 3 + 3 + 3 + 2));
 }
+
+/// What is before and behind a device is in its listing. The leader by hand: 27.8 (7/24)^(5/3) 6^(8/3) = 424 gal/min.
+#[test]
+fn a_catalog_tells_what_is_before_and_behind_its_devices() {
+    let shipped = format!("{}/catalogs/sleeves-drains-and-edges.toml", env!("CARGO_MANIFEST_DIR"));
+    let folder = Folder::new("fittings");
+    let listing = String::from_utf8(folder.run(&["catalog", &shipped]).stdout).expect("UTF-8");
+    for line in [
+        "- RD: a ring dam of 10 in, 2 in above the throat, under a dome of 60 in2 free.",
+        "- RD: a leader of 6 in, 7/24 full, carries 424 gpm.",
+        "- CH: a conductor head, its outlet of 5 in 10 in below its lip, the lip 1 in below the sill, its overflow 16 in wide.",
+        "- GS: behind a guard that lets 0.7 of the flow pass.",
+    ] {
+        assert!(listing.contains(line), "{line}\n{listing}");
+    }
+    let document = folder.json(&["catalog", &shipped, "--format", "json"]);
+    let sizes = document["sizes"].as_array().expect("sizes");
+    let drain = sizes.iter().find(|size| size["device"] == "RD").expect("a drain");
+    approx::assert_relative_eq!(drain["leader_m3_s"].as_f64().expect("a flow"), 424.0 * 6.309e-5, max_relative = 1e-3);
+    assert_eq!(drain["leader_fill"], "7/24");
+}

@@ -28,6 +28,14 @@ impl Fill {
             Self::OneThird => 1.0 / 3.0,
         }
     }
+
+    /// The share as files write it.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::SevenTwentyFourths => "7/24",
+            Self::OneThird => "1/3",
+        }
+    }
 }
 
 /// What a vertical leader carries at a fill, Q = 27.8 r^(5/3) d^(8/3).

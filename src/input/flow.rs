@@ -24,7 +24,8 @@ static CHANNEL: Keys = Keys { table: "`channel`", known: &["width", "length", "s
 const TRANSITIONS: [(&str, Transition); 3] =
     [("lesser-of", Transition::LesserOf), ("linear", Transition::Linear), ("table", Transition::Table)];
 
-const FILLS: [(&str, Fill); 2] = [("7/24", Fill::SevenTwentyFourths), ("1/3", Fill::OneThird)];
+const FILLS: [(&str, Fill); 2] =
+    [(Fill::SevenTwentyFourths.name(), Fill::SevenTwentyFourths), (Fill::OneThird.name(), Fill::OneThird)];
 
 /// The laws that a project chooses; those it leaves out are the default's.
 pub(super) fn choice(section: &Section<'_>) -> Option<Choice> {

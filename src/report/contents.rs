@@ -81,6 +81,7 @@ fn blocks(sizes: &[Size], title: &str, words: Words) -> Vec<Block> {
         if let Some(source) = &size.source {
             lines.push(format!("{}: source {source}.", size.tag));
         }
+        lines.extend(fittings(size, words).into_iter().map(|fitting| format!("{}: {fitting}.", size.tag)));
         if let Device::Rated { rating, .. } = &size.device {
             let rows = rating.rows();
             let (first, last) = (rows[0], rows[rows.len() - 1]);
@@ -103,6 +104,34 @@ fn blocks(sizes: &[Size], title: &str, words: Words) -> Vec<Block> {
         blocks.push(Block::List(lines));
     }
     blocks
+}
+
+/// What is on a device, before it and behind it, the same for all its sizes.
+fn fittings(size: &Size, words: Words) -> Vec<String> {
+    let mut fittings = Vec::new();
+    if let Device::Drain(drain) = &size.device {
+        let dome =
+            drain.free_area.map_or(String::new(), |area| format!(", under a dome of {} free", words.opening(area)));
+        let (dam, height) = (words.size(drain.dam), words.size(drain.dam_height));
+        fittings.push(format!("a ring dam of {dam}, {height} above the throat{dome}"));
+    }
+    if size.screen < 1.0 {
+        fittings.push(format!("behind a guard that lets {} of the flow pass", words::trimmed(size.screen, 3)));
+    }
+    if let Some(leader) = size.following.leader {
+        let (diameter, flow) = (words.size(leader.diameter), words.flow(leader.capacity()));
+        fittings.push(format!("a leader of {diameter}, {} full, carries {flow}", leader.fill.name()));
+    }
+    if let Some(head) = size.following.conductor_head {
+        fittings.push(format!(
+            "a conductor head, its outlet of {} {} below its lip, the lip {} below the sill, its overflow {} wide",
+            words.size(head.outlet),
+            words.size(head.depth),
+            words.size(head.lip),
+            words.size(head.overflow_width)
+        ));
+    }
+    fittings
 }
 
 fn set_heights(size: &Size, words: Words) -> String {
@@ -163,11 +192,27 @@ struct Listed<'a> {
     price: Option<f64>,
     law: Option<&'static str>,
     screen: f64,
+    dam_m: Option<f64>,
+    dam_height_m: Option<f64>,
+    leader_diameter_m: Option<f64>,
+    leader_fill: Option<&'static str>,
+    leader_m3_s: Option<f64>,
+    conductor_head_outlet_m: Option<f64>,
     source: Option<&'a str>,
 }
 
 fn json(sizes: &[Size], title: &str) -> String {
+    let drain = |size: &Size| match size.device {
+        Device::Drain(drain) => Some(drain),
+        _ => None,
+    };
     let listed = sizes.iter().map(|size| Listed {
+        dam_m: drain(size).map(|drain| drain.dam.m()),
+        dam_height_m: drain(size).map(|drain| drain.dam_height.m()),
+        leader_diameter_m: size.following.leader.map(|leader| leader.diameter.m()),
+        leader_fill: size.following.leader.map(|leader| leader.fill.name()),
+        leader_m3_s: size.following.leader.map(|leader| leader.capacity().m3_per_s()),
+        conductor_head_outlet_m: size.following.conductor_head.map(|head| head.outlet.m()),
         device: &size.tag,
         kind: size.device.kind().name(),
         place: if size.place == Place::Edge { "edge" } else { "interior" },

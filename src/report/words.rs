@@ -107,6 +107,15 @@ impl Words {
         format!("{} {}", self.bare_area(area), if self.us() { "ft2" } else { "m2" })
     }
 
+    /// The area of an opening.
+    pub(super) fn opening(self, area: Area) -> String {
+        if self.us() {
+            format!("{} in2", trimmed(area.to_ft2() * 144.0, 1))
+        } else {
+            format!("{} cm2", trimmed(area.m2() * 1e4, 1))
+        }
+    }
+
     /// A rain intensity.
     pub(super) fn intensity(self, intensity: Intensity) -> String {
         if self.us() {
