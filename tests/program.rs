@@ -1,5 +1,6 @@
 //! The whole program: examples and README as they stand, formats, exit codes, and the same bytes each time.
 
+use approx::assert_relative_eq;
 use std::path::Path;
 use std::process::{Command, Output};
 
@@ -178,6 +179,35 @@ fn an_area_without_a_layout_says_why_and_the_others_are_answered() {
         "{why}"
     );
     assert_eq!(document["areas"][1]["outcome"], "optimal");
+}
+
+/// The limit that is named as a cure, written into the file, makes the layout that it promised; a tenth of a psf less makes none.
+#[test]
+fn a_cure_written_into_the_file_cures() {
+    let example = "examples/light-roof-infeasible.toml";
+    let run = |text: &str| {
+        let folder = std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join("target").join("cured");
+        std::fs::create_dir_all(&folder).expect("a folder can be made");
+        let text = text.replace("../catalogs", &format!("{}/catalogs", env!("CARGO_MANIFEST_DIR")));
+        let file = folder.join("roof.toml");
+        std::fs::write(&file, text).expect("a file can be written");
+        let output = brimline(&["size", file.to_str().expect("UTF-8"), "--area", "long span", "--format", "json"]);
+        let document: serde_json::Value = serde_json::from_slice(&output.stdout).expect("JSON");
+        document["areas"][0].clone()
+    };
+    let text = std::fs::read_to_string(example).expect("an example");
+    let area = run(&text);
+    let cure = area["cures"].as_array().expect("cures").iter().find(|cure| cure["change"] == "load_limit_more_pa");
+    let cure = cure.expect("a greater limit cures");
+    let limit = 20.0 + cure["amount"].as_f64().expect("a load") / 47.880_26;
+    assert_relative_eq!(limit, 24.1, max_relative = 1e-6);
+    let cured = run(&text.replace("load = \"20 psf\"", "load = \"24.1 psf\""));
+    assert_eq!(cured["outcome"], "optimal");
+    assert_eq!(cured["layouts"][0]["cost"], cure["cost"]);
+    assert_eq!(cured["layouts"][0]["groups"], cure["groups"]);
+    assert_eq!(run(&text.replace("load = \"20 psf\"", "load = \"24 psf\""))["outcome"], "infeasible");
+    let nothing = area["cures_nothing"].as_array().expect("a list");
+    assert!(nothing.iter().any(|change| change == "height_more_m"), "{nothing:?}");
 }
 
 #[test]

@@ -41,15 +41,18 @@ struct Area<'a> {
     #[serde(skip_serializing_if = "Option::is_none")]
     why: Option<String>,
     #[serde(skip_serializing_if = "Option::is_none")]
-    cures: Option<Vec<CureFound>>,
+    cures: Option<Vec<CureFound<'a>>>,
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    cures_nothing: Vec<&'static str>,
     layouts: Vec<Layout<'a>>,
 }
 
 #[derive(Serialize)]
-struct CureFound {
+struct CureFound<'a> {
     change: &'static str,
     amount: f64,
     cost: Option<f64>,
+    groups: Vec<Group<'a>>,
 }
 
 #[derive(Serialize)]
@@ -231,13 +234,16 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
         }
     };
     let place = sized.answers.iter().position(|known| known.area == answer.area);
+    let opened = place.and_then(|place| sized.cures.get(place)).and_then(Option::as_ref);
     let layouts = layouts.iter().enumerate().map(|(index, ranked)| layout(sized, answer.area, index + 1, ranked));
     Area {
         name: &sized.roof.areas[answer.area].name,
         demand_m3_s: sized.roof.demands[answer.area].m3_per_s(),
         outcome,
         why,
-        cures: place.and_then(|place| sized.cures.get(place)).and_then(Option::as_ref).map(found_cures),
+        cures: opened.map(found_cures),
+        cures_nothing: opened
+            .map_or(Vec::new(), |opened| opened.useless.iter().map(|&change| super::cures::amount(change).0).collect()),
         layouts: layouts.collect(),
     }
 }
@@ -298,10 +304,12 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
     }
 }
 
-fn found_cures(opened: &Opened<'_>) -> Vec<CureFound> {
-    let found = |(cure, layout): &(&Cure, Ranked<'_>)| {
+fn found_cures<'a>(opened: &'a Opened<'_>) -> Vec<CureFound<'a>> {
+    let found = |(cure, layout): &'a (&Cure, Ranked<'_>)| {
         let (change, amount) = super::cures::amount(cure.change);
-        CureFound { change, amount, cost: layout.cost.map(Money::amount) }
+        let site = cure.roof.site(0, None);
+        let groups = layout.groups.iter().map(|placed| group(placed, &site)).collect();
+        CureFound { change, amount, cost: layout.cost.map(Money::amount), groups }
     };
     opened.cures.iter().map(found).collect()
 }
