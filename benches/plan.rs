@@ -5,7 +5,7 @@ use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Kind, Size};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Storm, demand};
-use brimline::search::{self, Criterion, Options, PlanAsked};
+use brimline::search::{self, Criterion, Options, PlanAsked, Raises};
 use brimline::units::{Area, Length, Load, Money, System};
 
 fn main() {
@@ -96,4 +96,30 @@ fn fifty_areas_unlike(bencher: divan::Bencher, most: u32) {
 #[divan::bench(args = [3, 4], sample_count = 10)]
 fn fifty_areas_eight_plans(bencher: divan::Bencher, most: u32) {
     plan(bencher, &roof(50, sizes(6..=36, &[4, 6, 8, 10]), true), most, 8);
+}
+
+/// The plan of three sizes at forty-one limits, and the treads of one area.
+#[divan::bench(sample_count = 5)]
+fn fifty_areas_forty_raises(bencher: divan::Bencher) {
+    let roof = roof(50, sizes(6..=36, &[4, 6, 8, 10]), true);
+    let areas: Vec<usize> = (0..50).collect();
+    let asked = PlanAsked { sizes: Some(3), size_price: Money::nearest(300.0) };
+    let raises = Raises { step: Load::psf(1.0), steps: -6..=34 };
+    bencher.bench(|| {
+        let plans = search::plan_tradeoff(&roof, &options(1), asked, &areas, &raises).expect("all priced");
+        assert!(plans.windows(2).all(|pair| pair[1].cost <= pair[0].cost || pair[0].cost.is_none()), "never dearer");
+        plans.len()
+    });
+}
+
+#[divan::bench(sample_count = 10)]
+fn treads_of_an_area(bencher: divan::Bencher) {
+    // The largest of the first ten.
+    let (roof, area) = (roof(10, sizes(6..=36, &[4, 6, 8, 10]), false), 8);
+    let raises = Raises { step: Load::psf(0.01), steps: 0..=2000 };
+    bencher.bench(|| {
+        let treads = search::tradeoff(&roof, &options(1), area, &raises);
+        assert!(treads.len() > 5, "a limit 20 psf higher saves more than once");
+        treads.len()
+    });
 }

@@ -1,12 +1,12 @@
 //! The command line: flags, streams and exit codes. Everything a command does, the library can do.
 
 use std::io::{self, IsTerminal, Write};
-use std::path::PathBuf;
+use std::path::{Path, PathBuf};
 use std::process::ExitCode;
 
 use clap::{Parser, Subcommand, ValueEnum};
 
-use crate::input::Faults;
+use crate::input::{self, Faults, Project};
 use crate::report::Format;
 use crate::units::System;
 
@@ -14,6 +14,7 @@ mod catalog;
 mod rate;
 mod size;
 mod start;
+mod tradeoff;
 
 /// Exit code for input that cannot be used.
 const UNUSABLE: u8 = 2;
@@ -38,6 +39,7 @@ enum Command {
     Rate(Box<rate::Args>),
     Catalog(catalog::Args),
     Start(start::Args),
+    Tradeoff(tradeoff::Args),
 }
 
 /// The forms of a result.
@@ -122,6 +124,7 @@ pub fn run() -> ExitCode {
         Command::Rate(args) => rate::run(args),
         Command::Catalog(args) => catalog::run(args),
         Command::Start(args) => start::run(args),
+        Command::Tradeoff(args) => tradeoff::run(args),
     };
     match done {
         Ok(code) => code,
@@ -159,4 +162,36 @@ fn deliver(text: &str, file: Option<&PathBuf>) -> Result<(), Failure> {
             Ok(out.flush()?)
         }
     }
+}
+
+/// A quantity above zero that a flag gives.
+fn quantity<T>(flag: &str, text: Option<&String>, value: impl Fn(T) -> f64) -> Result<Option<T>, Failure>
+where
+    T: std::str::FromStr<Err = crate::units::Fault> + Copy,
+{
+    let Some(text) = text else { return Ok(None) };
+    match text.parse::<T>() {
+        Ok(found) if value(found) > 0.0 => Ok(Some(found)),
+        Ok(_) => Err(Failure::said(&format!("{flag}: `{text}` is not above zero"), "give a value above zero")),
+        Err(fault) => Err(Failure::said(&format!("{flag}: {fault}"), &fault.help())),
+    }
+}
+
+/// Indices of the areas asked for, in the order of the file; all of them where none is named.
+fn wanted(file: &Path, asked: &[String], project: &Project) -> Result<Vec<usize>, Failure> {
+    let names = || project.roof.areas.iter().map(|area| area.name.as_str());
+    for wanted in asked {
+        if !names().any(|name| name == wanted) {
+            let near =
+                input::nearest(wanted, names()).map_or(String::new(), |near| format!("; did you mean `{near}`?"));
+            let all: Vec<_> = names().take(12).collect();
+            return Err(Failure::Message(format!(
+                "error: there is no area `{wanted}` in {}{near}\n  = help: areas are {}",
+                file.display(),
+                all.join(", ")
+            )));
+        }
+    }
+    let chosen = |name: &str| asked.is_empty() || asked.iter().any(|wanted| wanted == name);
+    Ok(names().enumerate().filter(|(_, name)| chosen(name)).map(|(index, _)| index).collect())
 }

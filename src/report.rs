@@ -6,8 +6,8 @@
 use crate::device::{Law, Site, Size};
 use crate::input::Assumed;
 use crate::roof::Roof;
-use crate::search::{Answer, Opened, Options, PlanAsked, Plans, UnderLaw};
-use crate::units::{Flow, Length, System};
+use crate::search::{Answer, Cure, Opened, Options, PlanAsked, PlanAt, Plans, UnderLaw};
+use crate::units::{Flow, Length, Load, System};
 
 mod contents;
 mod cures;
@@ -18,6 +18,7 @@ mod plan;
 mod ranking;
 mod rate;
 mod schedule;
+mod tradeoff;
 mod words;
 mod work;
 
@@ -100,6 +101,26 @@ pub use rate::head_for;
 /// Writes what a device passes under each law.
 pub fn rate(rated: &Rated<'_>, format: Format, width: usize) -> String {
     rate::write(rated, format, width)
+}
+
+/// What a report of least cost against the load limit is made of.
+#[derive(Clone, Debug)]
+pub struct Traded<'a> {
+    /// The roof as given.
+    pub roof: &'a Roof,
+    /// The least raise that was looked at.
+    pub lowest: Load,
+    /// The greatest.
+    pub highest: Load,
+    /// The treads of each area, by its index.
+    pub areas: Vec<(usize, Vec<Cure>)>,
+    /// The cheapest plan at each step, where a plan is asked for; an inner none where a device has no price.
+    pub plans: Option<Option<Vec<PlanAt>>>,
+}
+
+/// Writes what more load on the roof saves.
+pub fn tradeoff(traded: &Traded<'_>, format: Format, width: usize) -> String {
+    tradeoff::write(traded, format, width)
 }
 
 /// Writes what is in a catalog.

@@ -21,10 +21,12 @@ mod infeasible;
 mod plan;
 mod problem;
 mod rank;
+mod tradeoff;
 
 pub use cure::{Cure, Cures, Opened, Relaxation, cures, relaxed};
 pub use plan::{Asked as PlanAsked, Plan, Plans, plan};
 pub use rank::Criterion;
+pub use tradeoff::{PlanAt, Raises, plan_tradeoff, tradeoff};
 
 use best::{Best, Found, reported};
 use dive::{Aim, dive};

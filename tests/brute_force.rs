@@ -564,3 +564,39 @@ fn cures_are_the_least_changes_that_cure() {
     }
     assert!(cured > 150 && steps > 100, "{cured} cures, {steps} with a step less");
 }
+
+/// The treads of least cost are what a search at every single step finds.
+#[test]
+fn treads_are_the_least_costs_at_every_step() {
+    let (mut roofs, mut risers) = (0, 0);
+    for seed in 1..=400_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15));
+        let (roof, options) = (roof(&mut dice), options(&mut dice));
+        if roof.sizes.iter().any(|size| size.price.is_none()) {
+            continue;
+        }
+        let raises = search::Raises { step: Load::psf(0.5), steps: -12..=24 };
+        let treads = search::tradeoff(&roof, &options, 0, &raises);
+        let by_cost = Options { rank_by: vec![search::Criterion::Cost], keep: 1, ..options };
+        let cost = |roof: &Roof, options: &Options| match search::size(roof, options, &[0]).remove(0).outcome {
+            Outcome::Optimal(layouts) => layouts[0].cost,
+            Outcome::Infeasible(_) => None,
+        };
+        let mut reached = treads.iter().peekable();
+        let mut told = None;
+        for step in raises.steps.clone() {
+            let raise = raises.step * f64::from(step);
+            if let Some(tread) = reached.next_if(|tread| tread.change == Relaxation::Load(raise)) {
+                let before = told;
+                told = tread.layout().and_then(|layout| layout.cost);
+                assert!(told.is_some() && told != before, "seed {seed}: {:?} is a riser", tread.change);
+                risers += usize::from(before.is_some());
+            }
+            let (roof, options) = search::relaxed(&roof, &by_cost, Relaxation::Load(raise));
+            assert_eq!(told, cost(&roof, &options), "seed {seed}: raised by {step} steps");
+        }
+        assert!(reached.next().is_none(), "seed {seed}: every tread is at a step");
+        roofs += 1;
+    }
+    assert!(roofs > 100 && risers > 100, "{roofs} roofs, {risers} risers");
+}

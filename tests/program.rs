@@ -210,6 +210,42 @@ fn a_cure_written_into_the_file_cures() {
     assert!(nothing.iter().any(|change| change == "height_more_m"), "{nothing:?}");
 }
 
+fn tradeoff(arguments: &[&str]) -> serde_json::Value {
+    let output = brimline(&[&["tradeoff"], arguments, &["--format", "json"]].concat());
+    serde_json::from_slice(&output.stdout).unwrap_or_else(|_| panic!("{}", String::from_utf8_lossy(&output.stderr)))
+}
+
+/// The trade-off begins with what `size` says of the roof as given, for an area and for the plan.
+#[test]
+fn the_tradeoff_begins_at_the_roof_as_given() {
+    let traded = tradeoff(&["examples/three-sizes.toml", "--up", "5 psf"]);
+    let sized = json("three-sizes", &[]);
+    assert_eq!(traded["format"], "brimline tradeoff 1");
+    assert_eq!(traded["plan"].as_array().map(Vec::len), Some(6), "0, 1, 2, 3, 4 and 5 psf");
+    assert_eq!(traded["plan"][0]["cost"], sized["plan"]["cost"]);
+    let areas = traded["areas"].as_array().expect("areas");
+    for (area, known) in areas.iter().zip(sized["areas"].as_array().expect("areas")) {
+        assert_eq!(area["name"], known["name"]);
+        assert_eq!(area["treads"][0]["load_limit_more_pa"], 0.0);
+        assert_eq!(area["treads"][0]["cost"], known["layouts"][0]["cost"]);
+    }
+}
+
+/// A roof without a layout has its first at the raise that the cure rounds up to a tenth of a psf: 24.1 psf less 20.
+#[test]
+fn the_tradeoff_of_a_roof_without_a_layout_begins_where_it_has_one() {
+    let traded = tradeoff(&["examples/light-roof-infeasible.toml", "--area", "long span"]);
+    let first = traded["areas"][0]["treads"][0]["load_limit_more_pa"].as_f64().expect("a load") / 47.880_26;
+    assert!(first > 4.0 && first < 4.1 + 1e-6, "{first}");
+    let none = brimline(&["tradeoff", "examples/light-roof-infeasible.toml", "--area", "long span", "--up", "4 psf"]);
+    assert_eq!(none.status.code(), Some(1));
+    assert!(String::from_utf8_lossy(&none.stdout).contains("No layout with a price, even with + 4 psf."));
+    let wrong = brimline(&["tradeoff", "examples/harbour-depot.toml", "--up", "4 in"]);
+    assert_eq!(wrong.status.code(), Some(2));
+    let many = brimline(&["tradeoff", "examples/harbour-depot.toml", "--step", "0.001 psf"]);
+    assert!(String::from_utf8_lossy(&many.stderr).contains("more than 1,000 steps"));
+}
+
 #[test]
 fn one_thread_and_two_give_the_same_bytes() {
     let binary = snapbox::cmd::cargo_bin!("brimline");

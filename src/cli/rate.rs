@@ -8,7 +8,7 @@ use crate::input;
 use crate::report::{self, Format, Rated};
 use crate::units::{Area, Flow, Length};
 
-use super::{Failure, Form, Units, deliver, faults, width};
+use super::{Failure, Form, Units, deliver, faults, quantity, width};
 
 /// Show what a device of any size passes under any flow law: a table of heads and flows, or the head for a flow.
 ///
@@ -119,19 +119,6 @@ fn kinds_would_pass() -> String {
     let names: Vec<_> =
         Kind::ALL.iter().filter(|&&kind| kind != Kind::Rated).map(|kind| kind.name().replace(' ', "-")).collect();
     format!("{} would pass", names.join(", "))
-}
-
-/// A quantity above zero that a flag gives.
-fn quantity<T>(flag: &str, text: Option<&String>, value: impl Fn(T) -> f64) -> Result<Option<T>, Failure>
-where
-    T: std::str::FromStr<Err = crate::units::Fault> + Copy,
-{
-    let Some(text) = text else { return Ok(None) };
-    match text.parse::<T>() {
-        Ok(found) if value(found) > 0.0 => Ok(Some(found)),
-        Ok(_) => Err(Failure::said(&format!("{flag}: `{text}` is not above zero"), "give a value above zero")),
-        Err(fault) => Err(Failure::said(&format!("{flag}: {fault}"), &fault.help())),
-    }
 }
 
 fn length(flag: &str, text: Option<&String>) -> Result<Option<Length>, Failure> {

@@ -4,11 +4,11 @@ use std::io::{self, Write};
 use std::path::PathBuf;
 use std::process::ExitCode;
 
-use crate::input::{self, Project};
+use crate::input;
 use crate::report::{self, Format, Sized};
 use crate::search::{self, Answer, Cures, Outcome};
 
-use super::{Failure, Form, coloured_messages, deliver, faults, width};
+use super::{Failure, Form, coloured_messages, deliver, faults, wanted, width};
 
 /// Rank the layouts that keep each area of a roof within its limits.
 ///
@@ -46,7 +46,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     for warning in &project.warnings.0 {
         let _ = writeln!(io::stderr(), "{}\n", warning.render(coloured_messages()));
     }
-    let areas = wanted(args, &project)?;
+    let areas = wanted(&args.roof, &args.area, &project)?;
     let mut options = project.options.clone();
     options.fold = !args.all;
     if let Some(keep) = args.keep {
@@ -79,22 +79,4 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let infeasible = answers.iter().any(|answer| matches!(answer.outcome, Outcome::Infeasible(_)));
     let unplanned = plans.iter().any(|(_, found)| found.as_ref().is_none_or(|plans| plans.plans.is_empty()));
     Ok(if infeasible || unplanned { ExitCode::from(1) } else { ExitCode::SUCCESS })
-}
-
-/// Indices of the areas asked for, in the order of the file; all of them where none is named.
-fn wanted(args: &Args, project: &Project) -> Result<Vec<usize>, Failure> {
-    let names = || project.roof.areas.iter().map(|area| area.name.as_str());
-    for asked in &args.area {
-        if !names().any(|name| name == asked) {
-            let near = input::nearest(asked, names()).map_or(String::new(), |near| format!("; did you mean `{near}`?"));
-            let all: Vec<_> = names().take(12).collect();
-            return Err(Failure::Message(format!(
-                "error: there is no area `{asked}` in {}{near}\n  = help: areas are {}",
-                args.roof.display(),
-                all.join(", ")
-            )));
-        }
-    }
-    let chosen = |name: &str| args.area.is_empty() || args.area.iter().any(|asked| asked == name);
-    Ok(names().enumerate().filter(|(_, name)| chosen(name)).map(|(index, _)| index).collect())
 }

@@ -36,7 +36,8 @@ pub(super) fn trimmed(value: f64, decimals: usize) -> String {
 pub(super) struct Words(pub(super) System);
 
 impl Words {
-    fn us(self) -> bool {
+    /// Whether it speaks in inches and pounds.
+    pub(super) fn us(self) -> bool {
         self.0 == System::Us
     }
 

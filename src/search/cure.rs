@@ -39,7 +39,7 @@ pub enum Relaxation {
     Demand(f64),
 }
 
-/// A change that makes a layout exist.
+/// A change of an area, most often one that makes a layout exist.
 #[derive(Clone, Debug)]
 pub struct Cure {
     /// The change.
@@ -143,7 +143,7 @@ pub fn cures(roof: &Roof, options: &Options, area: usize, why: &Why<'_>) -> Cure
 }
 
 /// One area by itself, with the demand that it has among the others.
-fn alone(roof: &Roof, area: usize) -> Roof {
+pub(super) fn alone(roof: &Roof, area: usize) -> Roof {
     let mut one = roof.areas[area].clone();
     one.receives.clear();
     Roof { areas: vec![one], demands: vec![roof.demands[area]], ..roof.clone() }

@@ -1,0 +1,81 @@
+//! `brimline tradeoff`: what more load on the roof saves in openings, area by area and for the plan.
+
+use std::io::{self, Write};
+use std::path::PathBuf;
+use std::process::ExitCode;
+
+use rayon::prelude::*;
+
+use crate::input;
+use crate::report::{self, Format, Traded};
+use crate::search::{self, Raises};
+use crate::units::{Load, System};
+
+use super::{Failure, Form, coloured_messages, deliver, faults, quantity, wanted, width};
+
+/// Least cost against the load limit: what a stronger or a weaker roof saves or costs in openings.
+///
+/// Each area's least cost is followed as its load limits are raised, every change of it found to 0.01 psf (or 1 Pa); where the
+/// project asks for a plan, so is the plan, step by step. Exit code 1: an area has no layout even at the greatest raise.
+#[derive(Debug, clap::Args)]
+pub(super) struct Args {
+    /// The project file.
+    roof: PathBuf,
+    /// Form of the result.
+    #[arg(long, value_enum, default_value_t = Form::Table)]
+    format: Form,
+    /// Write the result to a file instead of stdout.
+    #[arg(long, value_name = "FILE")]
+    output: Option<PathBuf>,
+    /// Only this area; may be given several times.
+    #[arg(long, value_name = "NAME")]
+    area: Vec<String>,
+    /// The greatest raise of the load limits; 20 psf or 1 kPa where not given.
+    #[arg(long, value_name = "LOAD")]
+    up: Option<String>,
+    /// How far under the given limits to look as well.
+    #[arg(long, value_name = "LOAD")]
+    down: Option<String>,
+    /// Step of the plan; 1 psf or 50 Pa where not given.
+    #[arg(long, value_name = "LOAD")]
+    step: Option<String>,
+}
+
+/// Most steps of a range: one search each for the plan.
+const MOST_STEPS: f64 = 1000.0;
+
+pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
+    let project = input::read(&args.roof).map_err(|found| faults(&found))?;
+    for warning in &project.warnings.0 {
+        let _ = writeln!(io::stderr(), "{}\n", warning.render(coloured_messages()));
+    }
+    let areas = wanted(&args.roof, &args.area, &project)?;
+    let us = project.roof.system == System::Us;
+    let load = |flag, text: &Option<String>| quantity(flag, text.as_ref(), Load::pa);
+    let up = load("--up", &args.up)?.unwrap_or(if us { Load::psf(20.0) } else { Load::from_pa(1000.0) });
+    let down = load("--down", &args.down)?.unwrap_or(Load::from_pa(0.0));
+    let step = load("--step", &args.step)?.unwrap_or(if us { Load::psf(1.0) } else { Load::from_pa(50.0) });
+    if (up.pa() + down.pa()) / step.pa() > MOST_STEPS {
+        return Err(Failure::said("--up, --down and --step ask for more than 1,000 steps", "give a greater --step"));
+    }
+    // Whole steps either side of the limit as given.
+    let raises = |step: Load| {
+        let steps = |of: Load| (of.pa() / step.pa() + 1e-9).floor() as i32;
+        Raises { step, steps: -steps(down)..=steps(up) }
+    };
+    let fine = raises(if us { Load::psf(0.01) } else { Load::from_pa(1.0) });
+    let treads = |&area: &usize| (area, search::tradeoff(&project.roof, &project.options, area, &fine));
+    let treads: Vec<_> = areas.par_iter().map(treads).collect();
+    let plan = |asked| search::plan_tradeoff(&project.roof, &project.options, asked, &areas, &raises(step));
+    let lacking = treads.iter().any(|(_, treads)| treads.is_empty());
+    let traded = Traded {
+        roof: &project.roof,
+        lowest: Load::from_pa(-down.pa()),
+        highest: up,
+        areas: treads,
+        plans: project.plan.map(plan),
+    };
+    let text = report::tradeoff(&traded, Format::from(args.format), width(args.output.as_ref()));
+    deliver(&text, args.output.as_ref())?;
+    Ok(ExitCode::from(u8::from(lacking)))
+}

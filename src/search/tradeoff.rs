@@ -1,0 +1,107 @@
+//! What more load on the roof saves in openings: the least cost of an area, and of a plan, against the load limit.
+//!
+//! The load limits of all cases are raised alike; everything else stays. Raising takes no layout away, so the least cost only
+//! falls, in treads. The cheapest layout at one raise stays the cheapest down to where its own load reaches the limit, as
+//! whatever is cheaper below would be cheaper above: one search gives a tread, and the walk goes on one step under its end.
+
+use std::ops::RangeInclusive;
+
+use rayon::prelude::*;
+
+use crate::device::Size;
+use crate::roof::Roof;
+use crate::units::{Load, Money};
+
+use super::Options;
+use super::cure::{Cure, Relaxation, alone, relaxed};
+use super::plan::{Asked, plan};
+use super::rank::Criterion;
+
+/// Raises of the load limit that are looked at: whole steps.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Raises {
+    /// One step.
+    pub step: Load,
+    /// The steps from the least to the greatest; those under zero lower the limit.
+    pub steps: RangeInclusive<i32>,
+}
+
+impl Raises {
+    fn load(&self, step: i32) -> Load {
+        self.step * f64::from(step)
+    }
+}
+
+/// The least cost of a plan with every load limit raised.
+#[derive(Clone, Debug)]
+pub struct PlanAt {
+    /// The raise.
+    pub raise: Load,
+    /// The cost of the plan; none where there is none.
+    pub cost: Option<Money>,
+    /// Its sizes.
+    pub sizes: Vec<Size>,
+}
+
+/// The treads of an area's least cost, each as the least raise that has it, rising; empty where even the greatest raise has no
+/// layout, or a device has no price. The layout of each is the cheapest there, and of those the one with less load.
+pub fn tradeoff(roof: &Roof, options: &Options, area: usize, raises: &Raises) -> Vec<Cure> {
+    let alone = alone(roof, area);
+    let options = Options { rank_by: vec![Criterion::Cost, Criterion::Load], keep: 1, fold: true, ..options.clone() };
+    let at = |step: i32| {
+        let change = Relaxation::Load(raises.load(step));
+        let (roof, options) = relaxed(&alone, &options, change);
+        Cure { change, roof, options }
+    };
+    // The least cost at a step, and the least step at which the limits hold the load of its layout.
+    let least = |step: i32| {
+        let changed = at(step);
+        let layout = changed.layout()?;
+        let loads = layout.states.iter().zip(&alone.areas[0].limits);
+        let over = loads.filter_map(|(state, limits)| Some((state.water?.load - limits.load?).pa()));
+        let steps = over.map(|over| (over / raises.step.pa() - 1e-9).ceil()).fold(f64::from(i32::MIN), f64::max);
+        Some((layout.cost?, steps as i32))
+    };
+    let (first, mut step) = (*raises.steps.start(), *raises.steps.end());
+    let mut treads: Vec<(i32, Money)> = Vec::new();
+    while let Some((cost, holds)) = least(step) {
+        let mut low = holds.clamp(first, step);
+        // A level is kept on whole nanometres: the load may reach the limit a step higher.
+        while low < step && least(low).is_none_or(|(there, _)| there != cost) {
+            low += 1;
+        }
+        match treads.last_mut() {
+            Some(last) if last.1 == cost => last.0 = low,
+            _ => treads.push((low, cost)),
+        }
+        if low == first {
+            break;
+        }
+        step = low - 1;
+    }
+    treads.iter().rev().map(|&(step, _)| at(step)).collect()
+}
+
+/// The cheapest plan at every step; none where a device that may stand has no price.
+pub fn plan_tradeoff(
+    roof: &Roof,
+    options: &Options,
+    asked: Asked,
+    areas: &[usize],
+    raises: &Raises,
+) -> Option<Vec<PlanAt>> {
+    let options = Options { keep: 1, ..options.clone() };
+    let steps: Vec<i32> = raises.steps.clone().collect();
+    let at = |&step: &i32| {
+        let raise = raises.load(step);
+        let mut roof = roof.clone();
+        for limits in roof.areas.iter_mut().flat_map(|area| &mut area.limits) {
+            limits.load = limits.load.map(|load| load + raise);
+        }
+        let plans = plan(&roof, &options, asked, areas)?;
+        let first = plans.plans.first();
+        let sizes = first.map_or(Vec::new(), |plan| plan.sizes.iter().map(|&size| size.clone()).collect());
+        Some(PlanAt { raise, cost: first.map(|plan| plan.cost), sizes })
+    };
+    steps.par_iter().map(at).collect()
+}
