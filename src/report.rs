@@ -6,7 +6,7 @@
 use crate::device::{Law, Site, Size};
 use crate::input::Assumed;
 use crate::roof::Roof;
-use crate::search::{Answer, Cure, Opened, Options, PlanAsked, PlanAt, Plans, UnderLaw};
+use crate::search::{Answer, Cure, Opened, Options, PlanAsked, PlanAt, Plans, Ranked, UnderLaw};
 use crate::units::{Flow, Length, Load, System};
 
 mod contents;
@@ -112,8 +112,8 @@ pub struct Traded<'a> {
     pub lowest: Load,
     /// The greatest.
     pub highest: Load,
-    /// The treads of each area, by its index.
-    pub areas: Vec<(usize, Vec<Cure>)>,
+    /// The treads of each area, by its index, each with its layout.
+    pub areas: Vec<(usize, Vec<(&'a Cure, Ranked<'a>)>)>,
     /// The cheapest plan at each step, where a plan is asked for; an inner none where a device has no price.
     pub plans: Option<Option<Vec<PlanAt>>>,
 }

@@ -23,7 +23,7 @@ mod problem;
 mod rank;
 mod tradeoff;
 
-pub use cure::{Cure, Cures, Opened, Relaxation, cures, relaxed};
+pub use cure::{Cure, Cures, Opened, Relaxation, cures, opened, relaxed};
 pub use plan::{Asked as PlanAsked, Plan, Plans, plan};
 pub use rank::Criterion;
 pub use tradeoff::{PlanAt, Raises, plan_tradeoff, tradeoff};

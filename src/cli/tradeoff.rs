@@ -72,7 +72,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         roof: &project.roof,
         lowest: Load::from_pa(-down.pa()),
         highest: up,
-        areas: treads,
+        areas: treads.iter().map(|(area, treads)| (*area, search::opened(treads))).collect(),
         plans: project.plan.map(plan),
     };
     let text = report::tradeoff(&traded, Format::from(args.format), width(args.output.as_ref()));

@@ -9,24 +9,21 @@ use super::page::{self, Block, Table};
 use super::words::{self, Words, list};
 use super::{Format, Traded, plain, written};
 
-/// A tread: its raise, the change, and its first layout.
+/// A tread: its raise, what it costs, the change, and its first layout.
 struct Tread<'a> {
     raise: Load,
     cost: Money,
     changed: &'a Cure,
-    layout: Ranked<'a>,
+    layout: &'a Ranked<'a>,
 }
 
-fn treads(changes: &[Cure]) -> Vec<Tread<'_>> {
-    let tread = |changed| {
-        let layout = Cure::layout(changed)?;
-        let raise = match changed.change {
-            Relaxation::Load(raise) => raise,
-            _ => Load::from_pa(0.0),
-        };
-        Some(Tread { raise, cost: layout.cost?, changed, layout })
+/// The treads whose layout has a price: all of them, as the walk asks for the least cost.
+fn treads<'a>(opened: &'a [(&'a Cure, Ranked<'a>)]) -> Vec<Tread<'a>> {
+    let tread = |(changed, layout): &'a (&'a Cure, Ranked<'a>)| match changed.change {
+        Relaxation::Load(raise) => Some(Tread { raise, cost: layout.cost?, changed, layout }),
+        _ => None,
     };
-    changes.iter().filter_map(tread).collect()
+    opened.iter().filter_map(tread).collect()
 }
 
 pub(super) fn write(traded: &Traded<'_>, format: Format, width: usize) -> String {
@@ -74,8 +71,8 @@ fn blocks(traded: &Traded<'_>) -> Vec<Block> {
             signed(traded.highest, words)
         )),
     ];
-    for (area, changes) in &traded.areas {
-        area_blocks(traded, *area, changes, words, &mut blocks);
+    for (area, opened) in &traded.areas {
+        area_blocks(traded, *area, opened, words, &mut blocks);
     }
     if let Some(plans) = &traded.plans {
         plan_blocks(traded, plans.as_deref(), words, &mut blocks);
@@ -102,7 +99,13 @@ fn signed(raise: Load, words: Words) -> String {
     }
 }
 
-fn area_blocks(traded: &Traded<'_>, area: usize, changes: &[Cure], words: Words, blocks: &mut Vec<Block>) {
+fn area_blocks(
+    traded: &Traded<'_>,
+    area: usize,
+    opened: &[(&Cure, Ranked<'_>)],
+    words: Words,
+    blocks: &mut Vec<Block>,
+) {
     let catchment = &traded.roof.areas[area];
     blocks.push(Block::Heading(catchment.name.clone()));
     let loads = traded.roof.cases.iter().zip(&catchment.limits);
@@ -114,7 +117,7 @@ fn area_blocks(traded: &Traded<'_>, area: usize, changes: &[Cure], words: Words,
         return;
     }
     blocks.push(Block::Text(format!("Load limit as given: {}.", list(&loads))));
-    let treads = treads(changes);
+    let treads = treads(opened);
     if treads.is_empty() {
         let text = format!("No layout with a price, even with {}.", signed(traded.highest, words));
         blocks.push(Block::Text(text));
@@ -144,7 +147,7 @@ fn area_blocks(traded: &Traded<'_>, area: usize, changes: &[Cure], words: Words,
         (format!("raise {}", words.load_unit()), true, column(&|tread| raise(tread.raise, words))),
         ("cost".into(), true, column(&|tread| words::money(tread.cost))),
         ("against given".into(), true, column(&|tread| against(tread.cost, given))),
-        ("layout".into(), false, column(&|tread| words.layout(&tread.layout))),
+        ("layout".into(), false, column(&|tread| words.layout(tread.layout))),
         (per(words), true, column(&|tread| pays(tread).map_or("-".into(), |price| words::grouped(price, 4)))),
     ])));
 }
@@ -198,10 +201,10 @@ fn csv(traded: &Traded<'_>) -> String {
         let cost = cost.map_or(String::new(), |cost| plain(cost.amount(), 2));
         vec![area.to_string(), plain(words.in_load_unit(raise), 4), cost, layout]
     };
-    for (area, changes) in &traded.areas {
+    for (area, opened) in &traded.areas {
         let name = &traded.roof.areas[*area].name;
         rows.extend(
-            treads(changes).iter().map(|tread| row(name, tread.raise, Some(tread.cost), words.layout(&tread.layout))),
+            treads(opened).iter().map(|tread| row(name, tread.raise, Some(tread.cost), words.layout(tread.layout))),
         );
     }
     for plan in traded.plans.iter().flatten().flatten() {
@@ -241,17 +244,17 @@ struct OfPlan {
     sizes: Vec<String>,
 }
 
-fn json(traded: &Traded<'_>) -> String {
+fn json<'a>(traded: &'a Traded<'_>) -> String {
     let words = Words(traded.roof.system);
     let tread = |tread: &Tread<'_>| OfTread {
         load_limit_more_pa: tread.raise.pa(),
         load_limits_pa: tread.changed.roof.areas[0].limits.iter().map(|limits| limits.load.map(Load::pa)).collect(),
         cost: tread.cost.amount(),
-        layout: words.layout(&tread.layout),
+        layout: words.layout(tread.layout),
     };
-    let area = |(area, changes): &(usize, Vec<Cure>)| OfArea {
+    let area = |(area, opened): &'a (usize, Vec<(&Cure, Ranked<'_>)>)| OfArea {
         name: &traded.roof.areas[*area].name,
-        treads: treads(changes).iter().map(tread).collect(),
+        treads: treads(opened).iter().map(tread).collect(),
     };
     let plan = |plan: &PlanAt| OfPlan {
         load_limit_more_pa: plan.raise.pa(),

@@ -71,11 +71,15 @@ pub struct Opened<'a> {
 impl Cures {
     /// Searches every roof so changed for its first layout.
     pub fn open(&self) -> Opened<'_> {
-        let first = |cure| Some((cure, Cure::layout(cure)?));
-        let mut cures: Vec<_> = self.found.iter().filter_map(first).collect();
+        let mut cures = opened(&self.found);
         cures.sort_by_key(|(_, layout)| layout.cost.map_or(i64::MAX, Money::millionths));
         Opened { cures, useless: &self.useless }
     }
+}
+
+/// Changes with the first layout that each opens, in their order; those that open none are left out.
+pub fn opened(changes: &[Cure]) -> Vec<(&Cure, Ranked<'_>)> {
+    changes.iter().filter_map(|change| Some((change, change.layout()?))).collect()
 }
 
 impl Cure {
