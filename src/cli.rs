@@ -1,7 +1,7 @@
 //! The command line: flags, streams and exit codes. Everything a command does, the library can do.
 
 use std::io::{self, IsTerminal, Write};
-use std::path::{Path, PathBuf};
+use std::path::PathBuf;
 use std::process::ExitCode;
 
 use clap::{Parser, Subcommand, ValueEnum};
@@ -177,21 +177,55 @@ where
     }
 }
 
-/// Indices of the areas asked for, in the order of the file; all of them where none is named.
-fn wanted(file: &Path, asked: &[String], project: &Project) -> Result<Vec<usize>, Failure> {
-    let names = || project.roof.areas.iter().map(|area| area.name.as_str());
-    for wanted in asked {
-        if !names().any(|name| name == wanted) {
-            let near =
-                input::nearest(wanted, names()).map_or(String::new(), |near| format!("; did you mean `{near}`?"));
-            let all: Vec<_> = names().take(12).collect();
-            return Err(Failure::Message(format!(
-                "error: there is no area `{wanted}` in {}{near}\n  = help: areas are {}",
-                file.display(),
-                all.join(", ")
-            )));
+/// A command about a project: its file, which areas, and where the result goes.
+#[derive(Debug, clap::Args)]
+struct OfProject {
+    /// The project file.
+    roof: PathBuf,
+    /// Form of the result.
+    #[arg(long, value_enum, default_value_t = Form::Table)]
+    format: Form,
+    /// Write the result to a file instead of stdout.
+    #[arg(long, value_name = "FILE")]
+    output: Option<PathBuf>,
+    /// Only this area; may be given several times.
+    #[arg(long, value_name = "NAME")]
+    area: Vec<String>,
+}
+
+impl OfProject {
+    /// The project, and the areas asked for; what is doubtful in the files is told on stderr.
+    fn read(&self) -> Result<(Project, Vec<usize>), Failure> {
+        let project = input::read(&self.roof).map_err(|found| faults(&found))?;
+        for warning in &project.warnings.0 {
+            let _ = writeln!(io::stderr(), "{}\n", warning.render(coloured_messages()));
         }
+        let areas = self.wanted(&project)?;
+        Ok((project, areas))
     }
-    let chosen = |name: &str| asked.is_empty() || asked.iter().any(|wanted| wanted == name);
-    Ok(names().enumerate().filter(|(_, name)| chosen(name)).map(|(index, _)| index).collect())
+
+    /// Writes a report in the form asked for to where it is asked for.
+    fn deliver(&self, report: impl FnOnce(Format, usize) -> String) -> Result<(), Failure> {
+        let output = self.output.as_ref();
+        deliver(&report(Format::from(self.format), width(output)), output)
+    }
+
+    /// Indices of the areas asked for, in the order of the file; all of them where none is named.
+    fn wanted(&self, project: &Project) -> Result<Vec<usize>, Failure> {
+        let names = || project.roof.areas.iter().map(|area| area.name.as_str());
+        for wanted in &self.area {
+            if !names().any(|name| name == wanted) {
+                let near =
+                    input::nearest(wanted, names()).map_or(String::new(), |near| format!("; did you mean `{near}`?"));
+                let all: Vec<_> = names().take(12).collect();
+                return Err(Failure::Message(format!(
+                    "error: there is no area `{wanted}` in {}{near}\n  = help: areas are {}",
+                    self.roof.display(),
+                    all.join(", ")
+                )));
+            }
+        }
+        let chosen = |name: &str| self.area.is_empty() || self.area.iter().any(|wanted| wanted == name);
+        Ok(names().enumerate().filter(|(_, name)| chosen(name)).map(|(index, _)| index).collect())
+    }
 }

@@ -1,14 +1,11 @@
 //! `size`: rank the layouts that keep each area within its limits.
 
-use std::io::{self, Write};
-use std::path::PathBuf;
 use std::process::ExitCode;
 
-use crate::input;
-use crate::report::{self, Format, Sized};
+use crate::report::{self, Sized};
 use crate::search::{self, Answer, Cures, Outcome};
 
-use super::{Failure, Form, coloured_messages, deliver, faults, wanted, width};
+use super::{Failure, OfProject};
 
 /// Rank the layouts that keep each area of a roof within its limits.
 ///
@@ -16,17 +13,8 @@ use super::{Failure, Form, coloured_messages, deliver, faults, wanted, width};
 /// every area has a layout; 1: an area has none, and the report says why; 2: the input cannot be used.
 #[derive(Debug, clap::Args)]
 pub(super) struct Args {
-    /// The project file.
-    roof: PathBuf,
-    /// Form of the result.
-    #[arg(long, value_enum, default_value_t = Form::Table)]
-    format: Form,
-    /// Write the result to a file instead of stdout.
-    #[arg(long, value_name = "FILE")]
-    output: Option<PathBuf>,
-    /// Only this area; may be given several times.
-    #[arg(long, value_name = "NAME")]
-    area: Vec<String>,
+    #[command(flatten)]
+    of: OfProject,
     /// How many layouts to list for each area, in place of the project's `keep`.
     #[arg(long, value_name = "N", value_parser = clap::value_parser!(u32).range(1..=10_000))]
     keep: Option<u32>,
@@ -42,11 +30,7 @@ pub(super) struct Args {
 }
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
-    let project = input::read(&args.roof).map_err(|found| faults(&found))?;
-    for warning in &project.warnings.0 {
-        let _ = writeln!(io::stderr(), "{}\n", warning.render(coloured_messages()));
-    }
-    let areas = wanted(&args.roof, &args.area, &project)?;
+    let (project, areas) = args.of.read()?;
     let mut options = project.options.clone();
     options.fold = !args.all;
     if let Some(keep) = args.keep {
@@ -75,7 +59,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         cures: &opened,
         plans: plans.as_ref().map(|(asked, found)| report::Asked { asked: *asked, found: found.as_ref() }),
     };
-    deliver(&report::size(&sized, Format::from(args.format), width(args.output.as_ref())), args.output.as_ref())?;
+    args.of.deliver(|format, width| report::size(&sized, format, width))?;
     let infeasible = answers.iter().any(|answer| matches!(answer.outcome, Outcome::Infeasible(_)));
     let unplanned = plans.iter().any(|(_, found)| found.as_ref().is_none_or(|plans| plans.plans.is_empty()));
     Ok(if infeasible || unplanned { ExitCode::from(1) } else { ExitCode::SUCCESS })

@@ -1,17 +1,14 @@
 //! `brimline tradeoff`: what more load on the roof saves in openings, area by area and for the plan.
 
-use std::io::{self, Write};
-use std::path::PathBuf;
 use std::process::ExitCode;
 
 use rayon::prelude::*;
 
-use crate::input;
-use crate::report::{self, Format, Traded};
+use crate::report::{self, Traded};
 use crate::search::{self, Raises};
 use crate::units::{Load, System};
 
-use super::{Failure, Form, coloured_messages, deliver, faults, quantity, wanted, width};
+use super::{Failure, OfProject, quantity};
 
 /// Least cost against the load limit: what a stronger or a weaker roof saves or costs in openings.
 ///
@@ -19,17 +16,8 @@ use super::{Failure, Form, coloured_messages, deliver, faults, quantity, wanted,
 /// project asks for a plan, so is the plan, step by step. Exit code 1: an area has no layout even at the greatest raise.
 #[derive(Debug, clap::Args)]
 pub(super) struct Args {
-    /// The project file.
-    roof: PathBuf,
-    /// Form of the result.
-    #[arg(long, value_enum, default_value_t = Form::Table)]
-    format: Form,
-    /// Write the result to a file instead of stdout.
-    #[arg(long, value_name = "FILE")]
-    output: Option<PathBuf>,
-    /// Only this area; may be given several times.
-    #[arg(long, value_name = "NAME")]
-    area: Vec<String>,
+    #[command(flatten)]
+    of: OfProject,
     /// The greatest raise of the load limits; 20 psf or 1 kPa where not given.
     #[arg(long, value_name = "LOAD")]
     up: Option<String>,
@@ -45,11 +33,7 @@ pub(super) struct Args {
 const MOST_STEPS: f64 = 1000.0;
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
-    let project = input::read(&args.roof).map_err(|found| faults(&found))?;
-    for warning in &project.warnings.0 {
-        let _ = writeln!(io::stderr(), "{}\n", warning.render(coloured_messages()));
-    }
-    let areas = wanted(&args.roof, &args.area, &project)?;
+    let (project, areas) = args.of.read()?;
     let us = project.roof.system == System::Us;
     let load = |flag, text: &Option<String>| quantity(flag, text.as_ref(), Load::pa);
     let up = load("--up", &args.up)?.unwrap_or(if us { Load::psf(20.0) } else { Load::from_pa(1000.0) });
@@ -75,7 +59,6 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         areas: treads.iter().map(|(area, treads)| (*area, search::opened(treads))).collect(),
         plans: project.plan.map(plan),
     };
-    let text = report::tradeoff(&traded, Format::from(args.format), width(args.output.as_ref()));
-    deliver(&text, args.output.as_ref())?;
+    args.of.deliver(|format, width| report::tradeoff(&traded, format, width))?;
     Ok(ExitCode::from(u8::from(lacking)))
 }
