@@ -533,6 +533,7 @@ fn a_step_less(change: Relaxation) -> Option<Relaxation> {
         Relaxation::Groups(more) => (more > 1).then(|| Relaxation::Groups(more - 1)),
         Relaxation::Width(more) => inches(more, 0.25).map(Relaxation::Width),
         Relaxation::Height(more) => inches(more, 0.25).map(Relaxation::Height),
+        Relaxation::Freeboard(less) => inches(less, 0.01).map(Relaxation::Freeboard),
         Relaxation::Edge(more) => inches(more, 3.0).map(Relaxation::Edge),
         Relaxation::Demand(factor) => (factor < 0.9989).then_some(Relaxation::Demand(factor + 0.001)),
     }
@@ -547,8 +548,8 @@ fn cures_are_the_least_changes_that_cure() {
         let (roof, mut options) = (roof(&mut dice), options(&mut dice));
         options.mix = options.mix.min(2);
         let answer = search::size(&roof, &options, &[0]).remove(0);
-        let Outcome::Infeasible(why) = answer.outcome else { continue };
-        for cure in search::cures(&roof, &options, 0, &why).found {
+        let Outcome::Infeasible(_) = answer.outcome else { continue };
+        for cure in search::cures(&roof, &options, 0).found {
             if matches!(cure.change, Relaxation::Devices(more) if more > 6) {
                 continue;
             }

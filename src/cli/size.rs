@@ -43,7 +43,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     };
     let laws: Vec<_> = if args.laws { answers.iter().map(first).collect() } else { Vec::new() };
     let cured = |answer: &Answer<'_>| match &answer.outcome {
-        Outcome::Infeasible(why) => Some(search::cures(&project.roof, &options, answer.area, why)),
+        Outcome::Infeasible(_) => Some(search::cures(&project.roof, &options, answer.area)),
         Outcome::Optimal(_) => None,
     };
     let cures: Vec<_> = answers.iter().map(cured).collect();

@@ -42,6 +42,10 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     if (up.pa() + down.pa()) / step.pa() > MOST_STEPS {
         return Err(Failure::said("--up, --down and --step ask for more than 1,000 steps", "give a greater --step"));
     }
+    let limits = areas.iter().flat_map(|&area| &project.roof.areas[area].limits).filter_map(|limits| limits.load);
+    if limits.map(Load::pa).any(|limit| limit <= down.pa()) {
+        return Err(Failure::said("--down leaves no load limit", "go down by less than the least load limit"));
+    }
     // Whole steps either side of the limit as given.
     let raises = |step: Load| {
         let steps = |of: Load| (of.pa() / step.pa() + 1e-9).floor() as i32;

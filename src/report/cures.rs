@@ -16,8 +16,11 @@ pub(super) fn blocks(opened: &Opened<'_>, words: Words) -> Vec<Block> {
     }
     if !opened.useless.is_empty() {
         let kinds: Vec<_> = opened.useless.iter().map(|change| bare(*change)).collect();
-        let kinds = list(&kinds).replace(" and ", " or ");
-        blocks.push(Block::Text(format!("By itself no change of {kinds} would.")));
+        let kinds = kinds.split_last().map_or(String::new(), |(last, others)| match others {
+            [] => (*last).to_string(),
+            others => format!("{} or {last}", others.join(", ")),
+        });
+        blocks.push(Block::Text(format!("No cure was found in {kinds} alone.")));
     }
     blocks
 }
@@ -44,11 +47,11 @@ fn change(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
         Relaxation::Load(more) => format!("load limit + {}, to {}", words.given_load(more), loads()),
         Relaxation::Depth(more) => format!("depth limit + {}, to {}", words.size(more), depths()),
         Relaxation::Limits(more) => {
-            format!("both limits + {} of water, {}", words.size(more), words.load(load_of(more)))
+            format!("both limits + {} of water ({})", words.size(more), words.load(load_of(more)))
         }
         Relaxation::Sill(less) => {
             let low = layout.groups.iter().any(|placed| placed.from < Length::mm(50.0));
-            let caution = if low { " (under 2 in: check the least set height of the code)" } else { "" };
+            let caution = if low { ", low: check the least set height of the code" } else { "" };
             format!("sills - {}{caution}", words.size(less))
         }
         Relaxation::Devices(more) => format!("{more} more {}", if more == 1 { "device" } else { "devices" }),
@@ -58,8 +61,9 @@ fn change(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
         Relaxation::Width(more) => format!("openings {} wider than the catalogs have", words.size(more)),
         Relaxation::Height(more) => format!("openings {} higher than the catalogs have", words.size(more)),
         Relaxation::Edge(more) => format!("edge + {}", words.long(more)),
+        Relaxation::Freeboard(less) => format!("freeboard - {}", words.size(less)),
         Relaxation::Demand(factor) => {
-            format!("area or rain - {} %, to {}", trimmed((1.0 - factor) * 100.0, 1), words.flow(cure.roof.demands[0]))
+            format!("demand - {} %, to {}", trimmed((1.0 - factor) * 100.0, 1), words.flow(cure.roof.demands[0]))
         }
     }
 }
@@ -78,16 +82,17 @@ fn listed(texts: impl Iterator<Item = String>) -> String {
 /// What a change is of, without its amount.
 pub(super) fn bare(change: Relaxation) -> &'static str {
     match change {
-        Relaxation::Load(_) => "the load limit",
-        Relaxation::Depth(_) => "the depth limit",
-        Relaxation::Limits(_) => "the limits",
-        Relaxation::Sill(_) => "the sills",
-        Relaxation::Devices(_) => "the number of devices",
-        Relaxation::Groups(_) => "the sizes in a layout",
-        Relaxation::Width(_) => "the width of openings",
-        Relaxation::Height(_) => "the height of openings",
-        Relaxation::Edge(_) => "the edge",
-        Relaxation::Demand(_) => "the area or the rain",
+        Relaxation::Load(_) => "a greater load limit",
+        Relaxation::Depth(_) => "a greater depth limit",
+        Relaxation::Limits(_) => "both limits greater together",
+        Relaxation::Sill(_) => "lower sills",
+        Relaxation::Devices(_) => "more devices",
+        Relaxation::Groups(_) => "more kinds of size in a layout",
+        Relaxation::Width(_) => "wider openings",
+        Relaxation::Height(_) => "higher openings",
+        Relaxation::Edge(_) => "a longer edge",
+        Relaxation::Freeboard(_) => "less freeboard",
+        Relaxation::Demand(_) => "less demand",
     }
 }
 
@@ -103,6 +108,7 @@ pub(super) fn amount(change: Relaxation) -> (&'static str, f64) {
         Relaxation::Width(more) => ("width_more_m", more.m()),
         Relaxation::Height(more) => ("height_more_m", more.m()),
         Relaxation::Edge(more) => ("edge_more_m", more.m()),
+        Relaxation::Freeboard(less) => ("freeboard_less_m", less.m()),
         Relaxation::Demand(factor) => ("demand_factor", factor),
     }
 }

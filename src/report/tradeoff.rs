@@ -133,7 +133,7 @@ fn area_blocks(
     let most = treads.iter().filter_map(|tread| Some((tread, pays(tread)?)));
     if let Some((tread, price)) = most.max_by(|a, b| a.1.total_cmp(&b.1)) {
         blocks.push(Block::Text(format!(
-            "A raise buys most at {}: it saves {}, which pays if strength costs less than {} for each {} and {}.",
+            "A raise buys most for its size at {}: it saves {}, and pays if strength costs less than {} for each {} and {}.",
             signed(tread.raise, words),
             against(tread.cost, given).trim_start_matches("- "),
             words::grouped(price, 4),

@@ -1,18 +1,20 @@
 //! What would cure an area that has no layout: for each single relaxation the least change that makes one exist.
 //!
 //! A change is made in steps that can be built or asked for, each step tried by a search for any layout at all. More limit,
-//! more devices, another group, a longer edge, less rain: each can only add layouts or add to what they carry. Where such a
-//! change cures every greater one does, and the least is found by halving. Lower sills and wider or higher openings carry more
-//! too, but may come to lie under the roof, fill the edge, leave the parapet or lose their freeboard: there every step is tried,
-//! from the least on. The roof so changed is handed back: searching it shows the layouts that the change opens.
+//! more devices, another group, a longer edge, less freeboard, less demand: each can only add layouts or add to what they
+//! carry. Where such a change cures every greater one does, and the least is found by halving. Lower sills and wider or higher
+//! openings carry more too, but may come to lie under the roof, fill the edge or leave the parapet: there steps are tried from
+//! the least on, each a quarter greater than the one before, and the least is found by halving below the first that cures. A
+//! step less does not cure; a window narrower than a quarter may be passed over. The roof so changed is handed back: searching
+//! it shows the layouts that the change opens.
 
 use crate::device::{Device, Size};
-use crate::roof::{LimitKind, Roof, load_of};
+use crate::roof::{Roof, load_of};
 use crate::units::{Length, Load, Money, System};
 
 use super::infeasible::any;
 use super::problem::Problem;
-use super::{Options, Outcome, Ranked, Why};
+use super::{Options, Outcome, Ranked};
 
 /// One thing that may be changed.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -35,7 +37,9 @@ pub enum Relaxation {
     Height(Length),
     /// The edge this much longer.
     Edge(Length),
-    /// The demand, by a smaller area or less rain, times this.
+    /// The freeboard asked for lowered by this much.
+    Freeboard(Length),
+    /// The demand times this: less rain, or less roof that drains here.
     Demand(f64),
 }
 
@@ -102,30 +106,33 @@ impl Scale {
     /// The least step that cures, if any does.
     fn least(&self, cured: impl Fn(Relaxation) -> bool) -> Option<Relaxation> {
         let cured = |step: u32| cured((self.of)(step));
-        let step = match (self.of)(1) {
-            Relaxation::Sill(_) | Relaxation::Width(_) | Relaxation::Height(_) => {
-                (1..=self.steps).find(|&step| cured(step))
-            }
-            _ if !cured(self.steps) => None,
-            _ => {
-                let (mut fails, mut passes) = (0, self.steps);
-                while passes - fails > 1 {
-                    let middle = fails + (passes - fails) / 2;
-                    if cured(middle) { passes = middle } else { fails = middle }
+        let (mut fails, mut passes) = (0, self.steps);
+        if let Relaxation::Sill(_) | Relaxation::Width(_) | Relaxation::Height(_) = (self.of)(1) {
+            passes = 1;
+            while !cured(passes) {
+                if passes == self.steps {
+                    return None;
                 }
-                Some(passes)
+                fails = passes;
+                passes = (passes + 1).max(passes + passes / 4).min(self.steps);
             }
-        };
-        step.map(&self.of)
+        } else if !cured(passes) {
+            return None;
+        }
+        while passes - fails > 1 {
+            let middle = fails + (passes - fails) / 2;
+            if cured(middle) { passes = middle } else { fails = middle }
+        }
+        Some((self.of)(passes))
     }
 }
 
 /// The least single changes that cure an area without a layout.
-pub fn cures(roof: &Roof, options: &Options, area: usize, why: &Why<'_>) -> Cures {
+pub fn cures(roof: &Roof, options: &Options, area: usize) -> Cures {
     let alone = alone(roof, area);
     let options = Options { keep: 1, ..options.clone() };
     let mut cures = Cures { found: Vec::new(), useless: Vec::new() };
-    for scale in scales(&alone, &options, why) {
+    for scale in scales(&alone, &options) {
         let limit_cures =
             cures.found.iter().any(|cure| matches!(cure.change, Relaxation::Load(_) | Relaxation::Depth(_)));
         if limit_cures && matches!((scale.of)(1), Relaxation::Limits(_)) {
@@ -154,7 +161,7 @@ pub(super) fn alone(roof: &Roof, area: usize) -> Roof {
 }
 
 /// What can be relaxed, on scales of steps that can be built or asked for.
-fn scales(roof: &Roof, options: &Options, why: &Why<'_>) -> Vec<Scale> {
+fn scales(roof: &Roof, options: &Options) -> Vec<Scale> {
     let us = roof.system == System::Us;
     let area = &roof.areas[0];
     // A hundredth of an inch, or a tenth of a millimetre; a tenth of a pound, or five pascals.
@@ -164,17 +171,15 @@ fn scales(roof: &Roof, options: &Options, why: &Why<'_>) -> Vec<Scale> {
     let times = |step: Length| move |count: u32| Length::from_nm(step.nm() * i64::from(count));
     let mut scales = Vec::new();
     let mut add = |steps: u32, of: Box<dyn Fn(u32) -> Relaxation + Sync>| scales.push(Scale { steps, of });
-    let binding = match why {
-        Why::Limits { best, .. } => best.governing.map(|governing| governing.limit),
-        _ => None,
-    };
-    match binding {
-        Some(LimitKind::Load) => add(4000, Box::new(move |count| Relaxation::Load(load * f64::from(count)))),
-        Some(LimitKind::Depth) => add(4000, Box::new(move |count| Relaxation::Depth(times(fine)(count)))),
-        _ => {}
+    let loads = area.limits.iter().any(|limits| limits.load.is_some());
+    let depths = area.limits.iter().any(|limits| limits.depth.is_some());
+    if loads {
+        add(4000, Box::new(move |count| Relaxation::Load(load * f64::from(count))));
     }
-    if area.limits.iter().any(|limits| limits.load.is_some()) && area.limits.iter().any(|limits| limits.depth.is_some())
-    {
+    if depths {
+        add(4000, Box::new(move |count| Relaxation::Depth(times(fine)(count))));
+    }
+    if loads && depths {
         add(4000, Box::new(move |count| Relaxation::Limits(times(fine)(count))));
     }
     let lowest = area
@@ -199,6 +204,10 @@ fn scales(roof: &Roof, options: &Options, why: &Why<'_>) -> Vec<Scale> {
     if area.edge.is_some() {
         let foot = if us { Length::inches(3.0) } else { Length::mm(50.0) };
         add(4000, Box::new(move |count| Relaxation::Edge(times(foot)(count))));
+    }
+    let asked = options.freeboard.map_or(0, |freeboard| freeboard.nm() / fine.nm());
+    if let steps @ 1.. = u32::try_from(asked).unwrap_or(0) {
+        add(steps, Box::new(move |count| Relaxation::Freeboard(times(fine)(count))));
     }
     // By tenths of a per cent, to a hundredth of the demand.
     add(990, Box::new(|count| Relaxation::Demand(f64::from(1000 - count) / 1000.0)));
@@ -236,6 +245,7 @@ pub fn relaxed(roof: &Roof, options: &Options, change: Relaxation) -> (Roof, Opt
         Relaxation::Width(more) => roof.sizes.iter_mut().for_each(|size| widen(size, more)),
         Relaxation::Height(more) => roof.sizes.iter_mut().for_each(|size| heighten(size, more)),
         Relaxation::Edge(more) => area.edge = area.edge.map(|edge| edge + more),
+        Relaxation::Freeboard(less) => options.freeboard = options.freeboard.map(|asked| asked - less),
         Relaxation::Demand(factor) => roof.demands[0] = roof.demands[0] * factor,
     }
     (roof, options)
