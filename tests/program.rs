@@ -239,9 +239,11 @@ fn the_tradeoff_of_a_roof_without_a_layout_begins_where_it_has_one() {
     assert!(first > 4.0 && first < 4.1 + 1e-6, "{first}");
     let none = brimline(&["tradeoff", "examples/light-roof-infeasible.toml", "--area", "long span", "--up", "4 psf"]);
     assert_eq!(none.status.code(), Some(1));
-    assert!(String::from_utf8_lossy(&none.stdout).contains("No layout with a price, even with + 4 psf."));
+    assert!(String::from_utf8_lossy(&none.stdout).contains("No layout, even with + 4 psf."));
     let wrong = brimline(&["tradeoff", "examples/harbour-depot.toml", "--up", "4 in"]);
     assert_eq!(wrong.status.code(), Some(2));
+    let low = brimline(&["tradeoff", "examples/harbour-depot.toml", "--down", "25 psf"]);
+    assert!(String::from_utf8_lossy(&low.stderr).contains("--down leaves no load limit"));
     let many = brimline(&["tradeoff", "examples/harbour-depot.toml", "--step", "0.001 psf"]);
     assert!(String::from_utf8_lossy(&many.stderr).contains("more than 1,000 steps"));
 }

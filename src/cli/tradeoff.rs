@@ -34,6 +34,10 @@ const MOST_STEPS: f64 = 1000.0;
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let (project, areas) = args.of.read()?;
+    if let Some(unpriced) = project.roof.sizes.iter().find(|size| size.price.is_none()) {
+        let what = format!("a trade-off needs prices, and device `{}` has none", unpriced.tag);
+        return Err(Failure::said(&what, "give it a price in its catalog: price = { each = 420 }"));
+    }
     let us = project.roof.system == System::Us;
     let load = |flag, text: &Option<String>| quantity(flag, text.as_ref(), Load::pa);
     let up = load("--up", &args.up)?.unwrap_or(if us { Load::psf(20.0) } else { Load::from_pa(1000.0) });

@@ -98,7 +98,10 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
             }
         }
         Outcome::Infeasible(why) => {
-            blocks.push(Block::Text(format!("No layout. {}", infeasible(roof, answer.area, why, words))));
+            // The nearest to the limits is looked for without it: nothing keeps both.
+            let apart = sized.options.freeboard.is_some() && matches!(why, Why::Limits { .. });
+            let apart = if apart { " The freeboard asked for is not even counted in this." } else { "" };
+            blocks.push(Block::Text(format!("No layout. {}{apart}", infeasible(roof, answer.area, why, words))));
             let place = sized.answers.iter().position(|known| known.area == answer.area);
             if let Some(cures) = place.and_then(|place| sized.cures.get(place)).and_then(Option::as_ref) {
                 blocks.extend(super::cures::blocks(cures, words));

@@ -119,7 +119,7 @@ fn area_blocks(
     blocks.push(Block::Text(format!("Load limit as given: {}.", list(&loads))));
     let treads = treads(opened);
     if treads.is_empty() {
-        let text = format!("No layout with a price, even with {}.", signed(traded.highest, words));
+        let text = format!("No layout, even with {}.", signed(traded.highest, words));
         blocks.push(Block::Text(text));
         return;
     }
