@@ -56,6 +56,22 @@ pub struct Sized<'a, 'r> {
     pub plans: Option<Asked<'a, 'r>>,
 }
 
+impl<'a> Sized<'a, '_> {
+    fn place(&self, area: usize) -> Option<usize> {
+        self.answers.iter().position(|answer| answer.area == area)
+    }
+
+    /// The first layout of an area under every law; none where that was not asked for.
+    fn laws_of(&self, area: usize) -> Option<&'a [UnderLaw]> {
+        self.place(area).and_then(|place| self.laws.get(place)).map(Vec::as_slice)
+    }
+
+    /// What would cure an area without a layout.
+    fn cures_of(&self, area: usize) -> Option<&'a Opened<'a>> {
+        self.place(area).and_then(|place| self.cures.get(place)).and_then(Option::as_ref)
+    }
+}
+
 /// What was asked of the whole roof, and what was found.
 #[derive(Clone, Copy, Debug)]
 pub struct Asked<'a, 'r> {

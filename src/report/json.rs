@@ -230,11 +230,10 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
         Outcome::Optimal(layouts) => ("optimal", None, &layouts[..]),
         Outcome::Infeasible(why) => {
             let words = Words(sized.roof.system);
-            ("infeasible", Some(ranking::infeasible(sized.roof, answer.area, why, words)), &[][..])
+            ("infeasible", Some(ranking::infeasible(sized, answer.area, why, words)), &[][..])
         }
     };
-    let place = sized.answers.iter().position(|known| known.area == answer.area);
-    let opened = place.and_then(|place| sized.cures.get(place)).and_then(Option::as_ref);
+    let opened = sized.cures_of(answer.area);
     let layouts = layouts.iter().enumerate().map(|(index, ranked)| layout(sized, answer.area, index + 1, ranked));
     Area {
         name: &sized.roof.areas[answer.area].name,
@@ -257,7 +256,7 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
     }
     let site = sized.roof.site(area, None);
     // The first layout under every law where that is asked for; else each under the laws of a thick wall.
-    let asked = sized.answers.iter().position(|answer| answer.area == area).and_then(|at| sized.laws.get(at));
+    let asked = sized.laws_of(area);
     let others: &[UnderLaw] = asked.filter(|_| rank == 1).map_or(&ranked.thick_wall, |laws| laws);
     let cases = ranked.states.iter().enumerate().map(|(index, state)| {
         let limits = sized.roof.areas[area].limits[index];

@@ -88,8 +88,7 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
     match &answer.outcome {
         Outcome::Optimal(layouts) => {
             ranking(sized, answer.area, layouts, words, blocks);
-            let asked = sized.answers.iter().position(|known| known.area == answer.area);
-            if let Some(laws) = asked.and_then(|at| sized.laws.get(at)).filter(|laws| !laws.is_empty()) {
+            if let Some(laws) = sized.laws_of(answer.area).filter(|laws| !laws.is_empty()) {
                 every_law(roof, answer.area, &layouts[0], laws, words, blocks);
             }
             if sized.work {
@@ -98,12 +97,8 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
             }
         }
         Outcome::Infeasible(why) => {
-            // The nearest to the limits is looked for without it: nothing keeps both.
-            let apart = sized.options.freeboard.is_some() && matches!(why, Why::Limits { .. });
-            let apart = if apart { " The freeboard asked for is not even counted in this." } else { "" };
-            blocks.push(Block::Text(format!("No layout. {}{apart}", infeasible(roof, answer.area, why, words))));
-            let place = sized.answers.iter().position(|known| known.area == answer.area);
-            if let Some(cures) = place.and_then(|place| sized.cures.get(place)).and_then(Option::as_ref) {
+            blocks.push(Block::Text(format!("No layout. {}", infeasible(sized, answer.area, why, words))));
+            if let Some(cures) = sized.cures_of(answer.area) {
                 blocks.extend(super::cures::blocks(cures, words));
             }
         }
@@ -422,7 +417,8 @@ pub(super) fn out_of_range(range: &Range, value: f64, words: Words) -> String {
 }
 
 /// Why there is no layout, in a few sentences.
-pub(super) fn infeasible(roof: &Roof, area: usize, why: &Why<'_>, words: Words) -> String {
+pub(super) fn infeasible(sized: &Sized<'_, '_>, area: usize, why: &Why<'_>, words: Words) -> String {
+    let roof = sized.roof;
     let name = &roof.areas[area].name;
     match why {
         Why::NothingStands { misfits } => {
@@ -440,7 +436,14 @@ pub(super) fn infeasible(roof: &Roof, area: usize, why: &Why<'_>, words: Words) 
             let edge = roof.areas[area].edge.map_or("the area".into(), |edge| format!("{} of edge", words.long(edge)));
             format!("{name} asks for at least {least} devices, and no {least} of the catalogs' sizes fit {edge}.")
         }
-        Why::Limits { best, alone, together } => limits_not_held(roof, area, best, alone, together, words),
+        Why::Limits { best, alone, together } => {
+            let text = limits_not_held(roof, area, best, alone, together, words);
+            // The nearest to the limits is looked for without it.
+            match sized.options.freeboard {
+                Some(_) => format!("{text} The freeboard asked for is not even counted in this."),
+                None => text,
+            }
+        }
         Why::Freeboard { asked, best } => {
             let least = |layout: &Ranked<'_>| {
                 let of_case = |case: &usize| {

@@ -47,7 +47,7 @@ pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
                 let mut row = vec![String::new(); head.len()];
                 row[0].clone_from(area);
                 row[1] = "infeasible".into();
-                row[head.len() - 1] = ranking::infeasible(sized.roof, answer.area, why, words);
+                row[head.len() - 1] = ranking::infeasible(sized, answer.area, why, words);
                 rows.push(row);
             }
         }

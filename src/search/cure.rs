@@ -182,13 +182,10 @@ fn scales(roof: &Roof, options: &Options) -> Vec<Scale> {
     if loads && depths {
         add(4000, Box::new(move |count| Relaxation::Limits(times(fine)(count))));
     }
-    let lowest = area
-        .set_heights
-        .iter()
-        .flatten()
-        .chain(roof.sizes.iter().filter_map(|size| size.set_heights.as_ref()).flat_map(|heights| heights.iter()));
-    let lowest = lowest.map(|height| height.nm()).filter(|&height| height > 0).max().unwrap_or(0);
-    if let steps @ 1.. = u32::try_from(lowest / fine.nm()).unwrap_or(0) {
+    let of_sizes = roof.sizes.iter().filter_map(|size| size.set_heights.as_ref());
+    let heights = area.set_heights.iter().flatten().chain(of_sizes.flat_map(|heights| heights.iter()));
+    let highest = heights.map(|height| height.nm()).max().unwrap_or(0);
+    if let steps @ 1.. = u32::try_from(highest / fine.nm()).unwrap_or(0) {
         add(steps, Box::new(move |count| Relaxation::Sill(times(fine)(count))));
     }
     add(64, Box::new(Relaxation::Devices));
