@@ -5,7 +5,7 @@ use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Kind, Size};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Storm, demand};
-use brimline::search::{self, Criterion, Options, PlanAsked, Raises};
+use brimline::search::{self, Criterion, Options, PlanAsked, Raises, Watch};
 use brimline::units::{Area, Length, Load, Money, System};
 
 fn main() {
@@ -63,7 +63,14 @@ fn roof(areas: u32, sizes: Vec<Size>, unlike: bool) -> Roof {
 }
 
 fn options(keep: usize) -> Options {
-    Options { rank_by: vec![Criterion::Cost, Criterion::Load], keep, mix: 2, freeboard: None, fold: true }
+    Options {
+        rank_by: vec![Criterion::Cost, Criterion::Load],
+        keep,
+        mix: 2,
+        freeboard: None,
+        fold: true,
+        watch: Watch::default(),
+    }
 }
 
 fn plan(bencher: divan::Bencher, roof: &Roof, most: u32, keep: usize) {
@@ -118,7 +125,7 @@ fn treads_of_an_area(bencher: divan::Bencher) {
     let (roof, area) = (roof(10, sizes(6..=36, &[4, 6, 8, 10]), false), 8);
     let raises = Raises { step: Load::psf(0.01), steps: 0..=2000 };
     bencher.bench(|| {
-        let treads = search::tradeoff(&roof, &options(1), area, &raises);
+        let treads = search::tradeoff(&roof, &options(1), area, &raises).expect("nobody ends it");
         assert!(treads.len() > 5, "a limit 20 psf higher saves more than once");
         treads.len()
     });

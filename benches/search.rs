@@ -5,7 +5,7 @@ use std::sync::Arc;
 use brimline::device::{Choice, Device, Size};
 use brimline::roof::layout::{self, Group};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm, demand, working_capacity};
-use brimline::search::{self, Answer, Criterion, Options, Outcome};
+use brimline::search::{self, Answer, Criterion, Options, Outcome, Watch};
 use brimline::units::{Area, Length, Load, Money, System};
 
 fn main() {
@@ -83,7 +83,7 @@ fn roof(areas: u32) -> Roof {
 }
 
 fn options(rank_by: &[Criterion], mix: usize) -> Options {
-    Options { rank_by: rank_by.to_vec(), keep: 8, mix, freeboard: None, fold: true }
+    Options { rank_by: rank_by.to_vec(), keep: 8, mix, freeboard: None, fold: true, watch: Watch::default() }
 }
 
 /// The least cost of an area's layouts, by trying every count of every two sizes without any bound.

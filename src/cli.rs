@@ -15,6 +15,7 @@ mod rate;
 mod size;
 mod start;
 mod tradeoff;
+mod watching;
 
 /// Exit code for input that cannot be used.
 const UNUSABLE: u8 = 2;

@@ -6,7 +6,7 @@
 use crate::device::{Law, Site, Size};
 use crate::input::Assumed;
 use crate::roof::Roof;
-use crate::search::{Answer, Cure, Opened, Options, PlanAsked, PlanAt, Plans, Ranked, UnderLaw};
+use crate::search::{Answer, Opened, Opening, Options, PlanAsked, PlanAt, Plans, UnderLaw};
 use crate::units::{Flow, Length, Load, System};
 
 mod contents;
@@ -17,6 +17,7 @@ mod page;
 mod plan;
 mod ranking;
 mod rate;
+mod reasons;
 mod schedule;
 mod tradeoff;
 mod words;
@@ -50,8 +51,9 @@ pub struct Sized<'a, 'r> {
     pub work: bool,
     /// Each answer's first layout under every law that it can follow; empty where that is not asked for.
     pub laws: &'a [Vec<UnderLaw>],
-    /// What would cure each answer that has no layout, in the order of the answers; none for one that has.
-    pub cures: &'a [Option<Opened<'a>>],
+    /// In the order of the answers: what would cure one that has no layout; of one that has, what its cost binds on, where
+    /// that was asked for.
+    pub changes: &'a [Option<Opened<'a>>],
     /// The plans of the whole roof, where one was asked for.
     pub plans: Option<Asked<'a, 'r>>,
 }
@@ -66,9 +68,9 @@ impl<'a> Sized<'a, '_> {
         self.place(area).and_then(|place| self.laws.get(place)).map(Vec::as_slice)
     }
 
-    /// What would cure an area without a layout.
-    fn cures_of(&self, area: usize) -> Option<&'a Opened<'a>> {
-        self.place(area).and_then(|place| self.cures.get(place)).and_then(Option::as_ref)
+    /// What would cure an area without a layout, or what the cost of another binds on.
+    fn changes_of(&self, area: usize) -> Option<&'a Opened<'a>> {
+        self.place(area).and_then(|place| self.changes.get(place)).and_then(Option::as_ref)
     }
 }
 
@@ -128,8 +130,8 @@ pub struct Traded<'a> {
     pub lowest: Load,
     /// The greatest.
     pub highest: Load,
-    /// The treads of each area, by its index, each with its layout.
-    pub areas: Vec<(usize, Vec<(&'a Cure, Ranked<'a>)>)>,
+    /// The treads of each area, by its index, each with its layout; none where the search was ended before.
+    pub areas: Vec<(usize, Option<Vec<Opening<'a>>>)>,
     /// The cheapest plan at each step, where a plan is asked for; an inner none where a device has no price.
     pub plans: Option<Option<Vec<PlanAt>>>,
 }

@@ -22,18 +22,20 @@ mod plan;
 mod problem;
 mod rank;
 mod tradeoff;
+mod watch;
 
-pub use cure::{Cure, Cures, Opened, Relaxation, cures, opened, relaxed};
+pub use cure::{Cure, Cures, Opened, Opening, Relaxation, binds, cures, opened, relaxed};
 pub use plan::{Asked as PlanAsked, Plan, Plans, plan};
 pub use rank::Criterion;
 pub use tradeoff::{PlanAt, Raises, plan_tradeoff, tradeoff};
+pub use watch::{Stopped, Watch};
 
 use best::{Best, Found, reported};
-use dive::{Aim, dive};
+use dive::{Aim, dive, least};
 use problem::Problem;
 
 /// What is asked of the search.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Debug)]
 pub struct Options {
     /// Criteria in the order in which they decide.
     pub rank_by: Vec<Criterion>,
@@ -45,6 +47,8 @@ pub struct Options {
     pub freeboard: Option<Length>,
     /// Whether only the best layout of each family, the same tags and the same count of each, is listed.
     pub fold: bool,
+    /// Who may end the search before everything was tried.
+    pub watch: Watch,
 }
 
 /// A group of a ranked layout with its window.
@@ -100,8 +104,36 @@ pub struct UnderLaw {
 pub enum Outcome<'r> {
     /// The best layouts, in order: every other was tried or excluded by a bound.
     Optimal(Vec<Ranked<'r>>),
+    /// The search was ended before everything was tried.
+    Stopped {
+        /// The best layouts found until then, in order; there may be none.
+        layouts: Vec<Ranked<'r>>,
+        /// What every layout has at least, found or not.
+        bound: Option<Least>,
+    },
     /// No layout holds, and this is why.
     Infeasible(Why<'r>),
+}
+
+impl<'r> Outcome<'r> {
+    /// The layouts found, in order.
+    pub fn layouts(&self) -> &[Ranked<'r>] {
+        match self {
+            Self::Optimal(layouts) | Self::Stopped { layouts, .. } => layouts,
+            Self::Infeasible(_) => &[],
+        }
+    }
+}
+
+/// A proven least value of the criterion that layouts are ranked by first.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Least {
+    /// Of the cost.
+    Cost(Money),
+    /// Of the number of devices.
+    Count(u32),
+    /// Of the total width.
+    Width(Length),
 }
 
 /// Why an area has no layout.
@@ -134,6 +166,8 @@ pub enum Why<'r> {
         /// The most that a layout keeps, negative where the water stands over the top; and that layout.
         best: Option<(Length, Box<Ranked<'r>>)>,
     },
+    /// No layout holds, but the search was ended before it knew why.
+    Stopped,
 }
 
 /// The answer for one area.
@@ -156,7 +190,12 @@ pub struct Answer<'r> {
 /// assert!(matches!(&answers[0].outcome, search::Outcome::Optimal(layouts) if !layouts.is_empty()));
 /// ```
 pub fn size<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<Answer<'r>> {
-    let answer = |&area: &usize| Answer { area, outcome: size_area(roof, area, options) };
+    options.watch.expect(areas.len());
+    let answer = |&area: &usize| {
+        let outcome = size_area(roof, area, options);
+        options.watch.advance();
+        Answer { area, outcome }
+    };
     if areas.len() < 2 { areas.iter().map(answer).collect() } else { areas.par_iter().map(answer).collect() }
 }
 
@@ -165,11 +204,15 @@ fn size_area<'r>(roof: &'r Roof, area: usize, options: &Options) -> Outcome<'r> 
     if problem.candidates.is_empty() {
         return Outcome::Infeasible(Why::NothingStands { misfits });
     }
-    let found = dive(&problem, Aim::Rank, Best::new(options.keep, options.fold)).into_found();
-    if found.is_empty() {
-        return Outcome::Infeasible(infeasible::why(problem));
+    let dived = dive(&problem, Aim::Rank, Best::new(options.keep, options.fold));
+    let layouts: Vec<_> = dived.found.iter().map(|found| ranked(&problem, found)).collect();
+    if !dived.finished {
+        return Outcome::Stopped { layouts, bound: least(&problem) };
     }
-    Outcome::Optimal(found.iter().map(|found| ranked(&problem, found)).collect())
+    if layouts.is_empty() {
+        return Outcome::Infeasible(infeasible::why(problem).unwrap_or(Why::Stopped));
+    }
+    Outcome::Optimal(layouts)
 }
 
 /// All that is reported of a layout.

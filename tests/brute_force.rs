@@ -12,7 +12,7 @@ use brimline::device::{Choice, Device, Kind, Law, Place, Rating, Size};
 use brimline::roof::channel::Channel;
 use brimline::roof::layout::{self, Asked, Group, Liftable};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm};
-use brimline::search::{self, Criterion, Options, Outcome, PlanAsked, Relaxation, Why};
+use brimline::search::{self, Criterion, Least, Options, Outcome, PlanAsked, Relaxation, Watch, Why};
 use brimline::units::{Area, Flow, Intensity, Length, Load, Money, System};
 
 /// A small generator of its own, so that a failing seed can be run again anywhere.
@@ -167,6 +167,7 @@ fn options(dice: &mut Dice) -> Options {
         mix: 1 + dice.upto(2) as usize,
         freeboard: dice.one_in(3).then(|| Length::inches(dice.pick(&[0.0, 0.5, 1.0]))),
         fold: !dice.one_in(3),
+        watch: Watch::default(),
     }
 }
 
@@ -387,6 +388,7 @@ fn the_search_finds_what_trying_everything_finds() {
                     .collect();
                 assert_eq!(found, wanted, "seed {seed}, {options:?}");
             }
+            Outcome::Stopped { .. } => unreachable!("nobody ends it"),
             Outcome::Infeasible(why) => {
                 infeasible += 1;
                 assert!(expected.is_empty(), "seed {seed}: the search found none of {}", expected.len());
@@ -566,6 +568,98 @@ fn cures_are_the_least_changes_that_cure() {
     assert!(cured > 150 && steps > 100, "{cured} cures, {steps} with a step less");
 }
 
+/// The least cost of any layout on a roof so changed, by trying everything.
+fn least_cost(roof: &Roof, options: &Options) -> Option<Money> {
+    let by_cost = Options { rank_by: vec![Criterion::Cost], keep: 1, fold: false, ..options.clone() };
+    let cost = |tried: &Tried| {
+        let of_group = |&(size, count): &(usize, u32)| roof.sizes[size].price.expect("priced") * count;
+        tried
+            .groups
+            .iter()
+            .map(of_group)
+            .fold(Money::default(), |sum, cost| Money::from_millionths(sum.millionths() + cost.millionths()))
+    };
+    everything(roof, &by_cost).first().map(cost)
+}
+
+/// What binds: the change saves what is told, a step less of it saves less, and what is told to save nothing does not.
+#[test]
+fn what_binds_is_the_least_change_that_saves_as_much() {
+    let (mut binding, mut idle) = (0, 0);
+    for seed in 1..=600_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15));
+        let (roof, mut options) = (roof(&mut dice), options(&mut dice));
+        options.mix = options.mix.min(2);
+        let Some(now) = least_cost(&roof, &options) else {
+            assert!(search::binds(&roof, &options, 0).is_none(), "seed {seed}: nothing binds where nothing holds");
+            continue;
+        };
+        let binds = search::binds(&roof, &options, 0).expect("all priced");
+        assert!(!binds.stopped);
+        for bound in &binds.found {
+            let told = bound.layout().and_then(|layout| layout.cost).expect("opens a layout");
+            assert!(told < now, "seed {seed}: {:?}", bound.change);
+            assert_eq!(least_cost(&bound.roof, &bound.options), Some(told), "seed {seed}: {:?}", bound.change);
+            binding += 1;
+            if let Some(less) = a_step_less(bound.change) {
+                let (roof, options) = search::relaxed(&roof, &options, less);
+                assert!(least_cost(&roof, &options) > Some(told), "seed {seed}: {less:?} saves as much");
+            }
+        }
+        // Half a moderate change is within what was tried.
+        for useless in &binds.useless {
+            let half = match useless {
+                Relaxation::Load(_) => Relaxation::Load(Load::psf(2.5)),
+                Relaxation::Edge(_) => Relaxation::Edge(Length::inches(60.0)),
+                Relaxation::Demand(_) => Relaxation::Demand(0.95),
+                Relaxation::Devices(_) => Relaxation::Devices(1),
+                _ => continue,
+            };
+            let (roof, options) = search::relaxed(&roof, &options, half);
+            assert_eq!(least_cost(&roof, &options), Some(now), "seed {seed}: {half:?} saves");
+            idle += 1;
+        }
+    }
+    assert!(binding > 100 && idle > 100, "{binding} changes bind, {idle} do not");
+}
+
+/// A search that is ended at once has found nothing, and what it proves of the rest is true of the best layout.
+#[test]
+fn what_is_proven_of_an_ended_search_is_true() {
+    let mut bounds = 0;
+    for seed in 1..=600_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15));
+        let (roof, options) = (roof(&mut dice), options(&mut dice));
+        let ended = Options { watch: Watch::default(), ..options.clone() };
+        ended.watch.end();
+        let best = search::size(&roof, &options, &[0]).remove(0).outcome;
+        match search::size(&roof, &ended, &[0]).remove(0).outcome {
+            Outcome::Stopped { layouts, bound } => {
+                assert!(layouts.is_empty());
+                let (Some(bound), Some(best)) = (bound, best.layouts().first()) else { continue };
+                let width = |width: i64| width.max(0);
+                let total: i64 = best
+                    .groups
+                    .iter()
+                    .map(|placed| width(placed.group.size.clear_width().nm()) * i64::from(placed.group.count))
+                    .sum();
+                match bound {
+                    Least::Cost(least) => assert!(least <= best.cost.expect("priced"), "seed {seed}"),
+                    Least::Width(least) => assert!(least.nm() <= total, "seed {seed}"),
+                    Least::Count(least) => {
+                        assert!(least <= best.groups.iter().map(|placed| placed.group.count).sum(), "seed {seed}");
+                    }
+                }
+                bounds += 1;
+            }
+            // Nothing to try: that needs no search.
+            Outcome::Infeasible(Why::NothingStands { .. }) => {}
+            other => panic!("seed {seed}: {other:?}"),
+        }
+    }
+    assert!(bounds > 50, "{bounds} bounds");
+}
+
 /// The treads of least cost are what a search at every single step finds.
 #[test]
 fn treads_are_the_least_costs_at_every_step() {
@@ -577,11 +671,10 @@ fn treads_are_the_least_costs_at_every_step() {
             continue;
         }
         let raises = search::Raises { step: Load::psf(0.5), steps: -12..=24 };
-        let treads = search::tradeoff(&roof, &options, 0, &raises);
+        let treads = search::tradeoff(&roof, &options, 0, &raises).expect("nobody ends it");
         let by_cost = Options { rank_by: vec![search::Criterion::Cost], keep: 1, ..options };
-        let cost = |roof: &Roof, options: &Options| match search::size(roof, options, &[0]).remove(0).outcome {
-            Outcome::Optimal(layouts) => layouts[0].cost,
-            Outcome::Infeasible(_) => None,
+        let cost = |roof: &Roof, options: &Options| {
+            search::size(roof, options, &[0]).remove(0).outcome.layouts().first().and_then(|layout| layout.cost)
         };
         let mut reached = treads.iter().peekable();
         let mut told = None;

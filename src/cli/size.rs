@@ -2,16 +2,21 @@
 
 use std::process::ExitCode;
 
+use rayon::prelude::*;
+
 use crate::report::{self, Sized};
 use crate::search::{self, Answer, Cures, Outcome};
 
+use super::watching::Ending;
 use super::{Failure, OfProject};
 
 /// Rank the layouts that keep each area of a roof within its limits.
 ///
 /// Every layout that the catalogs and the ranges of the project allow is tried, or excluded by a proven bound. Exit code 0:
-/// every area has a layout; 1: an area has none, and the report says why; 2: the input cannot be used.
+/// every area has a layout; 1: an area has none, or none was found in time, and the report says why; 2: the input cannot be
+/// used.
 #[derive(Debug, clap::Args)]
+#[expect(clippy::struct_excessive_bools, reason = "each is a flag")]
 pub(super) struct Args {
     #[command(flatten)]
     of: OfProject,
@@ -27,28 +32,37 @@ pub(super) struct Args {
     /// Show each area's first layout under every flow law that its devices can follow.
     #[arg(long)]
     laws: bool,
+    /// Say of each area with layouts which single change would save most: more load, lower sills, one device more.
+    #[arg(long)]
+    binds: bool,
+    #[command(flatten)]
+    ending: Ending,
 }
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let (project, areas) = args.of.read()?;
+    let watched = args.ending.watch()?;
     let mut options = project.options.clone();
+    options.watch = watched.watch.clone();
     options.fold = !args.all;
     if let Some(keep) = args.keep {
         options.keep = keep as usize;
     }
     let answers = search::size(&project.roof, &options, &areas);
-    let first = |answer: &Answer<'_>| match &answer.outcome {
-        Outcome::Optimal(layouts) => search::under_every_law(&project.roof, answer.area, &layouts[0]),
-        Outcome::Infeasible(_) => Vec::new(),
+    let first = |answer: &Answer<'_>| match answer.outcome.layouts() {
+        [first, ..] => search::under_every_law(&project.roof, answer.area, first),
+        [] => Vec::new(),
     };
     let laws: Vec<_> = if args.laws { answers.iter().map(first).collect() } else { Vec::new() };
-    let cured = |answer: &Answer<'_>| match &answer.outcome {
+    let changes = |answer: &Answer<'_>| match &answer.outcome {
         Outcome::Infeasible(_) => Some(search::cures(&project.roof, &options, answer.area)),
-        Outcome::Optimal(_) => None,
+        Outcome::Optimal(_) if args.binds => search::binds(&project.roof, &options, answer.area),
+        Outcome::Optimal(_) | Outcome::Stopped { .. } => None,
     };
-    let cures: Vec<_> = answers.iter().map(cured).collect();
-    let opened: Vec<_> = cures.iter().map(|cures| cures.as_ref().map(Cures::open)).collect();
+    let changes: Vec<_> = answers.par_iter().map(changes).collect();
+    let opened: Vec<_> = changes.par_iter().map(|changes| changes.as_ref().map(Cures::open)).collect();
     let plans = project.plan.map(|asked| (asked, search::plan(&project.roof, &options, asked, &areas)));
+    drop(watched);
     let sized = Sized {
         roof: &project.roof,
         options: &options,
@@ -56,11 +70,11 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         answers: &answers,
         work: args.work,
         laws: &laws,
-        cures: &opened,
+        changes: &opened,
         plans: plans.as_ref().map(|(asked, found)| report::Asked { asked: *asked, found: found.as_ref() }),
     };
     args.of.deliver(|format, width| report::size(&sized, format, width))?;
-    let infeasible = answers.iter().any(|answer| matches!(answer.outcome, Outcome::Infeasible(_)));
+    let without = answers.iter().any(|answer| answer.outcome.layouts().is_empty());
     let unplanned = plans.iter().any(|(_, found)| found.as_ref().is_none_or(|plans| plans.plans.is_empty()));
-    Ok(if infeasible || unplanned { ExitCode::from(1) } else { ExitCode::SUCCESS })
+    Ok(if without || unplanned { ExitCode::from(1) } else { ExitCode::SUCCESS })
 }

@@ -5,9 +5,10 @@ use std::process::ExitCode;
 use rayon::prelude::*;
 
 use crate::report::{self, Traded};
-use crate::search::{self, Raises};
+use crate::search::{self, Options, Raises};
 use crate::units::{Load, System};
 
+use super::watching::Ending;
 use super::{Failure, OfProject, quantity};
 
 /// Least cost against the load limit: what a stronger or a weaker roof saves or costs in openings.
@@ -27,6 +28,8 @@ pub(super) struct Args {
     /// Step of the plan; 1 psf or 50 Pa where not given.
     #[arg(long, value_name = "LOAD")]
     step: Option<String>,
+    #[command(flatten)]
+    ending: Ending,
 }
 
 /// Most steps of a range: one search each for the plan.
@@ -56,17 +59,20 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         Raises { step, steps: -steps(down)..=steps(up) }
     };
     let fine = raises(if us { Load::psf(0.01) } else { Load::from_pa(1.0) });
-    let treads = |&area: &usize| (area, search::tradeoff(&project.roof, &project.options, area, &fine));
+    let watched = args.ending.watch()?;
+    let options = Options { watch: watched.watch.clone(), ..project.options.clone() };
+    let treads = |&area: &usize| (area, search::tradeoff(&project.roof, &options, area, &fine));
     let treads: Vec<_> = areas.par_iter().map(treads).collect();
-    let plan = |asked| search::plan_tradeoff(&project.roof, &project.options, asked, &areas, &raises(step));
-    let lacking = treads.iter().any(|(_, treads)| treads.is_empty());
+    let plan = |asked| search::plan_tradeoff(&project.roof, &options, asked, &areas, &raises(step));
+    let lacking = treads.iter().any(|(_, treads)| treads.as_ref().map_or(true, Vec::is_empty));
     let traded = Traded {
         roof: &project.roof,
         lowest: Load::from_pa(-down.pa()),
         highest: up,
-        areas: treads.iter().map(|(area, treads)| (*area, search::opened(treads))).collect(),
+        areas: treads.iter().map(|(area, treads)| (*area, treads.as_deref().ok().map(search::opened))).collect(),
         plans: project.plan.map(plan),
     };
+    drop(watched);
     args.of.deliver(|format, width| report::tradeoff(&traded, format, width))?;
     Ok(ExitCode::from(u8::from(lacking)))
 }

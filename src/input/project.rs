@@ -4,7 +4,7 @@ use std::path::Path;
 
 use crate::device::{Choice, Kind, Law};
 use crate::roof::{Case, Limits, Roof, Storm, demand};
-use crate::search::{Criterion, Options, PlanAsked};
+use crate::search::{Criterion, Options, PlanAsked, Watch};
 use crate::units::{Dimension, Intensity, Length, Money, ReturnPeriod, System, Time};
 
 use super::catalog::{Catalogs, Offer};
@@ -217,6 +217,7 @@ impl Search {
             mix: self.mix? as usize,
             freeboard: self.freeboard?,
             fold: true,
+            watch: Watch::default(),
         })
     }
 }

@@ -1,7 +1,7 @@
 //! What would cure an area without a layout, each change with the first layout that it opens.
 
 use crate::roof::load_of;
-use crate::search::{Cure, Opened, Ranked, Relaxation};
+use crate::search::{Cure, Opened, Opening, Ranked, Relaxation};
 use crate::units::{Length, Money};
 
 use super::page::Block;
@@ -15,19 +15,55 @@ pub(super) fn blocks(opened: &Opened<'_>, words: Words) -> Vec<Block> {
         blocks.push(Block::List(opened.cures.iter().map(|(cure, layout)| line(cure, layout, words)).collect()));
     }
     if !opened.useless.is_empty() {
-        let kinds: Vec<_> = opened.useless.iter().map(|change| bare(*change)).collect();
-        let kinds = kinds.split_last().map_or(String::new(), |(last, others)| match others {
-            [] => (*last).to_string(),
-            others => format!("{} or {last}", others.join(", ")),
-        });
-        blocks.push(Block::Text(format!("No cure was found in {kinds} alone.")));
+        blocks.push(Block::Text(format!("No cure was found in {} alone.", kinds(opened.useless))));
     }
+    blocks.extend(stopped(opened));
     blocks
 }
 
+/// What the cost of the first layout binds on: the single changes that save, the greatest saving first.
+pub(super) fn binding(opened: &Opened<'_>, first: &Ranked<'_>, words: Words) -> Vec<Block> {
+    let mut blocks = Vec::new();
+    let saved = |layout: &Ranked<'_>| {
+        let (now, then) = (first.cost?.millionths(), layout.cost?.millionths());
+        Some(words::money(Money::from_millionths(now - then)))
+    };
+    let line = |(cure, layout): &Opening<'_>| {
+        let saved = saved(layout).map_or(String::new(), |saved| format!("{saved} less with "));
+        format!("{saved}{}: {}", change(cure, layout, words), priced_layout(cure, layout, words))
+    };
+    if !opened.cures.is_empty() {
+        blocks
+            .push(Block::Text("What binds: one change of moderate size at a time, the greatest saving first:".into()));
+        blocks.push(Block::List(opened.cures.iter().map(line).collect()));
+    }
+    if !opened.useless.is_empty() {
+        blocks.push(Block::Text(format!("Nothing is saved by {} alone.", kinds(opened.useless))));
+    }
+    blocks.extend(stopped(opened));
+    blocks
+}
+
+fn stopped(opened: &Opened<'_>) -> Option<Block> {
+    opened.stopped.then(|| Block::Text("The search was ended: other changes may help as well.".into()))
+}
+
+/// Kinds of change as alternatives.
+fn kinds(changes: &[Relaxation]) -> String {
+    let kinds: Vec<_> = changes.iter().map(|change| bare(*change)).collect();
+    kinds.split_last().map_or(String::new(), |(last, others)| match others {
+        [] => (*last).to_string(),
+        others => format!("{} or {last}", others.join(", ")),
+    })
+}
+
 fn line(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
+    format!("{}: {}", change(cure, layout, words), priced_layout(cure, layout, words))
+}
+
+fn priced_layout(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
     let cost = layout.cost.map_or(String::new(), |cost| format!(", {}", priced(cure.change, cost)));
-    format!("{}: {}{cost}", change(cure, layout, words), words.layout(layout))
+    format!("{}{cost}", words.layout(layout))
 }
 
 /// A cost; of openings that no catalog has, what those they replace would cost.

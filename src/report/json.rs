@@ -5,11 +5,11 @@ use std::ops::Not;
 use serde::Serialize;
 
 use crate::device::{Kind, Site};
-use crate::search::{Answer, Cure, Opened, Outcome, Placed, Ranked, UnderLaw};
+use crate::search::{Answer, Least, Opened, Opening, Outcome, Placed, Ranked, UnderLaw};
 use crate::units::{Length, Money};
 
-use super::words::Words;
-use super::{Asked, Sized, notes, ranking};
+use super::words::{self, Words};
+use super::{Asked, Sized, notes, ranking, reasons};
 
 #[derive(Serialize)]
 struct Document<'a> {
@@ -41,10 +41,21 @@ struct Area<'a> {
     #[serde(skip_serializing_if = "Option::is_none")]
     why: Option<String>,
     #[serde(skip_serializing_if = "Option::is_none")]
+    bound: Option<AtLeast>,
+    #[serde(skip_serializing_if = "Option::is_none")]
     cures: Option<Vec<CureFound<'a>>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    binds: Option<Vec<CureFound<'a>>>,
     #[serde(skip_serializing_if = "Vec::is_empty")]
     cures_nothing: Vec<&'static str>,
     layouts: Vec<Layout<'a>>,
+}
+
+/// A proven least value of what layouts are ranked by first.
+#[derive(Serialize)]
+struct AtLeast {
+    of: &'static str,
+    at_least: f64,
 }
 
 #[derive(Serialize)]
@@ -226,24 +237,35 @@ fn plans<'a>(sized: &Sized<'a, '_>, asked: &Asked<'a, '_>) -> Vec<Plan<'a>> {
 }
 
 fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
-    let (outcome, why, layouts) = match &answer.outcome {
-        Outcome::Optimal(layouts) => ("optimal", None, &layouts[..]),
-        Outcome::Infeasible(why) => {
-            let words = Words(sized.roof.system);
-            ("infeasible", Some(ranking::infeasible(sized, answer.area, why, words)), &[][..])
-        }
+    let words = Words(sized.roof.system);
+    let (why, bound) = match &answer.outcome {
+        Outcome::Optimal(_) => (None, None),
+        Outcome::Stopped { bound, .. } => (None, *bound),
+        Outcome::Infeasible(why) => (Some(reasons::infeasible(sized, answer.area, why, words)), None),
     };
-    let opened = sized.cures_of(answer.area);
-    let layouts = layouts.iter().enumerate().map(|(index, ranked)| layout(sized, answer.area, index + 1, ranked));
+    let opened = sized.changes_of(answer.area);
+    let found = answer.outcome.layouts();
+    let cures = opened.filter(|_| found.is_empty());
+    let layouts = found.iter().enumerate().map(|(index, ranked)| layout(sized, answer.area, index + 1, ranked));
     Area {
         name: &sized.roof.areas[answer.area].name,
         demand_m3_s: sized.roof.demands[answer.area].m3_per_s(),
-        outcome,
+        outcome: words::outcome(&answer.outcome),
         why,
-        cures: opened.map(found_cures),
-        cures_nothing: opened
+        bound: bound.map(bound_of),
+        cures: cures.map(found_cures),
+        binds: opened.filter(|_| !found.is_empty()).map(found_cures),
+        cures_nothing: cures
             .map_or(Vec::new(), |opened| opened.useless.iter().map(|&change| super::cures::amount(change).0).collect()),
         layouts: layouts.collect(),
+    }
+}
+
+fn bound_of(bound: Least) -> AtLeast {
+    match bound {
+        Least::Cost(cost) => AtLeast { of: "cost", at_least: cost.amount() },
+        Least::Count(count) => AtLeast { of: "count", at_least: f64::from(count) },
+        Least::Width(width) => AtLeast { of: "width_m", at_least: width.m() },
     }
 }
 
@@ -304,7 +326,7 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
 }
 
 fn found_cures<'a>(opened: &'a Opened<'_>) -> Vec<CureFound<'a>> {
-    let found = |(cure, layout): &'a (&Cure, Ranked<'_>)| {
+    let found = |(cure, layout): &'a Opening<'_>| {
         let (change, amount) = super::cures::amount(cure.change);
         let site = cure.roof.site(0, None);
         let groups = layout.groups.iter().map(|placed| group(placed, &site)).collect();

@@ -3,7 +3,7 @@
 use crate::device::{Kind, Law, Place, Regime, Site, Size};
 use crate::hydraulics::practice::Transition;
 use crate::roof::layout::GroupState;
-use crate::search::{Outcome, Ranked};
+use crate::search::Ranked;
 use crate::units::{Area, Length, System};
 
 use super::Sized;
@@ -18,10 +18,7 @@ const LOW_HEAD: Length = Length::inches(1.0);
 const LOW_SILL: Length = Length::mm(50.0);
 
 fn layouts<'a, 'r>(sized: &Sized<'a, 'r>) -> impl Iterator<Item = &'a Ranked<'r>> {
-    sized.answers.iter().flat_map(|answer| match &answer.outcome {
-        Outcome::Optimal(layouts) => &layouts[..],
-        Outcome::Infeasible(_) => &[],
-    })
+    sized.answers.iter().flat_map(|answer| answer.outcome.layouts())
 }
 
 fn sizes<'r>(sized: &Sized<'_, 'r>) -> Vec<&'r Size> {
@@ -102,9 +99,8 @@ fn transition(site: &Site) -> Option<String> {
 fn following(sized: &Sized<'_, '_>, words: Words) -> Vec<String> {
     let mut lines: Vec<String> = Vec::new();
     for answer in sized.answers {
-        let Outcome::Optimal(layouts) = &answer.outcome else { continue };
         let site = sized.roof.site(answer.area, None);
-        for placed in layouts.iter().flat_map(|layout| &layout.groups) {
+        for placed in answer.outcome.layouts().iter().flat_map(|layout| &layout.groups) {
             let size = placed.group.size;
             let mut parts = Vec::new();
             if (size.screen - 1.0).abs() > 1e-12 {

@@ -74,10 +74,7 @@ fn told(asked: &Asked<'_, '_>, found: &Plans<'_>, plan: &Plan<'_>, words: Words)
 fn areas(sized: &Sized<'_, '_>, plan: &Plan<'_>, words: Words) -> Table {
     let roof = sized.roof;
     let rows = || sized.answers.iter().zip(&plan.layouts);
-    let alone = |outcome: &Outcome<'_>| match outcome {
-        Outcome::Optimal(layouts) => layouts.iter().filter_map(|layout| layout.cost).min(),
-        Outcome::Infeasible(_) => None,
-    };
+    let alone = |outcome: &Outcome<'_>| outcome.layouts().iter().filter_map(|layout| layout.cost).min();
     Table::of(vec![
         ("area".into(), false, rows().map(|(answer, _)| roof.areas[answer.area].name.clone()).collect()),
         ("layout".into(), false, rows().map(|(_, layout)| words.layout(layout)).collect()),

@@ -2,14 +2,13 @@
 
 use crate::device::{Kind, Law};
 use crate::hydraulics::limits::Range;
-use crate::roof::{Case, LimitKind, Limits, Roof, demand};
-use crate::rules::Misfit;
-use crate::search::{Answer, Outcome, Ranked, UnderLaw, Why};
+use crate::roof::{Case, Limits, Roof, demand};
+use crate::search::{Answer, Outcome, Ranked, UnderLaw};
 use crate::units::{Area, Length, Load};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Sized, notes, plan, work};
+use super::{Sized, cures, notes, plan, reasons, work};
 
 /// The mark behind a layout that leaves the published range of its law.
 const BEYOND: &str = "\u{2020}";
@@ -86,7 +85,22 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
     blocks.push(Block::Text(demand_in_words(roof, answer.area, words)));
     blocks.push(Block::Text(limit_in_words(roof, answer.area, words)));
     match &answer.outcome {
-        Outcome::Optimal(layouts) => {
+        Outcome::Optimal(_) => {}
+        Outcome::Stopped { layouts, bound } => {
+            blocks.push(Block::Text(reasons::stopped(layouts.first(), *bound, words)));
+        }
+        Outcome::Infeasible(why) => {
+            let why = reasons::infeasible(sized, answer.area, why, words);
+            blocks.push(Block::Text(format!("No layout. {why}")));
+        }
+    }
+    match answer.outcome.layouts() {
+        [] => {
+            if let Some(opened) = sized.changes_of(answer.area) {
+                blocks.extend(cures::blocks(opened, words));
+            }
+        }
+        layouts => {
             ranking(sized, answer.area, layouts, words, blocks);
             if let Some(laws) = sized.laws_of(answer.area).filter(|laws| !laws.is_empty()) {
                 every_law(roof, answer.area, &layouts[0], laws, words, blocks);
@@ -95,11 +109,8 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
                 blocks.push(Block::Text(format!("The first layout by hand, {}:", words.layout(&layouts[0]))));
                 blocks.push(Block::Lines(work::lines(roof, answer.area, &layouts[0], words)));
             }
-        }
-        Outcome::Infeasible(why) => {
-            blocks.push(Block::Text(format!("No layout. {}", infeasible(sized, answer.area, why, words))));
-            if let Some(cures) = sized.cures_of(answer.area) {
-                blocks.extend(super::cures::blocks(cures, words));
+            if let Some(opened) = sized.changes_of(answer.area) {
+                blocks.extend(cures::binding(opened, &layouts[0], words));
             }
         }
     }
@@ -414,138 +425,4 @@ pub(super) fn out_of_range(range: &Range, value: f64, words: Words) -> String {
     let end = |value: f64| if range.unit.is_empty() { trimmed(value, 3) } else { words.size(Length::from_m(value)) };
     let (side, limit) = if value < range.low { ("under", range.low) } else { ("over", range.high) };
     format!("{} {} {side} {} ({})", range.what, shown(value), end(limit), range.law)
-}
-
-/// Why there is no layout, in a few sentences.
-pub(super) fn infeasible(sized: &Sized<'_, '_>, area: usize, why: &Why<'_>, words: Words) -> String {
-    let roof = sized.roof;
-    let name = &roof.areas[area].name;
-    match why {
-        Why::NothingStands { misfits } => {
-            let mut told: Vec<String> = Vec::new();
-            let mut tags: Vec<&str> = Vec::new();
-            for (size, misfit) in misfits {
-                if !tags.contains(&&*size.tag) {
-                    tags.push(&size.tag);
-                    told.push(misfit_in_words(&words.name(size), misfit, words));
-                }
-            }
-            format!("Nothing in the catalogs can stand in {name}: {}.", told.join("; "))
-        }
-        Why::NothingFits { least } => {
-            let edge = roof.areas[area].edge.map_or("the area".into(), |edge| format!("{} of edge", words.long(edge)));
-            format!("{name} asks for at least {least} devices, and no {least} of the catalogs' sizes fit {edge}.")
-        }
-        Why::Limits { best, alone, together } => {
-            let text = limits_not_held(roof, area, best, alone, together, words);
-            // The nearest to the limits is looked for without it.
-            match sized.options.freeboard {
-                Some(_) => format!("{text} The freeboard asked for is not even counted in this."),
-                None => text,
-            }
-        }
-        Why::Freeboard { asked, best } => {
-            let least = |layout: &Ranked<'_>| {
-                let of_case = |case: &usize| {
-                    let freeboards = layout.states[*case].groups.iter().filter_map(|group| group.freeboard);
-                    freeboards.map(Length::m).fold(f64::INFINITY, f64::min)
-                };
-                let cases: Vec<usize> = (0..layout.states.len()).collect();
-                cases.into_iter().min_by(|a, b| of_case(a).total_cmp(&of_case(b))).unwrap_or(0)
-            };
-            let reached = best.as_ref().map_or(String::new(), |(kept, layout)| {
-                let case = &roof.cases[least(layout)].name;
-                format!(": the best keeps {} in \"{case}\" with {}", words.depth(*kept), words.layout(layout))
-            });
-            format!("Layouts hold {name} under its limits, but none with {} of freeboard{reached}.", words.size(*asked))
-        }
-    }
-}
-
-fn limits_not_held(
-    roof: &Roof,
-    area: usize,
-    best: &Ranked<'_>,
-    alone: &[usize],
-    together: &[usize],
-    words: Words,
-) -> String {
-    let name = &roof.areas[area].name;
-    let situation = roof.situation(area, best.case);
-    let case = |case: usize| format!("\"{}\"", roof.cases[case].name);
-    let all = |cases: &[usize]| list(&cases.iter().map(|&one| case(one)).collect::<Vec<_>>());
-    let Some(governing) = best.governing else {
-        return format!(
-            "Nothing here carries the {} of {name} in {}: every layout of rated devices is overwhelmed, its tables at \
-             their end, as is {}.",
-            words.flow(situation.demand),
-            case(best.case),
-            words.layout(best)
-        );
-    };
-    let water = best.states[best.case].water;
-    let reached = water.map_or(String::new(), |water| match governing.limit {
-        LimitKind::Load => words.load(water.load),
-        LimitKind::Depth => words.depth(water.depth()),
-        LimitKind::Parapet => words.depth(water.reach.map_or(water.level, |reach| reach.far_level)),
-    });
-    let limit = words.limit(governing.limit, situation.limits, situation.parapet);
-    let layout = words.layout(best);
-    let mut text = if alone.contains(&best.case) {
-        let others: Vec<usize> = alone.iter().copied().filter(|&other| other != best.case).collect();
-        let nor =
-            if others.is_empty() { String::new() } else { format!(" Nor can {} be held, even alone.", all(&others)) };
-        format!(
-            "Nothing here holds {name} under {limit} in {}: the best reaches {reached} with {layout}.{nor}",
-            case(best.case)
-        )
-    } else if alone.is_empty() {
-        format!(
-            "Each case can be held alone, but nothing here holds {name} in {} together: the nearest is {layout}, which \
-             reaches {reached} of {limit} in {}.",
-            all(together),
-            case(best.case)
-        )
-    } else {
-        format!(
-            "Nothing here holds {name} in {}, even alone. The nearest in all cases is {layout}, which reaches {reached} of \
-             {limit} in {}.",
-            all(alone),
-            case(best.case)
-        )
-    };
-    let sills = best.groups.iter().map(|placed| placed.from).fold(Length::from_m(f64::INFINITY), Length::min);
-    let allowed = situation.allowable_level();
-    if allowed <= sills && allowed > Length::ZERO {
-        text += &format!(" The limit allows water up to {}, which is not above the lowest sill.", words.depth(allowed));
-    } else if allowed <= Length::ZERO {
-        text += " The limit leaves no level at the devices at all.";
-    }
-    text
-}
-
-fn misfit_in_words(size: &str, misfit: &Misfit, words: Words) -> String {
-    let between = |(low, high): (Length, Length)| {
-        if low == high { words.size(low) } else { format!("{} to {}", words.bare_size(low), words.size(high)) }
-    };
-    match misfit {
-        Misfit::Kind { found } => format!("{size} is a {found}, which the area does not take"),
-        Misfit::SetHeight { own, area } => {
-            format!("{size} stands at {} only, the area asks for {}", between(*own), between(*area))
-        }
-        Misfit::RoofAtWall { highest, roof } => format!(
-            "{size} would stand at {} at most, below the roof at the parapet at {}",
-            words.size(*highest),
-            words.size(*roof)
-        ),
-        Misfit::Parapet { top, parapet } => format!(
-            "the top of {size} at its lowest, {}, is not below the parapet's top at {}",
-            words.size(*top),
-            words.size(*parapet)
-        ),
-        Misfit::Edge { edge, .. } if *edge == Length::ZERO => format!("{size} needs edge, and there is none"),
-        Misfit::Edge { width, edge } => {
-            format!("{size} is {} wide, the edge {}", words.size(*width), words.size(*edge))
-        }
-    }
 }

@@ -1,11 +1,11 @@
 //! The ranked layouts as a schedule: CSV, one row for each group of each layout, in the units of the project.
 
 use crate::device::Kind;
-use crate::search::{Outcome, Placed, Ranked};
+use crate::search::{Answer, Outcome, Placed, Ranked};
 use crate::units::Length;
 
-use super::words::Words;
-use super::{Sized, plain, ranking, written};
+use super::words::{self, Words};
+use super::{Sized, plain, reasons, written};
 
 pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
     let words = Words(sized.roof.system);
@@ -36,20 +36,19 @@ pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
     let mut rows = vec![head.to_vec()];
     for answer in sized.answers {
         let area = &sized.roof.areas[answer.area].name;
-        match &answer.outcome {
-            Outcome::Optimal(layouts) => {
-                for (index, layout) in layouts.iter().enumerate() {
-                    let groups = layout.groups.iter();
-                    rows.extend(groups.map(|placed| row(sized, answer.area, index + 1, layout, placed, words)));
-                }
-            }
-            Outcome::Infeasible(why) => {
-                let mut row = vec![String::new(); head.len()];
-                row[0].clone_from(area);
-                row[1] = "infeasible".into();
-                row[head.len() - 1] = ranking::infeasible(sized, answer.area, why, words);
-                rows.push(row);
-            }
+        for (index, layout) in answer.outcome.layouts().iter().enumerate() {
+            let row = |placed| row(sized, answer, index + 1, layout, placed, words);
+            rows.extend(layout.groups.iter().map(row));
+        }
+        if answer.outcome.layouts().is_empty() {
+            let mut row = vec![String::new(); head.len()];
+            row[0].clone_from(area);
+            row[1] = words::outcome(&answer.outcome).into();
+            row[head.len() - 1] = match &answer.outcome {
+                Outcome::Infeasible(why) => reasons::infeasible(sized, answer.area, why, words),
+                Outcome::Optimal(_) | Outcome::Stopped { .. } => reasons::stopped(None, None, words),
+            };
+            rows.push(row);
         }
     }
     written(&rows)
@@ -57,7 +56,7 @@ pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
 
 fn row(
     sized: &Sized<'_, '_>,
-    area: usize,
+    answer: &Answer<'_>,
     rank: usize,
     layout: &Ranked<'_>,
     placed: &Placed<'_>,
@@ -69,8 +68,8 @@ fn row(
     let optional = |length: Option<Length>| length.map_or(String::new(), small);
     let water = layout.states[layout.case].water;
     vec![
-        sized.roof.areas[area].name.clone(),
-        "optimal".into(),
+        sized.roof.areas[answer.area].name.clone(),
+        words::outcome(&answer.outcome).into(),
         rank.to_string(),
         layout.cost.map_or(String::new(), |cost| plain(cost.amount(), 2)),
         placed.group.size.tag.to_string(),
@@ -82,7 +81,7 @@ fn row(
         small(placed.group.set_height),
         small(placed.from),
         words.depth_down(placed.to).replace(',', ""),
-        placed.group.size.law_at(&sized.roof.site(area, None)).name().to_string(),
+        placed.group.size.law_at(&sized.roof.site(answer.area, None)).name().to_string(),
         sized.roof.cases[layout.case].name.clone(),
         layout.governing.map_or("overwhelmed".into(), |governing| governing.limit.name().to_string()),
         optional(water.map(|water| water.level)),

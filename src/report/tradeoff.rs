@@ -2,7 +2,7 @@
 
 use serde::Serialize;
 
-use crate::search::{Cure, PlanAt, Ranked, Relaxation};
+use crate::search::{Cure, Opening, PlanAt, Ranked, Relaxation};
 use crate::units::{Load, Money};
 
 use super::page::{self, Block, Table};
@@ -18,8 +18,8 @@ struct Tread<'a> {
 }
 
 /// The treads whose layout has a price: all of them, as the walk asks for the least cost.
-fn treads<'a>(opened: &'a [(&'a Cure, Ranked<'a>)]) -> Vec<Tread<'a>> {
-    let tread = |(changed, layout): &'a (&'a Cure, Ranked<'a>)| match changed.change {
+fn treads<'a>(opened: &'a [Opening<'a>]) -> Vec<Tread<'a>> {
+    let tread = |(changed, layout): &'a Opening<'a>| match changed.change {
         Relaxation::Load(raise) => Some(Tread { raise, cost: layout.cost?, changed, layout }),
         _ => None,
     };
@@ -72,7 +72,7 @@ fn blocks(traded: &Traded<'_>) -> Vec<Block> {
         )),
     ];
     for (area, opened) in &traded.areas {
-        area_blocks(traded, *area, opened, words, &mut blocks);
+        area_blocks(traded, *area, opened.as_deref(), words, &mut blocks);
     }
     if let Some(plans) = &traded.plans {
         plan_blocks(traded, plans.as_deref(), words, &mut blocks);
@@ -102,7 +102,7 @@ fn signed(raise: Load, words: Words) -> String {
 fn area_blocks(
     traded: &Traded<'_>,
     area: usize,
-    opened: &[(&Cure, Ranked<'_>)],
+    opened: Option<&[Opening<'_>]>,
     words: Words,
     blocks: &mut Vec<Block>,
 ) {
@@ -117,6 +117,10 @@ fn area_blocks(
         return;
     }
     blocks.push(Block::Text(format!("Load limit as given: {}.", list(&loads))));
+    let Some(opened) = opened else {
+        blocks.push(Block::Text("The search was ended before the least costs here were known.".into()));
+        return;
+    };
     let treads = treads(opened);
     if treads.is_empty() {
         let text = format!("No layout, even with {}.", signed(traded.highest, words));
@@ -204,7 +208,9 @@ fn csv(traded: &Traded<'_>) -> String {
     for (area, opened) in &traded.areas {
         let name = &traded.roof.areas[*area].name;
         rows.extend(
-            treads(opened).iter().map(|tread| row(name, tread.raise, Some(tread.cost), words.layout(tread.layout))),
+            treads(opened.as_deref().unwrap_or_default())
+                .iter()
+                .map(|tread| row(name, tread.raise, Some(tread.cost), words.layout(tread.layout))),
         );
     }
     for plan in traded.plans.iter().flatten().flatten() {
@@ -226,6 +232,7 @@ struct Document<'a> {
 #[derive(Serialize)]
 struct OfArea<'a> {
     name: &'a str,
+    outcome: &'static str,
     treads: Vec<OfTread>,
 }
 
@@ -252,9 +259,10 @@ fn json<'a>(traded: &'a Traded<'_>) -> String {
         cost: tread.cost.amount(),
         layout: words.layout(tread.layout),
     };
-    let area = |(area, opened): &'a (usize, Vec<(&Cure, Ranked<'_>)>)| OfArea {
+    let area = |(area, opened): &'a (usize, Option<Vec<Opening<'_>>>)| OfArea {
         name: &traded.roof.areas[*area].name,
-        treads: treads(opened).iter().map(tread).collect(),
+        outcome: if opened.is_some() { "optimal" } else { "stopped" },
+        treads: treads(opened.as_deref().unwrap_or_default()).iter().map(tread).collect(),
     };
     let plan = |plan: &PlanAt| OfPlan {
         load_limit_more_pa: plan.raise.pa(),

@@ -3,7 +3,7 @@
 use crate::device::{Device, Size};
 use crate::roof::layout::Group;
 use crate::roof::{LimitKind, Limits};
-use crate::search::{Criterion, Placed, Ranked};
+use crate::search::{Criterion, Outcome, Placed, Ranked};
 use crate::units::{Area, Flow, Intensity, Length, Load, Money, System, Time};
 
 /// A number with its decimals, thousands parted by commas.
@@ -29,6 +29,15 @@ pub(super) fn grouped(value: f64, decimals: usize) -> String {
 pub(super) fn trimmed(value: f64, decimals: usize) -> String {
     let text = grouped(value, decimals);
     if text.contains('.') { text.trim_end_matches('0').trim_end_matches('.').to_string() } else { text }
+}
+
+/// How a search ended, in one word of every form of a report.
+pub(super) fn outcome(outcome: &Outcome<'_>) -> &'static str {
+    match outcome {
+        Outcome::Optimal(_) => "optimal",
+        Outcome::Stopped { .. } => "stopped",
+        Outcome::Infeasible(_) => "infeasible",
+    }
 }
 
 /// Shows quantities in one system of units.

@@ -40,6 +40,10 @@ struct Levels {
 const BILLION: f64 = 1e9;
 
 impl Found {
+    pub(super) fn sums(&self) -> Sums {
+        self.sums
+    }
+
     fn new(groups: Groups, sums: Sums, family: u128) -> Self {
         Self {
             groups,
@@ -173,13 +177,20 @@ pub(super) fn reported<'r>(problem: &Problem<'r>, groups: &[(usize, u32)]) -> Ve
 pub(super) struct Best {
     keep: usize,
     fold: bool,
+    /// The most of the leading criterion that any layout may have.
+    ceiling: i64,
     found: Vec<Found>,
     changes: u64,
 }
 
 impl Best {
     pub(super) fn new(keep: usize, fold: bool) -> Self {
-        Self { keep, fold, found: Vec::with_capacity(keep.min(1024) + 1), changes: 0 }
+        Self { keep, fold, ceiling: i64::MAX, found: Vec::with_capacity(keep.min(1024) + 1), changes: 0 }
+    }
+
+    /// One layout with at most so much of the leading criterion.
+    pub(super) fn under(ceiling: i64) -> Self {
+        Self { ceiling, ..Self::new(1, false) }
     }
 
     /// The layout that every new family must beat; none while there is room.
@@ -189,7 +200,7 @@ impl Best {
 
     /// The most of a criterion that any layout may have to rank.
     pub(super) fn allowance(&self, lead: Criterion) -> i64 {
-        self.last().map_or(i64::MAX, |last| last.sums.value(lead))
+        self.last().map_or(self.ceiling, |last| last.sums.value(lead))
     }
 
     pub(super) fn into_found(self) -> Vec<Found> {
@@ -268,7 +279,7 @@ impl Best {
         lead: Criterion,
         into: &mut [i64],
     ) {
-        into.fill(self.last().map_or(i64::MAX, |last| last.sums.value(lead)));
+        into.fill(self.allowance(lead));
         if !self.fold {
             return;
         }

@@ -7,14 +7,21 @@
 //! the least on, each a quarter greater than the one before, and the least is found by halving below the first that cures. A
 //! step less does not cure; a window narrower than a quarter may be passed over. The roof so changed is handed back: searching
 //! it shows the layouts that the change opens.
+//!
+//! Of an area that has layouts the same changes, of moderate size, tell what its cost binds on: the least cost at the whole
+//! reach of a change is found first, then the least change that already has it.
 
 use crate::device::{Device, Size};
 use crate::roof::{Roof, load_of};
 use crate::units::{Length, Load, Money, System};
 
-use super::infeasible::any;
+use super::best::Best;
+use super::dive::{Aim, dive};
+use super::infeasible::{any, any_under};
 use super::problem::Problem;
-use super::{Options, Outcome, Ranked};
+use super::rank::Criterion;
+use super::watch::Stopped;
+use super::{Options, Ranked};
 
 /// One thing that may be changed.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -54,22 +61,29 @@ pub struct Cure {
     pub options: Options,
 }
 
-/// The cures of an area, and what by itself cures nothing.
+/// The changes found for an area, and what by itself does nothing.
 #[derive(Clone, Debug)]
 pub struct Cures {
-    /// The cures, as they were tried.
+    /// The changes, as they were tried.
     pub found: Vec<Cure>,
     /// Changes that were tried as far as they go without effect.
     pub useless: Vec<Relaxation>,
+    /// Whether the search was ended before everything was tried.
+    pub stopped: bool,
 }
+
+/// A change with the first layout that it opens.
+pub type Opening<'a> = (&'a Cure, Ranked<'a>);
 
 /// Cures with the first layout that each opens.
 #[derive(Clone, Debug)]
 pub struct Opened<'a> {
     /// Each cure and its layout, by the cost of the layout where prices are given, else as they were tried.
-    pub cures: Vec<(&'a Cure, Ranked<'a>)>,
+    pub cures: Vec<Opening<'a>>,
     /// Changes that were tried as far as they go without effect.
     pub useless: &'a [Relaxation],
+    /// Whether the search was ended before everything was tried.
+    pub stopped: bool,
 }
 
 impl Cures {
@@ -77,80 +91,138 @@ impl Cures {
     pub fn open(&self) -> Opened<'_> {
         let mut cures = opened(&self.found);
         cures.sort_by_key(|(_, layout)| layout.cost.map_or(i64::MAX, Money::millionths));
-        Opened { cures, useless: &self.useless }
+        Opened { cures, useless: &self.useless, stopped: self.stopped }
     }
 }
 
 /// Changes with the first layout that each opens, in their order; those that open none are left out.
-pub fn opened(changes: &[Cure]) -> Vec<(&Cure, Ranked<'_>)> {
+pub fn opened(changes: &[Cure]) -> Vec<Opening<'_>> {
     changes.iter().filter_map(|change| Some((change, change.layout()?))).collect()
 }
 
 impl Cure {
     /// The first layout that the change opens.
     pub fn layout(&self) -> Option<Ranked<'_>> {
-        match super::size(&self.roof, &self.options, &[0]).pop()?.outcome {
-            Outcome::Optimal(mut layouts) => (!layouts.is_empty()).then(|| layouts.swap_remove(0)),
-            Outcome::Infeasible(_) => None,
-        }
+        super::size_area(&self.roof, 0, &self.options).layouts().first().cloned()
     }
 }
 
 /// A relaxation on a scale of whole steps, from one step on.
 struct Scale {
     steps: u32,
+    /// Steps of a moderate change.
+    moderate: u32,
     of: Box<dyn Fn(u32) -> Relaxation + Sync>,
 }
 
 impl Scale {
-    /// The least step that cures, if any does.
-    fn least(&self, cured: impl Fn(Relaxation) -> bool) -> Option<Relaxation> {
-        let cured = |step: u32| cured((self.of)(step));
-        let (mut fails, mut passes) = (0, self.steps);
-        if let Relaxation::Sill(_) | Relaxation::Width(_) | Relaxation::Height(_) = (self.of)(1) {
-            passes = 1;
-            while !cured(passes) {
-                if passes == self.steps {
-                    return None;
-                }
-                fails = passes;
-                passes = (passes + 1).max(passes + passes / 4).min(self.steps);
+    /// Whether a greater step may do less: an opening may come to lie where it does not fit.
+    fn may_close(&self) -> bool {
+        matches!((self.of)(1), Relaxation::Sill(_) | Relaxation::Width(_) | Relaxation::Height(_))
+    }
+
+    /// The steps that are looked at before the halving, rising to the last: it alone where no greater step does less.
+    fn looks(&self, last: u32) -> Vec<u32> {
+        let first = if self.may_close() { 1 } else { last };
+        std::iter::successors(Some(first), |&step| (step < last).then(|| (step + 1).max(step + step / 4).min(last)))
+            .collect()
+    }
+
+    /// The least step up to the last that passes, if any does.
+    fn least(
+        &self,
+        last: u32,
+        passes: impl Fn(Relaxation) -> Result<bool, Stopped>,
+    ) -> Result<Option<Relaxation>, Stopped> {
+        let mut fails = 0;
+        for mut found in self.looks(last) {
+            if !passes((self.of)(found))? {
+                fails = found;
+                continue;
             }
-        } else if !cured(passes) {
-            return None;
+            while found - fails > 1 {
+                let middle = fails + (found - fails) / 2;
+                if passes((self.of)(middle))? { found = middle } else { fails = middle }
+            }
+            return Ok(Some((self.of)(found)));
         }
-        while passes - fails > 1 {
-            let middle = fails + (passes - fails) / 2;
-            if cured(middle) { passes = middle } else { fails = middle }
-        }
-        Some((self.of)(passes))
+        Ok(None)
     }
 }
 
 /// The least single changes that cure an area without a layout.
 pub fn cures(roof: &Roof, options: &Options, area: usize) -> Cures {
-    let alone = alone(roof, area);
-    let options = Options { keep: 1, ..options.clone() };
-    let mut cures = Cures { found: Vec::new(), useless: Vec::new() };
-    for scale in scales(&alone, &options) {
-        let limit_cures =
-            cures.found.iter().any(|cure| matches!(cure.change, Relaxation::Load(_) | Relaxation::Depth(_)));
-        if limit_cures && matches!((scale.of)(1), Relaxation::Limits(_)) {
-            continue;
-        }
-        let least = scale.least(|change| {
-            let (roof, options) = relaxed(&alone, &options, change);
-            let (problem, _) = Problem::new(&roof, 0, &options);
-            any(&problem)
-        });
-        let Some(change) = least else {
-            cures.useless.push((scale.of)(scale.steps));
-            continue;
-        };
-        let (roof, options) = relaxed(&alone, &options, change);
-        cures.found.push(Cure { change, roof, options });
+    let asked = Changed { roof: alone(roof, area), options: Options { keep: 1, ..options.clone() } };
+    let scales = scales(&asked.roof, &asked.options);
+    asked.tried(scales, |scale| scale.least(scale.steps, |change| asked.with(change, any)))
+}
+
+/// The single changes of moderate size that make a cheaper layout exist than the cheapest now, each the least that saves as
+/// much as its whole reach; none where the area has no layout, or a size that may stand has no price.
+///
+/// An opening larger than the catalogs have has no price there, so it is not among them.
+pub fn binds(roof: &Roof, options: &Options, area: usize) -> Option<Cures> {
+    let options = Options { rank_by: vec![Criterion::Cost, Criterion::Load], keep: 1, ..options.clone() };
+    let asked = Changed { roof: alone(roof, area), options };
+    let (now, _) = Problem::new(&asked.roof, 0, &asked.options);
+    if now.candidates.iter().any(|candidate| candidate.size.price.is_none()) {
+        return None;
     }
-    cures
+    let now = cheapest(&now).ok().flatten()?;
+    let mut scales = scales(&asked.roof, &asked.options);
+    scales.retain(|scale| !matches!((scale.of)(1), Relaxation::Width(_) | Relaxation::Height(_)));
+    Some(asked.tried(scales, |scale| {
+        let last = scale.moderate.min(scale.steps);
+        let mut least = now;
+        for step in scale.looks(last) {
+            least = least.min(asked.with((scale.of)(step), cheapest)?.unwrap_or(now));
+        }
+        let as_cheap = |change| asked.with(change, |problem| any_under(problem, least));
+        if least < now { scale.least(last, as_cheap) } else { Ok(None) }
+    }))
+}
+
+/// Least cost of any layout, millionths; none where there is none.
+fn cheapest(problem: &Problem<'_>) -> Result<Option<i64>, Stopped> {
+    let found = dive(problem, Aim::Rank, Best::new(1, false)).complete()?;
+    Ok(found.first().map(|found| found.sums().cost))
+}
+
+/// An area by itself and what is asked of the search there, to be changed.
+struct Changed {
+    roof: Roof,
+    options: Options,
+}
+
+impl Changed {
+    fn by(&self, change: Relaxation) -> Cure {
+        let (roof, options) = relaxed(&self.roof, &self.options, change);
+        Cure { change, roof, options }
+    }
+
+    /// What a question about the area so changed is answered.
+    fn with<T>(&self, change: Relaxation, question: impl FnOnce(&Problem<'_>) -> T) -> T {
+        let (roof, options) = relaxed(&self.roof, &self.options, change);
+        question(&Problem::new(&roof, 0, &options).0)
+    }
+
+    /// What `found` makes of every scale.
+    fn tried(&self, scales: Vec<Scale>, found: impl Fn(&Scale) -> Result<Option<Relaxation>, Stopped>) -> Cures {
+        let mut cures = Cures { found: Vec::new(), useless: Vec::new(), stopped: false };
+        for scale in scales {
+            let of_limits =
+                cures.found.iter().any(|cure| matches!(cure.change, Relaxation::Load(_) | Relaxation::Depth(_)));
+            if of_limits && matches!((scale.of)(1), Relaxation::Limits(_)) {
+                continue;
+            }
+            match found(&scale) {
+                Ok(Some(change)) => cures.found.push(self.by(change)),
+                Ok(None) => cures.useless.push((scale.of)(scale.steps)),
+                Err(Stopped) => cures.stopped = true,
+            }
+        }
+        cures
+    }
 }
 
 /// One area by itself, with the demand that it has among the others.
@@ -170,44 +242,49 @@ fn scales(roof: &Roof, options: &Options) -> Vec<Scale> {
     let load = if us { Load::psf(0.1) } else { Load::from_pa(5.0) };
     let times = |step: Length| move |count: u32| Length::from_nm(step.nm() * i64::from(count));
     let mut scales = Vec::new();
-    let mut add = |steps: u32, of: Box<dyn Fn(u32) -> Relaxation + Sync>| scales.push(Scale { steps, of });
+    // Moderate: 5 psf or 250 Pa, an inch or 25 mm of water, half of that of sill, 10 ft or 3 m of edge, a tenth of the demand.
+    let (inch, either) = (if us { 100 } else { 250 }, |in_us, in_si| if us { in_us } else { in_si });
+    let mut add = |steps: u32, moderate: u32, of: Box<dyn Fn(u32) -> Relaxation + Sync>| {
+        scales.push(Scale { steps, moderate, of });
+    };
     let loads = area.limits.iter().any(|limits| limits.load.is_some());
     let depths = area.limits.iter().any(|limits| limits.depth.is_some());
     if loads {
-        add(4000, Box::new(move |count| Relaxation::Load(load * f64::from(count))));
+        add(4000, 50, Box::new(move |count| Relaxation::Load(load * f64::from(count))));
     }
     if depths {
-        add(4000, Box::new(move |count| Relaxation::Depth(times(fine)(count))));
+        add(4000, inch, Box::new(move |count| Relaxation::Depth(times(fine)(count))));
     }
     if loads && depths {
-        add(4000, Box::new(move |count| Relaxation::Limits(times(fine)(count))));
+        add(4000, inch, Box::new(move |count| Relaxation::Limits(times(fine)(count))));
     }
     let of_sizes = roof.sizes.iter().filter_map(|size| size.set_heights.as_ref());
     let heights = area.set_heights.iter().flatten().chain(of_sizes.flat_map(|heights| heights.iter()));
     let highest = heights.map(|height| height.nm()).max().unwrap_or(0);
     if let steps @ 1.. = u32::try_from(highest / fine.nm()).unwrap_or(0) {
-        add(steps, Box::new(move |count| Relaxation::Sill(times(fine)(count))));
+        add(steps, inch / 2, Box::new(move |count| Relaxation::Sill(times(fine)(count))));
     }
-    add(64, Box::new(Relaxation::Devices));
+    add(64, 2, Box::new(Relaxation::Devices));
     if options.mix < crate::roof::MOST_GROUPS {
-        add(u32::try_from(crate::roof::MOST_GROUPS - options.mix).unwrap_or(1), Box::new(Relaxation::Groups));
+        let more = u32::try_from(crate::roof::MOST_GROUPS - options.mix).unwrap_or(1);
+        add(more, more, Box::new(Relaxation::Groups));
     }
     if roof.sizes.iter().any(|size| size.device.kind().is_scupper()) {
-        add(400, Box::new(move |count| Relaxation::Width(times(coarse)(count))));
+        add(400, either(24, 30), Box::new(move |count| Relaxation::Width(times(coarse)(count))));
     }
     if roof.sizes.iter().any(|size| matches!(size.device, Device::Closed { .. })) {
-        add(100, Box::new(move |count| Relaxation::Height(times(coarse)(count))));
+        add(100, either(8, 10), Box::new(move |count| Relaxation::Height(times(coarse)(count))));
     }
     if area.edge.is_some() {
         let foot = if us { Length::inches(3.0) } else { Length::mm(50.0) };
-        add(4000, Box::new(move |count| Relaxation::Edge(times(foot)(count))));
+        add(4000, either(40, 60), Box::new(move |count| Relaxation::Edge(times(foot)(count))));
     }
     let asked = options.freeboard.map_or(0, |freeboard| freeboard.nm() / fine.nm());
     if let steps @ 1.. = u32::try_from(asked).unwrap_or(0) {
-        add(steps, Box::new(move |count| Relaxation::Freeboard(times(fine)(count))));
+        add(steps, inch, Box::new(move |count| Relaxation::Freeboard(times(fine)(count))));
     }
     // By tenths of a per cent, to a hundredth of the demand.
-    add(990, Box::new(|count| Relaxation::Demand(f64::from(1000 - count) / 1000.0)));
+    add(990, 100, Box::new(|count| Relaxation::Demand(f64::from(1000 - count) / 1000.0)));
     scales
 }
 

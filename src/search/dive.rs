@@ -22,11 +22,14 @@
 //! Nothing else is left out. Layouts of one group are tried first, then of two, then of three: good layouts early make the
 //! bounds tight.
 
-use crate::roof::MOST_GROUPS;
+use crate::roof::{MOST_GROUPS, Situation};
+use crate::units::{Length, Money};
 
-use super::best::Best;
+use super::Least;
+use super::best::{Best, Found};
 use super::problem::{Candidate, Class, Problem, Table};
 use super::rank::{Criterion, Sums};
+use super::watch::Stopped;
 
 /// How a search is run.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -39,10 +42,29 @@ pub(super) enum Aim {
     Any,
 }
 
+/// What a search found.
+pub(super) struct Dived {
+    /// The best layouts, in order.
+    pub(super) found: Vec<Found>,
+    /// Whether everything was tried; else the watch ended the search, and better ones may exist.
+    pub(super) finished: bool,
+}
+
+impl Dived {
+    /// What was found by a search that tried everything.
+    pub(super) fn complete(self) -> Result<Vec<Found>, Stopped> {
+        if self.finished { Ok(self.found) } else { Err(Stopped) }
+    }
+}
+
 /// The best layouts of an area.
-pub(super) fn dive(problem: &Problem<'_>, aim: Aim, best: Best) -> Best {
+pub(super) fn dive(problem: &Problem<'_>, aim: Aim, best: Best) -> Dived {
     let mut best = best;
+    let mut ended = problem.watch.is_due();
     for class in problem.classes() {
+        if ended {
+            break;
+        }
         best.change_class();
         let limits = (aim != Aim::Reach)
             .then(|| problem.table(&problem.allowable_levels(class), |candidate| Some(candidate.lowest())));
@@ -58,14 +80,66 @@ pub(super) fn dive(problem: &Problem<'_>, aim: Aim, best: Best) -> Best {
             totals: vec![0.0; (MOST_GROUPS + 1) * problem.situations.len()],
             gate: Gate { lead: lead(problem), allowances: vec![i64::MAX; problem.most as usize + 1], stands_for: None },
             done: false,
+            ended: false,
+            looks: 0,
         };
         dive.tighten();
         for groups in 1..=problem.mix {
             dive.extend(groups, 0, 0, Used::default());
         }
+        ended = dive.ended;
         best = dive.best;
     }
-    best
+    Dived { found: best.into_found(), finished: !ended }
+}
+
+/// What every layout has at least of the criterion that is ranked by first, by bounds 1 and 3 over all sizes; none where that
+/// criterion needs a water level.
+pub(super) fn least(problem: &Problem<'_>) -> Option<Least> {
+    let lead = lead(problem)?;
+    // No class of layouts may stand higher than this.
+    let table = problem.table(&problem.allowed, |candidate| Some(candidate.lowest()));
+    let of_one = |index: usize| of_one(&problem.candidates[index], Some(lead));
+    let everyone = || 0..problem.candidates.len();
+    let mut least = everyone().map(of_one).min()? as f64 * f64::from(problem.least);
+    for (case, needed) in needed(problem).into_iter().enumerate() {
+        let dearest = everyone().map(|index| price_of_flow(of_one(index), table.of(index)[case]));
+        least = least.max(needed * dearest.fold(f64::INFINITY, f64::min));
+    }
+    // Rounding never makes a bound of what is none.
+    let whole = (least * (1.0 - SLACK)).floor().clamp(0.0, i64::MAX as f64) as i64;
+    Some(match lead {
+        Criterion::Count => Least::Count(u32::try_from(whole).unwrap_or(u32::MAX)),
+        Criterion::Width => Least::Width(Length::from_nm(whole)),
+        _ => Least::Cost(Money::from_millionths(whole)),
+    })
+}
+
+/// The total that a layout must have in each case: bound 1.
+fn needed(problem: &Problem<'_>) -> Vec<f64> {
+    let most = f64::from(problem.most);
+    let of_case = |situation: &Situation<'_>| {
+        let left = most - f64::from(situation.case.blocked);
+        let share = if left > 0.0 { most / left } else { f64::INFINITY };
+        // A little less, so that rounding never makes a bound of what is none.
+        situation.demand.m3_per_s() * share * (1.0 - SLACK)
+    };
+    problem.situations.iter().map(of_case).collect()
+}
+
+/// What one device has of the leading criterion.
+fn of_one(candidate: &Candidate<'_>, lead: Option<Criterion>) -> i64 {
+    match lead {
+        Some(Criterion::Cost) => candidate.price,
+        Some(Criterion::Count) => 1,
+        Some(Criterion::Width) => candidate.width,
+        _ => 0,
+    }
+}
+
+/// What a unit of flow takes of the leading criterion.
+fn price_of_flow(lead: i64, flow: f64) -> f64 {
+    if flow > 0.0 { lead as f64 / flow } else { f64::INFINITY }
 }
 
 /// What the chosen groups use up.
@@ -122,8 +196,15 @@ struct Dive<'p, 'r> {
     /// Total flow of the groups chosen so far, one row of cases for each depth.
     totals: Vec<f64>,
     gate: Gate,
+    /// Whether nothing more is to be tried: what was aimed at is found, or the watch ends the search.
     done: bool,
+    ended: bool,
+    /// Members looked at: the watch is asked now and then.
+    looks: u32,
 }
+
+/// Members that are looked at before the watch is asked again.
+const LOOKS: u32 = 64;
 
 /// What a last group may bring of the leading criterion, by its count.
 struct Gate {
@@ -142,13 +223,7 @@ fn lead(problem: &Problem<'_>) -> Option<Criterion> {
 
 impl Dive<'_, '_> {
     fn lead_of_one(&self, member: usize) -> i64 {
-        let candidate = &self.problem.candidates[self.members[member]];
-        match self.gate.lead {
-            Some(Criterion::Cost) => candidate.price,
-            Some(Criterion::Count) => 1,
-            Some(Criterion::Width) => candidate.width,
-            _ => 0,
-        }
+        of_one(&self.problem.candidates[self.members[member]], self.gate.lead)
     }
 
     /// The leading criterion of the last layout kept: no layout above it can rank.
@@ -170,27 +245,19 @@ impl Dive<'_, '_> {
             flows: Vec::with_capacity(count * cases),
             greatest: vec![0.0; (count + 1) * cases],
             dearest: vec![f64::INFINITY; (count + 1) * cases],
-            needed: Vec::with_capacity(cases),
+            needed: needed(problem),
         };
         for &member in &self.members {
             bounds.flows.extend_from_slice(table.of(member));
         }
         for member in (0..count).rev() {
-            let lead = self.lead_of_one(member) as f64;
+            let lead = self.lead_of_one(member);
             for case in 0..cases {
                 let (here, behind) = (member * cases + case, (member + 1) * cases + case);
                 let flow = bounds.flows[here];
                 bounds.greatest[here] = flow.max(bounds.greatest[behind]);
-                let price = if flow > 0.0 { lead / flow } else { f64::INFINITY };
-                bounds.dearest[here] = price.min(bounds.dearest[behind]);
+                bounds.dearest[here] = price_of_flow(lead, flow).min(bounds.dearest[behind]);
             }
-        }
-        let most = f64::from(problem.most);
-        for situation in &problem.situations {
-            let left = most - f64::from(situation.case.blocked);
-            let share = if left > 0.0 { most / left } else { f64::INFINITY };
-            // A little less, so that rounding never makes a bound of what is none.
-            bounds.needed.push(situation.demand.m3_per_s() * share * (1.0 - SLACK));
         }
         self.bounds = bounds;
     }
@@ -201,6 +268,7 @@ impl Dive<'_, '_> {
         let Some(most) = self.problem.most.checked_sub(used.devices + to_come).filter(|&most| most > 0) else { return };
         self.gate.stands_for = None;
         for member in from..self.members.len() {
+            self.look();
             if self.done || !self.can_rank(depth, member, most + to_come, used) {
                 return;
             }
@@ -212,6 +280,15 @@ impl Dive<'_, '_> {
                     self.extend(groups, depth + 1, member + 1, used);
                 }
             }
+        }
+    }
+
+    /// Asks the watch now and then.
+    fn look(&mut self) {
+        self.looks += 1;
+        if self.looks.is_multiple_of(LOOKS) && self.problem.watch.is_due() {
+            self.ended = true;
+            self.done = true;
         }
     }
 

@@ -5,48 +5,64 @@ use crate::units::Length;
 use super::best::Best;
 use super::dive::{Aim, dive};
 use super::problem::Problem;
+use super::watch::Stopped;
 use super::{Why, ranked};
 
 /// Why no layout of the problem holds; the search has found none.
-pub(super) fn why(mut problem: Problem<'_>) -> Why<'_> {
+pub(super) fn why(mut problem: Problem<'_>) -> Result<Why<'_>, Stopped> {
     if let Some(asked) = problem.asked.freeboard {
         problem.asked.freeboard = None;
-        if any(&problem) {
-            return Why::Freeboard { asked, best: greatest_freeboard(problem, asked) };
+        if any(&problem)? {
+            return Ok(Why::Freeboard { asked, best: greatest_freeboard(problem, asked)? });
         }
     }
     let least = problem.least;
     let cases: Vec<usize> = (0..problem.situations.len()).collect();
     let held = |cases: &[usize]| any(&problem.with_cases(cases));
-    let alone: Vec<usize> = cases.iter().copied().filter(|&case| !held(&[case])).collect();
-    let together = if alone.is_empty() { conflict(&cases, held) } else { Vec::new() };
+    let mut alone = Vec::new();
+    for &case in &cases {
+        if !held(&[case])? {
+            alone.push(case);
+        }
+    }
+    let together = if alone.is_empty() { conflict(&cases, held)? } else { Vec::new() };
     let nearest = problem.by_utilisation();
-    let found = dive(&nearest, Aim::Reach, Best::new(1, false)).into_found();
-    match found.first() {
+    let found = dive(&nearest, Aim::Reach, Best::new(1, false)).complete()?;
+    Ok(match found.first() {
         Some(best) => Why::Limits { best: Box::new(ranked(&nearest, best)), alone, together },
         None => Why::NothingFits { least },
-    }
+    })
 }
 
 /// Whether any layout holds.
-pub(super) fn any(problem: &Problem<'_>) -> bool {
-    !dive(problem, Aim::Any, Best::new(1, false)).into_found().is_empty()
+pub(super) fn any(problem: &Problem<'_>) -> Result<bool, Stopped> {
+    any_under(problem, i64::MAX)
+}
+
+/// Whether any layout holds with at most so much of the leading criterion.
+pub(super) fn any_under(problem: &Problem<'_>, ceiling: i64) -> Result<bool, Stopped> {
+    let dived = dive(problem, Aim::Any, Best::under(ceiling));
+    // One that is found holds, whatever was not tried.
+    if dived.found.is_empty() { dived.complete().map(|_| false) } else { Ok(true) }
 }
 
 /// The first two cases that no layout holds together; all cases where every two can be.
-fn conflict(cases: &[usize], held: impl Fn(&[usize]) -> bool) -> Vec<usize> {
+fn conflict(cases: &[usize], held: impl Fn(&[usize]) -> Result<bool, Stopped>) -> Result<Vec<usize>, Stopped> {
     for (place, &first) in cases.iter().enumerate() {
         for &second in &cases[place + 1..] {
-            if !held(&[first, second]) {
-                return vec![first, second];
+            if !held(&[first, second])? {
+                return Ok(vec![first, second]);
             }
         }
     }
-    cases.to_vec()
+    Ok(cases.to_vec())
 }
 
+/// A freeboard and the layout that keeps it.
+type Kept<'r> = (Length, Box<super::Ranked<'r>>);
+
 /// The greatest freeboard with which a layout keeps the limits, to a hundredth of a millimetre, and that layout.
-fn greatest_freeboard(mut problem: Problem<'_>, asked: Length) -> Option<(Length, Box<super::Ranked<'_>>)> {
+fn greatest_freeboard(mut problem: Problem<'_>, asked: Length) -> Result<Option<Kept<'_>>, Stopped> {
     const WIDTH: f64 = 1e-5;
     // Under this the top of an opening drowns deeper than any level that a limit allows.
     let mut kept = -(1.0 + problem.situations.iter().map(|s| s.allowable_level().m()).fold(0.0, f64::max));
@@ -54,9 +70,9 @@ fn greatest_freeboard(mut problem: Problem<'_>, asked: Length) -> Option<(Length
     while missed - kept > WIDTH {
         let middle = f64::midpoint(kept, missed);
         problem.asked.freeboard = Some(Length::from_m(middle));
-        if any(&problem) { kept = middle } else { missed = middle }
+        if any(&problem)? { kept = middle } else { missed = middle }
     }
     problem.asked.freeboard = Some(Length::from_m(kept));
-    let found = dive(&problem, Aim::Rank, Best::new(1, false)).into_found();
-    found.first().map(|best| (Length::from_m(kept), Box::new(ranked(&problem, best))))
+    let found = dive(&problem, Aim::Rank, Best::new(1, false)).complete()?;
+    Ok(found.first().map(|best| (Length::from_m(kept), Box::new(ranked(&problem, best)))))
 }

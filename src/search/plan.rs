@@ -104,7 +104,7 @@ fn realised<'r>(roof: &'r Roof, problems: &[Problem<'r>], field: &Field, set: &s
     let indices: Vec<usize> = set.sizes.iter().map(|&size| field.size(size)).collect();
     let layout = |problem: &Problem<'r>| {
         let restricted = problem.with_sizes(&indices);
-        let found = dive(&restricted, Aim::Rank, Best::new(1, false)).into_found();
+        let found = dive(&restricted, Aim::Rank, Best::new(1, false)).found;
         found.first().map(|found| ranked(&restricted, found))
     };
     Some(Plan {

@@ -14,6 +14,7 @@ use crate::rules::{self, Misfit, Stand};
 use crate::units::Length;
 
 use super::Options;
+use super::Watch;
 use super::rank::{Criterion, Order};
 
 /// A size that may stand in the area.
@@ -58,6 +59,7 @@ pub(super) struct Problem<'r> {
     pub(super) gap: i64,
     pub(super) asked: Asked,
     pub(super) order: Order,
+    pub(super) watch: Watch,
 }
 
 /// Layouts whose lowest opening has its top at one height; none for those without any closed opening.
@@ -106,6 +108,7 @@ impl<'r> Problem<'r> {
             gap: catchment.gap.nm(),
             asked: Asked { freeboard: options.freeboard },
             order: Order::new(&options.rank_by, priced),
+            watch: options.watch.clone(),
         };
         (problem, misfits)
     }
@@ -193,6 +196,7 @@ impl<'r> Problem<'r> {
             candidates: self.candidates.clone(),
             asked: self.asked,
             order: self.order.clone(),
+            watch: self.watch.clone(),
             ..*self
         }
     }

@@ -12,10 +12,11 @@ use crate::device::Size;
 use crate::roof::Roof;
 use crate::units::{Load, Money};
 
-use super::Options;
 use super::cure::{Cure, Relaxation, alone, relaxed};
 use super::plan::{Asked, plan};
 use super::rank::Criterion;
+use super::watch::{Stopped, Watch};
+use super::{Options, size_area};
 
 /// Raises of the load limit that are looked at: whole steps.
 #[derive(Clone, Debug, PartialEq)]
@@ -45,7 +46,10 @@ pub struct PlanAt {
 
 /// The treads of an area's least cost, each as the least raise that has it, rising; empty where even the greatest raise has no
 /// layout, or a device has no price. The layout of each is the cheapest there, and of those the one with less load.
-pub fn tradeoff(roof: &Roof, options: &Options, area: usize, raises: &Raises) -> Vec<Cure> {
+///
+/// # Errors
+/// [`Stopped`] where the watch ended the walk.
+pub fn tradeoff(roof: &Roof, options: &Options, area: usize, raises: &Raises) -> Result<Vec<Cure>, Stopped> {
     let alone = alone(roof, area);
     let options = Options { rank_by: vec![Criterion::Cost, Criterion::Load], keep: 1, fold: true, ..options.clone() };
     let at = |step: i32| {
@@ -56,18 +60,22 @@ pub fn tradeoff(roof: &Roof, options: &Options, area: usize, raises: &Raises) ->
     // The least cost at a step, and the least step at which the limits hold the load of its layout.
     let least = |step: i32| {
         let changed = at(step);
-        let layout = changed.layout()?;
+        let outcome = size_area(&changed.roof, 0, &changed.options);
+        if options.watch.is_due() {
+            return Err(Stopped);
+        }
+        let Some(layout) = outcome.layouts().first() else { return Ok(None) };
         let loads = layout.states.iter().zip(&alone.areas[0].limits);
         let over = loads.filter_map(|(state, limits)| Some((state.water?.load - limits.load?).pa()));
         let steps = over.map(|over| (over / raises.step.pa() - 1e-9).ceil()).fold(f64::from(i32::MIN), f64::max);
-        Some((layout.cost?, steps as i32))
+        Ok(layout.cost.map(|cost| (cost, steps as i32)))
     };
     let (first, mut step) = (*raises.steps.start(), *raises.steps.end());
     let mut treads: Vec<(i32, Money)> = Vec::new();
-    while let Some((cost, holds)) = least(step) {
+    while let Some((cost, holds)) = least(step)? {
         let mut low = holds.clamp(first, step);
         // A level is kept on whole nanometres: the load may reach the limit a step higher.
-        while low < step && least(low).is_none_or(|(there, _)| there != cost) {
+        while low < step && least(low)?.is_none_or(|(there, _)| there != cost) {
             low += 1;
         }
         match treads.last_mut() {
@@ -79,7 +87,12 @@ pub fn tradeoff(roof: &Roof, options: &Options, area: usize, raises: &Raises) ->
         }
         step = low - 1;
     }
-    treads.iter().rev().map(|&(step, _)| at(step)).collect()
+    // Each was searched before the watch could end the walk: it may be again.
+    let searched = |step| {
+        let tread = at(step);
+        Cure { options: Options { watch: Watch::default(), ..tread.options }, ..tread }
+    };
+    Ok(treads.iter().rev().map(|&(step, _)| searched(step)).collect())
 }
 
 /// The cheapest plan at every step; none where a device that may stand has no price.
@@ -92,6 +105,7 @@ pub fn plan_tradeoff(
 ) -> Option<Vec<PlanAt>> {
     let options = Options { keep: 1, ..options.clone() };
     let steps: Vec<i32> = raises.steps.clone().collect();
+    options.watch.expect(steps.len());
     let at = |&step: &i32| {
         let raise = raises.load(step);
         let mut roof = roof.clone();
@@ -99,6 +113,7 @@ pub fn plan_tradeoff(
             limits.load = limits.load.map(|load| load + raise);
         }
         let plans = plan(&roof, &options, asked, areas)?;
+        options.watch.advance();
         let first = plans.plans.first();
         let sizes = first.map_or(Vec::new(), |plan| plan.sizes.iter().map(|&size| size.clone()).collect());
         Some(PlanAt { raise, cost: first.map(|plan| plan.cost), sizes })
