@@ -4,7 +4,7 @@ use std::path::Path;
 
 use crate::device::Size;
 use crate::roof::Roof;
-use crate::search::{Options, PlanAsked};
+use crate::search::{Options, PlanAsked, Structure};
 
 mod area;
 mod catalog;
@@ -19,6 +19,7 @@ mod section;
 mod setting;
 mod shipped;
 mod start;
+mod structure;
 
 pub use defaults::{DEFAULTS, Default};
 pub use fault::{Fault, Faults, Place, Severity, Source, Span};
@@ -33,6 +34,8 @@ pub struct Project {
     pub options: Options,
     /// What is asked of the whole roof, where a plan is asked for.
     pub plan: Option<PlanAsked>,
+    /// What a stronger roof costs, where the project says.
+    pub structure: Option<Structure>,
     /// What was taken where the files say nothing.
     pub assumed: Vec<Assumed>,
     /// What in the files is probably not meant; they can be used all the same.

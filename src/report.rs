@@ -6,7 +6,7 @@
 use crate::device::{Law, Site, Size};
 use crate::input::Assumed;
 use crate::roof::Roof;
-use crate::search::{Answer, Opened, Opening, Options, PlanAsked, PlanAt, Plans, UnderLaw};
+use crate::search::{Answer, Opened, Opening, Options, PlanAsked, PlanAt, Plans, Structure, UnderLaw};
 use crate::units::{Flow, Length, Load, System};
 
 mod contents;
@@ -19,6 +19,7 @@ mod ranking;
 mod rate;
 mod reasons;
 mod schedule;
+mod structure;
 mod tradeoff;
 mod words;
 mod work;
@@ -54,6 +55,9 @@ pub struct Sized<'a, 'r> {
     /// In the order of the answers: what would cure one that has no layout; of one that has, what its cost binds on, where
     /// that was asked for.
     pub changes: &'a [Option<Opened<'a>>],
+    /// The price of strength, where the project gives one, and in the order of the answers each area so strengthened: an
+    /// inner none where no raise opens a layout, or where that was not found in time.
+    pub structure: Option<(&'a Structure, &'a [Option<Strengthened<'a>>])>,
     /// The plans of the whole roof, where one was asked for.
     pub plans: Option<Asked<'a, 'r>>,
 }
@@ -115,6 +119,7 @@ pub struct Rated<'a> {
 }
 
 pub use rate::head_for;
+pub use structure::Strengthened;
 
 /// Writes what a device passes under each law.
 pub fn rate(rated: &Rated<'_>, format: Format, width: usize) -> String {
@@ -132,6 +137,8 @@ pub struct Traded<'a> {
     pub highest: Load,
     /// The treads of each area, by its index, each with its layout; none where the search was ended before.
     pub areas: Vec<(usize, Option<Vec<Opening<'a>>>)>,
+    /// The price of strength, where the project gives one.
+    pub structure: Option<&'a Structure>,
     /// The cheapest plan at each step, where a plan is asked for; an inner none where a device has no price.
     pub plans: Option<Option<Vec<PlanAt>>>,
 }

@@ -21,12 +21,14 @@ mod infeasible;
 mod plan;
 mod problem;
 mod rank;
+mod structure;
 mod tradeoff;
 mod watch;
 
 pub use cure::{Cure, Cures, Opened, Opening, Relaxation, binds, cures, opened, relaxed};
 pub use plan::{Asked as PlanAsked, Plan, Plans, plan};
 pub use rank::Criterion;
+pub use structure::{Stiffened, Structure, stiffened};
 pub use tradeoff::{PlanAt, Raises, plan_tradeoff, tradeoff};
 pub use watch::{Stopped, Watch};
 

@@ -178,7 +178,7 @@ error: unknown key `titel` in the project
 1 | titel = "Depot"
   | ^^^^^ not a key of this table
   |
-  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, case or area
+  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, case or area
 
 error: `intensity`: `6.3` has no unit; this is a rain intensity
  --> roof.toml:6:13
@@ -655,7 +655,7 @@ error: unknown key `titel` in the project
 1 | titel = "Depot"
   | ^^^^^ not a key of this table
   |
-  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, case or area
+  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, case or area
 
 error: unknown key `durration` in [storm]
  --> roof.toml:7:1
@@ -820,6 +820,125 @@ error: `what` in an entry of `receives` is not supported in this version
    |                                   ^^^^ meant for the choice between overflow and primary flow
    |
    = help: take the key out: the answer would not heed it
+
+"#]]);
+}
+
+#[test]
+fn a_price_of_strength_that_is_none() {
+    let with = |structure: &str| {
+        Folder::new()
+            .with("roof.toml", exchange(PROJECT, &[("[limit]", &format!("[structure]\n{structure}\n\n[limit]"))]))
+    };
+    with("stiffen = \"0.07 / ft2\"\nmost = \"0 psf\"").refuses(str![[r#"
+error: `stiffen`: `0.07 / ft2` is not a price per unit
+  --> roof.toml:11:11
+   |
+11 | stiffen = "0.07 / ft2"
+   |           ^^^^^^^^^^^^ a price for each unit belongs here
+   |
+   = help: write an amount, a slash and a unit, and again: "14 / ft2 / psf"; ft2, m2, in2, mm2, cm2 or ha; then psf, kPa or Pa would pass
+
+error: `most` must be above zero
+  --> roof.toml:12:8
+   |
+12 | most = "0 psf"
+   |        ^^^^^^^ not above zero
+   |
+   = help: write a value above zero
+
+"#]]);
+    with("stiffen = \"0.07 / psf / ft2\"\nstep = \"5 in\"").refuses(str![[r#"
+error: `stiffen`: `psf` is a unit of load; this is an area
+  --> roof.toml:11:11
+   |
+11 | stiffen = "0.07 / psf / ft2"
+   |           ^^^^^^^^^^^^^^^^^^ a price for each unit belongs here
+   |
+   = help: ft2, m2, in2, mm2, cm2 or ha would pass
+
+error: `step`: `in` is a unit of length; this is a load
+  --> roof.toml:12:8
+   |
+12 | step = "5 in"
+   |        ^^^^^^ a load belongs here
+   |
+   = help: psf, kPa or Pa would pass
+
+"#]]);
+    with("stiffen = \"-1 / ft2 / psf\"").refuses(str![[r#"
+error: `stiffen` must not be negative
+  --> roof.toml:11:11
+   |
+11 | stiffen = "-1 / ft2 / psf"
+   |           ^^^^^^^^^^^^^^^^ below zero
+   |
+   = help: write zero or more
+
+"#]]);
+    with("step = \"5 psf\"\nprice = 3").refuses(str![[r#"
+error: `stiffen` is missing in [structure]
+  --> roof.toml:10:1
+   |
+10 | [structure]
+   | ^^^^^^^^^^^ this table
+   |
+   = help: give the price of a square foot that carries a psf more: stiffen = "0.07 / ft2 / psf"
+
+error: unknown key `price` in [structure]
+  --> roof.toml:12:1
+   |
+12 | price = 3
+   | ^^^^^ not a key of this table
+   |
+   = help: [structure] takes stiffen, step or most
+
+"#]]);
+    with("stiffen = \"0.07 / ft2 / psf\"\nstep = \"5 psf\"\nmost = \"4 psf\"").refuses(str![[r#"
+error: `step` and `most` do not go together
+  --> roof.toml:12:8
+   |
+12 | step = "5 psf"
+   |        ^^^^^^^ not one step up to the greatest raise
+   |
+   = help: give a lesser step or a greater `most`
+
+"#]]);
+    with("stiffen = \"0.07 / ft2 / psf\"\nstep = \"0.001 psf\"").refuses(str![[r#"
+error: `step` and `most` do not go together
+  --> roof.toml:12:8
+   |
+12 | step = "0.001 psf"
+   |        ^^^^^^^^^^^ more than 1,000 steps up to the greatest raise
+   |
+   = help: give a greater step or a lesser `most`
+
+"#]]);
+    Folder::new()
+        .with(
+            "roof.toml",
+            exchange(
+                PROJECT,
+                &[
+                    ("[limit]", "[structure]\nstiffen = \"0.07 / ft2 / psf\"\n\n[limit]"),
+                    ("rank_by = [\"cost\", \"load\"]", "rank_by = [\"load\"]"),
+                ],
+            ),
+        )
+        .with("devices.toml", exchange(CATALOG, &[("price = { each = 1650 }", "")]))
+        .refuses(str![[r#"
+error: `OD` has no price, and strength is weighed against it
+  --> devices.toml:9:7
+   |
+ 9 | tag = "OD"
+   |       ^^^^ nothing is free by omission
+   |
+  ::: roof.toml:10:1
+   |
+10 | [structure]
+   | ----------- weighed here
+   |
+   = help: give the device a price, or take [structure] out
 
 "#]]);
 }

@@ -13,7 +13,7 @@ use brimline::roof::channel::Channel;
 use brimline::roof::layout::{self, Asked, Group, Liftable};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm};
 use brimline::search::{self, Criterion, Least, Options, Outcome, PlanAsked, Relaxation, Watch, Why};
-use brimline::units::{Area, Flow, Intensity, Length, Load, Money, System};
+use brimline::units::{Area, Dimension, Flow, Intensity, Length, Load, Money, System};
 
 /// A small generator of its own, so that a failing seed can be run again anywhere.
 struct Dice(u64);
@@ -580,6 +580,42 @@ fn least_cost(roof: &Roof, options: &Options) -> Option<Money> {
             .fold(Money::default(), |sum, cost| Money::from_millionths(sum.millionths() + cost.millionths()))
     };
     everything(roof, &by_cost).first().map(cost)
+}
+
+/// Openings and strength together cost what the best of every single step costs.
+#[test]
+fn a_stronger_roof_is_weighed_at_every_step() {
+    let (mut raised, mut kept, mut none) = (0, 0, 0);
+    for seed in 1..=220_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15));
+        let (roof, options) = (roof(&mut dice), options(&mut dice));
+        // From next to nothing to more than the openings.
+        let rate = dice.pick(&["0.002 / ft2 / psf", "0.05 / ft2 / psf", "1 / ft2 / psf"]);
+        let structure = search::Structure {
+            stiffen: brimline::units::read_price(rate, &[Dimension::Area, Dimension::Load]).expect("a price"),
+            step: Some(Load::psf(0.5)),
+            most: Load::psf(12.0),
+        };
+        let total = |step: i32| {
+            let raise = structure.step.expect("given") * f64::from(step);
+            let (roof, options) = search::relaxed(&roof, &options, Relaxation::Load(raise));
+            let cost = least_cost(&roof, &options)?.millionths();
+            Some(cost + structure.cost(roof.areas[0].area, raise).millionths())
+        };
+        let least = (0..=24).filter_map(|step| Some((total(step)?, step))).min();
+        let found = search::stiffened(&roof, &options, &structure, 0).expect("nobody ends it");
+        let told = found.as_ref().map(|found| {
+            let openings = found.raised.layout().and_then(|layout| layout.cost).expect("opens a layout");
+            (openings.millionths() + found.strength.millionths(), (found.raise.to_psf() / 0.5).round() as i32)
+        });
+        assert_eq!(told, least, "seed {seed}");
+        match least {
+            Some((_, 0)) => kept += 1,
+            Some(_) => raised += 1,
+            None => none += 1,
+        }
+    }
+    assert!(raised > 50 && kept > 50 && none > 50, "{raised} raised, {kept} not, {none} without a layout");
 }
 
 /// What binds: the change saves what is told, a step less of it saves less, and what is told to save nothing does not.

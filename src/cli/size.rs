@@ -4,8 +4,8 @@ use std::process::ExitCode;
 
 use rayon::prelude::*;
 
-use crate::report::{self, Sized};
-use crate::search::{self, Answer, Cures, Outcome};
+use crate::report::{self, Sized, Strengthened};
+use crate::search::{self, Answer, Cures, Outcome, Stiffened};
 
 use super::watching::Ending;
 use super::{Failure, OfProject};
@@ -39,6 +39,11 @@ pub(super) struct Args {
     ending: Ending,
 }
 
+/// An area with a raised limit and its first layout there.
+fn strengthened(stiffened: Option<&Stiffened>) -> Option<Strengthened<'_>> {
+    stiffened.and_then(|stiffened| Some(Strengthened { stiffened, layout: stiffened.raised.layout()? }))
+}
+
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let (project, areas) = args.of.read()?;
     let watched = args.ending.watch()?;
@@ -62,6 +67,13 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let changes: Vec<_> = answers.par_iter().map(changes).collect();
     let opened: Vec<_> = changes.par_iter().map(|changes| changes.as_ref().map(Cures::open)).collect();
     let plans = project.plan.map(|asked| (asked, search::plan(&project.roof, &options, asked, &areas)));
+    let price = project.structure.as_ref();
+    let stiffened = |structure| {
+        let of_area = |answer: &Answer<'_>| search::stiffened(&project.roof, &options, structure, answer.area);
+        answers.par_iter().map(|answer| of_area(answer).ok().flatten()).collect::<Vec<_>>()
+    };
+    let stiffened = price.map_or(Vec::new(), stiffened);
+    let strengthened: Vec<_> = stiffened.iter().map(|found| strengthened(found.as_ref())).collect();
     drop(watched);
     let sized = Sized {
         roof: &project.roof,
@@ -71,6 +83,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         work: args.work,
         laws: &laws,
         changes: &opened,
+        structure: price.map(|price| (price, &strengthened[..])),
         plans: plans.as_ref().map(|(asked, found)| report::Asked { asked: *asked, found: found.as_ref() }),
     };
     args.of.deliver(|format, width| report::size(&sized, format, width))?;

@@ -13,8 +13,8 @@ use super::{Failure, OfProject, quantity};
 
 /// Least cost against the load limit: what a stronger or a weaker roof saves or costs in openings.
 ///
-/// Each area's least cost is followed as its load limits are raised, every change of it found to 0.01 psf (or 1 Pa); where the
-/// project asks for a plan, so is the plan, step by step. Exit code 1: an area has no layout even at the greatest raise.
+/// Each area's least cost is followed as its load limits are raised, every change of it found to 0.01 psf (or 1 Pa), or to the
+/// step in which strength can be built; where the project asks for a plan, so is the plan, step by step. Exit code 1: an area has no layout even at the greatest raise.
 #[derive(Debug, clap::Args)]
 pub(super) struct Args {
     #[command(flatten)]
@@ -25,7 +25,7 @@ pub(super) struct Args {
     /// How far under the given limits to look as well.
     #[arg(long, value_name = "LOAD")]
     down: Option<String>,
-    /// Step of the plan; 1 psf or 50 Pa where not given.
+    /// Step of the plan; that of the structure, else 1 psf or 50 Pa, where not given.
     #[arg(long, value_name = "LOAD")]
     step: Option<String>,
     #[command(flatten)]
@@ -45,7 +45,9 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let load = |flag, text: &Option<String>| quantity(flag, text.as_ref(), Load::pa);
     let up = load("--up", &args.up)?.unwrap_or(if us { Load::psf(20.0) } else { Load::from_pa(1000.0) });
     let down = load("--down", &args.down)?.unwrap_or(Load::from_pa(0.0));
-    let step = load("--step", &args.step)?.unwrap_or(if us { Load::psf(1.0) } else { Load::from_pa(50.0) });
+    // Where strength comes in steps, no raise between them can be built.
+    let built = project.structure.as_ref().and_then(|structure| structure.step);
+    let step = load("--step", &args.step)?.or(built).unwrap_or(Raises::coarse(project.roof.system));
     if (up.pa() + down.pa()) / step.pa() > MOST_STEPS {
         return Err(Failure::said("--up, --down and --step ask for more than 1,000 steps", "give a greater --step"));
     }
@@ -53,12 +55,8 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     if limits.map(Load::pa).any(|limit| limit <= down.pa()) {
         return Err(Failure::said("--down leaves no load limit", "go down by less than the least load limit"));
     }
-    // Whole steps either side of the limit as given.
-    let raises = |step: Load| {
-        let steps = |of: Load| (of.pa() / step.pa() + 1e-9).floor() as i32;
-        Raises { step, steps: -steps(down)..=steps(up) }
-    };
-    let fine = raises(if us { Load::psf(0.01) } else { Load::from_pa(1.0) });
+    let raises = |step: Load| Raises::between(step, down, up);
+    let fine = raises(built.unwrap_or(Raises::fine(project.roof.system)));
     let watched = args.ending.watch()?;
     let options = Options { watch: watched.watch.clone(), ..project.options.clone() };
     let treads = |&area: &usize| (area, search::tradeoff(&project.roof, &options, area, &fine));
@@ -71,6 +69,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         highest: up,
         areas: treads.iter().map(|(area, treads)| (*area, treads.as_deref().ok().map(search::opened))).collect(),
         plans: project.plan.map(plan),
+        structure: project.structure.as_ref(),
     };
     drop(watched);
     args.of.deliver(|format, width| report::tradeoff(&traded, format, width))?;

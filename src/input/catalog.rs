@@ -5,7 +5,7 @@ use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
 use crate::device::{Device, Following, Interpolation, Kind, Law, Place, Rating, RingDrain, Size};
-use crate::units::{Area, Dimension, Length, Money, Priced, read_price};
+use crate::units::{Area, Dimension, Length, Money, Priced};
 
 use super::Catalog;
 use super::fault::{Fault, Log, Source, Span};
@@ -502,7 +502,7 @@ struct Price {
 impl Price {
     fn read(section: &Section<'_>) -> Option<Self> {
         let each = section.get("each").map(|cell| cell.number_not_negative());
-        let per = |key, dimension| section.get(key).map(|cell| price_per(&cell, dimension));
+        let per = |key, dimension| section.get(key).map(|cell| cell.price(&[dimension]));
         let (width, height) = (per("per_width", Dimension::Length), per("per_height", Dimension::Length));
         let area = per("per_area", Dimension::Area);
         if each.is_none() && width.is_none() && height.is_none() && area.is_none() {
@@ -536,20 +536,5 @@ impl Price {
         Money::nearest(
             self.each + per(self.per_width, width) + per(self.per_height, height) + per(self.per_area, width * height),
         )
-    }
-}
-
-fn price_per(cell: &Cell<'_>, per: Dimension) -> Option<Priced> {
-    let text = cell.text()?;
-    match read_price(text, per) {
-        Ok(price) if price.per_si() < 0.0 => {
-            cell.at_fault(format!("`{}` must not be negative", cell.key), "below zero", "write zero or more");
-            None
-        }
-        Ok(price) => Some(price),
-        Err(fault) => {
-            cell.at_fault(format!("`{}`: {fault}", cell.key), "a price for each unit belongs here", fault.help());
-            None
-        }
     }
 }

@@ -3,6 +3,7 @@
 use std::ops::RangeInclusive;
 
 use crate::search::Criterion;
+use crate::units::Load;
 
 /// Most groups in one layout.
 pub(super) const MIX: u32 = 1;
@@ -18,6 +19,9 @@ pub(super) const SHARE: f64 = 1.0;
 pub(super) const CHANNEL_SLOPE: f64 = 0.0;
 /// Roughness of a channel, Manning's n: membrane or sheet metal. Common practice.
 pub(super) const CHANNEL_ROUGHNESS: f64 = 0.013;
+/// Greatest raise of a load limit that strength is paid for, where a file speaks US units, and where SI.
+pub(super) const MOST_RAISE_US: Load = Load::psf(20.0);
+pub(super) const MOST_RAISE_SI: Load = Load::from_pa(1000.0);
 /// What layouts are ranked by.
 pub(super) const RANK_BY: [Criterion; 2] = [Criterion::Cost, Criterion::Load];
 
@@ -33,7 +37,7 @@ pub struct Default {
 }
 
 /// Every default, in the order of the files.
-pub static DEFAULTS: [Default; 13] = [
+pub static DEFAULTS: [Default; 14] = [
     entry("search.rank_by", "cost, load", "the cheapest first; of equals the one with less load"),
     entry("search.keep", "8", "eight layouts are listed for each area"),
     entry("search.mix", "1", "all devices of a layout are of one size"),
@@ -46,6 +50,7 @@ pub static DEFAULTS: [Default; 13] = [
     entry("area.roof_at_wall", "0", "the roof at the parapet is as low as the low point"),
     entry("channel.slope", "0", "the channel is level, which stands deepest"),
     entry("channel.roughness", "0.013", "Manning's n of membrane or sheet metal"),
+    entry("structure.most", "20 psf or 1 kPa", "load limits are raised by so much at most"),
     entry("receives.share", "1", "all that leaves the other area arrives"),
 ];
 
@@ -72,6 +77,7 @@ mod tests {
         assert_eq!(value("channel.slope"), CHANNEL_SLOPE.to_string());
         assert_eq!(value("channel.roughness"), CHANNEL_ROUGHNESS.to_string());
         assert_eq!(value("receives.share"), SHARE.to_string());
+        assert_eq!((MOST_RAISE_US.to_psf().round(), MOST_RAISE_SI.pa()), (20.0, 1000.0), "{}", value("structure.most"));
         assert_eq!(value("search.rank_by"), RANK_BY.map(Criterion::name).join(", "));
     }
 }

@@ -13,15 +13,14 @@ use super::fault::{Fault, Faults, Log, Span};
 use super::grid::{self, Least};
 use super::section::{Cell, Keys, Reader, Section, optional};
 use super::setting::{Cases, GivenCase, MOST_DEVICES, Search, Setting, is_named, limits_of, read_count, unique};
-use super::{Assumed, Project, area, file, flow};
+use super::{Assumed, Project, area, file, flow, structure};
 
 static PROJECT: Keys = Keys {
     table: "the project",
-    known: &["title", "note", "units", "catalogs", "storm", "limit", "flow", "search", "case", "area"],
+    known: &["title", "note", "units", "catalogs", "storm", "limit", "flow", "search", "structure", "case", "area"],
     unsupported: &[
         ("rules", "sets of code rules to hold every layout against"),
         ("layout", "given layouts to be checked"),
-        ("structure", "the price of a stronger roof"),
     ],
 };
 
@@ -95,6 +94,10 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         None => Some(Choice::default()),
     };
     laws_fit(section, choice, &search, &catalogs);
+    let structure = section
+        .section("structure", &structure::STRUCTURE)
+        .zip(system)
+        .map(|(section, system)| structure::read(&section, system, &mut assumed));
     // A fault above does not keep the areas from being read: whatever is at fault in any file is told in one run.
     let cases = read_cases(section, &mut assumed);
     let setting = Setting { cases: &cases, limits, search: &search, choice, catalogs: &catalogs };
@@ -116,7 +119,8 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         return None;
     }
     let plan = search.plan?;
-    Some(Project { roof, options: search.options()?, plan, assumed, warnings: Faults::default() })
+    let structure = optional(structure)?;
+    Some(Project { roof, options: search.options()?, plan, structure, assumed, warnings: Faults::default() })
 }
 
 /// The roof with each case held under each law: as many cases as there are pairs, named after both.
@@ -372,13 +376,14 @@ fn read_case(section: &Section<'_>, names: &mut Vec<(String, Span)>) -> Option<G
     })
 }
 
-/// Refuses to rank by cost where a device that may stand somewhere has no price. Of each area, the kinds that may stand in
+/// Refuses to rank by cost, or to weigh openings against strength, where a device that may stand somewhere has no price. Of each area, the kinds that may stand in
 /// it are given, an inner none for any.
 fn prices(section: &Section<'_>, search: &Search, kinds: &[Option<Vec<Kind>>], catalogs: &Catalogs) {
     let reader = section.reader;
     let by_cost = search.rank_by.as_ref().is_some_and(|rank_by| rank_by.contains(&Criterion::Cost));
     // What a broken file seems not to say is no default.
-    if !by_cost || (search.rank_by_at.is_none() && !reader.log.is_whole(reader.source)) {
+    let weighed = section.get("structure").map(|cell| cell.span());
+    if weighed.is_none() && (!by_cost || (search.rank_by_at.is_none() && !reader.log.is_whole(reader.source))) {
         return;
     }
     for offer in catalogs.offers.iter().filter(|offer| !offer.has_price) {
@@ -386,11 +391,19 @@ fn prices(section: &Section<'_>, search: &Search, kinds: &[Option<Vec<Kind>>], c
             continue;
         }
         let named = offer.tag.as_ref().map_or("a device".to_string(), |tag| format!("`{tag}`"));
-        let mut fault = Fault::error(format!("{named} has no price, and layouts are ranked by cost"))
+        let (why, help) = if by_cost {
+            ("layouts are ranked by cost", "leave \"cost\" out of `rank_by`: [\"count\", \"load\"] would pass")
+        } else {
+            ("strength is weighed against it", "take [structure] out")
+        };
+        let mut fault = Fault::error(format!("{named} has no price, and {why}"))
             .at(&offer.at.source, offer.at.span.clone(), "nothing is free by omission")
-            .help("give the device a price, or leave \"cost\" out of `rank_by`: [\"count\", \"load\"] would pass");
-        if let Some(at) = &search.rank_by_at {
+            .help(format!("give the device a price, or {help}"));
+        if let (Some(at), true) = (&search.rank_by_at, by_cost) {
             fault = fault.at(reader.source, at.clone(), "ranked by cost here");
+        }
+        if let (Some(at), false) = (&weighed, by_cost) {
+            fault = fault.at(reader.source, at.clone(), "weighed here");
         }
         reader.log.put(fault.absent());
     }

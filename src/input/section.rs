@@ -10,7 +10,7 @@ use std::sync::Arc;
 use toml::Spanned;
 use toml::de::{DeTable, DeValue};
 
-use crate::units::{self, Dimension, Length};
+use crate::units::{self, Dimension, Length, Priced};
 
 use super::fault::{Fault, Log, Source, Span};
 
@@ -407,6 +407,17 @@ impl<'a> Cell<'a> {
     /// A bare number of zero or more.
     pub(super) fn number_not_negative(&self) -> Option<f64> {
         self.number().filter(|&number| self.not_negative(number))
+    }
+
+    /// A price of zero or more per unit of one dimension, or of two.
+    pub(super) fn price(&self, per: &[Dimension]) -> Option<Priced> {
+        match units::read_price(self.text()?, per) {
+            Ok(price) => self.not_negative(price.per_si()).then_some(price),
+            Err(fault) => {
+                self.at_fault(format!("`{}`: {fault}", self.key), "a price for each unit belongs here", fault.help());
+                None
+            }
+        }
     }
 
     /// A bare number above zero.

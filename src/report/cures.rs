@@ -77,10 +77,9 @@ fn priced(change: Relaxation, cost: Money) -> String {
 /// The change in words, with what it leads to.
 fn change(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
     let limits = &cure.roof.areas[0].limits;
-    let loads = || listed(limits.iter().filter_map(|limits| limits.load).map(|load| words.given_load(load)));
     let depths = || listed(limits.iter().filter_map(|limits| limits.depth).map(|depth| words.size(depth)));
     match cure.change {
-        Relaxation::Load(more) => format!("load limit + {}, to {}", words.given_load(more), loads()),
+        Relaxation::Load(more) => format!("load limit + {}, to {}", words.given_load(more), loads(cure, words)),
         Relaxation::Depth(more) => format!("depth limit + {}, to {}", words.size(more), depths()),
         Relaxation::Limits(more) => {
             format!("both limits + {} of water ({})", words.size(more), words.load(load_of(more)))
@@ -102,6 +101,12 @@ fn change(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
             format!("demand - {} %, to {}", trimmed((1.0 - factor) * 100.0, 1), words.flow(cure.roof.demands[0]))
         }
     }
+}
+
+/// The load limits of an area so changed.
+pub(super) fn loads(cure: &Cure, words: Words) -> String {
+    let limits = &cure.roof.areas[0].limits;
+    listed(limits.iter().filter_map(|limits| limits.load).map(|load| words.given_load(load)))
 }
 
 /// Each text once, in the order of the first.

@@ -48,7 +48,18 @@ struct Area<'a> {
     binds: Option<Vec<CureFound<'a>>>,
     #[serde(skip_serializing_if = "Vec::is_empty")]
     cures_nothing: Vec<&'static str>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    stiffened: Option<Stiffened<'a>>,
     layouts: Vec<Layout<'a>>,
+}
+
+/// The area with its load limit raised to where openings and strength together cost least.
+#[derive(Serialize)]
+struct Stiffened<'a> {
+    load_limit_more_pa: f64,
+    strength_cost: f64,
+    cost: Option<f64>,
+    groups: Vec<Group<'a>>,
 }
 
 /// A proven least value of what layouts are ranked by first.
@@ -247,7 +258,18 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
     let found = answer.outcome.layouts();
     let cures = opened.filter(|_| found.is_empty());
     let layouts = found.iter().enumerate().map(|(index, ranked)| layout(sized, answer.area, index + 1, ranked));
+    let strengthened = sized.structure.and_then(|(_, found)| {
+        let found = sized.place(answer.area).and_then(|place| found[place].as_ref())?;
+        let site = found.stiffened.raised.roof.site(0, None);
+        Some(Stiffened {
+            load_limit_more_pa: found.stiffened.raise.pa(),
+            strength_cost: found.stiffened.strength.amount(),
+            cost: found.layout.cost.map(Money::amount),
+            groups: found.layout.groups.iter().map(|placed| group(placed, &site)).collect(),
+        })
+    });
     Area {
+        stiffened: strengthened,
         name: &sized.roof.areas[answer.area].name,
         demand_m3_s: sized.roof.demands[answer.area].m3_per_s(),
         outcome: words::outcome(&answer.outcome),

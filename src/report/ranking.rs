@@ -114,6 +114,18 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
             }
         }
     }
+    strengthened(sized, answer, words, blocks);
+}
+
+/// Whether a stronger roof pays, where strength has a price.
+fn strengthened(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut Vec<Block>) {
+    let Some((structure, found)) = sized.structure else { return };
+    if sized.roof.areas[answer.area].limits.iter().all(|limits| limits.load.is_none()) {
+        return;
+    }
+    let found = sized.place(answer.area).and_then(|place| found[place].as_ref());
+    let given = answer.outcome.layouts().iter().filter_map(|layout| layout.cost).min();
+    blocks.push(Block::Text(super::structure::told(found, structure, given, words)));
 }
 
 /// What the area must pass, and the same by the constant that practice writes.

@@ -2,7 +2,7 @@
 
 use serde::Serialize;
 
-use crate::search::{Cure, Opening, PlanAt, Ranked, Relaxation};
+use crate::search::{Cure, Opening, PlanAt, Ranked, Relaxation, Structure};
 use crate::units::{Load, Money};
 
 use super::page::{self, Block, Table};
@@ -147,13 +147,42 @@ fn area_blocks(
     } else if given.is_some() {
         blocks.push(Block::Text(format!("No raise up to {} saves anything.", signed(traded.highest, words))));
     }
-    blocks.push(Block::Table(Table::of(vec![
+    let mut columns = vec![
         (format!("raise {}", words.load_unit()), true, column(&|tread| raise(tread.raise, words))),
         ("cost".into(), true, column(&|tread| words::money(tread.cost))),
-        ("against given".into(), true, column(&|tread| against(tread.cost, given))),
-        ("layout".into(), false, column(&|tread| words.layout(tread.layout))),
-        (per(words), true, column(&|tread| pays(tread).map_or("-".into(), |price| words::grouped(price, 4)))),
-    ])));
+    ];
+    if let Some(structure) = traded.structure {
+        let strength = |tread: &Tread<'_>| structure.cost(catchment.area, tread.raise);
+        let total = |tread: &Tread<'_>| [tread.cost, strength(tread)].into_iter().sum();
+        if let Some((tread, total)) = super::structure::cheapest(opened, structure, catchment.area) {
+            blocks.push(Block::Text(best(tread, total, given, structure, words)));
+        }
+        columns.push(("strength".into(), true, column(&|tread| words::money(strength(tread)))));
+        columns.push(("in all".into(), true, column(&|tread| words::money(total(tread)))));
+    } else {
+        columns.push(("against given".into(), true, column(&|tread| against(tread.cost, given))));
+    }
+    columns.push(("layout".into(), false, column(&|tread| words.layout(tread.layout))));
+    columns.push((per(words), true, column(&|tread| pays(tread).map_or("-".into(), |price| words::grouped(price, 4)))));
+    blocks.push(Block::Table(Table::of(columns)));
+}
+
+/// Where openings and strength together cost least.
+fn best((changed, _): &Opening<'_>, total: Money, given: Option<Money>, structure: &Structure, words: Words) -> String {
+    let Relaxation::Load(raise) = changed.change else { return String::new() };
+    let price = super::structure::price(structure, words);
+    if raise == Load::ZERO {
+        return format!("At {price} no raise pays.");
+    }
+    let less = given.map_or(String::new(), |given| {
+        let less = Money::from_millionths(given.millionths() - total.millionths());
+        format!(", {} less than as given", words::money(less))
+    });
+    format!(
+        "At {price} openings and strength together cost least at {}: {} in all{less}.",
+        signed(raise, words),
+        words::money(total)
+    )
 }
 
 /// Head of the column of what strength may cost.
@@ -241,6 +270,8 @@ struct OfTread {
     load_limit_more_pa: f64,
     load_limits_pa: Vec<Option<f64>>,
     cost: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    strength_cost: Option<f64>,
     layout: String,
 }
 
@@ -253,7 +284,10 @@ struct OfPlan {
 
 fn json<'a>(traded: &'a Traded<'_>) -> String {
     let words = Words(traded.roof.system);
-    let tread = |tread: &Tread<'_>| OfTread {
+    let tread = |area: usize, tread: &Tread<'_>| OfTread {
+        strength_cost: traded
+            .structure
+            .map(|structure| structure.cost(traded.roof.areas[area].area, tread.raise).amount()),
         load_limit_more_pa: tread.raise.pa(),
         load_limits_pa: tread.changed.roof.areas[0].limits.iter().map(|limits| limits.load.map(Load::pa)).collect(),
         cost: tread.cost.amount(),
@@ -262,7 +296,7 @@ fn json<'a>(traded: &'a Traded<'_>) -> String {
     let area = |(area, opened): &'a (usize, Option<Vec<Opening<'_>>>)| OfArea {
         name: &traded.roof.areas[*area].name,
         outcome: if opened.is_some() { "optimal" } else { "stopped" },
-        treads: treads(opened.as_deref().unwrap_or_default()).iter().map(tread).collect(),
+        treads: treads(opened.as_deref().unwrap_or_default()).iter().map(|one| tread(*area, one)).collect(),
     };
     let plan = |plan: &PlanAt| OfPlan {
         load_limit_more_pa: plan.raise.pa(),

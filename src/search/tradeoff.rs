@@ -10,7 +10,7 @@ use rayon::prelude::*;
 
 use crate::device::Size;
 use crate::roof::Roof;
-use crate::units::{Load, Money};
+use crate::units::{Load, Money, System};
 
 use super::cure::{Cure, Relaxation, alone, relaxed};
 use super::plan::{Asked, plan};
@@ -28,6 +28,23 @@ pub struct Raises {
 }
 
 impl Raises {
+    /// The whole steps from `down` under the limit to `up` over it.
+    pub fn between(step: Load, down: Load, up: Load) -> Self {
+        // A whole number of steps is one, whatever the last bit of a quotient says.
+        let steps = |of: Load| (of.pa() / step.pa() + 1e-9).floor() as i32;
+        Self { step, steps: -steps(down)..=steps(up) }
+    }
+
+    /// The step to which treads are told: 0.01 psf, or 1 Pa.
+    pub fn fine(system: System) -> Load {
+        if system == System::Us { Load::psf(0.01) } else { Load::from_pa(1.0) }
+    }
+
+    /// The step by which a plan is followed where none is given: 1 psf, or 50 Pa.
+    pub fn coarse(system: System) -> Load {
+        if system == System::Us { Load::psf(1.0) } else { Load::from_pa(50.0) }
+    }
+
     fn load(&self, step: i32) -> Load {
         self.step * f64::from(step)
     }

@@ -262,7 +262,7 @@ pub enum Fault {
         /// What stands there.
         found: String,
         /// What the price is per.
-        per: Dimension,
+        per: Vec<Dimension>,
     },
 }
 
@@ -315,11 +315,10 @@ impl Fault {
                 format!("{} would pass", would_pass(*needs))
             }
             Self::NotAPrice { per, .. } => {
-                format!(
-                    "write an amount, a slash and a unit: \"14 / {}\"; {} would pass",
-                    per.units()[0].0[0],
-                    would_pass(*per)
-                )
+                let first: Vec<&str> = per.iter().map(|per| per.units()[0].0[0]).collect();
+                let pass: Vec<String> = per.iter().map(|per| would_pass(*per)).collect();
+                let unit = if per.len() > 1 { "a slash and a unit, and again" } else { "a slash and a unit" };
+                format!("write an amount, {unit}: \"14 / {}\"; {} would pass", first.join(" / "), pass.join("; then "))
             }
         }
     }
@@ -418,27 +417,28 @@ impl Priced {
     }
 }
 
-/// Reads a price per unit of `per`: `"14 / in"`, `"0.2 / in2"`.
+/// Reads a price per unit of `per`: `"14 / in"`, `"0.2 / in2"`; with two dimensions per unit of both: `"0.07 / ft2 / psf"`.
 ///
 /// # Errors
-/// The [`Fault`] of the amount or of the unit.
-pub fn read_price(text: &str, per: Dimension) -> Result<Priced, Fault> {
-    let not_a_price = || Fault::NotAPrice { found: text.trim().into(), per };
-    let (amount, unit) = text.split_once('/').ok_or_else(not_a_price)?;
+/// The [`Fault`] of the amount or of a unit.
+pub fn read_price(text: &str, per: &[Dimension]) -> Result<Priced, Fault> {
+    let not_a_price = || Fault::NotAPrice { found: text.trim().into(), per: per.to_vec() };
+    let mut parts = text.split('/');
+    let amount = parts.next().ok_or_else(not_a_price)?;
     let (value, rest) = match number_and_unit(amount, None) {
         Err(comma @ Fault::Comma { .. }) => return Err(comma),
         Err(_) => return Err(not_a_price()),
         Ok(amount) => amount,
     };
-    let unit = unit.trim();
-    if !rest.is_empty() || unit.is_empty() {
+    let units: Vec<&str> = parts.map(str::trim).collect();
+    if !rest.is_empty() || units.len() != per.len() || units.contains(&"") {
         return Err(not_a_price());
     }
-    match per.find(unit).map(|size| value / size) {
-        Some(price) if price.abs() <= MOST_PRICE => Ok(Priced(price)),
-        Some(_) => Err(Fault::TooGreat { found: text.trim().into() }),
-        None => Err(per.refuse(unit)),
+    let mut price = value;
+    for (per, unit) in per.iter().zip(units) {
+        price /= per.find(unit).ok_or_else(|| per.refuse(unit))?;
     }
+    if price.abs() <= MOST_PRICE { Ok(Priced(price)) } else { Err(Fault::TooGreat { found: text.trim().into() }) }
 }
 
 macro_rules! from_text {
@@ -606,10 +606,10 @@ mod tests {
 
     #[test]
     fn prices_per_unit() {
-        let price = read_price("14 / in", Dimension::Length).unwrap();
+        let price = read_price("14 / in", &[Dimension::Length]).unwrap();
         assert_relative_eq!(price.for_si(0.3048), 168.0, max_relative = 1e-12);
-        assert!(read_price("14", Dimension::Length).is_err());
-        assert!(read_price("14 / gpm", Dimension::Length).is_err());
+        assert!(read_price("14", &[Dimension::Length]).is_err());
+        assert!(read_price("14 / gpm", &[Dimension::Length]).is_err());
         assert_eq!("250".parse::<Money>().unwrap(), Money::nearest(250.0));
         assert_eq!(System::Us.to_string(), "us");
     }
