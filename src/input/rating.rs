@@ -9,6 +9,7 @@ use crate::units::{Flow, Length};
 use super::fault::{Fault, Log, Source, Span};
 use super::file;
 use super::section::{Cell, any_of, near, optional};
+use super::sheet::{Entry, records, whole};
 
 const HEADS: [(&str, f64); 3] = [("head_in", 0.0254), ("head_mm", 0.001), ("head_m", 1.0)];
 const WIDTHS: [(&str, f64); 3] = [("width_in", 0.0254), ("width_mm", 0.001), ("width_m", 1.0)];
@@ -46,12 +47,6 @@ impl Ratings {
         let (low, less) = tables.get(above.checked_sub(1)?)?;
         Rating::between(less, rating, (width - *low) / (*high - *low)).ok()
     }
-}
-
-/// A cell of the table: its text and where it stands.
-struct Entry<'t> {
-    text: &'t str,
-    span: Span,
 }
 
 /// Where the columns of a table stand, with the size of their units in SI.
@@ -276,39 +271,4 @@ impl Table<'_> {
         };
         self.refuse(span, fault.to_string(), label, help);
     }
-}
-
-/// From the first cell of a row to its last.
-fn whole(row: &[Entry<'_>]) -> Span {
-    row.first().map_or(0, |entry| entry.span.start)..row.last().map_or(0, |entry| entry.span.end)
-}
-
-/// The rows of a table that are neither empty nor a comment.
-///
-/// No cell of numbers runs over the end of a line, so a row is a line: a quote that is not closed spoils its own row, and
-/// does not swallow those below.
-fn records(source: &Source) -> Vec<Vec<Entry<'_>>> {
-    let mut records = Vec::new();
-    let mut at = 0;
-    for line in source.text.split_inclusive(['\n', '\r']) {
-        if !line.trim().is_empty() && !line.trim_start().starts_with('#') {
-            records.push(entries(line.trim_end_matches(['\n', '\r']), at));
-        }
-        at += line.len();
-    }
-    records
-}
-
-/// The cells of a line with their places; blanks and a pair of quotes around a cell are left out.
-fn entries(line: &str, line_start: usize) -> Vec<Entry<'_>> {
-    let mut at = line_start;
-    line.split(',')
-        .map(|cell| {
-            let bare = cell.trim();
-            let text = bare.strip_prefix('"').and_then(|rest| rest.strip_suffix('"')).map_or(bare, str::trim);
-            let from = at + cell.find(text).unwrap_or(0);
-            at += cell.len() + 1;
-            Entry { text, span: from..from + text.len() }
-        })
-        .collect()
 }

@@ -1,0 +1,70 @@
+//! CSV files as rows of cells, each with its place.
+
+use super::fault::{Source, Span};
+
+/// A cell: its text and where it stands.
+#[derive(Clone, Debug)]
+pub(super) struct Entry<'t> {
+    pub(super) text: &'t str,
+    pub(super) span: Span,
+}
+
+/// From the first cell of a row to its last.
+pub(super) fn whole(row: &[Entry<'_>]) -> Span {
+    row.first().map_or(0, |entry| entry.span.start)..row.last().map_or(0, |entry| entry.span.end)
+}
+
+/// The rows of a table that are neither empty nor a comment.
+///
+/// No cell of numbers runs over the end of a line, so a row is a line: a quote that is not closed spoils its own row, and
+/// does not swallow those below.
+pub(super) fn records(source: &Source) -> Vec<Vec<Entry<'_>>> {
+    let mut records = Vec::new();
+    let mut at = 0;
+    for line in source.text.split_inclusive(['\n', '\r']) {
+        if !line.trim().is_empty() && !line.trim_start().starts_with('#') {
+            records.push(entries(line.trim_end_matches(['\n', '\r']), at));
+        }
+        at += line.len();
+    }
+    records
+}
+
+/// The cells of a line with their places; blanks and a pair of quotes around a cell are left out, and a comma between quotes
+/// parts nothing.
+fn entries(line: &str, line_start: usize) -> Vec<Entry<'_>> {
+    let mut at = line_start;
+    cells(line)
+        .into_iter()
+        .map(|cell| {
+            let bare = cell.trim();
+            let text = bare.strip_prefix('"').and_then(|rest| rest.strip_suffix('"')).map_or(bare, str::trim);
+            let from = at + cell.find(text).unwrap_or(0);
+            at += cell.len() + 1;
+            Entry { text, span: from..from + text.len() }
+        })
+        .collect()
+}
+
+/// A line parted at its commas; where a quote is not closed, at all of them.
+fn cells(line: &str) -> Vec<&str> {
+    let mut quoted = false;
+    let parts = |mark: char| {
+        quoted ^= mark == '"';
+        mark == ',' && !quoted
+    };
+    let cells: Vec<&str> = line.split(parts).collect();
+    if line.matches('"').count().is_multiple_of(2) { cells } else { line.split(',').collect() }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn a_comma_between_quotes_parts_nothing() {
+        let texts = |line| entries(line, 10).into_iter().map(|entry| (entry.text, entry.span)).collect::<Vec<_>>();
+        assert_eq!(texts("\"shed 1, north\", 6"), [("shed 1, north", 11..24), ("6", 27..28)]);
+        assert_eq!(texts("12\", 6"), [("12\"", 10..13), ("6", 15..16)]);
+    }
+}
