@@ -4,7 +4,7 @@
 use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Kind, Size};
-use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Storm, demand};
+use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Storm, Surface, demand};
 use brimline::search::{self, Criterion, Options, PlanAsked, Raises, Watch};
 use brimline::units::{Area, Length, Load, Money, System};
 
@@ -38,6 +38,7 @@ fn area(index: u32, unlike: bool) -> Catchment {
         gap: Length::inches(if unlike { 12.0 } else { 0.0 }),
         parapet: Parapet::default(),
         roof_at_wall: Length::ZERO,
+        surface: Surface::default(),
         receives: Vec::new(),
         ponding_head: None,
         kinds: (unlike && index.is_multiple_of(5)).then(|| vec![Kind::ClosedScupper]),

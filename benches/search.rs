@@ -4,7 +4,7 @@ use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Size};
 use brimline::roof::layout::{self, Group};
-use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm, demand, working_capacity};
+use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm, Surface, demand, working_capacity};
 use brimline::search::{self, Answer, Criterion, Options, Outcome, Watch};
 use brimline::units::{Area, Length, Load, Money, System};
 
@@ -51,6 +51,7 @@ fn area(index: u32) -> Catchment {
         gap: Length::inches(24.0),
         parapet: Parapet { height: Some(Length::inches(24.0)), thickness: None },
         roof_at_wall: Length::ZERO,
+        surface: Surface::default(),
         receives: Vec::new(),
         ponding_head: None,
         kinds: None,

@@ -6,11 +6,14 @@ use std::process::ExitCode;
 
 use clap::{Parser, Subcommand, ValueEnum};
 
+use crate::device::Size;
 use crate::input::{self, Faults, Project};
 use crate::report::Format;
+use crate::roof::Roof;
 use crate::units::System;
 
 mod catalog;
+mod check;
 mod rate;
 mod size;
 mod start;
@@ -37,6 +40,7 @@ struct Cli {
 #[derive(Debug, Subcommand)]
 enum Command {
     Size(size::Args),
+    Check(check::Args),
     Rate(Box<rate::Args>),
     Catalog(catalog::Args),
     Start(start::Args),
@@ -117,11 +121,12 @@ impl From<io::Error> for Failure {
 
 /// Runs the command that the arguments name.
 ///
-/// Exit codes: 0 done, 1 an area has no layout, 2 the input or the flags cannot be used.
+/// Exit codes: 0 done, 1 an area has no layout or a layout fails, 2 the input or the flags cannot be used.
 pub fn run() -> ExitCode {
     let cli = Cli::parse();
     let done = match &cli.command {
         Command::Size(args) => size::run(args),
+        Command::Check(args) => check::run(args),
         Command::Rate(args) => rate::run(args),
         Command::Catalog(args) => catalog::run(args),
         Command::Start(args) => start::run(args),
@@ -135,6 +140,20 @@ pub fn run() -> ExitCode {
             ExitCode::from(UNUSABLE)
         }
     }
+}
+
+/// What keeps a search from being made where no set height is given: only layouts that are given stand without one.
+fn without_set_height(roof: &Roof, areas: &[usize]) -> Option<Failure> {
+    let lacks = |&&area: &&usize| {
+        let area = &roof.areas[area];
+        let stands = |size: &Size| size.set_heights.is_none() && area.takes(size.device.kind());
+        area.set_heights.is_none() && roof.sizes.iter().any(stands)
+    };
+    let area = areas.iter().find(lacks)?;
+    Some(Failure::said(
+        &format!("no set height is given for `{}`", roof.areas[*area].name),
+        "a search needs one: [search] set_height = { from = \"2 in\", to = \"4 in\", step = \"0.25 in\" }",
+    ))
 }
 
 /// Whether messages on stderr take colour: on a terminal, unless `NO_COLOR` is set.

@@ -3,7 +3,7 @@
 use std::path::Path;
 
 use crate::device::Size;
-use crate::roof::Roof;
+use crate::roof::{Given, Roof};
 use crate::search::{Options, PlanAsked, Structure};
 
 mod area;
@@ -13,10 +13,13 @@ mod fault;
 mod file;
 mod flow;
 mod grid;
+mod height;
+mod layout;
 mod project;
 mod rating;
 mod section;
 mod setting;
+mod sheet;
 mod shipped;
 mod start;
 mod structure;
@@ -36,6 +39,8 @@ pub struct Project {
     pub plan: Option<PlanAsked>,
     /// What a stronger roof costs, where the project says.
     pub structure: Option<Structure>,
+    /// The layouts that the project gives, in the order of the files.
+    pub layouts: Vec<Given>,
     /// What was taken where the files say nothing.
     pub assumed: Vec<Assumed>,
     /// What in the files is probably not meant; they can be used all the same.

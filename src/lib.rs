@@ -29,6 +29,7 @@
 //!
 //! - [`cli`][mod@cli]: flags, streams, exit codes
 //! - [`report`][mod@report]: answers into tables, Markdown, JSON and CSV
+//! - [`review`][mod@review]: given layouts: whether they pass
 //! - [`search`][mod@search]: ranked layouts, or why there are none
 //! - [`input`][mod@input]: files into the model, every fault with its place
 //! - [`rules`][mod@rules]: what fits an area
@@ -43,6 +44,7 @@ pub mod device;
 pub mod hydraulics;
 pub mod input;
 pub mod report;
+pub mod review;
 pub mod roof;
 pub mod root;
 pub mod rules;

@@ -9,6 +9,7 @@ use crate::roof::Roof;
 use crate::search::{Answer, Opened, Opening, Options, PlanAsked, PlanAt, Plans, Structure, UnderLaw};
 use crate::units::{Flow, Length, Load, System};
 
+mod check;
 mod contents;
 mod cures;
 mod json;
@@ -62,7 +63,20 @@ pub struct Sized<'a, 'r> {
     pub plans: Option<Asked<'a, 'r>>,
 }
 
-impl<'a> Sized<'a, '_> {
+impl<'a, 'r> Sized<'a, 'r> {
+    /// What the notes of a report are about.
+    fn told(&self) -> notes::Told<'a, 'r> {
+        let of_area = |answer: &'a Answer<'r>| answer.outcome.layouts().iter().map(|layout| (answer.area, layout));
+        notes::Told {
+            roof: self.roof,
+            options: self.options,
+            assumed: self.assumed,
+            areas: self.answers.iter().map(|answer| answer.area).collect(),
+            layouts: self.answers.iter().flat_map(of_area).collect(),
+            searched: true,
+        }
+    }
+
     fn place(&self, area: usize) -> Option<usize> {
         self.answers.iter().position(|answer| answer.area == area)
     }
@@ -97,6 +111,11 @@ pub fn size(sized: &Sized<'_, '_>, format: Format, width: usize) -> String {
     }
 }
 
+/// Writes how given layouts stand.
+pub fn check(checks: &Checks<'_, '_>, format: Format, width: usize) -> String {
+    check::write(checks, format, width)
+}
+
 /// What a report of one device's flows is made of.
 #[derive(Clone, Debug)]
 pub struct Rated<'a> {
@@ -118,6 +137,7 @@ pub struct Rated<'a> {
     pub system: System,
 }
 
+pub use check::Checks;
 pub use rate::head_for;
 pub use structure::Strengthened;
 

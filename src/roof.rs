@@ -11,12 +11,16 @@ use crate::units::{Area, Flow, Intensity, Length, Load, ReturnPeriod, System, Ti
 
 pub mod channel;
 pub mod demand;
+mod given;
 pub mod layout;
 mod pool;
 mod situation;
+mod surface;
 
-pub use pool::{MOST_GROUPS, Outlet, Pool, Share, working, working_capacity};
+pub use given::{Given, GivenGroup};
+pub use pool::{MOST_GROUPS, MOST_OUTLETS, Outlet, Pool, Share, working, working_capacity};
 pub use situation::{Governing, LimitKind, Limits, Situation};
+pub use surface::{Rise, Surface};
 
 /// Weight of water that loads are computed with: 62.4 lb/ft3, which is 5.2 psf for each inch of depth.
 pub const UNIT_WEIGHT_LB_FT3: f64 = 62.4;
@@ -120,6 +124,8 @@ pub struct Catchment {
     pub parapet: Parapet,
     /// Roof surface at the parapet above the low point; edge devices stand no lower.
     pub roof_at_wall: Length,
+    /// How its surface lies, as far as that is given.
+    pub surface: Surface,
     /// What runs onto it from other areas.
     pub receives: Vec<Receipt>,
     /// Extra depth from deflection, where given.

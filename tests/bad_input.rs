@@ -178,7 +178,7 @@ error: unknown key `titel` in the project
 1 | titel = "Depot"
   | ^^^^^ not a key of this table
   |
-  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, case or area
+  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, case, area, layout or schedule
 
 error: `intensity`: `6.3` has no unit; this is a rain intensity
  --> roof.toml:6:13
@@ -655,7 +655,7 @@ error: unknown key `titel` in the project
 1 | titel = "Depot"
   | ^^^^^ not a key of this table
   |
-  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, case or area
+  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, case, area, layout or schedule
 
 error: unknown key `durration` in [storm]
  --> roof.toml:7:1
@@ -765,14 +765,6 @@ fn keys_of_later_work_are_refused_by_name() {
             ),
         )
         .refuses(str![[r#"
-error: `layout` in the project is not supported in this version
- --> roof.toml:2:1
-  |
-2 | layout = []
-  | ^^^^^^ meant for given layouts to be checked
-  |
-  = help: take the key out: the answer would not heed it
-
 error: `rules` in the project is not supported in this version
  --> roof.toml:3:1
   |
@@ -797,13 +789,13 @@ error: `round` in [search] is not supported in this version
    |
    = help: take the key out: the answer would not heed it
 
-error: `slope` in an [[area]] is not supported in this version
-  --> roof.toml:34:1
+error: `slope` and `distance` belong together
+  --> roof.toml:34:9
    |
 34 | slope = "1/4 in/ft"
-   | ^^^^^ meant for the slope of the roof
+   |         ^^^^^^^^^^^ one of them
    |
-   = help: take the key out: the answer would not heed it
+   = help: give slope = "0.25 in/ft" and distance = "20 ft", from the low point to the wall
 
 error: `existing` in an [[area]] is not supported in this version
   --> roof.toml:35:1

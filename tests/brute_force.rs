@@ -11,7 +11,7 @@ use std::sync::Arc;
 use brimline::device::{Choice, Device, Kind, Law, Place, Rating, Size};
 use brimline::roof::channel::Channel;
 use brimline::roof::layout::{self, Asked, Group, Liftable};
-use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm};
+use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm, Surface};
 use brimline::search::{self, Criterion, Least, Options, Outcome, PlanAsked, Relaxation, Watch, Why};
 use brimline::units::{Area, Dimension, Flow, Intensity, Length, Load, Money, System};
 
@@ -131,6 +131,7 @@ fn roof(dice: &mut Dice) -> Roof {
             thickness: Some(Length::inches(8.0)),
         },
         roof_at_wall: on_grid(dice.inches(0, 2)),
+        surface: Surface::default(),
         receives: Vec::new(),
         ponding_head: dice.one_in(2).then(|| Length::inches(0.4)),
         kinds: dice.one_in(5).then(|| vec![Kind::ClosedScupper, Kind::Rated]),

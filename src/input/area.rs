@@ -5,7 +5,7 @@ use std::ops::RangeInclusive;
 
 use crate::device::Kind;
 use crate::roof::demand::{self, Circle};
-use crate::roof::{Catchment, Limits, Parapet, Receipt, Roof, Storm};
+use crate::roof::{Catchment, Limits, Parapet, Receipt, Rise, Roof, Storm, Surface};
 use crate::units::{Area, Dimension, Flow, Intensity, Length};
 
 use super::Assumed;
@@ -14,6 +14,7 @@ use super::defaults::{COUNT, SHARE, WALL_SHARE, default};
 use super::fault::{Fault, Span};
 use super::flow;
 use super::grid::{self, Least};
+use super::height::Datum;
 use super::section::{Cell, Keys, Section, any_of, near, optional};
 use super::setting::{Setting, is_named, limits_of, read_count, unique};
 
@@ -37,14 +38,11 @@ static AREA: Keys = Keys {
         "count",
         "set_height",
         "channel",
+        "low_point",
+        "slope",
+        "distance",
     ],
-    unsupported: &[
-        ("low_point", "elevations above a project datum"),
-        ("slope", "the slope of the roof"),
-        ("distance", "the distance from the low point to the parapet"),
-        ("existing", "openings that are there already"),
-        ("replace", "the price of closing an opening"),
-    ],
+    unsupported: &[("existing", "openings that are there already"), ("replace", "the price of closing an opening")],
 };
 
 static PARAPET: Keys = Keys { table: "`parapet`", known: &["height", "thickness"], unsupported: &[] };
@@ -202,7 +200,10 @@ fn read_area<'a>(
         if wall.is_some() { otherwise("wall_share", "area.wall_share") } else { section.get("wall_share") };
     let edge = otherwise("edge", "area.edge");
     let gap = otherwise("gap", "area.gap");
-    let roof_at_wall = otherwise("roof_at_wall", "area.roof_at_wall");
+    let surface = read_surface(section);
+    let sloped = section.get("slope").is_some() || section.get("distance").is_some();
+    let roof_at_wall =
+        if sloped { section.get("roof_at_wall") } else { otherwise("roof_at_wall", "area.roof_at_wall") };
     let wall = wall.map_or(Some(Area::ZERO), |cell| cell.zero_or_more(Dimension::Area, Area::m2));
     let wall_share = wall_share.map_or(Some(WALL_SHARE), |cell| {
         let share = cell.number_not_negative()?;
@@ -223,16 +224,22 @@ fn read_area<'a>(
         (Some(_), parapet) => parapet.flatten(),
         (None, _) => Some(Parapet::default()),
     };
-    let roof_at_wall = roof_at_wall.map_or(Some(Length::ZERO), |cell| cell.length());
+    let roof_at_wall = match (roof_at_wall, surface) {
+        (Some(cell), _) => cell.length(),
+        (None, surface) => surface.map(|surface| surface.rise.map_or(Length::ZERO, |rise| rise.at_wall())),
+    };
+    let datum =
+        surface.zip(roof_at_wall).map(|(surface, roof_at_wall)| Datum { low_point: surface.low_point, roof_at_wall });
     let ponding_head = section.get("ponding").map_or(Some(None), |cell| {
         let ponding = cell.section(&PONDING)?;
         ponding.need("head", "give the extra depth: ponding = { head = \"0.4 in\" }")?.length().map(Some)
     });
     let kinds = section.get("kinds").map_or(Some(None), |cell| read_kinds(&cell, setting).map(Some));
     let count = section.get("count").map_or(setting.search.count.clone(), |cell| read_count(&cell));
-    let set_heights = section
-        .get("set_height")
-        .map_or_else(|| setting.search.set_heights.clone(), |cell| grid::lengths(&cell, Least::Zero).map(Some));
+    let set_heights = section.get("set_height").map_or_else(
+        || setting.search.set_heights.clone(),
+        |cell| grid::lengths(&cell, Least::Height(datum?)).map(Some),
+    );
     let channel = section.get("channel").map(|cell| flow::channel(&cell, |name| taken.take(name, &called)));
     if let (Some(kinds), Some(parapet)) = (&kinds, &parapet) {
         thickness_given(section, setting, kinds.as_ref(), parapet, &called);
@@ -242,7 +249,7 @@ fn read_area<'a>(
     if let Some(cell) = section.get("count") {
         blocked_under_count(section, setting, count.as_ref(), Some(&cell.span()), Some(&called));
     }
-    if let (Some(kinds), Some(None)) = (&kinds, &set_heights)
+    if let (Some(kinds), Some(None), true) = (&kinds, &set_heights, setting.searched)
         && setting.catalogs.offers.iter().any(|offer| !offer.has_set_heights && takes(kinds.as_ref(), offer.kind))
     {
         section.missing(
@@ -260,6 +267,7 @@ fn read_area<'a>(
             gap: gap?,
             parapet: parapet?,
             roof_at_wall: roof_at_wall?,
+            surface: surface?,
             receives: Vec::new(),
             ponding_head: ponding_head?,
             kinds: kinds.clone()?,
@@ -270,6 +278,36 @@ fn read_area<'a>(
         })
     };
     Given { area: whole(), name, kinds, receives }
+}
+
+/// How the surface of an area lies.
+fn read_surface(section: &Section<'_>) -> Option<Surface> {
+    let low_point = section.get("low_point").map(|cell| cell.length());
+    let (slope, distance) = (section.get("slope"), section.get("distance"));
+    let rise = match (slope, distance) {
+        (None, None) => None,
+        (Some(slope), Some(distance)) => {
+            let (fall, distance) = (slope.slope(), distance.positive_length());
+            if let Some(cell) = section.get("roof_at_wall") {
+                cell.at_fault(
+                    "`roof_at_wall` stands beside `slope` and `distance`",
+                    "they give it already",
+                    "give either the height or the slope with its distance",
+                );
+                return None;
+            }
+            Some(fall.zip(distance).map(|(slope, distance)| Rise { slope, distance }))
+        }
+        (Some(cell), None) | (None, Some(cell)) => {
+            cell.at_fault(
+                "`slope` and `distance` belong together",
+                "one of them",
+                "give slope = \"0.25 in/ft\" and distance = \"20 ft\", from the low point to the wall",
+            );
+            return None;
+        }
+    };
+    Some(Surface { low_point: optional(low_point)?, rise: optional(rise)? })
 }
 
 /// Refuses an area whose parapet has no thickness where a scupper would follow a law that needs it.
@@ -506,6 +544,7 @@ fn without_size(receives: Vec<Receipt>) -> Catchment {
         gap: Length::ZERO,
         parapet: Parapet::default(),
         roof_at_wall: Length::ZERO,
+        surface: Surface::default(),
         receives,
         ponding_head: None,
         kinds: None,

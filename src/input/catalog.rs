@@ -206,29 +206,10 @@ fn read_device(catalog: &Path, section: &Section<'_>, log: &Log, into: &mut Cata
     let tag = section
         .need("tag", "a tag is a short name, such as tag = \"RS\"")
         .and_then(|cell| read_tag(&cell, section, log, into));
-    let kind = section
-        .need("kind", "a kind is what the device is, such as kind = \"closed scupper\"")
-        .and_then(|cell| cell.word(&Kind::ALL.map(|kind| (kind.name(), kind))));
+    let kind = read_kind(section);
     let _ = section.get("note").and_then(|cell| cell.text());
-    let lengths = |key, least| section.get(key).map(|cell| grid::lengths(&cell, least));
-    let given = Given {
-        widths: lengths("width", Least::AboveZero),
-        heights: lengths("height", Least::AboveZero),
-        diameters: lengths("diameter", Least::AboveZero),
-        dam: section.get("dam").map(|cell| cell.positive_length()),
-        dam_height: section.get("dam_height").map(|cell| cell.length()),
-        free_area: section.get("free_area").map(|cell| cell.positive(Dimension::Area, Area::m2)),
-        set_heights: lengths("set_height", Least::Zero),
-        place: section.get("place").map(|cell| cell.word(&[("edge", Place::Edge), ("interior", Place::Interior)])),
-        rating: section.get("rating").map(|cell| rating::read(catalog, &cell, log)),
-        interpolation: section
-            .get("interpolation")
-            .map(|cell| cell.word(&[("linear", Interpolation::Linear), ("log-log", Interpolation::LogLog)])),
-        screen: section.get("screen").map(|cell| read_screen(&cell)),
-        following: flow::following(section),
-        price: section.section("price", &PRICE).map(|price| Price::read(&price)),
-        source: section.get("source").and_then(|cell| cell.text()).map(Arc::from),
-    };
+    let set_heights = section.get("set_height").map(|cell| grid::lengths(&cell, Least::Zero));
+    let given = Given { set_heights, ..Given::read(catalog, section, log) };
     let kind = kind?;
     let law = section.get("law").map(|cell| flow::law(&cell, kind));
     into.offers.push(Offer {
@@ -248,6 +229,39 @@ fn read_device(catalog: &Path, section: &Section<'_>, log: &Log, into: &mut Cata
         given.make(kind, law, &tag, section, into);
     }
     Some(())
+}
+
+/// A device described in place of a catalog's, of one size; where it stands is not its own.
+pub(super) fn described(holder: &Path, section: &Section<'_>, log: &Log) -> Option<Size> {
+    let kind = read_kind(section);
+    let given = Given::read(holder, section, log);
+    let kind = kind?;
+    let tag: Arc<str> = match section.get("tag") {
+        Some(cell) => cell.text()?.into(),
+        None => kind.name().into(),
+    };
+    let law = section.get("law").map(|cell| flow::law(&cell, kind));
+    let (belongs, complete) = (given.belongs_to(kind, section), Given::completes(kind, section));
+    let mut into = Catalogs { sizes: Vec::new(), offers: Vec::new(), complete: true, entries: HashMap::new() };
+    if belongs && complete {
+        given.make(kind, law, &tag, section, &mut into);
+    }
+    if into.sizes.len() > 1 {
+        section.reader.fault(
+            section.span.clone(),
+            "a group is of one size",
+            format!("{} are described here", into.sizes.len()),
+            "give one value for each dimension, and a group for each size",
+        );
+        return None;
+    }
+    into.sizes.pop()
+}
+
+fn read_kind(section: &Section<'_>) -> Option<Kind> {
+    section
+        .need("kind", "a kind is what the device is, such as kind = \"closed scupper\"")
+        .and_then(|cell| cell.word(&Kind::ALL.map(|kind| (kind.name(), kind))))
 }
 
 /// The part of its flow that a guard lets pass.
@@ -276,6 +290,29 @@ fn read_tag(cell: &Cell<'_>, section: &Section<'_>, log: &Log, into: &mut Catalo
 }
 
 impl Given {
+    /// All but the set heights.
+    fn read(holder: &Path, section: &Section<'_>, log: &Log) -> Self {
+        let lengths = |key| section.get(key).map(|cell| grid::lengths(&cell, Least::AboveZero));
+        Self {
+            widths: lengths("width"),
+            heights: lengths("height"),
+            diameters: lengths("diameter"),
+            dam: section.get("dam").map(|cell| cell.positive_length()),
+            dam_height: section.get("dam_height").map(|cell| cell.length()),
+            free_area: section.get("free_area").map(|cell| cell.positive(Dimension::Area, Area::m2)),
+            set_heights: None,
+            place: section.get("place").map(|cell| cell.word(&[("edge", Place::Edge), ("interior", Place::Interior)])),
+            rating: section.get("rating").map(|cell| rating::read(holder, &cell, log)),
+            interpolation: section
+                .get("interpolation")
+                .map(|cell| cell.word(&[("linear", Interpolation::Linear), ("log-log", Interpolation::LogLog)])),
+            screen: section.get("screen").map(|cell| read_screen(&cell)),
+            following: flow::following(section),
+            price: section.section("price", &PRICE).map(|price| Price::read(&price)),
+            source: section.get("source").and_then(|cell| cell.text()).map(Arc::from),
+        }
+    }
+
     /// Whether every key that is given has a meaning for the kind.
     fn belongs_to(&self, kind: Kind, section: &Section<'_>) -> bool {
         let (own, _) = dimensions(kind);

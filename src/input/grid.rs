@@ -5,6 +5,7 @@
 
 use crate::units::Length;
 
+use super::height::{self, Datum};
 use super::section::{Cell, Keys};
 
 /// Most values that one grid may have, and most sizes in all catalogs.
@@ -13,12 +14,14 @@ pub(super) const MOST: usize = 1_000_000;
 static RANGE: Keys = Keys { table: "a range", known: &["from", "to", "step"], unsupported: &[] };
 
 /// What values a grid may have.
-#[derive(Clone, Copy, PartialEq, Eq)]
+#[derive(Clone, Copy)]
 pub(super) enum Least {
     /// Zero and more.
     Zero,
     /// Above zero only.
     AboveZero,
+    /// Heights in an area, zero and more above its low point, from wherever they count.
+    Height(Datum),
 }
 
 /// The values of a grid, rising, each once; never empty.
@@ -26,6 +29,7 @@ pub(super) fn lengths(cell: &Cell<'_>, least: Least) -> Option<Vec<Length>> {
     let one = |cell: &Cell<'_>| match least {
         Least::Zero => cell.length(),
         Least::AboveZero => cell.positive_length(),
+        Least::Height(datum) => height::of_cell(cell, &datum),
     };
     if cell.is_table() {
         let range = cell.section(&RANGE)?;

@@ -13,15 +13,26 @@ use super::fault::{Fault, Faults, Log, Span};
 use super::grid::{self, Least};
 use super::section::{Cell, Keys, Reader, Section, optional};
 use super::setting::{Cases, GivenCase, MOST_DEVICES, Search, Setting, is_named, limits_of, read_count, unique};
-use super::{Assumed, Project, area, file, flow, structure};
+use super::{Assumed, Project, area, file, flow, layout, structure};
 
 static PROJECT: Keys = Keys {
     table: "the project",
-    known: &["title", "note", "units", "catalogs", "storm", "limit", "flow", "search", "structure", "case", "area"],
-    unsupported: &[
-        ("rules", "sets of code rules to hold every layout against"),
-        ("layout", "given layouts to be checked"),
+    known: &[
+        "title",
+        "note",
+        "units",
+        "catalogs",
+        "storm",
+        "limit",
+        "flow",
+        "search",
+        "structure",
+        "case",
+        "area",
+        "layout",
+        "schedule",
     ],
+    unsupported: &[("rules", "sets of code rules to hold every layout against")],
 };
 
 static STORM: Keys = Keys {
@@ -100,9 +111,11 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         .map(|(section, system)| structure::read(&section, system, &mut assumed));
     // A fault above does not keep the areas from being read: whatever is at fault in any file is told in one run.
     let cases = read_cases(section, &mut assumed);
-    let setting = Setting { cases: &cases, limits, search: &search, choice, catalogs: &catalogs };
+    let searched = section.get("layout").is_none() && section.get("schedule").is_none();
+    let setting = Setting { cases: &cases, limits, search: &search, choice, catalogs: &catalogs, searched };
     let areas = area::read_all(section, &setting, &mut assumed);
     prices(section, &search, &areas.kinds, &catalogs);
+    let layouts = areas.complete.as_deref().and_then(|areas| layout::read_all(path, section, areas, &catalogs));
     let (areas, storm) = (areas.complete?, storm?);
     let roof = Roof {
         title: title?,
@@ -120,7 +133,15 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
     }
     let plan = search.plan?;
     let structure = optional(structure)?;
-    Some(Project { roof, options: search.options()?, plan, structure, assumed, warnings: Faults::default() })
+    Some(Project {
+        roof,
+        options: search.options()?,
+        plan,
+        structure,
+        layouts: layouts?,
+        assumed,
+        warnings: Faults::default(),
+    })
 }
 
 /// The roof with each case held under each law: as many cases as there are pairs, named after both.

@@ -260,6 +260,14 @@ impl<'a> Cell<'a> {
         self.reader.fault(self.span(), title, label, help);
     }
 
+    /// The text that the value is, if it is one.
+    pub(super) fn as_text(&self) -> Option<&'a str> {
+        match self.value {
+            DeValue::String(text) => Some(text),
+            _ => None,
+        }
+    }
+
     /// A text.
     pub(super) fn text(&self) -> Option<&'a str> {
         match self.value {

@@ -43,6 +43,8 @@ pub(super) struct Setting<'s> {
     /// The flow laws chosen; none where they are at fault.
     pub(super) choice: Option<Choice>,
     pub(super) catalogs: &'s Catalogs,
+    /// Whether layouts can only be searched for: the project gives none.
+    pub(super) searched: bool,
 }
 
 /// What is asked of the search; none where a value is at fault.

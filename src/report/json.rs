@@ -5,6 +5,8 @@ use std::ops::Not;
 use serde::Serialize;
 
 use crate::device::{Kind, Site};
+use crate::roof::Roof;
+use crate::roof::layout::CaseState;
 use crate::search::{Answer, Least, Opened, Opening, Outcome, Placed, Ranked, UnderLaw};
 use crate::units::{Length, Money};
 
@@ -124,7 +126,7 @@ struct Layout<'a> {
 }
 
 #[derive(Serialize)]
-struct Group<'a> {
+pub(super) struct Group<'a> {
     device: &'a str,
     kind: &'static str,
     width_m: Option<f64>,
@@ -139,14 +141,14 @@ struct Group<'a> {
 }
 
 #[derive(Serialize)]
-struct Governing<'a> {
+pub(super) struct Governing<'a> {
     case: &'a str,
     limit: Option<&'static str>,
     utilisation: Option<f64>,
 }
 
 #[derive(Serialize)]
-struct Case<'a> {
+pub(super) struct Case<'a> {
     name: &'a str,
     demand_m3_s: f64,
     load_limit_pa: Option<f64>,
@@ -183,6 +185,7 @@ struct Under<'a> {
 
 pub(super) fn document(sized: &Sized<'_, '_>) -> String {
     let storm = &sized.roof.storm;
+    let told = sized.told();
     let mut plans = sized.plans.map_or(Vec::new(), |asked| self::plans(sized, &asked));
     let document = Document {
         format: "brimline size 1",
@@ -196,8 +199,8 @@ pub(super) fn document(sized: &Sized<'_, '_>) -> String {
         areas: sized.answers.iter().map(|answer| area(sized, answer)).collect(),
         plan: plans.is_empty().not().then(|| plans.remove(0)),
         plans: (!plans.is_empty()).then_some(plans),
-        assumptions: notes::assumptions(sized),
-        cautions: notes::cautions(sized),
+        assumptions: notes::assumptions(&told),
+        cautions: notes::cautions(&told),
     };
     // Only text, finite numbers and lists are in it: nothing that JSON cannot hold.
     let mut text = serde_json::to_string_pretty(&document).unwrap_or_default();
@@ -298,18 +301,47 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
     if ranked.chord > notes::CHORD_TOLD {
         remarks.push("straight lines between rated rows decide by more than 2 % of flow".into());
     }
-    let site = sized.roof.site(area, None);
     // The first layout under every law where that is asked for; else each under the laws of a thick wall.
     let asked = sized.laws_of(area);
     let others: &[UnderLaw] = asked.filter(|_| rank == 1).map_or(&ranked.thick_wall, |laws| laws);
-    let cases = ranked.states.iter().enumerate().map(|(index, state)| {
-        let limits = sized.roof.areas[area].limits[index];
+    Layout {
+        rank,
+        cost: ranked.cost.map(crate::units::Money::amount),
+        groups: groups(sized.roof, area, ranked),
+        governing: governing(sized.roof, ranked),
+        cases: cases(sized.roof, area, ranked),
+        beyond_range: !ranked.beyond.is_empty(),
+        straight_line_excess: ranked.chord,
+        under_other_laws: others.iter().map(|under| under_law(sized, under)).collect(),
+        notes: remarks,
+    }
+}
+
+/// The groups of a layout.
+pub(super) fn groups<'a>(roof: &'a Roof, area: usize, ranked: &'a Ranked<'_>) -> Vec<Group<'a>> {
+    let site = roof.site(area, None);
+    ranked.groups.iter().map(|placed| group(placed, &site)).collect()
+}
+
+/// What governs a layout.
+pub(super) fn governing<'a>(roof: &'a Roof, ranked: &Ranked<'_>) -> Governing<'a> {
+    Governing {
+        case: &roof.cases[ranked.case].name,
+        limit: ranked.governing.map(|governing| governing.limit.name()),
+        utilisation: ranked.governing.map(|governing| governing.utilisation),
+    }
+}
+
+/// A layout in every case.
+pub(super) fn cases<'a>(roof: &'a Roof, area: usize, ranked: &Ranked<'_>) -> Vec<Case<'a>> {
+    let of_case = |(index, state): (usize, &CaseState)| {
+        let limits = roof.areas[area].limits[index];
         Case {
-            name: &sized.roof.cases[index].name,
+            name: &roof.cases[index].name,
             demand_m3_s: state.demand.m3_per_s(),
             load_limit_pa: limits.load.map(crate::units::Load::pa),
             depth_limit_m: limits.depth.map(Length::m),
-            parapet_m: sized.roof.areas[area].parapet.height.map(Length::m),
+            parapet_m: roof.areas[area].parapet.height.map(Length::m),
             allowable_level_m: Some(ranked.allowed[index].m()).filter(|level| level.is_finite()),
             water_depth_m: state.water.map(|water| water.level.m()),
             far_end_level_m: state.water.and_then(|water| water.reach).map(|reach| reach.far_level.m()),
@@ -329,22 +361,8 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
                 })
                 .collect(),
         }
-    });
-    Layout {
-        rank,
-        cost: ranked.cost.map(crate::units::Money::amount),
-        groups: ranked.groups.iter().map(|placed| group(placed, &site)).collect(),
-        governing: Governing {
-            case: &sized.roof.cases[ranked.case].name,
-            limit: ranked.governing.map(|governing| governing.limit.name()),
-            utilisation: ranked.governing.map(|governing| governing.utilisation),
-        },
-        cases: cases.collect(),
-        beyond_range: !ranked.beyond.is_empty(),
-        straight_line_excess: ranked.chord,
-        under_other_laws: others.iter().map(|under| under_law(sized, under)).collect(),
-        notes: remarks,
-    }
+    };
+    ranked.states.iter().enumerate().map(of_case).collect()
 }
 
 fn found_cures<'a>(opened: &'a Opened<'_>) -> Vec<CureFound<'a>> {

@@ -2,11 +2,12 @@
 
 use crate::device::{Kind, Law, Place, Regime, Site, Size};
 use crate::hydraulics::practice::Transition;
+use crate::input::Assumed;
+use crate::roof::Roof;
 use crate::roof::layout::GroupState;
-use crate::search::Ranked;
+use crate::search::{Options, Ranked};
 use crate::units::{Area, Length, System};
 
-use super::Sized;
 use super::words::{self, Words, list, ranked_by, trimmed};
 
 /// Excess of straight lines over logarithmic ones, as a part of the demand, from which it is told.
@@ -17,13 +18,25 @@ const LOW_HEAD: Length = Length::inches(1.0);
 /// Set height under which an overflow runs in ordinary storms: 2 in, or 50 mm where metric. ASCE 7-22 and training notes of the UPC, from memory.
 const LOW_SILL: Length = Length::mm(50.0);
 
-fn layouts<'a, 'r>(sized: &Sized<'a, 'r>) -> impl Iterator<Item = &'a Ranked<'r>> {
-    sized.answers.iter().flat_map(|answer| answer.outcome.layouts())
+/// What a report tells of: its areas and every layout in it.
+pub(super) struct Told<'a, 'r> {
+    pub(super) roof: &'r Roof,
+    pub(super) options: &'a Options,
+    pub(super) assumed: &'a [Assumed],
+    pub(super) areas: Vec<usize>,
+    /// Each with the index of its area.
+    pub(super) layouts: Vec<(usize, &'a Ranked<'r>)>,
+    /// Whether they were searched for; else they were given.
+    pub(super) searched: bool,
 }
 
-fn sizes<'r>(sized: &Sized<'_, 'r>) -> Vec<&'r Size> {
+fn layouts<'a, 'r>(told: &Told<'a, 'r>) -> impl Iterator<Item = &'a Ranked<'r>> {
+    told.layouts.iter().map(|(_, layout)| *layout)
+}
+
+fn sizes<'r>(told: &Told<'_, 'r>) -> Vec<&'r Size> {
     let mut sizes: Vec<&Size> = Vec::new();
-    for placed in layouts(sized).flat_map(|layout| &layout.groups) {
+    for placed in layouts(told).flat_map(|layout| &layout.groups) {
         if !sizes.iter().any(|known| known.tag == placed.group.size.tag) {
             sizes.push(placed.group.size);
         }
@@ -32,13 +45,13 @@ fn sizes<'r>(sized: &Sized<'_, 'r>) -> Vec<&'r Size> {
 }
 
 /// The devices that the layouts are made of, with their laws and sources; devices of one law in one line.
-pub(super) fn laws(sized: &Sized<'_, '_>, words: Words) -> Vec<String> {
+pub(super) fn laws(told: &Told<'_, '_>, words: Words) -> Vec<String> {
     let mut lines: Vec<(String, Vec<String>)> = Vec::new();
-    let area = sized.answers.first().map_or(0, |answer| answer.area);
-    for size in sizes(sized) {
+    let area = told.areas.first().copied().unwrap_or(0);
+    for size in sizes(told) {
         let kind = size.device.kind();
         let mut laws: Vec<Law> =
-            sized.roof.cases.iter().map(|case| size.law_at(&sized.roof.site(area, case.law))).collect();
+            told.roof.cases.iter().map(|case| size.law_at(&told.roof.site(area, case.law))).collect();
         laws.sort_unstable();
         laws.dedup();
         for law in laws {
@@ -61,20 +74,20 @@ pub(super) fn laws(sized: &Sized<'_, '_>, words: Words) -> Vec<String> {
         return vec!["No layout is listed.".into()];
     }
     let mut lines: Vec<_> = lines.into_iter().map(|(line, devices)| format!("{}, {line}", list(&devices))).collect();
-    let laws: Vec<Law> = sizes(sized)
+    let laws: Vec<Law> = sizes(told)
         .iter()
-        .flat_map(|size| sized.roof.cases.iter().map(|case| size.law_at(&sized.roof.site(area, case.law))))
+        .flat_map(|size| told.roof.cases.iter().map(|case| size.law_at(&told.roof.site(area, case.law))))
         .collect();
-    let mut sites: Vec<Site> = sized.answers.iter().map(|answer| sized.roof.site(answer.area, None)).collect();
+    let mut sites: Vec<Site> = told.areas.iter().map(|&area| told.roof.site(area, None)).collect();
     sites.dedup_by_key(|site| site.thickness);
-    if laws.contains(&Law::Throat) || layouts(sized).any(|layout| !layout.thick_wall.is_empty()) {
+    if laws.contains(&Law::Throat) || layouts(told).any(|layout| !layout.thick_wall.is_empty()) {
         let thick = sites.iter().filter(|site| site.thickness.is_some());
         lines.extend(thick.map(|site| format!("The law {}", throat(site, words))));
     }
     if laws.contains(&Law::ThinPlate) {
         lines.extend(sites.first().and_then(transition));
     }
-    lines.extend(following(sized, words));
+    lines.extend(following(told, words));
     lines
 }
 
@@ -96,11 +109,11 @@ fn transition(site: &Site) -> Option<String> {
 }
 
 /// What guards and follows the devices, and from which head it governs.
-fn following(sized: &Sized<'_, '_>, words: Words) -> Vec<String> {
+fn following(told: &Told<'_, '_>, words: Words) -> Vec<String> {
     let mut lines: Vec<String> = Vec::new();
-    for answer in sized.answers {
-        let site = sized.roof.site(answer.area, None);
-        for placed in answer.outcome.layouts().iter().flat_map(|layout| &layout.groups) {
+    for (area, layout) in &told.layouts {
+        let site = told.roof.site(*area, None);
+        for placed in &layout.groups {
             let size = placed.group.size;
             let mut parts = Vec::new();
             if (size.screen - 1.0).abs() > 1e-12 {
@@ -122,9 +135,9 @@ fn following(sized: &Sized<'_, '_>, words: Words) -> Vec<String> {
 }
 
 /// What was taken as given, and every default that was taken.
-pub(super) fn assumptions(sized: &Sized<'_, '_>) -> Vec<String> {
-    let words = Words(sized.roof.system);
-    let weight = match sized.roof.system {
+pub(super) fn assumptions(told: &Told<'_, '_>) -> Vec<String> {
+    let words = Words(told.roof.system);
+    let weight = match told.roof.system {
         System::Us => "Water weighs 62.4 lb/ft3: 5.2 psf for each inch of depth",
         System::Si => "Water weighs 9.802 kN/m3 (62.4 lb/ft3): 0.0098 kPa for each mm of depth",
     };
@@ -134,7 +147,7 @@ pub(super) fn assumptions(sized: &Sized<'_, '_>) -> Vec<String> {
         "Depths and set heights are above the low point of each area, where the primary inlet sits; water ponds level."
             .into(),
         "Flow is steady: no credit for water stored on the roof.".into(),
-        match sized.roof.system {
+        match told.roof.system {
             System::Us => {
                 "Rain runs off entirely, Q = i A; the practice constant 0.0104 (gpm, ft2, in/h) is 0.10 % higher."
             }
@@ -142,19 +155,23 @@ pub(super) fn assumptions(sized: &Sized<'_, '_>) -> Vec<String> {
         }
         .into(),
         "Widths and heights are clear openings, after flashing and membrane.".into(),
-        format!(
-            "Layouts are ranked by {}; ties go by cost, load, count, width, sizes, set-height, then catalog order.{}",
-            ranked_by(&sized.options.rank_by),
-            if sized.options.fold { " Of layouts with the same number of each device the best is listed." } else { "" }
-        ),
-        "In a window all groups rise together, each stopping at the top of its own range.".into(),
     ];
-    for assumed in sized.assumed {
+    if told.searched {
+        lines.push(format!(
+            "Layouts are ranked by {}; ties go by cost, load, count, width, sizes, set-height, then catalog order.{}",
+            ranked_by(&told.options.rank_by),
+            if told.options.fold { " Of layouts with the same number of each device the best is listed." } else { "" }
+        ));
+    }
+    lines.push("In a window all groups rise together, each stopping at the top of its own range.".into());
+    // What is asked of a search says nothing of layouts that were given.
+    let concerns = |assumed: &&Assumed| told.searched || !assumed.default.key.starts_with("search.");
+    for assumed in told.assumed.iter().filter(concerns) {
         let default = assumed.default;
         let whom = if assumed.areas.is_empty() { String::new() } else { format!(" in {}", list(&assumed.areas)) };
         lines.push(format!("Not given: `{}`{whom}. Taken: {}; {}.", default.key, default.value, default.meaning));
     }
-    if let Some(freeboard) = sized.options.freeboard {
+    if let Some(freeboard) = told.options.freeboard {
         lines.push(format!(
             "At least {} is kept between the water and the top of every closed opening.",
             words.size(freeboard)
@@ -164,7 +181,7 @@ pub(super) fn assumptions(sized: &Sized<'_, '_>) -> Vec<String> {
 }
 
 /// The cautions that apply to this roof and these layouts.
-pub(super) fn cautions(sized: &Sized<'_, '_>) -> Vec<String> {
+pub(super) fn cautions(told: &Told<'_, '_>) -> Vec<String> {
     let mut lines = vec![
         "This supports, and does not replace, the adopted code with its local amendments and the review of a licensed \
          professional."
@@ -172,15 +189,15 @@ pub(super) fn cautions(sized: &Sized<'_, '_>) -> Vec<String> {
         "The limit is for rain alone: take dead load, equipment and ballast off the roof's capacity before it is given."
             .to_string(),
     ];
-    storm(sized, &mut lines);
-    structure(sized, &mut lines);
-    openings(sized, &mut lines);
-    cases(sized, &mut lines);
+    storm(told, &mut lines);
+    structure(told, &mut lines);
+    openings(told, &mut lines);
+    cases(told, &mut lines);
     lines.push(
         "Ice, snow, hail and leaves before an opening, and water driven along a parapet by wind, are in none of the formulas."
             .into(),
     );
-    if sizes(sized).iter().any(|size| size.following.capacity().is_none()) {
+    if sizes(told).iter().any(|size| size.following.capacity().is_none()) {
         lines.push(
             "What follows a device is checked only where the catalog gives it: a leader, conductor head or pipe that backs up raises the water. \
          Overflow must discharge apart from the primary, where it is seen."
@@ -190,8 +207,8 @@ pub(super) fn cautions(sized: &Sized<'_, '_>) -> Vec<String> {
     lines
 }
 
-fn storm(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
-    let storm = &sized.roof.storm;
+fn storm(told: &Told<'_, '_>, lines: &mut Vec<String>) {
+    let storm = &told.roof.storm;
     match storm.duration {
         None => lines.push(
             "The duration of the storm is not stated: a 1 h rate in place of the 15 min rate that load standards ask for \
@@ -217,14 +234,14 @@ fn storm(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
     }
 }
 
-fn names<'a>(sized: &Sized<'a, '_>, wanted: impl Fn(&crate::roof::Catchment) -> bool) -> Vec<&'a str> {
-    let areas: Vec<_> = sized.answers.iter().map(|answer| &sized.roof.areas[answer.area]).collect();
+fn names<'a>(told: &Told<'a, '_>, wanted: impl Fn(&crate::roof::Catchment) -> bool) -> Vec<&'a str> {
+    let areas: Vec<_> = told.areas.iter().map(|&area| &told.roof.areas[area]).collect();
     areas.into_iter().filter(|area| wanted(area)).map(|area| area.name.as_str()).collect()
 }
 
-fn structure(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
+fn structure(told: &Told<'_, '_>, lines: &mut Vec<String>) {
     let without =
-        names(sized, |area| area.ponding_head.is_none() && area.limits.iter().any(|limits| limits.load.is_some()));
+        names(told, |area| area.ponding_head.is_none() && area.limits.iter().any(|limits| limits.load.is_some()));
     if !without.is_empty() {
         lines.push(format!(
             "No ponding head is given for {}: a roof that sags under water gathers more. On slopes under 1/4 in/ft (2 %) and \
@@ -232,21 +249,21 @@ fn structure(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
             list(&without)
         ));
     }
-    let with = names(sized, |area| area.ponding_head.is_some());
+    let with = names(told, |area| area.ponding_head.is_some());
     if !with.is_empty() {
         lines.push(format!(
             "The ponding head of {} is a fixed figure: it holds only up to the load it was found for.",
             list(&with)
         ));
     }
-    let walls = names(sized, |area| area.wall == Area::ZERO);
+    let walls = names(told, |area| area.wall == Area::ZERO);
     if !walls.is_empty() {
         lines.push(format!(
             "No wall is counted for {}: walls and higher roofs that shed on an area count only where they are given.",
             list(&walls)
         ));
     }
-    let depths = names(sized, |area| area.limits.iter().any(|limits| limits.depth.is_some()));
+    let depths = names(told, |area| area.limits.iter().any(|limits| limits.depth.is_some()));
     if !depths.is_empty() {
         lines.push(format!(
             "A depth limit is held at the low point of {}: state it above that, not above the sill, the drain's rim or the \
@@ -254,7 +271,7 @@ fn structure(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
             list(&depths)
         ));
     }
-    let level = names(sized, |area| area.channel.is_none());
+    let level = names(told, |area| area.channel.is_none());
     if !level.is_empty() {
         lines.push(format!(
             "Water is taken as level over {}: where it must run along a valley, a cricket or a gutter to the opening, the far \
@@ -264,18 +281,18 @@ fn structure(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
     }
 }
 
-fn openings(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
-    let site = sized.roof.site(sized.answers.first().map_or(0, |answer| answer.area), None);
+fn openings(told: &Told<'_, '_>, lines: &mut Vec<String>) {
+    let site = told.roof.site(told.areas.first().copied().unwrap_or(0), None);
     let thin = |law: Law| matches!(law, Law::ThinPlate | Law::Contracted | Law::KindsvaterCarter);
-    if sizes(sized).iter().any(|size| size.device.kind().is_scupper() && thin(size.law_at(&site))) {
-        let thick: Vec<_> = sized
-            .answers
+    if sizes(told).iter().any(|size| size.device.kind().is_scupper() && thin(size.law_at(&site))) {
+        let thick: Vec<_> = told
+            .areas
             .iter()
-            .filter_map(|answer| {
-                let area = &sized.roof.areas[answer.area];
+            .filter_map(|&area| {
+                let area = &told.roof.areas[area];
                 area.parapet
                     .thickness
-                    .map(|thickness| format!("{} in {}", Words(sized.roof.system).size(thickness), area.name))
+                    .map(|thickness| format!("{} in {}", Words(told.roof.system).size(thickness), area.name))
             })
             .collect();
         let given = if thick.is_empty() { String::new() } else { format!(" (parapet {})", list(&thick)) };
@@ -284,13 +301,13 @@ fn openings(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
              a scupper carries 13 to 20 % less, and a narrow one less still."
         ));
     }
-    regimes(sized, lines);
-    heights(sized, lines);
+    regimes(told, lines);
+    heights(told, lines);
 }
 
-fn regimes(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
+fn regimes(told: &Told<'_, '_>, lines: &mut Vec<String>) {
     let states = || {
-        layouts(sized).flat_map(|layout| {
+        layouts(told).flat_map(|layout| {
             layout.states.iter().flat_map(move |state| {
                 layout.groups.iter().zip(&state.groups).filter(|(_, stands)| stands.share.working > 0)
             })
@@ -316,7 +333,7 @@ fn regimes(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
             "Some rated devices are read below the first row of their table, where a weir's curve is taken.".into(),
         );
     }
-    if layouts(sized).any(|layout| !layout.beyond.is_empty()) {
+    if layouts(told).any(|layout| !layout.beyond.is_empty()) {
         lines.push(
             "Layouts marked as beyond range rest on a law outside the range in which it is published; how far is told under \
              each list."
@@ -336,7 +353,7 @@ fn regimes(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
     if met(Regime::BeyondRange) {
         lines.push("Some flows are continued past the range in which their law is published: they are marked.".into());
     }
-    if sizes(sized).iter().any(|size| matches!(size.device.kind(), Kind::OverflowDrain | Kind::Standpipe)) {
+    if sizes(told).iter().any(|size| matches!(size.device.kind(), Kind::OverflowDrain | Kind::Standpipe)) {
         lines.push(
             "The computed flow of an overflow drain or standpipe is an upper bound: vortex, dome and bowl take their part. A \
              measured rating of the very body is better."
@@ -353,17 +370,17 @@ fn regimes(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
 }
 
 /// Cautions on where devices stand.
-fn heights(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
-    if layouts(sized).flat_map(|layout| &layout.groups).any(|placed| placed.group.set_height.nm() < LOW_SILL.nm()) {
+fn heights(told: &Told<'_, '_>, lines: &mut Vec<String>) {
+    if layouts(told).flat_map(|layout| &layout.groups).any(|placed| placed.group.set_height.nm() < LOW_SILL.nm()) {
         lines.push(
             "Some sills stand less than 2 in (50 mm) above the low point: they run in ordinary storms, and a blocked primary \
              goes unnoticed."
                 .into(),
         );
     }
-    for size in sizes(sized) {
+    for size in sizes(told) {
         if let (Some(heights), true) = (&size.set_heights, size.place == Place::Interior) {
-            let words = Words(sized.roof.system);
+            let words = Words(told.roof.system);
             let heights: Vec<_> = heights.iter().take(8).map(|&height| words.bare_size(height)).collect();
             lines.push(format!(
                 "{} comes at set heights of {} {} only: of its window only these can be built.",
@@ -373,13 +390,13 @@ fn heights(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
             ));
         }
     }
-    if sizes(sized).iter().any(|size| size.device.kind() == Kind::Rated) {
+    if sizes(told).iter().any(|size| size.device.kind() == Kind::Rated) {
         lines.push("A rating holds for the body, dome and dam that were tested, and for no other.".into());
     }
 }
 
-fn cases(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
-    let cases = &sized.roof.cases;
+fn cases(told: &Told<'_, '_>, lines: &mut Vec<String>) {
+    let cases = &told.roof.cases;
     if cases.iter().all(|case| case.blocked == 0) {
         lines.push("No case blocks a device: a blocked overflow is not covered.".into());
     }

@@ -17,28 +17,42 @@ const CHORD: &str = "\u{2021}";
 
 pub(super) fn page(sized: &Sized<'_, '_>) -> Vec<Block> {
     let words = Words(sized.roof.system);
-    let mut blocks = vec![
-        Block::Title(format!("{}: overflow drainage, primary drains blocked", sized.roof.title)),
-        Block::Text(storm(sized.roof, words)),
-    ];
-    let cases: Vec<_> = sized.roof.cases.iter().map(|case| case_in_words(case, words)).collect();
-    if sized.roof.cases.len() > 1 || sized.roof.cases[0] != Case::as_designed() {
-        blocks.push(Block::Text("Cases that a layout must withstand:".into()));
-        blocks.push(Block::List(cases));
-    }
+    let mut blocks = vec![Block::Title(format!("{}: overflow drainage, primary drains blocked", sized.roof.title))];
+    blocks.extend(situation(sized.roof, words));
     for answer in sized.answers {
         area(sized, answer, words, &mut blocks);
     }
     if let Some(asked) = &sized.plans {
         plan::blocks(sized, asked, words, &mut blocks);
     }
+    let told = sized.told();
     blocks.push(Block::Heading("Devices".into()));
-    blocks.push(Block::List(notes::laws(sized, words)));
+    blocks.push(Block::List(notes::laws(&told, words)));
     blocks.push(Block::Heading("Assumptions".into()));
-    blocks.push(Block::List(notes::assumptions(sized)));
+    blocks.push(Block::List(notes::assumptions(&told)));
     blocks.push(Block::Heading("Cautions".into()));
-    blocks.push(Block::List(notes::cautions(sized)));
+    blocks.push(Block::List(notes::cautions(&told)));
     blocks
+}
+
+/// The storm, and the cases that a layout must withstand.
+pub(super) fn situation(roof: &Roof, words: Words) -> Vec<Block> {
+    let mut blocks = vec![Block::Text(storm(roof, words))];
+    let cases: Vec<_> = roof.cases.iter().map(|case| case_in_words(case, words)).collect();
+    if roof.cases.len() > 1 || roof.cases[0] != Case::as_designed() {
+        blocks.push(Block::Text("Cases that a layout must withstand:".into()));
+        blocks.push(Block::List(cases));
+    }
+    blocks
+}
+
+/// An area's name, demand and limit.
+pub(super) fn area_head(roof: &Roof, area: usize, words: Words) -> [Block; 3] {
+    [
+        Block::Heading(roof.areas[area].name.clone()),
+        Block::Text(demand_in_words(roof, area, words)),
+        Block::Text(limit_in_words(roof, area, words)),
+    ]
 }
 
 fn storm(roof: &Roof, words: Words) -> String {
@@ -80,10 +94,7 @@ fn case_in_words(case: &Case, words: Words) -> String {
 
 fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut Vec<Block>) {
     let roof = sized.roof;
-    let catchment = &roof.areas[answer.area];
-    blocks.push(Block::Heading(catchment.name.clone()));
-    blocks.push(Block::Text(demand_in_words(roof, answer.area, words)));
-    blocks.push(Block::Text(limit_in_words(roof, answer.area, words)));
+    blocks.extend(area_head(roof, answer.area, words));
     match &answer.outcome {
         Outcome::Optimal(_) => {}
         Outcome::Stopped { layouts, bound } => {
@@ -301,23 +312,34 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
     for text in marks(layouts, words) {
         blocks.push(Block::Text(text));
     }
-    let backing = backing_up(sized.roof, layouts, words);
+    let named: Vec<_> = (1..).map(|rank: usize| rank.to_string()).zip(layouts).collect();
+    blocks.extend(beside(sized.roof, area, &named, words));
+}
+
+/// A layout with its rank or its name.
+pub(super) type Named<'l, 'r> = (String, &'l Ranked<'r>);
+
+/// What is told of layouts besides their ranking: conductor heads that back up, and how they stand in a thick wall.
+pub(super) fn beside(roof: &Roof, area: usize, layouts: &[Named<'_, '_>], words: Words) -> Vec<Block> {
+    let mut blocks = Vec::new();
+    let backing = backing_up(roof, layouts, words);
     if !backing.is_empty() {
         blocks
             .push(Block::Text("Conductor heads that would back up, were all that the device passes credited:".into()));
         blocks.push(Block::List(backing));
     }
-    let thick = thick_walls(sized.roof, area, layouts, words);
+    let thick = thick_walls(roof, area, layouts, words);
     if !thick.is_empty() {
         blocks.push(Block::Text("Under the laws of a thick wall, in the governing case:".into()));
         blocks.push(Block::List(thick));
     }
+    blocks
 }
 
 /// One line for each layout and group whose conductor head would back up over the sill, at its worst.
-fn backing_up(roof: &Roof, layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
+fn backing_up(roof: &Roof, layouts: &[Named<'_, '_>], words: Words) -> Vec<String> {
     let mut lines = Vec::new();
-    for (index, layout) in layouts.iter().enumerate() {
+    for (called, layout) in layouts {
         for (place, placed) in layout.groups.iter().enumerate() {
             let risen = layout
                 .states
@@ -326,7 +348,7 @@ fn backing_up(roof: &Roof, layouts: &[Ranked<'_>], words: Words) -> Vec<String> 
                 .filter_map(|(case, state)| Some((state.groups[place].backs_up?, case)));
             if let Some((rise, case)) = risen.max_by(|a, b| a.0.m().total_cmp(&b.0.m())) {
                 let (name, case) = (words.name(placed.group.size), &roof.cases[case].name);
-                lines.push(format!("{}: {name} to {} above its sill in \"{case}\"", index + 1, words.depth(rise)));
+                lines.push(format!("{called}: {name} to {} above its sill in \"{case}\"", words.depth(rise)));
             }
         }
     }
@@ -334,19 +356,18 @@ fn backing_up(roof: &Roof, layouts: &[Ranked<'_>], words: Words) -> Vec<String> 
 }
 
 /// One line for each layout: its level under the laws of a thick wall, and whether that breaks a limit.
-fn thick_walls(roof: &Roof, area: usize, layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
+fn thick_walls(roof: &Roof, area: usize, layouts: &[Named<'_, '_>], words: Words) -> Vec<String> {
     let Some(thickness) = roof.areas[area].parapet.thickness else { return Vec::new() };
     let wall = format!(" ({} parapet)", words.size(thickness));
     let one = |(index, under): (usize, &UnderLaw)| {
         let (wall, is) = if index == 0 { (wall.as_str(), "the level is ") } else { ("", "") };
         format!("under `{}`{wall} {is}{}", under.law.name(), under_in_words(roof, area, under, words))
     };
-    let numbered = layouts.iter().enumerate().filter(|(_, layout)| !layout.thick_wall.is_empty());
-    numbered
-        .map(|(index, layout)| {
-            format!("{}: {}", index + 1, layout.thick_wall.iter().enumerate().map(one).collect::<Vec<_>>().join("; "))
-        })
-        .collect()
+    let told = layouts.iter().filter(|(_, layout)| !layout.thick_wall.is_empty());
+    told.map(|(called, layout)| {
+        format!("{called}: {}", layout.thick_wall.iter().enumerate().map(one).collect::<Vec<_>>().join("; "))
+    })
+    .collect()
 }
 
 /// The level under another law, beside what is allowed where it passes that.
@@ -396,7 +417,7 @@ fn every_law(roof: &Roof, area: usize, first: &Ranked<'_>, laws: &[UnderLaw], wo
     ])));
 }
 
-fn marked(layout: &Ranked<'_>, words: Words) -> String {
+pub(super) fn marked(layout: &Ranked<'_>, words: Words) -> String {
     let mut text = words.layout(layout);
     if !layout.beyond.is_empty() {
         text += &format!(" {BEYOND}");
@@ -407,7 +428,7 @@ fn marked(layout: &Ranked<'_>, words: Words) -> String {
     text
 }
 
-fn marks(layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
+pub(super) fn marks(layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
     let mut texts = Vec::new();
     let mut beyond: Vec<(&Range, f64)> = Vec::new();
     for &(range, value) in layouts.iter().flat_map(|layout| &layout.beyond) {

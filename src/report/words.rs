@@ -107,6 +107,15 @@ impl Words {
         }
     }
 
+    /// An elevation above the project's datum.
+    pub(super) fn elevation(self, elevation: Length) -> String {
+        if self.us() {
+            format!("{} ft", grouped(elevation.to_inches() / 12.0, 2))
+        } else {
+            format!("{} m", grouped(elevation.m(), 3))
+        }
+    }
+
     /// A roof area, without its unit.
     pub(super) fn bare_area(self, area: Area) -> String {
         trimmed(if self.us() { area.to_ft2() } else { area.m2() }, 1)

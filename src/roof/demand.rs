@@ -55,7 +55,7 @@ fn own(storm: &Storm, areas: &[Catchment], here: usize, known: &[Option<Flow>]) 
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::roof::{Parapet, Receipt};
+    use crate::roof::{Parapet, Receipt, Surface};
     use crate::units::{Intensity, Length};
     use approx::assert_relative_eq;
 
@@ -74,6 +74,7 @@ mod tests {
             gap: Length::ZERO,
             parapet: Parapet::default(),
             roof_at_wall: Length::ZERO,
+            surface: Surface::default(),
             receives: receives.iter().map(|&(from, share)| Receipt { from, share }).collect(),
             ponding_head: None,
             kinds: None,

@@ -5,7 +5,7 @@ use crate::root::crossing;
 use crate::units::{Flow, Length, Load, Money};
 
 use super::channel::Reach;
-use super::pool::{GREATEST_HEAD, MOST_GROUPS, Outlet, Pool, Share};
+use super::pool::{GREATEST_HEAD, MOST_OUTLETS, Outlet, Pool, Share};
 
 use super::situation::{Governing, Situation};
 
@@ -68,9 +68,9 @@ impl Water {
 /// The groups as they stand in a case: sills raised, openings narrowed, the most effective blocked.
 ///
 /// # Panics
-/// For more than three groups, which no layout has.
+/// For more than [`MOST_OUTLETS`] groups, which no layout has.
 pub fn pool(groups: &[Group<'_>], situation: &Situation<'_>) -> Pool {
-    assert!(groups.len() <= MOST_GROUPS, "a layout has at most {MOST_GROUPS} groups");
+    assert!(groups.len() <= MOST_OUTLETS, "a layout has at most {MOST_OUTLETS} groups");
     let case = situation.case;
     let outlet = |group: &Group<'_>| {
         let raised = group.set_height + case.sill_error;

@@ -78,12 +78,15 @@ pub fn working_capacity<const N: usize>(flows: &[(f64, u32); N], groups: usize, 
     (0..groups).map(carried).sum()
 }
 
-/// Most groups that one layout can have.
+/// Most groups of a layout that is searched for.
 pub const MOST_GROUPS: usize = 3;
 
+/// Most groups that any layout can have: one that someone gave is not bound by the search.
+pub const MOST_OUTLETS: usize = 16;
+
 impl Pool {
-    fn flows(&self, level: Length) -> [(f64, u32); MOST_GROUPS] {
-        let mut flows = [(0.0, 0); MOST_GROUPS];
+    fn flows(&self, level: Length) -> [(f64, u32); MOST_OUTLETS] {
+        let mut flows = [(0.0, 0); MOST_OUTLETS];
         for (slot, outlet) in flows.iter_mut().zip(&self.outlets) {
             *slot = (self.each(outlet, level).flow.m3_per_s(), outlet.count);
         }
@@ -113,7 +116,7 @@ impl Pool {
 
     /// The most that leaves at any level; none where more depth always gives more flow.
     fn greatest(&self) -> Option<Flow> {
-        let mut flows = [(0.0, 0); MOST_GROUPS];
+        let mut flows = [(0.0, 0); MOST_OUTLETS];
         for (slot, outlet) in flows.iter_mut().zip(&self.outlets) {
             *slot = (outlet.curve.greatest_flow()?.m3_per_s() * self.discharge, outlet.count);
         }

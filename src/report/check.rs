@@ -1,0 +1,430 @@
+//! The report of `check`: the given layouts of each area side by side, what each leaves, and what fails.
+
+use serde::Serialize;
+
+use crate::device::Place;
+use crate::input::Assumed;
+use crate::review::{Checked, Failing};
+use crate::roof::layout::Group;
+use crate::roof::{Roof, Situation};
+use crate::search::{Answer, Options, Ranked};
+use crate::units::{Length, Money};
+
+use super::json;
+use super::page::{self, Block, Table};
+use super::words::{self, Words, list};
+use super::{Format, notes, plain, ranking, written};
+
+/// What a report of given layouts is made of.
+#[derive(Clone, Copy, Debug)]
+pub struct Checks<'a, 'r> {
+    /// The roof.
+    pub roof: &'r Roof,
+    /// What was asked, besides the limits.
+    pub options: &'a Options,
+    /// The defaults that were taken.
+    pub assumed: &'a [Assumed],
+    /// The areas that are reported, in order.
+    pub areas: &'a [usize],
+    /// The layouts, those of one area in the order in which they are reported.
+    pub checked: &'a [Checked<'r>],
+    /// The best layouts of the areas that a search finds, where that was asked for.
+    pub best: Option<&'a [Answer<'r>]>,
+}
+
+impl<'a, 'r> Checks<'a, 'r> {
+    fn of_area(&self, area: usize) -> impl Iterator<Item = &'a Checked<'r>> {
+        self.checked.iter().filter(move |checked| checked.given.area == area)
+    }
+
+    /// The best that a search finds for an area.
+    fn best_of(&self, area: usize) -> Option<&'a Ranked<'r>> {
+        self.best?.iter().find(|answer| answer.area == area)?.outcome.layouts().first()
+    }
+
+    fn told(&self) -> notes::Told<'a, 'r> {
+        let given = self.checked.iter().map(|checked| (checked.given.area, &checked.standing));
+        let best = self.areas.iter().filter_map(|&area| Some((area, self.best_of(area)?)));
+        notes::Told {
+            roof: self.roof,
+            options: self.options,
+            assumed: self.assumed,
+            areas: self.areas.to_vec(),
+            layouts: given.chain(best).collect(),
+            searched: self.best.is_some(),
+        }
+    }
+}
+
+pub(super) fn write(checks: &Checks<'_, '_>, format: Format, width: usize) -> String {
+    match format {
+        Format::Table => page::text(&blocks(checks), width),
+        Format::Markdown => page::markdown(&blocks(checks)),
+        Format::Json => document(checks),
+        Format::Csv => rows(checks),
+    }
+}
+
+fn blocks(checks: &Checks<'_, '_>) -> Vec<Block> {
+    let words = Words(checks.roof.system);
+    let mut blocks = vec![Block::Title(format!("{}: given layouts, primary drains blocked", checks.roof.title))];
+    blocks.extend(ranking::situation(checks.roof, words));
+    for &area in checks.areas {
+        area_blocks(checks, area, words, &mut blocks);
+    }
+    let told = checks.told();
+    blocks.push(Block::Heading("Devices".into()));
+    blocks.push(Block::List(notes::laws(&told, words)));
+    blocks.push(Block::Heading("Assumptions".into()));
+    blocks.push(Block::List(notes::assumptions(&told)));
+    blocks.push(Block::Heading("Cautions".into()));
+    blocks.push(Block::List(notes::cautions(&told)));
+    blocks
+}
+
+fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut Vec<Block>) {
+    let roof = checks.roof;
+    blocks.extend(ranking::area_head(roof, area, words));
+    let checked: Vec<_> = checks.of_area(area).collect();
+    if checked.is_empty() {
+        blocks.push(Block::Text("No layout is given here.".into()));
+        return;
+    }
+    blocks.push(Block::Table(table(checks, area, &checked, words)));
+    let standings: Vec<Ranked<'_>> = checked.iter().map(|checked| checked.standing.clone()).collect();
+    blocks.extend(ranking::marks(&standings, words).into_iter().map(Block::Text));
+    if checked.iter().any(|checked| checked.standing.cost.is_none()) {
+        blocks
+            .push(Block::Text("A layout with a device or a size that no catalog has a price for has no cost.".into()));
+    }
+    let failing = |checked: &&Checked<'_>| !checked.passes();
+    let lines: Vec<String> =
+        checked.iter().copied().filter(failing).map(|checked| fails(roof, checked, words)).collect();
+    if !lines.is_empty() {
+        blocks.push(Block::List(lines));
+    }
+    let sills: Vec<String> = checked.iter().flat_map(|checked| sills(roof, checked, words)).collect();
+    if !sills.is_empty() {
+        blocks.push(Block::Text("Where the sills stand:".into()));
+        blocks.push(Block::List(sills));
+    }
+    let loads: Vec<String> = checked.iter().filter_map(|checked| up_the_slope(roof, checked, words)).collect();
+    if !loads.is_empty() {
+        blocks.push(Block::Text("Up the slope, in the governing case:".into()));
+        blocks.push(Block::List(loads));
+    }
+    let named: Vec<_> = checked.iter().map(|checked| (checked.given.name.clone(), &checked.standing)).collect();
+    blocks.extend(ranking::beside(roof, area, &named, words));
+}
+
+fn table(checks: &Checks<'_, '_>, area: usize, checked: &[&Checked<'_>], words: Words) -> Table {
+    let best = checks.best_of(area);
+    let rows = || {
+        let given =
+            checked.iter().map(|checked| (checked.given.name.clone(), Some(checked.passes()), &checked.standing));
+        given.chain(best.map(|best| ("best found".to_string(), None, best)))
+    };
+    let column =
+        |tell: &dyn Fn(&Ranked<'_>) -> String| rows().map(|(_, _, standing)| tell(standing)).collect::<Vec<_>>();
+    let water = |standing: &Ranked<'_>| standing.states[standing.case].water;
+    let verdict = |(_, passes, _): (String, Option<bool>, &Ranked<'_>)| match passes {
+        Some(false) => "fails".to_string(),
+        Some(true) | None => "passes".to_string(),
+    };
+    let mut columns = vec![
+        ("layout".into(), false, rows().map(|(name, _, _)| name).collect::<Vec<_>>()),
+        ("groups".into(), false, column(&|standing| ranking::marked(standing, words))),
+        ("verdict".into(), false, rows().map(verdict).collect()),
+        ("cost".into(), true, column(&|standing| standing.cost.map_or("-".into(), words::money))),
+        (
+            format!("depth {}", words.small_unit()),
+            true,
+            column(&|standing| water(standing).map_or("-".into(), |water| words.bare_depth(water.depth()))),
+        ),
+        (
+            format!("load {}", words.load_unit()),
+            true,
+            column(&|standing| water(standing).map_or("-".into(), |water| words.bare_load(water.load))),
+        ),
+        (
+            "util.".into(),
+            true,
+            column(&|standing| {
+                standing.governing.map_or("overwhelmed".into(), |governing| format!("{:.3}", governing.utilisation))
+            }),
+        ),
+        ("case".into(), false, column(&|standing| checks.roof.cases[standing.case].name.clone())),
+        (
+            format!("may rise {}", words.small_unit()),
+            true,
+            rows()
+                .map(
+                    |(_, passes, standing)| {
+                        if passes == Some(false) { "-".into() } else { words.depth_down(window_left(standing)) }
+                    },
+                )
+                .collect(),
+        ),
+    ];
+    if checks.roof.cases.len() == 1 {
+        columns.retain(|(head, _, _)| head != "case");
+    }
+    if rows().all(|(_, _, standing)| standing.cost.is_none()) {
+        columns.retain(|(head, _, _)| head != "cost");
+    }
+    Table::of(columns)
+}
+
+/// How much higher the sills could be, all of them together.
+fn window_left(standing: &Ranked<'_>) -> Length {
+    standing.groups.iter().map(|placed| placed.to - placed.from).fold(Length::ZERO, Length::max)
+}
+
+/// What fails in a layout.
+fn fails(roof: &Roof, checked: &Checked<'_>, words: Words) -> String {
+    let failings: Vec<String> =
+        checked.failings.iter().map(|failing| failing_in_words(roof, checked, failing, words)).collect();
+    format!("\"{}\" fails: {}.", checked.given.name, failings.join("; "))
+}
+
+pub(super) fn failing_in_words(roof: &Roof, checked: &Checked<'_>, failing: &Failing, words: Words) -> String {
+    let area = checked.given.area;
+    let case_named = |case: usize| format!("\"{}\"", roof.cases[case].name);
+    let group = |index: usize| words.name(&checked.given.groups[index].size);
+    match *failing {
+        Failing::Limit { case } => {
+            let situation = roof.situation(area, case);
+            match checked.standing.states[case].water {
+                None => format!(
+                    "it does not carry {} in {}: its tables are at their end",
+                    words.flow(situation.demand),
+                    case_named(case)
+                ),
+                Some(water) => limit_passed(&situation, &water, &case_named(case), words),
+            }
+        }
+        Failing::Freeboard { case, kept, asked } => {
+            format!("{} of freeboard in {}, {} asked", words.depth(kept), case_named(case), words.size(asked))
+        }
+        Failing::Edge { used, edge } => {
+            format!("its openings and gaps take {} of edge, there are {}", words.long(used), words.long(edge))
+        }
+        Failing::RoofAtWall { group: index, roof: at_wall } => {
+            let sill = checked.given.groups[index].set_height;
+            format!(
+                "{} at {} above the low point lies {} under the roof at the wall, which stands {} above it; {} above that roof \
+                 would be {} above the low point",
+                group(index),
+                words.size(sill),
+                words.size(at_wall - sill),
+                words.size(at_wall),
+                words.size(sill),
+                words.size(at_wall + sill)
+            )
+        }
+        Failing::Parapet { group: index, top, parapet } => format!(
+            "the top of {} at {} is not below the parapet's top at {}",
+            group(index),
+            words.size(top),
+            words.size(parapet)
+        ),
+    }
+}
+
+fn limit_passed(situation: &Situation<'_>, water: &crate::roof::layout::Water, case: &str, words: Words) -> String {
+    use crate::roof::LimitKind::{Depth, Load, Parapet};
+    let limit = words.limit(water.governing.limit, situation.limits, situation.parapet);
+    match water.governing.limit {
+        Load => format!("load {} in {case}, the limit is {limit}", words.load(water.load)),
+        Depth => format!("depth {} in {case}, the limit is {limit}", words.depth(water.depth())),
+        Parapet => format!("water up to {} in {case}, {limit}", words.depth(water.level)),
+    }
+}
+
+/// Each sill above everything that the area gives a height for; nothing where that is the low point alone.
+fn sills(roof: &Roof, checked: &Checked<'_>, words: Words) -> Vec<String> {
+    let area = &roof.areas[checked.given.area];
+    let told = area.surface.low_point.is_some() || area.roof_at_wall > Length::ZERO;
+    let one = |group: &Group<'_>| {
+        let mut parts = vec![format!("{} above the low point", words.size(group.set_height))];
+        if let Some(low_point) = area.surface.low_point {
+            parts.push(format!("elevation {}", words.elevation(low_point + group.set_height)));
+        }
+        if area.roof_at_wall > Length::ZERO && group.size.place == Place::Edge {
+            let above = group.set_height - area.roof_at_wall;
+            let side = if above < Length::ZERO { "under" } else { "above" };
+            let distance = if above < Length::ZERO { -above } else { above };
+            parts.push(format!("{} {side} the roof at the wall", words.size(distance)));
+        }
+        format!("{}: {} at {}", checked.given.name, words.name(group.size), list(&parts))
+    };
+    if told { checked.given.groups().iter().map(one).collect() } else { Vec::new() }
+}
+
+/// How the load falls off up the slope, and how far water stands.
+fn up_the_slope(roof: &Roof, checked: &Checked<'_>, words: Words) -> Option<String> {
+    let area = &roof.areas[checked.given.area];
+    let rise = area.surface.rise?;
+    let water = checked.standing.states[checked.standing.case].water?;
+    let ponding = area.ponding_head.unwrap_or(Length::ZERO);
+    let load = |at: Length| {
+        let depth = rise.depth(water.level, at);
+        words.load(if depth > Length::ZERO { crate::roof::load_of(depth + ponding) } else { crate::units::Load::ZERO })
+    };
+    let reach = rise.extent(water.level);
+    let far = if reach < rise.distance {
+        format!(
+            "water stands up to {} from it, the rest of {} to the wall is dry",
+            words.long(reach),
+            words.long(rise.distance)
+        )
+    } else {
+        format!("{} at the wall, {} from it", load(rise.distance), words.long(rise.distance))
+    };
+    Some(format!(
+        "{}: {} at the low point, {} half way to where the water ends; {far}",
+        checked.given.name,
+        load(Length::ZERO),
+        load(reach * 0.5)
+    ))
+}
+
+fn rows(checks: &Checks<'_, '_>) -> String {
+    let words = Words(checks.roof.system);
+    let (small, load) = (words.small_unit(), words.load_unit().to_lowercase());
+    let head = [
+        "area".to_string(),
+        "layout".into(),
+        "passes".into(),
+        "cost".into(),
+        "device".into(),
+        "kind".into(),
+        format!("width_{small}"),
+        format!("height_{small}"),
+        format!("diameter_{small}"),
+        "count".into(),
+        format!("set_height_{small}"),
+        format!("set_height_to_{small}"),
+        "governing_case".into(),
+        format!("water_depth_{small}"),
+        format!("load_{load}"),
+        "utilisation".into(),
+        "why".into(),
+    ];
+    let mut rows = vec![head.to_vec()];
+    let length = |length: Option<Length>| length.map_or(String::new(), |length| plain(words.small(length), 4));
+    for checked in checks.checked {
+        let standing = &checked.standing;
+        let water = standing.states[standing.case].water;
+        let why: Vec<String> =
+            checked.failings.iter().map(|failing| failing_in_words(checks.roof, checked, failing, words)).collect();
+        for placed in &standing.groups {
+            let device = &placed.group.size.device;
+            let round = device.kind() == crate::device::Kind::PipeScupper;
+            rows.push(vec![
+                checks.roof.areas[checked.given.area].name.clone(),
+                checked.given.name.clone(),
+                if checked.passes() { "yes" } else { "no" }.into(),
+                standing.cost.map_or(String::new(), |cost| plain(cost.amount(), 2)),
+                placed.group.size.tag.to_string(),
+                device.kind().to_string(),
+                length(device.width().filter(|_| !round)),
+                length(device.height().filter(|_| !round)),
+                length(device.diameter()),
+                placed.group.count.to_string(),
+                length(Some(placed.group.set_height)),
+                words.depth_down(placed.to).replace(',', ""),
+                checks.roof.cases[standing.case].name.clone(),
+                length(water.map(|water| water.depth())),
+                water.map_or(String::new(), |water| plain(words.in_load_unit(water.load), 4)),
+                standing.governing.map_or("overwhelmed".into(), |governing| plain(governing.utilisation, 4)),
+                why.join("; "),
+            ]);
+        }
+    }
+    written(&rows)
+}
+
+#[derive(Serialize)]
+struct Document<'a> {
+    format: &'static str,
+    title: &'a str,
+    areas: Vec<OfArea<'a>>,
+    assumptions: Vec<String>,
+    cautions: Vec<String>,
+}
+
+#[derive(Serialize)]
+struct OfArea<'a> {
+    name: &'a str,
+    demand_m3_s: f64,
+    layouts: Vec<OfLayout<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    best: Option<OfBest<'a>>,
+}
+
+#[derive(Serialize)]
+struct OfLayout<'a> {
+    name: &'a str,
+    passes: bool,
+    cost: Option<f64>,
+    groups: Vec<json::Group<'a>>,
+    governing: json::Governing<'a>,
+    cases: Vec<json::Case<'a>>,
+    sills_could_rise_m: Option<f64>,
+    fails: Vec<String>,
+}
+
+#[derive(Serialize)]
+struct OfBest<'a> {
+    cost: Option<f64>,
+    groups: Vec<json::Group<'a>>,
+    governing: json::Governing<'a>,
+    cases: Vec<json::Case<'a>>,
+}
+
+fn document<'a>(checks: &Checks<'a, '_>) -> String {
+    let words = Words(checks.roof.system);
+    let roof = checks.roof;
+    let layout = |checked: &'a Checked<'_>| {
+        let (area, standing) = (checked.given.area, &checked.standing);
+        let failing = |failing| failing_in_words(roof, checked, failing, words);
+        OfLayout {
+            name: &checked.given.name,
+            passes: checked.passes(),
+            cost: standing.cost.map(Money::amount),
+            groups: json::groups(roof, area, standing),
+            governing: json::governing(roof, standing),
+            cases: json::cases(roof, area, standing),
+            sills_could_rise_m: checked.passes().then(|| window_left(standing).m()),
+            fails: checked.failings.iter().map(failing).collect(),
+        }
+    };
+    let best = |area: usize, best: &'a Ranked<'_>| OfBest {
+        cost: best.cost.map(Money::amount),
+        groups: json::groups(roof, area, best),
+        governing: json::governing(roof, best),
+        cases: json::cases(roof, area, best),
+    };
+    let told = checks.told();
+    let mut by_area: Vec<Vec<OfLayout<'a>>> = roof.areas.iter().map(|_| Vec::new()).collect();
+    for checked in checks.checked {
+        by_area[checked.given.area].push(layout(checked));
+    }
+    let area = |&area: &usize| OfArea {
+        name: &roof.areas[area].name,
+        demand_m3_s: roof.demands[area].m3_per_s(),
+        layouts: std::mem::take(&mut by_area[area]),
+        best: checks.best_of(area).map(|found| best(area, found)),
+    };
+    let document = Document {
+        format: "brimline check 1",
+        title: &roof.title,
+        areas: checks.areas.iter().map(area).collect(),
+        assumptions: notes::assumptions(&told),
+        cautions: notes::cautions(&told),
+    };
+    let mut text = serde_json::to_string_pretty(&document).unwrap_or_default();
+    text.push('\n');
+    text
+}

@@ -1,0 +1,335 @@
+//! Given layouts: published and hand-worked ones, against an independent formula, from TOML and from a schedule, and faults.
+
+use std::path::PathBuf;
+use std::process::{Command, Output};
+
+use approx::assert_relative_eq;
+use serde_json::Value;
+
+/// A folder with the files of a project.
+struct Folder(PathBuf);
+
+impl Folder {
+    fn new(name: &str) -> Self {
+        let path = PathBuf::from(env!("CARGO_TARGET_TMPDIR")).join("check").join(name);
+        std::fs::create_dir_all(&path).expect("a folder");
+        Self(path).with("devices.toml", CATALOG)
+    }
+
+    fn with(self, name: &str, text: &str) -> Self {
+        std::fs::write(self.0.join(name), text).expect("writable");
+        self
+    }
+
+    fn run(&self, arguments: &[&str]) -> Output {
+        let mut command = Command::new(snapbox::cmd::cargo_bin!("brimline"));
+        command.args(arguments).current_dir(&self.0).env("NO_COLOR", "1").output().expect("starts")
+    }
+
+    fn check(&self, code: i32) -> Value {
+        let output = self.run(&["check", "roof.toml", "--format", "json"]);
+        assert_eq!(output.status.code(), Some(code), "{}", String::from_utf8_lossy(&output.stderr));
+        serde_json::from_slice(&output.stdout).expect("JSON")
+    }
+
+    /// The messages of a check whose input cannot be used.
+    fn refused(&self) -> String {
+        let output = self.run(&["check", "roof.toml"]);
+        assert_eq!(output.status.code(), Some(2), "{}", String::from_utf8_lossy(&output.stdout));
+        assert!(output.stdout.is_empty());
+        String::from_utf8(output.stderr).expect("UTF-8")
+    }
+}
+
+const CATALOG: &str = r#"
+[[device]]
+tag = "RS"
+kind = "closed scupper"
+width = { from = "6 in", to = "24 in", step = "2 in" }
+height = ["4 in", "6 in"]
+price = { each = 420, per_width = "15 / in" }
+[[device]]
+tag = "NS"
+kind = "open scupper"
+width = { from = "6 in", to = "24 in", step = "2 in" }
+price = { each = 500, per_width = "20 / in" }
+[[device]]
+tag = "OD"
+kind = "rated"
+place = "interior"
+rating = "drain.csv"
+price = { each = 1650 }
+"#;
+
+const DRAIN: &str = "head_in,flow_gpm\n1,80\n2,170\n3,180\n";
+
+fn project(area: &str, layouts: &str) -> String {
+    format!(
+        r#"title = "given"
+units = "us"
+catalogs = ["devices.toml"]
+[storm]
+intensity = "6 in/h"
+[limit]
+load = "30 psf"
+[[case]]
+name = "as designed"
+[[case]]
+name = "one blocked"
+blocked = 1
+{area}
+{layouts}"#
+    )
+}
+
+fn layout<'v>(document: &'v Value, area: usize, name: &str) -> &'v Value {
+    let layouts = document["areas"][area]["layouts"].as_array().expect("layouts");
+    layouts.iter().find(|layout| layout["name"] == name).expect("the layout")
+}
+
+/// Worked examples with one kind of opening: demand in gpm, openings, width, sill, and the depth in inches that is told.
+///
+/// - Half of 179.4 gpm through 6 in of channel scupper 2 in up: 3 in of head, 5 in of water, 26 psf. Source: worked example of
+///   the ASCE 7 commentary as a rain-load sheet quotes it.
+/// - 12 in of open scupper under 3 in of head: 2.9 x 12 x 3^1.5 = 180.8 gpm. Source: the practice form, by hand.
+/// - 24 in: 2.9 x 24 x 2^1.5 = 196.9 gpm. By hand.
+#[test]
+fn published_and_hand_worked_layouts() {
+    for (gpm, count, width, sill, depth) in
+        [(180.826, 2, 6.0, 2.0, 5.0), (180.826, 1, 12.0, 1.0, 4.0), (196.856, 1, 24.0, 2.5, 4.5)]
+    {
+        // One gpm is 231 in3 a minute: an area whose 6 in/h make the demand.
+        let ft2 = gpm * 231.0 * 60.0 / 6.0 / 144.0;
+        let area = format!("[[area]]\nname = \"a\"\narea = \"{ft2} ft2\"");
+        let groups = format!(
+            "[[layout]]\nname = \"x\"\narea = \"a\"\ngroups = [{{ device = \"NS\", width = \"{width} in\", count = {count}, \
+             set_height = \"{sill} in\" }}]"
+        );
+        let folder = Folder::new("published").with("drain.csv", DRAIN).with("roof.toml", &project(&area, &groups));
+        let output = folder.run(&["check", "roof.toml", "--format", "json"]);
+        let document: Value = serde_json::from_slice(&output.stdout).expect("JSON");
+        let designed = &layout(&document, 0, "x")["cases"][0];
+        let inches = |key: &str| designed[key].as_f64().expect("a number") / 0.0254;
+        assert_relative_eq!(inches("water_depth_m"), depth, max_relative = 1e-4);
+        assert_relative_eq!(
+            designed["load_pa"].as_f64().expect("a load") / 47.880_26,
+            depth * 5.2,
+            max_relative = 1e-4
+        );
+    }
+}
+
+/// A canopy 20 ft deep whose low point is away from the wall, 1/4 in/ft: the roof at the wall stands 5 in up. A sill 2 in above
+/// that roof stands 7 in above the low point; one that is said to stand 2 in up would lie 3 in under the roof. By hand.
+#[test]
+fn a_sill_above_the_roof_at_the_wall_stands_higher_above_the_low_point() {
+    let area = "[[area]]\nname = \"a\"\narea = \"900 ft2\"\nslope = \"0.25 in/ft\"\ndistance = \"20 ft\"\nlow_point = \"102.40 ft\"\nlimit = { load = \"60 psf\" }";
+    let at = |name: &str, height: &str| {
+        format!(
+            "[[layout]]\nname = \"{name}\"\narea = \"a\"\ngroups = [{{ device = \"NS\", width = \"12 in\", count = 2, set_height = \"{height}\" }}]\n"
+        )
+    };
+    let layouts =
+        at("on the roof", "2 in above roof at wall") + &at("on paper", "2 in") + &at("surveyed", "elevation 102.90 ft");
+    let folder = Folder::new("sloped").with("drain.csv", DRAIN).with("roof.toml", &project(area, &layouts));
+    let document = folder.check(1);
+    let height =
+        |name: &str| layout(&document, 0, name)["groups"][0]["set_height_m"].as_f64().expect("a height") / 0.0254;
+    assert_relative_eq!(height("on the roof"), 7.0, max_relative = 1e-9);
+    assert_relative_eq!(height("surveyed"), 6.0, max_relative = 1e-6);
+    assert_eq!(layout(&document, 0, "on the roof")["passes"], true);
+    assert_eq!(layout(&document, 0, "on paper")["passes"], false);
+    let told = layout(&document, 0, "on paper")["fails"][0].as_str().expect("a reason");
+    assert!(told.contains("3 in under the roof at the wall") && told.contains("7 in above the low point"), "{told}");
+    let table = String::from_utf8(folder.run(&["check", "roof.toml"]).stdout).expect("UTF-8");
+    let table = table.split_whitespace().collect::<Vec<_>>().join(" ");
+    assert!(table.contains("elevation 102.98 ft and 2 in above the roof at the wall"), "{table}");
+}
+
+/// Levels of random layouts against bisection on the practice form, written here from the formula: 2.9 b H^1.5, and for a
+/// closed opening the lesser of that and 4.3 b h sqrt(H - h/2) once H > h (gpm, inches).
+#[test]
+fn levels_agree_with_a_formula_of_their_own() {
+    let mut state = 7_u64;
+    let mut dice = |most: u64| {
+        state = state.wrapping_mul(6_364_136_223_846_793_005).wrapping_add(1_442_695_040_888_963_407);
+        (state >> 33) % (most + 1)
+    };
+    let mut layouts = String::new();
+    let mut expected = Vec::new();
+    for number in 0..60 {
+        let groups: Vec<(f64, Option<f64>, u64, f64)> = (0..=dice(4))
+            .map(|_| {
+                let height = (dice(1) == 0).then(|| 3.0 + dice(5) as f64);
+                (5.0 + dice(20) as f64, height, 1 + dice(3), 1.0 + dice(6) as f64 * 0.5)
+            })
+            .collect();
+        let written: Vec<String> = groups
+            .iter()
+            .map(|(width, height, count, sill)| {
+                let kind = height.map_or("kind = \"open scupper\"".to_string(), |height| {
+                    format!("kind = \"closed scupper\", height = \"{height} in\"")
+                });
+                format!("{{ {kind}, width = \"{width} in\", count = {count}, set_height = \"{sill} in\" }}")
+            })
+            .collect();
+        layouts += &format!("[[layout]]\nname = \"{number}\"\narea = \"a\"\ngroups = [{}]\n", written.join(", "));
+        let one = |head: f64, width: f64, height: Option<f64>| {
+            let over = head.max(0.0);
+            let weir = 2.9 * width * over * over.sqrt();
+            match height {
+                Some(height) if head > height => weir.min(4.3 * width * height * (head - height / 2.0).sqrt()),
+                _ => weir,
+            }
+        };
+        let flow = |level: f64| -> f64 {
+            groups.iter().map(|&(width, height, count, sill)| count as f64 * one(level - sill, width, height)).sum()
+        };
+        let demand = 5200.0 * 144.0 * 6.0 / 60.0 / 231.0;
+        let (mut low, mut high) = (0.0, 1000.0);
+        for _ in 0..200 {
+            let middle = 0.5 * (low + high);
+            if flow(middle) < demand { low = middle } else { high = middle }
+        }
+        expected.push(high);
+    }
+    let area = "[[area]]\nname = \"a\"\narea = \"5200 ft2\"";
+    let folder = Folder::new("random").with("drain.csv", DRAIN).with("roof.toml", &project(area, &layouts));
+    let document = folder.check(1);
+    for (number, level) in expected.iter().enumerate() {
+        let case = &layout(&document, 0, &number.to_string())["cases"][0];
+        assert_relative_eq!(case["water_depth_m"].as_f64().expect("a depth") / 0.0254, *level, max_relative = 1e-6);
+        let passes = *level <= 30.0 / 5.2;
+        assert_eq!(case["load_pa"].as_f64().expect("a load") <= 30.0 * 47.880_26, passes, "layout {number}");
+    }
+}
+
+const SURVEY_AREAS: &str = "[[area]]\nname = \"bay 1, north\"\narea = \"5200 ft2\"\nlow_point = \"40 ft\"\n[[area]]\nname = \"bay 2\"\narea = \"3000 ft2\"\n";
+
+/// One survey, typed as layouts and read from a schedule, is one survey; so it is with elevations for heights.
+#[test]
+fn a_schedule_says_what_layouts_say() {
+    let typed = r#"
+[[layout]]
+name = "as found"
+area = "bay 1, north"
+groups = [{ device = "RS", width = "13 in", height = "6 in", count = 2, set_height = "3 in" },
+          { device = "OD", count = 1, set_height = "1.5 in" }]
+[[layout]]
+name = "as found"
+area = "bay 2"
+groups = [{ device = "NS", width = "12 in", count = 3, set_height = "2 in" }]
+"#;
+    let rows = "area,layout,device,width_in,height_in,count,set_height_in\n\
+                \"bay 1, north\",as found,RS,13,6,2,3\n\
+                # the drain by the hatch\n\
+                \"bay 1, north\",as found,OD,,,1,1.5\n\
+                bay 2,as found,NS,12,,3,2\n";
+    let schedule = project(SURVEY_AREAS, "").replace("[storm]", "schedule = \"survey.csv\"\n[storm]");
+    let folder = Folder::new("survey").with("drain.csv", DRAIN).with("roof.toml", &project(SURVEY_AREAS, typed));
+    let from_layouts = folder.run(&["check", "roof.toml", "--format", "json"]);
+    let folder = folder.with("survey.csv", rows).with("roof.toml", &schedule);
+    let from_rows = folder.run(&["check", "roof.toml", "--format", "json"]);
+    assert_eq!(String::from_utf8_lossy(&from_layouts.stdout), String::from_utf8_lossy(&from_rows.stdout));
+    assert!(from_layouts.stderr.is_empty() && from_rows.stderr.is_empty());
+    // 40 ft and 3 in is 40.25 ft; the second area has no datum and keeps its heights.
+    let elevations = "area,layout,device,width_in,height_in,count,sill_elevation_ft\n\
+                      \"bay 1, north\",as found,RS,13,6,2,40.25\n\
+                      \"bay 1, north\",as found,OD,,,1,40.125\n";
+    let one = "area,layout,device,width_in,count,set_height_in\nbay 2,as found,NS,12,3,2\n";
+    let two_files = schedule.replace("\"survey.csv\"", "[\"survey.csv\", \"bay-2.csv\"]");
+    let folder = folder.with("survey.csv", elevations).with("bay-2.csv", one).with("roof.toml", &two_files);
+    let from_elevations = folder.run(&["check", "roof.toml", "--format", "json"]);
+    assert_eq!(String::from_utf8_lossy(&from_layouts.stdout), String::from_utf8_lossy(&from_elevations.stdout));
+}
+
+/// Each way to be wrong, all of them told in one run, each with its place.
+#[test]
+fn layouts_at_fault_are_told_with_their_places() {
+    let layouts = r#"
+[[layout]]
+name = "unknown area"
+area = "bay 3"
+groups = [{ device = "RS", width = "12 in", height = "6 in", count = 2, set_height = "3 in" }]
+[[layout]]
+name = "unknown device"
+area = "bay 2"
+groups = [{ device = "RX", count = 2, set_height = "3 in" }]
+[[layout]]
+name = "which size"
+area = "bay 2"
+groups = [{ device = "RS", width = "12 in", count = 2, set_height = "3 in" }]
+[[layout]]
+name = "no datum"
+area = "bay 2"
+groups = [{ device = "NS", width = "12 in", count = 2, set_height = "elevation 40.25 ft" },
+          { device = "NS", width = "12 in", count = 0, set_height = "2 in above the drain" },
+          { device = "OD", width = "12 in", count = 1, set_height = "2 in" },
+          { kind = "closed scupper", width = ["12 in", "14 in"], height = "4 in", count = 1, set_height = "2 in" },
+          { count = 1, set_height = 2 }]
+"#;
+    let folder = Folder::new("faults").with("drain.csv", DRAIN).with("roof.toml", &project(SURVEY_AREAS, layouts));
+    let told = folder.refused();
+    for (title, place) in [
+        ("there is no area `bay 3`", ":24:"),
+        ("no catalog has a device `RX`", ":29:"),
+        ("`RS` comes in more than one size", ":33:"),
+        ("`set_height` is an elevation, and the area has no `low_point`", ":37:"),
+        ("`count` must be a whole number from 1 to 10000", ":38:"),
+        ("`set_height`: `the drain` is nothing that a height counts from", ":38:"),
+        ("`OD`, of kind \"rated\", does not come with these dimensions", ":39:"),
+        ("a group is of one size", ":40:"),
+        ("a group has neither `device` nor `kind`", ":41:"),
+        ("`set_height`: `2` has no unit", ":41:"),
+    ] {
+        let at = told.find(title).unwrap_or_else(|| panic!("not told: {title}\n{told}"));
+        assert!(told[at..].lines().nth(1).is_some_and(|line| line.contains(place)), "{title} not at {place}:\n{told}");
+    }
+    assert!(told.contains("did you mean \"RS\"?") || told.contains("did you mean \"bay 2\"?"), "{told}");
+}
+
+#[test]
+fn a_schedule_at_fault_is_told_row_by_row() {
+    let roof = project(SURVEY_AREAS, "").replace("[storm]", "schedule = \"survey.csv\"\n[storm]");
+    let folder = Folder::new("bad-schedule").with("drain.csv", DRAIN).with("roof.toml", &roof);
+    let rows = "area,layout,device,width_in,count,sill_elevation_ft\n\
+                bay 1 north,a,NS,12,2,40.25\n\
+                \"bay 1, north\",a,NS,12,two,40.25\n\
+                \"bay 1, north\",a,NS,-12,2,40.25\n\
+                \"bay 1, north\",a,NS,12,2,39\n\
+                bay 2,a,NS,12,2,40.25\n\
+                bay 2,a,NS,12,2\n";
+    let told = folder.with("survey.csv", rows).refused();
+    for (title, line) in [
+        ("there is no area `bay 1 north`", 2),
+        ("`two` is not a whole number from 1 to 10000", 3),
+        ("`-12`: a number above zero belongs here", 4),
+        ("a sill lies under the low point", 5),
+        ("`bay 2` has no elevation of its low point", 6),
+        ("this row has 5 cells; the head has 6", 7),
+    ] {
+        assert!(told.contains(title) && told.contains(&format!("survey.csv:{line}:")), "{title}, line {line}:\n{told}");
+    }
+    let folder = Folder::new("bad-schedule").with("roof.toml", &roof).with("survey.csv", "area,layout,width\n");
+    let told = folder.refused();
+    assert!(told.contains("unknown column `width`") && told.contains("a column's head has the unit: area,"), "{told}");
+}
+
+#[test]
+fn nothing_given_and_names_that_are_not_there() {
+    let folder = Folder::new("none").with("drain.csv", DRAIN);
+    let searched = project("[[area]]\nname = \"a\"\narea = \"900 ft2\"\nset_height = \"2 in\"", "");
+    let folder = folder.with("roof.toml", &searched);
+    assert!(folder.refused().contains("the project gives no layout to be checked"));
+    let layout = "[[layout]]\nname = \"as drawn\"\narea = \"a\"\ngroups = [{ device = \"NS\", width = \"12 in\", count = 2, set_height = \"2 in\" }]";
+    // A survey needs no set heights to search; a search does.
+    let folder = folder.with("roof.toml", &project("[[area]]\nname = \"a\"\narea = \"900 ft2\"", layout));
+    assert_eq!(folder.check(0)["areas"][0]["layouts"][0]["passes"], true);
+    for command in [&["size", "roof.toml"][..], &["check", "roof.toml", "--beside-best"], &["tradeoff", "roof.toml"]] {
+        let output = folder.run(command);
+        assert_eq!(output.status.code(), Some(2), "{command:?}");
+        assert!(String::from_utf8_lossy(&output.stderr).contains("no set height is given for `a`"), "{command:?}");
+    }
+    let output = folder.run(&["check", "roof.toml", "--layout", "as drwan"]);
+    assert!(String::from_utf8_lossy(&output.stderr).contains("did you mean `as drawn`?"));
+}
