@@ -12,8 +12,10 @@ use crate::report::Format;
 use crate::roof::Roof;
 use crate::units::System;
 
+mod backsolve;
 mod catalog;
 mod check;
+mod given;
 mod rate;
 mod size;
 mod start;
@@ -41,6 +43,7 @@ struct Cli {
 enum Command {
     Size(size::Args),
     Check(check::Args),
+    Backsolve(backsolve::Args),
     Rate(Box<rate::Args>),
     Catalog(catalog::Args),
     Start(start::Args),
@@ -127,6 +130,7 @@ pub fn run() -> ExitCode {
     let done = match &cli.command {
         Command::Size(args) => size::run(args),
         Command::Check(args) => check::run(args),
+        Command::Backsolve(args) => backsolve::run(args),
         Command::Rate(args) => rate::run(args),
         Command::Catalog(args) => catalog::run(args),
         Command::Start(args) => start::run(args),

@@ -9,6 +9,7 @@ use crate::roof::Roof;
 use crate::search::{Answer, Opened, Opening, Options, PlanAsked, PlanAt, Plans, Structure, UnderLaw};
 use crate::units::{Flow, Length, Load, System};
 
+mod backsolve;
 mod check;
 mod contents;
 mod cures;
@@ -116,6 +117,11 @@ pub fn check(checks: &Checks<'_, '_>, format: Format, width: usize) -> String {
     check::write(checks, format, width)
 }
 
+/// Writes what given layouts could take.
+pub fn backsolve(backsolved: &Backsolved<'_, '_>, format: Format, width: usize) -> String {
+    backsolve::write(backsolved, format, width)
+}
+
 /// What a report of one device's flows is made of.
 #[derive(Clone, Debug)]
 pub struct Rated<'a> {
@@ -137,6 +143,7 @@ pub struct Rated<'a> {
     pub system: System,
 }
 
+pub use backsolve::Backsolved;
 pub use check::Checks;
 pub use rate::head_for;
 pub use structure::Strengthened;

@@ -13,6 +13,10 @@ use crate::rules;
 use crate::search::{self, Options, Ranked};
 use crate::units::Length;
 
+mod backsolve;
+
+pub use backsolve::{Solved, Unknown, WIDEST, backsolve};
+
 /// A given layout and how it stands.
 #[derive(Clone, Debug)]
 pub struct Checked<'r> {

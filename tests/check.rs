@@ -333,3 +333,110 @@ fn nothing_given_and_names_that_are_not_there() {
     let output = folder.run(&["check", "roof.toml", "--layout", "as drwan"]);
     assert!(String::from_utf8_lossy(&output.stderr).contains("did you mean `as drawn`?"));
 }
+
+/// What is solved for, put back into the files: at the value the layout passes, a thousandth beyond it fails.
+#[test]
+fn what_is_solved_for_just_holds() {
+    // Rain, ft2, widths, sills, counts, load limit; a mixed layout with rated drains, one case blocked.
+    let file = |rain: f64, ft2: f64, wider: f64, lift: f64, counts: [u32; 2], psf: f64, blocked: u32| {
+        format!(
+            r#"title = "given"
+units = "us"
+catalogs = ["devices.toml"]
+storm = {{ intensity = "{rain} in/h" }}
+case = [{{ name = "as designed", limit = {{ load = "{psf} psf" }} }}, {{ name = "one blocked", blocked = {blocked}, limit = {{ load = "{} psf" }} }}]
+area = [{{ name = "a", area = "{ft2} ft2" }}]
+[[layout]]
+name = "x"
+area = "a"
+groups = [{{ device = "NS", width = "{} in", count = {}, set_height = "{} in" }},
+          {{ kind = "closed scupper", width = "{} in", height = "4 in", count = {}, set_height = "{} in" }}]
+"#,
+            psf + 5.0,
+            9.0 + wider,
+            counts[0],
+            2.0 + lift,
+            11.0 + wider,
+            counts[1],
+            2.5 + lift
+        )
+    };
+    let passes = |text: &str| {
+        let folder = Folder::new("solved").with("drain.csv", DRAIN).with("roof.toml", text);
+        let output = folder.run(&["check", "roof.toml"]);
+        assert!(output.stderr.is_empty(), "{}", String::from_utf8_lossy(&output.stderr));
+        output.status.code() == Some(0)
+    };
+    for (rain, psf) in [(5.0, 30.0), (9.0, 20.0)] {
+        let given = |by: f64| file(rain * by, 4000.0, 0.0, 0.0, [3, 2], psf, 1);
+        let folder = Folder::new("solve").with("drain.csv", DRAIN).with("roof.toml", &given(1.0));
+        let output = folder.run(&["backsolve", "roof.toml", "--format", "json"]);
+        assert_eq!(output.status.code(), Some(0));
+        let document: Value = serde_json::from_slice(&output.stdout).expect("JSON");
+        let solved = &document["layouts"][0];
+        let number = |key: &str| solved[key].as_f64().unwrap_or_else(|| panic!("{key}: {solved}"));
+        let most = number("intensity_most_m_s") / (rain * 0.0254 / 3600.0);
+        assert!(passes(&given(most * 0.9999)) && !passes(&given(most * 1.0001)), "rain times {most}");
+        let ft2 = number("area_most_m2") / (0.3048 * 0.3048);
+        let roof = |ft2: f64| file(rain, ft2, 0.0, 0.0, [3, 2], psf, 1);
+        assert!(passes(&roof(ft2 * 0.9999)) && !passes(&roof(ft2 * 1.0001)), "{ft2} ft2");
+        let lift = number("set_heights_up_m") / 0.0254;
+        let sills = |lift: f64| file(rain, 4000.0, 0.0, lift, [3, 2], psf, 1);
+        assert!(passes(&sills(lift - 0.001)) && !passes(&sills(lift + 0.001)), "lifted by {lift} in");
+        let wider = number("widths_change_m") / 0.0254;
+        let widths = |wider: f64| file(rain, 4000.0, wider, 0.0, [3, 2], psf, 1);
+        assert!(passes(&widths(wider + 0.001)) && !passes(&widths(wider - 0.001)), "{wider} in wider");
+        let by = number("load_limits_change_pa") / 47.880_26;
+        let limits = |by: f64| file(rain, 4000.0, 0.0, 0.0, [3, 2], psf + by, 1);
+        assert!(passes(&limits(by + 0.001)) && !passes(&limits(by - 0.001)), "limits {by} psf higher");
+        for group in 0..2 {
+            let Some(least) = solved["counts_least"][group].as_u64().map(|least| least as u32) else { continue };
+            let counts = |count: u32| {
+                let mut counts = [3, 2];
+                counts[group] = count;
+                file(rain, 4000.0, 0.0, 0.0, counts, psf, 1)
+            };
+            assert!(least == 0 || passes(&counts(least)), "{least} of group {group}");
+            assert!(least <= 1 || !passes(&counts(least - 1)), "{least} of group {group}");
+        }
+        if let Some(more) = solved["blocked_more"].as_u64() {
+            // Both cases are blocked by so many more: the first by `more`, the second by one more than that.
+            let more = more as u32;
+            let blocked = |more: u32| {
+                file(rain, 4000.0, 0.0, 0.0, [3, 2], psf, 1 + more).replacen(
+                    "\"as designed\",",
+                    &format!("\"as designed\", blocked = {more},"),
+                    1,
+                )
+            };
+            assert!(passes(&blocked(more)) && !passes(&blocked(more + 1)), "{more} more blocked");
+        }
+    }
+}
+
+/// 12 in of open scupper 2 in up under 5 in of water: 2.9 x 12 x 3^1.5 = 180.83 gpm. On 3,000 ft2 at 0.010390 gpm for each ft2
+/// and in/h that is 5.80 in/h; for 100 gpm the sill may stand 5 - (100/34.8)^(2/3) = 2.979 in up. By hand.
+#[test]
+fn one_opening_backwards_by_hand() {
+    let roof = |ft2: f64| {
+        format!(
+            "title = \"one\"\nunits = \"us\"\ncatalogs = [\"devices.toml\"]\nstorm = {{ intensity = \"4 in/h\" }}\nlimit = {{ load = \"26 psf\" }}\n\
+             area = [{{ name = \"a\", area = \"{ft2} ft2\" }}]\n[[layout]]\nname = \"x\"\narea = \"a\"\n\
+             groups = [{{ device = \"NS\", width = \"12 in\", count = 1, set_height = \"2 in\" }}]\n"
+        )
+    };
+    let solved = |ft2: f64, unknown: &str, key: &str| {
+        let folder = Folder::new("by-hand").with("drain.csv", DRAIN).with("roof.toml", &roof(ft2));
+        let output = folder.run(&["backsolve", "roof.toml", "--layout", "x", "--for", unknown, "--format", "json"]);
+        let document: Value = serde_json::from_slice(&output.stdout).expect("JSON");
+        document["layouts"][0][key].as_f64().expect("a number")
+    };
+    let gpm_per_ft2 = 144.0 / 231.0 / 60.0;
+    assert_relative_eq!(
+        solved(3000.0, "rain", "intensity_most_m_s") / (0.0254 / 3600.0),
+        180.826 / 3000.0 / gpm_per_ft2,
+        max_relative = 1e-5
+    );
+    let up = solved(100.0 / 4.0 / gpm_per_ft2, "set-height", "set_heights_up_m") / 0.0254;
+    assert_relative_eq!(up, 0.979, max_relative = 1e-3);
+}

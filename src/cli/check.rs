@@ -6,6 +6,7 @@ use crate::report::{self, Checks};
 use crate::review;
 use crate::search;
 
+use super::given::Chosen;
 use super::{Failure, OfProject};
 
 /// Hold given layouts against the limits of their areas: levels, loads, what fails, and how much higher the sills could be.
@@ -16,9 +17,8 @@ use super::{Failure, OfProject};
 pub(super) struct Args {
     #[command(flatten)]
     of: OfProject,
-    /// Only this layout; may be given several times.
-    #[arg(long, value_name = "NAME")]
-    layout: Vec<String>,
+    #[command(flatten)]
+    given: Chosen,
     /// Set the best layout that a search finds beside the given ones.
     #[arg(long)]
     beside_best: bool,
@@ -26,28 +26,7 @@ pub(super) struct Args {
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let (project, areas) = args.of.read()?;
-    let mut given = project.layouts.clone();
-    if given.is_empty() {
-        let help = "give a [[layout]] with name, area and groups, or name a schedule: schedule = \"survey.csv\"";
-        return Err(Failure::said("the project gives no layout to be checked", help));
-    }
-    for wanted in &args.layout {
-        if !given.iter().any(|layout| layout.name == *wanted) {
-            let names = given.iter().map(|layout| layout.name.as_str());
-            let near = crate::input::nearest(wanted, names.clone())
-                .map_or(String::new(), |near| format!("; did you mean `{near}`?"));
-            let mut names: Vec<&str> = names.collect();
-            names.dedup();
-            names.truncate(12);
-            return Err(Failure::said(
-                &format!("there is no layout `{wanted}`{near}"),
-                &format!("layouts are {}", names.join(", ")),
-            ));
-        }
-    }
-    given.retain(|layout| {
-        areas.contains(&layout.area) && (args.layout.is_empty() || args.layout.contains(&layout.name))
-    });
+    let given = args.given.of(&project, &areas)?;
     let best = if args.beside_best {
         let options = search::Options { keep: 1, ..project.options.clone() };
         super::without_set_height(&project.roof, &areas).map_or(Ok(()), Err)?;

@@ -88,6 +88,35 @@ impl Words {
         trimmed(value, if self.us() { 2 } else { 0 })
     }
 
+    /// A depth that is never said to be less than it is.
+    pub(super) fn depth_up(self, depth: Length) -> String {
+        let scale = if self.us() { 100.0 } else { 1.0 };
+        let value = (self.small(depth) * scale - 1e-6).ceil() / scale;
+        trimmed(value, if self.us() { 2 } else { 0 })
+    }
+
+    /// A load that is never said to be less than it is.
+    pub(super) fn load_up(self, load: Load) -> String {
+        let scale = if self.us() { 10.0 } else { 100.0 };
+        let value = (self.in_load_unit(load) * scale - 1e-6).ceil() / scale;
+        format!("{} {}", trimmed(value, 2), self.load_unit())
+    }
+
+    /// An intensity that is never said to be more than it is.
+    pub(super) fn intensity_down(self, intensity: Intensity) -> String {
+        if self.us() {
+            format!("{} in/h", trimmed((intensity.to_inches_per_hour() * 100.0 + 1e-6).floor() / 100.0, 2))
+        } else {
+            format!("{} mm/h", trimmed((intensity.m_per_s() * 3.6e6 + 1e-6).floor(), 0))
+        }
+    }
+
+    /// A roof area that is never said to be more than it is.
+    pub(super) fn area_down(self, area: Area) -> String {
+        let (value, unit) = if self.us() { (area.to_ft2(), "ft2") } else { (area.m2(), "m2") };
+        format!("{} {unit}", trimmed((value + 1e-6).floor(), 0))
+    }
+
     /// A dimension or a set height as it was given, without its unit.
     pub(super) fn bare_size(self, length: Length) -> String {
         trimmed(self.small(length), if self.us() { 3 } else { 1 })

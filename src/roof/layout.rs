@@ -163,6 +163,13 @@ fn spare(groups: &[Group<'_>], situation: &Situation<'_>, allowed: Length, asked
     (pool.capacity(level) - situation.demand).m3_per_s()
 }
 
+/// What the groups can carry in the case that leaves least to spare, each at the highest level that its situation allows,
+/// less the demand, m3/s: zero or more where every case holds.
+pub(crate) fn least_spare(groups: &[Group<'_>], situations: &[Situation<'_>], asked: Asked) -> f64 {
+    let spare = |situation: &Situation<'_>| spare(groups, situation, situation.allowable_level(), asked);
+    situations.iter().map(spare).fold(f64::INFINITY, f64::min)
+}
+
 /// The highest common lift at which every case still meets every limit; none where the lowest heights already do not.
 ///
 /// All groups are lifted by the same amount, each stopping at the top of its own range. Lifting sills raises the level by

@@ -1,0 +1,348 @@
+//! The report of `backsolve`: for each unknown the value at which a layout just holds, beside the value as given.
+//!
+//! What may be at most so much is rounded down, what must be at least so much is rounded up.
+
+use serde::Serialize;
+
+use crate::review::{Checked, Solved, WIDEST};
+use crate::roof::Roof;
+use crate::search::Options;
+use crate::units::{Area, Intensity, Length, Load};
+
+use super::page::{self, Block, Table};
+use super::words::{Words, list, trimmed};
+use super::{Format, check, json, notes, ranking, written};
+
+/// What a report of values solved for is made of.
+#[derive(Clone, Copy, Debug)]
+pub struct Backsolved<'a, 'r> {
+    /// The roof.
+    pub roof: &'r Roof,
+    /// What was asked, besides the limits.
+    pub options: &'a Options,
+    /// The defaults that were taken.
+    pub assumed: &'a [crate::input::Assumed],
+    /// Each layout as it stands, with what was solved for.
+    pub layouts: &'a [(Checked<'r>, Vec<Solved>)],
+}
+
+pub(super) fn write(backsolved: &Backsolved<'_, '_>, format: Format, width: usize) -> String {
+    match format {
+        Format::Table => page::text(&blocks(backsolved), width),
+        Format::Markdown => page::markdown(&blocks(backsolved)),
+        Format::Json => document(backsolved),
+        Format::Csv => csv(backsolved),
+    }
+}
+
+fn told<'a, 'r>(backsolved: &Backsolved<'a, 'r>) -> notes::Told<'a, 'r> {
+    let mut areas: Vec<usize> = backsolved.layouts.iter().map(|(checked, _)| checked.given.area).collect();
+    areas.dedup();
+    notes::Told {
+        roof: backsolved.roof,
+        options: backsolved.options,
+        assumed: backsolved.assumed,
+        areas,
+        layouts: backsolved.layouts.iter().map(|(checked, _)| (checked.given.area, &checked.standing)).collect(),
+        searched: false,
+    }
+}
+
+fn blocks(backsolved: &Backsolved<'_, '_>) -> Vec<Block> {
+    let words = Words(backsolved.roof.system);
+    let roof = backsolved.roof;
+    let mut blocks = vec![Block::Title(format!("{}: what given layouts could take", roof.title))];
+    blocks.extend(ranking::situation(roof, words));
+    let mut area_before = None;
+    for (checked, solved) in backsolved.layouts {
+        if area_before.replace(checked.given.area) != Some(checked.given.area) {
+            blocks.extend(ranking::area_head(roof, checked.given.area, words));
+        }
+        let passes = if checked.passes() { "passes" } else { "fails" };
+        let layout = ranking::marked(&checked.standing, words);
+        blocks.push(Block::Text(format!("\"{}\", {layout}, {passes}.", checked.given.name)));
+        if !checked.passes() {
+            let failing = |failing| check::failing_in_words(roof, checked, failing, words);
+            blocks.push(Block::List(checked.failings.iter().map(failing).collect()));
+        }
+        let lines: Vec<Line> = solved.iter().flat_map(|solved| lines(roof, checked, solved, words)).collect();
+        let column = |tell: fn(&Line) -> &String| lines.iter().map(|line| tell(line).clone()).collect();
+        blocks.push(Block::Table(Table::of(vec![
+            ("unknown".into(), false, column(|line| &line.unknown)),
+            ("as given".into(), false, column(|line| &line.given)),
+            ("just holds".into(), false, column(|line| &line.holds)),
+            ("margin".into(), false, column(|line| &line.margin)),
+        ])));
+    }
+    let told = told(backsolved);
+    blocks.push(Block::Heading("How to read this".into()));
+    blocks.push(Block::Text(
+        "Each value stands alone: all else is as given, and in every case the layout just holds. Sills move and openings change \
+         all together. Whether edge, parapet and code allow it is not asked."
+            .into(),
+    ));
+    blocks.push(Block::Heading("Assumptions".into()));
+    blocks.push(Block::List(notes::assumptions(&told)));
+    blocks.push(Block::Heading("Cautions".into()));
+    blocks.push(Block::List(notes::cautions(&told)));
+    blocks
+}
+
+/// One row of the table.
+struct Line {
+    unknown: String,
+    given: String,
+    holds: String,
+    margin: String,
+}
+
+const NONE: &str = "no value holds";
+
+fn lines(roof: &Roof, checked: &Checked<'_>, solved: &Solved, words: Words) -> Vec<Line> {
+    let given = checked.given;
+    let area = &roof.areas[given.area];
+    let line = |unknown: &str, given: String, holds: String, margin: String| Line {
+        unknown: unknown.into(),
+        given,
+        holds,
+        margin,
+    };
+    match solved {
+        Solved::Rain(most) => {
+            let now = roof.storm.intensity;
+            let holds = most.map_or(NONE.into(), |most| format!("at most {}", words.intensity_down(most)));
+            let margin = most.map_or("-".into(), |most| percent(most.m_per_s() / now.m_per_s() - 1.0));
+            vec![line("rain", words.intensity(now), holds, margin)]
+        }
+        Solved::Area(most) => {
+            let holds = most.map_or(NONE.into(), |most| format!("at most {}", words.area_down(most)));
+            let margin = most.map_or("-".into(), |most| percent(most.m2() / area.area.m2() - 1.0));
+            vec![line("area", words.area(area.area), holds, margin)]
+        }
+        Solved::SetHeight(lift) => {
+            let heights: Vec<_> = given.groups.iter().map(|group| words.size(group.set_height)).collect();
+            let reached = |lift: Length| {
+                let at = given
+                    .groups
+                    .iter()
+                    .map(|group| format!("{} {}", words.depth_down(group.set_height + lift), words.small_unit()));
+                format!("at most {}", alike(at.collect()))
+            };
+            let margin = lift.map_or("-".into(), |lift| format!("{} {}", signed_down(lift, words), words.small_unit()));
+            vec![line("set height", alike(heights), lift.map_or(NONE.into(), reached), margin)]
+        }
+        Solved::Width(None) => vec![line("width", "-".into(), "no opening has a width to change".into(), "-".into())],
+        Solved::Width(Some(change)) => {
+            let now: Vec<_> = given
+                .groups
+                .iter()
+                .filter_map(|group| group.size.device.width())
+                .map(|width| words.size(width))
+                .collect();
+            let holds = change.map_or_else(
+                || format!("no width up to {} more holds", words.long(WIDEST)),
+                |change| {
+                    let at = given.groups.iter().filter_map(|group| group.size.device.width());
+                    let at = at.map(|width| format!("{} {}", words.depth_up(width + change), words.small_unit()));
+                    format!("at least {}", alike(at.collect()))
+                },
+            );
+            let margin =
+                change.map_or("-".into(), |change| format!("{} {}", signed_up(change, words), words.small_unit()));
+            vec![line("width", alike(now), holds, margin)]
+        }
+        Solved::Count(least) => {
+            let of_group = |(group, least): (&crate::roof::GivenGroup, &Option<u32>)| {
+                let holds = least.map_or(NONE.into(), |least| format!("at least {least}"));
+                let margin = least.map_or("-".into(), |least| change(i64::from(least) - i64::from(group.count)));
+                line(&format!("count of {}", words.name(&group.size)), group.count.to_string(), holds, margin)
+            };
+            given.groups.iter().zip(least).map(of_group).collect()
+        }
+        Solved::Limit { load, depth } => limits(roof, checked, *load, *depth, words),
+        Solved::Blocked(more) => {
+            let now: Vec<_> = roof.cases.iter().map(|case| case.blocked.to_string()).collect();
+            let now = if now.len() == 1 { now[0].clone() } else { format!("{} by case", now.join(", ")) };
+            let holds = match more {
+                None => "fails as it is".into(),
+                Some(0) => "no more in any case".into(),
+                Some(more) => format!("at most {more} more in each case"),
+            };
+            vec![line("blocked", now, holds, more.map_or("-".into(), |more| change(i64::from(more))))]
+        }
+    }
+}
+
+fn limits(roof: &Roof, checked: &Checked<'_>, load: Option<Load>, depth: Option<Length>, words: Words) -> Vec<Line> {
+    let limits = &roof.areas[checked.given.area].limits;
+    let mut lines = Vec::new();
+    let mut distinct = |unknown: &str, now: Vec<String>, least: Vec<String>, margin: String| {
+        let once = |mut texts: Vec<String>| {
+            texts.dedup();
+            list(&texts)
+        };
+        lines.push(Line {
+            unknown: unknown.into(),
+            given: once(now),
+            holds: format!("at least {}", once(least)),
+            margin,
+        });
+    };
+    if let Some(by) = load {
+        let loads = || limits.iter().filter_map(|limits| limits.load);
+        distinct(
+            "load limit",
+            loads().map(|load| words.given_load(load)).collect(),
+            loads().map(|load| words.load_up(load + by)).collect(),
+            format!("{:+.*} {}", if words.us() { 1 } else { 2 }, words.in_load_unit(by), words.load_unit()),
+        );
+    }
+    if let Some(by) = depth {
+        let depths = || limits.iter().filter_map(|limits| limits.depth);
+        distinct(
+            "depth limit",
+            depths().map(|depth| words.size(depth)).collect(),
+            depths().map(|depth| format!("{} {}", words.depth_up(depth + by), words.small_unit())).collect(),
+            format!("{} {}", signed_up(by, words), words.small_unit()),
+        );
+    }
+    if lines.is_empty() {
+        lines.push(Line {
+            unknown: "limit".into(),
+            given: "-".into(),
+            holds: "no limit holds: overwhelmed".into(),
+            margin: "-".into(),
+        });
+    }
+    lines
+}
+
+/// A change of a count.
+fn change(by: i64) -> String {
+    if by == 0 { "0".into() } else { format!("{by:+}") }
+}
+
+/// Texts of groups, or the one that all have.
+fn alike(texts: Vec<String>) -> String {
+    if texts.iter().all(|text| *text == texts[0]) { texts.into_iter().next().unwrap_or_default() } else { list(&texts) }
+}
+
+fn percent(part: f64) -> String {
+    format!("{:+.1} %", (part * 1000.0).floor() / 10.0)
+}
+
+fn signed_down(length: Length, words: Words) -> String {
+    let scale = if words.us() { 100.0 } else { 1.0 };
+    let value = (words.small(length) * scale + 1e-6).floor() / scale;
+    format!("{}{}", if value < 0.0 { "" } else { "+" }, trimmed(value, 2))
+}
+
+fn signed_up(length: Length, words: Words) -> String {
+    let scale = if words.us() { 100.0 } else { 1.0 };
+    let value = (words.small(length) * scale - 1e-6).ceil() / scale;
+    format!("{}{}", if value < 0.0 { "" } else { "+" }, trimmed(value, 2))
+}
+
+fn csv(backsolved: &Backsolved<'_, '_>) -> String {
+    let words = Words(backsolved.roof.system);
+    let mut rows = vec![["area", "layout", "unknown", "as_given", "just_holds", "margin"].map(String::from).to_vec()];
+    for (checked, solved) in backsolved.layouts {
+        for line in solved.iter().flat_map(|solved| lines(backsolved.roof, checked, solved, words)) {
+            let area = backsolved.roof.areas[checked.given.area].name.clone();
+            rows.push(vec![area, checked.given.name.clone(), line.unknown, line.given, line.holds, line.margin]);
+        }
+    }
+    written(&rows)
+}
+
+#[derive(Serialize)]
+struct Document<'a> {
+    format: &'static str,
+    title: &'a str,
+    layouts: Vec<OfLayout<'a>>,
+    cautions: Vec<String>,
+}
+
+#[derive(Default, Serialize)]
+struct OfLayout<'a> {
+    area: &'a str,
+    name: &'a str,
+    passes: bool,
+    groups: Vec<json::Group<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    intensity_most_m_s: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    area_most_m2: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    set_heights_up_m: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    widths_change_m: Option<f64>,
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    counts_least: Vec<Option<u32>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    load_limits_change_pa: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    depth_limits_change_m: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    blocked_more: Option<u32>,
+    no_value_holds: Vec<&'static str>,
+}
+
+fn document(backsolved: &Backsolved<'_, '_>) -> String {
+    let roof = backsolved.roof;
+    let document = Document {
+        format: "brimline backsolve 1",
+        title: &roof.title,
+        layouts: backsolved.layouts.iter().map(|(checked, solved)| of_layout(roof, checked, solved)).collect(),
+        cautions: notes::cautions(&told(backsolved)),
+    };
+    let mut text = serde_json::to_string_pretty(&document).unwrap_or_default();
+    text.push('\n');
+    text
+}
+
+fn of_layout<'a>(roof: &'a Roof, checked: &'a Checked<'_>, solved: &[Solved]) -> OfLayout<'a> {
+    let mut told = OfLayout {
+        area: &roof.areas[checked.given.area].name,
+        name: &checked.given.name,
+        passes: checked.passes(),
+        groups: json::groups(roof, checked.given.area, &checked.standing),
+        ..OfLayout::default()
+    };
+    for solved in solved {
+        tell(&mut told, solved);
+    }
+    told
+}
+
+fn tell(told: &mut OfLayout<'_>, solved: &Solved) {
+    let mut none = |name| told.no_value_holds.push(name);
+    match solved {
+        Solved::Rain(most) => {
+            told.intensity_most_m_s = most.map(Intensity::m_per_s);
+            most.is_none().then(|| none("rain"));
+        }
+        Solved::Area(most) => {
+            told.area_most_m2 = most.map(Area::m2);
+            most.is_none().then(|| none("area"));
+        }
+        Solved::SetHeight(up) => {
+            told.set_heights_up_m = up.map(Length::m);
+            up.is_none().then(|| none("set-height"));
+        }
+        Solved::Width(change) => {
+            told.widths_change_m = change.flatten().map(Length::m);
+            matches!(change, Some(None)).then(|| none("width"));
+        }
+        Solved::Count(least) => told.counts_least.clone_from(least),
+        Solved::Limit { load, depth } => {
+            told.load_limits_change_pa = load.map(Load::pa);
+            told.depth_limits_change_m = depth.map(Length::m);
+            (load.is_none() && depth.is_none()).then(|| none("limit"));
+        }
+        Solved::Blocked(more) => {
+            told.blocked_more = *more;
+            more.is_none().then(|| none("blocked"));
+        }
+    }
+}
