@@ -17,6 +17,7 @@ use crate::units::{Length, Money};
 mod best;
 mod cure;
 mod dive;
+mod front;
 mod infeasible;
 mod plan;
 mod problem;
@@ -24,6 +25,7 @@ mod rank;
 mod tradeoff;
 
 pub use cure::{Cure, Cures, Opened, Relaxation, cures, opened, relaxed};
+pub use front::{Front, PlanFront, Unbeaten, UnbeatenPlan, front, plan_front};
 pub use plan::{Asked as PlanAsked, Plan, Plans, plan};
 pub use rank::Criterion;
 pub use tradeoff::{PlanAt, Raises, plan_tradeoff, tradeoff};

@@ -40,7 +40,7 @@ struct Levels {
 const BILLION: f64 = 1e9;
 
 impl Found {
-    fn new(groups: Groups, sums: Sums, family: u128) -> Self {
+    pub(super) fn new(groups: Groups, sums: Sums, family: u128) -> Self {
         Self {
             groups,
             sums,
