@@ -15,9 +15,8 @@
 //! 3. *What its cheapers carry.* Layouts are gone through by cost, of equals by count, width, sizes and catalog order. None
 //!    can then be beaten by a later one, unless that is equal in all sums; and to stay it must have less load than every
 //!    layout kept that is no greater in count and width, for all of those cost no more. With w for the least of their loads,
-//!    it must carry the demand of every case at a depth under w, as the level is the least at which it does. That is asked of
-//!    a table of what one device of each size carries at the next rung of depths above w: what does not suffice
-//!    there does not suffice under w. What does is asked at w itself, and only then is a level solved.
+//!    it must carry the demand of every case at a depth under w, as its level is the least at which it does: a table of what
+//!    one device of each size carries there tells. A level is solved only for what passes.
 //!
 //! Nothing else is left out. Going by cost needs no more memory than a pass: of a pass with too many layouts the dearer
 //! half is left for later ones, so the answer does not depend on where passes end.
@@ -33,8 +32,8 @@ use super::problem::{Candidate, Problem};
 use super::rank::{Criterion, Sums};
 use super::{Options, Ranked, ranked};
 
-mod ladder;
 mod roofwide;
+mod screens;
 mod sieve;
 mod walk;
 
@@ -58,6 +57,7 @@ pub struct Unbeaten<'r> {
 }
 
 /// The layouts of an area that are not beaten.
+#[derive(Debug)]
 pub struct Front<'r> {
     /// Index of the area.
     pub area: usize,

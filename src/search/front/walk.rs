@@ -4,7 +4,7 @@ use crate::roof::MOST_GROUPS;
 
 use super::super::dive::SLACK;
 use super::super::problem::{Problem, Table};
-use super::ladder::Ladder;
+use super::screens::Screens;
 use super::sieve::Sieve;
 use super::{Kept, Worst, at_lowest, is_priced, sums, worst};
 
@@ -29,7 +29,7 @@ pub(super) fn walk(problem: &Problem<'_>) -> Vec<Kept> {
 }
 
 /// Layouts that a pass holds before the dearer half of them is left for later ones.
-const ROOM: usize = 1 << 17;
+const ROOM: usize = 1 << 18;
 
 /// What one device of a candidate adds to the sums. Where cost plays no part the width leads in its place.
 #[derive(Clone, Copy)]
@@ -92,7 +92,7 @@ struct Walk<'p, 'r> {
     greatest_lead: Vec<i64>,
     /// Total that a layout must have in each case.
     needed: Vec<f64>,
-    ladder: Ladder,
+    screens: Screens,
     sieve: Sieve,
     /// The leads that the pass takes in.
     low: i64,
@@ -129,7 +129,7 @@ impl<'p, 'r> Walk<'p, 'r> {
             greatest,
             greatest_lead,
             needed: needed(problem),
-            ladder: Ladder::new(problem),
+            screens: Screens::default(),
             sieve: Sieve::new(problem.most as usize),
             low: 0,
             high: i64::MAX,
@@ -189,11 +189,12 @@ impl<'p, 'r> Walk<'p, 'r> {
                 break;
             }
             self.chosen[depth] = (index, count);
-            let groups = &self.chosen[..=depth];
+            let chosen = self.chosen;
+            let groups = &chosen[..=depth];
             // More of the last never carry less.
             holds = holds || self.problem.carries(&self.limits[class], groups);
             if holds && used.lead >= self.low && self.may_stay(groups, used.count, used.rest) {
-                self.take(depth + 1, used);
+                self.take(groups, used);
             }
         }
     }
@@ -244,16 +245,16 @@ impl<'p, 'r> Walk<'p, 'r> {
     }
 
     /// Whether a layout may have less load than all that were kept and are no greater in its sums.
-    fn may_stay(&self, groups: &[(usize, u32)], count: u32, rest: i64) -> bool {
+    fn may_stay(&mut self, groups: &[(usize, u32)], count: u32, rest: i64) -> bool {
         let least = self.sieve.least(count as usize, rest);
-        least.is_none_or(|least| self.ladder.may_carry_under(self.problem, groups, least))
+        least.is_none_or(|least| self.screens.may_carry_under(self.problem, groups, least))
     }
 
     /// Takes the chosen groups into the pass; where that is full, leaves the dearer half of it for later ones.
-    fn take(&mut self, len: usize, used: Used) {
+    fn take(&mut self, chosen: &[(usize, u32)], used: Used) {
         let mut groups = [(0, 0); MOST_GROUPS];
-        groups[..len].copy_from_slice(&self.chosen[..len]);
-        self.pass.push(Entry { lead: used.lead, count: used.count, rest: used.rest, len, groups });
+        groups[..chosen.len()].copy_from_slice(chosen);
+        self.pass.push(Entry { lead: used.lead, count: used.count, rest: used.rest, len: chosen.len(), groups });
         if self.pass.len() >= self.room {
             let middle = self.pass.len() / 2;
             self.high = self.pass.select_nth_unstable_by_key(middle, |entry| entry.lead).1.lead;
