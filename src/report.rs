@@ -6,11 +6,12 @@
 use crate::device::{Law, Site, Size};
 use crate::input::Assumed;
 use crate::roof::Roof;
-use crate::search::{Answer, Cure, Opened, Options, PlanAsked, PlanAt, Plans, Ranked, UnderLaw};
+use crate::search::{Answer, Cure, Front, Opened, Options, PlanAsked, PlanAt, PlanFront, Plans, Ranked, UnderLaw};
 use crate::units::{Flow, Length, Load, System};
 
 mod contents;
 mod cures;
+mod front;
 mod json;
 mod notes;
 mod page;
@@ -52,11 +53,13 @@ pub struct Sized<'a, 'r> {
     pub laws: &'a [Vec<UnderLaw>],
     /// What would cure each answer that has no layout, in the order of the answers; none for one that has.
     pub cures: &'a [Option<Opened<'a>>],
+    /// The layouts that are not beaten, area by area in the order of the answers; empty where that is not asked for.
+    pub fronts: &'a [Fronted<'r>],
     /// The plans of the whole roof, where one was asked for.
     pub plans: Option<Asked<'a, 'r>>,
 }
 
-impl<'a> Sized<'a, '_> {
+impl<'a, 'r> Sized<'a, 'r> {
     fn place(&self, area: usize) -> Option<usize> {
         self.answers.iter().position(|answer| answer.area == area)
     }
@@ -64,6 +67,11 @@ impl<'a> Sized<'a, '_> {
     /// The first layout of an area under every law; none where that was not asked for.
     fn laws_of(&self, area: usize) -> Option<&'a [UnderLaw]> {
         self.place(area).and_then(|place| self.laws.get(place)).map(Vec::as_slice)
+    }
+
+    /// The layouts of an area that are not beaten; none where that was not asked for.
+    fn front_of(&self, area: usize) -> Option<&'a Fronted<'r>> {
+        self.fronts.iter().find(|fronted| fronted.front.area == area)
     }
 
     /// What would cure an area without a layout.
@@ -79,6 +87,17 @@ pub struct Asked<'a, 'r> {
     pub asked: PlanAsked,
     /// The plans; none where a device has no price.
     pub found: Option<&'a Plans<'r>>,
+    /// The plans that are not beaten; none where that is not asked for, or there is no plan.
+    pub front: Option<&'a PlanFront<'r>>,
+}
+
+/// The layouts of an area that are not beaten.
+#[derive(Debug)]
+pub struct Fronted<'r> {
+    /// All of them.
+    pub front: Front<'r>,
+    /// All that is reported of them: of every one for JSON and CSV, of the first [`FRONT_ROWS`] for tables.
+    pub opened: Vec<Ranked<'r>>,
 }
 
 /// Writes a report of sized areas; `width` is that of the terminal, in characters.
@@ -112,6 +131,7 @@ pub struct Rated<'a> {
     pub system: System,
 }
 
+pub use front::FRONT_ROWS;
 pub use rate::head_for;
 
 /// Writes what a device passes under each law.

@@ -2,8 +2,9 @@
 
 use std::process::ExitCode;
 
-use crate::report::{self, Sized};
-use crate::search::{self, Answer, Cures, Outcome};
+use crate::input::Project;
+use crate::report::{self, Format, Fronted, Sized};
+use crate::search::{self, Answer, Cures, Options, Outcome};
 
 use super::{Failure, OfProject};
 
@@ -12,6 +13,7 @@ use super::{Failure, OfProject};
 /// Every layout that the catalogs and the ranges of the project allow is tried, or excluded by a proven bound. Exit code 0:
 /// every area has a layout; 1: an area has none, and the report says why; 2: the input cannot be used.
 #[derive(Debug, clap::Args)]
+#[expect(clippy::struct_excessive_bools, reason = "each is a flag of its own on the command line")]
 pub(super) struct Args {
     #[command(flatten)]
     of: OfProject,
@@ -27,6 +29,9 @@ pub(super) struct Args {
     /// Show each area's first layout under every flow law that its devices can follow.
     #[arg(long)]
     laws: bool,
+    /// List the layouts that no other beats in all of cost, worst load, count and width; of plans those of the plan's sizes.
+    #[arg(long)]
+    front: bool,
 }
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
@@ -49,6 +54,11 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let cures: Vec<_> = answers.iter().map(cured).collect();
     let opened: Vec<_> = cures.iter().map(|cures| cures.as_ref().map(Cures::open)).collect();
     let plans = project.plan.map(|asked| (asked, search::plan(&project.roof, &options, asked, &areas)));
+    let fronts = if args.front { fronts(args, &project, &options, &areas) } else { Vec::new() };
+    let unbeaten = plans.as_ref().filter(|_| args.front).and_then(|(asked, found)| {
+        let cheapest = found.as_ref()?.plans.first()?;
+        Some(search::plan_front(&project.roof, &options, *asked, &areas, cheapest))
+    });
     let sized = Sized {
         roof: &project.roof,
         options: &options,
@@ -57,10 +67,25 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         work: args.work,
         laws: &laws,
         cures: &opened,
-        plans: plans.as_ref().map(|(asked, found)| report::Asked { asked: *asked, found: found.as_ref() }),
+        fronts: &fronts,
+        plans: plans.as_ref().map(|(asked, found)| report::Asked {
+            asked: *asked,
+            found: found.as_ref(),
+            front: unbeaten.as_ref(),
+        }),
     };
     args.of.deliver(|format, width| report::size(&sized, format, width))?;
     let infeasible = answers.iter().any(|answer| matches!(answer.outcome, Outcome::Infeasible(_)));
     let unplanned = plans.iter().any(|(_, found)| found.as_ref().is_none_or(|plans| plans.plans.is_empty()));
     Ok(if infeasible || unplanned { ExitCode::from(1) } else { ExitCode::SUCCESS })
+}
+
+/// The layouts that are not beaten, with all that the form asked for says of them.
+fn fronts<'r>(args: &Args, project: &'r Project, options: &Options, areas: &[usize]) -> Vec<Fronted<'r>> {
+    let most = match Format::from(args.of.format) {
+        Format::Table | Format::Markdown => report::FRONT_ROWS,
+        Format::Json | Format::Csv => usize::MAX,
+    };
+    let fronts = search::front(&project.roof, options, areas);
+    fronts.into_iter().map(|front| Fronted { opened: front.opened(most), front }).collect()
 }

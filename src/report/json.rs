@@ -4,12 +4,14 @@ use std::ops::Not;
 
 use serde::Serialize;
 
-use crate::device::{Kind, Site};
+use crate::device::{Kind, Site, Size};
 use crate::search::{Answer, Cure, Opened, Outcome, Placed, Ranked, UnderLaw};
 use crate::units::{Length, Money};
 
 use super::words::Words;
 use super::{Asked, Sized, notes, ranking};
+
+mod front;
 
 #[derive(Serialize)]
 struct Document<'a> {
@@ -45,6 +47,8 @@ struct Area<'a> {
     #[serde(skip_serializing_if = "Vec::is_empty")]
     cures_nothing: Vec<&'static str>,
     layouts: Vec<Layout<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    front: Option<Vec<front::Row<'a>>>,
 }
 
 #[derive(Serialize)]
@@ -64,6 +68,8 @@ struct Plan<'a> {
     layouts: Vec<PlanLayout<'a>>,
     #[serde(skip_serializing_if = "Vec::is_empty")]
     by_sizes: Vec<BySizes>,
+    #[serde(flatten)]
+    front: Option<front::Plans<'a>>,
 }
 
 #[derive(Serialize)]
@@ -190,22 +196,14 @@ fn plans<'a>(sized: &Sized<'a, '_>, asked: &Asked<'a, '_>) -> Vec<Plan<'a>> {
     let by_sizes = || found.by_sizes.iter().map(|&(sizes, cost)| BySizes { sizes, cost: cost.map(amount) }).collect();
     if found.plans.is_empty() {
         let (sizes, layouts) = (Vec::new(), Vec::new());
-        return vec![Plan { outcome: "infeasible", cost: None, bound: None, sizes, layouts, by_sizes: by_sizes() }];
+        let by_sizes = by_sizes();
+        return vec![Plan { outcome: "infeasible", cost: None, bound: None, sizes, layouts, by_sizes, front: None }];
     }
     let plan = |(index, plan): (usize, &'a crate::search::Plan<'_>)| Plan {
         outcome: "optimal",
         cost: Some(plan.cost.amount()),
         bound: Some(plan.cost.amount()),
-        sizes: plan
-            .sizes
-            .iter()
-            .map(|size| PlanSize {
-                device: &size.tag,
-                width_m: size.device.width().map(Length::m),
-                height_m: size.device.height().map(Length::m),
-                diameter_m: size.device.diameter().map(Length::m),
-            })
-            .collect(),
+        sizes: plan.sizes.iter().map(|size| plan_size(size)).collect(),
         layouts: sized
             .answers
             .iter()
@@ -221,8 +219,18 @@ fn plans<'a>(sized: &Sized<'a, '_>, asked: &Asked<'a, '_>) -> Vec<Plan<'a>> {
             })
             .collect(),
         by_sizes: if index == 0 { by_sizes() } else { Vec::new() },
+        front: asked.front.filter(|_| index == 0).map(|found| front::plans(sized, found)),
     };
     found.plans.iter().enumerate().map(plan).collect()
+}
+
+fn plan_size(size: &Size) -> PlanSize<'_> {
+    PlanSize {
+        device: &size.tag,
+        width_m: size.device.width().map(Length::m),
+        height_m: size.device.height().map(Length::m),
+        diameter_m: size.device.diameter().map(Length::m),
+    }
 }
 
 fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
@@ -244,6 +252,7 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
         cures_nothing: opened
             .map_or(Vec::new(), |opened| opened.useless.iter().map(|&change| super::cures::amount(change).0).collect()),
         layouts: layouts.collect(),
+        front: sized.front_of(answer.area).map(|fronted| front::rows(sized, fronted)),
     }
 }
 

@@ -6,8 +6,8 @@ use crate::roof::layout::GroupState;
 use crate::search::{Outcome, Ranked};
 use crate::units::{Area, Length, System};
 
-use super::Sized;
 use super::words::{self, Words, list, ranked_by, trimmed};
+use super::{FRONT_ROWS, Sized};
 
 /// Excess of straight lines over logarithmic ones, as a part of the demand, from which it is told.
 pub(super) const CHORD_TOLD: f64 = 0.02;
@@ -18,10 +18,12 @@ const LOW_HEAD: Length = Length::inches(1.0);
 const LOW_SILL: Length = Length::mm(50.0);
 
 fn layouts<'a, 'r>(sized: &Sized<'a, 'r>) -> impl Iterator<Item = &'a Ranked<'r>> {
-    sized.answers.iter().flat_map(|answer| match &answer.outcome {
+    let ranked = sized.answers.iter().flat_map(|answer| match &answer.outcome {
         Outcome::Optimal(layouts) => &layouts[..],
         Outcome::Infeasible(_) => &[],
-    })
+    });
+    // Those that a table shows, in every form: what is said of a roof does not depend on the form.
+    ranked.chain(sized.fronts.iter().flat_map(|fronted| fronted.opened.iter().take(FRONT_ROWS)))
 }
 
 fn sizes<'r>(sized: &Sized<'_, 'r>) -> Vec<&'r Size> {
@@ -153,6 +155,14 @@ pub(super) fn assumptions(sized: &Sized<'_, '_>) -> Vec<String> {
         ),
         "In a window all groups rise together, each stopping at the top of its own range.".into(),
     ];
+    if !sized.fronts.is_empty() {
+        lines.push(
+            "Layouts and plans that are not beaten stand at their lowest set heights, where the load is least. Load is the \
+             greatest over the cases; of layouts equal in all that is compared the one with fewest sizes is listed, then the \
+             first in catalog order."
+                .into(),
+        );
+    }
     for assumed in sized.assumed {
         let default = assumed.default;
         let whom = if assumed.areas.is_empty() { String::new() } else { format!(" in {}", list(&assumed.areas)) };

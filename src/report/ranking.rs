@@ -9,7 +9,7 @@ use crate::units::{Area, Length, Load};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Sized, notes, plan, work};
+use super::{Sized, front, notes, plan, work};
 
 /// The mark behind a layout that leaves the published range of its law.
 const BEYOND: &str = "\u{2020}";
@@ -88,6 +88,9 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
     match &answer.outcome {
         Outcome::Optimal(layouts) => {
             ranking(sized, answer.area, layouts, words, blocks);
+            if let Some(fronted) = sized.front_of(answer.area) {
+                front::area(sized, fronted, words, blocks);
+            }
             if let Some(laws) = sized.laws_of(answer.area).filter(|laws| !laws.is_empty()) {
                 every_law(roof, answer.area, &layouts[0], laws, words, blocks);
             }
@@ -374,7 +377,12 @@ fn every_law(roof: &Roof, area: usize, first: &Ranked<'_>, laws: &[UnderLaw], wo
 }
 
 fn marked(layout: &Ranked<'_>, words: Words) -> String {
-    let mut text = words.layout(layout);
+    words.layout(layout) + &marks_of(layout)
+}
+
+/// The marks that stand behind a layout.
+pub(super) fn marks_of(layout: &Ranked<'_>) -> String {
+    let mut text = String::new();
     if !layout.beyond.is_empty() {
         text += &format!(" {BEYOND}");
     }
@@ -384,7 +392,7 @@ fn marked(layout: &Ranked<'_>, words: Words) -> String {
     text
 }
 
-fn marks(layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
+pub(super) fn marks(layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
     let mut texts = Vec::new();
     let mut beyond: Vec<(&Range, f64)> = Vec::new();
     for &(range, value) in layouts.iter().flat_map(|layout| &layout.beyond) {
