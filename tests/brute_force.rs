@@ -608,10 +608,16 @@ fn roof_of_alike_sizes(dice: &mut Dice) -> Roof {
     for index in 1..roof.sizes.len() {
         let (before, after) = roof.sizes.split_at_mut(index);
         let (known, size) = (&before[index - 1], &mut after[0]);
-        if let (Device::Closed { width: wide, .. }, Device::Closed { width, .. }) = (&known.device, &mut size.device)
-            && dice.one_in(2)
-        {
-            *width = *wide;
+        match (&known.device, &mut size.device) {
+            (Device::Closed { width: wide, .. }, Device::Closed { width, height }) if dice.one_in(2) => {
+                *width = *wide;
+                // High enough, often, that both tops stay dry.
+                *height = *height + Length::inches(dice.pick(&[0.0, 2.0, 4.0]));
+            }
+            (Device::Rated { width: wide, rating: known }, Device::Rated { width, rating }) if dice.one_in(2) => {
+                (*width, *rating) = (*wide, Arc::clone(known));
+            }
+            _ => {}
         }
         if dice.one_in(3) {
             size.price = known.price;
@@ -680,6 +686,9 @@ fn front_of_everything(roof: &Roof, options: &Options) -> Vec<(Compared, Vec<(us
         place += 1;
         !beaten && first
     });
+    if !priced {
+        all.sort_by_key(|([_, depth, count, width], _)| (*width, *count, *depth));
+    }
     all
 }
 
@@ -687,9 +696,13 @@ fn front_of_everything(roof: &Roof, options: &Options) -> Vec<(Compared, Vec<(us
 #[test]
 fn the_front_is_that_of_trying_everything() {
     let (mut fronts, mut rows, mut unpriced) = (0, 0, 0);
-    for seed in 1..=1500_u64 {
+    for seed in 1..=2000_u64 {
         let mut dice = Dice(seed.wrapping_mul(0xa076_1d64_78bd_642f));
-        let (roof, options) = (roof_of_alike_sizes(&mut dice), options(&mut dice));
+        let (roof, mut options) = (roof_of_alike_sizes(&mut dice), options(&mut dice));
+        if dice.one_in(3) {
+            // So much that of two openings alike under every limit only the higher one keeps it.
+            options.freeboard = Some(Length::inches(dice.pick(&[2.0, 3.0])));
+        }
         let expected = front_of_everything(&roof, &options);
         let front = search::front(&roof, &options, &[0]).remove(0);
         let index = |size: &Size| roof.sizes.iter().position(|known| std::ptr::eq(known, size)).expect("of the roof");
@@ -714,7 +727,7 @@ fn the_front_is_that_of_trying_everything() {
         rows += found.len();
         unpriced += usize::from(front.rows.iter().any(|row| row.cost.is_none()));
     }
-    assert!(fronts > 400 && rows > 4 * fronts && unpriced > 30, "{fronts} fronts, {rows} rows, {unpriced} unpriced");
+    assert!(fronts > 400 && rows > 3 * fronts && unpriced > 30, "{fronts} fronts, {rows} rows, {unpriced} unpriced");
 }
 
 /// One area of a roof as a roof of its own.

@@ -104,7 +104,7 @@ fn title(count: usize, what: &str, cost: Option<Money>) -> String {
 }
 
 fn head(cost: Option<Money>) -> String {
-    if cost.is_some() { "against the cheapest".into() } else { "against the first".into() }
+    if cost.is_some() { "against the cheapest".into() } else { "against the narrowest".into() }
 }
 
 fn more(count: usize, forms: &str) -> Option<String> {
@@ -148,7 +148,7 @@ where
 
 /// What each row gives and takes against the first; of the first where its worst load stands.
 fn told<R>(rows: &[R], cost: Option<Money>, place: &dyn Fn(&R) -> String, said: &dyn Fn(&R) -> String) -> Vec<String> {
-    let first = if cost.is_some() { "the cheapest" } else { "the least load" };
+    let first = if cost.is_some() { "the cheapest" } else { "the narrowest" };
     let tell = |(index, row): (usize, &R)| match place(row) {
         _ if index > 0 => said(row),
         place if place.is_empty() => first.to_string(),

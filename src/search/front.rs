@@ -61,7 +61,8 @@ pub struct Unbeaten<'r> {
 pub struct Front<'r> {
     /// Index of the area.
     pub area: usize,
-    /// The layouts by cost, then load, count and width; empty where the area has no layout.
+    /// The layouts by cost, then load, count and width, where cost plays no part by width, count and load; empty where the
+    /// area has no layout.
     pub rows: Vec<Unbeaten<'r>>,
     problem: Problem<'r>,
     kept: Vec<Kept>,

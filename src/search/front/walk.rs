@@ -8,7 +8,7 @@ use super::screens::Screens;
 use super::sieve::Sieve;
 use super::{Kept, Worst, at_lowest, is_priced, sums, worst};
 
-/// The layouts that are not beaten, by cost, then load, count and width.
+/// The layouts that are not beaten, by cost, then load, count and width; where cost plays no part by width, count and load.
 pub(super) fn walk(problem: &Problem<'_>) -> Vec<Kept> {
     if problem.candidates.is_empty() {
         return Vec::new();
@@ -24,7 +24,11 @@ pub(super) fn walk(problem: &Problem<'_>) -> Vec<Kept> {
         walk.low = walk.high + 1;
     }
     let mut kept = walk.kept;
-    kept.sort_by_key(|kept| (kept.sums.cost, kept.worst.depth.nm(), kept.sums.count, kept.sums.width));
+    let priced = is_priced(problem);
+    kept.sort_by_key(|kept| {
+        let (sums, depth) = (kept.sums, kept.worst.depth.nm());
+        if priced { [sums.cost, depth, sums.count, sums.width] } else { [sums.width, sums.count, depth, 0] }
+    });
     kept
 }
 
