@@ -182,3 +182,62 @@ fn thousand_areas(bencher: divan::Bencher) {
         answers
     });
 }
+
+/// What layouts on a front are compared by: cost in millionths, deepest water, devices and width in nanometres.
+fn compared(groups: &[Group<'_>], situations: &[Situation<'_>]) -> [i64; 4] {
+    let depth =
+        |situation: &Situation<'_>| layout::state(groups, situation).water.map_or(i64::MAX, |water| water.depth().nm());
+    let width = groups.iter().map(|group| group.size.clear_width().nm() * i64::from(group.count)).sum();
+    let count = groups.iter().map(|group| i64::from(group.count)).sum();
+    let cost = layout::cost(groups).expect("priced").millionths();
+    [cost, situations.iter().map(depth).max().expect("cases"), count, width]
+}
+
+/// Some layouts of an area, evenly out of all of two sizes, none of which a complete front lets stand unbeaten.
+fn some_layouts(roof: &Roof, area: usize) -> Vec<[i64; 4]> {
+    let catchment = &roof.areas[area];
+    let situations = roof.situations(area);
+    let (most, sizes) = (u64::from(*catchment.count.end()), roof.sizes.len() as u64);
+    let mut layouts = Vec::new();
+    let mut step = 1_u64;
+    while layouts.len() < 500 {
+        step = step.wrapping_mul(6_364_136_223_846_793_005).wrapping_add(1_442_695_040_888_963_407);
+        let (first, second) = ((step >> 20) % sizes, (step >> 30) % sizes);
+        let (a, b) = (1 + (step >> 40) % most, 1 + (step >> 50) % most);
+        let set_height = catchment.set_heights.as_ref().expect("given")[0];
+        let group = |size: u64, count: u64| Group { size: &roof.sizes[size as usize], count: count as u32, set_height };
+        let groups = [group(first, a), group(second, b)];
+        let [_, depth, count, width] = compared(&groups, &situations);
+        let edge = width + catchment.gap.nm() * (count - 1);
+        let fits = first != second && a + b <= most && edge <= catchment.edge.expect("given").nm();
+        let holds = |situation: &Situation<'_>| layout::holds(&groups, situation, layout::Asked::default());
+        if fits && depth < i64::MAX && situations.iter().all(holds) {
+            layouts.push(compared(&groups, &situations));
+        }
+    }
+    layouts
+}
+
+/// The layouts of one area that are not beaten in cost, load, count and width: 124 sizes, counts to 12 and to 30.
+#[divan::bench(args = [12, 30], sample_count = 10)]
+fn front_of_an_area(bencher: divan::Bencher, most: u32) {
+    let mut roof = roof(1);
+    roof.areas[0].count = 1..=most;
+    let options = options(&BY_COST, 2);
+    let situations = roof.situations(0);
+    let fronts = search::front(&roof, &options, &[0]);
+    let known: Vec<[i64; 4]> = fronts[0].rows.iter().map(|row| compared(&row.groups, &situations)).collect();
+    assert_eq!(known[0][0], least_cost(&roof, 0));
+    let under = |one: &[i64; 4], other: &[i64; 4]| one.iter().zip(other).all(|(one, other)| one <= other);
+    for (place, row) in known.iter().enumerate() {
+        assert!(!known[..place].iter().any(|other| under(other, row)), "no row is beaten by one that costs no more");
+    }
+    for layout in some_layouts(&roof, 0) {
+        assert!(known.iter().any(|row| under(row, &layout)), "a row is no worse than {layout:?}");
+    }
+    bencher.bench(|| {
+        let fronts = search::front(&roof, &options, &[0]);
+        assert_eq!(fronts[0].rows.len(), known.len());
+        fronts[0].rows.len()
+    });
+}

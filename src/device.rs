@@ -227,6 +227,22 @@ mod tests {
         assert_eq!(beyond(12.0, 6.0, 8.1), ["head"]);
     }
 
+    /// Two openings of one width are alike while both tops stay dry, and pass the same flow to the last bit; not beyond.
+    #[test]
+    fn openings_of_one_width_are_alike_under_their_tops() {
+        for law in [Law::ThinPlate, Law::Contracted, Law::KindsvaterCarter, Law::En12056] {
+            let of = |height| curve(&Size { law: Some(law), ..closed(12.0, height) }, 0.25);
+            let (low, high) = (of(4.5), of(6.5));
+            let head = |inches| Head::of(Length::inches(inches));
+            assert!(low.is_alike_up_to(&high, head(4.0)) && !low.is_alike_up_to(&high, head(4.01)), "{law:?}");
+            for step in 0..=400 {
+                let head = head(f64::from(step) / 100.0);
+                assert_eq!(low.discharge(head).flow, high.discharge(head).flow, "{law:?}");
+            }
+            assert!(!low.is_alike_up_to(&curve(&closed(11.0, 4.5), 0.25), head(1.0)));
+        }
+    }
+
     /// A guard that passes 0.7, and a 4 in leader of 143.8 gpm behind: 2.9 * 12 * 3^1.5 * 0.7 = 126.58 gpm under 3 in, and
     /// the leader governs once 2.9 * 12 * H^1.5 * 0.7 passes 143.8: above 3.27 in. Worked by hand.
     #[test]

@@ -6,13 +6,16 @@
 use crate::device::{Law, Site, Size};
 use crate::input::Assumed;
 use crate::roof::Roof;
-use crate::search::{Answer, Opened, Opening, Options, PlanAsked, PlanAt, Plans, Structure, UnderLaw};
+use crate::search::{
+    Answer, Front, Opened, Opening, Options, PlanAsked, PlanAt, PlanFront, Plans, Ranked, Structure, UnderLaw,
+};
 use crate::units::{Flow, Length, Load, System};
 
 mod backsolve;
 mod check;
 mod contents;
 mod cures;
+mod front;
 mod json;
 mod notes;
 mod page;
@@ -60,6 +63,8 @@ pub struct Sized<'a, 'r> {
     /// The price of strength, where the project gives one, and in the order of the answers each area so strengthened: an
     /// inner none where no raise opens a layout, or where that was not found in time.
     pub structure: Option<(&'a Structure, &'a [Option<Strengthened<'a>>])>,
+    /// The layouts that are not beaten, area by area in the order of the answers; empty where that is not asked for.
+    pub fronts: &'a [Fronted<'r>],
     /// The plans of the whole roof, where one was asked for.
     pub plans: Option<Asked<'a, 'r>>,
 }
@@ -68,13 +73,19 @@ impl<'a, 'r> Sized<'a, 'r> {
     /// What the notes of a report are about.
     fn told(&self) -> notes::Told<'a, 'r> {
         let of_area = |answer: &'a Answer<'r>| answer.outcome.layouts().iter().map(|layout| (answer.area, layout));
+        // Those that a table shows, in every form: what is said of a roof does not depend on the form.
+        let shown = |fronted: &'a Fronted<'r>| {
+            fronted.opened.iter().take(FRONT_ROWS).map(|layout| (fronted.front.area, layout))
+        };
+        let fronts = self.fronts.iter().flat_map(shown);
         notes::Told {
             roof: self.roof,
             options: self.options,
             assumed: self.assumed,
             areas: self.answers.iter().map(|answer| answer.area).collect(),
-            layouts: self.answers.iter().flat_map(of_area).collect(),
+            layouts: self.answers.iter().flat_map(of_area).chain(fronts).collect(),
             searched: true,
+            fronts: !self.fronts.is_empty(),
         }
     }
 
@@ -85,6 +96,11 @@ impl<'a, 'r> Sized<'a, 'r> {
     /// The first layout of an area under every law; none where that was not asked for.
     fn laws_of(&self, area: usize) -> Option<&'a [UnderLaw]> {
         self.place(area).and_then(|place| self.laws.get(place)).map(Vec::as_slice)
+    }
+
+    /// The layouts of an area that are not beaten; none where that was not asked for.
+    fn front_of(&self, area: usize) -> Option<&'a Fronted<'r>> {
+        self.fronts.iter().find(|fronted| fronted.front.area == area)
     }
 
     /// What would cure an area without a layout, or what the cost of another binds on.
@@ -100,6 +116,17 @@ pub struct Asked<'a, 'r> {
     pub asked: PlanAsked,
     /// The plans; none where a device has no price.
     pub found: Option<&'a Plans<'r>>,
+    /// The plans that are not beaten; none where that is not asked for, or there is no plan.
+    pub front: Option<&'a PlanFront<'r>>,
+}
+
+/// The layouts of an area that are not beaten.
+#[derive(Debug)]
+pub struct Fronted<'r> {
+    /// All of them.
+    pub front: Front<'r>,
+    /// All that is reported of them: of every one for JSON and CSV, of the first [`FRONT_ROWS`] for tables.
+    pub opened: Vec<Ranked<'r>>,
 }
 
 /// Writes a report of sized areas; `width` is that of the terminal, in characters.
@@ -145,6 +172,7 @@ pub struct Rated<'a> {
 
 pub use backsolve::Backsolved;
 pub use check::Checks;
+pub use front::FRONT_ROWS;
 pub use rate::head_for;
 pub use structure::Strengthened;
 

@@ -15,6 +15,7 @@ use crate::units::{Length, Money};
 mod best;
 mod cure;
 mod dive;
+mod front;
 mod infeasible;
 mod plan;
 mod problem;
@@ -25,6 +26,7 @@ mod tradeoff;
 mod watch;
 
 pub use cure::{Cure, Cures, Opened, Opening, Relaxation, binds, cures, opened, relaxed};
+pub use front::{Front, PlanFront, Unbeaten, UnbeatenPlan, front, plan_front};
 pub use plan::{Asked as PlanAsked, Plan, Plans, plan};
 pub use rank::Criterion;
 pub use standing::{Placed, Ranked, UnderLaw, standing, under_every_law};

@@ -106,3 +106,15 @@ fn a_time_limit_is_a_time_above_zero() {
         assert!(message.contains("--time-limit") && message.contains(told), "{message}");
     }
 }
+
+/// What is not beaten is listed whole or not at all.
+#[test]
+fn an_ended_search_lists_no_front() {
+    let roof = slow_roof("front");
+    let output =
+        command(&["size", "--front", "--time-limit", "1 s", "--format", "json"], &roof).output().expect("starts");
+    assert!(document(&output)["areas"].as_array().expect("areas").iter().all(|area| area.get("front").is_none()));
+    let output = command(&["size", "--front", "--time-limit", "1 s"], &roof).output().expect("starts");
+    let text = String::from_utf8(output.stdout).expect("UTF-8");
+    assert!(text.contains("ended before it was known what is not beaten"), "{text}");
+}

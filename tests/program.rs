@@ -251,16 +251,18 @@ fn the_tradeoff_of_a_roof_without_a_layout_begins_where_it_has_one() {
 #[test]
 fn one_thread_and_two_give_the_same_bytes() {
     let binary = snapbox::cmd::cargo_bin!("brimline");
-    let run = |threads: &str| {
+    let run = |example: &str, threads: &str| {
         let mut command = Command::new(binary);
-        command.args(["size", "examples/harbour-depot.toml", "--format", "json", "--all", "--keep", "50"]);
+        command.args(["size", example, "--format", "json", "--all", "--keep", "50", "--front"]);
         command.current_dir(env!("CARGO_MANIFEST_DIR")).env("RAYON_NUM_THREADS", threads);
         command.output().expect("the program starts").stdout
     };
-    let one = run("1");
-    assert!(one.len() > 10_000);
-    assert_eq!(one, run("2"));
-    assert_eq!(one, run("2"));
+    for example in ["examples/harbour-depot.toml", "examples/three-sizes.toml"] {
+        let one = run(example, "1");
+        assert!(one.len() > 10_000);
+        assert_eq!(one, run(example, "2"));
+        assert_eq!(one, run(example, "2"));
+    }
 }
 
 #[test]
@@ -270,6 +272,63 @@ fn an_area_and_a_number_can_be_asked_for() {
     assert_eq!(areas.len(), 1);
     assert_eq!(areas[0]["name"], "south bay");
     assert_eq!(areas[0]["layouts"].as_array().map(Vec::len), Some(2));
+}
+
+/// In each area and for the plan: the first row costs what the cheapest does, no row beats another, and without the flag
+/// nothing of it is there.
+#[test]
+fn what_is_not_beaten_stands_beside_the_ranking() {
+    let document = json("three-sizes", &["--front"]);
+    let compared = |row: &serde_json::Value| {
+        ["cost", "worst_load_pa", "count", "width_m"].map(|key| row[key].as_f64().expect("a number"))
+    };
+    let beats =
+        |one: &[f64; 4], other: &[f64; 4]| one != other && one.iter().zip(other).all(|(one, other)| one <= other);
+    let check = |front: &serde_json::Value, cheapest: &serde_json::Value| {
+        let rows: Vec<[f64; 4]> = front.as_array().expect("a list").iter().map(compared).collect();
+        assert!(rows.len() > 100 && rows.is_sorted_by(|one, other| one[0] <= other[0]));
+        assert_eq!(Some(rows[0][0]), cheapest.as_f64());
+        assert!(!rows.iter().any(|row| rows.iter().any(|other| beats(other, row))));
+    };
+    for area in document["areas"].as_array().expect("areas") {
+        check(&area["front"], &area["layouts"][0]["cost"]);
+        for row in area["front"].as_array().expect("a list") {
+            let groups = row["groups"].as_array().expect("groups");
+            let count: u64 = groups.iter().map(|group| group["count"].as_u64().expect("a count")).sum();
+            assert_eq!(row["count"].as_u64(), Some(count));
+        }
+    }
+    check(&document["plan"]["front"], &document["plan"]["cost"]);
+    assert_eq!(document["plan"]["front_outcome"], "complete");
+    let names: Vec<_> =
+        document["plan"]["sizes"].as_array().expect("sizes").iter().map(|size| &size["width_m"]).collect();
+    for row in document["plan"]["front"].as_array().expect("a list") {
+        let layouts = row["layouts"].as_array().expect("layouts").iter();
+        let mut groups = layouts.flat_map(|layout| layout["groups"].as_array().expect("groups"));
+        assert!(groups.all(|group| names.contains(&&group["width_m"])), "{row}");
+    }
+    let without = json("three-sizes", &[]);
+    assert!(without["plan"].get("front").is_none() && without["areas"][0].get("front").is_none());
+    assert_eq!(without["areas"][0]["layouts"], document["areas"][0]["layouts"], "the ranking stays as it is");
+}
+
+/// The schedule has all rows of both lists, the table the first twenty of the second.
+#[test]
+fn the_schedule_says_in_which_list_a_layout_stands() {
+    let text = stdout(&brimline(&["size", "examples/mixed-pool.toml", "--front", "--format", "csv"]));
+    let front = json("mixed-pool", &["--front"])["areas"][0]["front"].as_array().map_or(0, Vec::len);
+    let mut rows = csv::Reader::from_reader(text.as_bytes());
+    let head = rows.headers().expect("a head").clone();
+    let place = |name: &str| head.iter().position(|known| known == name).expect(name);
+    let (list, rank, load) = (place("list"), place("rank"), place("worst_load_psf"));
+    let records: Vec<_> = rows.records().map(|record| record.expect("a record")).collect();
+    let of_front = || records.iter().filter(|record| &record[list] == "front");
+    let last = of_front().filter_map(|record| record[rank].parse::<usize>().ok()).max();
+    assert_eq!(last, Some(front));
+    assert!(front > 20 && of_front().all(|record| record[load].parse::<f64>().is_ok_and(|load| load > 0.0)));
+    assert!(records.iter().any(|record| &record[list] == "ranked"));
+    let table = stdout(&brimline(&["size", "examples/mixed-pool.toml", "--front"]));
+    assert!(table.contains(&format!("\n{} more, in the same order, stand in CSV and JSON.", front - 20)), "{table}");
 }
 
 #[test]

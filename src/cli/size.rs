@@ -4,8 +4,9 @@ use std::process::ExitCode;
 
 use rayon::prelude::*;
 
-use crate::report::{self, Sized, Strengthened};
-use crate::search::{self, Answer, Cures, Outcome, Stiffened};
+use crate::input::Project;
+use crate::report::{self, Format, Fronted, Sized, Strengthened};
+use crate::search::{self, Answer, Cures, Options, Outcome, Stiffened};
 
 use super::watching::Ending;
 use super::{Failure, OfProject};
@@ -35,6 +36,9 @@ pub(super) struct Args {
     /// Say of each area with layouts which single change would save most: more load, lower sills, one device more.
     #[arg(long)]
     binds: bool,
+    /// List the layouts that no other beats in all of cost, worst load, count and width; of plans those of the plan's sizes.
+    #[arg(long)]
+    front: bool,
     #[command(flatten)]
     ending: Ending,
 }
@@ -75,6 +79,11 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     };
     let stiffened = price.map_or(Vec::new(), stiffened);
     let strengthened: Vec<_> = stiffened.iter().map(|found| strengthened(found.as_ref())).collect();
+    let fronts = if args.front { fronts(args, &project, &options, &areas) } else { Vec::new() };
+    let unbeaten = plans.as_ref().filter(|_| args.front).and_then(|(asked, found)| {
+        let cheapest = found.as_ref()?.plans.first()?;
+        Some(search::plan_front(&project.roof, &options, *asked, &areas, cheapest))
+    });
     drop(watched);
     let sized = Sized {
         roof: &project.roof,
@@ -85,10 +94,25 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         laws: &laws,
         changes: &opened,
         structure: price.map(|price| (price, &strengthened[..])),
-        plans: plans.as_ref().map(|(asked, found)| report::Asked { asked: *asked, found: found.as_ref() }),
+        fronts: &fronts,
+        plans: plans.as_ref().map(|(asked, found)| report::Asked {
+            asked: *asked,
+            found: found.as_ref(),
+            front: unbeaten.as_ref(),
+        }),
     };
     args.of.deliver(|format, width| report::size(&sized, format, width))?;
     let without = answers.iter().any(|answer| answer.outcome.layouts().is_empty());
     let unplanned = plans.iter().any(|(_, found)| found.as_ref().is_none_or(|plans| plans.plans.is_empty()));
     Ok(if without || unplanned { ExitCode::from(1) } else { ExitCode::SUCCESS })
+}
+
+/// The layouts that are not beaten, with all that the form asked for says of them.
+fn fronts<'r>(args: &Args, project: &'r Project, options: &Options, areas: &[usize]) -> Vec<Fronted<'r>> {
+    let most = match Format::from(args.of.format) {
+        Format::Table | Format::Markdown => report::FRONT_ROWS,
+        Format::Json | Format::Csv => usize::MAX,
+    };
+    let fronts = search::front(&project.roof, options, areas);
+    fronts.into_iter().map(|front| Fronted { opened: front.opened(most), front }).collect()
 }

@@ -57,7 +57,7 @@ enum Form {
 }
 
 /// A free-surface law over a rectangular sill.
-#[derive(Clone, Copy, Debug)]
+#[derive(Clone, Copy, Debug, PartialEq)]
 enum Weir {
     Contracted,
     KindsvaterCarter { sill_height: Length },
@@ -160,6 +160,27 @@ impl Curve {
             }
             Form::Rated(rating) => rating.discharge(head),
         })
+    }
+
+    /// Whether it is known to pass, to the last bit, what another does at every head up to one: two openings of one width
+    /// under one law whose tops stay dry, or two devices of one table. Where it is not known, no.
+    pub fn is_alike_up_to(&self, other: &Self, head: Head) -> bool {
+        let head = head.length();
+        let dry = |top: &Option<Length>| top.is_none_or(|top| head <= top);
+        let forms = match (&self.form, &other.form) {
+            (Form::Shut, Form::Shut) => true,
+            (Form::Practice { width, height, .. }, Form::Practice { width: other, height: top, .. }) => {
+                width == other && dry(height) && dry(top)
+            }
+            // Where there is a top the orifice may govern even under it, by an integral in which the top plays no part yet.
+            (Form::Weir { weir, width, height }, Form::Weir { weir: law, width: other, height: top }) => {
+                (weir, width, height.is_some()) == (law, other, top.is_some()) && dry(height) && dry(top)
+            }
+            (Form::Rated(rating), Form::Rated(other)) => Arc::ptr_eq(rating, other),
+            _ => false,
+        };
+        let cap = |curve: &Self| curve.cap.map(|(cap, _)| cap);
+        forms && self.screen == other.screen && cap(self) == cap(other)
     }
 
     /// The most it can pass at any head; none where more head always gives more flow.

@@ -45,6 +45,7 @@ fn told<'a, 'r>(backsolved: &Backsolved<'a, 'r>) -> notes::Told<'a, 'r> {
         areas,
         layouts: backsolved.layouts.iter().map(|(checked, _)| (checked.given.area, &checked.standing)).collect(),
         searched: false,
+        fronts: false,
     }
 }
 

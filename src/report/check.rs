@@ -52,6 +52,7 @@ impl<'a, 'r> Checks<'a, 'r> {
             areas: self.areas.to_vec(),
             layouts: given.chain(best).collect(),
             searched: self.best.is_some(),
+            fronts: false,
         }
     }
 }

@@ -4,7 +4,7 @@ use std::ops::Not;
 
 use serde::Serialize;
 
-use crate::device::{Kind, Site};
+use crate::device::{Kind, Site, Size};
 use crate::roof::Roof;
 use crate::roof::layout::CaseState;
 use crate::search::{Answer, Least, Opened, Opening, Outcome, Placed, Ranked, UnderLaw};
@@ -12,6 +12,8 @@ use crate::units::{Length, Money};
 
 use super::words::{self, Words};
 use super::{Asked, Sized, notes, ranking, reasons};
+
+mod front;
 
 #[derive(Serialize)]
 struct Document<'a> {
@@ -53,6 +55,8 @@ struct Area<'a> {
     #[serde(skip_serializing_if = "Option::is_none")]
     stiffened: Option<Stiffened<'a>>,
     layouts: Vec<Layout<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    front: Option<Vec<front::Row<'a>>>,
 }
 
 /// The area with its load limit raised to where openings and strength together cost least.
@@ -88,6 +92,8 @@ struct Plan<'a> {
     layouts: Vec<PlanLayout<'a>>,
     #[serde(skip_serializing_if = "Vec::is_empty")]
     by_sizes: Vec<BySizes>,
+    #[serde(flatten)]
+    front: Option<front::Plans<'a>>,
 }
 
 #[derive(Serialize)]
@@ -215,22 +221,14 @@ fn plans<'a>(sized: &Sized<'a, '_>, asked: &Asked<'a, '_>) -> Vec<Plan<'a>> {
     let by_sizes = || found.by_sizes.iter().map(|&(sizes, cost)| BySizes { sizes, cost: cost.map(amount) }).collect();
     if found.plans.is_empty() {
         let (sizes, layouts) = (Vec::new(), Vec::new());
-        return vec![Plan { outcome: "infeasible", cost: None, bound: None, sizes, layouts, by_sizes: by_sizes() }];
+        let by_sizes = by_sizes();
+        return vec![Plan { outcome: "infeasible", cost: None, bound: None, sizes, layouts, by_sizes, front: None }];
     }
     let plan = |(index, plan): (usize, &'a crate::search::Plan<'_>)| Plan {
         outcome: "optimal",
         cost: Some(plan.cost.amount()),
         bound: Some(plan.cost.amount()),
-        sizes: plan
-            .sizes
-            .iter()
-            .map(|size| PlanSize {
-                device: &size.tag,
-                width_m: size.device.width().map(Length::m),
-                height_m: size.device.height().map(Length::m),
-                diameter_m: size.device.diameter().map(Length::m),
-            })
-            .collect(),
+        sizes: plan.sizes.iter().map(|size| plan_size(size)).collect(),
         layouts: sized
             .answers
             .iter()
@@ -246,8 +244,18 @@ fn plans<'a>(sized: &Sized<'a, '_>, asked: &Asked<'a, '_>) -> Vec<Plan<'a>> {
             })
             .collect(),
         by_sizes: if index == 0 { by_sizes() } else { Vec::new() },
+        front: asked.front.filter(|_| index == 0).map(|found| front::plans(sized, found)),
     };
     found.plans.iter().enumerate().map(plan).collect()
+}
+
+fn plan_size(size: &Size) -> PlanSize<'_> {
+    PlanSize {
+        device: &size.tag,
+        width_m: size.device.width().map(Length::m),
+        height_m: size.device.height().map(Length::m),
+        diameter_m: size.device.diameter().map(Length::m),
+    }
 }
 
 fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
@@ -283,6 +291,10 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
         cures_nothing: cures
             .map_or(Vec::new(), |opened| opened.useless.iter().map(|&change| super::cures::amount(change).0).collect()),
         layouts: layouts.collect(),
+        front: sized
+            .front_of(answer.area)
+            .filter(|fronted| fronted.front.finished)
+            .map(|fronted| front::rows(sized, fronted)),
     }
 }
 

@@ -28,6 +28,8 @@ pub(super) struct Told<'a, 'r> {
     pub(super) layouts: Vec<(usize, &'a Ranked<'r>)>,
     /// Whether they were searched for; else they were given.
     pub(super) searched: bool,
+    /// Whether layouts that are not beaten are among them.
+    pub(super) fronts: bool,
 }
 
 fn layouts<'a, 'r>(told: &Told<'a, 'r>) -> impl Iterator<Item = &'a Ranked<'r>> {
@@ -164,6 +166,14 @@ pub(super) fn assumptions(told: &Told<'_, '_>) -> Vec<String> {
         ));
     }
     lines.push("In a window all groups rise together, each stopping at the top of its own range.".into());
+    if told.fronts {
+        lines.push(
+            "Layouts and plans that are not beaten stand at their lowest set heights, where the load is least. Load is the \
+             greatest over the cases; of layouts equal in all that is compared the one with fewest sizes is listed, then the \
+             first in catalog order."
+                .into(),
+        );
+    }
     // What is asked of a search says nothing of layouts that were given.
     let concerns = |assumed: &&Assumed| told.searched || !assumed.default.key.starts_with("search.");
     for assumed in told.assumed.iter().filter(concerns) {

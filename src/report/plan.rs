@@ -5,7 +5,7 @@ use crate::units::Money;
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list};
-use super::{Asked, Sized};
+use super::{Asked, Sized, front};
 
 pub(super) fn blocks(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, words: Words, blocks: &mut Vec<Block>) {
     blocks.push(Block::Heading("The whole roof".into()));
@@ -28,6 +28,9 @@ pub(super) fn blocks(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, words: Words,
             format!("{} ({} more): {}", words::money(plan.cost), words::money(more), sizes(plan, words))
         };
         blocks.push(Block::List(others.iter().map(line).collect()));
+    }
+    if let Some(front) = asked.front {
+        front::plans(sized, front, &sizes(first, words), words, blocks);
     }
 }
 

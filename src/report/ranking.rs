@@ -8,7 +8,7 @@ use crate::units::{Area, Length, Load};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Sized, cures, notes, plan, reasons, work};
+use super::{Sized, cures, front, notes, plan, reasons, work};
 
 /// The mark behind a layout that leaves the published range of its law.
 const BEYOND: &str = "\u{2020}";
@@ -113,6 +113,9 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
         }
         layouts => {
             ranking(sized, answer.area, layouts, words, blocks);
+            if let Some(fronted) = sized.front_of(answer.area) {
+                front::area(sized, fronted, words, blocks);
+            }
             if let Some(laws) = sized.laws_of(answer.area).filter(|laws| !laws.is_empty()) {
                 every_law(roof, answer.area, &layouts[0], laws, words, blocks);
             }
@@ -418,7 +421,12 @@ fn every_law(roof: &Roof, area: usize, first: &Ranked<'_>, laws: &[UnderLaw], wo
 }
 
 pub(super) fn marked(layout: &Ranked<'_>, words: Words) -> String {
-    let mut text = words.layout(layout);
+    words.layout(layout) + &marks_of(layout)
+}
+
+/// The marks that stand behind a layout.
+pub(super) fn marks_of(layout: &Ranked<'_>) -> String {
+    let mut text = String::new();
     if !layout.beyond.is_empty() {
         text += &format!(" {BEYOND}");
     }

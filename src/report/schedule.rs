@@ -5,7 +5,7 @@ use crate::search::{Answer, Outcome, Placed, Ranked};
 use crate::units::Length;
 
 use super::words::{self, Words};
-use super::{Sized, plain, reasons, written};
+use super::{Sized, front, plain, reasons, written};
 
 pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
     let words = Words(sized.roof.system);
@@ -33,18 +33,23 @@ pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
         "beyond_range".into(),
         "why".into(),
     ];
-    let mut rows = vec![head.to_vec()];
+    let compared = || format!("worst_load_{load},worst_case,devices,total_width_{small},list");
+    let mut head = head.to_vec();
+    if !sized.fronts.is_empty() {
+        head.extend(compared().split(',').map(str::to_string));
+    }
+    let mut rows = vec![head.clone()];
     for answer in sized.answers {
         let area = &sized.roof.areas[answer.area].name;
-        for (index, layout) in answer.outcome.layouts().iter().enumerate() {
-            let row = |placed| row(sized, answer, index + 1, layout, placed, words);
-            rows.extend(layout.groups.iter().map(row));
+        rows.extend(listed(sized, answer, answer.outcome.layouts(), "ranked", words));
+        if let Some(fronted) = sized.front_of(answer.area) {
+            rows.extend(listed(sized, answer, &fronted.opened, "front", words));
         }
         if answer.outcome.layouts().is_empty() {
             let mut row = vec![String::new(); head.len()];
             row[0].clone_from(area);
             row[1] = words::outcome(&answer.outcome).into();
-            row[head.len() - 1] = match &answer.outcome {
+            row[WHY] = match &answer.outcome {
                 Outcome::Infeasible(why) => reasons::infeasible(sized, answer.area, why, words),
                 Outcome::Optimal(_) | Outcome::Stopped { .. } => reasons::stopped(None, None, words),
             };
@@ -52,6 +57,42 @@ pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
         }
     }
     written(&rows)
+}
+
+/// Place of the column that says why there is no layout.
+const WHY: usize = 20;
+
+/// The rows of a list of layouts; where layouts that are not beaten are listed too, with what those are compared by.
+fn listed(
+    sized: &Sized<'_, '_>,
+    answer: &Answer<'_>,
+    layouts: &[Ranked<'_>],
+    list: &str,
+    words: Words,
+) -> Vec<Vec<String>> {
+    let mut rows = Vec::new();
+    for (index, layout) in layouts.iter().enumerate() {
+        let compared = if sized.fronts.is_empty() { Vec::new() } else { compared(sized, layout, list, words) };
+        for placed in &layout.groups {
+            let row = row(sized, answer, index + 1, layout, placed, words);
+            rows.push(row.into_iter().chain(compared.iter().cloned()).collect());
+        }
+    }
+    rows
+}
+
+/// Worst load and its case, devices and clear width of a whole layout, and the list it stands in.
+fn compared(sized: &Sized<'_, '_>, layout: &Ranked<'_>, list: &str, words: Words) -> Vec<String> {
+    let groups = || layout.groups.iter().map(|placed| placed.group);
+    let width = groups().map(|group| group.size.clear_width().nm() * i64::from(group.count)).sum();
+    let worst = front::worst(layout);
+    vec![
+        worst.map_or(String::new(), |(load, _)| plain(words.in_load_unit(load), 4)),
+        worst.map_or(String::new(), |(_, case)| sized.roof.cases[case].name.clone()),
+        groups().map(|group| group.count).sum::<u32>().to_string(),
+        plain(words.small(Length::from_nm(width)), 4),
+        list.to_string(),
+    ]
 }
 
 fn row(

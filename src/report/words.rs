@@ -204,9 +204,14 @@ impl Words {
         }
     }
 
+    /// Decimals that a computed load is shown with.
+    pub(super) fn load_decimals(self) -> usize {
+        if self.us() { 1 } else { 2 }
+    }
+
     /// A computed load without its unit.
     pub(super) fn bare_load(self, load: Load) -> String {
-        grouped(self.in_load_unit(load), if self.us() { 1 } else { 2 })
+        grouped(self.in_load_unit(load), self.load_decimals())
     }
 
     /// A computed load.
@@ -251,14 +256,22 @@ impl Words {
 
     /// All groups of a layout; a set height that they share is said once.
     pub(super) fn layout(self, layout: &Ranked<'_>) -> String {
-        let groups: Vec<_> = layout.groups.iter().map(|placed| placed.group).collect();
+        self.groups(&layout.groups.iter().map(|placed| placed.group).collect::<Vec<_>>())
+    }
+
+    /// Groups of one layout.
+    pub(super) fn groups(self, groups: &[Group<'_>]) -> String {
         let shared = groups.iter().all(|group| group.set_height.nm() == groups[0].set_height.nm());
         if groups.len() < 2 || !shared {
             return groups.iter().map(|group| self.group(group)).collect::<Vec<_>>().join(" + ");
         }
-        let sizes: Vec<_> =
-            groups.iter().map(|group| format!("{} of {}", group.count, self.name(group.size))).collect();
-        format!("{}, all at {}", sizes.join(" + "), self.size(groups[0].set_height))
+        format!("{}, all at {}", self.sizes(groups), self.size(groups[0].set_height))
+    }
+
+    /// Groups of one layout, their set heights left out.
+    pub(super) fn sizes(self, groups: &[Group<'_>]) -> String {
+        let one = |group: &Group<'_>| format!("{} of {}", group.count, self.name(group.size));
+        groups.iter().map(one).collect::<Vec<_>>().join(" + ")
     }
 
     /// The windows of a layout's groups: one where all are alike, their common rise where only their starts are not, else each

@@ -44,7 +44,7 @@ impl Found {
         self.sums
     }
 
-    fn new(groups: Groups, sums: Sums, family: u128) -> Self {
+    pub(super) fn new(groups: Groups, sums: Sums, family: u128) -> Self {
         Self {
             groups,
             sums,

@@ -46,6 +46,7 @@ impl Candidate<'_> {
 }
 
 /// One area, the cases it is searched for, and what is asked of a layout.
+#[derive(Debug)]
 pub(super) struct Problem<'r> {
     pub(super) situations: Vec<Situation<'r>>,
     /// The highest level that each situation allows, to any layout.
