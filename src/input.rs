@@ -3,6 +3,7 @@
 use std::path::Path;
 
 use crate::device::Size;
+use crate::review::Tolerances;
 use crate::roof::{Given, Roof};
 use crate::search::{Options, PlanAsked, Structure};
 
@@ -23,6 +24,7 @@ mod sheet;
 mod shipped;
 mod start;
 mod structure;
+mod tolerance;
 
 pub use defaults::{DEFAULTS, Default};
 pub use fault::{Fault, Faults, Place, Severity, Source, Span};
@@ -41,6 +43,8 @@ pub struct Project {
     pub structure: Option<Structure>,
     /// The layouts that the project gives, in the order of the files.
     pub layouts: Vec<Given>,
+    /// How far each input may be off, for the worse.
+    pub tolerances: Tolerances,
     /// What was taken where the files say nothing.
     pub assumed: Vec<Assumed>,
     /// What in the files is probably not meant; they can be used all the same.

@@ -24,6 +24,7 @@ mod ranking;
 mod rate;
 mod reasons;
 mod schedule;
+mod sensitivity;
 mod structure;
 mod tradeoff;
 mod words;

@@ -14,8 +14,10 @@ use crate::search::{self, Options, Ranked};
 use crate::units::Length;
 
 mod backsolve;
+mod sensitivity;
 
 pub use backsolve::{Solved, Unknown, WIDEST, backsolve};
+pub use sensitivity::{Effect, Input, Sensitivity, Tolerances, sensitivity};
 
 /// A given layout and how it stands.
 #[derive(Clone, Debug)]

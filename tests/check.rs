@@ -440,3 +440,64 @@ fn one_opening_backwards_by_hand() {
     let up = solved(100.0 / 4.0 / gpm_per_ft2, "set-height", "set_heights_up_m") / 0.0254;
     assert_relative_eq!(up, 0.979, max_relative = 1e-3);
 }
+
+/// Each step of a sensitivity, made in the files themselves, gives the load that is told; the corner is the worst of all
+/// combinations of the steps.
+#[test]
+fn steps_and_their_corner_are_what_the_changed_files_give() {
+    // Tenths of rain and roof, half inches of width and sill, a tenth of discharge: one bit each, and devices blocked.
+    let file = |bits: u32, blocked: u32| {
+        let by = |bit: u32, if_set: f64, otherwise: f64| if bits >> bit & 1 == 1 { if_set } else { otherwise };
+        format!(
+            r#"title = "given"
+units = "us"
+catalogs = ["devices.toml"]
+storm = {{ intensity = "{} in/h" }}
+limit = {{ load = "29 psf" }}
+tolerance = {{ rain = 0.1, area = 0.1, width = "0.5 in", sill = "0.5 in", discharge = 0.1 }}
+case = [{{ name = "as designed", discharge = {}, blocked = {blocked} }}]
+area = [{{ name = "a", area = "{} ft2" }}]
+[[layout]]
+name = "x"
+area = "a"
+groups = [{{ kind = "open scupper", width = "{} in", count = 3, set_height = "{} in" }},
+          {{ device = "OD", count = 1, set_height = "{} in" }}]
+"#,
+            by(0, 5.5, 5.0),
+            by(4, 0.9, 1.0),
+            by(1, 4400.0, 4000.0),
+            by(2, 9.5, 10.0),
+            by(3, 2.5, 2.0),
+            by(3, 2.0, 1.5)
+        )
+    };
+    let read = |text: &str, more: &[&str]| -> Value {
+        let folder = Folder::new("steps").with("drain.csv", DRAIN).with("roof.toml", text);
+        let output = folder.run(&[&["check", "roof.toml", "--format", "json"], more].concat());
+        serde_json::from_slice(&output.stdout).expect("JSON")
+    };
+    let load = |text: &str| {
+        let document = read(text, &[]);
+        document["areas"][0]["layouts"][0]["cases"][0]["load_pa"].as_f64().expect("a load")
+    };
+    let told = read(&file(0, 0), &["--sensitivity"]);
+    let told = &told["areas"][0]["layouts"][0]["sensitivity"];
+    let of = |input: &str| {
+        let steps = told["steps"].as_array().expect("steps");
+        steps.iter().find(|step| step["input"] == input).unwrap_or_else(|| panic!("no step of {input}: {told}"))
+    };
+    for (bit, input) in ["rain", "area", "clear width", "sills", "discharge"].into_iter().enumerate() {
+        let changed = load(&file(1 << bit, 0));
+        assert_relative_eq!(of(input)["load_pa"].as_f64().expect("a load"), changed, max_relative = 1e-9);
+        assert!(changed > told["load_pa"].as_f64().expect("a load"), "{input} for the worse");
+        // Past the steps that hold, the limit of 29 psf is broken: at one step it holds exactly where they are one or more.
+        let holds = of(input)["steps_that_hold"].as_f64().expect("a number");
+        assert_eq!(changed <= 29.0 * 47.880_26, holds >= 1.0, "{input}: {holds} steps hold");
+    }
+    assert_relative_eq!(of("blocked + 1")["load_pa"].as_f64().expect("a load"), load(&file(0, 1)), max_relative = 1e-9);
+    let worst = (0..32).map(|bits| load(&file(bits, 0))).fold(0.0, f64::max);
+    assert_relative_eq!(told["all_at_once"]["load_pa"].as_f64().expect("a load"), worst, max_relative = 1e-9);
+    let loads: Vec<f64> =
+        told["steps"].as_array().expect("steps").iter().filter_map(|step| step["load_pa"].as_f64()).collect();
+    assert!(loads.is_sorted_by(|a, b| a >= b), "the greatest first: {loads:?}");
+}

@@ -2,6 +2,8 @@
 
 use std::process::ExitCode;
 
+use rayon::prelude::*;
+
 use crate::report::{self, Checks};
 use crate::review;
 use crate::search;
@@ -22,6 +24,10 @@ pub(super) struct Args {
     /// Set the best layout that a search finds beside the given ones.
     #[arg(long)]
     beside_best: bool,
+    /// Show what a step of each input does to each layout's load, the greatest first, and all of them at once; the steps are
+    /// those of [tolerance].
+    #[arg(long)]
+    sensitivity: bool,
 }
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
@@ -35,7 +41,15 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         None
     };
     let checked = review::check(&project.roof, &project.options, &given);
+    let sensitivities: Option<Vec<_>> = args.sensitivity.then(|| {
+        let one = |checked: &review::Checked<'_>| {
+            let case = checked.standing.case;
+            review::sensitivity(&project.roof, &project.options, checked.given, &project.tolerances, case)
+        };
+        checked.par_iter().map(one).collect()
+    });
     let checks = Checks {
+        sensitivities: sensitivities.as_deref().map(|found| (found, &project.tolerances)),
         roof: &project.roof,
         options: &project.options,
         assumed: &project.assumed,

@@ -3,6 +3,7 @@
 use std::path::Path;
 
 use crate::device::{Choice, Kind, Law};
+use crate::review::Tolerances;
 use crate::roof::{Case, Limits, Roof, Storm, demand};
 use crate::search::{Criterion, Options, PlanAsked, Watch};
 use crate::units::{Dimension, Intensity, Length, Money, ReturnPeriod, System, Time};
@@ -13,7 +14,7 @@ use super::fault::{Fault, Faults, Log, Span};
 use super::grid::{self, Least};
 use super::section::{Cell, Keys, Reader, Section, optional};
 use super::setting::{Cases, GivenCase, MOST_DEVICES, Search, Setting, is_named, limits_of, read_count, unique};
-use super::{Assumed, Project, area, file, flow, layout, structure};
+use super::{Assumed, Project, area, file, flow, layout, structure, tolerance};
 
 static PROJECT: Keys = Keys {
     table: "the project",
@@ -27,6 +28,7 @@ static PROJECT: Keys = Keys {
         "flow",
         "search",
         "structure",
+        "tolerance",
         "case",
         "area",
         "layout",
@@ -109,6 +111,11 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         .section("structure", &structure::STRUCTURE)
         .zip(system)
         .map(|(section, system)| structure::read(&section, system, &mut assumed));
+    let tolerances = system.map(|system| {
+        section
+            .section("tolerance", &tolerance::TOLERANCE)
+            .map_or_else(|| Some(Tolerances::usual(system)), |section| tolerance::read(&section, system))
+    });
     // A fault above does not keep the areas from being read: whatever is at fault in any file is told in one run.
     let cases = read_cases(section, &mut assumed);
     let searched = section.get("layout").is_none() && section.get("schedule").is_none();
@@ -138,6 +145,7 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         options: search.options()?,
         plan,
         structure,
+        tolerances: tolerances??,
         layouts: layouts?,
         assumed,
         warnings: Faults::default(),

@@ -4,16 +4,16 @@ use serde::Serialize;
 
 use crate::device::Place;
 use crate::input::Assumed;
-use crate::review::{Checked, Failing};
+use crate::review::{Checked, Effect, Failing, Input, Sensitivity, Tolerances};
 use crate::roof::layout::Group;
 use crate::roof::{Roof, Situation};
 use crate::search::{Answer, Options, Ranked};
-use crate::units::{Length, Money};
+use crate::units::{Length, Load, Money};
 
 use super::json;
 use super::page::{self, Block, Table};
 use super::words::{self, Words, list};
-use super::{Format, notes, plain, ranking, written};
+use super::{Format, notes, plain, ranking, sensitivity, written};
 
 /// What a report of given layouts is made of.
 #[derive(Clone, Copy, Debug)]
@@ -28,6 +28,8 @@ pub struct Checks<'a, 'r> {
     pub areas: &'a [usize],
     /// The layouts, those of one area in the order in which they are reported.
     pub checked: &'a [Checked<'r>],
+    /// What a step of each input does to each layout, in the order of the layouts, and the steps; where that was asked for.
+    pub sensitivities: Option<(&'a [Sensitivity], &'a Tolerances)>,
     /// The best layouts of the areas that a search finds, where that was asked for.
     pub best: Option<&'a [Answer<'r>]>,
 }
@@ -116,6 +118,14 @@ fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut 
     }
     let named: Vec<_> = checked.iter().map(|checked| (checked.given.name.clone(), &checked.standing)).collect();
     blocks.extend(ranking::beside(roof, area, &named, words));
+    blocks.extend(sensitivities(checks, area, words));
+}
+
+/// What a step of each input does to the layouts of an area.
+fn sensitivities(checks: &Checks<'_, '_>, area: usize, words: Words) -> Vec<Block> {
+    let Some((found, tolerances)) = checks.sensitivities else { return Vec::new() };
+    let here = checks.checked.iter().zip(found).filter(|(checked, _)| checked.given.area == area);
+    here.flat_map(|(checked, found)| sensitivity::blocks(checks.roof, checked, found, tolerances, words)).collect()
 }
 
 fn table(checks: &Checks<'_, '_>, area: usize, checked: &[&Checked<'_>], words: Words) -> Table {
@@ -233,12 +243,12 @@ pub(super) fn failing_in_words(roof: &Roof, checked: &Checked<'_>, failing: &Fai
 }
 
 fn limit_passed(situation: &Situation<'_>, water: &crate::roof::layout::Water, case: &str, words: Words) -> String {
-    use crate::roof::LimitKind::{Depth, Load, Parapet};
+    use crate::roof::LimitKind;
     let limit = words.limit(water.governing.limit, situation.limits, situation.parapet);
     match water.governing.limit {
-        Load => format!("load {} in {case}, the limit is {limit}", words.load(water.load)),
-        Depth => format!("depth {} in {case}, the limit is {limit}", words.depth(water.depth())),
-        Parapet => format!("water up to {} in {case}, {limit}", words.depth(water.level)),
+        LimitKind::Load => format!("load {} in {case}, the limit is {limit}", words.load(water.load)),
+        LimitKind::Depth => format!("depth {} in {case}, the limit is {limit}", words.depth(water.depth())),
+        LimitKind::Parapet => format!("water up to {} in {case}, {limit}", words.depth(water.level)),
     }
 }
 
@@ -270,7 +280,7 @@ fn up_the_slope(roof: &Roof, checked: &Checked<'_>, words: Words) -> Option<Stri
     let ponding = area.ponding_head.unwrap_or(Length::ZERO);
     let load = |at: Length| {
         let depth = rise.depth(water.level, at);
-        words.load(if depth > Length::ZERO { crate::roof::load_of(depth + ponding) } else { crate::units::Load::ZERO })
+        words.load(if depth > Length::ZERO { crate::roof::load_of(depth + ponding) } else { Load::ZERO })
     };
     let reach = rise.extent(water.level);
     let far = if reach < rise.distance {
@@ -374,6 +384,24 @@ struct OfLayout<'a> {
     cases: Vec<json::Case<'a>>,
     sills_could_rise_m: Option<f64>,
     fails: Vec<String>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    sensitivity: Option<OfSensitivity<'a>>,
+}
+
+#[derive(Serialize)]
+struct OfSensitivity<'a> {
+    case: &'a str,
+    load_pa: Option<f64>,
+    steps: Vec<OfStep<'a>>,
+    all_at_once: OfStep<'a>,
+}
+
+#[derive(Serialize)]
+struct OfStep<'a> {
+    input: String,
+    load_pa: Option<f64>,
+    breaks_in: Option<&'a str>,
+    steps_that_hold: Option<f64>,
 }
 
 #[derive(Serialize)]
@@ -387,7 +415,7 @@ struct OfBest<'a> {
 fn document<'a>(checks: &Checks<'a, '_>) -> String {
     let words = Words(checks.roof.system);
     let roof = checks.roof;
-    let layout = |checked: &'a Checked<'_>| {
+    let layout = |(place, checked): (usize, &'a Checked<'_>)| {
         let (area, standing) = (checked.given.area, &checked.standing);
         let failing = |failing| failing_in_words(roof, checked, failing, words);
         OfLayout {
@@ -399,6 +427,7 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
             cases: json::cases(roof, area, standing),
             sills_could_rise_m: checked.passes().then(|| window_left(standing).m()),
             fails: checked.failings.iter().map(failing).collect(),
+            sensitivity: checks.sensitivities.map(|(found, _)| of_sensitivity(roof, &found[place])),
         }
     };
     let best = |area: usize, best: &'a Ranked<'_>| OfBest {
@@ -409,8 +438,8 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
     };
     let told = checks.told();
     let mut by_area: Vec<Vec<OfLayout<'a>>> = roof.areas.iter().map(|_| Vec::new()).collect();
-    for checked in checks.checked {
-        by_area[checked.given.area].push(layout(checked));
+    for (place, checked) in checks.checked.iter().enumerate() {
+        by_area[checked.given.area].push(layout((place, checked)));
     }
     let area = |&area: &usize| OfArea {
         name: &roof.areas[area].name,
@@ -428,4 +457,23 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
     let mut text = serde_json::to_string_pretty(&document).unwrap_or_default();
     text.push('\n');
     text
+}
+
+fn of_sensitivity<'a>(roof: &'a Roof, found: &Sensitivity) -> OfSensitivity<'a> {
+    let step = |effect: &Effect| OfStep {
+        input: match effect.input {
+            Some(Input::Blocked(more)) => format!("blocked + {more}"),
+            Some(Input::Law(law)) => law.name().into(),
+            _ => sensitivity::input(effect),
+        },
+        load_pa: effect.load.map(Load::pa),
+        breaks_in: effect.breaks.map(|case| roof.cases[case].name.as_str()),
+        steps_that_hold: effect.holds,
+    };
+    OfSensitivity {
+        case: &roof.cases[found.case].name,
+        load_pa: found.load.map(Load::pa),
+        steps: found.effects.iter().map(step).collect(),
+        all_at_once: step(&found.corner),
+    }
 }

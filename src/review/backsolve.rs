@@ -221,7 +221,7 @@ impl Back<'_> {
 
 /// The greatest value from `low` on at which there is something to spare; none where there is nothing even at `low`. `spare`
 /// falls as the value rises.
-fn greatest(spare: impl Fn(f64) -> f64, low: f64, high: f64) -> Option<f64> {
+pub(super) fn greatest(spare: impl Fn(f64) -> f64, low: f64, high: f64) -> Option<f64> {
     if spare(high) >= 0.0 {
         return Some(high);
     }
@@ -232,11 +232,12 @@ fn greatest(spare: impl Fn(f64) -> f64, low: f64, high: f64) -> Option<f64> {
 }
 
 /// Whether a device has a width that may be made otherwise: that of an opening, not of a tested body or a pipe.
-fn is_wide(device: &Device) -> bool {
+pub(super) fn is_wide(device: &Device) -> bool {
     matches!(device, Device::Open { .. } | Device::Closed { .. } | Device::Edge { .. })
 }
 
-fn widened(size: &Size, by: Length) -> Size {
+/// The size with its opening so much wider, below zero narrower.
+pub(super) fn widened(size: &Size, by: Length) -> Size {
     let mut size = size.clone();
     if let Device::Open { width } | Device::Closed { width, .. } | Device::Edge { width } = &mut size.device {
         *width = *width + by;
