@@ -325,4 +325,4 @@ impl Dive<'_, '_> {
 }
 
 /// Relative slack by which every bound is loosened; rounding in a sum of a few flows is far below it.
-const SLACK: f64 = 1e-9;
+pub(super) const SLACK: f64 = 1e-9;

@@ -17,10 +17,20 @@ use super::problem::Problem;
 use super::rank::{Criterion, Order};
 use super::{Options, Ranked, ranked};
 
+mod bound;
+mod costs;
+mod ending;
+mod field;
+mod first;
+mod kept;
 mod pairs;
+mod regrets;
 mod sets;
+mod walk;
 
-use pairs::Field;
+use ending::Ending;
+use field::Field;
+use sets::{Search, SizeSet};
 
 /// What is asked of a plan.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -62,33 +72,54 @@ const TABLE_TO: u32 = 6;
 /// For a mix of three, for which no plan is searched: input refuses it.
 pub fn plan<'r>(roof: &'r Roof, options: &Options, asked: Asked, areas: &[usize]) -> Option<Plans<'r>> {
     assert!(options.mix <= 2, "a plan is of layouts with one or two groups");
-    let problems: Vec<Problem<'r>> =
-        areas.par_iter().map(|&area| by_cost(Problem::new(roof, area, options).0)).collect();
-    let priced =
-        problems.iter().flat_map(|problem| &problem.candidates).all(|candidate| candidate.size.price.is_some());
-    if !priced {
+    let field = Field::new(roof, options, areas);
+    if !field.is_priced() {
         return None;
     }
-    let field = Field::new(roof, &problems);
-    let costs = field.costs(&problems);
+    if asked.sizes.is_none() && asked.size_price == Money::default() {
+        return Some(each_alone(roof, options, areas));
+    }
+    let never = || false;
+    let costs = pairs::costs(&field, &Ending::new(&never))?;
     let price = asked.size_price.millionths() as f64;
-    let most = asked.sizes.map_or(field.sizes(), |sizes| sizes as usize);
-    let sets = sets::best(&costs, price, most, options.keep);
-    let plans = sets.iter().filter_map(|set| realised(roof, &problems, &field, set)).collect();
+    let mut search = Search::new(&costs, price, &never);
+    let money = |cost: f64| Money::from_millionths(cost as i64);
+    let (mut by_sizes, mut plans) = (Vec::new(), None);
     let table_to =
-        asked.sizes.map_or(TABLE_TO, |sizes| sizes + 1).min(u32::try_from(field.sizes()).unwrap_or(u32::MAX));
-    let by_sizes = (1..=table_to)
-        .map(|most| {
-            // The plan itself is the row of as many sizes as were asked for.
-            let own = asked.sizes == Some(most);
-            let best = if own { sets.first().cloned() } else { sets::best(&costs, price, most as usize, 1).pop() };
-            (most, best.map(|set| Money::from_millionths(set.cost as i64)))
-        })
-        .collect();
-    let everyone: Vec<usize> = (0..field.sizes()).collect();
-    let alone = costs.by_area(&everyone).iter().sum::<f64>();
-    let alone = alone.is_finite().then(|| Money::from_millionths(alone as i64));
-    Some(Plans { plans, by_sizes, alone })
+        asked.sizes.map_or(TABLE_TO, |sizes| sizes + 1).min(u32::try_from(field.sizes.len()).unwrap_or(u32::MAX));
+    for most in 1..=table_to {
+        // The plan itself is the row of as many sizes as were asked for.
+        let own = asked.sizes == Some(most);
+        let found = search.best(most as usize, if own { options.keep } else { 1 });
+        by_sizes.push((most, found.sets.first().map(|set| money(set.cost))));
+        if own {
+            plans = Some(found);
+        }
+    }
+    let most = asked.sizes.map_or(field.sizes.len(), |sizes| sizes as usize);
+    let found = plans.unwrap_or_else(|| search.best(most, options.keep));
+    let realised = |set: &SizeSet| {
+        let sizes: Vec<usize> = set.sizes.iter().map(|&size| field.sizes[size]).collect();
+        realised(roof, options, areas, &sizes, money(set.cost))
+    };
+    let plans = found.sets.iter().filter_map(realised).collect();
+    let alone = costs.least().iter().sum::<f64>();
+    Some(Plans { plans, by_sizes, alone: alone.is_finite().then(|| money(alone)) })
+}
+
+/// The plan where sizes are neither limited nor priced: each area as if it were alone.
+fn each_alone<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Plans<'r> {
+    let cheapest = |&area: &usize| cheapest(&by_cost(Problem::new(roof, area, options).0));
+    let Some(layouts) = areas.par_iter().map(cheapest).collect::<Option<Vec<Ranked<'r>>>>() else {
+        return Plans { plans: Vec::new(), by_sizes: Vec::new(), alone: None };
+    };
+    let cost: Money = layouts.iter().filter_map(|layout| layout.cost).sum();
+    let stands = |size: &&Size| {
+        let mut groups = layouts.iter().flat_map(|layout| &layout.groups);
+        groups.any(|placed| std::ptr::eq(placed.group.size, *size))
+    };
+    let sizes = roof.sizes.iter().filter(stands).collect();
+    Plans { plans: vec![Plan { cost, sizes, layouts }], by_sizes: Vec::new(), alone: Some(cost) }
 }
 
 /// The problem with its layouts ranked by cost first, then as asked.
@@ -99,17 +130,18 @@ fn by_cost(mut problem: Problem<'_>) -> Problem<'_> {
     problem
 }
 
+/// The first layout of an area.
+fn cheapest<'r>(problem: &Problem<'r>) -> Option<Ranked<'r>> {
+    let found = dive(problem, Aim::Rank, Best::new(1, false)).into_found();
+    found.first().map(|found| ranked(problem, found))
+}
+
 /// The plan of a set of sizes: in each area the first layout of those sizes by cost, then by the rank asked for.
-fn realised<'r>(roof: &'r Roof, problems: &[Problem<'r>], field: &Field, set: &sets::SizeSet) -> Option<Plan<'r>> {
-    let indices: Vec<usize> = set.sizes.iter().map(|&size| field.size(size)).collect();
-    let layout = |problem: &Problem<'r>| {
-        let restricted = problem.with_sizes(&indices);
-        let found = dive(&restricted, Aim::Rank, Best::new(1, false)).into_found();
-        found.first().map(|found| ranked(&restricted, found))
-    };
+fn realised<'r>(roof: &'r Roof, options: &Options, areas: &[usize], sizes: &[usize], cost: Money) -> Option<Plan<'r>> {
+    let layout = |&area: &usize| cheapest(&by_cost(Problem::of_sizes(roof, area, options, sizes)));
     Some(Plan {
-        cost: Money::from_millionths(set.cost as i64),
-        sizes: indices.iter().map(|&index| &roof.sizes[index]).collect(),
-        layouts: problems.par_iter().map(layout).collect::<Option<_>>()?,
+        cost,
+        sizes: sizes.iter().map(|&size| &roof.sizes[size]).collect(),
+        layouts: areas.par_iter().map(layout).collect::<Option<_>>()?,
     })
 }
