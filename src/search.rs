@@ -6,6 +6,7 @@
 //! depend on the number of threads, and equal input gives equal answers to the last bit.
 
 use rayon::prelude::*;
+use rustc_hash::FxHashMap;
 
 use crate::device::{Law, Regime, Size};
 use crate::hydraulics::limits::Range;
@@ -14,6 +15,7 @@ use crate::roof::{Governing, Roof, Situation};
 use crate::rules::Misfit;
 use crate::units::{Length, Money};
 
+mod alike;
 mod best;
 mod cure;
 mod dive;
@@ -156,20 +158,39 @@ pub struct Answer<'r> {
 /// assert!(matches!(&answers[0].outcome, search::Outcome::Optimal(layouts) if !layouts.is_empty()));
 /// ```
 pub fn size<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<Answer<'r>> {
-    let answer = |&area: &usize| Answer { area, outcome: size_area(roof, area, options) };
-    if areas.len() < 2 { areas.iter().map(answer).collect() } else { areas.par_iter().map(answer).collect() }
+    if let &[area] = areas {
+        let (problem, misfits) = Problem::new(roof, area, options);
+        return vec![Answer { area, outcome: best_of(&problem, options).unwrap_or_else(|| none(problem, misfits)) }];
+    }
+    let groups = alike::groups(roof, areas);
+    let worth_trying: Vec<_> = groups.par_iter().map(|group| alike::worth_trying(roof, options, group)).collect();
+    let sizes_of: FxHashMap<usize, &Vec<usize>> = groups
+        .iter()
+        .zip(&worth_trying)
+        .flat_map(|(group, sizes)| group.iter().map(move |&area| (area, sizes)))
+        .collect();
+    let answer = |&area: &usize| {
+        let found = best_of(&Problem::of_sizes(roof, area, options, sizes_of[&area]), options);
+        let outcome = found.unwrap_or_else(|| {
+            let (problem, misfits) = Problem::new(roof, area, options);
+            none(problem, misfits)
+        });
+        Answer { area, outcome }
+    };
+    areas.par_iter().map(answer).collect()
 }
 
-fn size_area<'r>(roof: &'r Roof, area: usize, options: &Options) -> Outcome<'r> {
-    let (problem, misfits) = Problem::new(roof, area, options);
-    if problem.candidates.is_empty() {
-        return Outcome::Infeasible(Why::NothingStands { misfits });
-    }
-    let found = dive(&problem, Aim::Rank, Best::new(options.keep, options.fold)).into_found();
-    if found.is_empty() {
-        return Outcome::Infeasible(infeasible::why(problem));
-    }
-    Outcome::Optimal(found.iter().map(|found| ranked(&problem, found)).collect())
+/// The best layouts of an area; none where none holds.
+fn best_of<'r>(problem: &Problem<'r>, options: &Options) -> Option<Outcome<'r>> {
+    let found = dive(problem, Aim::Rank, Best::new(options.keep, options.fold)).into_found();
+    let layouts: Vec<_> = found.iter().map(|found| ranked(problem, found)).collect();
+    (!layouts.is_empty()).then_some(Outcome::Optimal(layouts))
+}
+
+/// Why an area has no layout.
+fn none<'r>(problem: Problem<'r>, misfits: Vec<(&'r Size, Misfit)>) -> Outcome<'r> {
+    let nothing_stands = problem.candidates.is_empty();
+    Outcome::Infeasible(if nothing_stands { Why::NothingStands { misfits } } else { infeasible::why(problem) })
 }
 
 /// All that is reported of a layout.

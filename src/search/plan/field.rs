@@ -1,7 +1,6 @@
 //! The sizes worth looking at, and the areas by what they have alike.
 //!
-//! What one of each size carries in an area depends on its limits, its walls and its set heights, but not on how much rain runs
-//! onto it nor on how long its edge is. Areas that differ in those two alone share one table.
+//! Areas that differ in demand and edge alone share one table of what one of each size carries.
 //!
 //! # Sizes that are left out
 //!
@@ -10,11 +9,10 @@
 //! device: no layout costs more, carries less (in all, or less its most effective), takes more edge, or adds a size.
 
 use rayon::prelude::*;
-use rustc_hash::FxHashMap;
 
 use crate::roof::{Case, Roof};
-use crate::search::Options;
 use crate::search::problem::{Candidate, Problem, Table};
+use crate::search::{Options, alike};
 use crate::units::Length;
 
 /// The sizes of a roof that no other outdoes, and its areas.
@@ -47,15 +45,7 @@ pub(super) struct Asking {
 impl<'r> Field<'r> {
     /// The sizes that may stand somewhere and that no other outdoes.
     pub(super) fn new(roof: &'r Roof, options: &Options, areas: &[usize]) -> Self {
-        let mut groups: Vec<Vec<usize>> = Vec::new();
-        let mut known: FxHashMap<Vec<u64>, usize> = FxHashMap::default();
-        for &area in areas {
-            let group = *known.entry(signature(roof, area)).or_insert(groups.len());
-            if group == groups.len() {
-                groups.push(Vec::new());
-            }
-            groups[group].push(area);
-        }
+        let groups = alike::groups(roof, areas);
         let alike: Vec<Alike<'r>> = groups.par_iter().map(|areas| Alike::new(roof, options, areas)).collect();
         let stands = |size: usize| alike.iter().any(|alike| alike.candidates[size].is_some());
         let standing: Vec<usize> = (0..roof.sizes.len()).filter(|&size| stands(size)).collect();
@@ -81,35 +71,10 @@ impl<'r> Field<'r> {
     }
 }
 
-/// What areas with one table have in common.
-fn signature(roof: &Roof, area: usize) -> Vec<u64> {
-    let catchment = &roof.areas[area];
-    let length = |length: Option<Length>| length.map_or(u64::MAX, |length| length.m().to_bits());
-    let mut signature = vec![
-        u64::from(*catchment.count.start()),
-        u64::from(*catchment.count.end()),
-        length(Some(catchment.gap)),
-        length(Some(catchment.roof_at_wall)),
-        length(catchment.parapet.height),
-        length(catchment.parapet.thickness),
-        // An edge of no length lets nothing stand, not even what takes none of it.
-        u64::from(catchment.edge == Some(Length::ZERO)),
-    ];
-    let situations = roof.situations(area);
-    signature.extend(situations.iter().map(|situation| length(Some(situation.allowable_level()))));
-    // How many kinds stand before them, so that no two lists run together.
-    signature.push(catchment.kinds.as_ref().map_or(u64::MAX, |kinds| kinds.len() as u64));
-    signature.extend(catchment.kinds.iter().flatten().map(|&kind| kind as u64));
-    signature.push(u64::from(catchment.set_heights.is_some()));
-    signature.extend(catchment.set_heights.iter().flatten().map(|&height| length(Some(height))));
-    signature
-}
-
 impl<'r> Alike<'r> {
     fn new(roof: &'r Roof, options: &Options, areas: &[usize]) -> Self {
         let edge = |area: usize| roof.areas[area].edge.map(Length::nm);
-        let longest = areas.iter().copied().max_by_key(|&area| edge(area).unwrap_or(i64::MAX));
-        let (problem, _) = Problem::new(roof, longest.unwrap_or(0), options);
+        let (problem, _) = Problem::new(roof, alike::with_longest_edge(roof, areas), options);
         let mut candidates = vec![None; roof.sizes.len()];
         for (index, candidate) in problem.candidates.iter().enumerate() {
             candidates[candidate.index] = Some(index);

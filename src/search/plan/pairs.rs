@@ -17,7 +17,7 @@
 use rayon::prelude::*;
 
 use crate::roof::working_capacity;
-use crate::search::dive::SLACK;
+use crate::search::dive::{SLACK, rounded_up};
 use crate::search::problem::{Problem, Table};
 
 use super::costs::Costs;
@@ -116,12 +116,12 @@ impl<'f, 'r> Pair<'f, 'r> {
     fn is_replaced(&self, table: &Table, count: u32) -> bool {
         let flows = table.of(self.less).iter().zip(table.of(self.greater));
         let needed = flows.map(|(less, greater)| f64::from(count) * less / greater).fold(1.0, f64::max);
-        let needed = (needed * (1.0 + SLACK)).ceil();
-        if needed > f64::from(count) {
+        let needed = rounded_up(needed * (1.0 + SLACK));
+        if needed > count {
             return false;
         }
         let (less, greater) = (&self.alike.problem.candidates[self.less], &self.alike.problem.candidates[self.greater]);
-        let (needed, count) = (needed as i64, i64::from(count));
+        let (needed, count) = (i64::from(needed), i64::from(count));
         let takes_no_more_edge = !greater.at_edge || (less.at_edge && needed * greater.width <= count * less.width);
         needed * greater.price <= count * less.price && (!self.alike.is_edge_limited() || takes_no_more_edge)
     }
@@ -220,7 +220,7 @@ impl<'f, 'r> Ladder<'f, 'r> {
     /// A count that the least is not under: the blocked devices are the one that carries most and others.
     fn least_for(&self, area: &Asking) -> u32 {
         let (other, there) = self.beside.unwrap_or((self.index, 0));
-        let mut least = 1.0_f64;
+        let mut least = 1;
         for (case, (situation, &demand)) in self.problem.situations.iter().zip(&area.demands).enumerate() {
             let (one, beside) = (self.table.of(self.index)[case], self.table.of(other)[case]);
             let gone = match situation.case.blocked {
@@ -230,9 +230,9 @@ impl<'f, 'r> Ladder<'f, 'r> {
             let missing = demand + gone - beside * f64::from(there);
             if demand > 0.0 && missing > 0.0 {
                 // A little less, so that rounding never makes a bound of what is none.
-                least = least.max((missing / one * (1.0 - SLACK)).ceil());
+                least = least.max(rounded_up(missing / one * (1.0 - SLACK)));
             }
         }
-        if least < f64::from(u32::MAX) { least as u32 } else { u32::MAX }
+        least
     }
 }
