@@ -48,7 +48,7 @@ use super::walk::Walk;
 
 pub(super) use super::costs::SizeSet;
 
-/// The best sets found, and what is known of those not found.
+/// The best sets found, and what is known of those that were not looked at.
 #[derive(Clone, Debug, PartialEq)]
 pub(super) struct Found {
     /// The cheapest first; none where no set serves all areas, or none was found.
@@ -88,7 +88,9 @@ impl<'c, 'd> Search<'c, 'd> {
             let bound = if self.ending.was_due() { least + self.price } else { f64::INFINITY };
             return Found { sets: Vec::new(), bound, finished: !self.ending.was_due() };
         }
-        let unseen = self.walk(most, &mut kept, least);
+        // Of single sizes each was tried as a first set.
+        let all_tried = most == 1 && !self.ending.was_due();
+        let unseen = if all_tried { f64::INFINITY } else { self.walk(most, &mut kept, least) };
         let cost = kept.sets().first().map_or(f64::INFINITY, |set| set.cost);
         self.last = kept.sets().first().map_or(Vec::new(), |set| set.sizes.clone());
         Found { sets: kept.into_sets(), bound: unseen.min(cost), finished: !self.ending.was_due() }
@@ -128,6 +130,8 @@ impl<'c, 'd> Search<'c, 'd> {
 
 #[cfg(test)]
 mod tests {
+    use std::sync::atomic::{AtomicU64, Ordering};
+
     use super::*;
 
     struct Dice(u64);
@@ -164,30 +168,61 @@ mod tests {
         all
     }
 
-    /// Random tables of small whole costs, so that ties are many, some pairs without a layout: against trying everything.
+    /// A table of small whole costs, so that ties are many, some pairs without a layout.
+    fn table(dice: &mut Dice) -> Costs {
+        let (sizes, areas) = (1 + dice.upto(7) as usize, 1 + dice.upto(9) as usize);
+        let holes = dice.upto(3);
+        let mut draw = |alone: f64| {
+            if holes > 0 && dice.upto(4) < holes { alone } else { alone.min(4.0 + dice.upto(30) as f64) }
+        };
+        let single: Vec<Vec<f64>> = (0..sizes).map(|_| (0..areas).map(|_| draw(f64::INFINITY)).collect()).collect();
+        let mut rows = Vec::new();
+        for j in 0..sizes {
+            for i in 0..j {
+                rows.extend((0..areas).map(|area| draw(single[i][area].min(single[j][area]))));
+            }
+            rows.extend(&single[j]);
+        }
+        Costs::new(sizes, areas, rows)
+    }
+
+    /// Against trying everything, each number of sizes by itself and after those before it.
     #[test]
     fn the_best_sets_are_those_of_trying_everything() {
         for seed in 0..3000_u64 {
             let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9) + 1);
-            let (sizes, areas) = (1 + dice.upto(7) as usize, 1 + dice.upto(9) as usize);
+            let costs = table(&mut dice);
             let (price, most, keep) = (dice.upto(12) as f64, 1 + dice.upto(4) as usize, 1 + dice.upto(5) as usize);
-            let holes = dice.upto(3);
-            let mut draw = |alone: f64| {
-                if holes > 0 && dice.upto(4) < holes { alone } else { alone.min(4.0 + dice.upto(30) as f64) }
-            };
-            let single: Vec<Vec<f64>> = (0..sizes).map(|_| (0..areas).map(|_| draw(f64::INFINITY)).collect()).collect();
-            let mut pair = std::collections::HashMap::new();
-            for j in 0..sizes {
-                for i in 0..j {
-                    let both: Vec<f64> = (0..areas).map(|a| draw(single[i][a].min(single[j][a]))).collect();
-                    pair.insert((i, j), both);
-                }
+            let mut search = Search::new(&costs, price, &|| false);
+            for most in if dice.upto(1) == 0 { most..=most } else { 1..=most } {
+                let found = search.best(most, keep);
+                assert_eq!(found.sets, everything(&costs, price, most, keep), "seed {seed}");
+                let cost = found.sets.first().map_or(f64::INFINITY, |set| set.cost);
+                assert!(found.finished && found.bound == cost, "seed {seed}");
             }
-            let rows = (0..sizes).flat_map(|j| (0..=j).map(move |i| (i, j)));
-            let row = |(i, j): (usize, usize)| if i == j { single[i].clone() } else { pair[&(i, j)].clone() };
-            let costs = Costs::new(sizes, areas, rows.flat_map(row).collect());
-            let found = Search::new(&costs, price, &|| false).best(most, keep);
-            assert_eq!(found.sets, everything(&costs, price, most, keep), "seed {seed}");
         }
+    }
+
+    /// Told to end after any number of questions, what was found is no better than the best, and the bound no higher.
+    #[test]
+    fn a_search_that_ends_early_says_what_it_may_have_missed() {
+        let (mut ended, mut told_more) = (0, 0);
+        for seed in 0..2000_u64 {
+            let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9) + 7);
+            let costs = table(&mut dice);
+            let (price, most) = (dice.upto(12) as f64, 2 + dice.upto(3) as usize);
+            let questions = dice.upto(12);
+            let asked = AtomicU64::new(0);
+            let due = || asked.fetch_add(1, Ordering::Relaxed) >= questions;
+            let found = Search::new(&costs, price, &due).best(most, 1);
+            let best = everything(&costs, price, most, 1).first().map_or(f64::INFINITY, |set| set.cost);
+            let cost = found.sets.first().map_or(f64::INFINITY, |set| set.cost);
+            assert!(found.bound <= best && best <= cost, "seed {seed}: {} <= {best} <= {cost}", found.bound);
+            assert!(!found.finished || (found.bound == best && best == cost), "seed {seed}");
+            let least: f64 = costs.least().iter().sum();
+            ended += usize::from(!found.finished);
+            told_more += usize::from(!found.finished && found.bound > least + price);
+        }
+        assert!(ended > 300 && told_more > 50, "{ended} ended early, {told_more} with a bound worth telling");
     }
 }
