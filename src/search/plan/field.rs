@@ -48,14 +48,9 @@ impl<'r> Field<'r> {
         let groups = alike::groups(roof, areas);
         let alike: Vec<Alike<'r>> = groups.par_iter().map(|areas| Alike::new(roof, options, areas)).collect();
         let stands = |size: usize| alike.iter().any(|alike| alike.candidates[size].is_some());
-        let standing: Vec<usize> = (0..roof.sizes.len()).filter(|&size| stands(size)).collect();
+        let standing = (0..roof.sizes.len()).filter(|&size| stands(size)).collect();
         let outdoes = |better, worse| alike.iter().all(|alike| alike.outdoes(better, worse));
-        let outdone = |&size: &usize| {
-            // Of two alike the first stays.
-            let outdone_by = |other| other != size && outdoes(other, size) && (other < size || !outdoes(size, other));
-            standing.iter().any(|&other| outdone_by(other))
-        };
-        let sizes = standing.par_iter().copied().filter(|size| !outdone(size)).collect();
+        let sizes = not_outdone(standing, |size| roof.sizes[size].price, outdoes);
         Self { sizes, alike }
     }
 
@@ -69,6 +64,29 @@ impl<'r> Field<'r> {
         let candidates = self.alike.iter().flat_map(|alike| &alike.problem.candidates);
         candidates.into_iter().all(|candidate| candidate.size.price.is_some())
     }
+}
+
+/// The sizes that no other outdoes, of two alike the first; rising.
+fn not_outdone<P: Ord>(
+    mut sizes: Vec<usize>,
+    price: impl Fn(usize) -> P,
+    outdoes: impl Fn(usize, usize) -> bool,
+) -> Vec<usize> {
+    let goes_for =
+        |size: usize, other: usize| other != size && outdoes(other, size) && (other < size || !outdoes(size, other));
+    // Whoever is outdone is outdone by one that is not, and that is no dearer.
+    sizes.sort_by_key(|&size| price(size));
+    let mut left: Vec<usize> = Vec::new();
+    for equal in sizes.chunk_by(|&a, &b| price(a) == price(b)) {
+        let cheaper = left.len();
+        for &size in equal {
+            if !left[..cheaper].iter().chain(equal).any(|&other| goes_for(size, other)) {
+                left.push(size);
+            }
+        }
+    }
+    left.sort_unstable();
+    left
 }
 
 impl<'r> Alike<'r> {
