@@ -160,31 +160,33 @@ pub struct Answer<'r> {
 pub fn size<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<Answer<'r>> {
     if let &[area] = areas {
         let (problem, misfits) = Problem::new(roof, area, options);
-        return vec![Answer { area, outcome: best_of(&problem, options).unwrap_or_else(|| none(problem, misfits)) }];
+        let found = best_of(&problem, options);
+        return vec![Answer { area, outcome: found.map_or_else(|| none(problem, misfits), Outcome::Optimal) }];
     }
-    let groups = alike::groups(roof, areas);
-    let worth_trying: Vec<_> = groups.par_iter().map(|group| alike::worth_trying(roof, options, group)).collect();
-    let sizes_of: FxHashMap<usize, &Vec<usize>> = groups
-        .iter()
-        .zip(&worth_trying)
-        .flat_map(|(group, sizes)| group.iter().map(move |&area| (area, sizes)))
-        .collect();
-    let answer = |&area: &usize| {
-        let found = best_of(&Problem::of_sizes(roof, area, options, sizes_of[&area]), options);
-        let outcome = found.unwrap_or_else(|| {
+    let answer = |(&area, found): (&usize, Option<Vec<Ranked<'r>>>)| {
+        let why = || {
             let (problem, misfits) = Problem::new(roof, area, options);
             none(problem, misfits)
-        });
-        Answer { area, outcome }
+        };
+        Answer { area, outcome: found.map_or_else(why, Outcome::Optimal) }
     };
-    areas.par_iter().map(answer).collect()
+    areas.par_iter().zip(best_of_each(roof, options, areas)).map(answer).collect()
+}
+
+/// The best layouts of each area; none where none holds.
+fn best_of_each<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<Option<Vec<Ranked<'r>>>> {
+    let groups = alike::groups(roof, areas);
+    let worth_trying: Vec<_> = groups.par_iter().map(|group| alike::worth_trying(roof, options, group)).collect();
+    let of_group = |(group, sizes): (&Vec<usize>, _)| group.iter().map(|&area| (area, sizes)).collect::<Vec<_>>();
+    let sizes_of: FxHashMap<usize, &Vec<usize>> = groups.iter().zip(&worth_trying).flat_map(of_group).collect();
+    let best = |&area: &usize| best_of(&Problem::of_sizes(roof, area, options, sizes_of[&area]), options);
+    areas.par_iter().map(best).collect()
 }
 
 /// The best layouts of an area; none where none holds.
-fn best_of<'r>(problem: &Problem<'r>, options: &Options) -> Option<Outcome<'r>> {
+fn best_of<'r>(problem: &Problem<'r>, options: &Options) -> Option<Vec<Ranked<'r>>> {
     let found = dive(problem, Aim::Rank, Best::new(options.keep, options.fold)).into_found();
-    let layouts: Vec<_> = found.iter().map(|found| ranked(problem, found)).collect();
-    (!layouts.is_empty()).then_some(Outcome::Optimal(layouts))
+    (!found.is_empty()).then(|| found.iter().map(|found| ranked(problem, found)).collect())
 }
 
 /// Why an area has no layout.

@@ -108,6 +108,9 @@ fn by_sizes(found: &Plans<'_>) -> Vec<Block> {
         (Some(before), Some(now)) => words::money(Money::from_millionths(before.millionths() - now.millionths())),
         _ => "-".into(),
     };
+    if found.by_sizes.is_empty() {
+        return Vec::new();
+    }
     let rows = || 0..found.by_sizes.len();
     vec![
         Block::Text("Least cost by the number of sizes allowed, the price of sizes included:".into()),

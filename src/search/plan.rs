@@ -1,9 +1,11 @@
 //! The whole roof at once: one layout for each area, few sizes on the whole roof, least cost.
 //!
-//! An area's cheapest layout made of two given sizes is one number, found from the table of what one of each carries
-//! (`pairs`); which sizes the roof should have is then a question about those numbers alone (`sets`). Sizes that another
-//! outdoes in every area are left out before: replacing such a size by the other never raises the cost and adds no size. The
-//! runner-up plans are therefore of sizes that no other outdoes.
+//! Sizes that another outdoes in every area are left out first (`field`): replacing such a size by the other never raises the
+//! cost and adds no size. The runner-up plans are therefore of sizes that no other outdoes. An area's cheapest layout made of
+//! two given sizes is one number, found from the table of what one of each carries (`pairs`, kept in `costs`); which sizes the
+//! roof should have is then a question about those numbers alone (`sets`, with the proof). It is answered by good sets to begin
+//! with (`first`), a bound (`bound`, from coarser `regrets`) and a walk through what the bound leaves (`walk`), which keeps the
+//! best sets met (`kept`) and can be told to end (`ending`).
 
 use rayon::prelude::*;
 
@@ -11,11 +13,9 @@ use crate::device::Size;
 use crate::roof::Roof;
 use crate::units::Money;
 
-use super::best::Best;
-use super::dive::{Aim, dive};
 use super::problem::Problem;
-use super::rank::{Criterion, Order};
-use super::{Options, Ranked, ranked};
+use super::rank::Criterion;
+use super::{Options, Ranked, best_of, best_of_each};
 
 mod bound;
 mod costs;
@@ -57,7 +57,8 @@ pub struct Plan<'r> {
 pub struct Plans<'r> {
     /// The best plans, which differ in their sets of sizes; empty where no set serves every area.
     pub plans: Vec<Plan<'r>>,
-    /// Least cost with at most so many sizes; none where so few cannot serve every area.
+    /// Least cost with at most so many sizes, none where so few cannot serve every area; empty where sizes are neither limited
+    /// nor priced, as each area then has its own.
     pub by_sizes: Vec<(u32, Option<Money>)>,
     /// Sum of what each area's cheapest layout costs by itself, whatever its sizes, without the price of sizes.
     pub alone: Option<Money>,
@@ -77,7 +78,7 @@ pub fn plan<'r>(roof: &'r Roof, options: &Options, asked: Asked, areas: &[usize]
         return None;
     }
     if asked.sizes.is_none() && asked.size_price == Money::default() {
-        return Some(each_alone(roof, options, areas));
+        return Some(each_alone(roof, &by_cost(options), areas));
     }
     let never = || false;
     let costs = pairs::costs(&field, &Ending::new(&never))?;
@@ -98,9 +99,10 @@ pub fn plan<'r>(roof: &'r Roof, options: &Options, asked: Asked, areas: &[usize]
     }
     let most = asked.sizes.map_or(field.sizes.len(), |sizes| sizes as usize);
     let found = plans.unwrap_or_else(|| search.best(most, options.keep));
+    let by_cost = by_cost(options);
     let realised = |set: &SizeSet| {
         let sizes: Vec<usize> = set.sizes.iter().map(|&size| field.sizes[size]).collect();
-        realised(roof, options, areas, &sizes, money(set.cost))
+        realised(roof, &by_cost, areas, &sizes, money(set.cost))
     };
     let plans = found.sets.iter().filter_map(realised).collect();
     let alone = costs.least().iter().sum::<f64>();
@@ -108,9 +110,9 @@ pub fn plan<'r>(roof: &'r Roof, options: &Options, asked: Asked, areas: &[usize]
 }
 
 /// The plan where sizes are neither limited nor priced: each area as if it were alone.
-fn each_alone<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Plans<'r> {
-    let cheapest = |&area: &usize| cheapest(&by_cost(Problem::new(roof, area, options).0));
-    let Some(layouts) = areas.par_iter().map(cheapest).collect::<Option<Vec<Ranked<'r>>>>() else {
+fn each_alone<'r>(roof: &'r Roof, by_cost: &Options, areas: &[usize]) -> Plans<'r> {
+    let best = best_of_each(roof, by_cost, areas).into_iter();
+    let Some(layouts) = best.map(|best| best?.into_iter().next()).collect::<Option<Vec<Ranked<'r>>>>() else {
         return Plans { plans: Vec::new(), by_sizes: Vec::new(), alone: None };
     };
     let cost: Money = layouts.iter().filter_map(|layout| layout.cost).sum();
@@ -122,23 +124,19 @@ fn each_alone<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Plans<'
     Plans { plans: vec![Plan { cost, sizes, layouts }], by_sizes: Vec::new(), alone: Some(cost) }
 }
 
-/// The problem with its layouts ranked by cost first, then as asked.
-fn by_cost(mut problem: Problem<'_>) -> Problem<'_> {
-    let mut criteria = vec![Criterion::Cost];
-    criteria.extend(problem.order.criteria().iter().filter(|&&criterion| criterion != Criterion::Cost));
-    problem.order = Order::new(&criteria, true);
-    problem
-}
-
-/// The first layout of an area.
-fn cheapest<'r>(problem: &Problem<'r>) -> Option<Ranked<'r>> {
-    let found = dive(problem, Aim::Rank, Best::new(1, false)).into_found();
-    found.first().map(|found| ranked(problem, found))
+/// What is asked for with one layout of each area, ranked by cost first, then as asked.
+fn by_cost(options: &Options) -> Options {
+    let mut rank_by = vec![Criterion::Cost];
+    rank_by.extend(options.rank_by.iter().filter(|&&criterion| criterion != Criterion::Cost));
+    Options { rank_by, keep: 1, ..options.clone() }
 }
 
 /// The plan of a set of sizes: in each area the first layout of those sizes by cost, then by the rank asked for.
-fn realised<'r>(roof: &'r Roof, options: &Options, areas: &[usize], sizes: &[usize], cost: Money) -> Option<Plan<'r>> {
-    let layout = |&area: &usize| cheapest(&by_cost(Problem::of_sizes(roof, area, options, sizes)));
+fn realised<'r>(roof: &'r Roof, by_cost: &Options, areas: &[usize], sizes: &[usize], cost: Money) -> Option<Plan<'r>> {
+    let layout = |&area: &usize| {
+        let best = best_of(&Problem::of_sizes(roof, area, by_cost, sizes), by_cost);
+        best.and_then(|best| best.into_iter().next())
+    };
     Some(Plan {
         cost,
         sizes: sizes.iter().map(|&size| &roof.sizes[size]).collect(),
