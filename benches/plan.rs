@@ -5,7 +5,7 @@ use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Kind, Size};
 use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Storm, Surface, demand};
-use brimline::search::{self, Criterion, Options, PlanAsked, Raises, Watch};
+use brimline::search::{self, Answer, Criterion, Options, PlanAsked, Raises, Watch};
 use brimline::units::{Area, Length, Load, Money, System};
 
 fn main() {
@@ -99,6 +99,45 @@ fn fifty_areas_alike(bencher: divan::Bencher, most: u32) {
 #[divan::bench(args = [3, 4, 5], sample_count = 20)]
 fn fifty_areas_unlike(bencher: divan::Bencher, most: u32) {
     plan(bencher, &roof(50, sizes(6..=36, &[4, 6, 8, 10]), true), most, 1);
+}
+
+/// Widths 6 to 55 in, heights 3 to 12 in.
+fn five_hundred_sizes() -> Vec<Size> {
+    sizes(6..=55, &[3, 4, 5, 6, 7, 8, 9, 10, 11, 12])
+}
+
+#[divan::bench(sample_count = 5)]
+fn five_hundred_areas_alike(bencher: divan::Bencher) {
+    plan(bencher, &roof(500, five_hundred_sizes(), false), 4, 1);
+}
+
+#[divan::bench(sample_count = 3)]
+fn five_hundred_areas_unlike(bencher: divan::Bencher) {
+    plan(bencher, &roof(500, five_hundred_sizes(), true), 4, 1);
+}
+
+/// The list of every area, one layout in each, where nothing ties the areas together; checked against areas alone.
+fn lists(bencher: divan::Bencher, unlike: bool) {
+    let roof = roof(10_000, sizes(6..=36, &[4, 6, 8, 10]), unlike);
+    let areas: Vec<usize> = (0..roof.areas.len()).collect();
+    let cost = |answer: &Answer<'_>| answer.outcome.layouts().first().and_then(|layout| layout.cost);
+    let alone = |&area: &usize| (area, cost(&search::size(&roof, &options(1), &[area])[0]));
+    let known: Vec<(usize, Option<Money>)> = areas.iter().step_by(251).map(alone).collect();
+    bencher.bench(|| {
+        let answers = search::size(&roof, &options(1), &areas);
+        assert!(known.iter().all(|&(area, known)| cost(&answers[area]) == known));
+        answers.len()
+    });
+}
+
+#[divan::bench(sample_count = 3)]
+fn ten_thousand_areas_alike(bencher: divan::Bencher) {
+    lists(bencher, false);
+}
+
+#[divan::bench(sample_count = 3)]
+fn ten_thousand_areas_unlike(bencher: divan::Bencher) {
+    lists(bencher, true);
 }
 
 #[divan::bench(args = [3, 4], sample_count = 10)]

@@ -6,12 +6,14 @@
 //! depend on the number of threads, and equal input gives equal answers to the last bit.
 
 use rayon::prelude::*;
+use rustc_hash::FxHashMap;
 
 use crate::device::Size;
 use crate::roof::Roof;
 use crate::rules::Misfit;
 use crate::units::{Length, Money};
 
+mod alike;
 mod best;
 mod cure;
 mod dive;
@@ -146,29 +148,75 @@ pub struct Answer<'r> {
 /// assert!(matches!(&answers[0].outcome, search::Outcome::Optimal(layouts) if !layouts.is_empty()));
 /// ```
 pub fn size<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<Answer<'r>> {
-    options.watch.expect(areas.len());
-    let answer = |&area: &usize| {
+    if let &[area] = areas {
+        options.watch.expect(1);
         let outcome = size_area(roof, area, options);
         options.watch.advance();
+        return vec![Answer { area, outcome }];
+    }
+    let answer = |(&area, best): (&usize, Sought<'r>)| {
+        let outcome = if best.finished && best.layouts.is_empty() {
+            let (problem, misfits) = Problem::new(roof, area, options);
+            none(problem, misfits)
+        } else {
+            best.outcome()
+        };
         Answer { area, outcome }
     };
-    if areas.len() < 2 { areas.iter().map(answer).collect() } else { areas.par_iter().map(answer).collect() }
+    areas.par_iter().zip(best_of_each(roof, options, areas)).map(answer).collect()
 }
 
+/// What a search of one area by itself finds.
 fn size_area<'r>(roof: &'r Roof, area: usize, options: &Options) -> Outcome<'r> {
     let (problem, misfits) = Problem::new(roof, area, options);
-    if problem.candidates.is_empty() {
-        return Outcome::Infeasible(Why::NothingStands { misfits });
+    let best = best_of(&problem, options);
+    if best.finished && best.layouts.is_empty() { none(problem, misfits) } else { best.outcome() }
+}
+
+/// The best layouts of an area, of those that were tried.
+struct Sought<'r> {
+    layouts: Vec<Ranked<'r>>,
+    /// Whether all were tried; else what every layout has at least.
+    finished: bool,
+    bound: Option<Least>,
+}
+
+impl<'r> Sought<'r> {
+    /// How the search ended, where it found layouts or was ended.
+    fn outcome(self) -> Outcome<'r> {
+        let Self { layouts, finished, bound } = self;
+        if finished { Outcome::Optimal(layouts) } else { Outcome::Stopped { layouts, bound } }
     }
-    let dived = dive(&problem, Aim::Rank, Best::new(options.keep, options.fold));
-    let layouts: Vec<_> = dived.found.iter().map(|found| ranked(&problem, found)).collect();
-    if !dived.finished {
-        return Outcome::Stopped { layouts, bound: least(&problem) };
-    }
-    if layouts.is_empty() {
-        return Outcome::Infeasible(infeasible::why(problem).unwrap_or(Why::Stopped));
-    }
-    Outcome::Optimal(layouts)
+}
+
+/// The best layouts of each area.
+fn best_of_each<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<Sought<'r>> {
+    options.watch.expect(areas.len());
+    let groups = alike::groups(roof, areas);
+    let worth_trying: Vec<_> = groups.par_iter().map(|group| alike::worth_trying(roof, options, group)).collect();
+    let of_group = |(group, sizes): (&Vec<usize>, _)| group.iter().map(|&area| (area, sizes)).collect::<Vec<_>>();
+    let sizes_of: FxHashMap<usize, &Vec<usize>> = groups.iter().zip(&worth_trying).flat_map(of_group).collect();
+    let best = |&area: &usize| {
+        let best = best_of(&Problem::of_sizes(roof, area, options, sizes_of[&area]), options);
+        options.watch.advance();
+        best
+    };
+    areas.par_iter().map(best).collect()
+}
+
+/// The best layouts of an area.
+fn best_of<'r>(problem: &Problem<'r>, options: &Options) -> Sought<'r> {
+    let dived = dive(problem, Aim::Rank, Best::new(options.keep, options.fold));
+    let layouts = dived.found.iter().map(|found| ranked(problem, found)).collect();
+    let bound = if dived.finished { None } else { least(problem) };
+    Sought { layouts, finished: dived.finished, bound }
+}
+
+/// Why an area has no layout.
+fn none<'r>(problem: Problem<'r>, misfits: Vec<(&'r Size, Misfit)>) -> Outcome<'r> {
+    let nothing_stands = problem.candidates.is_empty();
+    let why = || infeasible::why(problem).unwrap_or(Why::Stopped);
+    Outcome::Infeasible(if nothing_stands { Why::NothingStands { misfits } } else { why() })
 }
 
 /// All that is reported of a layout that was found.

@@ -16,7 +16,7 @@ use super::flow;
 use super::grid::{self, Least};
 use super::height::Datum;
 use super::section::{Cell, Keys, Section, any_of, near, optional};
-use super::setting::{Setting, is_named, limits_of, read_count, unique};
+use super::setting::{Names, Setting, is_named, limits_of, read_count, unique};
 
 static AREA: Keys = Keys {
     table: "an [[area]]",
@@ -90,7 +90,7 @@ pub(super) fn read_all(project: &Section<'_>, setting: &Setting<'_>, assumed: &m
         project.missing("the project has no [[area]]", "give one [[area]] for each low point, with name and area");
     }
     let tables = project.sections("area", &AREA, "a list of areas, each under [[area]]").unwrap_or_default();
-    let mut names: Vec<(String, Span)> = Vec::new();
+    let mut names = Names::default();
     let mut taken = Taken::default();
     let given: Vec<Given<'_>> = tables
         .iter()
@@ -175,12 +175,7 @@ impl Taken {
     }
 }
 
-fn read_area<'a>(
-    section: &Section<'a>,
-    setting: &Setting<'_>,
-    names: &mut Vec<(String, Span)>,
-    taken: &mut Taken,
-) -> Given<'a> {
+fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names, taken: &mut Taken) -> Given<'a> {
     let name =
         section.need("name", "name the area: name = \"north bay\"").and_then(|cell| unique(&cell, names, "area"));
     let called = name.clone().unwrap_or_default();

@@ -13,7 +13,7 @@ use super::defaults::{self, COUNT, KEEP, MIX, RANK_BY};
 use super::fault::{Fault, Faults, Log, Span};
 use super::grid::{self, Least};
 use super::section::{Cell, Keys, Reader, Section, optional};
-use super::setting::{Cases, GivenCase, MOST_DEVICES, Search, Setting, is_named, limits_of, read_count, unique};
+use super::setting::{Cases, GivenCase, MOST_DEVICES, Names, Search, Setting, is_named, limits_of, read_count, unique};
 use super::{Assumed, Project, area, file, flow, layout, structure, tolerance};
 
 static PROJECT: Keys = Keys {
@@ -370,18 +370,25 @@ fn read_cases(section: &Section<'_>, assumed: &mut Vec<Assumed>) -> Cases {
         let names = vec![as_designed.case.name.clone()];
         return Cases { given: vec![as_designed], names, names_complete: true, complete: true };
     }
-    let mut names: Vec<(String, Span)> = Vec::new();
+    let mut names = Names::default();
     let tables = section.sections("case", &CASE, "a list of cases, each under [[case]]").unwrap_or_default();
     let cases: Vec<Option<GivenCase>> = tables.iter().map(|table| read_case(table.as_ref()?, &mut names)).collect();
     Cases {
         names_complete: !tables.is_empty() && tables.iter().all(|table| is_named(table.as_ref())),
         complete: !cases.is_empty() && cases.iter().all(Option::is_some),
         given: cases.into_iter().flatten().collect(),
-        names: names.into_iter().map(|(name, _)| name).collect(),
+        names: in_order(names),
     }
 }
 
-fn read_case(section: &Section<'_>, names: &mut Vec<(String, Span)>) -> Option<GivenCase> {
+/// Names in the order of the file.
+fn in_order(names: Names) -> Vec<String> {
+    let mut names: Vec<(String, Span)> = names.into_iter().collect();
+    names.sort_by_key(|(_, span)| span.start);
+    names.into_iter().map(|(name, _)| name).collect()
+}
+
+fn read_case(section: &Section<'_>, names: &mut Names) -> Option<GivenCase> {
     let name =
         section.need("name", "name the case: name = \"one blocked\"").and_then(|cell| unique(&cell, names, "case"));
     let blocked = section.get("blocked").map_or(Some(0), |cell| cell.whole(0, MOST_DEVICES));

@@ -2,6 +2,8 @@
 
 use std::ops::RangeInclusive;
 
+use rustc_hash::FxHashMap;
+
 use crate::device::Choice;
 use crate::device::Law;
 use crate::roof::{Case, Limits};
@@ -107,10 +109,13 @@ pub(super) fn is_named(table: Option<&Section<'_>>) -> bool {
     table.and_then(|table| table.get("name")).and_then(|cell| cell.text()).is_some()
 }
 
+/// Names met so far, with where each stands first.
+pub(super) type Names = FxHashMap<String, Span>;
+
 /// A name that nothing else of its sort has.
-pub(super) fn unique(cell: &Cell<'_>, names: &mut Vec<(String, Span)>, sort: &str) -> Option<String> {
+pub(super) fn unique(cell: &Cell<'_>, names: &mut Names, sort: &str) -> Option<String> {
     let name = cell.text()?;
-    if let Some((_, first)) = names.iter().find(|(known, _)| known == name) {
+    if let Some(first) = names.get(name) {
         let fault = Fault::error(format!("two {sort}s have the name `{name}`"))
             .at(cell.reader.source, cell.span(), "again here")
             .at(cell.reader.source, first.clone(), "first here")
@@ -118,6 +123,6 @@ pub(super) fn unique(cell: &Cell<'_>, names: &mut Vec<(String, Span)>, sort: &st
         cell.reader.log.put(fault);
         return None;
     }
-    names.push((name.to_string(), cell.span()));
+    names.insert(name.to_string(), cell.span());
     Some(name.to_string())
 }

@@ -222,12 +222,13 @@ fn plans<'a>(sized: &Sized<'a, '_>, asked: &Asked<'a, '_>) -> Vec<Plan<'a>> {
     if found.plans.is_empty() {
         let (sizes, layouts) = (Vec::new(), Vec::new());
         let by_sizes = by_sizes();
-        return vec![Plan { outcome: "infeasible", cost: None, bound: None, sizes, layouts, by_sizes, front: None }];
+        let outcome = if found.finished { "infeasible" } else { "stopped" };
+        return vec![Plan { outcome, cost: None, bound: None, sizes, layouts, by_sizes, front: None }];
     }
     let plan = |(index, plan): (usize, &'a crate::search::Plan<'_>)| Plan {
-        outcome: "optimal",
+        outcome: if found.finished { "optimal" } else { "stopped" },
         cost: Some(plan.cost.amount()),
-        bound: Some(plan.cost.amount()),
+        bound: if found.finished { Some(plan.cost.amount()) } else { found.bound.map(amount) },
         sizes: plan.sizes.iter().map(|size| plan_size(size)).collect(),
         layouts: sized
             .answers

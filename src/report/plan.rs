@@ -14,7 +14,7 @@ pub(super) fn blocks(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, words: Words,
         return;
     };
     let Some((first, others)) = found.plans.split_first() else {
-        blocks.push(Block::Text(none(sized, asked)));
+        blocks.push(Block::Text(none(sized, asked, found)));
         blocks.extend(by_sizes(found));
         return;
     };
@@ -35,7 +35,10 @@ pub(super) fn blocks(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, words: Words,
 }
 
 /// Why there is no plan: an area without any layout, or too few sizes for all areas together.
-fn none(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>) -> String {
+fn none(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, found: &Plans<'_>) -> String {
+    if !found.finished {
+        return "The search was ended before a plan was found: there may be some.".into();
+    }
     let infeasible = sized.answers.iter().filter(|answer| matches!(answer.outcome, Outcome::Infeasible(_)));
     let without: Vec<&str> = infeasible.map(|answer| sized.roof.areas[answer.area].name.as_str()).collect();
     if without.is_empty() {
@@ -66,11 +69,15 @@ fn told(asked: &Asked<'_, '_>, found: &Plans<'_>, plan: &Plan<'_>, words: Words)
     let alone = found.alone.map_or(String::new(), |alone| {
         format!(" Each area by itself, whatever its sizes, would cost {} in all.", words::money(alone))
     });
-    format!(
-        "The cheapest plan with {most} costs {}{priced}: {}.{alone} Proven: no other set of sizes costs less.",
-        words::money(plan.cost),
-        sizes(plan, words)
-    )
+    let proven = match found.bound {
+        _ if found.finished => " Proven: no other set of sizes costs less.".into(),
+        Some(bound) => {
+            format!(" The search was ended before that was proven: no plan costs less than {}.", words::money(bound))
+        }
+        None => " The search was ended before that was proven.".into(),
+    };
+    let which = if found.finished { "The cheapest plan" } else { "The best plan found" };
+    format!("{which} with {most} costs {}{priced}: {}.{alone}{proven}", words::money(plan.cost), sizes(plan, words))
 }
 
 /// Each area with its layout in the plan and what the cheapest listed for it alone would cost.
@@ -100,6 +107,9 @@ fn areas(sized: &Sized<'_, '_>, plan: &Plan<'_>, words: Words) -> Table {
 
 /// Least cost by the number of sizes allowed.
 fn by_sizes(found: &Plans<'_>) -> Vec<Block> {
+    if found.by_sizes.is_empty() {
+        return Vec::new();
+    }
     let cost = |cost: Option<Money>| cost.map_or("no plan".into(), words::money);
     let saved = |index: usize| match (
         index.checked_sub(1).and_then(|before| found.by_sizes[before].1),
@@ -108,6 +118,9 @@ fn by_sizes(found: &Plans<'_>) -> Vec<Block> {
         (Some(before), Some(now)) => words::money(Money::from_millionths(before.millionths() - now.millionths())),
         _ => "-".into(),
     };
+    if found.by_sizes.is_empty() {
+        return Vec::new();
+    }
     let rows = || 0..found.by_sizes.len();
     vec![
         Block::Text("Least cost by the number of sizes allowed, the price of sizes included:".into()),

@@ -210,6 +210,7 @@ fn plan_blocks(traded: &Traded<'_>, plans: Option<&[PlanAt]>, words: Words, bloc
     let ground: f64 = ground.map(|area| if words.us() { area.to_ft2() } else { area.m2() }).sum();
     let column = |tell: &dyn Fn(&PlanAt) -> String| plans.iter().map(tell).collect::<Vec<_>>();
     let names = |plan: &PlanAt| match &plan.sizes[..] {
+        [] if !plan.finished => "not known: the search was ended".into(),
         [] => "no plan".into(),
         sizes => list(&sizes.iter().map(|size| words.name(size)).collect::<Vec<_>>()),
     };

@@ -7,6 +7,7 @@ use crate::roof::MOST_GROUPS;
 use crate::roof::layout::{self, Group};
 use crate::units::Length;
 
+use super::dive::Keeps;
 use super::problem::{Class, Problem, Table};
 use super::rank::{Criterion, Sums};
 
@@ -203,6 +204,11 @@ impl Best {
         self.last().map_or(self.ceiling, |last| last.sums.value(lead))
     }
 
+    /// Which layouts are kept.
+    pub(super) fn keeps(&self) -> Keeps {
+        Keeps { one: self.keep == 1, families: self.fold }
+    }
+
     pub(super) fn into_found(self) -> Vec<Found> {
         self.found
     }
@@ -283,9 +289,14 @@ impl Best {
         if !self.fold {
             return;
         }
-        for (count, allowance) in (0..).zip(into) {
-            if let Some(own) = self.own(family_of(problem, groups, Some((tag, count)))) {
-                *allowance = self.found[own].sums.value(lead);
+        let there: i64 = groups.iter().map(|&(_, count)| i64::from(count)).sum();
+        for found in &self.found {
+            // Of the same family only with as many devices as this one has more.
+            let Ok(count) = u32::try_from(found.sums.count - there) else { continue };
+            if let Some(allowance) = into.get_mut(count as usize)
+                && family_of(problem, groups, Some((tag, count))) == found.family
+            {
+                *allowance = found.sums.value(lead);
             }
         }
     }

@@ -19,6 +19,11 @@
 //! must carry the demand there, which is the same question at a lower level, and is asked anew whenever the list improves.
 //! Totals found before such a change are too great by then, never too small, so every bound above stays one.
 //!
+//! 5. *Sizes outdone.* A size is not tried where another of the same tag is cheaper, carries at least as much in every case,
+//!    takes no more edge, and cost ranks first: put in its place, device for device, it makes a cheaper layout of the same
+//!    family that holds as well. Where one layout alone is kept, the other may be of any tag. (What holds to the last bit of
+//!    a sum alone is not told apart here from what does not: the flows of both may be added in another order.)
+//!
 //! Nothing else is left out. Layouts of one group are tried first, then of two, then of three: good layouts early make the
 //! bounds tight.
 
@@ -68,11 +73,15 @@ pub(super) fn dive(problem: &Problem<'_>, aim: Aim, best: Best) -> Dived {
         best.change_class();
         let limits = (aim != Aim::Reach)
             .then(|| problem.table(&problem.allowable_levels(class), |candidate| Some(candidate.lowest())));
+        let mut members = problem.members(class);
+        if let Some(table) = &limits {
+            members = not_outdone(problem, members, table, best.keeps(), problem.edge.is_some());
+        }
         let mut dive = Dive {
             problem,
             aim,
             class,
-            members: problem.members(class),
+            members,
             bounds: Bounds::default(),
             limits,
             best,
@@ -140,6 +149,44 @@ fn of_one(candidate: &Candidate<'_>, lead: Option<Criterion>) -> i64 {
 /// What a unit of flow takes of the leading criterion.
 fn price_of_flow(lead: i64, flow: f64) -> f64 {
     if flow > 0.0 { lead as f64 / flow } else { f64::INFINITY }
+}
+
+/// Which layouts a list keeps.
+#[derive(Clone, Copy)]
+pub(super) struct Keeps {
+    /// The best alone.
+    pub(super) one: bool,
+    /// The best of each family alone.
+    pub(super) families: bool,
+}
+
+/// Bound 5: the members that no other outdoes, in catalog order.
+pub(super) fn not_outdone(
+    problem: &Problem<'_>,
+    mut members: Vec<usize>,
+    table: &Table,
+    keeps: Keeps,
+    edge_limited: bool,
+) -> Vec<usize> {
+    if lead(problem) != Some(Criterion::Cost) || !(keeps.one || keeps.families) {
+        return members;
+    }
+    let outdoes = |better: usize, worse: usize| {
+        let (a, b) = (&problem.candidates[better], &problem.candidates[worse]);
+        let fits = !edge_limited || !a.at_edge || (b.at_edge && a.width <= b.width);
+        let carries = || table.of(better).iter().zip(table.of(worse)).all(|(a, b)| a >= b);
+        a.price < b.price && (a.tag == b.tag || keeps.one) && fits && carries()
+    };
+    // Whoever is outdone is outdone by one that is not, and that is cheaper.
+    members.sort_by_key(|&member| problem.candidates[member].price);
+    let mut left: Vec<usize> = Vec::with_capacity(members.len());
+    for member in members {
+        if !left.iter().any(|&other| outdoes(other, member)) {
+            left.push(member);
+        }
+    }
+    left.sort_unstable();
+    left
 }
 
 /// What the chosen groups use up.
@@ -355,9 +402,9 @@ impl Dive<'_, '_> {
             let missing = needed - self.totals[depth * cases + case];
             if missing > 0.0 {
                 let flow = self.bounds.flows[member * cases + case];
-                let wanted = if flow > 0.0 { (missing / flow * (1.0 - SLACK)).ceil() } else { f64::INFINITY };
+                let wanted = if flow > 0.0 { missing / flow * (1.0 - SLACK) } else { f64::INFINITY };
                 // A float above the greatest count ends the loop over counts before it begins.
-                least = least.max(wanted.min(f64::from(u32::MAX)) as u32);
+                least = least.max(rounded_up(wanted));
             }
         }
         least
@@ -399,6 +446,13 @@ impl Dive<'_, '_> {
             self.tighten();
         }
     }
+}
+
+/// The least whole number that is not less; the greatest where that is beyond it.
+pub(super) fn rounded_up(number: f64) -> u32 {
+    // Not `ceil`, a call into the system's library on processors that are not told to be recent ones.
+    let whole = number as u32;
+    whole.saturating_add(u32::from(f64::from(whole) < number))
 }
 
 /// Relative slack by which every bound is loosened; rounding in a sum of a few flows is far below it.

@@ -82,10 +82,24 @@ impl Table {
 impl<'r> Problem<'r> {
     /// The area with every size that may stand in it; beside it the sizes that may not, and why.
     pub(super) fn new(roof: &'r Roof, area: usize, options: &Options) -> (Self, Vec<(&'r Size, Misfit)>) {
+        Self::among(roof, area, options, roof.sizes.iter().enumerate())
+    }
+
+    /// The area with only the sizes of these indices among the roof's, rising.
+    pub(super) fn of_sizes(roof: &'r Roof, area: usize, options: &Options, sizes: &[usize]) -> Self {
+        Self::among(roof, area, options, sizes.iter().map(|&size| (size, &roof.sizes[size]))).0
+    }
+
+    fn among(
+        roof: &'r Roof,
+        area: usize,
+        options: &Options,
+        sizes: impl Iterator<Item = (usize, &'r Size)>,
+    ) -> (Self, Vec<(&'r Size, Misfit)>) {
         let catchment = &roof.areas[area];
         let mut tags: Vec<&str> = Vec::new();
         let (mut candidates, mut misfits) = (Vec::new(), Vec::new());
-        for (index, size) in roof.sizes.iter().enumerate() {
+        for (index, size) in sizes {
             // Sizes of one device follow one another, so its tag is nearly always the last.
             let tag = tags.iter().rposition(|&known| known == &*size.tag).unwrap_or_else(|| {
                 tags.push(&size.tag);

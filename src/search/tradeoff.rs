@@ -55,6 +55,8 @@ impl Raises {
 pub struct PlanAt {
     /// The raise.
     pub raise: Load,
+    /// Whether that was found out; else the watch ended the search before.
+    pub finished: bool,
     /// The cost of the plan; none where there is none.
     pub cost: Option<Money>,
     /// Its sizes.
@@ -133,7 +135,8 @@ pub fn plan_tradeoff(
         options.watch.advance();
         let first = plans.plans.first();
         let sizes = first.map_or(Vec::new(), |plan| plan.sizes.iter().map(|&size| size.clone()).collect());
-        Some(PlanAt { raise, cost: first.map(|plan| plan.cost), sizes })
+        let first = first.filter(|_| plans.finished);
+        Some(PlanAt { raise, finished: plans.finished, cost: first.map(|plan| plan.cost), sizes })
     };
     steps.par_iter().map(at).collect()
 }

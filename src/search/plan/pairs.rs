@@ -1,134 +1,162 @@
-//! What the cheapest layout of two sizes costs in an area, from the table of what one of each carries.
+//! What the cheapest layout of two sizes costs in every area, from the table of what one of each carries.
 //!
-//! For a pair, the count m of one size is run through and the least count n of the other that holds every case is found. A
-//! layout with m of the first costs at least m times its price and one of the second, so m stops once that is no less than the
-//! best known: the cheaper of either size alone, or a pair met before.
+//! A layout of a pair has m of one size and n of the other, one of each at least. For each m the areas that share a table are
+//! gone through by rising demand, so the least n that holds every case only rises: it is carried on from area to area, and
+//! where it no longer does, goes on from a bound on it. Fewer openings take less edge, so with m given the least n decides.
 //!
-//! # Sizes that are left out
+//! # Where m ends
 //!
-//! A size goes if another is no dearer and, in every area where the first may stand, may stand too, carries at least as much
-//! in every case, takes no more edge, and has its top no lower where freeboard is asked. Put the other in its place, device for
-//! device: no layout costs more, carries less (in all, or less its most effective), takes more edge, or adds a size.
+//! Let m count the size that carries less in every case. If some k <= m of the greater cost no more than m of the less, carry
+//! as much in every case and take no more edge, then m and all more of the less are left out: k of the greater take the place
+//! of m of the less, no dearer. What carries most of a layout with both is one of the greater, before and after, so with one
+//! blocked the same is gone. That is why no more than one may be blocked; and since fewer devices are left, at least two, no
+//! more than two may be asked for. By how much k must carry more is far above what rounding could take away.
+//!
+//! Besides, m ends where m of the one and one of the other cost no less than the best known in every area.
 
 use rayon::prelude::*;
 
-use crate::roof::Roof;
+use crate::roof::working_capacity;
+use crate::search::dive::{SLACK, rounded_up};
+use crate::search::problem::{Problem, Table};
 
-use super::super::problem::{Problem, Table};
-use super::sets::Costs;
+use super::costs::Costs;
+use super::ending::Ending;
+use super::field::{Alike, Asking, Field};
 
-/// The sizes of a roof that no other outdoes, and its areas.
-pub(super) struct Field {
-    /// Indices into the roof's sizes, rising.
-    sizes: Vec<usize>,
-    places: Vec<Place>,
-}
-
-/// One area: where each size of the roof is among its candidates, and what one of each carries, class by class.
-struct Place {
-    candidates: Vec<Option<usize>>,
-    tables: Vec<(Option<i64>, Table)>,
-}
-
-impl Place {
-    fn new(roof: &Roof, problem: &Problem<'_>) -> Self {
-        let mut candidates = vec![None; roof.sizes.len()];
-        for (index, candidate) in problem.candidates.iter().enumerate() {
-            candidates[candidate.index] = Some(index);
+/// The cost of every pair in every area; none where it was told to end before.
+pub(super) fn costs(field: &Field<'_>, ending: &Ending<'_>) -> Option<Costs> {
+    let (count, areas) = (field.sizes.len(), field.areas());
+    let singles: Vec<Vec<f64>> = field.sizes.par_iter().map(|&size| singles(field, size)).collect();
+    let pairs: Vec<(usize, usize)> = (0..count).flat_map(|j| (0..=j).map(move |i| (i, j))).collect();
+    let mut rows = vec![f64::INFINITY; pairs.len() * areas];
+    rows.par_chunks_mut(areas.max(1)).zip(&pairs).for_each(|(row, &(i, j))| {
+        if ending.is_due() {
+            return;
         }
-        let table =
-            |class| (class, problem.table(&problem.allowable_levels(class), |candidate| Some(candidate.lowest())));
-        Self { candidates, tables: problem.classes().into_iter().map(table).collect() }
-    }
-
-    /// The table that holds for a layout whose lowest top is that of these candidates.
-    fn table(&self, problem: &Problem<'_>, candidates: &[usize]) -> &Table {
-        let class = match problem.asked.freeboard {
-            None => None,
-            Some(_) => candidates.iter().filter_map(|&index| problem.candidates[index].top).min(),
-        };
-        let found = self.tables.iter().find(|(known, _)| *known == class);
-        found.map_or(&self.tables[0].1, |(_, table)| table)
-    }
+        for ((cost, a), b) in row.iter_mut().zip(&singles[i]).zip(&singles[j]) {
+            *cost = a.min(*b);
+        }
+        if i != j {
+            lower_to_pairs(field, field.sizes[i], field.sizes[j], row);
+        }
+    });
+    (!ending.was_due()).then(|| Costs::new(count, areas, rows))
 }
 
-impl Field {
-    /// The sizes that may stand somewhere and that no other outdoes.
-    pub(super) fn new(roof: &Roof, problems: &[Problem<'_>]) -> Self {
-        let places: Vec<Place> = problems.par_iter().map(|problem| Place::new(roof, problem)).collect();
-        let stands = |size: usize| places.iter().any(|place| place.candidates[size].is_some());
-        let standing: Vec<usize> = (0..roof.sizes.len()).filter(|&size| stands(size)).collect();
-        let outdone = |size: usize| {
-            standing.iter().any(|&other| {
-                // Of two alike the first stays.
-                other != size
-                    && outdoes(problems, &places, other, size)
-                    && (other < size || !outdoes(problems, &places, size, other))
-            })
-        };
-        let sizes = standing.iter().copied().filter(|&size| !outdone(size)).collect();
-        Self { sizes, places }
-    }
-
-    pub(super) fn sizes(&self) -> usize {
-        self.sizes.len()
-    }
-
-    /// Index into the roof's sizes.
-    pub(super) fn size(&self, of: usize) -> usize {
-        self.sizes[of]
-    }
-
-    /// The cost of every pair in every area.
-    pub(super) fn costs(&self, problems: &[Problem<'_>]) -> Costs {
-        let count = self.sizes.len();
-        // Area by area, then turned round: areas innermost.
-        let columns: Vec<Vec<f64>> =
-            problems.par_iter().zip(&self.places).map(|(problem, place)| self.column(problem, place)).collect();
-        Costs::new(count, problems.len(), |i, j| {
-            let at = j * (j + 1) / 2 + i;
-            columns.iter().map(|column| column[at]).collect()
-        })
-    }
-
-    /// The cost of every pair in one area, pairs in triangular order.
-    fn column(&self, problem: &Problem<'_>, place: &Place) -> Vec<f64> {
-        let mine: Vec<Option<usize>> = self.sizes.iter().map(|&size| place.candidates[size]).collect();
-        let alone = |&index: &Option<usize>| index.map_or(f64::INFINITY, |index| single(problem, place, index));
-        let singles: Vec<f64> = mine.iter().map(alone).collect();
-        let mut column = Vec::with_capacity(mine.len() * (mine.len() + 1) / 2);
-        for j in 0..mine.len() {
-            for i in 0..=j {
-                let alone = singles[i].min(singles[j]);
-                column.push(match (mine[i], mine[j]) {
-                    _ if i == j => singles[i],
-                    (Some(first), Some(second)) if problem.mix > 1 => pair(problem, place, first, second, alone),
-                    _ => alone,
-                });
+/// The areas' costs of one size alone.
+fn singles(field: &Field<'_>, size: usize) -> Vec<f64> {
+    let mut row = vec![f64::INFINITY; field.areas()];
+    let mut rest = &mut row[..];
+    for alike in &field.alike {
+        let (mine, others) = rest.split_at_mut(alike.areas.len());
+        rest = others;
+        let Some(index) = alike.candidate(size) else { continue };
+        let price = alike.problem.candidates[index].price;
+        let mut ladder = Ladder::new(alike, None, index);
+        for (cost, area) in mine.iter_mut().zip(&alike.areas) {
+            let Some(count) = ladder.reach(area) else { break };
+            if fits(&alike.problem, area.edge, &[(index, count)]) {
+                *cost = (price * i64::from(count)) as f64;
             }
         }
-        column
+    }
+    row
+}
+
+/// Lowers the areas' costs to those of layouts with both sizes.
+fn lower_to_pairs(field: &Field<'_>, first: usize, second: usize, row: &mut [f64]) {
+    let mut rest = row;
+    for alike in &field.alike {
+        let (mine, others) = rest.split_at_mut(alike.areas.len());
+        rest = others;
+        let (Some(first), Some(second)) = (alike.candidate(first), alike.candidate(second)) else { continue };
+        if alike.problem.mix > 1 {
+            Pair::new(alike, first, second).lower(mine);
+        }
     }
 }
 
-/// Whether one size can stand in for another wherever that may stand.
-fn outdoes(problems: &[Problem<'_>], places: &[Place], better: usize, worse: usize) -> bool {
-    problems.iter().zip(places).all(|(problem, place)| {
-        let (Some(worse), better) = (place.candidates[worse], place.candidates[better]) else { return true };
-        let Some(better) = better else { return false };
-        let (a, b) = (&problem.candidates[better], &problem.candidates[worse]);
-        let edge =
-            |candidate: &crate::search::problem::Candidate<'_>| if candidate.at_edge { candidate.width } else { 0 };
-        let fits = problem.edge.is_none() || ((!a.at_edge || b.at_edge) && edge(a) <= edge(b));
-        let tops = problem.asked.freeboard.is_none() || a.top.is_none_or(|a| b.top.is_some_and(|b| a >= b));
-        let carries =
-            || place.tables.iter().all(|(_, table)| table.of(better).iter().zip(table.of(worse)).all(|(a, b)| a >= b));
-        a.price <= b.price && fits && tops && carries()
-    })
+/// Two sizes in areas that share a table.
+struct Pair<'f, 'r> {
+    alike: &'f Alike<'r>,
+    /// The size whose count is run through.
+    less: usize,
+    greater: usize,
+    /// The count from which on the size is left out.
+    end: u32,
 }
 
-fn fits(problem: &Problem<'_>, groups: &[(usize, u32)]) -> bool {
-    let Some(edge) = problem.edge else { return true };
+impl<'f, 'r> Pair<'f, 'r> {
+    fn new(alike: &'f Alike<'r>, first: usize, second: usize) -> Self {
+        let problem = &alike.problem;
+        let table = alike.table(&[first, second]);
+        let (less, greater) = match (carries_more(table, first, second), carries_more(table, second, first)) {
+            (false, true) => (first, second),
+            (true, false) => (second, first),
+            // Through the counts of the dearer: they are fewer, and the bound on their price ends them sooner.
+            _ if problem.candidates[first].price >= problem.candidates[second].price => (first, second),
+            _ => (second, first),
+        };
+        let mut pair = Self { alike, less, greater, end: problem.most };
+        if carries_more(table, greater, less) && pair.may_change_places() {
+            pair.end = (1..problem.most).find(|&count| pair.is_replaced(table, count)).unwrap_or(problem.most);
+        }
+        pair
+    }
+
+    /// Whether some of the greater may take the place of as many or more of the less.
+    fn may_change_places(&self) -> bool {
+        let problem = &self.alike.problem;
+        let blocked = problem.situations.iter().map(|situation| situation.case.blocked).max();
+        problem.least <= 2 && blocked <= Some(1) && problem.asked.freeboard.is_none()
+    }
+
+    /// Whether some of the greater, no dearer, carry as much as so many of the less and take no more edge.
+    fn is_replaced(&self, table: &Table, count: u32) -> bool {
+        let flows = table.of(self.less).iter().zip(table.of(self.greater));
+        let needed = flows.map(|(less, greater)| f64::from(count) * less / greater).fold(1.0, f64::max);
+        let needed = rounded_up(needed * (1.0 + SLACK));
+        if needed > count {
+            return false;
+        }
+        let (less, greater) = (&self.alike.problem.candidates[self.less], &self.alike.problem.candidates[self.greater]);
+        let (needed, count) = (i64::from(needed), i64::from(count));
+        let takes_no_more_edge = !greater.at_edge || (less.at_edge && needed * greater.width <= count * less.width);
+        needed * greater.price <= count * less.price && (!self.alike.is_edge_limited() || takes_no_more_edge)
+    }
+
+    fn lower(&self, row: &mut [f64]) {
+        let problem = &self.alike.problem;
+        let (less, greater) = (problem.candidates[self.less].price, problem.candidates[self.greater].price);
+        for count in 1..self.end {
+            let least = (less * i64::from(count) + greater) as f64;
+            if row.iter().all(|&cost| cost <= least) {
+                break;
+            }
+            let mut ladder = Ladder::new(self.alike, Some((self.less, count)), self.greater);
+            for (cost, area) in row.iter_mut().zip(&self.alike.areas) {
+                if *cost <= least {
+                    continue;
+                }
+                let Some(other) = ladder.reach(area) else { break };
+                let total = (less * i64::from(count) + greater * i64::from(other)) as f64;
+                if total < *cost && fits(problem, area.edge, &[(self.less, count), (self.greater, other)]) {
+                    *cost = total;
+                }
+            }
+        }
+    }
+}
+
+/// Whether one size carries at least as much as another in every case.
+fn carries_more(table: &Table, size: usize, other: usize) -> bool {
+    table.of(size).iter().zip(table.of(other)).all(|(size, other)| size >= other)
+}
+
+/// Whether the openings of some groups, and the gaps between them, fit an edge.
+fn fits(problem: &Problem<'_>, edge: Option<i64>, groups: &[(usize, u32)]) -> bool {
+    let Some(edge) = edge else { return true };
     let (mut widths, mut openings) = (0_i64, 0_i64);
     for &(index, count) in groups {
         let candidate = &problem.candidates[index];
@@ -140,56 +168,71 @@ fn fits(problem: &Problem<'_>, groups: &[(usize, u32)]) -> bool {
     openings == 0 || widths.saturating_add(problem.gap.saturating_mul(openings - 1)) <= edge
 }
 
-/// Cost of the fewest of one size that hold every case and fit; infinite where none do.
-fn single(problem: &Problem<'_>, place: &Place, index: usize) -> f64 {
-    let table = place.table(problem, &[index]);
-    let least = least_beside(problem, table, None, index).max(problem.least);
-    let held = (least..=problem.most).find(|&count| problem.carries(table, &[(index, count)]));
-    match held {
-        Some(count) if fits(problem, &[(index, count)]) => (problem.candidates[index].price * i64::from(count)) as f64,
-        _ => f64::INFINITY,
-    }
+/// The least count of a size that holds every case beside so many of another, area after area by rising demand.
+struct Ladder<'f, 'r> {
+    problem: &'f Problem<'r>,
+    table: &'f Table,
+    beside: Option<(usize, u32)>,
+    index: usize,
+    count: u32,
+    most: u32,
+    /// What so many carry in each case.
+    capacities: Vec<f64>,
 }
 
-/// Fewest of a size that can hold every case beside so many of another, were nothing blocked; at least one.
-fn least_beside(problem: &Problem<'_>, table: &Table, beside: Option<(usize, u32)>, index: usize) -> u32 {
-    let mut least = 1.0_f64;
-    for (case, situation) in problem.situations.iter().enumerate() {
-        let there = beside.map_or(0.0, |(other, count)| table.of(other)[case] * f64::from(count));
-        let missing = situation.demand.m3_per_s() - there;
-        if missing > 0.0 {
-            // A little less, so that rounding never makes a bound of what is none.
-            least = least.max((missing / table.of(index)[case] * (1.0 - 1e-9)).ceil());
+impl<'f, 'r> Ladder<'f, 'r> {
+    fn new(alike: &'f Alike<'r>, beside: Option<(usize, u32)>, index: usize) -> Self {
+        let problem = &alike.problem;
+        let table = match beside {
+            Some((other, _)) => alike.table(&[other, index]),
+            None => alike.table(&[index]),
+        };
+        let there = beside.map_or(0, |(_, count)| count);
+        let count = problem.least.saturating_sub(there).max(1);
+        let most = problem.most.saturating_sub(there);
+        let mut ladder = Self { problem, table, beside, index, count, most, capacities: Vec::new() };
+        ladder.add_up();
+        ladder
+    }
+
+    /// The least count that holds every case of an area; none where that is more than may stand.
+    fn reach(&mut self, area: &Asking) -> Option<u32> {
+        while self.count <= self.most {
+            if self.capacities.iter().zip(&area.demands).all(|(capacity, demand)| capacity >= demand) {
+                return Some(self.count);
+            }
+            self.count = self.least_for(area).max(self.count + 1);
+            self.add_up();
         }
+        None
     }
-    if least < f64::from(u32::MAX) { least as u32 } else { u32::MAX }
-}
 
-/// Cost of the cheapest layout of two sizes, one of each at least, where it is below that of either alone; else that.
-fn pair(problem: &Problem<'_>, place: &Place, first: usize, second: usize, alone: f64) -> f64 {
-    let table = place.table(problem, &[first, second]);
-    // Through the counts of the dearer: they are fewer, and the bound on them bites sooner.
-    let price = |index: usize| problem.candidates[index].price;
-    let (many, few) = if price(first) >= price(second) { (second, first) } else { (first, second) };
-    let ordered = |few_count, many_count| {
-        let mut groups = [(few, few_count), (many, many_count)];
+    fn add_up(&mut self) {
+        let mut groups = [self.beside.unwrap_or((self.index, 0)), (self.index, self.count)];
         groups.sort_unstable();
-        groups
-    };
-    let mut best = alone;
-    for count in 1..problem.most {
-        if (price(few) * i64::from(count) + price(many)) as f64 >= best {
-            break;
-        }
-        let least =
-            least_beside(problem, table, Some((few, count)), many).max(problem.least.saturating_sub(count)).max(1);
-        let held = (least..=problem.most - count).find(|&other| problem.carries(table, &ordered(count, other)));
-        if let Some(other) = held {
-            let cost = (price(few) * i64::from(count) + price(many) * i64::from(other)) as f64;
-            if cost < best && fits(problem, &ordered(count, other)) {
-                best = cost;
+        self.capacities.clear();
+        self.capacities.extend(self.problem.situations.iter().enumerate().map(|(case, situation)| {
+            let flows = groups.map(|(candidate, count)| (self.table.of(candidate)[case], count));
+            working_capacity(&flows, flows.len(), situation.case.blocked)
+        }));
+    }
+
+    /// A count that the least is not under: the blocked devices are the one that carries most and others.
+    fn least_for(&self, area: &Asking) -> u32 {
+        let (other, there) = self.beside.unwrap_or((self.index, 0));
+        let mut least = 1;
+        for (case, (situation, &demand)) in self.problem.situations.iter().zip(&area.demands).enumerate() {
+            let (one, beside) = (self.table.of(self.index)[case], self.table.of(other)[case]);
+            let gone = match situation.case.blocked {
+                0 => 0.0,
+                blocked => one.max(beside) + f64::from(blocked - 1) * one.min(beside),
+            };
+            let missing = demand + gone - beside * f64::from(there);
+            if demand > 0.0 && missing > 0.0 {
+                // A little less, so that rounding never makes a bound of what is none.
+                least = least.max(rounded_up(missing / one * (1.0 - SLACK)));
             }
         }
+        least
     }
-    best
 }
