@@ -91,6 +91,17 @@ pub(super) struct Entry {
     pub(super) span: Span,
 }
 
+/// Whether the widths of a device could be made to measure.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Offered {
+    /// It has none, or single ones.
+    Single,
+    /// In a range with a step, where the project asks for it.
+    Range,
+    /// In a range without a step.
+    Any,
+}
+
 /// What a device would offer if no value of it were at fault: other files are held against it all the same.
 #[derive(Debug)]
 pub(super) struct Offer {
@@ -99,9 +110,8 @@ pub(super) struct Offer {
     pub(super) has_price: bool,
     /// The law that it follows whatever the project chooses.
     pub(super) law: Option<Law>,
-    /// Whether it comes in a range of widths that could be made to measure, and whether in any width of it.
-    pub(super) has_range: bool,
-    pub(super) in_any_width: bool,
+    /// How its widths could be made to measure.
+    pub(super) widths: Offered,
     /// Its tag, where it has one.
     pub(super) tag: Option<Arc<str>>,
     /// Its tag or its table.
@@ -274,14 +284,16 @@ fn read_device(catalog: &Path, section: &Section<'_>, log: &Log, into: &mut Cata
     };
     let kind = kind?;
     let law = section.get("law").map(|cell| flow::law(&cell, kind));
-    let ranged = section.get("width").filter(|cell| kind.in_any_width() && cell.is_table());
     into.offers.push(Offer {
         kind,
         law: law.flatten(),
         has_set_heights: given.set_heights.is_some(),
         has_price: section.get("price").is_some(),
-        has_range: ranged.is_some(),
-        in_any_width: ranged.is_some_and(|cell| grid::is_stepless(&cell)),
+        widths: match section.get("width").filter(|cell| kind.in_any_width() && cell.is_table()) {
+            Some(cell) if grid::is_stepless(&cell) => Offered::Any,
+            Some(_) => Offered::Range,
+            None => Offered::Single,
+        },
         tag: tag_cell.and_then(|cell| cell.text()).map(Arc::from),
         at: Entry {
             source: Arc::clone(section.reader.source),

@@ -7,7 +7,7 @@ use crate::roof::{Case, Limits, Roof, Storm, demand};
 use crate::search::{Criterion, Options, PlanAsked};
 use crate::units::{Dimension, Intensity, Length, Money, ReturnPeriod, System, Time};
 
-use super::catalog::{Catalogs, Offer};
+use super::catalog::{Catalogs, Offer, Offered};
 use super::defaults::{self, COUNT, KEEP, MIX, RANK_BY};
 use super::fault::{Fault, Faults, Log, Span};
 use super::grid::{self, Least};
@@ -165,13 +165,14 @@ fn measure(
     }
     let given = |key| section.get("search").and_then(|cell| cell.section(&SEARCH)).and_then(|search| search.get(key));
     let offered = |has: fn(&Offer) -> bool| !catalogs.complete || catalogs.offers.iter().any(has);
-    if let (true, false, Some(cell)) = (all, offered(|offer| offer.has_range), given("made_to_measure")) {
+    if let (true, false, Some(cell)) = (all, offered(|offer| offer.widths != Offered::Single), given("made_to_measure"))
+    {
         cell.at_fault(
             "nothing in the catalogs can be made to measure",
             "no device has a range of widths",
             "give an open scupper, a closed scupper or a roof edge a range: width = { from = \"6 in\", to = \"48 in\" }",
         );
-    } else if let (false, false, Some(cell)) = (all, offered(|offer| offer.in_any_width), given("round")) {
+    } else if let (false, false, Some(cell)) = (all, offered(|offer| offer.widths == Offered::Any), given("round")) {
         cell.reader.warn(
             cell.span(),
             "nothing is made to measure: `round` rounds no width",
