@@ -2,7 +2,8 @@
 //!
 //! It is exact over the declared grid: every size of every catalog, every count, up to `mix` groups; a layout is left out
 //! only by a bound that is proven where it is used (`dive`). Cost does not depend on the set height and the load rises with
-//! it, so a layout is its sizes and counts, with a window of set heights that starts at the lowest. The answer does not
+//! it, so a layout is its sizes and counts, with a window of set heights that starts at the lowest. Openings that are made to
+//! measure are searched on that grid too; the layouts kept are then fitted with widths of their own (`measure`). The answer does not
 //! depend on the number of threads, and equal input gives equal answers to the last bit.
 
 use rayon::prelude::*;
@@ -18,12 +19,14 @@ mod best;
 mod cure;
 mod dive;
 mod infeasible;
+mod measure;
 mod plan;
 mod problem;
 mod rank;
 mod tradeoff;
 
 pub use cure::{Cure, Cures, Opened, Relaxation, cures, opened, relaxed};
+pub use measure::{Fitted, Measured};
 pub use plan::{Asked as PlanAsked, Plan, Plans, plan};
 pub use rank::Criterion;
 pub use tradeoff::{PlanAt, Raises, plan_tradeoff, tradeoff};
@@ -80,6 +83,8 @@ pub struct Ranked<'r> {
     pub thick_wall: Vec<UnderLaw>,
     /// The most by which straight lines between rated rows raise its flow over logarithmic ones, as a part of the demand.
     pub chord: f64,
+    /// What became of it where openings are made to measure; none where none of it is.
+    pub made: Option<Measured>,
 }
 
 /// A layout under another flow law.
@@ -169,10 +174,17 @@ fn size_area<'r>(roof: &'r Roof, area: usize, options: &Options) -> Outcome<'r> 
     if found.is_empty() {
         return Outcome::Infeasible(infeasible::why(problem));
     }
-    Outcome::Optimal(found.iter().map(|found| ranked(&problem, found)).collect())
+    Outcome::Optimal(found.iter().map(|found| measured(&problem, found)).collect())
 }
 
-/// All that is reported of a layout.
+/// A layout, its openings measured where they are made to measure.
+fn measured<'r>(problem: &Problem<'r>, found: &Found) -> Ranked<'r> {
+    let layout = ranked(problem, found);
+    let highest: Vec<Length> = problem.liftable(&found.groups).iter().map(|group| group.highest).collect();
+    Ranked { made: measure::measured(problem, &layout, &highest), ..layout }
+}
+
+/// All that is reported of a layout on the grid.
 fn ranked<'r>(problem: &Problem<'r>, found: &Found) -> Ranked<'r> {
     let groups = reported(problem, &found.groups);
     let liftable = problem.liftable(&found.groups);
@@ -182,6 +194,12 @@ fn ranked<'r>(problem: &Problem<'r>, found: &Found) -> Ranked<'r> {
         from: liftable.group.set_height,
         to: liftable.lifted(lift).set_height,
     });
+    described(problem, placed.collect())
+}
+
+/// All that is reported of groups with their windows.
+fn described<'g>(problem: &Problem<'_>, placed: Vec<Placed<'g>>) -> Ranked<'g> {
+    let groups: Vec<Group<'g>> = placed.iter().map(|placed| placed.group).collect();
     let states: Vec<_> = problem.situations.iter().map(|situation| layout::state(&groups, situation)).collect();
     let (case, governing) = governing(&states);
     Ranked {
@@ -191,9 +209,10 @@ fn ranked<'r>(problem: &Problem<'r>, found: &Found) -> Ranked<'r> {
         beyond: beyond(&groups, &states, &problem.situations),
         thick_wall: thick_wall(problem, &groups, case),
         chord: chord(&groups, &states, &problem.situations),
-        groups: placed.collect(),
+        groups: placed,
         states,
         allowed: problem.allowed.clone(),
+        made: None,
     }
 }
 
