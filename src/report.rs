@@ -12,6 +12,7 @@ use crate::units::{Flow, Length, Load, System};
 mod contents;
 mod cures;
 mod json;
+mod measure;
 mod notes;
 mod page;
 mod plan;

@@ -108,7 +108,7 @@ fn blocks(sizes: &[Size], title: &str, words: Words) -> Vec<Block> {
 
 /// What is on a device, before it and behind it, the same for all its sizes.
 fn fittings(size: &Size, words: Words) -> Vec<String> {
-    let mut fittings = Vec::new();
+    let mut fittings: Vec<String> = super::measure::of_catalog(size, words).into_iter().collect();
     if let Device::Drain(drain) = &size.device {
         let dome =
             drain.free_area.map_or(String::new(), |area| format!(", under a dome of {} free", words.opening(area)));

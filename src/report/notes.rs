@@ -1,13 +1,15 @@
 //! What every reader of a report must know besides its numbers: the laws, the assumptions, the cautions of this very roof.
 
+use std::borrow::Cow;
+
 use crate::device::{Kind, Law, Place, Regime, Site, Size};
 use crate::hydraulics::practice::Transition;
 use crate::roof::layout::GroupState;
-use crate::search::{Outcome, Ranked};
+use crate::search::{Measured, Outcome, Ranked};
 use crate::units::{Area, Length, System};
 
-use super::Sized;
 use super::words::{self, Words, list, ranked_by, trimmed};
+use super::{Sized, measure};
 
 /// Excess of straight lines over logarithmic ones, as a part of the demand, from which it is told.
 pub(super) const CHORD_TOLD: f64 = 0.02;
@@ -22,6 +24,18 @@ fn layouts<'a, 'r>(sized: &Sized<'a, 'r>) -> impl Iterator<Item = &'a Ranked<'r>
         Outcome::Optimal(layouts) => &layouts[..],
         Outcome::Infeasible(_) => &[],
     })
+}
+
+/// The listed layouts and those in widths of their own: what is cautioned of any.
+fn every<'a>(sized: &Sized<'a, '_>) -> Vec<Cow<'a, Ranked<'a>>> {
+    let both = |layout: &'a Ranked<'a>| {
+        let fitted = match &layout.made {
+            Some(Measured::Fitted(fitted)) => Some(Cow::Owned(fitted.layout())),
+            _ => None,
+        };
+        std::iter::once(Cow::Borrowed(layout)).chain(fitted)
+    };
+    layouts(sized).flat_map(both).collect()
 }
 
 fn sizes<'r>(sized: &Sized<'_, 'r>) -> Vec<&'r Size> {
@@ -158,6 +172,7 @@ pub(super) fn assumptions(sized: &Sized<'_, '_>) -> Vec<String> {
         let whom = if assumed.areas.is_empty() { String::new() } else { format!(" in {}", list(&assumed.areas)) };
         lines.push(format!("Not given: `{}`{whom}. Taken: {}; {}.", default.key, default.value, default.meaning));
     }
+    lines.extend(measure::assumptions(&sized.roof.sizes, words));
     if let Some(freeboard) = sized.options.freeboard {
         lines.push(format!(
             "At least {} is kept between the water and the top of every closed opening.",
@@ -180,6 +195,13 @@ pub(super) fn cautions(sized: &Sized<'_, '_>) -> Vec<String> {
     structure(sized, &mut lines);
     openings(sized, &mut lines);
     cases(sized, &mut lines);
+    if layouts(sized).any(|layout| matches!(layout.made, Some(Measured::Fitted(_)))) {
+        lines.push(
+            "Openings made to measure use their limit up: what may be built narrower or higher than it is drawn must stand in a \
+             case."
+                .into(),
+        );
+    }
     lines.push(
         "Ice, snow, hail and leaves before an opening, and water driven along a parapet by wind, are in none of the formulas."
             .into(),
@@ -293,8 +315,9 @@ fn openings(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
 }
 
 fn regimes(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
+    let all = every(sized);
     let states = || {
-        layouts(sized).flat_map(|layout| {
+        all.iter().flat_map(|layout| {
             layout.states.iter().flat_map(move |state| {
                 layout.groups.iter().zip(&state.groups).filter(|(_, stands)| stands.share.working > 0)
             })
@@ -320,7 +343,7 @@ fn regimes(sized: &Sized<'_, '_>, lines: &mut Vec<String>) {
             "Some rated devices are read below the first row of their table, where a weir's curve is taken.".into(),
         );
     }
-    if layouts(sized).any(|layout| !layout.beyond.is_empty()) {
+    if all.iter().any(|layout| !layout.beyond.is_empty()) {
         lines.push(
             "Layouts marked as beyond range rest on a law outside the range in which it is published; how far is told under \
              each list."

@@ -9,7 +9,7 @@ use crate::units::{Area, Length, Load};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Sized, notes, plan, work};
+use super::{Sized, measure, notes, plan, work};
 
 /// The mark behind a layout that leaves the published range of its law.
 const BEYOND: &str = "\u{2020}";
@@ -88,12 +88,14 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
     match &answer.outcome {
         Outcome::Optimal(layouts) => {
             ranking(sized, answer.area, layouts, words, blocks);
+            blocks.extend(measure::blocks(sized, answer.area, layouts, words));
             if let Some(laws) = sized.laws_of(answer.area).filter(|laws| !laws.is_empty()) {
                 every_law(roof, answer.area, &layouts[0], laws, words, blocks);
             }
             if sized.work {
                 blocks.push(Block::Text(format!("The first layout by hand, {}:", words.layout(&layouts[0]))));
                 blocks.push(Block::Lines(work::lines(roof, answer.area, &layouts[0], words)));
+                blocks.extend(measure::work(roof, answer.area, &layouts[0], words));
             }
         }
         Outcome::Infeasible(why) => {
@@ -275,7 +277,7 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
     if !under.is_empty() {
         blocks.push(Block::Text(under.join(" ")));
     }
-    for text in marks(layouts, words) {
+    for text in marks(&layouts.iter().collect::<Vec<_>>(), words) {
         blocks.push(Block::Text(text));
     }
     let backing = backing_up(sized.roof, layouts, words);
@@ -284,7 +286,8 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
             .push(Block::Text("Conductor heads that would back up, were all that the device passes credited:".into()));
         blocks.push(Block::List(backing));
     }
-    let thick = thick_walls(sized.roof, area, layouts, words);
+    let numbered = (1..).zip(layouts);
+    let thick = thick_walls(sized.roof, area, numbered, words);
     if !thick.is_empty() {
         blocks.push(Block::Text("Under the laws of a thick wall, in the governing case:".into()));
         blocks.push(Block::List(thick));
@@ -311,17 +314,22 @@ fn backing_up(roof: &Roof, layouts: &[Ranked<'_>], words: Words) -> Vec<String> 
 }
 
 /// One line for each layout: its level under the laws of a thick wall, and whether that breaks a limit.
-fn thick_walls(roof: &Roof, area: usize, layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
+pub(super) fn thick_walls<'l, 'r: 'l>(
+    roof: &Roof,
+    area: usize,
+    numbered: impl Iterator<Item = (usize, &'l Ranked<'r>)>,
+    words: Words,
+) -> Vec<String> {
     let Some(thickness) = roof.areas[area].parapet.thickness else { return Vec::new() };
     let wall = format!(" ({} parapet)", words.size(thickness));
     let one = |(index, under): (usize, &UnderLaw)| {
         let (wall, is) = if index == 0 { (wall.as_str(), "the level is ") } else { ("", "") };
         format!("under `{}`{wall} {is}{}", under.law.name(), under_in_words(roof, area, under, words))
     };
-    let numbered = layouts.iter().enumerate().filter(|(_, layout)| !layout.thick_wall.is_empty());
     numbered
-        .map(|(index, layout)| {
-            format!("{}: {}", index + 1, layout.thick_wall.iter().enumerate().map(one).collect::<Vec<_>>().join("; "))
+        .filter(|(_, layout)| !layout.thick_wall.is_empty())
+        .map(|(rank, layout)| {
+            format!("{rank}: {}", layout.thick_wall.iter().enumerate().map(one).collect::<Vec<_>>().join("; "))
         })
         .collect()
 }
@@ -373,7 +381,7 @@ fn every_law(roof: &Roof, area: usize, first: &Ranked<'_>, laws: &[UnderLaw], wo
     ])));
 }
 
-fn marked(layout: &Ranked<'_>, words: Words) -> String {
+pub(super) fn marked(layout: &Ranked<'_>, words: Words) -> String {
     let mut text = words.layout(layout);
     if !layout.beyond.is_empty() {
         text += &format!(" {BEYOND}");
@@ -384,7 +392,7 @@ fn marked(layout: &Ranked<'_>, words: Words) -> String {
     text
 }
 
-fn marks(layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
+pub(super) fn marks(layouts: &[&Ranked<'_>], words: Words) -> Vec<String> {
     let mut texts = Vec::new();
     let mut beyond: Vec<(&Range, f64)> = Vec::new();
     for &(range, value) in layouts.iter().flat_map(|layout| &layout.beyond) {

@@ -1,7 +1,8 @@
-//! The ranked layouts as a schedule: CSV, one row for each group of each layout, in the units of the project.
+//! The ranked layouts as a schedule: CSV, one row for each group of each layout, in the units of the project. A layout in widths
+//! made to measure follows the one of the grid, with its rank.
 
 use crate::device::Kind;
-use crate::search::{Outcome, Placed, Ranked};
+use crate::search::{Measured, Outcome, Placed, Ranked};
 use crate::units::Length;
 
 use super::words::Words;
@@ -39,8 +40,14 @@ pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
         match &answer.outcome {
             Outcome::Optimal(layouts) => {
                 for (index, layout) in layouts.iter().enumerate() {
-                    let groups = layout.groups.iter();
-                    rows.extend(groups.map(|placed| row(sized, answer.area, index + 1, layout, placed, words)));
+                    let mut add = |outcome, layout: &Ranked<'_>| {
+                        let of_group = |placed| row(sized, answer.area, outcome, index + 1, layout, placed, words);
+                        rows.extend(layout.groups.iter().map(of_group));
+                    };
+                    add("optimal", layout);
+                    if let Some(Measured::Fitted(fitted)) = &layout.made {
+                        add("made to measure", &fitted.layout());
+                    }
                 }
             }
             Outcome::Infeasible(why) => {
@@ -58,6 +65,7 @@ pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
 fn row(
     sized: &Sized<'_, '_>,
     area: usize,
+    outcome: &str,
     rank: usize,
     layout: &Ranked<'_>,
     placed: &Placed<'_>,
@@ -70,7 +78,7 @@ fn row(
     let water = layout.states[layout.case].water;
     vec![
         sized.roof.areas[area].name.clone(),
-        "optimal".into(),
+        outcome.into(),
         rank.to_string(),
         layout.cost.map_or(String::new(), |cost| plain(cost.amount(), 2)),
         placed.group.size.tag.to_string(),
