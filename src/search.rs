@@ -174,14 +174,13 @@ fn size_area<'r>(roof: &'r Roof, area: usize, options: &Options) -> Outcome<'r> 
     if found.is_empty() {
         return Outcome::Infeasible(infeasible::why(problem));
     }
-    Outcome::Optimal(found.iter().map(|found| measured(&problem, found)).collect())
-}
-
-/// A layout, its openings measured where they are made to measure.
-fn measured<'r>(problem: &Problem<'r>, found: &Found) -> Ranked<'r> {
-    let layout = ranked(problem, found);
-    let highest: Vec<Length> = problem.liftable(&found.groups).iter().map(|group| group.highest).collect();
-    Ranked { made: measure::measured(problem, &layout, &highest), ..layout }
+    let highest = |found: &Found| problem.liftable(&found.groups).iter().map(|group| group.highest).collect::<Vec<_>>();
+    let layouts: Vec<_> = found.iter().map(|found| (ranked(&problem, found), highest(found))).collect();
+    let measured = |(layout, highest): (Ranked<'r>, Vec<Length>)| {
+        let made = measure::measured(&problem, &layout, &highest);
+        Ranked { made, ..layout }
+    };
+    Outcome::Optimal(layouts.into_par_iter().map(measured).collect())
 }
 
 /// All that is reported of a layout on the grid.

@@ -269,7 +269,7 @@ fn free(layout: &Ranked<'_>) -> usize {
 #[test]
 fn drawn_widths_are_the_best_of_all_that_may_be_drawn() {
     // By the number of groups that are made to measure: better ones drawn, the grid's kept.
-    let (mut fitted, mut kept, mut merged) = ([0; 4], [0; 4], 0);
+    let (mut fitted, mut kept, mut alone, mut merged) = ([0; 4], [0; 4], [0; 4], 0);
     for (mix, seeds) in [(1, 300), (2, 250), (3, 120)] {
         each_made(mix, seeds, |roof, options, layout, made, name| {
             let (situations, grid) = (roof.situations(0), groups(layout));
@@ -279,6 +279,10 @@ fn drawn_widths_are_the_best_of_all_that_may_be_drawn() {
                     check_fitted(roof, &situations, options, layout, found, name);
                     assert_eq!(Some(weight(&groups(&found.layout()))), least, "{name}: the best of all widths");
                     fitted[free(layout)] += 1;
+                    let sizes = rounded_up(layout, found);
+                    let each = layout.groups.iter().zip(&sizes);
+                    let rounded: Vec<Group<'_>> = each.map(|(placed, size)| Group { size, ..placed.group }).collect();
+                    alone[free(layout)] += usize::from(Some(weight(&rounded)) == least);
                     merged += usize::from(found.layout().groups.len() < grid.len());
                 }
                 Measured::NoBetter => {
@@ -290,6 +294,7 @@ fn drawn_widths_are_the_best_of_all_that_may_be_drawn() {
         });
     }
     println!("by free groups: {fitted:?} fitted, {kept:?} kept; {merged} with alike groups made one");
+    println!("{alone:?} are what rounding up the unrounded widths alone would give");
     assert!(fitted[1] > 200 && fitted[2] > 100 && fitted[3] > 30, "{fitted:?}: the roofs are not varied enough");
     assert!(kept[1] > 100 && kept[2] > 30 && kept[3] > 10 && merged > 20, "{kept:?}, {merged}");
 }
@@ -333,6 +338,50 @@ fn unrounded_widths_just_hold() {
     }
     println!("by free groups: {checked:?} unrounded, {worst:e} over the best of a finer grid at most");
     assert!(checked[1] > 50 && checked[2] > 20, "{checked:?}");
+}
+
+/// The sizes of a layout of the grid with each unrounded width rounded up by itself.
+fn rounded_up(layout: &Ranked<'_>, fitted: &Fitted) -> Vec<Size> {
+    let mut widths = fitted.unrounded.iter();
+    let up = |size: &Size| match &size.made {
+        Some(made) => {
+            let width = *widths.next().expect("one for each");
+            size.in_width(made.width(made.rounded_up(width))).expect("made")
+        }
+        None => size.clone(),
+    };
+    layout.groups.iter().map(|placed| placed.group.size).map(up).collect()
+}
+
+/// Where more widths may be drawn than are tried, those around the unrounded ones are: no worse than rounding each of them up.
+#[test]
+fn finely_rounded_widths_are_no_worse_than_the_unrounded_rounded_up() {
+    let mut checked = [0; 4];
+    for (mix, seeds) in [(1, 30), (2, 30), (3, 24)] {
+        for seed in 1..=seeds {
+            let mut dice = Dice(u64::wrapping_mul(seed + 5000 * mix as u64, 0x9e37_79b9_7f4a_7c15));
+            let (mut roof, options) = roof(&mut dice, mix);
+            for size in &mut roof.sizes {
+                size.made = size.made.as_ref().map(|made| Arc::new(Made { round: Length::mm(0.01), ..**made }));
+            }
+            let situations = roof.situations(0);
+            let Outcome::Optimal(layouts) = search::size(&roof, &options, &[0]).remove(0).outcome else { continue };
+            for layout in &layouts {
+                let Some(Measured::Fitted(fitted)) = &layout.made else { continue };
+                let sizes = rounded_up(layout, fitted);
+                let each = layout.groups.iter().zip(&sizes);
+                let rounded: Vec<Group<'_>> = each.map(|(placed, size)| Group { size, ..placed.group }).collect();
+                let drawn = fitted.layout();
+                assert!(stands(&roof, &situations, &options, &groups(&drawn)), "mix {mix}, seed {seed}");
+                if stands(&roof, &situations, &options, &rounded) {
+                    assert!(weight(&groups(&drawn)) <= weight(&rounded), "mix {mix}, seed {seed}");
+                    checked[free(layout)] += 1;
+                }
+            }
+        }
+    }
+    println!("by free groups: {checked:?}");
+    assert!(checked[1] > 20 && checked[2] > 20 && checked[3] > 5, "{checked:?}");
 }
 
 /// A project with one catalog, written out and searched.

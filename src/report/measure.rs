@@ -3,7 +3,7 @@
 use crate::device::{Made, Size};
 use crate::roof::Roof;
 use crate::search::{Fitted, Measured, Ranked};
-use crate::units::Length;
+use crate::units::{Length, Money};
 
 use super::page::Block;
 use super::words::{self, Words, list};
@@ -20,8 +20,9 @@ pub(super) fn blocks(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>],
         .collect();
     let Some(made) = made_of(&sized.roof.sizes).next().filter(|_| !lines.is_empty()) else { return Vec::new() };
     let fitted: Vec<(usize, Ranked<'_>)> = fitted(layouts);
-    let mut blocks =
-        vec![Block::Text(format!("Made to measure, rounded up to {}:", words.size(made.1.round))), Block::List(lines)];
+    let cheapest = cheapest(layouts).map_or(String::new(), |rank| format!("; the cheapest is now {rank}"));
+    let title = format!("Made to measure, rounded up to {}{cheapest}:", words.size(made.1.round));
+    let mut blocks = vec![Block::Text(title), Block::List(lines)];
     let all: Vec<&Ranked<'_>> = fitted.iter().map(|(_, layout)| layout).collect();
     blocks.extend(ranking::marks(&all, words).into_iter().map(Block::Text));
     let thick = ranking::thick_walls(sized.roof, area, fitted.iter().map(|(rank, layout)| (*rank, layout)), words);
@@ -30,6 +31,20 @@ pub(super) fn blocks(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>],
         blocks.push(Block::List(thick));
     }
     blocks
+}
+
+/// The rank of the layout that costs least as measured, where that is another than the one that cost least on the grid.
+fn cheapest(layouts: &[Ranked<'_>]) -> Option<usize> {
+    let measured = |layout: &Ranked<'_>| match &layout.made {
+        Some(Measured::Fitted(fitted)) => fitted.layout().cost,
+        _ => layout.cost,
+    };
+    let least = |cost: &dyn Fn(&Ranked<'_>) -> Option<Money>| {
+        let costs: Option<Vec<Money>> = layouts.iter().map(cost).collect();
+        (1..).zip(costs?).min_by_key(|&(rank, cost)| (cost, rank)).map(|(rank, _)| rank)
+    };
+    let (now, before) = (least(&measured)?, least(&|layout| layout.cost)?);
+    (now != before).then_some(now)
 }
 
 /// The arithmetic of a layout in widths of its own, where it has any.

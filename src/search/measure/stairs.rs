@@ -11,8 +11,9 @@ use crate::units::Length;
 use super::super::problem::one_carries;
 use super::{Fit, Widths};
 
-/// Widths that may be drawn, up to which all are tried, by the number of free widths less one.
-const MOST_DRAWN: [usize; MOST_GROUPS] = [4096, 4096, 512];
+/// Widths that may be drawn, up to which all are tried, by the number of free widths less one: of more, so many around the
+/// unrounded one. A single width is a root, so that few around it say all.
+const MOST_DRAWN: [usize; MOST_GROUPS] = [64, 2048, 512];
 
 /// The widths of one free group that are tried, from the least on.
 struct Tread {
