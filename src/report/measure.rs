@@ -108,7 +108,8 @@ fn made_of(sizes: &[Size]) -> impl Iterator<Item = (&Size, &Made)> {
 }
 
 /// What is made to measure, in which widths, and the grid on which it is searched first.
-pub(super) fn assumptions(sizes: &[Size], words: Words) -> Vec<String> {
+pub(super) fn assumptions(sized: &Sized<'_, '_>, words: Words) -> Vec<String> {
+    let sizes = &sized.roof.sizes;
     let mut lines: Vec<(String, Vec<&str>)> = Vec::new();
     for (size, made) in made_of(sizes) {
         let widths = any_width(made.from, made.to, words);
@@ -119,13 +120,14 @@ pub(super) fn assumptions(sizes: &[Size], words: Words) -> Vec<String> {
             None => lines.push((line, vec![&size.tag])),
         }
     }
+    let plan = if sized.plans.is_some() { ", and so does the plan" } else { "" };
     let is = |tags: &[&str]| if tags.len() == 1 { "is" } else { "are" };
     let mut lines: Vec<String> =
         lines.iter().map(|(line, tags)| format!("{} {} {line}", list(tags), is(tags))).collect();
     if let Some((_, made)) = made_of(sizes).next() {
         lines.push(format!(
             "Each layout listed is then measured: counts, heights and other sizes stand, its widths are fitted to the cases and \
-             rounded up to {}. The list keeps the order of the grid; a layout that is not on it may come out cheaper still.",
+             rounded up to {}. The list keeps to the order of the grid{plan}; a layout that is not on it may come out cheaper still.",
             words.size(made.round)
         ));
     }

@@ -172,7 +172,7 @@ pub(super) fn assumptions(sized: &Sized<'_, '_>) -> Vec<String> {
         let whom = if assumed.areas.is_empty() { String::new() } else { format!(" in {}", list(&assumed.areas)) };
         lines.push(format!("Not given: `{}`{whom}. Taken: {}; {}.", default.key, default.value, default.meaning));
     }
-    lines.extend(measure::assumptions(&sized.roof.sizes, words));
+    lines.extend(measure::assumptions(sized, words));
     if let Some(freeboard) = sized.options.freeboard {
         lines.push(format!(
             "At least {} is kept between the water and the top of every closed opening.",
