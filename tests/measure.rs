@@ -303,7 +303,7 @@ fn drawn_widths_are_the_best_of_all_that_may_be_drawn() {
 #[test]
 fn unrounded_widths_just_hold() {
     let (mut checked, mut worst) = ([0; 4], 0.0_f64);
-    for (mix, seeds) in [(1, 120), (2, 60)] {
+    for (mix, seeds) in [(1, 60), (2, 40)] {
         each_made(mix, seeds, |roof, options, layout, made, name| {
             let Measured::Fitted(fitted) = made else { return };
             let situations = roof.situations(0);
@@ -337,7 +337,7 @@ fn unrounded_widths_just_hold() {
         });
     }
     println!("by free groups: {checked:?} unrounded, {worst:e} over the best of a finer grid at most");
-    assert!(checked[1] > 50 && checked[2] > 20, "{checked:?}");
+    assert!(checked[1] > 30 && checked[2] > 10, "{checked:?}");
 }
 
 /// The sizes of a layout of the grid with each unrounded width rounded up by itself.
@@ -357,7 +357,7 @@ fn rounded_up(layout: &Ranked<'_>, fitted: &Fitted) -> Vec<Size> {
 #[test]
 fn finely_rounded_widths_are_no_worse_than_the_unrounded_rounded_up() {
     let mut checked = [0; 4];
-    for (mix, seeds) in [(1, 30), (2, 30), (3, 24)] {
+    for (mix, seeds) in [(1, 30), (2, 20), (3, 8)] {
         for seed in 1..=seeds {
             let mut dice = Dice(u64::wrapping_mul(seed + 5000 * mix as u64, 0x9e37_79b9_7f4a_7c15));
             let (mut roof, options) = roof(&mut dice, mix);
@@ -381,7 +381,7 @@ fn finely_rounded_widths_are_no_worse_than_the_unrounded_rounded_up() {
         }
     }
     println!("by free groups: {checked:?}");
-    assert!(checked[1] > 20 && checked[2] > 20 && checked[3] > 5, "{checked:?}");
+    assert!(checked[1] > 20 && checked[2] > 10 && checked[3] > 1, "{checked:?}");
 }
 
 /// A project with one catalog, written out and searched.

@@ -193,17 +193,22 @@ impl<'f, 'r> Fit<'f, 'r> {
         }
         // What may be drawn need not be rounded: a walk that ended short of it is not told.
         let unrounded = unrounded.filter(|widths| self.price(widths) <= self.price(&as_drawn)).unwrap_or(as_drawn);
-        let others = self.groups.iter().filter(|group| group.size.made.is_none());
-        let of_others: Option<Money> = others.map(|group| group.size.price.map(|price| price * group.count)).sum();
-        let of_free = self.priced.then(|| Money::nearest(self.bare_price(&unrounded)));
         Some(Fitted {
             saved: saved.map(Money::from_millionths),
             narrower: Length::from_nm(narrower),
             unrounded: unrounded[..self.free.len()].iter().map(|&width| Length::from_m(width)).collect(),
-            unrounded_cost: of_others.zip(of_free).map(|(others, free)| [others, free].into_iter().sum()),
+            unrounded_cost: self.cost(&unrounded),
             groups,
             rest,
         })
+    }
+
+    /// What the layout costs in some widths; none where a device has no price.
+    fn cost(&self, widths: &Widths) -> Option<Money> {
+        let fixed = self.groups.iter().filter(|group| group.size.made.is_none());
+        let fixed: Option<Money> = fixed.map(|group| group.size.price.map(|price| price * group.count)).sum();
+        let free = self.priced.then(|| Money::nearest(self.bare_price(widths)));
+        fixed.zip(free).map(|(fixed, free)| [fixed, free].into_iter().sum())
     }
 
     /// Takes a step off each width in turn for as long as every case holds.

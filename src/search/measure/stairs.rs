@@ -82,6 +82,9 @@ impl<'s, 'f, 'r> Stairs<'s, 'f, 'r> {
         if from + 1 < last {
             for place in 0..tries {
                 chosen[from] = place;
+                if self.is_dearer(chosen, from, best.as_ref()) {
+                    return;
+                }
                 self.walk(chosen, from + 1, best);
             }
             return;
@@ -90,6 +93,9 @@ impl<'s, 'f, 'r> Stairs<'s, 'f, 'r> {
         chosen[last] = self.treads[last].widths.len() - 1;
         for place in 0..tries {
             chosen[from] = place;
+            if self.is_dearer(chosen, from, best.as_ref()) {
+                return;
+            }
             if !self.holds(chosen) {
                 continue;
             }
@@ -102,6 +108,13 @@ impl<'s, 'f, 'r> Stairs<'s, 'f, 'r> {
             }
             self.offer(chosen, best);
         }
+    }
+
+    /// Whether the widths chosen up to a group cost more than the best, the others at their narrowest; wider ones do then too.
+    fn is_dearer(&self, chosen: &[usize; MOST_GROUPS], upto: usize, best: Option<&Choice>) -> bool {
+        let cost = |(index, tread): (usize, &Tread)| tread.sums[if index > upto { 0 } else { chosen[index] }].1;
+        let least = self.treads.iter().enumerate().map(cost).fold(0, i64::saturating_add);
+        best.is_some_and(|best| least > best.cost)
     }
 
     fn holds(&self, chosen: &[usize; MOST_GROUPS]) -> bool {
