@@ -110,7 +110,7 @@ pub fn least(f: impl Fn(f64) -> f64, low: f64, high: f64, width: f64) -> Result<
 /// A place near which a function of two variables is least, by the method of Nelder and Mead from three places on.
 ///
 /// It walks downhill and knows no bounds: `f` must answer everywhere, with a large number where it should not go. What is not
-/// finite counts as the largest; a place where it is least of all is refused.
+/// finite counts as the largest of all; a walk that meets nothing else is refused.
 ///
 /// # Errors
 /// [`RootError::NotFinite`] where no value met is finite, or for a start that is not.
@@ -131,9 +131,9 @@ pub fn least_in_plane(f: impl Fn([f64; 2]) -> f64, starts: [[f64; 2]; 3], spread
     }
 }
 
-/// A part of the larger section in the whole, from its high end.
+/// The lesser part of a stretch cut by the golden section, (3 - sqrt(5)) / 2: where the search begins.
 const GOLDEN: f64 = 0.381_966_011_250_105;
-/// Steps after which a walk in the plane ends wherever it is: twenty times what it takes to settle to a hundredth.
+/// Steps after which a walk in the plane ends wherever it is.
 const MOST_WALK: u64 = 400;
 /// What a value that is not finite counts as: the walk must be given a number, or it panics.
 const LARGEST: f64 = 1e300;
