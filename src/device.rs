@@ -13,6 +13,7 @@ mod body;
 mod curve;
 mod following;
 mod law;
+mod made;
 mod published;
 mod rating;
 mod site;
@@ -21,6 +22,7 @@ pub use body::{Device, Kind, RingDrain};
 pub use curve::Curve;
 pub use following::{ConductorHead, Following, Leader};
 pub use law::{Account, Law};
+pub use made::{Made, Tariff};
 pub use rating::{Interpolation, Rating, RatingFault};
 pub use site::{Choice, Site};
 
@@ -141,6 +143,8 @@ pub struct Size {
     pub screen: f64,
     /// What follows it.
     pub following: Following,
+    /// How it is made to measure, where it is.
+    pub made: Option<Arc<Made>>,
 }
 
 impl Size {
@@ -157,6 +161,7 @@ impl Size {
             law: None,
             screen: 1.0,
             following: Following::default(),
+            made: None,
         }
     }
 

@@ -17,6 +17,7 @@ mod contents;
 mod cures;
 mod front;
 mod json;
+mod measure;
 mod notes;
 mod page;
 mod plan;
@@ -87,6 +88,7 @@ impl<'a, 'r> Sized<'a, 'r> {
             layouts: self.answers.iter().flat_map(of_area).chain(fronts).collect(),
             searched: true,
             fronts: !self.fronts.is_empty(),
+            plan: self.plans.is_some(),
         }
     }
 

@@ -2,7 +2,8 @@
 //!
 //! It is exact over the declared grid: every size of every catalog, every count, up to `mix` groups; a layout is left out
 //! only by a bound that is proven where it is used (`dive`). Cost does not depend on the set height and the load rises with
-//! it, so a layout is its sizes and counts, with a window of set heights that starts at the lowest. The answer does not
+//! it, so a layout is its sizes and counts, with a window of set heights that starts at the lowest. Openings that are made to
+//! measure are searched on that grid too; the layouts kept are then fitted with widths of their own (`measure`). The answer does not
 //! depend on the number of threads, and equal input gives equal answers to the last bit.
 
 use rayon::prelude::*;
@@ -19,6 +20,7 @@ mod cure;
 mod dive;
 mod front;
 mod infeasible;
+mod measure;
 mod plan;
 mod problem;
 mod rank;
@@ -29,6 +31,7 @@ mod watch;
 
 pub use cure::{Cure, Cures, Opened, Opening, Relaxation, binds, cures, opened, relaxed};
 pub use front::{Front, PlanFront, Unbeaten, UnbeatenPlan, front, plan_front};
+pub use measure::{Fitted, Measured};
 pub use plan::{Asked as PlanAsked, Plan, Plans, plan};
 pub use rank::Criterion;
 pub use standing::{Placed, Ranked, UnderLaw, standing, under_every_law};
@@ -207,7 +210,7 @@ fn best_of_each<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<S
 /// The best layouts of an area.
 fn best_of<'r>(problem: &Problem<'r>, options: &Options) -> Sought<'r> {
     let dived = dive(problem, Aim::Rank, Best::new(options.keep, options.fold));
-    let layouts = dived.found.iter().map(|found| ranked(problem, found)).collect();
+    let layouts = measured(problem, dived.found.iter().map(|found| (ranked(problem, found), found)));
     let bound = if dived.finished { None } else { least(problem) };
     Sought { layouts, finished: dived.finished, bound }
 }
@@ -219,7 +222,21 @@ fn none<'r>(problem: Problem<'r>, misfits: Vec<(&'r Size, Misfit)>) -> Outcome<'
     Outcome::Infeasible(if nothing_stands { Why::NothingStands { misfits } } else { why() })
 }
 
-/// All that is reported of a layout that was found.
+/// The layouts, each with what it comes to where openings are made to measure.
+fn measured<'r, 'f>(problem: &Problem<'r>, layouts: impl Iterator<Item = (Ranked<'r>, &'f Found)>) -> Vec<Ranked<'r>> {
+    if problem.candidates.iter().all(|candidate| candidate.size.made.is_none()) {
+        return layouts.map(|(layout, _)| layout).collect();
+    }
+    let highest = |found: &Found| problem.liftable(&found.groups).iter().map(|group| group.highest).collect::<Vec<_>>();
+    let layouts: Vec<_> = layouts.map(|(layout, found)| (layout, highest(found))).collect();
+    let one = |(layout, highest): (Ranked<'r>, Vec<Length>)| Ranked {
+        made: measure::measured(problem, &layout, &highest),
+        ..layout
+    };
+    layouts.into_par_iter().map(one).collect()
+}
+
+/// All that is reported of a layout on the grid.
 fn ranked<'r>(problem: &Problem<'r>, found: &Found) -> Ranked<'r> {
     let liftable = problem.liftable(&found.groups);
     standing(&reported(problem, &found.groups), &liftable, &problem.situations, &problem.allowed, problem.asked)

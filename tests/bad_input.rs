@@ -241,7 +241,7 @@ error: unknown key `mxi` in [search]
 14 | mxi = 2
    | ^^^ not a key of this table
    |
-   = help: did you mean `mix`? [search] takes rank_by, keep, mix, set_height, count, freeboard, laws, sizes or size_price
+   = help: did you mean `mix`? [search] takes rank_by, keep, mix, set_height, count, freeboard, laws, sizes, size_price, made_to_measure or round
 
 error: `blocked` must be a whole number from 0 to 10000
   --> roof.toml:25:11
@@ -679,7 +679,7 @@ error: unknown key `set_hight` in [search]
 17 | set_hight = "2 in"
    | ^^^^^^^^^ not a key of this table
    |
-   = help: did you mean `set_height`? [search] takes rank_by, keep, mix, set_height, count, freeboard, laws, sizes or size_price
+   = help: did you mean `set_height`? [search] takes rank_by, keep, mix, set_height, count, freeboard, laws, sizes, size_price, made_to_measure or round
 
 error: `step` is missing in a range
   --> roof.toml:18:14
@@ -758,7 +758,6 @@ fn keys_of_later_work_are_refused_by_name() {
                 &[
                     ("units =", "layout = []\nrules = []\nunits ="),
                     ("duration =", "table = \"rain.csv\"\nduration ="),
-                    ("keep = 5", "sizes = 2\nround = \"1 in\""),
                     ("edge = \"120 ft\"", "slope = \"1/4 in/ft\"\nexisting = []"),
                     ("share = 0.25", "what = \"overflow\""),
                 ],
@@ -781,34 +780,26 @@ error: `table` in [storm] is not supported in this version
   |
   = help: take the key out: the answer would not heed it
 
-error: `round` in [search] is not supported in this version
-  --> roof.toml:19:1
-   |
-19 | round = "1 in"
-   | ^^^^^ meant for rounding of openings made to measure
-   |
-   = help: take the key out: the answer would not heed it
-
 error: `slope` and `distance` belong together
-  --> roof.toml:34:9
+  --> roof.toml:33:9
    |
-34 | slope = "1/4 in/ft"
+33 | slope = "1/4 in/ft"
    |         ^^^^^^^^^^^ one of them
    |
    = help: give slope = "0.25 in/ft" and distance = "20 ft", from the low point to the wall
 
 error: `existing` in an [[area]] is not supported in this version
-  --> roof.toml:35:1
+  --> roof.toml:34:1
    |
-35 | existing = []
+34 | existing = []
    | ^^^^^^^^ meant for openings that are there already
    |
    = help: take the key out: the answer would not heed it
 
 error: `what` in an entry of `receives` is not supported in this version
-  --> roof.toml:41:35
+  --> roof.toml:40:35
    |
-41 | receives = [{ from = "north bay", what = "overflow" }]
+40 | receives = [{ from = "north bay", what = "overflow" }]
    |                                   ^^^^ meant for the choice between overflow and primary flow
    |
    = help: take the key out: the answer would not heed it
@@ -3095,4 +3086,175 @@ fn spoilt_files_are_read_or_refused_and_nothing_else() {
         fs::write(&path, text).expect("a file can be written");
     }
     assert!(refused > 1000 && used > 100, "{refused} refused, {used} used: the slips are too coarse or too fine");
+}
+
+const MADE: (&str, &str) =
+    ("{ from = \"6 in\", to = \"24 in\", step = \"6 in\" }", "{ from = \"6 in\", to = \"24 in\" }");
+
+#[test]
+fn a_range_without_a_step_is_for_widths_that_are_made() {
+    let devices = "[[device]]\ntag = \"A\"\nkind = \"open scupper\"\nwidth = { to = \"24 in\" }\nprice = { each = 1 }\n\
+                   [[device]]\ntag = \"B\"\nkind = \"roof edge\"\nwidth = { from = \"24 in\", to = \"6 in\" }\nprice = { each = 1 }\n\
+                   [[device]]\ntag = \"C\"\nkind = \"closed scupper\"\nwidth = { from = \"6 in\", to = \"24 in\", step = \"0 in\" }\n\
+                   height = { from = \"4 in\", to = \"6 in\" }\nprice = { each = 1 }\n\
+                   [[device]]\ntag = \"D\"\nkind = \"rated\"\nplace = \"edge\"\nrating = \"drain.csv\"\nwidth = { from = \"6 in\", to = \"24 in\" }\n\
+                   price = { each = 1 }\n\
+                   [[device]]\ntag = \"E\"\nkind = \"overflow drain\"\ndam = \"10 in\"\ndiameter = { from = \"4 in\", to = \"6 in\" }\nprice = { each = 1 }\n\
+                   [[device]]\ntag = \"F\"\nkind = \"open scupper\"\nwidth = { from = \"1 in\", to = \"1100000 in\" }\nprice = { each = 1 }\n";
+    Folder::new().with("devices.toml", devices).refuses(str![[r#"
+error: `from` is missing in a range
+ --> devices.toml:4:9
+  |
+4 | width = { to = "24 in" }
+  |         ^^^^^^^^^^^^^^^^ this table
+  |
+  = help: write both ends: { from = "6 in", to = "48 in" }, with a step or without
+
+error: `from` stands above `to` in `width`
+ --> devices.toml:9:18
+  |
+9 | width = { from = "24 in", to = "6 in" }
+  |                  ^^^^^^^ this is the greater
+  |
+  = help: give the lesser value as `from`
+
+error: `step` must be above zero
+  --> devices.toml:14:47
+   |
+14 | width = { from = "6 in", to = "24 in", step = "0 in" }
+   |                                               ^^^^^^ not above zero
+   |
+   = help: write a value above zero
+
+error: `step` is missing in a range
+  --> devices.toml:15:10
+   |
+15 | height = { from = "4 in", to = "6 in" }
+   |          ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ this table
+   |
+   = help: write from, to and step: only widths of open scuppers, closed scuppers and roof edges are made to measure
+
+error: `step` is missing in a range
+  --> devices.toml:22:9
+   |
+22 | width = { from = "6 in", to = "24 in" }
+   |         ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ this table
+   |
+   = help: write from, to and step: only widths of open scuppers, closed scuppers and roof edges are made to measure
+
+error: `step` is missing in a range
+  --> devices.toml:28:12
+   |
+28 | diameter = { from = "4 in", to = "6 in" }
+   |            ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ this table
+   |
+   = help: write from, to and step: only widths of open scuppers, closed scuppers and roof edges are made to measure
+
+error: `width` makes 1100000 values; up to 1000000 would pass
+  --> devices.toml:33:9
+   |
+33 | width = { from = "1 in", to = "1100000 in" }
+   |         ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ too fine, or too wide
+   |
+   = help: give a coarser step or a narrower range
+
+"#]]);
+}
+
+#[test]
+fn what_rounds_made_widths_is_a_length_above_zero() {
+    Folder::new()
+        .with("roof.toml", exchange(PROJECT, &[("keep = 5", "made_to_measure = 1\nround = \"0 in\"")]))
+        .refuses(str![[r#"
+error: `made_to_measure` must be true or false
+  --> roof.toml:15:19
+   |
+15 | made_to_measure = 1
+   |                   ^ a bare number stands here
+   |
+   = help: write true or false
+
+error: `round` must be above zero
+  --> roof.toml:16:9
+   |
+16 | round = "0 in"
+   |         ^^^^^^ not above zero
+   |
+   = help: write a value above zero
+
+"#]]);
+    Folder::new()
+        .with("roof.toml", exchange(PROJECT, &[("keep = 5", "made_to_measure = \"yes\"\nround = 0.25")]))
+        .refuses(str![[r#"
+error: `made_to_measure` must be true or false
+  --> roof.toml:15:19
+   |
+15 | made_to_measure = "yes"
+   |                   ^^^^^ a text stands here
+   |
+   = help: write true or false
+
+error: `round`: `0.25` has no unit; this is a length
+  --> roof.toml:16:9
+   |
+16 | round = 0.25
+   |         ^^^^ a length belongs here
+   |
+   = help: write "0.25 in"; in, ft, mm, cm, m or yd would pass
+
+"#]]);
+}
+
+#[test]
+fn made_to_measure_needs_a_range_of_widths() {
+    project(&[("keep = 5", "made_to_measure = true")])
+        .with("devices.toml", exchange(CATALOG, &[(MADE.0, "[\"6 in\", \"12 in\"]")]))
+        .refuses(str![[r#"
+error: nothing in the catalogs can be made to measure
+  --> roof.toml:15:19
+   |
+15 | made_to_measure = true
+   |                   ^^^^ no device has a range of widths
+   |
+   = help: give an open scupper, a closed scupper or a roof edge a range: width = { from = "6 in", to = "48 in" }
+
+"#]]);
+    // A catalog at fault may have one.
+    project(&[("keep = 5", "made_to_measure = true")])
+        .with("devices.toml", exchange(CATALOG, &[(MADE.0, "[\"6 in\", \"12 in\"]"), ("closed scupper", "closed")]))
+        .refuses(str![[r#"
+error: `closed` is not a value of `kind`
+ --> devices.toml:3:8
+  |
+3 | kind = "closed"
+  |        ^^^^^^^^ not one of its values
+  |
+  = help: open scupper, closed scupper, pipe scupper, overflow drain, standpipe, roof edge or rated would pass
+
+"#]]);
+}
+
+#[test]
+fn a_rounding_of_nothing_is_warned_of() {
+    let warned = project(&[("keep = 5", "round = \"1 in\"")]);
+    warned.brimline(&["size", "roof.toml"]).code(0).stderr_eq(str![[r#"
+warning: nothing is made to measure: `round` rounds no width
+  --> roof.toml:15:9
+   |
+15 | round = "1 in"
+   |         ^^^^^^ not heeded
+   |
+   = help: write made_to_measure = true, or leave the step out of a range of widths
+
+
+"#]]);
+    project(&[("keep = 5", "round = \"1 in\"\nmade_to_measure = true")])
+        .brimline(&["size", "roof.toml"])
+        .code(0)
+        .stderr_eq("");
+    project(&[("keep = 5", "round = \"1 in\"")])
+        .with("devices.toml", exchange(CATALOG, &[MADE]))
+        .brimline(&["size", "roof.toml"])
+        .code(0)
+        .stderr_eq("");
 }

@@ -166,6 +166,50 @@ fn json_has_the_promised_keys_and_adds_up() {
     }
 }
 
+/// What is drawn to measure is told in every form, and each figure adds up; nothing of it where nothing is made to measure.
+#[test]
+fn openings_made_to_measure_are_told_in_every_form() {
+    let document = json("made-to-measure", &[]);
+    let mut better = 0;
+    for layout in
+        document["areas"].as_array().expect("areas").iter().flat_map(|area| area["layouts"].as_array().expect("a list"))
+    {
+        let made = &layout["made_to_measure"];
+        assert_relative_eq!(made["rounded_up_to_m"].as_f64().expect("a step"), 0.25 * 0.0254, max_relative = 1e-12);
+        if made["better_than_grid"] == false {
+            assert!(made.get("groups").is_none() && made.get("cost").is_none());
+            continue;
+        }
+        better += 1;
+        let amount = |value: &serde_json::Value| value.as_f64().expect("an amount");
+        assert_relative_eq!(
+            amount(&made["cost"]) + amount(&made["saved"]),
+            amount(&layout["cost"]),
+            max_relative = 1e-12
+        );
+        assert!(amount(&made["unrounded_cost"]) <= amount(&made["cost"]) && amount(&made["saved"]) > 0.0);
+        for group in made["groups"].as_array().expect("groups") {
+            let quarters = amount(&group["width_m"]) / 0.0254 * 4.0;
+            assert_relative_eq!(quarters, quarters.round(), max_relative = 1e-9);
+        }
+        for case in made["cases"].as_array().expect("cases") {
+            assert!(amount(&case["utilisation"]) <= 1.0 + 1e-12);
+            assert!(amount(&case["load_pa"]) <= amount(&case["load_limit_pa"]) * (1.0 + 1e-12));
+            let groups = case["groups"].as_array().expect("groups");
+            let sum: f64 = groups.iter().map(|group| amount(&group["flow_m3_s"])).sum();
+            assert_relative_eq!(sum, amount(&case["demand_m3_s"]), max_relative = 1e-9);
+        }
+    }
+    assert!(better >= 5, "{better} layouts are better made to measure");
+    let text =
+        |arguments: &[&str]| stdout(&brimline(&[&["size", "examples/made-to-measure.toml"], arguments].concat()));
+    assert!(text(&["--work"]).contains("The same made to measure, "));
+    let rows = text(&["--format", "csv"]).lines().filter(|line| line.contains(",made to measure,")).count();
+    assert!(rows >= better, "{rows} rows");
+    assert!(text(&["--format", "md"]).contains("Made to measure, rounded up to 0.25 in:"));
+    assert!(json("harbour-depot", &[])["areas"][0]["layouts"][0].get("made_to_measure").is_none());
+}
+
 #[test]
 fn an_area_without_a_layout_says_why_and_the_others_are_answered() {
     let output = brimline(&["size", "examples/light-roof-infeasible.toml", "--format", "json"]);

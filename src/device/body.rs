@@ -82,6 +82,11 @@ impl Kind {
         }
     }
 
+    /// Whether it can be made to any width: what has a width and a law for it.
+    pub const fn in_any_width(self) -> bool {
+        matches!(self, Self::OpenScupper | Self::ClosedScupper | Self::RoofEdge)
+    }
+
     /// Whether an opening through the parapet, which loses on all its sides.
     pub const fn is_scupper(self) -> bool {
         matches!(self, Self::OpenScupper | Self::ClosedScupper | Self::PipeScupper)

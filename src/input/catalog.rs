@@ -1,13 +1,15 @@
 //! Catalogs: devices with a value, a list or a range for each free dimension, and every size that these make.
 
 use std::collections::HashMap;
+use std::ops::Range;
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
 
-use crate::device::{Device, Following, Interpolation, Kind, Law, Place, Rating, RingDrain, Size};
-use crate::units::{Area, Dimension, Length, Money, Priced};
+use crate::device::{Device, Following, Interpolation, Kind, Law, Made, Place, Rating, RingDrain, Size, Tariff};
+use crate::units::{Area, Dimension, Length, System};
 
 use super::Catalog;
+use super::defaults;
 use super::fault::{Fault, Log, Source, Span};
 use super::grid::{self, Least};
 use super::rating::{self, Ratings};
@@ -89,6 +91,17 @@ pub(super) struct Entry {
     pub(super) span: Span,
 }
 
+/// Whether the widths of a device could be made to measure.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Offered {
+    /// It has none, or single ones.
+    Single,
+    /// In a range with a step, where the project asks for it.
+    Range,
+    /// In a range without a step.
+    Any,
+}
+
 /// What a device would offer if no value of it were at fault: other files are held against it all the same.
 #[derive(Debug)]
 pub(super) struct Offer {
@@ -97,16 +110,29 @@ pub(super) struct Offer {
     pub(super) has_price: bool,
     /// The law that it follows whatever the project chooses.
     pub(super) law: Option<Law>,
+    /// How its widths could be made to measure.
+    pub(super) widths: Offered,
     /// Its tag, where it has one.
     pub(super) tag: Option<Arc<str>>,
     /// Its tag or its table.
     pub(super) at: Entry,
 }
 
+/// Sizes of a device that comes in a range of widths.
+#[derive(Debug)]
+struct Ranged {
+    sizes: Range<usize>,
+    widths: grid::Range,
+    tariff: Option<Tariff>,
+}
+
 /// All sizes of all catalogs, and where each tag was given.
 #[derive(Debug)]
 pub(super) struct Catalogs {
     pub(super) sizes: Vec<Size>,
+    ranged: Vec<Ranged>,
+    /// Step of the grid on which widths that may be any are searched.
+    coarse: Length,
     pub(super) offers: Vec<Offer>,
     /// Whether every catalog was read, and the kind of every device in it.
     pub(super) complete: bool,
@@ -114,10 +140,20 @@ pub(super) struct Catalogs {
 }
 
 impl Catalogs {
+    fn empty(system: System) -> Self {
+        Self {
+            sizes: Vec::new(),
+            ranged: Vec::new(),
+            coarse: defaults::coarse_widths(system),
+            offers: Vec::new(),
+            complete: true,
+            entries: HashMap::new(),
+        }
+    }
+
     /// Those that a project names.
-    pub(super) fn read(project: &Path, named: &[Cell<'_>], log: &Log) -> Self {
-        let mut into =
-            Self { sizes: Vec::new(), offers: Vec::new(), complete: !named.is_empty(), entries: HashMap::new() };
+    pub(super) fn read(project: &Path, named: &[Cell<'_>], system: System, log: &Log) -> Self {
+        let mut into = Self { complete: !named.is_empty(), ..Self::empty(system) };
         let mut names: Vec<(PathBuf, Span)> = Vec::new();
         for cell in named {
             let Some(name) = cell.text() else {
@@ -139,14 +175,28 @@ impl Catalogs {
         }
         into
     }
+
+    /// Marks as made to measure what comes in any width, and all that comes in a range of widths where `all` are; whether
+    /// anything is.
+    pub(super) fn measure(&mut self, all: bool, round: Length) -> bool {
+        for ranged in self.ranged.iter().filter(|ranged| all || ranged.widths.any) {
+            let grid::Range { from, to, step, .. } = ranged.widths;
+            let made = Arc::new(Made { from, to, round, grid: step, tariff: ranged.tariff });
+            for size in &mut self.sizes[ranged.sizes.clone()] {
+                size.made = Some(Arc::clone(&made));
+            }
+        }
+        self.sizes.iter().any(|size| size.made.is_some())
+    }
 }
 
 /// A catalog by itself.
 pub(super) fn read_alone(path: &Path, log: &Log) -> Option<Catalog> {
     let as_written = path.display().to_string();
     let source = file::read(path, &as_written, None, log)?;
-    let mut into = Catalogs { sizes: Vec::new(), offers: Vec::new(), complete: true, entries: HashMap::new() };
+    let mut into = Catalogs::empty(System::Us);
     let title = read_source(path, &as_written, &source, log, &mut into).0;
+    into.measure(false, defaults::round(System::Us));
     Some(Catalog { title: title.unwrap_or(as_written), sizes: into.sizes })
 }
 
@@ -185,6 +235,7 @@ fn read_source(
 /// fault.
 struct Given {
     widths: Option<Option<Vec<Length>>>,
+    range: Option<grid::Range>,
     heights: Option<Option<Vec<Length>>>,
     diameters: Option<Option<Vec<Length>>>,
     dam: Option<Option<Length>>,
@@ -196,7 +247,7 @@ struct Given {
     interpolation: Option<Option<Interpolation>>,
     screen: Option<Option<f64>>,
     following: Option<Following>,
-    price: Option<Option<Price>>,
+    price: Option<Option<Tariff>>,
     source: Option<Arc<str>>,
 }
 
@@ -209,7 +260,7 @@ fn read_device(catalog: &Path, section: &Section<'_>, log: &Log, into: &mut Cata
     let kind = read_kind(section);
     let _ = section.get("note").and_then(|cell| cell.text());
     let set_heights = section.get("set_height").map(|cell| grid::lengths(&cell, Least::Zero));
-    let given = Given { set_heights, ..Given::read(catalog, section, log) };
+    let given = Given { set_heights, ..Given::read(catalog, section, kind, into.coarse, log) };
     let kind = kind?;
     let law = section.get("law").map(|cell| flow::law(&cell, kind));
     into.offers.push(Offer {
@@ -217,6 +268,11 @@ fn read_device(catalog: &Path, section: &Section<'_>, log: &Log, into: &mut Cata
         law: law.flatten(),
         has_set_heights: given.set_heights.is_some(),
         has_price: section.get("price").is_some(),
+        widths: match section.get("width").filter(|cell| kind.in_any_width() && cell.is_table()) {
+            Some(cell) if grid::is_stepless(&cell) => Offered::Any,
+            Some(_) => Offered::Range,
+            None => Offered::Single,
+        },
         tag: tag_cell.and_then(|cell| cell.text()).map(Arc::from),
         at: Entry {
             source: Arc::clone(section.reader.source),
@@ -234,7 +290,8 @@ fn read_device(catalog: &Path, section: &Section<'_>, log: &Log, into: &mut Cata
 /// A device described in place of a catalog's, of one size; where it stands is not its own.
 pub(super) fn described(holder: &Path, section: &Section<'_>, log: &Log) -> Option<Size> {
     let kind = read_kind(section);
-    let given = Given::read(holder, section, log);
+    let mut into = Catalogs::empty(System::Us);
+    let given = Given::read(holder, section, kind, into.coarse, log);
     let kind = kind?;
     let tag: Arc<str> = match section.get("tag") {
         Some(cell) => cell.text()?.into(),
@@ -242,7 +299,6 @@ pub(super) fn described(holder: &Path, section: &Section<'_>, log: &Log) -> Opti
     };
     let law = section.get("law").map(|cell| flow::law(&cell, kind));
     let (belongs, complete) = (given.belongs_to(kind, section), Given::completes(kind, section));
-    let mut into = Catalogs { sizes: Vec::new(), offers: Vec::new(), complete: true, entries: HashMap::new() };
     if belongs && complete {
         given.make(kind, law, &tag, section, &mut into);
     }
@@ -262,6 +318,22 @@ fn read_kind(section: &Section<'_>) -> Option<Kind> {
     section
         .need("kind", "a kind is what the device is, such as kind = \"closed scupper\"")
         .and_then(|cell| cell.word(&Kind::ALL.map(|kind| (kind.name(), kind))))
+}
+
+/// The widths of a device, and their range where they are one; those of a kind that is not known yet are not refused.
+fn read_widths(
+    section: &Section<'_>,
+    kind: Option<Kind>,
+    coarse: Length,
+) -> (Option<Option<Vec<Length>>>, Option<grid::Range>) {
+    let Some(cell) = section.get("width") else { return (None, None) };
+    if kind.is_some_and(|kind| !kind.in_any_width()) {
+        return (Some(grid::dimensions(&cell)), None);
+    }
+    match grid::widths(&cell, coarse) {
+        Some((widths, range)) => (Some(Some(widths)), range),
+        None => (Some(None), None),
+    }
 }
 
 /// The part of its flow that a guard lets pass.
@@ -291,12 +363,14 @@ fn read_tag(cell: &Cell<'_>, section: &Section<'_>, log: &Log, into: &mut Catalo
 
 impl Given {
     /// All but the set heights.
-    fn read(holder: &Path, section: &Section<'_>, log: &Log) -> Self {
-        let lengths = |key| section.get(key).map(|cell| grid::lengths(&cell, Least::AboveZero));
+    fn read(holder: &Path, section: &Section<'_>, kind: Option<Kind>, coarse: Length, log: &Log) -> Self {
+        let dimensions = |key| section.get(key).map(|cell| grid::dimensions(&cell));
+        let (widths, range) = read_widths(section, kind, coarse);
         Self {
-            widths: lengths("width"),
-            heights: lengths("height"),
-            diameters: lengths("diameter"),
+            widths,
+            range,
+            heights: dimensions("height"),
+            diameters: dimensions("diameter"),
             dam: section.get("dam").map(|cell| cell.positive_length()),
             dam_height: section.get("dam_height").map(|cell| cell.length()),
             free_area: section.get("free_area").map(|cell| cell.positive(Dimension::Area, Area::m2)),
@@ -308,7 +382,7 @@ impl Given {
                 .map(|cell| cell.word(&[("linear", Interpolation::Linear), ("log-log", Interpolation::LogLog)])),
             screen: section.get("screen").map(|cell| read_screen(&cell)),
             following: flow::following(section),
-            price: section.section("price", &PRICE).map(|price| Price::read(&price)),
+            price: section.section("price", &PRICE).map(|price| read_tariff(&price)),
             source: section.get("source").and_then(|cell| cell.text()).map(Arc::from),
         }
     }
@@ -445,7 +519,7 @@ impl Given {
             };
             let price = optional(self.price.take())?;
             let set_heights: Option<Arc<[Length]>> = optional(self.set_heights.take())?.map(Arc::from);
-            if price.as_ref().is_some_and(|price| !price.can_be_held(tag, section, &devices)) {
+            if price.as_ref().is_some_and(|price| !can_be_held(price, tag, section, &devices)) {
                 return None;
             }
             let (law, screen) = (optional(law)?, optional(self.screen)?.unwrap_or(1.0));
@@ -461,6 +535,10 @@ impl Given {
             );
             return;
         }
+        if let Some(widths) = self.range {
+            let sizes = into.sizes.len()..into.sizes.len() + devices.len();
+            into.ranged.push(Ranged { sizes, widths, tariff: price });
+        }
         into.sizes.extend(devices.into_iter().map(|device| Size {
             tag: Arc::clone(tag),
             price: price.as_ref().map(|price| price.of(&device)),
@@ -471,6 +549,7 @@ impl Given {
             law,
             screen,
             following,
+            made: None,
         }));
     }
 }
@@ -527,51 +606,32 @@ fn rated(
     made
 }
 
-/// What a device costs: so much each, and so much for its dimensions.
-#[derive(Debug, Default)]
-struct Price {
-    each: f64,
-    per_width: Option<Priced>,
-    per_height: Option<Priced>,
-    per_area: Option<Priced>,
+fn read_tariff(section: &Section<'_>) -> Option<Tariff> {
+    let each = section.get("each").map(|cell| cell.number_not_negative());
+    let per = |key, dimension| section.get(key).map(|cell| cell.price(&[dimension]));
+    let (width, height) = (per("per_width", Dimension::Length), per("per_height", Dimension::Length));
+    let area = per("per_area", Dimension::Area);
+    if each.is_none() && width.is_none() && height.is_none() && area.is_none() {
+        section.missing("`price` is empty", "give each, per_width, per_height or per_area");
+        return None;
+    }
+    Some(Tariff {
+        each: each.unwrap_or(Some(0.0))?,
+        per_width: optional(width)?,
+        per_height: optional(height)?,
+        per_area: optional(area)?,
+    })
 }
 
-impl Price {
-    fn read(section: &Section<'_>) -> Option<Self> {
-        let each = section.get("each").map(|cell| cell.number_not_negative());
-        let per = |key, dimension| section.get(key).map(|cell| cell.price(&[dimension]));
-        let (width, height) = (per("per_width", Dimension::Length), per("per_height", Dimension::Length));
-        let area = per("per_area", Dimension::Area);
-        if each.is_none() && width.is_none() && height.is_none() && area.is_none() {
-            section.missing("`price` is empty", "give each, per_width, per_height or per_area");
-            return None;
-        }
-        Some(Self {
-            each: each.unwrap_or(Some(0.0))?,
-            per_width: optional(width)?,
-            per_height: optional(height)?,
-            per_area: optional(area)?,
-        })
+/// Whether sums of the devices' prices stay within what an amount can hold.
+fn can_be_held(tariff: &Tariff, tag: &str, section: &Section<'_>, devices: &[Device]) -> bool {
+    let dearest = devices.iter().map(|device| tariff.of(device).amount()).fold(0.0, f64::max);
+    if let (true, Some(cell)) = (dearest > MOST_AMOUNT, section.get("price")) {
+        cell.at_fault(
+            format!("the price of `{tag}` is too great"),
+            "makes an amount of more than 900 million",
+            "give all prices in thousands, or check this one",
+        );
     }
-
-    /// Whether sums of the devices' prices stay within what an amount can hold.
-    fn can_be_held(&self, tag: &str, section: &Section<'_>, devices: &[Device]) -> bool {
-        let dearest = devices.iter().map(|device| self.of(device).amount()).fold(0.0, f64::max);
-        if let (true, Some(cell)) = (dearest > MOST_AMOUNT, section.get("price")) {
-            cell.at_fault(
-                format!("the price of `{tag}` is too great"),
-                "makes an amount of more than 900 million",
-                "give all prices in thousands, or check this one",
-            );
-        }
-        dearest <= MOST_AMOUNT
-    }
-
-    fn of(&self, device: &Device) -> Money {
-        let (width, height) = (device.width().map_or(0.0, Length::m), device.height().map_or(0.0, Length::m));
-        let per = |price: Option<Priced>, size: f64| price.map_or(0.0, |price| price.for_si(size));
-        Money::nearest(
-            self.each + per(self.per_width, width) + per(self.per_height, height) + per(self.per_area, width * height),
-        )
-    }
+    dearest <= MOST_AMOUNT
 }

@@ -3,7 +3,7 @@
 use std::ops::RangeInclusive;
 
 use crate::search::Criterion;
-use crate::units::Load;
+use crate::units::{Length, Load, System};
 
 /// Most groups in one layout.
 pub(super) const MIX: u32 = 1;
@@ -25,6 +25,22 @@ pub(super) const MOST_RAISE_SI: Load = Load::from_pa(1000.0);
 /// What layouts are ranked by.
 pub(super) const RANK_BY: [Criterion; 2] = [Criterion::Cost, Criterion::Load];
 
+/// Step that made widths are rounded up to.
+pub(super) const fn round(system: System) -> Length {
+    match system {
+        System::Us => Length::inches(0.25),
+        System::Si => Length::mm(5.0),
+    }
+}
+
+/// Step of the grid on which widths that may be any are searched before they are measured.
+pub(super) const fn coarse_widths(system: System) -> Length {
+    match system {
+        System::Us => Length::inches(1.0),
+        System::Si => Length::mm(25.0),
+    }
+}
+
 /// One default: the key, what is taken, and what that means.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub struct Default {
@@ -37,11 +53,12 @@ pub struct Default {
 }
 
 /// Every default, in the order of the files.
-pub static DEFAULTS: [Default; 14] = [
+pub static DEFAULTS: [Default; 15] = [
     entry("search.rank_by", "cost, load", "the cheapest first; of equals the one with less load"),
     entry("search.keep", "8", "eight layouts are listed for each area"),
     entry("search.mix", "1", "all devices of a layout are of one size"),
     entry("search.count", "1 to 8", "from one to eight devices in an area, all groups together"),
+    entry("search.round", "0.25 in, or 5 mm", "widths made to measure are rounded up to it"),
     entry("case", "as designed", "one case: the layout as drawn, the storm as given"),
     entry("area.wall", "0", "no wall sheds on the area"),
     entry("area.wall_share", "0.5", "half of a wall counts"),
@@ -73,6 +90,9 @@ mod tests {
         assert_eq!(value("search.mix"), MIX.to_string());
         assert_eq!(value("search.keep"), KEEP.to_string());
         assert_eq!(value("search.count"), format!("{} to {}", COUNT.start(), COUNT.end()));
+        let round = |system, factor: f64| (round(system).m() / factor * 1e6).round() / 1e6;
+        let rounds = format!("{} in, or {} mm", round(System::Us, 0.0254), round(System::Si, 0.001));
+        assert_eq!(value("search.round"), rounds);
         assert_eq!(value("area.wall_share"), WALL_SHARE.to_string());
         assert_eq!(value("channel.slope"), CHANNEL_SLOPE.to_string());
         assert_eq!(value("channel.roughness"), CHANNEL_ROUGHNESS.to_string());

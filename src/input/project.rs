@@ -8,7 +8,7 @@ use crate::roof::{Case, Limits, Roof, Storm, demand};
 use crate::search::{Criterion, Options, PlanAsked, Watch};
 use crate::units::{Dimension, Intensity, Length, Money, ReturnPeriod, System, Time};
 
-use super::catalog::{Catalogs, Offer};
+use super::catalog::{Catalogs, Offer, Offered};
 use super::defaults::{self, COUNT, KEEP, MIX, RANK_BY};
 use super::fault::{Fault, Faults, Log, Span};
 use super::grid::{self, Least};
@@ -45,8 +45,20 @@ static STORM: Keys = Keys {
 
 static SEARCH: Keys = Keys {
     table: "[search]",
-    known: &["rank_by", "keep", "mix", "set_height", "count", "freeboard", "laws", "sizes", "size_price"],
-    unsupported: &[("made_to_measure", "openings of any width"), ("round", "rounding of openings made to measure")],
+    known: &[
+        "rank_by",
+        "keep",
+        "mix",
+        "set_height",
+        "count",
+        "freeboard",
+        "laws",
+        "sizes",
+        "size_price",
+        "made_to_measure",
+        "round",
+    ],
+    unsupported: &[],
 };
 
 static CASE: Keys = Keys {
@@ -89,7 +101,8 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         .need("units", "write units = \"us\" for inches and psf, units = \"si\" for mm and kPa")
         .and_then(|cell| cell.word(&[("us", System::Us), ("si", System::Si)]));
     let named = section.need("catalogs", "name at least one file: catalogs = [\"scuppers.toml\"]");
-    let catalogs = Catalogs::read(path, &named.map_or(Vec::new(), |cell| cell.items()), log);
+    let names = named.map_or(Vec::new(), |cell| cell.items());
+    let mut catalogs = Catalogs::read(path, &names, system.unwrap_or(System::Us), log);
     if let Some(cell) = named.filter(|cell| cell.items().is_empty()) {
         cell.at_fault("`catalogs` is an empty list", "no catalog stands here", "name at least one file");
     }
@@ -106,6 +119,7 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         Some(cell) => cell.section(&flow::FLOW).and_then(|section| flow::choice(&section)),
         None => Some(Choice::default()),
     };
+    measure(section, &search, system, &mut catalogs, &mut assumed);
     laws_fit(section, choice, &search, &catalogs);
     let structure = section
         .section("structure", &structure::STRUCTURE)
@@ -169,6 +183,38 @@ fn under_each_law(mut roof: Roof, laws: &[Law]) -> Roof {
     roof
 }
 
+/// Marks the devices that are made to measure, with the step that their widths are rounded up to.
+fn measure(
+    section: &Section<'_>,
+    search: &Search,
+    system: Option<System>,
+    catalogs: &mut Catalogs,
+    assumed: &mut Vec<Assumed>,
+) {
+    let (Some(all), Some(round), Some(system)) = (search.made_to_measure, search.round, system) else { return };
+    let any = catalogs.measure(all, round.unwrap_or(defaults::round(system)));
+    if any && round.is_none() {
+        assume(assumed, "search.round");
+    }
+    let given = |key| section.get("search").and_then(|cell| cell.section(&SEARCH)).and_then(|search| search.get(key));
+    let offered = |has: fn(&Offer) -> bool| !catalogs.complete || catalogs.offers.iter().any(has);
+    if let (true, false, Some(cell)) = (all, offered(|offer| offer.widths != Offered::Single), given("made_to_measure"))
+    {
+        cell.at_fault(
+            "nothing in the catalogs can be made to measure",
+            "no device has a range of widths",
+            "give an open scupper, a closed scupper or a roof edge a range: width = { from = \"6 in\", to = \"48 in\" }",
+        );
+    } else if let (false, false, Some(cell)) = (all, offered(|offer| offer.widths == Offered::Any), given("round")) {
+        cell.reader.warn(
+            cell.span(),
+            "nothing is made to measure: `round` rounds no width",
+            "not heeded",
+            "write made_to_measure = true, or leave the step out of a range of widths",
+        );
+    }
+}
+
 /// Refuses a law that a device in the catalogs cannot follow: inlet control has no form for an opening without a top.
 fn laws_fit(section: &Section<'_>, choice: Option<Choice>, search: &Search, catalogs: &Catalogs) {
     let mut chosen: Vec<(Law, Option<Cell<'_>>)> = Vec::new();
@@ -219,6 +265,8 @@ impl Search {
             freeboard: None,
             plan: None,
             laws: None,
+            made_to_measure: None,
+            round: None,
             count: None,
             set_heights: None,
             rank_by_at: None,
@@ -237,6 +285,8 @@ impl Search {
             freeboard: Some(None),
             plan: Some(None),
             laws: Some(Vec::new()),
+            made_to_measure: Some(false),
+            round: Some(None),
             count: Some(COUNT),
             set_heights: Some(None),
             ..Self::unknown()
@@ -294,6 +344,8 @@ fn read_search(section: &Section<'_>, assumed: &mut Vec<Assumed>) -> Search {
         freeboard: optional(freeboard),
         plan: read_plan(section, mix),
         laws: section.get("laws").map_or(Some(Vec::new()), |cell| read_laws(&cell)),
+        made_to_measure: section.get("made_to_measure").map_or(Some(false), |cell| cell.yes_or_no()),
+        round: optional(section.get("round").map(|cell| cell.positive_length())),
         count,
         set_heights: optional(set_heights),
         rank_by_at: at("rank_by"),

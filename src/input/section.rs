@@ -302,6 +302,17 @@ impl<'a> Cell<'a> {
         None
     }
 
+    /// True or false.
+    pub(super) fn yes_or_no(&self) -> Option<bool> {
+        match self.value {
+            DeValue::Boolean(yes) => Some(*yes),
+            _ => {
+                self.refuse("true or false");
+                None
+            }
+        }
+    }
+
     /// A quantity with its unit.
     fn quantity<T: FromStr<Err = units::Fault>>(&self, dimension: Dimension) -> Option<T> {
         let text: String = match self.value {

@@ -60,6 +60,10 @@ pub(super) struct Search {
     /// Laws under each of which every case is held; none for that of the project alone.
     pub(super) laws: Option<Vec<Law>>,
     pub(super) count: Option<RangeInclusive<u32>>,
+    /// Whether all that comes in a range of widths is made to measure.
+    pub(super) made_to_measure: Option<bool>,
+    /// Step that made widths are rounded up to; an inner none where none is given.
+    pub(super) round: Option<Option<Length>>,
     /// An inner none where no set heights are given for the roof.
     pub(super) set_heights: Option<Option<Vec<Length>>>,
     pub(super) rank_by_at: Option<Span>,

@@ -6,8 +6,9 @@ use std::path::{Path, PathBuf};
 const MARK: &str = "builtin:";
 
 /// Files of the catalogs, by their path under `catalogs`.
-pub(super) static FILES: [(&str, &str); 13] = [
+pub(super) static FILES: [(&str, &str); 14] = [
     ("through-wall-scuppers.toml", include_str!("../../catalogs/through-wall-scuppers.toml")),
+    ("made-to-measure.toml", include_str!("../../catalogs/made-to-measure.toml")),
     ("overflow-drains.toml", include_str!("../../catalogs/overflow-drains.toml")),
     ("sleeves-drains-and-edges.toml", include_str!("../../catalogs/sleeves-drains-and-edges.toml")),
     ("published-scupper-table.toml", include_str!("../../catalogs/published-scupper-table.toml")),

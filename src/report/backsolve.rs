@@ -46,6 +46,7 @@ fn told<'a, 'r>(backsolved: &Backsolved<'a, 'r>) -> notes::Told<'a, 'r> {
         layouts: backsolved.layouts.iter().map(|(checked, _)| (checked.given.area, &checked.standing)).collect(),
         searched: false,
         fronts: false,
+        plan: false,
     }
 }
 

@@ -55,6 +55,7 @@ impl<'a, 'r> Checks<'a, 'r> {
             layouts: given.chain(best).collect(),
             searched: self.best.is_some(),
             fronts: false,
+            plan: false,
         }
     }
 }
@@ -94,7 +95,7 @@ fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut 
         return;
     }
     blocks.push(Block::Table(table(checks, area, &checked, words)));
-    let standings: Vec<Ranked<'_>> = checked.iter().map(|checked| checked.standing.clone()).collect();
+    let standings: Vec<&Ranked<'_>> = checked.iter().map(|checked| &checked.standing).collect();
     blocks.extend(ranking::marks(&standings, words).into_iter().map(Block::Text));
     if checked.iter().any(|checked| checked.standing.cost.is_none()) {
         blocks

@@ -108,7 +108,7 @@ fn blocks(sizes: &[Size], title: &str, words: Words) -> Vec<Block> {
 
 /// What is on a device, before it and behind it, the same for all its sizes.
 fn fittings(size: &Size, words: Words) -> Vec<String> {
-    let mut fittings = Vec::new();
+    let mut fittings: Vec<String> = super::measure::of_catalog(size, words).into_iter().collect();
     if let Device::Drain(drain) = &size.device {
         let dome =
             drain.free_area.map_or(String::new(), |area| format!(", under a dome of {} free", words.opening(area)));
@@ -199,6 +199,10 @@ struct Listed<'a> {
     leader_m3_s: Option<f64>,
     conductor_head_outlet_m: Option<f64>,
     source: Option<&'a str>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    made_from_m: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    made_to_m: Option<f64>,
 }
 
 fn json(sizes: &[Size], title: &str) -> String {
@@ -223,6 +227,8 @@ fn json(sizes: &[Size], title: &str) -> String {
         law: size.law.map(crate::device::Law::name),
         screen: size.screen,
         source: size.source.as_deref(),
+        made_from_m: size.made.as_ref().map(|made| made.from.m()),
+        made_to_m: size.made.as_ref().map(|made| made.to.m()),
     });
     let document = Document { format: "brimline catalog 1", title, sizes: listed.collect() };
     let mut text = serde_json::to_string_pretty(&document).unwrap_or_default();

@@ -67,7 +67,7 @@ pub(super) fn area(sized: &Sized<'_, '_>, fronted: &Fronted<'_>, words: Words, b
     if !under.is_empty() {
         blocks.push(Block::Text(under.join(" ")));
     }
-    blocks.extend(ranking::marks(shown, words).into_iter().map(Block::Text));
+    blocks.extend(ranking::marks(&shown.iter().collect::<Vec<_>>(), words).into_iter().map(Block::Text));
 }
 
 /// The plans of the sizes of the cheapest that are not beaten.

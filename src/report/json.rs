@@ -7,7 +7,7 @@ use serde::Serialize;
 use crate::device::{Kind, Site, Size};
 use crate::roof::Roof;
 use crate::roof::layout::CaseState;
-use crate::search::{Answer, Least, Opened, Opening, Outcome, Placed, Ranked, UnderLaw};
+use crate::search::{Answer, Fitted, Least, Measured, Opened, Opening, Outcome, Placed, Ranked, UnderLaw};
 use crate::units::{Length, Money};
 
 use super::words::{self, Words};
@@ -129,6 +129,30 @@ struct Layout<'a> {
     straight_line_excess: f64,
     under_other_laws: Vec<Under<'a>>,
     notes: Vec<String>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    made_to_measure: Option<Made<'a>>,
+}
+
+#[derive(Serialize)]
+struct Made<'a> {
+    rounded_up_to_m: Option<f64>,
+    better_than_grid: bool,
+    #[serde(flatten)]
+    fitted: Option<MadeLayout<'a>>,
+}
+
+#[derive(Serialize)]
+struct MadeLayout<'a> {
+    cost: Option<f64>,
+    saved: Option<f64>,
+    narrower_m: f64,
+    unrounded_widths_m: Vec<f64>,
+    unrounded_cost: Option<f64>,
+    groups: Vec<Group<'a>>,
+    governing: Governing<'a>,
+    cases: Vec<Case<'a>>,
+    beyond_range: bool,
+    under_other_laws: Vec<Under<'a>>,
 }
 
 #[derive(Serialize)]
@@ -327,6 +351,34 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
         straight_line_excess: ranked.chord,
         under_other_laws: others.iter().map(|under| under_law(sized, under)).collect(),
         notes: remarks,
+        made_to_measure: ranked.made.as_ref().map(|made| self::made(sized, area, ranked, made)),
+    }
+}
+
+fn made<'a>(sized: &Sized<'a, '_>, area: usize, ranked: &Ranked<'_>, made: &'a Measured) -> Made<'a> {
+    let fitted = match made {
+        Measured::NoBetter => None,
+        Measured::Fitted(fitted) => Some(made_layout(sized, area, fitted)),
+    };
+    let mut of_groups = ranked.groups.iter().filter_map(|placed| placed.group.size.made.as_ref());
+    Made { rounded_up_to_m: of_groups.next().map(|made| made.round.m()), better_than_grid: fitted.is_some(), fitted }
+}
+
+/// A layout in widths of its own.
+fn made_layout<'a>(sized: &Sized<'a, '_>, area: usize, fitted: &'a Fitted) -> MadeLayout<'a> {
+    let layout = fitted.layout();
+    let site = sized.roof.site(area, None);
+    MadeLayout {
+        cost: layout.cost.map(Money::amount),
+        saved: fitted.saved.map(Money::amount),
+        narrower_m: fitted.narrower.m(),
+        unrounded_widths_m: fitted.unrounded.iter().map(|width| width.m()).collect(),
+        unrounded_cost: fitted.unrounded_cost.map(Money::amount),
+        groups: layout.groups.iter().map(|placed| group(placed, &site)).collect(),
+        governing: governing(sized.roof, &layout),
+        cases: cases(sized.roof, area, &layout),
+        beyond_range: !layout.beyond.is_empty(),
+        under_other_laws: layout.thick_wall.iter().map(|under| under_law(sized, under)).collect(),
     }
 }
 

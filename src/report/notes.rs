@@ -1,13 +1,16 @@
 //! What every reader of a report must know besides its numbers: the laws, the assumptions, the cautions of this very roof.
 
+use std::borrow::Cow;
+
 use crate::device::{Kind, Law, Place, Regime, Site, Size};
 use crate::hydraulics::practice::Transition;
 use crate::input::Assumed;
 use crate::roof::Roof;
 use crate::roof::layout::GroupState;
-use crate::search::{Options, Ranked};
+use crate::search::{Measured, Options, Ranked};
 use crate::units::{Area, Length, System};
 
+use super::measure;
 use super::words::{self, Words, list, ranked_by, trimmed};
 
 /// Excess of straight lines over logarithmic ones, as a part of the demand, from which it is told.
@@ -28,8 +31,22 @@ pub(super) struct Told<'a, 'r> {
     pub(super) layouts: Vec<(usize, &'a Ranked<'r>)>,
     /// Whether they were searched for; else they were given.
     pub(super) searched: bool,
+    /// Whether a plan of the whole roof was asked for.
+    pub(super) plan: bool,
     /// Whether layouts that are not beaten are among them.
     pub(super) fronts: bool,
+}
+
+/// The listed layouts and those in widths of their own: what is cautioned of any.
+fn every<'a>(told: &Told<'a, '_>) -> Vec<Cow<'a, Ranked<'a>>> {
+    let both = |layout: &'a Ranked<'a>| {
+        let fitted = match &layout.made {
+            Some(Measured::Fitted(fitted)) => Some(Cow::Owned(fitted.layout())),
+            _ => None,
+        };
+        std::iter::once(Cow::Borrowed(layout)).chain(fitted)
+    };
+    layouts(told).flat_map(both).collect()
 }
 
 fn layouts<'a, 'r>(told: &Told<'a, 'r>) -> impl Iterator<Item = &'a Ranked<'r>> {
@@ -181,6 +198,9 @@ pub(super) fn assumptions(told: &Told<'_, '_>) -> Vec<String> {
         let whom = if assumed.areas.is_empty() { String::new() } else { format!(" in {}", list(&assumed.areas)) };
         lines.push(format!("Not given: `{}`{whom}. Taken: {}; {}.", default.key, default.value, default.meaning));
     }
+    if told.searched {
+        lines.extend(measure::assumptions(told.roof, told.plan, words));
+    }
     if let Some(freeboard) = told.options.freeboard {
         lines.push(format!(
             "At least {} is kept between the water and the top of every closed opening.",
@@ -203,6 +223,13 @@ pub(super) fn cautions(told: &Told<'_, '_>) -> Vec<String> {
     structure(told, &mut lines);
     openings(told, &mut lines);
     cases(told, &mut lines);
+    if layouts(told).any(|layout| matches!(layout.made, Some(Measured::Fitted(_)))) {
+        lines.push(
+            "Openings made to measure use their limit up: what may be built narrower or higher than it is drawn must stand in a \
+             case."
+                .into(),
+        );
+    }
     lines.push(
         "Ice, snow, hail and leaves before an opening, and water driven along a parapet by wind, are in none of the formulas."
             .into(),
@@ -316,8 +343,9 @@ fn openings(told: &Told<'_, '_>, lines: &mut Vec<String>) {
 }
 
 fn regimes(told: &Told<'_, '_>, lines: &mut Vec<String>) {
+    let all = every(told);
     let states = || {
-        layouts(told).flat_map(|layout| {
+        all.iter().flat_map(|layout| {
             layout.states.iter().flat_map(move |state| {
                 layout.groups.iter().zip(&state.groups).filter(|(_, stands)| stands.share.working > 0)
             })
@@ -343,7 +371,7 @@ fn regimes(told: &Told<'_, '_>, lines: &mut Vec<String>) {
             "Some rated devices are read below the first row of their table, where a weir's curve is taken.".into(),
         );
     }
-    if layouts(told).any(|layout| !layout.beyond.is_empty()) {
+    if all.iter().any(|layout| !layout.beyond.is_empty()) {
         lines.push(
             "Layouts marked as beyond range rest on a law outside the range in which it is published; how far is told under \
              each list."

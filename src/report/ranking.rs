@@ -8,7 +8,7 @@ use crate::units::{Area, Length, Load};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Sized, cures, front, notes, plan, reasons, work};
+use super::{Sized, cures, front, measure, notes, plan, reasons, work};
 
 /// The mark behind a layout that leaves the published range of its law.
 const BEYOND: &str = "\u{2020}";
@@ -113,6 +113,7 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
         }
         layouts => {
             ranking(sized, answer.area, layouts, words, blocks);
+            blocks.extend(measure::blocks(sized, answer.area, layouts, words));
             if let Some(fronted) = sized.front_of(answer.area) {
                 front::area(sized, fronted, words, blocks);
             }
@@ -122,6 +123,7 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
             if sized.work {
                 blocks.push(Block::Text(format!("The first layout by hand, {}:", words.layout(&layouts[0]))));
                 blocks.push(Block::Lines(work::lines(roof, answer.area, &layouts[0], words)));
+                blocks.extend(measure::work(roof, answer.area, &layouts[0], words));
             }
             if let Some(opened) = sized.changes_of(answer.area) {
                 blocks.extend(cures::binding(opened, &layouts[0], words));
@@ -312,7 +314,7 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
     if !under.is_empty() {
         blocks.push(Block::Text(under.join(" ")));
     }
-    for text in marks(layouts, words) {
+    for text in marks(&layouts.iter().collect::<Vec<_>>(), words) {
         blocks.push(Block::Text(text));
     }
     let named: Vec<_> = (1..).map(|rank: usize| rank.to_string()).zip(layouts).collect();
@@ -359,7 +361,7 @@ fn backing_up(roof: &Roof, layouts: &[Named<'_, '_>], words: Words) -> Vec<Strin
 }
 
 /// One line for each layout: its level under the laws of a thick wall, and whether that breaks a limit.
-fn thick_walls(roof: &Roof, area: usize, layouts: &[Named<'_, '_>], words: Words) -> Vec<String> {
+pub(super) fn thick_walls(roof: &Roof, area: usize, layouts: &[Named<'_, '_>], words: Words) -> Vec<String> {
     let Some(thickness) = roof.areas[area].parapet.thickness else { return Vec::new() };
     let wall = format!(" ({} parapet)", words.size(thickness));
     let one = |(index, under): (usize, &UnderLaw)| {
@@ -436,7 +438,7 @@ pub(super) fn marks_of(layout: &Ranked<'_>) -> String {
     text
 }
 
-pub(super) fn marks(layouts: &[Ranked<'_>], words: Words) -> Vec<String> {
+pub(super) fn marks(layouts: &[&Ranked<'_>], words: Words) -> Vec<String> {
     let mut texts = Vec::new();
     let mut beyond: Vec<(&Range, f64)> = Vec::new();
     for &(range, value) in layouts.iter().flat_map(|layout| &layout.beyond) {

@@ -1,7 +1,8 @@
-//! The ranked layouts as a schedule: CSV, one row for each group of each layout, in the units of the project.
+//! The ranked layouts as a schedule: CSV, one row for each group of each layout, in the units of the project. A layout in widths
+//! made to measure follows the one of the grid, with its rank.
 
 use crate::device::Kind;
-use crate::search::{Answer, Outcome, Placed, Ranked};
+use crate::search::{Answer, Measured, Outcome, Placed, Ranked};
 use crate::units::Length;
 
 use super::words::{self, Words};
@@ -72,10 +73,16 @@ fn listed(
 ) -> Vec<Vec<String>> {
     let mut rows = Vec::new();
     for (index, layout) in layouts.iter().enumerate() {
-        let compared = if sized.fronts.is_empty() { Vec::new() } else { compared(sized, layout, list, words) };
-        for placed in &layout.groups {
-            let row = row(sized, answer, index + 1, layout, placed, words);
-            rows.push(row.into_iter().chain(compared.iter().cloned()).collect());
+        let mut add = |outcome: &str, layout: &Ranked<'_>| {
+            let compared = if sized.fronts.is_empty() { Vec::new() } else { compared(sized, layout, list, words) };
+            for placed in &layout.groups {
+                let row = row(sized, answer.area, outcome, index + 1, layout, placed, words);
+                rows.push(row.into_iter().chain(compared.iter().cloned()).collect());
+            }
+        };
+        add(words::outcome(&answer.outcome), layout);
+        if let Some(Measured::Fitted(fitted)) = &layout.made {
+            add("made to measure", &fitted.layout());
         }
     }
     rows
@@ -97,7 +104,8 @@ fn compared(sized: &Sized<'_, '_>, layout: &Ranked<'_>, list: &str, words: Words
 
 fn row(
     sized: &Sized<'_, '_>,
-    answer: &Answer<'_>,
+    area: usize,
+    outcome: &str,
     rank: usize,
     layout: &Ranked<'_>,
     placed: &Placed<'_>,
@@ -109,8 +117,8 @@ fn row(
     let optional = |length: Option<Length>| length.map_or(String::new(), small);
     let water = layout.states[layout.case].water;
     vec![
-        sized.roof.areas[answer.area].name.clone(),
-        words::outcome(&answer.outcome).into(),
+        sized.roof.areas[area].name.clone(),
+        outcome.into(),
         rank.to_string(),
         layout.cost.map_or(String::new(), |cost| plain(cost.amount(), 2)),
         placed.group.size.tag.to_string(),
@@ -122,7 +130,7 @@ fn row(
         small(placed.group.set_height),
         small(placed.from),
         words.depth_down(placed.to).replace(',', ""),
-        placed.group.size.law_at(&sized.roof.site(answer.area, None)).name().to_string(),
+        placed.group.size.law_at(&sized.roof.site(area, None)).name().to_string(),
         sized.roof.cases[layout.case].name.clone(),
         layout.governing.map_or("overwhelmed".into(), |governing| governing.limit.name().to_string()),
         optional(water.map(|water| water.level)),

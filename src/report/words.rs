@@ -117,6 +117,12 @@ impl Words {
         format!("{} {unit}", trimmed((value + 1e-6).floor(), 0))
     }
 
+    /// A width that is never said to be less than it is, without its unit: narrower would not do.
+    pub(super) fn width_up(self, width: Length) -> String {
+        let scale = if self.us() { 100.0 } else { 1.0 };
+        trimmed((self.small(width) * scale - 1e-6).ceil() / scale, if self.us() { 2 } else { 0 })
+    }
+
     /// A dimension or a set height as it was given, without its unit.
     pub(super) fn bare_size(self, length: Length) -> String {
         trimmed(self.small(length), if self.us() { 3 } else { 1 })

@@ -154,13 +154,17 @@ pub(crate) fn holds_at(groups: &[Group<'_>], situation: &Situation<'_>, allowed:
     spare(groups, situation, allowed, asked) >= 0.0
 }
 
-/// What the groups can carry at the highest level allowed, less the demand, m3/s.
-fn spare(groups: &[Group<'_>], situation: &Situation<'_>, allowed: Length, asked: Asked) -> f64 {
-    let pool = pool(groups, situation);
+/// The highest level that a situation allows the groups: under its limits, and under their lowest top by the freeboard.
+pub(crate) fn highest_level(groups: &[Group<'_>], situation: &Situation<'_>, allowed: Length, asked: Asked) -> Length {
     let tops = groups.iter().filter_map(|group| top(group, situation));
     let ceiling = asked.freeboard.and_then(|freeboard| tops.map(|top| top - freeboard).reduce(Length::min));
-    let level = ceiling.map_or(allowed, |ceiling| ceiling.min(allowed));
-    (pool.capacity(level) - situation.demand).m3_per_s()
+    ceiling.map_or(allowed, |ceiling| ceiling.min(allowed))
+}
+
+/// What the groups can carry at the highest level allowed, less the demand, m3/s.
+fn spare(groups: &[Group<'_>], situation: &Situation<'_>, allowed: Length, asked: Asked) -> f64 {
+    let level = highest_level(groups, situation, allowed, asked);
+    (pool(groups, situation).capacity(level) - situation.demand).m3_per_s()
 }
 
 /// What the groups can carry in the case that leaves least to spare, each at the highest level that its situation allows,

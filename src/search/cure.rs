@@ -325,8 +325,9 @@ pub fn relaxed(roof: &Roof, options: &Options, change: Relaxation) -> (Roof, Opt
     (roof, options)
 }
 
-/// A wider opening has no price in the catalog but that of the one it replaces: a lower bound on its cost.
+/// A wider opening has no price in the catalog but that of the one it replaces: a lower bound on its cost. Nor is it measured.
 fn widen(size: &mut Size, more: Length) {
+    size.made = None;
     match &mut size.device {
         Device::Open { width } | Device::Closed { width, .. } => *width = *width + more,
         Device::Pipe { diameter } => *diameter = *diameter + more,
@@ -335,6 +336,7 @@ fn widen(size: &mut Size, more: Length) {
 }
 
 fn heighten(size: &mut Size, more: Length) {
+    size.made = None;
     if let Device::Closed { height, .. } = &mut size.device {
         *height = *height + more;
     }

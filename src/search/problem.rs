@@ -170,12 +170,7 @@ impl<'r> Problem<'r> {
         for candidate in &self.candidates {
             let height = height(candidate);
             for (situation, &level) in self.situations.iter().zip(levels) {
-                let one = |set_height| {
-                    let group = Group { size: candidate.size, count: 1, set_height };
-                    let mut pool = crate::roof::layout::pool(&[group], situation);
-                    pool.blocked = 0;
-                    pool.capacity(level).m3_per_s()
-                };
+                let one = |set_height| one_carries(candidate.size, set_height, situation, level);
                 flows.push(height.map_or(f64::NEG_INFINITY, one));
             }
         }
@@ -201,6 +196,19 @@ impl<'r> Problem<'r> {
             Liftable { group, highest: candidate.highest }
         };
         groups.iter().map(liftable).collect()
+    }
+
+    /// Edge that groups and the gaps between all openings of a layout leave free, nanometres, below zero where they want more
+    /// than there is; none where it is not limited.
+    pub(super) fn edge_left<'g>(&self, taking: impl Iterator<Item = &'g Group<'g>>, all: &[Group<'_>]) -> Option<i64> {
+        let openings: i64 =
+            all.iter().filter(|group| group.size.place == Place::Edge).map(|group| i64::from(group.count)).sum();
+        let gaps = self.gap.saturating_mul((openings - 1).max(0));
+        let at_edge = taking.filter(|group| group.size.place == Place::Edge);
+        let taken = at_edge.fold(gaps, |taken, group| {
+            taken.saturating_add(group.size.clear_width().nm().saturating_mul(i64::from(group.count)))
+        });
+        self.edge.map(|edge| edge - taken)
     }
 
     /// This area, held to some of its cases only.
@@ -231,6 +239,13 @@ impl<'r> Problem<'r> {
         self.asked = Asked::default();
         self
     }
+}
+
+/// What one device carries in a case at a level, m3/s.
+pub(super) fn one_carries(size: &Size, set_height: Length, situation: &Situation<'_>, level: Length) -> f64 {
+    let mut pool = crate::roof::layout::pool(&[Group { size, count: 1, set_height }], situation);
+    pool.blocked = 0;
+    pool.capacity(level).m3_per_s()
 }
 
 fn candidate(size: &Size, index: usize, tag: u32, stand: Stand) -> Candidate<'_> {

@@ -7,6 +7,8 @@ use crate::roof::layout::{self, Asked, CaseState, Group, Liftable, Water, highes
 use crate::roof::{Governing, Roof, Situation};
 use crate::units::{Length, Money};
 
+use super::measure::Measured;
+
 /// A group of a ranked layout with its window.
 #[derive(Clone, Copy, Debug)]
 pub struct Placed<'r> {
@@ -40,6 +42,8 @@ pub struct Ranked<'r> {
     pub thick_wall: Vec<UnderLaw>,
     /// The most by which straight lines between rated rows raise its flow over logarithmic ones, as a part of the demand.
     pub chord: f64,
+    /// What became of it where openings are made to measure; none where none of it is.
+    pub made: Option<Measured>,
 }
 
 /// A layout under another flow law.
@@ -70,18 +74,25 @@ pub fn standing<'r>(
         from: liftable.group.set_height,
         to: liftable.lifted(lift).set_height,
     });
-    let states: Vec<_> = situations.iter().map(|situation| layout::state(groups, situation)).collect();
+    described(placed.collect(), situations, allowed)
+}
+
+/// All that is reported of groups with their windows.
+pub(super) fn described<'g>(placed: Vec<Placed<'g>>, situations: &[Situation<'_>], allowed: &[Length]) -> Ranked<'g> {
+    let groups: Vec<Group<'g>> = placed.iter().map(|placed| placed.group).collect();
+    let states: Vec<_> = situations.iter().map(|situation| layout::state(&groups, situation)).collect();
     let (case, governing) = governing(&states);
     Ranked {
-        cost: layout::cost(groups),
+        cost: layout::cost(&groups),
         case,
         governing,
-        beyond: beyond(groups, &states, situations),
-        thick_wall: thick_wall(situations, allowed, groups, case),
-        chord: chord(groups, &states, situations),
-        groups: placed.collect(),
+        beyond: beyond(&groups, &states, situations),
+        thick_wall: thick_wall(situations, allowed, &groups, case),
+        chord: chord(&groups, &states, situations),
+        groups: placed,
         states,
         allowed: allowed.to_vec(),
+        made: None,
     }
 }
 
