@@ -16,6 +16,7 @@ mod json;
 mod notes;
 mod page;
 mod plan;
+mod ponding;
 mod ranking;
 mod rate;
 mod reasons;

@@ -13,7 +13,7 @@ use crate::units::{Length, Money};
 use super::json;
 use super::page::{self, Block, Table};
 use super::words::{self, Words, list};
-use super::{Format, notes, plain, ranking, written};
+use super::{Format, notes, plain, ponding, ranking, written};
 
 /// What a report of given layouts is made of.
 #[derive(Clone, Copy, Debug)]
@@ -142,17 +142,16 @@ fn table(checks: &Checks<'_, '_>, area: usize, checked: &[&Checked<'_>], words: 
             column(&|standing| water(standing).map_or("-".into(), |water| words.bare_depth(water.depth()))),
         ),
         (
+            format!("ponding {}", words.small_unit()),
+            true,
+            column(&|standing| ponding_head(checks, area, standing, words)),
+        ),
+        (
             format!("load {}", words.load_unit()),
             true,
             column(&|standing| water(standing).map_or("-".into(), |water| words.bare_load(water.load))),
         ),
-        (
-            "util.".into(),
-            true,
-            column(&|standing| {
-                standing.governing.map_or("overwhelmed".into(), |governing| format!("{:.3}", governing.utilisation))
-            }),
-        ),
+        ("util.".into(), true, column(&|standing| utilisation(standing))),
         ("case".into(), false, column(&|standing| checks.roof.cases[standing.case].name.clone())),
         (
             format!("may rise {}", words.small_unit()),
@@ -169,10 +168,29 @@ fn table(checks: &Checks<'_, '_>, area: usize, checked: &[&Checked<'_>], words: 
     if checks.roof.cases.len() == 1 {
         columns.retain(|(head, _, _)| head != "case");
     }
+    if !checks.roof.situation(area, 0).ponding.grows() {
+        columns.retain(|(head, _, _)| !head.starts_with("ponding"));
+    }
     if rows().all(|(_, _, standing)| standing.cost.is_none()) {
         columns.retain(|(head, _, _)| head != "cost");
     }
     Table::of(columns)
+}
+
+/// The ponding head of a layout in its governing case.
+fn ponding_head(checks: &Checks<'_, '_>, area: usize, standing: &Ranked<'_>, words: Words) -> String {
+    let situation = checks.roof.situation(area, standing.case);
+    let water = standing.states[standing.case].water.filter(|_| !situation.ponding.is_unstable());
+    water.map_or("-".into(), |water| words.bare_depth(situation.ponding_head(water.level)))
+}
+
+/// How much of its limit a layout uses in its governing case.
+fn utilisation(standing: &Ranked<'_>) -> String {
+    match standing.governing {
+        None => "overwhelmed".into(),
+        Some(governing) if governing.utilisation.is_infinite() => "unstable".into(),
+        Some(governing) => format!("{:.3}", governing.utilisation),
+    }
 }
 
 /// How much higher the sills could be, all of them together.
@@ -195,6 +213,7 @@ pub(super) fn failing_in_words(roof: &Roof, checked: &Checked<'_>, failing: &Fai
         Failing::Limit { case } => {
             let situation = roof.situation(area, case);
             match checked.standing.states[case].water {
+                Some(_) if situation.ponding.is_unstable() => format!("the roof is unstable in {}", case_named(case)),
                 None => format!(
                     "it does not carry {} in {}: its tables are at their end",
                     words.flow(situation.demand),
@@ -266,7 +285,8 @@ fn up_the_slope(roof: &Roof, checked: &Checked<'_>, words: Words) -> Option<Stri
     let area = &roof.areas[checked.given.area];
     let rise = area.surface.rise?;
     let water = checked.standing.states[checked.standing.case].water?;
-    let ponding = area.ponding_head.unwrap_or(Length::ZERO);
+    let situation = roof.situation(checked.given.area, checked.standing.case);
+    let ponding = Some(situation.ponding_head(water.level)).filter(|_| !situation.ponding.is_unstable())?;
     let load = |at: Length| {
         let depth = rise.depth(water.level, at);
         words.load(if depth > Length::ZERO { crate::roof::load_of(depth + ponding) } else { crate::units::Load::ZERO })
@@ -358,6 +378,9 @@ struct Document<'a> {
 struct OfArea<'a> {
     name: &'a str,
     demand_m3_s: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    ponding: Option<ponding::OfArea>,
+    framing_analysis: Vec<String>,
     layouts: Vec<OfLayout<'a>>,
     #[serde(skip_serializing_if = "Option::is_none")]
     best: Option<OfBest<'a>>,
@@ -414,6 +437,8 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
     let area = |&area: &usize| OfArea {
         name: &roof.areas[area].name,
         demand_m3_s: roof.demands[area].m3_per_s(),
+        ponding: ponding::of_area(&roof.areas[area]),
+        framing_analysis: ponding::reasons(&roof.areas[area], words),
         layouts: std::mem::take(&mut by_area[area]),
         best: checks.best_of(area).map(|found| best(area, found)),
     };
