@@ -21,6 +21,7 @@ mod ranking;
 mod rate;
 mod reasons;
 mod schedule;
+mod storage;
 mod structure;
 mod tradeoff;
 mod words;

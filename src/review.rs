@@ -13,6 +13,10 @@ use crate::rules;
 use crate::search::{self, Options, Ranked};
 use crate::units::Length;
 
+mod storage;
+
+pub use storage::{DRAINED, Routed, Storage, storage};
+
 /// A given layout and how it stands.
 #[derive(Clone, Debug)]
 pub struct Checked<'r> {

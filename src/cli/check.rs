@@ -3,7 +3,8 @@
 use std::process::ExitCode;
 
 use crate::report::{self, Checks};
-use crate::review;
+use crate::review::{self, Storage};
+use crate::roof::{Given, Roof};
 use crate::search;
 
 use super::{Failure, OfProject};
@@ -22,6 +23,9 @@ pub(super) struct Args {
     /// Set the best layout that a search finds beside the given ones.
     #[arg(long)]
     beside_best: bool,
+    /// Route the storm through the storage of the roof as a second opinion, which changes no verdict.
+    #[arg(long)]
+    storage: bool,
 }
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
@@ -56,6 +60,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         None
     };
     let checked = review::check(&project.roof, &project.options, &given);
+    let storage = if args.storage { Some(routed(&project.roof, &given)?) } else { None };
     let checks = Checks {
         roof: &project.roof,
         options: &project.options,
@@ -63,7 +68,13 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         areas: &areas,
         checked: &checked,
         best: best.as_deref(),
+        storage: storage.as_ref(),
     };
     args.of.deliver(|format, width| report::check(&checks, format, width))?;
     Ok(ExitCode::from(u8::from(checked.iter().any(|checked| !checked.passes()))))
+}
+
+fn routed(roof: &Roof, given: &[Given]) -> Result<Storage, Failure> {
+    let help = "check the sizes and flows of the layouts, or leave --storage out";
+    review::storage(roof, given).map_err(|error| Failure::said(&format!("storage: {error}"), help))
 }

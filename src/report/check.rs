@@ -4,7 +4,7 @@ use serde::Serialize;
 
 use crate::device::Place;
 use crate::input::Assumed;
-use crate::review::{Checked, Failing};
+use crate::review::{Checked, Failing, Routed, Storage};
 use crate::roof::layout::Group;
 use crate::roof::{Roof, Situation};
 use crate::search::{Answer, Options, Ranked};
@@ -13,7 +13,7 @@ use crate::units::{Length, Money};
 use super::json;
 use super::page::{self, Block, Table};
 use super::words::{self, Words, list};
-use super::{Format, notes, plain, ponding, ranking, written};
+use super::{Format, notes, plain, ponding, ranking, storage, written};
 
 /// What a report of given layouts is made of.
 #[derive(Clone, Copy, Debug)]
@@ -30,6 +30,8 @@ pub struct Checks<'a, 'r> {
     pub checked: &'a [Checked<'r>],
     /// The best layouts of the areas that a search finds, where that was asked for.
     pub best: Option<&'a [Answer<'r>]>,
+    /// What the storage of the roof would do for the layouts, where that was asked for.
+    pub storage: Option<&'a Storage>,
 }
 
 impl<'a, 'r> Checks<'a, 'r> {
@@ -40,6 +42,11 @@ impl<'a, 'r> Checks<'a, 'r> {
     /// The best that a search finds for an area.
     fn best_of(&self, area: usize) -> Option<&'a Ranked<'r>> {
         self.best?.iter().find(|answer| answer.area == area)?.outcome.layouts().first()
+    }
+
+    /// The storm through the storage of a layout, by its place; nothing where that was not asked for, or cannot be routed.
+    fn routed(&self, place: usize) -> &'a [Routed] {
+        self.storage.and_then(|storage| storage.layouts.get(place)).map_or(&[], Vec::as_slice)
     }
 
     fn told(&self) -> notes::Told<'a, 'r> {
@@ -115,6 +122,11 @@ fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut 
     }
     let named: Vec<_> = checked.iter().map(|checked| (checked.given.name.clone(), &checked.standing)).collect();
     blocks.extend(ranking::beside(roof, area, &named, words));
+    if let Some(stored) = checks.storage {
+        let here = checks.checked.iter().enumerate().filter(|(_, checked)| checked.given.area == area);
+        let routed: Vec<_> = here.map(|(place, checked)| (checked, checks.routed(place))).collect();
+        blocks.extend(storage::blocks(roof, area, &routed, stored, words));
+    }
 }
 
 fn table(checks: &Checks<'_, '_>, area: usize, checked: &[&Checked<'_>], words: Words) -> Table {
@@ -142,7 +154,7 @@ fn table(checks: &Checks<'_, '_>, area: usize, checked: &[&Checked<'_>], words: 
             column(&|standing| water(standing).map_or("-".into(), |water| words.bare_depth(water.depth()))),
         ),
         (
-            format!("ponding {}", words.small_unit()),
+            format!("pond. {}", words.small_unit()),
             true,
             column(&|standing| ponding_head(checks, area, standing, words)),
         ),
@@ -169,7 +181,7 @@ fn table(checks: &Checks<'_, '_>, area: usize, checked: &[&Checked<'_>], words: 
         columns.retain(|(head, _, _)| head != "case");
     }
     if !checks.roof.situation(area, 0).ponding.grows() {
-        columns.retain(|(head, _, _)| !head.starts_with("ponding"));
+        columns.retain(|(head, _, _)| !head.starts_with("pond."));
     }
     if rows().all(|(_, _, standing)| standing.cost.is_none()) {
         columns.retain(|(head, _, _)| head != "cost");
@@ -396,6 +408,8 @@ struct OfLayout<'a> {
     cases: Vec<json::Case<'a>>,
     sills_could_rise_m: Option<f64>,
     fails: Vec<String>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    storage: Option<storage::OfLayout<'a>>,
 }
 
 #[derive(Serialize)]
@@ -409,7 +423,7 @@ struct OfBest<'a> {
 fn document<'a>(checks: &Checks<'a, '_>) -> String {
     let words = Words(checks.roof.system);
     let roof = checks.roof;
-    let layout = |checked: &'a Checked<'_>| {
+    let layout = |place: usize, checked: &'a Checked<'_>| {
         let (area, standing) = (checked.given.area, &checked.standing);
         let failing = |failing| failing_in_words(roof, checked, failing, words);
         OfLayout {
@@ -421,6 +435,7 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
             cases: json::cases(roof, area, standing),
             sills_could_rise_m: checked.passes().then(|| window_left(standing).m()),
             fails: checked.failings.iter().map(failing).collect(),
+            storage: checks.storage.map(|stored| storage::of_layout(roof, stored, checks.routed(place))),
         }
     };
     let best = |area: usize, best: &'a Ranked<'_>| OfBest {
@@ -431,8 +446,8 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
     };
     let told = checks.told();
     let mut by_area: Vec<Vec<OfLayout<'a>>> = roof.areas.iter().map(|_| Vec::new()).collect();
-    for checked in checks.checked {
-        by_area[checked.given.area].push(layout(checked));
+    for (place, checked) in checks.checked.iter().enumerate() {
+        by_area[checked.given.area].push(layout(place, checked));
     }
     let area = |&area: &usize| OfArea {
         name: &roof.areas[area].name,
