@@ -261,7 +261,7 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
         column(format!("far end {}", words.small_unit()), true, "level at the far end", &|layout| {
             water(layout).and_then(|water| water.reach).map_or("-".into(), |reach| words.bare_depth(reach.far_level))
         }),
-        column(format!("ponding {}", words.small_unit()), true, "ponding head", &|layout| {
+        column(format!("pond. {}", words.small_unit()), true, "ponding head", &|layout| {
             let situation = sized.roof.situation(area, layout.case);
             let grows = water(layout).filter(|_| situation.ponding.grows());
             grows.map_or("-".into(), |water| words.bare_depth(situation.ponding_head(water.level)))

@@ -161,7 +161,7 @@ mod tests {
         assert_relative_eq!(bay.deck_needed().to_in4_per_ft(), 0.015_625, max_relative = 1e-9);
     }
 
-    /// Exact constants of the flexibilities: 31.81 / 10^7 in ft and in4, 503.5 in m and mm4 with E = 200 GPa; both prints are
+    /// Exact constants of the flexibilities: 31.81 / 10^7 in ft and in4, 503.5 in m and mm4 with E = 200,000 N/mm2; both prints are
     /// rounded. Source: unit weight / (pi^4 E).
     #[test]
     fn the_printed_constant_is_the_exact_one_rounded_up() {
@@ -192,7 +192,7 @@ mod tests {
     fn beam_on_its_own_water(span: f64, spacing: f64, inertia: f64) -> f64 {
         let stiffness = PASCALS_PER_METRE * spacing / (STEEL * inertia);
         let u = stiffness.sqrt().sqrt() * span / 2.0;
-        let sag = (1.0 / u.cosh() + 1.0 / u.cos()) / 2.0 - 1.0;
+        let sag = f64::midpoint(1.0 / u.cosh(), 1.0 / u.cos()) - 1.0;
         sag / (5.0 / 384.0 * stiffness * span * span * span * span)
     }
 

