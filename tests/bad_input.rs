@@ -2004,7 +2004,7 @@ warning: the roof is unstable under water: 0.2 in/psf x 5.2 psf/in = 1.040, not 
   --> roof.toml:30:11
    |
 30 | ponding = { flexibility = "0.2 in/psf" }
-   |           ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ every inch of water sinks it by an inch or more
+   |           ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ water of any depth sinks it by as much or more
    |
    = help: no level is allowed here: stiffen the framing, or check the figure
 

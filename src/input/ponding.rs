@@ -69,7 +69,7 @@ fn unstable(cell: &Cell<'_>, ways: &[Cell<'_>], ponding: &Ponding) {
     cell.reader.warn(
         cell.span(),
         format!("the roof is unstable under water: {product}, not under 1"),
-        "every inch of water sinks it by an inch or more",
+        "water of any depth sinks it by as much or more",
         "no level is allowed here: stiffen the framing, or check the figure",
     );
 }

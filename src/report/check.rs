@@ -368,8 +368,13 @@ fn rows(checks: &Checks<'_, '_>) -> String {
                 words.depth_down(placed.to).replace(',', ""),
                 checks.roof.cases[standing.case].name.clone(),
                 length(water.map(|water| water.depth())),
-                water.map_or(String::new(), |water| plain(words.in_load_unit(water.load), 4)),
-                standing.governing.map_or("overwhelmed".into(), |governing| plain(governing.utilisation, 4)),
+                water
+                    .filter(|water| water.load.pa().is_finite())
+                    .map_or(String::new(), |water| plain(words.in_load_unit(water.load), 4)),
+                standing
+                    .governing
+                    .filter(|governing| governing.utilisation.is_finite())
+                    .map_or_else(|| utilisation(standing), |governing| plain(governing.utilisation, 4)),
                 why.join("; "),
             ]);
         }

@@ -47,13 +47,15 @@ fn given(flexibility: Flexibility, words: Words) -> String {
 /// The flexibilities of members, beside what the criterion allows.
 fn members(framing: &Framing) -> String {
     let secondary = trimmed(framing.secondary_flexibility(), 3);
-    let sum = trimmed(framing.criterion(), 3);
+    let passed = framing.criterion() > CRITERION;
+    let over = if passed { ", over it, so this screen does not answer for it" } else { "" };
+    let sum = format!("{} of {CRITERION}{over}", trimmed(framing.criterion(), 3));
     match framing.primary {
         Some(_) => format!(
-            "its framing has Cp = {}, Cs = {secondary} and Cp + 0.9 Cs = {sum} of {CRITERION}",
+            "its framing has Cp = {}, Cs = {secondary} and Cp + 0.9 Cs = {sum}",
             trimmed(framing.primary_flexibility(), 3)
         ),
-        None => format!("its framing on stiff supports has k = {secondary} and 0.9 k = {sum} of {CRITERION}"),
+        None => format!("its framing on stiff supports has k = {secondary} and 0.9 k = {sum}"),
     }
 }
 
@@ -61,7 +63,7 @@ fn members(framing: &Framing) -> String {
 pub(super) fn unstable(area: &Catchment) -> Option<String> {
     let ponding = area.ponding.filter(Ponding::is_unstable)?;
     Some(format!(
-        "{} is unstable under water: its sag ratio of {} is not under 1, so every inch of water sinks it by an inch or more. \
+        "{} is unstable under water: its sag ratio of {} is not under 1, so water of any depth sinks it by as much or more. \
          No opening cures that: its framing must be stiffer.",
         area.name,
         ratio(&ponding)
