@@ -2,7 +2,7 @@
 
 use brimline::device::{Device, Head, Kind, Law, Rating, RingDrain, Site, Size};
 use brimline::roof::layout::{self, Group};
-use brimline::roof::{Case, Limits, Situation};
+use brimline::roof::{Case, Limits, Ponding, Situation};
 use brimline::units::{Flow, Length, Load};
 use std::sync::Arc;
 
@@ -70,7 +70,7 @@ fn level(bencher: divan::Bencher, name: &str) {
         case: &case,
         demand: demand * 2.0,
         limits: Limits { load: Some(Load::psf(30.0)), depth: None },
-        ponding_head: Length::ZERO,
+        ponding: Ponding::default(),
         parapet: None,
         site: site(),
         channel: None,

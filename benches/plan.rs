@@ -40,7 +40,7 @@ fn area(index: u32, unlike: bool) -> Catchment {
         roof_at_wall: Length::ZERO,
         surface: Surface::default(),
         receives: Vec::new(),
-        ponding_head: None,
+        ponding: None,
         kinds: (unlike && index.is_multiple_of(5)).then(|| vec![Kind::ClosedScupper]),
         count: 1..=30,
         set_heights: Some(vec![Length::inches(2.0)]),

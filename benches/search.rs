@@ -53,7 +53,7 @@ fn area(index: u32) -> Catchment {
         roof_at_wall: Length::ZERO,
         surface: Surface::default(),
         receives: Vec::new(),
-        ponding_head: None,
+        ponding: None,
         kinds: None,
         count: 1..=12,
         set_heights: Some((8..=16).map(|quarter| Length::from_nm(quarter * 6_350_000)).collect()),

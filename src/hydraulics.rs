@@ -14,6 +14,7 @@ pub mod gutter;
 pub mod gutter_rules;
 pub mod inlet;
 pub mod leader;
+pub mod level_pool;
 pub mod limits;
 pub mod manning;
 pub mod orifice;

@@ -16,6 +16,7 @@ mod flow;
 mod grid;
 mod height;
 mod layout;
+mod ponding;
 mod project;
 mod rating;
 mod section;

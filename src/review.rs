@@ -15,9 +15,11 @@ use crate::units::Length;
 
 mod backsolve;
 mod sensitivity;
+mod storage;
 
 pub use backsolve::{Solved, Unknown, WIDEST, backsolve};
 pub use sensitivity::{Effect, Input, Sensitivity, Tolerances, sensitivity};
+pub use storage::{DRAINED, Routed, Storage, storage};
 
 /// A given layout and how it stands.
 #[derive(Clone, Debug)]

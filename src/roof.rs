@@ -1,7 +1,7 @@
 //! The roof: its storm, its areas and what runs onto what, the cases it must withstand, and the water on it.
 //!
 //! An area has one low point; all heights in it are above that point. For one area in one case a [`Situation`] holds all
-//! that decides: the flow that must leave, the limits, the ponding head. A [`Pool`] is a layout as it stands in a case: all
+//! that decides: the flow that must leave, the limits, what its sag adds. A [`Pool`] is a layout as it stands in a case: all
 //! its devices see one level. Steady flow: no credit is taken for water stored on the roof, nor for the primary drains.
 
 use std::ops::RangeInclusive;
@@ -11,13 +11,16 @@ use crate::units::{Area, Flow, Intensity, Length, Load, ReturnPeriod, System, Ti
 
 pub mod channel;
 pub mod demand;
+pub mod framing;
 mod given;
 pub mod layout;
+pub mod ponding;
 mod pool;
 mod situation;
 mod surface;
 
 pub use given::{Given, GivenGroup};
+pub use ponding::Ponding;
 pub use pool::{MOST_GROUPS, MOST_OUTLETS, Outlet, Pool, Share, working, working_capacity};
 pub use situation::{Governing, LimitKind, Limits, Situation};
 pub use surface::{Rise, Surface};
@@ -128,8 +131,8 @@ pub struct Catchment {
     pub surface: Surface,
     /// What runs onto it from other areas.
     pub receives: Vec<Receipt>,
-    /// Extra depth from deflection, where given.
-    pub ponding_head: Option<Length>,
+    /// What its deflection adds to the water, where given.
+    pub ponding: Option<Ponding>,
     /// Kinds of device that may stand here; none where any may.
     pub kinds: Option<Vec<Kind>>,
     /// Least and most devices, all groups together.
@@ -189,7 +192,7 @@ impl Roof {
             case: &self.cases[case],
             demand: self.demands[area] * self.cases[case].rain,
             limits: catchment.limits[case],
-            ponding_head: catchment.ponding_head.unwrap_or(Length::ZERO),
+            ponding: catchment.ponding.unwrap_or_default(),
             parapet: catchment.parapet.height,
             site: self.site(area, self.cases[case].law),
             channel: catchment.channel,

@@ -165,6 +165,22 @@ quantity! {
     /// A return period, in years.
     ReturnPeriod, from_years, years, "years"
 }
+quantity! {
+    /// A volume of water, in cubic metres.
+    Volume, from_m3, m3, "cubic metres"
+}
+quantity! {
+    /// How much a roof sags under a load, in metres a pascal.
+    Flexibility, from_m_per_pa, m_per_pa, "metres a pascal"
+}
+quantity! {
+    /// The second moment of area of a member, in metres to the fourth.
+    Inertia, from_m4, m4, "metres to the fourth"
+}
+quantity! {
+    /// The second moment of area of a deck for each unit of its width, in metres to the fourth a metre.
+    DeckInertia, from_m4_per_m, m4_per_m, "metres to the fourth a metre"
+}
 
 impl Length {
     /// A length written in code, in inches.
@@ -227,6 +243,27 @@ impl Area {
     /// The value in square feet.
     pub const fn to_ft2(self) -> f64 {
         self.m2() / (METRES_PER_FOOT * METRES_PER_FOOT)
+    }
+}
+
+impl Flexibility {
+    /// The value in inches for each pound a square foot.
+    pub const fn to_inches_per_psf(self) -> f64 {
+        self.m_per_pa() * PASCALS_PER_PSF / METRES_PER_INCH
+    }
+}
+
+impl Inertia {
+    /// The value in inches to the fourth.
+    pub const fn to_in4(self) -> f64 {
+        self.m4() / (METRES_PER_INCH * METRES_PER_INCH * METRES_PER_INCH * METRES_PER_INCH)
+    }
+}
+
+impl DeckInertia {
+    /// The value in inches to the fourth for each foot.
+    pub const fn to_in4_per_ft(self) -> f64 {
+        Inertia::from_m4(self.m4_per_m() * METRES_PER_FOOT).to_in4()
     }
 }
 

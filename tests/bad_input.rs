@@ -1050,13 +1050,13 @@ error: `parapet` must be a table with height or thickness
    |
    = help: write a table with height or thickness
 
-error: `ponding` must be a table with head
+error: `ponding` must be a table with head, flexibility, primary, secondary or deck_inertia
   --> roof.toml:33:11
    |
 33 | ponding = 0.4
    |           ^^^ a bare number stands here
    |
-   = help: write a table with head
+   = help: write a table with head, flexibility, primary, secondary or deck_inertia
 
 error: `receives` must be a list, such as [{ from = "north bay", share = 0.5 }]
   --> roof.toml:38:12
@@ -1362,13 +1362,13 @@ error: `set_height` is an empty list
    |
    = help: give at least one value
 
-error: `head` is missing in `ponding`
+error: `ponding` is empty
   --> roof.toml:32:11
    |
 32 | ponding = {}
    |           ^^ this table
    |
-   = help: give the extra depth: ponding = { head = "0.4 in" }
+   = help: give head = "0.4 in", flexibility = "0.02 in/psf", or the stiffness of its members under secondary
 
 error: `from` is missing in an entry of `receives`
   --> roof.toml:38:13
@@ -1862,6 +1862,154 @@ warning: areas receive 1.25 of what leaves `north bay`, more than all of it
         .raw(),
     );
     assert!(folder.0.join("result").exists(), "a warning keeps no result back");
+}
+
+/// Both a head and a flexibility, a negative one, one in the unit of a load.
+#[test]
+fn what_a_roof_sags_is_given_once() {
+    project(&[
+        ("edge = \"120 ft\"", "ponding = { head = \"0.4 in\", flexibility = \"0.02 in/psf\" }"),
+        ("area = \"7400 ft2\"", "area = \"7400 ft2\"\nponding = { flexibility = \"-0.02 in/psf\" }"),
+    ])
+    .refuses(str![[r#"
+error: `ponding` gives both `head` and `flexibility`
+  --> roof.toml:30:44
+   |
+30 | ponding = { head = "0.4 in", flexibility = "0.02 in/psf" }
+   |                                            ^^^^^^^^^^^^^ one of them is enough
+   |
+   = help: give a fixed head, or a flexibility from which it follows, or the members whose stiffness makes it
+
+error: `flexibility` must not be negative
+  --> roof.toml:36:27
+   |
+36 | ponding = { flexibility = "-0.02 in/psf" }
+   |                           ^^^^^^^^^^^^^^ below zero
+   |
+   = help: write zero or more
+
+"#]]);
+    project(&[
+        ("edge = \"120 ft\"", "ponding = { flexibility = \"0.02 psf\" }"),
+        ("area = \"7400 ft2\"", "area = \"7400 ft2\"\nponding = { flexibility = 0.02, secondary = {} }"),
+    ])
+    .refuses(str![[r#"
+error: `flexibility`: `psf` is a unit of load; this is a flexibility
+  --> roof.toml:30:27
+   |
+30 | ponding = { flexibility = "0.02 psf" }
+   |                           ^^^^^^^^^^ a flexibility belongs here
+   |
+   = help: in/psf, mm/kPa or m/Pa would pass
+
+error: `ponding` gives both `flexibility` and `secondary`
+  --> roof.toml:36:45
+   |
+36 | ponding = { flexibility = 0.02, secondary = {} }
+   |                                             ^^ one of them is enough
+   |
+   = help: give a fixed head, or a flexibility from which it follows, or the members whose stiffness makes it
+
+"#]]);
+}
+
+#[test]
+fn members_that_sag_are_given_whole() {
+    project(&[
+        (
+            "edge = \"120 ft\"",
+            "ponding = { primary = { span = \"30 ft\", inertia = \"1500 in\" }, deck_inertia = \"0 in4/ft\" }",
+        ),
+        (
+            "area = \"7400 ft2\"",
+            "area = \"7400 ft2\"\nponding = { secondary = { span = \"40\", inertia = \"-300 in4\", web = \"joist\" } }",
+        ),
+    ])
+    .refuses(str![[r#"
+error: `secondary` is missing in `ponding`
+  --> roof.toml:30:11
+   |
+30 | ponding = { primary = { span = "30 ft", inertia = "1500 in" }, deck_inertia = "0 in4/ft" }
+   |           ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ this table
+   |
+   = help: give the members under the deck: secondary = { span = "40 ft", spacing = "5 ft", inertia = "300 in4" }
+
+error: `inertia`: `in` is a unit of length; this is a moment of inertia
+  --> roof.toml:30:51
+   |
+30 | ponding = { primary = { span = "30 ft", inertia = "1500 in" }, deck_inertia = "0 in4/ft" }
+   |                                                   ^^^^^^^^^ a moment of inertia belongs here
+   |
+   = help: in4, mm4, cm4 or m4 would pass
+
+error: `deck_inertia` must be above zero
+  --> roof.toml:30:79
+   |
+30 | ponding = { primary = { span = "30 ft", inertia = "1500 in" }, deck_inertia = "0 in4/ft" }
+   |                                                                               ^^^^^^^^^^ not above zero
+   |
+   = help: write a value above zero
+
+error: `spacing` is missing in `secondary`
+  --> roof.toml:36:25
+   |
+36 | ponding = { secondary = { span = "40", inertia = "-300 in4", web = "joist" } }
+   |                         ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ this table
+   |
+   = help: give the distance between two of them: spacing = "5 ft"
+
+error: `span`: `40` has no unit; this is a length
+  --> roof.toml:36:34
+   |
+36 | ponding = { secondary = { span = "40", inertia = "-300 in4", web = "joist" } }
+   |                                  ^^^^ a length belongs here
+   |
+   = help: write "40 in"; in, ft, mm, cm, m or yd would pass
+
+error: `inertia` must be above zero
+  --> roof.toml:36:50
+   |
+36 | ponding = { secondary = { span = "40", inertia = "-300 in4", web = "joist" } }
+   |                                                  ^^^^^^^^^^ not above zero
+   |
+   = help: write a value above zero
+
+error: `joist` is not a value of `web`
+  --> roof.toml:36:68
+   |
+36 | ponding = { secondary = { span = "40", inertia = "-300 in4", web = "joist" } }
+   |                                                                    ^^^^^^^ not one of its values
+   |
+   = help: solid or open would pass
+
+"#]]);
+}
+
+/// 0.2 in/psf x 5.2 psf/in = 1.04: the area is answered, with no level that it allows, and the others too.
+#[test]
+fn an_unstable_roof_is_a_warning_and_has_no_layout() {
+    let folder = project(&[("edge = \"120 ft\"", "ponding = { flexibility = \"0.2 in/psf\" }")]);
+    let told = folder.brimline(&["size", "roof.toml"]).code(1).stderr_eq(
+        str![[r#"
+warning: the roof is unstable under water: 0.2 in/psf x 5.2 psf/in = 1.040, not under 1
+  --> roof.toml:30:11
+   |
+30 | ponding = { flexibility = "0.2 in/psf" }
+   |           ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ water of any depth sinks it by as much or more
+   |
+   = help: no level is allowed here: stiffen the framing, or check the figure
+
+
+"#]]
+        .raw(),
+    );
+    let text = String::from_utf8(told.get_output().stdout.clone()).expect("UTF-8");
+    let text = text.split_whitespace().collect::<Vec<_>>().join(" ");
+    assert!(
+        text.contains("No layout. north bay is unstable under water: its sag ratio of 1.04 is not under 1"),
+        "{text}"
+    );
+    assert!(text.contains("The same in every row") || text.contains("RS 24 x"), "the other area has layouts: {text}");
 }
 
 #[test]

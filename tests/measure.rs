@@ -115,7 +115,7 @@ fn roof(dice: &mut Dice, mix: usize) -> (Roof, Options) {
         roof_at_wall: Length::ZERO,
         surface: Surface::default(),
         receives: Vec::new(),
-        ponding_head: None,
+        ponding: None,
         kinds: None,
         count: if mix == 3 { 3 } else { 1 }..=1 + dice.upto(3) as u32 + mix as u32,
         set_heights: Some((0..=2).map(|step| inches(1.0 + f64::from(step) * 0.75)).collect()),

@@ -4,7 +4,7 @@
 use approx::assert_abs_diff_eq;
 use brimline::device::{Device, Place, Rating, Site, Size};
 use brimline::roof::layout::{self, Asked, Group, Liftable};
-use brimline::roof::{Case, Limits, Situation};
+use brimline::roof::{Case, Limits, Ponding, Situation};
 use brimline::search::{self, Criterion, Outcome};
 use brimline::units::{Flow, Length, Load};
 use brimline::{input, roof};
@@ -77,7 +77,7 @@ fn published_example_of_a_rain_load() {
         case: &case,
         demand: Flow::gpm(179.4 / 2.0),
         limits: Limits { load: Some(Load::psf(30.0)), depth: None },
-        ponding_head: Length::ZERO,
+        ponding: Ponding::default(),
         parapet: None,
         site: Site::default(),
         channel: None,
@@ -100,7 +100,7 @@ fn published_example_of_a_drain() {
         case: &case,
         demand: Flow::gpm(97.5),
         limits: Limits { load: Some(Load::psf(30.0)), depth: None },
-        ponding_head: Length::ZERO,
+        ponding: Ponding::default(),
         parapet: None,
         site: Site::default(),
         channel: None,
@@ -108,7 +108,7 @@ fn published_example_of_a_drain() {
     let water = layout::state(&[Group { size: &drain, count: 1, set_height: inches(2.0) }], &situation).water.unwrap();
     assert_abs_diff_eq!(water.load.to_psf(), 16.611, epsilon = 1e-3);
     // With a ponding head of 1.1 in on 2 + 3 in: 5.2 * 6.1 = 31.72 psf. By hand.
-    let ponding = Situation { ponding_head: inches(1.1), ..situation };
+    let ponding = Situation { ponding: Ponding::Head(inches(1.1)), ..situation };
     assert_abs_diff_eq!(ponding.load(inches(5.0)).to_psf(), 31.72, epsilon = 1e-9);
 }
 
@@ -163,7 +163,7 @@ fn situation(case: &Case, gpm: f64) -> Situation<'_> {
         case,
         demand: Flow::gpm(gpm) * case.rain,
         limits: Limits { load: Some(Load::psf(28.0)), depth: None },
-        ponding_head: inches(0.3),
+        ponding: Ponding::Head(inches(0.3)),
         parapet: None,
         site: Site::default(),
         channel: None,

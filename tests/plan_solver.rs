@@ -192,7 +192,7 @@ fn roof(given: &Given) -> Roof {
         roof_at_wall: Length::ZERO,
         surface: Surface::default(),
         receives: Vec::new(),
-        ponding_head: None,
+        ponding: None,
         kinds: None,
         count: 1..=given.most_devices,
         set_heights: Some(vec![Length::inches(SET_HEIGHT)]),

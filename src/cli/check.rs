@@ -5,7 +5,8 @@ use std::process::ExitCode;
 use rayon::prelude::*;
 
 use crate::report::{self, Checks};
-use crate::review;
+use crate::review::{self, Storage};
+use crate::roof::{Given, Roof};
 use crate::search;
 
 use super::given::Chosen;
@@ -28,6 +29,9 @@ pub(super) struct Args {
     /// those of [tolerance].
     #[arg(long)]
     sensitivity: bool,
+    /// Route the storm through the storage of the roof as a second opinion, which changes no verdict.
+    #[arg(long)]
+    storage: bool,
 }
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
@@ -48,6 +52,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         };
         checked.par_iter().map(one).collect()
     });
+    let storage = if args.storage { Some(routed(&project.roof, &given)?) } else { None };
     let checks = Checks {
         sensitivities: sensitivities.as_deref().map(|found| (found, &project.tolerances)),
         roof: &project.roof,
@@ -56,7 +61,13 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         areas: &areas,
         checked: &checked,
         best: best.as_deref(),
+        storage: storage.as_ref(),
     };
     args.of.deliver(|format, width| report::check(&checks, format, width))?;
     Ok(ExitCode::from(u8::from(checked.iter().any(|checked| !checked.passes()))))
+}
+
+fn routed(roof: &Roof, given: &[Given]) -> Result<Storage, Failure> {
+    let help = "check the sizes and flows of the layouts, or leave --storage out";
+    review::storage(roof, given).map_err(|error| Failure::said(&format!("storage: {error}"), help))
 }

@@ -15,6 +15,7 @@ use super::fault::{Fault, Span};
 use super::flow;
 use super::grid::{self, Least};
 use super::height::Datum;
+use super::ponding;
 use super::section::{Cell, Keys, Section, any_of, near, optional};
 use super::setting::{Names, Setting, is_named, limits_of, read_count, unique};
 
@@ -46,12 +47,6 @@ static AREA: Keys = Keys {
 };
 
 static PARAPET: Keys = Keys { table: "`parapet`", known: &["height", "thickness"], unsupported: &[] };
-
-static PONDING: Keys = Keys {
-    table: "`ponding`",
-    known: &["head"],
-    unsupported: &[("flexibility", "a ponding head that grows with the load; give the head that belongs to the limit")],
-};
 
 static RECEIPT: Keys = Keys {
     table: "an entry of `receives`",
@@ -225,10 +220,7 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
     };
     let datum =
         surface.zip(roof_at_wall).map(|(surface, roof_at_wall)| Datum { low_point: surface.low_point, roof_at_wall });
-    let ponding_head = section.get("ponding").map_or(Some(None), |cell| {
-        let ponding = cell.section(&PONDING)?;
-        ponding.need("head", "give the extra depth: ponding = { head = \"0.4 in\" }")?.length().map(Some)
-    });
+    let ponding = section.get("ponding").map(|cell| ponding::read(&cell));
     let kinds = section.get("kinds").map_or(Some(None), |cell| read_kinds(&cell, setting).map(Some));
     let count = section.get("count").map_or(setting.search.count.clone(), |cell| read_count(&cell));
     let set_heights = section.get("set_height").map_or_else(
@@ -264,7 +256,7 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
             roof_at_wall: roof_at_wall?,
             surface: surface?,
             receives: Vec::new(),
-            ponding_head: ponding_head?,
+            ponding: optional(ponding)?,
             kinds: kinds.clone()?,
             count: count?,
             set_heights: set_heights?,
@@ -541,7 +533,7 @@ fn without_size(receives: Vec<Receipt>) -> Catchment {
         roof_at_wall: Length::ZERO,
         surface: Surface::default(),
         receives,
-        ponding_head: None,
+        ponding: None,
         kinds: None,
         count: COUNT,
         set_heights: None,

@@ -4,7 +4,7 @@ use serde::Serialize;
 
 use crate::device::Place;
 use crate::input::Assumed;
-use crate::review::{Checked, Effect, Failing, Input, Sensitivity, Tolerances};
+use crate::review::{Checked, Effect, Failing, Input, Routed, Sensitivity, Storage, Tolerances};
 use crate::roof::layout::Group;
 use crate::roof::{Roof, Situation};
 use crate::search::{Answer, Options, Ranked};
@@ -13,7 +13,7 @@ use crate::units::{Length, Load, Money};
 use super::json;
 use super::page::{self, Block, Table};
 use super::words::{self, Words, list};
-use super::{Format, notes, plain, ranking, sensitivity, written};
+use super::{Format, notes, plain, ponding, ranking, sensitivity, storage, written};
 
 /// What a report of given layouts is made of.
 #[derive(Clone, Copy, Debug)]
@@ -32,6 +32,8 @@ pub struct Checks<'a, 'r> {
     pub sensitivities: Option<(&'a [Sensitivity], &'a Tolerances)>,
     /// The best layouts of the areas that a search finds, where that was asked for.
     pub best: Option<&'a [Answer<'r>]>,
+    /// What the storage of the roof would do for the layouts, where that was asked for.
+    pub storage: Option<&'a Storage>,
 }
 
 impl<'a, 'r> Checks<'a, 'r> {
@@ -42,6 +44,11 @@ impl<'a, 'r> Checks<'a, 'r> {
     /// The best that a search finds for an area.
     fn best_of(&self, area: usize) -> Option<&'a Ranked<'r>> {
         self.best?.iter().find(|answer| answer.area == area)?.outcome.layouts().first()
+    }
+
+    /// The storm through the storage of a layout, by its place; nothing where that was not asked for, or cannot be routed.
+    fn routed(&self, place: usize) -> &'a [Routed] {
+        self.storage.and_then(|storage| storage.layouts.get(place)).map_or(&[], Vec::as_slice)
     }
 
     fn told(&self) -> notes::Told<'a, 'r> {
@@ -120,6 +127,11 @@ fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut 
     let named: Vec<_> = checked.iter().map(|checked| (checked.given.name.clone(), &checked.standing)).collect();
     blocks.extend(ranking::beside(roof, area, &named, words));
     blocks.extend(sensitivities(checks, area, words));
+    if let Some(stored) = checks.storage {
+        let here = checks.checked.iter().enumerate().filter(|(_, checked)| checked.given.area == area);
+        let routed: Vec<_> = here.map(|(place, checked)| (checked, checks.routed(place))).collect();
+        blocks.extend(storage::blocks(roof, area, &routed, stored, words));
+    }
 }
 
 /// What a step of each input does to the layouts of an area.
@@ -154,17 +166,16 @@ fn table(checks: &Checks<'_, '_>, area: usize, checked: &[&Checked<'_>], words: 
             column(&|standing| water(standing).map_or("-".into(), |water| words.bare_depth(water.depth()))),
         ),
         (
+            format!("pond. {}", words.small_unit()),
+            true,
+            column(&|standing| ponding_head(checks, area, standing, words)),
+        ),
+        (
             format!("load {}", words.load_unit()),
             true,
             column(&|standing| water(standing).map_or("-".into(), |water| words.bare_load(water.load))),
         ),
-        (
-            "util.".into(),
-            true,
-            column(&|standing| {
-                standing.governing.map_or("overwhelmed".into(), |governing| format!("{:.3}", governing.utilisation))
-            }),
-        ),
+        ("util.".into(), true, column(&|standing| utilisation(standing))),
         ("case".into(), false, column(&|standing| checks.roof.cases[standing.case].name.clone())),
         (
             format!("may rise {}", words.small_unit()),
@@ -181,10 +192,29 @@ fn table(checks: &Checks<'_, '_>, area: usize, checked: &[&Checked<'_>], words: 
     if checks.roof.cases.len() == 1 {
         columns.retain(|(head, _, _)| head != "case");
     }
+    if !checks.roof.situation(area, 0).ponding.grows() {
+        columns.retain(|(head, _, _)| !head.starts_with("pond."));
+    }
     if rows().all(|(_, _, standing)| standing.cost.is_none()) {
         columns.retain(|(head, _, _)| head != "cost");
     }
     Table::of(columns)
+}
+
+/// The ponding head of a layout in its governing case.
+fn ponding_head(checks: &Checks<'_, '_>, area: usize, standing: &Ranked<'_>, words: Words) -> String {
+    let situation = checks.roof.situation(area, standing.case);
+    let water = standing.states[standing.case].water.filter(|_| !situation.ponding.is_unstable());
+    water.map_or("-".into(), |water| words.bare_depth(situation.ponding_head(water.level)))
+}
+
+/// How much of its limit a layout uses in its governing case.
+fn utilisation(standing: &Ranked<'_>) -> String {
+    match standing.governing {
+        None => "overwhelmed".into(),
+        Some(governing) if governing.utilisation.is_infinite() => "unstable".into(),
+        Some(governing) => format!("{:.3}", governing.utilisation),
+    }
 }
 
 /// How much higher the sills could be, all of them together.
@@ -207,6 +237,7 @@ pub(super) fn failing_in_words(roof: &Roof, checked: &Checked<'_>, failing: &Fai
         Failing::Limit { case } => {
             let situation = roof.situation(area, case);
             match checked.standing.states[case].water {
+                Some(_) if situation.ponding.is_unstable() => format!("the roof is unstable in {}", case_named(case)),
                 None => format!(
                     "it does not carry {} in {}: its tables are at their end",
                     words.flow(situation.demand),
@@ -278,7 +309,8 @@ fn up_the_slope(roof: &Roof, checked: &Checked<'_>, words: Words) -> Option<Stri
     let area = &roof.areas[checked.given.area];
     let rise = area.surface.rise?;
     let water = checked.standing.states[checked.standing.case].water?;
-    let ponding = area.ponding_head.unwrap_or(Length::ZERO);
+    let situation = roof.situation(checked.given.area, checked.standing.case);
+    let ponding = Some(situation.ponding_head(water.level)).filter(|_| !situation.ponding.is_unstable())?;
     let load = |at: Length| {
         let depth = rise.depth(water.level, at);
         words.load(if depth > Length::ZERO { crate::roof::load_of(depth + ponding) } else { Load::ZERO })
@@ -348,8 +380,13 @@ fn rows(checks: &Checks<'_, '_>) -> String {
                 words.depth_down(placed.to).replace(',', ""),
                 checks.roof.cases[standing.case].name.clone(),
                 length(water.map(|water| water.depth())),
-                water.map_or(String::new(), |water| plain(words.in_load_unit(water.load), 4)),
-                standing.governing.map_or("overwhelmed".into(), |governing| plain(governing.utilisation, 4)),
+                water
+                    .filter(|water| water.load.pa().is_finite())
+                    .map_or(String::new(), |water| plain(words.in_load_unit(water.load), 4)),
+                standing
+                    .governing
+                    .filter(|governing| governing.utilisation.is_finite())
+                    .map_or_else(|| utilisation(standing), |governing| plain(governing.utilisation, 4)),
                 why.join("; "),
             ]);
         }
@@ -370,6 +407,9 @@ struct Document<'a> {
 struct OfArea<'a> {
     name: &'a str,
     demand_m3_s: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    ponding: Option<ponding::OfArea>,
+    framing_analysis: Vec<String>,
     layouts: Vec<OfLayout<'a>>,
     #[serde(skip_serializing_if = "Option::is_none")]
     best: Option<OfBest<'a>>,
@@ -387,6 +427,8 @@ struct OfLayout<'a> {
     fails: Vec<String>,
     #[serde(skip_serializing_if = "Option::is_none")]
     sensitivity: Option<OfSensitivity<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    storage: Option<storage::OfLayout<'a>>,
 }
 
 #[derive(Serialize)]
@@ -416,7 +458,7 @@ struct OfBest<'a> {
 fn document<'a>(checks: &Checks<'a, '_>) -> String {
     let words = Words(checks.roof.system);
     let roof = checks.roof;
-    let layout = |(place, checked): (usize, &'a Checked<'_>)| {
+    let layout = |place: usize, checked: &'a Checked<'_>| {
         let (area, standing) = (checked.given.area, &checked.standing);
         let failing = |failing| failing_in_words(roof, checked, failing, words);
         OfLayout {
@@ -429,6 +471,7 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
             sills_could_rise_m: checked.passes().then(|| window_left(standing).m()),
             fails: checked.failings.iter().map(failing).collect(),
             sensitivity: checks.sensitivities.map(|(found, _)| of_sensitivity(roof, &found[place])),
+            storage: checks.storage.map(|stored| storage::of_layout(roof, stored, checks.routed(place))),
         }
     };
     let best = |area: usize, best: &'a Ranked<'_>| OfBest {
@@ -440,11 +483,13 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
     let told = checks.told();
     let mut by_area: Vec<Vec<OfLayout<'a>>> = roof.areas.iter().map(|_| Vec::new()).collect();
     for (place, checked) in checks.checked.iter().enumerate() {
-        by_area[checked.given.area].push(layout((place, checked)));
+        by_area[checked.given.area].push(layout(place, checked));
     }
     let area = |&area: &usize| OfArea {
         name: &roof.areas[area].name,
         demand_m3_s: roof.demands[area].m3_per_s(),
+        ponding: ponding::of_area(&roof.areas[area]),
+        framing_analysis: ponding::reasons(&roof.areas[area], words),
         layouts: std::mem::take(&mut by_area[area]),
         best: checks.best_of(area).map(|found| best(area, found)),
     };

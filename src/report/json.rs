@@ -11,7 +11,7 @@ use crate::search::{Answer, Fitted, Least, Measured, Opened, Opening, Outcome, P
 use crate::units::{Length, Money};
 
 use super::words::{self, Words};
-use super::{Asked, Sized, notes, ranking, reasons};
+use super::{Asked, Sized, notes, ponding, ranking, reasons};
 
 mod front;
 
@@ -54,6 +54,9 @@ struct Area<'a> {
     cures_nothing: Vec<&'static str>,
     #[serde(skip_serializing_if = "Option::is_none")]
     stiffened: Option<Stiffened<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    ponding: Option<ponding::OfArea>,
+    framing_analysis: Vec<String>,
     layouts: Vec<Layout<'a>>,
     #[serde(skip_serializing_if = "Option::is_none")]
     front: Option<Vec<front::Row<'a>>>,
@@ -188,6 +191,7 @@ pub(super) struct Case<'a> {
     water_depth_m: Option<f64>,
     far_end_level_m: Option<f64>,
     deepest_m: Option<f64>,
+    ponding_head_m: Option<f64>,
     load_pa: Option<f64>,
     utilisation: Option<f64>,
     groups: Vec<GroupState>,
@@ -315,6 +319,8 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
         binds: opened.filter(|_| !found.is_empty()).map(found_cures),
         cures_nothing: cures
             .map_or(Vec::new(), |opened| opened.useless.iter().map(|&change| super::cures::amount(change).0).collect()),
+        ponding: ponding::of_area(&sized.roof.areas[answer.area]),
+        framing_analysis: ponding::reasons(&sized.roof.areas[answer.area], words),
         layouts: layouts.collect(),
         front: sized
             .front_of(answer.area)
@@ -411,6 +417,7 @@ pub(super) fn cases<'a>(roof: &'a Roof, area: usize, ranked: &Ranked<'_>) -> Vec
             water_depth_m: state.water.map(|water| water.level.m()),
             far_end_level_m: state.water.and_then(|water| water.reach).map(|reach| reach.far_level.m()),
             deepest_m: state.water.map(|water| water.depth().m()),
+            ponding_head_m: state.water.map(|water| roof.situation(area, index).ponding_head(water.level).m()),
             load_pa: state.water.map(|water| water.load.pa()),
             utilisation: state.water.map(|water| water.governing.utilisation),
             groups: state

@@ -277,22 +277,8 @@ fn names<'a>(told: &Told<'a, '_>, wanted: impl Fn(&crate::roof::Catchment) -> bo
 }
 
 fn structure(told: &Told<'_, '_>, lines: &mut Vec<String>) {
-    let without =
-        names(told, |area| area.ponding_head.is_none() && area.limits.iter().any(|limits| limits.load.is_some()));
-    if !without.is_empty() {
-        lines.push(format!(
-            "No ponding head is given for {}: a roof that sags under water gathers more. On slopes under 1/4 in/ft (2 %) and \
-             flexible bays the framing must be checked for ponding.",
-            list(&without)
-        ));
-    }
-    let with = names(told, |area| area.ponding_head.is_some());
-    if !with.is_empty() {
-        lines.push(format!(
-            "The ponding head of {} is a fixed figure: it holds only up to the load it was found for.",
-            list(&with)
-        ));
-    }
+    let areas: Vec<_> = told.areas.iter().map(|&area| &told.roof.areas[area]).collect();
+    lines.extend(super::ponding::cautions(&areas, Words(told.roof.system)));
     let walls = names(told, |area| area.wall == Area::ZERO);
     if !walls.is_empty() {
         lines.push(format!(

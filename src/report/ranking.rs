@@ -8,7 +8,7 @@ use crate::units::{Area, Length, Load};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Sized, cures, front, measure, notes, plan, reasons, work};
+use super::{Sized, cures, front, measure, notes, plan, ponding, reasons, work};
 
 /// The mark behind a layout that leaves the published range of its law.
 const BEYOND: &str = "\u{2020}";
@@ -184,7 +184,6 @@ fn demand_in_words(roof: &Roof, area: usize, words: Words) -> String {
 /// The limits in effect, case by case where they differ.
 fn limit_in_words(roof: &Roof, area: usize, words: Words) -> String {
     let catchment = &roof.areas[area];
-    let ponding = catchment.ponding_head.unwrap_or(Length::ZERO);
     let water = |limits: Limits| {
         let level = roof.situation(area, 0);
         let level = crate::roof::Situation { limits, ..level };
@@ -210,8 +209,8 @@ fn limit_in_words(roof: &Roof, area: usize, words: Words) -> String {
             text += &format!("; in {}: {}", list(&alike), water(*limits));
         }
     }
-    if ponding > Length::ZERO {
-        text += &format!("; a ponding head of {} counts in the load", words.size(ponding));
+    if let Some(counted) = ponding::counted(catchment, words) {
+        text += &format!("; {counted}");
     }
     if let Some(height) = catchment.parapet.height {
         text += &format!("; the parapet's top at {}", words.size(height));
@@ -266,6 +265,11 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
         }),
         column(format!("far end {}", words.small_unit()), true, "level at the far end", &|layout| {
             water(layout).and_then(|water| water.reach).map_or("-".into(), |reach| words.bare_depth(reach.far_level))
+        }),
+        column(format!("pond. {}", words.small_unit()), true, "ponding head", &|layout| {
+            let situation = sized.roof.situation(area, layout.case);
+            let grows = water(layout).filter(|_| situation.ponding.grows());
+            grows.map_or("-".into(), |water| words.bare_depth(situation.ponding_head(water.level)))
         }),
         column(format!("load {}", words.load_unit()), true, "load", &|layout| {
             water(layout).map_or("-".into(), |water| words.bare_load(water.load))
@@ -363,6 +367,9 @@ fn backing_up(roof: &Roof, layouts: &[Named<'_, '_>], words: Words) -> Vec<Strin
 /// One line for each layout: its level under the laws of a thick wall, and whether that breaks a limit.
 pub(super) fn thick_walls(roof: &Roof, area: usize, layouts: &[Named<'_, '_>], words: Words) -> Vec<String> {
     let Some(thickness) = roof.areas[area].parapet.thickness else { return Vec::new() };
+    if roof.areas[area].ponding.is_some_and(|ponding| ponding.is_unstable()) {
+        return Vec::new();
+    }
     let wall = format!(" ({} parapet)", words.size(thickness));
     let one = |(index, under): (usize, &UnderLaw)| {
         let (wall, is) = if index == 0 { (wall.as_str(), "the level is ") } else { ("", "") };

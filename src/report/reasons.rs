@@ -29,6 +29,9 @@ pub(super) fn stopped(first: Option<&Ranked<'_>>, bound: Option<Least>, words: W
 pub(super) fn infeasible(sized: &Sized<'_, '_>, area: usize, why: &Why<'_>, words: Words) -> String {
     let roof = sized.roof;
     let name = &roof.areas[area].name;
+    if let (Why::Limits { .. }, Some(unstable)) = (why, super::ponding::unstable(&roof.areas[area])) {
+        return unstable;
+    }
     match why {
         Why::NothingStands { misfits } => {
             let mut told: Vec<String> = Vec::new();

@@ -217,6 +217,10 @@ impl Words {
 
     /// A computed load without its unit.
     pub(super) fn bare_load(self, load: Load) -> String {
+        // On a roof that is unstable under water no load is the last.
+        if load.pa().is_infinite() {
+            return "-".into();
+        }
         grouped(self.in_load_unit(load), self.load_decimals())
     }
 

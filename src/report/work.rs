@@ -6,11 +6,15 @@ use crate::roof::{Roof, Situation, demand};
 use crate::search::{Placed, Ranked};
 use crate::units::{Area, Length, System};
 
+use super::ponding;
 use super::words::{Words, grouped, trimmed};
 
 /// Each step with its arithmetic.
 pub(super) fn lines(roof: &Roof, area: usize, layout: &Ranked<'_>, words: Words) -> Vec<(String, String)> {
     let mut lines = vec![catching(roof, area, words)];
+    if let Some(found) = roof.areas[area].ponding.and_then(|ponding| ponding::work(&ponding, words)) {
+        lines.push(("ponding, k".into(), found));
+    }
     for (case, state) in layout.states.iter().enumerate() {
         let situation = roof.situation(area, case);
         let name = &situation.case.name;
@@ -45,6 +49,9 @@ pub(super) fn lines(roof: &Roof, area: usize, layout: &Ranked<'_>, words: Words)
             let far = format!("{} above the low point at its far end", fine(words, reach.far_level));
             lines
                 .push((format!("{name}: channel"), format!("spatially varied flow from that level: {far}, {deepest}")));
+        }
+        if let Some(head) = ponding::head_by_hand(&situation, water.level, words) {
+            lines.push((format!("{name}: ponding head"), head));
         }
         lines.push((format!("{name}: load"), load(&situation, water, words)));
     }
@@ -115,12 +122,8 @@ fn level_allowed(situation: &Situation<'_>, words: Words) -> String {
     let mut parts = Vec::new();
     if let Some(load) = situation.limits.load {
         let given = trimmed(words.in_load_unit(load), 3);
-        let less = if situation.ponding_head > Length::ZERO {
-            format!(" - {}", words.bare_size(situation.ponding_head))
-        } else {
-            String::new()
-        };
-        let level = crate::roof::depth_of(load) - situation.ponding_head;
+        let less = ponding::less(&situation.ponding, words);
+        let level = situation.ponding.depth_under(crate::roof::depth_of(load));
         parts.push(format!("{given} / {}{less} = {} by load", weight(words), fine(words, level)));
     }
     if let Some(depth) = situation.limits.depth {
@@ -273,11 +276,7 @@ fn rated(rating: &Rating, regime: Regime, head: Length, words: Words) -> String 
 
 fn load(situation: &Situation<'_>, water: Water, words: Words) -> String {
     let depth = words.fine_depth(water.depth());
-    let weighed = if situation.ponding_head > Length::ZERO {
-        format!("({depth} + {})", words.bare_size(situation.ponding_head))
-    } else {
-        depth
-    };
+    let weighed = ponding::weighed(&situation.ponding, &depth, words);
     let governing = water.governing;
     let limit = words.limit(governing.limit, situation.limits, situation.parapet);
     format!(

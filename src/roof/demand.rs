@@ -76,7 +76,7 @@ mod tests {
             roof_at_wall: Length::ZERO,
             surface: Surface::default(),
             receives: receives.iter().map(|&(from, share)| Receipt { from, share }).collect(),
-            ponding_head: None,
+            ponding: None,
             kinds: None,
             count: 1..=8,
             set_heights: None,

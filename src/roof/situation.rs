@@ -3,7 +3,7 @@
 use crate::units::{Flow, Length, Load};
 
 use super::channel::{Channel, Reach};
-use super::{Case, PASCALS_PER_METRE, depth_of, load_of};
+use super::{Case, PASCALS_PER_METRE, Ponding, depth_of, load_of};
 use crate::device::Site;
 
 /// The most that is allowed: a load, a depth, or both.
@@ -55,8 +55,8 @@ pub struct Situation<'r> {
     pub demand: Flow,
     /// What holds here.
     pub limits: Limits,
-    /// Extra depth from deflection, counted in the load alone.
-    pub ponding_head: Length,
+    /// What deflection adds to the water, counted in the load alone.
+    pub ponding: Ponding,
     /// Height of the parapet's top above the low point, where given.
     pub parapet: Option<Length>,
     /// What the flow of its devices depends on besides their dimensions.
@@ -82,15 +82,23 @@ impl Situation<'_> {
 
     /// Rain load at a level: unit weight times depth and ponding head.
     pub fn load(&self, level: Length) -> Load {
-        load_of(self.depth(level) + self.ponding_head)
+        load_of(self.ponding.weighed(self.depth(level)))
+    }
+
+    /// The ponding head at a level; infinite where the roof is unstable.
+    pub fn ponding_head(&self, level: Length) -> Length {
+        self.ponding.head(self.depth(level))
     }
 
     /// The highest level at which no limit is used beyond `utilisation`; at 1, the highest level allowed.
     ///
-    /// It may stand below the low point, where the ponding head alone uses up the load, or where a channel stands too deep
-    /// whatever its devices do.
+    /// It may stand below the low point, where the ponding head alone uses up the load, where the roof is unstable under
+    /// water, or where a channel stands too deep whatever its devices do.
     pub fn level_at(&self, utilisation: f64) -> Length {
-        let load = self.limits.load.map(|limit| depth_of(limit * utilisation) - self.ponding_head);
+        if self.ponding.is_unstable() {
+            return -NONE;
+        }
+        let load = self.limits.load.map(|limit| self.ponding.depth_under(depth_of(limit * utilisation)));
         let depth = self.limits.depth.map(|limit| limit * utilisation);
         let depth = load.into_iter().chain(depth).fold(NONE, Length::min);
         self.level_for(depth, self.parapet.map_or(NONE, |top| top * utilisation))
@@ -113,9 +121,11 @@ impl Situation<'_> {
     pub fn governing(&self, level: Length) -> Governing {
         let reach = self.reach(level);
         let (depth, top) = reach.map_or((level, level), |reach| (reach.deepest, reach.far_level.max(level)));
-        let weighed = PASCALS_PER_METRE * (depth + self.ponding_head).m();
+        let weighed = PASCALS_PER_METRE * self.ponding.weighed(depth).m();
+        // An unstable roof passes any load, whether or not one was given as its limit.
+        let unstable = self.ponding.is_unstable().then_some(f64::INFINITY);
         let uses = [
-            (LimitKind::Load, self.limits.load.map(|limit| weighed / limit.pa())),
+            (LimitKind::Load, unstable.or(self.limits.load.map(|limit| weighed / limit.pa()))),
             (LimitKind::Depth, self.limits.depth.map(|limit| depth / limit)),
             (LimitKind::Parapet, self.parapet.map(|parapet| top / parapet)),
         ];
@@ -141,7 +151,7 @@ mod tests {
             case,
             demand: Flow::gpm(100.0),
             limits: Limits { load: Some(Load::psf(26.0)), depth: Some(Length::inches(4.8)) },
-            ponding_head: Length::inches(0.4),
+            ponding: Ponding::Head(Length::inches(0.4)),
             parapet: Some(Length::inches(4.0)),
             site: Site::default(),
             channel: None,
@@ -166,7 +176,7 @@ mod tests {
         assert!(allowed < Length::from_m(0.14), "{allowed:?}");
         assert_relative_eq!(here.governing(allowed).utilisation, 1.0, max_relative = 1e-9);
         assert_relative_eq!(here.depth(allowed).m(), 0.16, max_relative = 1e-9);
-        assert_relative_eq!(here.load(allowed).to_psf(), load_of(Length::from_m(0.16) + here.ponding_head).to_psf());
+        assert_relative_eq!(here.load(allowed).to_psf(), load_of(Length::from_m(0.16) + Length::inches(0.4)).to_psf());
     }
 
     /// 26 / 5.2 - 0.4 = 4.6 in by load, 4.8 in by depth, 4 in to the parapet's top. Worked by hand.
@@ -183,5 +193,22 @@ mod tests {
         assert_relative_eq!(governing.utilisation, 1.0, max_relative = 1e-12);
         here.limits.load = None;
         assert_relative_eq!(here.level_at(0.5).to_inches(), 2.4, max_relative = 1e-12);
+    }
+
+    /// 26 psf on a roof that sags 0.02 in/psf: 26 / 5.2 x (1 - 0.104) = 4.48 in of water, and 0.52 in of ponding head. By hand.
+    #[test]
+    fn a_flexible_roof_allows_less_water() {
+        let case = Case::as_designed();
+        let mut here = situation(&case);
+        here.parapet = None;
+        here.ponding = Ponding::Flexible("0.02 in/psf".parse().unwrap());
+        let allowed = here.allowable_level();
+        assert_relative_eq!(allowed.to_inches(), 4.48, max_relative = 1e-9);
+        assert_relative_eq!(here.ponding_head(allowed).to_inches(), 0.52, max_relative = 1e-9);
+        assert_relative_eq!(here.load(allowed).to_psf(), 26.0, max_relative = 1e-9);
+        here.ponding = Ponding::Flexible("0.2 in/psf".parse().unwrap());
+        here.limits.load = None;
+        assert!(here.allowable_level() < Length::ZERO);
+        assert_eq!(here.governing(Length::inches(1.0)).utilisation, f64::INFINITY);
     }
 }

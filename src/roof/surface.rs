@@ -1,6 +1,6 @@
 //! How the surface of an area lies: the elevation of its low point, and its slope from there up to the wall.
 
-use crate::units::Length;
+use crate::units::{Area, Length, Volume};
 
 /// The surface of an area.
 #[derive(Clone, Copy, Debug, Default, PartialEq)]
@@ -37,6 +37,34 @@ impl Rise {
     }
 }
 
+impl Surface {
+    /// Water on an area under a level: a wedge on an even slope, else as if the roof were level.
+    pub fn volume(&self, area: Area, level: Length) -> Volume {
+        let level = level.max(Length::ZERO).m();
+        let mean = match self.wall() {
+            Some(wall) if level < wall => level * level / (2.0 * wall),
+            Some(wall) => level - wall / 2.0,
+            None => level,
+        };
+        Volume::from_m3(area.m2() * mean)
+    }
+
+    /// The level under which so much water stands on an area.
+    pub fn level(&self, area: Area, stored: Volume) -> Length {
+        let mean = (stored.m3() / area.m2()).max(0.0);
+        Length::from_m(match self.wall() {
+            Some(wall) if mean < wall / 2.0 => (2.0 * wall * mean).sqrt(),
+            Some(wall) => mean + wall / 2.0,
+            None => mean,
+        })
+    }
+
+    /// Height of the surface at the wall, m; none where it is level or not given.
+    fn wall(&self) -> Option<f64> {
+        self.rise.map(|rise| rise.slope * rise.distance.m()).filter(|&wall| wall > 0.0)
+    }
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -52,5 +80,18 @@ mod tests {
         assert_relative_eq!(rise.depth(level, Length::inches(96.0)).to_inches(), 2.0, max_relative = 1e-12);
         assert_eq!(rise.depth(level, Length::inches(200.0)), Length::ZERO);
         assert_eq!(rise.extent(Length::inches(9.0)), rise.distance);
+    }
+
+    /// 100 m2 that rise 0.2 m to the wall: 0.1 m of level holds 100 x 0.1^2 / 0.4 = 2.5 m3, 0.3 m holds 100 x (0.3 - 0.1) = 20 m3.
+    /// By hand.
+    #[test]
+    fn a_wedge_holds_less_than_a_level_roof() {
+        let rise = Rise { slope: 0.02, distance: Length::from_m(10.0) };
+        let (wedge, area) = (Surface { low_point: None, rise: Some(rise) }, Area::from_m2(100.0));
+        for (level, stored) in [(0.1, 2.5), (0.2, 10.0), (0.3, 20.0)] {
+            assert_relative_eq!(wedge.volume(area, Length::from_m(level)).m3(), stored, max_relative = 1e-12);
+            assert_relative_eq!(wedge.level(area, Volume::from_m3(stored)).m(), level, max_relative = 1e-12);
+            assert_relative_eq!(Surface::default().volume(area, Length::from_m(level)).m3(), 100.0 * level);
+        }
     }
 }

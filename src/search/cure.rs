@@ -152,6 +152,10 @@ impl Scale {
 
 /// The least single changes that cure an area without a layout.
 pub fn cures(roof: &Roof, options: &Options, area: usize) -> Cures {
+    if roof.areas[area].ponding.is_some_and(|ponding| ponding.is_unstable()) {
+        // No level is allowed whatever is let out.
+        return Cures { found: Vec::new(), useless: Vec::new(), stopped: false };
+    }
     let asked = Changed { roof: alone(roof, area), options: Options { keep: 1, ..options.clone() } };
     let scales = scales(&asked.roof, &asked.options);
     asked.tried(scales, |scale| scale.least(scale.steps, |change| asked.with(change, any)))

@@ -150,7 +150,7 @@ fn unbeaten<'r>(problem: &Problem<'r>, kept: &Kept) -> Unbeaten<'r> {
     Unbeaten {
         groups: at_lowest(problem, &kept.groups),
         cost: is_priced(problem).then(|| Money::from_millionths(kept.sums.cost)),
-        load: load_of(kept.worst.depth + problem.situations[kept.worst.case].ponding_head),
+        load: load_of(problem.situations[kept.worst.case].ponding.weighed(kept.worst.depth)),
         case: kept.worst.case,
         count: u32::try_from(kept.sums.count).unwrap_or(u32::MAX),
         width: Length::from_nm(kept.sums.width),

@@ -7,8 +7,8 @@ use std::fmt;
 use std::str::FromStr;
 
 use super::{
-    Area, CUBIC_METRES_PER_GALLON, Flow, Intensity, Length, Load, METRES_PER_FOOT, METRES_PER_INCH, Money,
-    PASCALS_PER_PSF, ReturnPeriod, Time,
+    Area, CUBIC_METRES_PER_GALLON, DeckInertia, Flexibility, Flow, Inertia, Intensity, Length, Load, METRES_PER_FOOT,
+    METRES_PER_INCH, Money, PASCALS_PER_PSF, ReturnPeriod, Time,
 };
 
 /// What a quantity measures.
@@ -30,6 +30,12 @@ pub enum Dimension {
     ReturnPeriod,
     /// Falls, as a ratio.
     Slope,
+    /// Sag for each load on a roof.
+    Flexibility,
+    /// Second moments of area of members.
+    Inertia,
+    /// Second moments of area of decks, for each unit of their width.
+    DeckInertia,
 }
 
 /// One unit: the spellings that pass, the first of them the one that messages show, and its size in SI.
@@ -78,6 +84,25 @@ const TIMES: &[Unit] = &[
 ];
 const SLOPES: &[Unit] =
     &[(&["in/ft"], 1.0 / 12.0), (&["mm/m"], 0.001), (&["%", "percent"], 0.01), (&["ft/ft"], 1.0), (&["m/m"], 1.0)];
+const FLEXIBILITIES: &[Unit] = &[
+    (&["in/psf"], METRES_PER_INCH / PASCALS_PER_PSF),
+    (&["mm/kPa", "mm/(kN/m2)", "mm/(kN/m\u{b2})"], 1e-6),
+    (&["m/Pa"], 1.0),
+];
+const INERTIAS: &[Unit] = &[
+    (&["in4", "in^4", "in\u{2074}"], METRES_PER_INCH * METRES_PER_INCH * METRES_PER_INCH * METRES_PER_INCH),
+    (&["mm4", "mm^4", "mm\u{2074}"], 1e-12),
+    (&["cm4", "cm^4", "cm\u{2074}"], 1e-8),
+    (&["m4", "m^4", "m\u{2074}"], 1.0),
+];
+const DECK_INERTIAS: &[Unit] = &[
+    (
+        &["in4/ft", "in^4/ft", "in\u{2074}/ft"],
+        METRES_PER_INCH * METRES_PER_INCH * METRES_PER_INCH * METRES_PER_INCH / METRES_PER_FOOT,
+    ),
+    (&["mm4/m", "mm^4/m", "mm\u{2074}/m"], 1e-12),
+    (&["cm4/m", "cm^4/m", "cm\u{2074}/m"], 1e-8),
+];
 const RETURN_PERIODS: &[Unit] = &[(&["yr", "year", "years", "yrs", "y"], 1.0)];
 
 /// Most that a quantity may be, in SI units: beyond it lengths would leave their grid of nanometres.
@@ -86,7 +111,7 @@ const MOST: f64 = 1e9;
 const MOST_PRICE: f64 = 1e15;
 
 impl Dimension {
-    const ALL: [Self; 8] = [
+    const ALL: [Self; 11] = [
         Self::Length,
         Self::Area,
         Self::Flow,
@@ -95,6 +120,9 @@ impl Dimension {
         Self::Time,
         Self::ReturnPeriod,
         Self::Slope,
+        Self::Flexibility,
+        Self::Inertia,
+        Self::DeckInertia,
     ];
 
     fn units(self) -> &'static [Unit] {
@@ -107,6 +135,9 @@ impl Dimension {
             Self::Time => TIMES,
             Self::ReturnPeriod => RETURN_PERIODS,
             Self::Slope => SLOPES,
+            Self::Flexibility => FLEXIBILITIES,
+            Self::Inertia => INERTIAS,
+            Self::DeckInertia => DECK_INERTIAS,
         }
     }
 
@@ -121,6 +152,9 @@ impl Dimension {
             Self::Time => "15 min",
             Self::ReturnPeriod => "100 yr",
             Self::Slope => "0.25 in/ft",
+            Self::Flexibility => "0.02 in/psf",
+            Self::Inertia => "300 in4",
+            Self::DeckInertia => "0.2 in4/ft",
         }
     }
 
@@ -135,6 +169,9 @@ impl Dimension {
             Self::Time => "a duration",
             Self::ReturnPeriod => "a return period",
             Self::Slope => "a slope",
+            Self::Flexibility => "a flexibility",
+            Self::Inertia => "a moment of inertia",
+            Self::DeckInertia => "a moment of inertia of a deck",
         }
     }
 
@@ -459,6 +496,9 @@ from_text! {
     Load: Load::from_pa,
     Time: Time::from_s,
     ReturnPeriod: ReturnPeriod::from_years,
+    Flexibility: Flexibility::from_m_per_pa,
+    Inertia: Inertia::from_m4,
+    DeckInertia: DeckInertia::from_m4_per_m,
 }
 
 impl FromStr for Length {
@@ -507,6 +547,11 @@ mod tests {
         }
         assert_relative_eq!(Dimension::Time.read("0.25 h").unwrap(), Dimension::Time.read("15 min").unwrap());
         assert_relative_eq!(Dimension::ReturnPeriod.read("100 yr").unwrap(), 100.0);
+        // 0.0254 m over 47.88 Pa; a beam of 1500 in4 is one of 624.3e6 mm4. Unit arithmetic.
+        assert_relative_eq!(Dimension::Flexibility.read("0.02 in/psf").unwrap(), 1.060_98e-5, max_relative = 1e-5);
+        assert_relative_eq!(Dimension::Flexibility.read("10.6098 mm/kPa").unwrap(), 1.060_98e-5, max_relative = 1e-9);
+        assert_relative_eq!(Dimension::Inertia.read("1500 in4").unwrap(), 624.347e-6, max_relative = 1e-5);
+        assert_relative_eq!(Dimension::DeckInertia.read("0.2 in4/ft").unwrap(), 2.731e-7, max_relative = 1e-3);
     }
 
     /// 100 mm/h is 277.78 l/(s ha) and 1.667 mm/min. 1 ha is 1e4 m2, 1 l is 1e-3 m3: unit arithmetic.

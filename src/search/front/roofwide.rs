@@ -190,9 +190,9 @@ struct Choice {
     place: u32,
 }
 
-/// Depth and ponding head of an area's layout in its worst case, nanometres: its load, comparable between areas.
+/// The water of an area's layout, ponding head included, in its worst case, nanometres: its load, comparable between areas.
 fn load(front: &Front<'_>, place: usize) -> i64 {
-    front.kept[place].worst.depth.nm() + front.problem.situations[0].ponding_head.nm()
+    front.problem.situations[0].ponding.weighed(front.kept[place].worst.depth.on_grid()).nm()
 }
 
 /// The layouts of an area that are not beaten once loads under `floor` are raised to it.
