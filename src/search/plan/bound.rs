@@ -17,7 +17,7 @@ pub(super) struct Bound {
 /// Sizes with which the first steps are taken.
 const CORE: usize = 40;
 /// Steps with those, and with all.
-const STEPS: (usize, usize) = (24, 6);
+const STEPS: (usize, usize) = (16, 4);
 
 /// The bound, raised from where the best set known stands.
 pub(super) fn raised(regrets: &Regrets, price: f64, most: usize, best: &SizeSet) -> Bound {

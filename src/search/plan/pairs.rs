@@ -54,6 +54,7 @@ fn singles(field: &Field<'_>, size: usize) -> Vec<f64> {
         let Some(index) = alike.candidate(size) else { continue };
         let price = alike.problem.candidates[index].price;
         let mut ladder = Ladder::new(alike, None, index);
+        ladder.begin(0);
         for (cost, area) in mine.iter_mut().zip(&alike.areas) {
             let Some(count) = ladder.reach(area) else { break };
             if fits(&alike.problem, area.edge, &[(index, count)]) {
@@ -100,7 +101,7 @@ impl<'f, 'r> Pair<'f, 'r> {
         };
         let mut pair = Self { alike, less, greater, end: problem.most };
         if carries_more(table, greater, less) && pair.may_change_places() {
-            pair.end = (1..problem.most).find(|&count| pair.is_replaced(table, count)).unwrap_or(problem.most);
+            pair.end = pair.replaced_from(table).unwrap_or(problem.most);
         }
         pair
     }
@@ -112,29 +113,35 @@ impl<'f, 'r> Pair<'f, 'r> {
         problem.least <= 2 && blocked <= Some(1) && problem.asked.freeboard.is_none()
     }
 
-    /// Whether some of the greater, no dearer, carry as much as so many of the less and take no more edge.
-    fn is_replaced(&self, table: &Table, count: u32) -> bool {
+    /// The least count of the less for which some of the greater, no dearer, carry as much and take no more edge.
+    fn replaced_from(&self, table: &Table) -> Option<u32> {
+        let problem = &self.alike.problem;
+        let (less, greater) = (&problem.candidates[self.less], &problem.candidates[self.greater]);
+        // How many of the greater carry as much as one of the less.
         let flows = table.of(self.less).iter().zip(table.of(self.greater));
-        let needed = flows.map(|(less, greater)| f64::from(count) * less / greater).fold(1.0, f64::max);
-        let needed = rounded_up(needed * (1.0 + SLACK));
-        if needed > count {
-            return false;
+        let share = flows.map(|(less, greater)| less / greater).fold(0.0, f64::max) * (1.0 + SLACK);
+        if share * greater.price as f64 * (1.0 - SLACK) > less.price as f64 {
+            return None;
         }
-        let (less, greater) = (&self.alike.problem.candidates[self.less], &self.alike.problem.candidates[self.greater]);
-        let (needed, count) = (i64::from(needed), i64::from(count));
-        let takes_no_more_edge = !greater.at_edge || (less.at_edge && needed * greater.width <= count * less.width);
-        needed * greater.price <= count * less.price && (!self.alike.is_edge_limited() || takes_no_more_edge)
+        let edge = self.alike.is_edge_limited() && greater.at_edge;
+        (1..problem.most).find(|&count| {
+            let needed = rounded_up(f64::from(count) * share).max(1);
+            let (needed, of_less) = (i64::from(needed), i64::from(count));
+            let takes_no_more_edge = !edge || (less.at_edge && needed * greater.width <= of_less * less.width);
+            needed <= of_less && needed * greater.price <= of_less * less.price && takes_no_more_edge
+        })
     }
 
     fn lower(&self, row: &mut [f64]) {
         let problem = &self.alike.problem;
         let (less, greater) = (problem.candidates[self.less].price, problem.candidates[self.greater].price);
+        let mut ladder = Ladder::new(self.alike, Some(self.less), self.greater);
         for count in 1..self.end {
             let least = (less * i64::from(count) + greater) as f64;
             if row.iter().all(|&cost| cost <= least) {
                 break;
             }
-            let mut ladder = Ladder::new(self.alike, Some((self.less, count)), self.greater);
+            ladder.begin(count);
             for (cost, area) in row.iter_mut().zip(&self.alike.areas) {
                 if *cost <= least {
                     continue;
@@ -172,7 +179,8 @@ fn fits(problem: &Problem<'_>, edge: Option<i64>, groups: &[(usize, u32)]) -> bo
 struct Ladder<'f, 'r> {
     problem: &'f Problem<'r>,
     table: &'f Table,
-    beside: Option<(usize, u32)>,
+    /// The other size and its count; where there is none, the size itself and nothing.
+    beside: (usize, u32),
     index: usize,
     count: u32,
     most: u32,
@@ -181,18 +189,18 @@ struct Ladder<'f, 'r> {
 }
 
 impl<'f, 'r> Ladder<'f, 'r> {
-    fn new(alike: &'f Alike<'r>, beside: Option<(usize, u32)>, index: usize) -> Self {
-        let problem = &alike.problem;
-        let table = match beside {
-            Some((other, _)) => alike.table(&[other, index]),
-            None => alike.table(&[index]),
-        };
-        let there = beside.map_or(0, |(_, count)| count);
-        let count = problem.least.saturating_sub(there).max(1);
-        let most = problem.most.saturating_sub(there);
-        let mut ladder = Self { problem, table, beside, index, count, most, capacities: Vec::new() };
-        ladder.add_up();
-        ladder
+    fn new(alike: &'f Alike<'r>, beside: Option<usize>, index: usize) -> Self {
+        let (problem, other) = (&alike.problem, beside.unwrap_or(index));
+        let table = alike.table(&[other, index]);
+        Self { problem, table, beside: (other, 0), index, count: 0, most: 0, capacities: Vec::new() }
+    }
+
+    /// Begins from the bottom, beside so many of the other.
+    fn begin(&mut self, there: u32) {
+        self.beside.1 = there;
+        self.count = self.problem.least.saturating_sub(there).max(1);
+        self.most = self.problem.most.saturating_sub(there);
+        self.add_up();
     }
 
     /// The least count that holds every case of an area; none where that is more than may stand.
@@ -208,7 +216,7 @@ impl<'f, 'r> Ladder<'f, 'r> {
     }
 
     fn add_up(&mut self) {
-        let mut groups = [self.beside.unwrap_or((self.index, 0)), (self.index, self.count)];
+        let mut groups = [self.beside, (self.index, self.count)];
         groups.sort_unstable();
         self.capacities.clear();
         self.capacities.extend(self.problem.situations.iter().enumerate().map(|(case, situation)| {
@@ -219,7 +227,7 @@ impl<'f, 'r> Ladder<'f, 'r> {
 
     /// A count that the least is not under: the blocked devices are the one that carries most and others.
     fn least_for(&self, area: &Asking) -> u32 {
-        let (other, there) = self.beside.unwrap_or((self.index, 0));
+        let (other, there) = self.beside;
         let mut least = 1;
         for (case, (situation, &demand)) in self.problem.situations.iter().zip(&area.demands).enumerate() {
             let (one, beside) = (self.table.of(self.index)[case], self.table.of(other)[case]);
