@@ -14,11 +14,13 @@ pub mod demand;
 mod given;
 pub mod layout;
 mod pool;
+mod rainfall;
 mod situation;
 mod surface;
 
 pub use given::{Given, GivenGroup};
 pub use pool::{MOST_GROUPS, MOST_OUTLETS, Outlet, Pool, Share, working, working_capacity};
+pub use rainfall::{Outside, Rainfall, RainfallFault, Reading, Recurrence};
 pub use situation::{Governing, LimitKind, Limits, Situation};
 pub use surface::{Rise, Surface};
 
