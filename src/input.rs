@@ -16,12 +16,14 @@ mod grid;
 mod height;
 mod layout;
 mod project;
+mod rainfall;
 mod rating;
 mod section;
 mod setting;
 mod sheet;
 mod shipped;
 mod start;
+mod storm;
 mod structure;
 
 pub use defaults::{DEFAULTS, Default};

@@ -20,6 +20,7 @@ mod ranking;
 mod rate;
 mod reasons;
 mod schedule;
+mod storm;
 mod structure;
 mod tradeoff;
 mod words;

@@ -5,6 +5,7 @@
 //! its devices see one level. Steady flow: no credit is taken for water stored on the roof, nor for the primary drains.
 
 use std::ops::RangeInclusive;
+use std::sync::Arc;
 
 use crate::device::{Choice, Kind, Law, Site, Size};
 use crate::units::{Area, Flow, Intensity, Length, Load, ReturnPeriod, System, Time};
@@ -44,7 +45,7 @@ pub fn depth_of(load: Load) -> Length {
 /// The design rain.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Storm {
-    /// Intensity that every area is sized for.
+    /// Intensity that every area is sized for, climate counted in.
     pub intensity: Intensity,
     /// Duration over which it is that intense, where stated.
     pub duration: Option<Time>,
@@ -52,6 +53,54 @@ pub struct Storm {
     pub return_period: Option<ReturnPeriod>,
     /// Where the figure comes from, where stated.
     pub source: Option<String>,
+    /// Factor for climate that every intensity is multiplied by.
+    pub climate: f64,
+    /// The rainfall table, where there is one.
+    pub rainfall: Option<Arc<Rainfall>>,
+    /// Where in the table the intensity was read; without the climate.
+    pub reading: Option<Reading>,
+    /// Storms that every case is held under as well.
+    pub further: Vec<Further>,
+}
+
+impl Default for Storm {
+    /// No rain at all.
+    fn default() -> Self {
+        Self {
+            intensity: Intensity::ZERO,
+            duration: None,
+            return_period: None,
+            source: None,
+            climate: 1.0,
+            rainfall: None,
+            reading: None,
+            further: Vec::new(),
+        }
+    }
+}
+
+impl Storm {
+    /// How often an intensity, climate counted in, is met or passed over the duration of this storm; none without a table.
+    pub fn recurrence(&self, intensity: Intensity) -> Option<Recurrence> {
+        self.rainfall.as_ref()?.recurrence(intensity * (1.0 / self.climate), self.duration?).ok()
+    }
+}
+
+/// A storm that every case is held under besides the design rain.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Further {
+    /// Its name.
+    pub name: String,
+    /// Its intensity, climate and its own factor counted in.
+    pub intensity: Intensity,
+    /// Duration over which it is that intense, where stated.
+    pub duration: Option<Time>,
+    /// How often it is met or passed, where stated.
+    pub return_period: Option<ReturnPeriod>,
+    /// Factor of its own on the intensity.
+    pub factor: f64,
+    /// Where in the table it was read; without climate and factor.
+    pub reading: Option<Reading>,
 }
 
 /// One situation that every layout must withstand. A case changes the design, never the area: all zero and one is "as
@@ -66,12 +115,14 @@ pub struct Case {
     pub sill_error: Length,
     /// What is lost off each side of a scupper's opening.
     pub opening_loss: Length,
-    /// Factor on the intensity.
+    /// Factor on the intensity of the design rain; under a further storm, that of the storm counted in.
     pub rain: f64,
     /// Factor on every device's flow.
     pub discharge: f64,
     /// The flow law of scuppers, in place of the project's choice.
     pub law: Option<Law>,
+    /// The further storm it is held under, by its place in [`Storm::further`]; none for the design rain.
+    pub storm: Option<usize>,
 }
 
 impl Case {
@@ -85,6 +136,7 @@ impl Case {
             rain: 1.0,
             discharge: 1.0,
             law: None,
+            storm: None,
         }
     }
 }

@@ -6,7 +6,7 @@ use std::ops::RangeInclusive;
 use crate::device::Kind;
 use crate::roof::demand::{self, Circle};
 use crate::roof::{Catchment, Limits, Parapet, Receipt, Rise, Roof, Storm, Surface};
-use crate::units::{Area, Dimension, Flow, Intensity, Length};
+use crate::units::{Area, Dimension, Flow, Length};
 
 use super::Assumed;
 use super::catalog::Offer;
@@ -504,7 +504,7 @@ fn blocked_under_count(
 /// Names areas that receive from one another in a circle, circle by circle; tells whether there are none.
 fn report_circles(project: &Section<'_>, given: &[Given<'_>], receipts: &[Vec<Option<Receipt>>]) -> bool {
     // Circles are looked for among areas that have nothing else: faults of other values do not hide them.
-    let dry = Storm { intensity: Intensity::ZERO, duration: None, return_period: None, source: None };
+    let dry = Storm::default();
     let mut areas: Vec<Catchment> =
         receipts.iter().map(|receives| without_size(receives.iter().flatten().copied().collect())).collect();
     let mut runs_one_way = true;

@@ -11,7 +11,7 @@ use crate::search::{Answer, Least, Opened, Opening, Outcome, Placed, Ranked, Und
 use crate::units::{Length, Money};
 
 use super::words::{self, Words};
-use super::{Asked, Sized, notes, ranking, reasons};
+use super::{Asked, Sized, notes, ranking, reasons, storm};
 
 #[derive(Serialize)]
 struct Document<'a> {
@@ -33,6 +33,11 @@ struct Storm<'a> {
     duration_s: Option<f64>,
     return_period_yr: Option<f64>,
     source: Option<&'a str>,
+    climate_factor: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    read: Option<storm::Read<'a>>,
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    storms: Vec<storm::Beside<'a>>,
 }
 
 #[derive(Serialize)]
@@ -195,6 +200,9 @@ pub(super) fn document(sized: &Sized<'_, '_>) -> String {
             duration_s: storm.duration.map(crate::units::Time::s),
             return_period_yr: storm.return_period.map(crate::units::ReturnPeriod::years),
             source: storm.source.as_deref(),
+            climate_factor: storm.climate,
+            read: storm::read(storm, storm.reading.as_ref()),
+            storms: storm::beside(storm),
         },
         areas: sized.answers.iter().map(|answer| area(sized, answer)).collect(),
         plan: plans.is_empty().not().then(|| plans.remove(0)),

@@ -8,6 +8,7 @@ use crate::roof::layout::GroupState;
 use crate::search::{Options, Ranked};
 use crate::units::{Area, Length, System};
 
+use super::storm;
 use super::words::{self, Words, list, ranked_by, trimmed};
 
 /// Excess of straight lines over logarithmic ones, as a part of the demand, from which it is told.
@@ -163,6 +164,7 @@ pub(super) fn assumptions(told: &Told<'_, '_>) -> Vec<String> {
             if told.options.fold { " Of layouts with the same number of each device the best is listed." } else { "" }
         ));
     }
+    lines.extend(storm::interpolated(&told.roof.storm));
     lines.push("In a window all groups rise together, each stopping at the top of its own range.".into());
     // What is asked of a search says nothing of layouts that were given.
     let concerns = |assumed: &&Assumed| told.searched || !assumed.default.key.starts_with("search.");
@@ -189,7 +191,7 @@ pub(super) fn cautions(told: &Told<'_, '_>) -> Vec<String> {
         "The limit is for rain alone: take dead load, equipment and ballast off the roof's capacity before it is given."
             .to_string(),
     ];
-    storm(told, &mut lines);
+    rain(told, &mut lines);
     structure(told, &mut lines);
     openings(told, &mut lines);
     cases(told, &mut lines);
@@ -207,7 +209,7 @@ pub(super) fn cautions(told: &Told<'_, '_>) -> Vec<String> {
     lines
 }
 
-fn storm(told: &Told<'_, '_>, lines: &mut Vec<String>) {
+fn rain(told: &Told<'_, '_>, lines: &mut Vec<String>) {
     let storm = &told.roof.storm;
     match storm.duration {
         None => lines.push(

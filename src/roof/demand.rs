@@ -61,7 +61,7 @@ mod tests {
 
     fn storm(inches_per_hour: &str) -> Storm {
         let intensity: Intensity = format!("{inches_per_hour} in/h").parse().unwrap();
-        Storm { intensity, duration: None, return_period: None, source: None }
+        Storm { intensity, ..Storm::default() }
     }
 
     fn area(roof_ft2: u32, wall_ft2: u32, receives: &[(usize, f64)]) -> Catchment {
