@@ -9,6 +9,7 @@ use crate::roof::Roof;
 use crate::search::{Answer, Opened, Opening, Options, PlanAsked, PlanAt, Plans, Structure, UnderLaw};
 use crate::units::{Flow, Length, Load, System};
 
+mod cascade;
 mod check;
 mod contents;
 mod cures;

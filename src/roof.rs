@@ -150,13 +150,44 @@ pub struct Parapet {
     pub thickness: Option<Length>,
 }
 
+/// What of another area an area receives.
+///
+/// All flow leaves an area by its primary drains, or, with these blocked, by its overflow; the same water never by both.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Passed {
+    /// Whatever leaves it, by either way.
+    #[default]
+    All,
+    /// What its overflow passes, with its primary drains blocked: then all its flow, else nothing. Its primary drains
+    /// discharge elsewhere.
+    Overflow,
+    /// What its primary drains pass while they work: at most all its flow. Its overflow discharges elsewhere.
+    Primary,
+}
+
+impl Passed {
+    /// Every value.
+    pub const EVERY: [Self; 3] = [Self::All, Self::Overflow, Self::Primary];
+
+    /// Its name in files.
+    pub fn name(self) -> &'static str {
+        match self {
+            Self::All => "all",
+            Self::Overflow => "overflow",
+            Self::Primary => "primary",
+        }
+    }
+}
+
 /// What an area receives from another.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Receipt {
     /// Index of the other area.
     pub from: usize,
-    /// The part of its demand that runs here.
+    /// The part of what is passed that runs here.
     pub share: f64,
+    /// Which of its ways out run here.
+    pub what: Passed,
 }
 
 /// A part of the roof with one low point, where water ponds at one level.
@@ -248,6 +279,11 @@ impl Roof {
             site: self.site(area, self.cases[case].law),
             channel: catchment.channel,
         }
+    }
+
+    /// What runs when the most that is possible at once arrives at an area.
+    pub fn at_once(&self, area: usize) -> demand::AtOnce {
+        demand::at_once(&self.storm, &self.areas, area)
     }
 
     /// One area in every case, in the order of the cases.

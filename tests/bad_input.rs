@@ -719,7 +719,7 @@ error: unknown key `shares` in an entry of `receives`
 38 | receives = [{ from = "north bay", shares = 0.25 }]
    |                                   ^^^^^^ not a key of this table
    |
-   = help: did you mean `share`? an entry of `receives` takes from or share
+   = help: did you mean `share`? an entry of `receives` takes from, share or what
 
 error: `height` is missing in a device of kind "closed scupper"
  --> devices.toml:1:1

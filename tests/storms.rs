@@ -1,11 +1,11 @@
-//! Rain: rainfall tables, factors for climate and further storms, through the whole program; every
+//! Rain and what runs on: rainfall tables, factors for climate, further storms and cascades, through the whole program; every
 //! fault of a table and of `[storm]`, its message whole.
 //!
 //! `SNAPSHOTS=overwrite` writes the messages anew; each is to be read before it is kept.
 #![expect(clippy::needless_raw_string_hashes, reason = "expected messages stand as snapbox writes them")]
 
 use std::fs;
-use std::path::PathBuf;
+use std::path::{Path, PathBuf};
 use std::sync::atomic::{AtomicU32, Ordering};
 
 use approx::{assert_abs_diff_eq, assert_relative_eq};
@@ -193,6 +193,83 @@ fn the_rain_of_a_case_is_told_as_a_return_period() {
     assert!(text.contains("rain times 0.833, once in 27 years by the table"), "{text}");
     let text = Folder::new(&project("1.05"), TABLE).text();
     assert!(text.contains("rain times 1.05, more seldom than once in 100 years"), "{text}");
+}
+
+/// The example's cascade by hand, each flow as the ft2 of roof whose rain it is: a plant room of 2,000 (1,800 and half of 400), a
+/// workshop of 4,200, a loading roof of 2,600. The workshop gets all of the plant room by its primary drains or half by its
+/// overflow: all, 6,200. The loading roof gets three quarters of the workshop's overflow and half of the plant room's: by the
+/// overflow 0.75 (4,200 + 1,000) + 1,000 = 4,900, by the primary drains 0.75 x 6,200 = 4,650; so 7,500.
+#[test]
+fn the_cascade_of_the_example_by_hand() {
+    let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("examples/quarry-halls.toml");
+    let roof = input::read(&path).unwrap_or_else(|faults| panic!("{faults}")).roof;
+    let catching: Vec<f64> =
+        roof.demands.iter().map(|demand| demand.to_gpm() * 96.25 / roof.storm.intensity.to_inches_per_hour()).collect();
+    for (got, by_hand) in catching.iter().zip([2000.0, 6200.0, 7500.0]) {
+        assert_relative_eq!(*got, by_hand, max_relative = 1e-9);
+    }
+}
+
+/// Two more areas, of which the second receives what is written behind them.
+const CASCADE: &str = "\n[[area]]\nname = \"tower\"\narea = \"1000 ft2\"\n\
+                       [[area]]\nname = \"court\"\narea = \"500 ft2\"\n";
+
+/// 962.5 gpm leave the roof, 100 the tower; 50 gpm rain on the court itself, which gets a quarter of the roof's overflow.
+#[test]
+fn the_tree_of_flows_stands_in_both_reports() {
+    let receives = "receives = [{ from = \"roof\", share = 0.25, what = \"overflow\" }, { from = \"tower\" }, \
+                    { from = \"roof\", share = 0.1, what = \"primary\" }]\n";
+    let layout = "[[layout]]\nname = \"drawn\"\narea = \"court\"\n\
+                  groups = [{ device = \"RS\", width = \"24 in\", height = \"6 in\", count = 3, set_height = \"2 in\" }]\n";
+    let folder = Folder::new(&format!("{}{CASCADE}{receives}{layout}", project("intensity = \"9.625 in/h\"")), TABLE);
+    let text = |arguments: &[&str]| {
+        let output = folder.brimline(arguments).code(0);
+        let text = String::from_utf8_lossy(&output.get_output().stdout).into_owned();
+        text.split_whitespace().collect::<Vec<_>>().join(" ")
+    };
+    let tree = "What runs onto what: the most that can arrive at once, steady and at full flow. Shares belong to areas, so no \
+                layout changes what another area receives. Water leaves an area by its primary drains while they work and by \
+                its overflow when they are blocked: it is counted by the way that brings more here, never by both. - court 391 \
+                gpm; its own rain 50.0 gpm - 241 gpm from roof by its overflow, 0.25 of 962 gpm - 100.0 gpm from tower, all of \
+                it - nothing from roof by its primary drains, share 0.1: not at the same time";
+    for command in ["size", "check"] {
+        let text = text(&[command, "roof.toml"]);
+        assert_eq!(text.matches(tree).count(), 1, "{command}: {text}");
+    }
+    let demand = "Demand 391 gpm: 9.625 in/h on 500 ft2 of roof, and 0.25 of the 962 gpm that overflow from roof, and the \
+                  100.0 gpm of tower.";
+    let text = text(&["size", "roof.toml", "--area", "court"]);
+    assert!(text.contains(demand), "{text}");
+    assert!(
+        text.contains("- The primary drains of an area carry nothing for it; those of an area above may bring"),
+        "{text}"
+    );
+    let output = folder.brimline(&["size", "roof.toml", "--format", "json", "--area", "court"]);
+    let json: Value = serde_json::from_slice(&output.get_output().stdout).expect("JSON");
+    let receives = &json["areas"][0]["receives"];
+    assert_eq!((&receives[0]["what"], &receives[1]["what"]), (&"overflow".into(), &"all".into()));
+    assert_eq!(receives[2]["arrives_m3_s"], 0.0);
+    assert_relative_eq!(receives[0]["arrives_m3_s"].as_f64().unwrap(), 240.625 * 6.309_02e-5, max_relative = 1e-5);
+}
+
+/// Each of a ladder of areas receives from the two above it: the tree tells each once, not 2^20 times.
+#[test]
+fn what_runs_together_again_is_told_once() {
+    let mut text = project("intensity = \"0.001 in/h\"");
+    for rung in 0..20 {
+        for side in ["a", "b"] {
+            text += &format!("[[area]]\nname = \"{side}{rung}\"\narea = \"1 ft2\"\n");
+            if rung > 0 {
+                let above = rung - 1;
+                text += &format!(
+                    "receives = [{{ from = \"a{above}\", share = 0.5 }}, {{ from = \"b{above}\", share = 0.5 }}]\n"
+                );
+            }
+        }
+    }
+    let text = Folder::new(&text, TABLE).text();
+    // In each of two trees, under the second area of rungs 2 to 18: the two above it stand under the first already.
+    assert_eq!(text.matches(", as above").count(), 2 * 17 * 2);
 }
 
 #[test]
@@ -687,6 +764,61 @@ error: `rain.csv` is empty
   = help: durations stand in `duration_min` or `duration_h`, intensities in columns such as `10_yr_in_h` or `10_yr_mm_h`, depths in `10_yr_in` or `10_yr_mm`
 
 "#]],
+    );
+}
+
+#[test]
+fn ways_that_pass_on_more_than_all() {
+    let court = |receives: &str| {
+        let text = format!("{}{CASCADE}receives = [{receives}]\n", project("intensity = \"1 in/h\""));
+        let output = Folder::new(&text, TABLE).brimline(&["size", "roof.toml", "--output", "result"]);
+        String::from_utf8_lossy(&output.get_output().stderr).into_owned()
+    };
+    // The one by the one way and the other by the other is no more than all.
+    assert_eq!(court("{ from = \"roof\", what = \"overflow\" }, { from = \"roof\", what = \"primary\" }"), "");
+    snapbox::assert_data_eq!(
+        court("{ from = \"roof\", share = 0.5 }, { from = \"roof\", share = 0.75, what = \"overflow\" }"),
+        str![[r#"
+warning: areas receive 1.25 of the overflow of `roof`, more than all of it
+  --> roof.toml:26:54
+   |
+26 | receives = [{ from = "roof", share = 0.5 }, { from = "roof", share = 0.75, what = "overflow" }]
+   |                                                      ^^^^^^ with this one
+   |
+   = help: shares of one area that add up to 1 pass on all of it
+
+
+"#]]
+        .raw()
+    );
+    snapbox::assert_data_eq!(
+        court("{ from = \"roof\", what = \"primary\" }, { from = \"roof\", share = 0.5, what = \"primary\" }"),
+        str![[r#"
+warning: areas receive 1.5 of what the primary drains pass of `roof`, more than all of it
+  --> roof.toml:26:59
+   |
+26 | receives = [{ from = "roof", what = "primary" }, { from = "roof", share = 0.5, what = "primary" }]
+   |                                                           ^^^^^^ with this one
+   |
+   = help: shares of one area that add up to 1 pass on all of it
+
+
+"#]]
+        .raw()
+    );
+    snapbox::assert_data_eq!(
+        court("{ from = \"roof\", what = \"overfow\" }"),
+        str![[r#"
+error: `overfow` is not a value of `what`
+  --> roof.toml:26:37
+   |
+26 | receives = [{ from = "roof", what = "overfow" }]
+   |                                     ^^^^^^^^^ not one of its values
+   |
+   = help: did you mean "overflow"? all, overflow or primary would pass
+
+"#]]
+        .raw()
     );
 }
 

@@ -11,7 +11,7 @@ use crate::search::{Answer, Least, Opened, Opening, Outcome, Placed, Ranked, Und
 use crate::units::{Length, Money};
 
 use super::words::{self, Words};
-use super::{Asked, Sized, notes, ranking, reasons, storm};
+use super::{Asked, Sized, cascade, notes, ranking, reasons, storm};
 
 #[derive(Serialize)]
 struct Document<'a> {
@@ -44,6 +44,8 @@ struct Storm<'a> {
 struct Area<'a> {
     name: &'a str,
     demand_m3_s: f64,
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    receives: Vec<cascade::Received<'a>>,
     outcome: &'static str,
     #[serde(skip_serializing_if = "Option::is_none")]
     why: Option<String>,
@@ -283,6 +285,7 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
         stiffened: strengthened,
         name: &sized.roof.areas[answer.area].name,
         demand_m3_s: sized.roof.demands[answer.area].m3_per_s(),
+        receives: cascade::receives(sized.roof, answer.area),
         outcome: words::outcome(&answer.outcome),
         why,
         bound: bound.map(bound_of),

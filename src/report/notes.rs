@@ -8,8 +8,8 @@ use crate::roof::layout::GroupState;
 use crate::search::{Options, Ranked};
 use crate::units::{Area, Length, System};
 
-use super::storm;
 use super::words::{self, Words, list, ranked_by, trimmed};
+use super::{cascade, storm};
 
 /// Excess of straight lines over logarithmic ones, as a part of the demand, from which it is told.
 pub(super) const CHORD_TOLD: f64 = 0.02;
@@ -143,7 +143,7 @@ pub(super) fn assumptions(told: &Told<'_, '_>) -> Vec<String> {
         System::Si => "Water weighs 9.802 kN/m3 (62.4 lb/ft3): 0.0098 kPa for each mm of depth",
     };
     let mut lines = vec![
-        "The primary drains carry nothing.".to_string(),
+        cascade::primary_drains(told.roof).to_string(),
         format!("{weight}. Load = unit weight x (water depth + ponding head)."),
         "Depths and set heights are above the low point of each area, where the primary inlet sits; water ponds level."
             .into(),

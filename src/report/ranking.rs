@@ -8,7 +8,7 @@ use crate::units::{Area, Length, Load};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Sized, cures, notes, plan, reasons, storm, work};
+use super::{Sized, cascade, cures, notes, plan, reasons, storm, work};
 
 /// The mark behind a layout that leaves the published range of its law.
 const BEYOND: &str = "\u{2020}";
@@ -35,7 +35,7 @@ pub(super) fn page(sized: &Sized<'_, '_>) -> Vec<Block> {
     blocks
 }
 
-/// The storm, and the cases that a layout must withstand.
+/// The storm, the cases that a layout must withstand, and what runs onto what.
 pub(super) fn situation(roof: &Roof, words: Words) -> Vec<Block> {
     let mut blocks = vec![Block::Text(storm::line(&roof.storm, words))];
     // A further storm is told once, not case by case.
@@ -46,6 +46,7 @@ pub(super) fn situation(roof: &Roof, words: Words) -> Vec<Block> {
         blocks.push(Block::List(cases));
     }
     blocks.extend(storm::further(roof, words));
+    blocks.extend(cascade::blocks(roof, words));
     blocks
 }
 
@@ -147,15 +148,7 @@ fn demand_in_words(roof: &Roof, area: usize, words: Words) -> String {
         words.intensity(roof.storm.intensity),
         list(&parts)
     );
-    for receipt in &catchment.receives {
-        let share = if (receipt.share - 1.0).abs() < 1e-12 {
-            String::new()
-        } else {
-            format!("{} of ", trimmed(receipt.share, 3))
-        };
-        let (from, flow) = (&roof.areas[receipt.from].name, roof.demands[receipt.from]);
-        text += &format!(", and {share}the {} of {from}", words.flow(flow));
-    }
+    text += &cascade::received(roof, area, words);
     if roof.system == crate::units::System::Us {
         let by_hand = 0.0104 * catching.to_ft2() * roof.storm.intensity.to_inches_per_hour();
         text += &format!(
