@@ -1,12 +1,12 @@
 //! The table `[storm]`: the design rain, given or read in a rainfall table, and the storms that are held beside it.
 
 use std::path::Path;
-use std::sync::Arc;
 
 use crate::roof::{Case, Further, Outside, Rainfall, Reading, Roof, Storm};
 use crate::units::{Dimension, Intensity, ReturnPeriod, Time};
 
 use super::fault::{Fault, Span};
+use super::rainfall;
 use super::section::{Cell, Keys, Section, optional};
 use super::setting::unique;
 
@@ -37,7 +37,7 @@ type Found = (Intensity, Option<Reading>);
 
 pub(super) fn read(project: &Path, section: &Section<'_>) -> Option<Storm> {
     let climate = section.get("climate").map_or(Some(1.0), |cell| climate(&cell));
-    let table = section.get("table").map(|cell| rainfall(project, &cell));
+    let table = section.get("table").map(|cell| rainfall::read(project, &cell));
     let given = section.get("intensity").map(|cell| cell.positive(Dimension::Intensity, Intensity::m_per_s));
     let when = when(section);
     let source = section.get("source").map(|cell| cell.text().map(str::to_string));
@@ -70,10 +70,6 @@ pub(super) fn read(project: &Path, section: &Section<'_>) -> Option<Storm> {
         reading,
         further: further?,
     })
-}
-
-fn rainfall(project: &Path, cell: &Cell<'_>) -> Option<Arc<Rainfall>> {
-    super::rainfall::read(project, cell)
 }
 
 fn climate(cell: &Cell<'_>) -> Option<f64> {
