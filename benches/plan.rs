@@ -51,12 +51,7 @@ fn area(index: u32, unlike: bool) -> Catchment {
 
 fn roof(areas: u32, sizes: Vec<Size>, unlike: bool) -> Roof {
     let areas: Vec<_> = (0..areas).map(|index| area(index, unlike)).collect();
-    let storm = Storm {
-        intensity: "6.3 in/h".parse().expect("an intensity"),
-        duration: None,
-        return_period: None,
-        source: None,
-    };
+    let storm = Storm { intensity: "6.3 in/h".parse().expect("an intensity"), ..Storm::default() };
     let designed = Case::as_designed();
     let cases = vec![designed.clone(), Case { name: "one blocked".into(), blocked: 1, ..designed }];
     let demands = demand::flows(&storm, &areas).expect("no circle");

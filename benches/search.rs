@@ -64,12 +64,7 @@ fn area(index: u32) -> Catchment {
 
 fn roof(areas: u32) -> Roof {
     let areas: Vec<_> = (0..areas).map(area).collect();
-    let storm = Storm {
-        intensity: "6.3 in/h".parse().expect("an intensity"),
-        duration: None,
-        return_period: None,
-        source: None,
-    };
+    let storm = Storm { intensity: "6.3 in/h".parse().expect("an intensity"), ..Storm::default() };
     let demands = demand::flows(&storm, &areas).expect("no circle");
     Roof {
         title: "bench".into(),

@@ -18,12 +18,14 @@ mod height;
 mod layout;
 mod ponding;
 mod project;
+mod rainfall;
 mod rating;
 mod section;
 mod setting;
 mod sheet;
 mod shipped;
 mod start;
+mod storm;
 mod structure;
 mod tolerance;
 

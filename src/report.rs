@@ -12,6 +12,7 @@ use crate::search::{
 use crate::units::{Flow, Length, Load, System};
 
 mod backsolve;
+mod cascade;
 mod check;
 mod contents;
 mod cures;
@@ -28,6 +29,7 @@ mod reasons;
 mod schedule;
 mod sensitivity;
 mod storage;
+mod storm;
 mod structure;
 mod tradeoff;
 mod words;

@@ -5,6 +5,7 @@
 //! its devices see one level. Steady flow: no credit is taken for water stored on the roof, nor for the primary drains.
 
 use std::ops::RangeInclusive;
+use std::sync::Arc;
 
 use crate::device::{Choice, Kind, Law, Site, Size};
 use crate::units::{Area, Flow, Intensity, Length, Load, ReturnPeriod, System, Time};
@@ -16,12 +17,14 @@ mod given;
 pub mod layout;
 pub mod ponding;
 mod pool;
+mod rainfall;
 mod situation;
 mod surface;
 
 pub use given::{Given, GivenGroup};
 pub use ponding::Ponding;
 pub use pool::{MOST_GROUPS, MOST_OUTLETS, Outlet, Pool, Share, working, working_capacity};
+pub use rainfall::{Outside, Rainfall, RainfallFault, Reading, Recurrence};
 pub use situation::{Governing, LimitKind, Limits, Situation};
 pub use surface::{Rise, Surface};
 
@@ -45,7 +48,7 @@ pub fn depth_of(load: Load) -> Length {
 /// The design rain.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Storm {
-    /// Intensity that every area is sized for.
+    /// Intensity that every area is sized for, climate counted in.
     pub intensity: Intensity,
     /// Duration over which it is that intense, where stated.
     pub duration: Option<Time>,
@@ -53,6 +56,54 @@ pub struct Storm {
     pub return_period: Option<ReturnPeriod>,
     /// Where the figure comes from, where stated.
     pub source: Option<String>,
+    /// Factor for climate that every intensity is multiplied by.
+    pub climate: f64,
+    /// The rainfall table, where there is one.
+    pub rainfall: Option<Arc<Rainfall>>,
+    /// Where in the table the intensity was read; without the climate.
+    pub reading: Option<Reading>,
+    /// Storms that every case is held under as well.
+    pub further: Vec<Further>,
+}
+
+impl Default for Storm {
+    /// No rain at all.
+    fn default() -> Self {
+        Self {
+            intensity: Intensity::ZERO,
+            duration: None,
+            return_period: None,
+            source: None,
+            climate: 1.0,
+            rainfall: None,
+            reading: None,
+            further: Vec::new(),
+        }
+    }
+}
+
+impl Storm {
+    /// How often an intensity, climate counted in, is met or passed over the duration of this storm; none without a table.
+    pub fn recurrence(&self, intensity: Intensity) -> Option<Recurrence> {
+        self.rainfall.as_ref()?.recurrence(intensity * (1.0 / self.climate), self.duration?).ok()
+    }
+}
+
+/// A storm that every case is held under besides the design rain.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Further {
+    /// Its name.
+    pub name: String,
+    /// Its intensity, climate and its own factor counted in.
+    pub intensity: Intensity,
+    /// Duration over which it is that intense, where stated.
+    pub duration: Option<Time>,
+    /// How often it is met or passed, where stated.
+    pub return_period: Option<ReturnPeriod>,
+    /// Factor of its own on the intensity.
+    pub factor: f64,
+    /// Where in the table it was read; without climate and factor.
+    pub reading: Option<Reading>,
 }
 
 /// One situation that every layout must withstand. A case changes the design, never the area: all zero and one is "as
@@ -67,12 +118,14 @@ pub struct Case {
     pub sill_error: Length,
     /// What is lost off each side of a scupper's opening.
     pub opening_loss: Length,
-    /// Factor on the intensity.
+    /// Factor on the intensity of the design rain; under a further storm, that of the storm counted in.
     pub rain: f64,
     /// Factor on every device's flow.
     pub discharge: f64,
     /// The flow law of scuppers, in place of the project's choice.
     pub law: Option<Law>,
+    /// The further storm it is held under, by its place in [`Storm::further`]; none for the design rain.
+    pub storm: Option<usize>,
 }
 
 impl Case {
@@ -86,6 +139,7 @@ impl Case {
             rain: 1.0,
             discharge: 1.0,
             law: None,
+            storm: None,
         }
     }
 }
@@ -99,13 +153,44 @@ pub struct Parapet {
     pub thickness: Option<Length>,
 }
 
+/// What of another area an area receives.
+///
+/// All flow leaves an area by its primary drains, or, with these blocked, by its overflow; the same water never by both.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Passed {
+    /// Whatever leaves it, by either way.
+    #[default]
+    All,
+    /// What its overflow passes, with its primary drains blocked: then all its flow, else nothing. Its primary drains
+    /// discharge elsewhere.
+    Overflow,
+    /// What its primary drains pass while they work: at most all its flow. Its overflow discharges elsewhere.
+    Primary,
+}
+
+impl Passed {
+    /// Every value.
+    pub const EVERY: [Self; 3] = [Self::All, Self::Overflow, Self::Primary];
+
+    /// Its name in files.
+    pub fn name(self) -> &'static str {
+        match self {
+            Self::All => "all",
+            Self::Overflow => "overflow",
+            Self::Primary => "primary",
+        }
+    }
+}
+
 /// What an area receives from another.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Receipt {
     /// Index of the other area.
     pub from: usize,
-    /// The part of its demand that runs here.
+    /// The part of what is passed that runs here.
     pub share: f64,
+    /// Which of its ways out run here.
+    pub what: Passed,
 }
 
 /// A part of the roof with one low point, where water ponds at one level.
@@ -197,6 +282,11 @@ impl Roof {
             site: self.site(area, self.cases[case].law),
             channel: catchment.channel,
         }
+    }
+
+    /// What runs when the most that is possible at once arrives at an area.
+    pub fn at_once(&self, area: usize) -> demand::AtOnce {
+        demand::at_once(&self.storm, &self.areas, area)
     }
 
     /// One area in every case, in the order of the cases.

@@ -663,7 +663,7 @@ error: unknown key `durration` in [storm]
 7 | durration = "15 min"
   | ^^^^^^^^^ not a key of this table
   |
-  = help: did you mean `duration`? [storm] takes intensity, duration, return_period or source
+  = help: did you mean `duration`? [storm] takes intensity, table, duration, return_period, climate, storms or source
 
 error: unknown key `colour` in a limit
   --> roof.toml:13:1
@@ -719,7 +719,7 @@ error: unknown key `shares` in an entry of `receives`
 38 | receives = [{ from = "north bay", shares = 0.25 }]
    |                                   ^^^^^^ not a key of this table
    |
-   = help: did you mean `share`? an entry of `receives` takes from or share
+   = help: did you mean `share`? an entry of `receives` takes from, share or what
 
 error: `height` is missing in a device of kind "closed scupper"
  --> devices.toml:1:1
@@ -757,9 +757,7 @@ fn keys_of_later_work_are_refused_by_name() {
                 PROJECT,
                 &[
                     ("units =", "layout = []\nrules = []\nunits ="),
-                    ("duration =", "table = \"rain.csv\"\nduration ="),
                     ("edge = \"120 ft\"", "slope = \"1/4 in/ft\"\nexisting = []"),
-                    ("share = 0.25", "what = \"overflow\""),
                 ],
             ),
         )
@@ -772,35 +770,19 @@ error: `rules` in the project is not supported in this version
   |
   = help: take the key out: the answer would not heed it
 
-error: `table` in [storm] is not supported in this version
- --> roof.toml:9:1
-  |
-9 | table = "rain.csv"
-  | ^^^^^ meant for a rainfall table to look the intensity up in
-  |
-  = help: take the key out: the answer would not heed it
-
 error: `slope` and `distance` belong together
-  --> roof.toml:33:9
+  --> roof.toml:32:9
    |
-33 | slope = "1/4 in/ft"
+32 | slope = "1/4 in/ft"
    |         ^^^^^^^^^^^ one of them
    |
    = help: give slope = "0.25 in/ft" and distance = "20 ft", from the low point to the wall
 
 error: `existing` in an [[area]] is not supported in this version
-  --> roof.toml:34:1
+  --> roof.toml:33:1
    |
-34 | existing = []
+33 | existing = []
    | ^^^^^^^^ meant for openings that are there already
-   |
-   = help: take the key out: the answer would not heed it
-
-error: `what` in an entry of `receives` is not supported in this version
-  --> roof.toml:40:35
-   |
-40 | receives = [{ from = "north bay", what = "overflow" }]
-   |                                   ^^^^ meant for the choice between overflow and primary flow
    |
    = help: take the key out: the answer would not heed it
 
@@ -1180,13 +1162,13 @@ error: `edges` is not a value of `place`
 fn a_table_where_a_list_of_tables_belongs_and_the_reverse() {
     project(&[("[storm]", "[[storm]]"), ("[[case]]\nname = \"as designed\"\n\n[[case]]", "[case]")]).refuses(str![[
         r#"
-error: `storm` must be a table with intensity, duration, return_period or source
+error: `storm` must be a table with intensity, table, duration, return_period, climate, storms or source
  --> roof.toml:5:1
   |
 5 | [[storm]]
   | ^^^^^^^^^ a list stands here
   |
-  = help: write a table with intensity, duration, return_period or source
+  = help: write a table with intensity, table, duration, return_period, climate, storms or source
 
 error: `case` must be a list of cases, each under [[case]]
   --> roof.toml:19:1

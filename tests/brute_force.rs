@@ -98,6 +98,7 @@ fn cases(dice: &mut Dice) -> Vec<Case> {
             rain: dice.pick(&[1.0, 1.0, 1.3]),
             discharge: dice.pick(&[1.0, 1.0, 0.8]),
             law: None,
+            storm: None,
         })
         .collect()
 }
@@ -157,7 +158,7 @@ fn roof(dice: &mut Dice) -> Roof {
             roughness: 0.013,
         }),
     };
-    let storm = Storm { intensity: Intensity::from_m_per_s(3e-5), duration: None, return_period: None, source: None };
+    let storm = Storm { intensity: Intensity::from_m_per_s(3e-5), ..Storm::default() };
     let demands = vec![storm.intensity * catchment.area];
     let mut choice = Choice::default();
     if dice.one_in(6) {

@@ -92,6 +92,7 @@ fn cases(dice: &mut Dice) -> Vec<Case> {
             opening_loss: inches(dice.pick(&[0.0, 0.0, 0.25, 1.0])),
             rain: dice.pick(&[1.0, 1.0, 1.3]),
             discharge: dice.pick(&[1.0, 1.0, 0.8]),
+            storm: None,
             law: None,
         })
         .collect()
@@ -122,7 +123,7 @@ fn roof(dice: &mut Dice, mix: usize) -> (Roof, Options) {
         limits,
         channel: None,
     };
-    let storm = Storm { intensity: Intensity::from_m_per_s(3e-5), duration: None, return_period: None, source: None };
+    let storm = Storm { intensity: Intensity::from_m_per_s(3e-5), ..Storm::default() };
     let choice =
         Choice { scupper: if dice.one_in(3) { dice.pick(&LAWS) } else { Law::ThinPlate }, ..Choice::default() };
     let rank_by = match (priced, dice.upto(2)) {

@@ -133,6 +133,7 @@ fn random() -> impl Strategy<Value = Random> {
             rain,
             discharge,
             law: None,
+            storm: None,
         };
         (pieces, case, gpm)
     })

@@ -200,12 +200,7 @@ fn roof(given: &Given) -> Roof {
         channel: None,
     };
     let areas: Vec<Catchment> = given.areas.iter().map(area).collect();
-    let storm = Storm {
-        intensity: format!("{RAIN} in/h").parse().expect("an intensity"),
-        duration: None,
-        return_period: None,
-        source: None,
-    };
+    let storm = Storm { intensity: format!("{RAIN} in/h").parse().expect("an intensity"), ..Storm::default() };
     let designed = Case::as_designed();
     Roof {
         title: "solver".into(),

@@ -5,8 +5,8 @@ use std::ops::RangeInclusive;
 
 use crate::device::Kind;
 use crate::roof::demand::{self, Circle};
-use crate::roof::{Catchment, Limits, Parapet, Receipt, Rise, Roof, Storm, Surface};
-use crate::units::{Area, Dimension, Flow, Intensity, Length};
+use crate::roof::{Catchment, Limits, Parapet, Passed, Receipt, Rise, Roof, Storm, Surface};
+use crate::units::{Area, Dimension, Flow, Length};
 
 use super::Assumed;
 use super::catalog::Offer;
@@ -48,17 +48,14 @@ static AREA: Keys = Keys {
 
 static PARAPET: Keys = Keys { table: "`parapet`", known: &["height", "thickness"], unsupported: &[] };
 
-static RECEIPT: Keys = Keys {
-    table: "an entry of `receives`",
-    known: &["from", "share"],
-    unsupported: &[("what", "the choice between overflow and primary flow")],
-};
+static RECEIPT: Keys = Keys { table: "an entry of `receives`", known: &["from", "share", "what"], unsupported: &[] };
 
 /// What one area receives, with the name of the other still to be found.
 struct GivenReceipt<'a> {
     cell: Cell<'a>,
     from: String,
     share: f64,
+    what: Passed,
 }
 
 /// An area as the file gives it: of what is at fault nothing.
@@ -116,17 +113,14 @@ pub(super) fn read_all(project: &Section<'_>, setting: &Setting<'_>, assumed: &m
 fn find_receipts(given: &[Given<'_>], all_named: bool) -> Vec<Vec<Option<Receipt>>> {
     let index: HashMap<&str, usize> =
         given.iter().enumerate().filter_map(|(index, given)| Some((given.name.as_deref()?, index))).collect();
-    let mut sent = vec![(0.0, None); given.len()];
+    let mut sent: Vec<Sent<'_>> = (0..given.len()).map(|_| Sent::default()).collect();
     let mut receipts = Vec::with_capacity(given.len());
     for to in given {
         let mut found = Vec::with_capacity(to.receives.len());
-        for GivenReceipt { cell, from, share } in &to.receives {
-            let receipt = index.get(from.as_str()).map(|&from| Receipt { from, share: *share });
+        for GivenReceipt { cell, from, share, what } in &to.receives {
+            let receipt = index.get(from.as_str()).map(|&from| Receipt { from, share: *share, what: *what });
             match &receipt {
-                Some(receipt) => {
-                    sent[receipt.from].0 += share;
-                    sent[receipt.from].1 = Some(cell);
-                }
+                Some(receipt) => sent[receipt.from].add(receipt, cell),
                 None if all_named => unknown_area(cell, from, index.keys().copied()),
                 None => {}
             }
@@ -134,17 +128,52 @@ fn find_receipts(given: &[Given<'_>], all_named: bool) -> Vec<Vec<Option<Receipt
         }
         receipts.push(found);
     }
-    for (given, (share, last)) in given.iter().zip(&sent) {
-        if let (true, Some(cell), Some(name)) = (*share > 1.0 + 1e-9, last, &given.name) {
-            cell.reader.warn(
-                cell.span(),
-                format!("areas receive {share} of what leaves `{name}`, more than all of it"),
-                "with this one",
-                "shares of one area that add up to 1 pass on all of it",
-            );
+    for (given, sent) in given.iter().zip(&sent) {
+        if let Some(name) = &given.name {
+            sent.more_than_all(name);
         }
     }
     receipts
+}
+
+/// What other areas receive of one: the shares of what its overflow passes and of what its primary drains pass, each with the
+/// last place that adds to it, and whether the two ways are told apart anywhere.
+#[derive(Default)]
+struct Sent<'c> {
+    overflow: (f64, Option<&'c Cell<'c>>),
+    primary: (f64, Option<&'c Cell<'c>>),
+    told_apart: bool,
+}
+
+impl<'c> Sent<'c> {
+    fn add(&mut self, receipt: &Receipt, cell: &'c Cell<'c>) {
+        if receipt.what != Passed::Primary {
+            self.overflow = (self.overflow.0 + receipt.share, Some(cell));
+        }
+        if receipt.what != Passed::Overflow {
+            self.primary = (self.primary.0 + receipt.share, Some(cell));
+        }
+        self.told_apart |= receipt.what != Passed::All;
+    }
+
+    /// Warns where the shares of one way add up to more than all that takes it.
+    fn more_than_all(&self, name: &str) {
+        let ways: &[_] = if self.told_apart {
+            &[(self.overflow, "the overflow of"), (self.primary, "what the primary drains pass of")]
+        } else {
+            &[(self.overflow, "what leaves")]
+        };
+        for ((share, last), way) in ways {
+            if let (true, Some(cell)) = (*share > 1.0 + 1e-9, last) {
+                cell.reader.warn(
+                    cell.span(),
+                    format!("areas receive {share} of {way} `{name}`, more than all of it"),
+                    "with this one",
+                    "shares of one area that add up to 1 pass on all of it",
+                );
+            }
+        }
+    }
 }
 
 /// The areas for which each default was taken.
@@ -456,9 +485,16 @@ fn read_receives<'a>(section: &Section<'a>, taken: &mut Taken, called: &str) -> 
                 Some(SHARE)
             }
         };
+        let what = match entry.get("what") {
+            Some(cell) => cell.word(&Passed::EVERY.map(|what| (what.name(), what))),
+            None => {
+                taken.take("receives.what", called);
+                Some(Passed::All)
+            }
+        };
         // A share at fault is told; where the water comes from is looked at all the same.
         if let Some((cell, from)) = from.and_then(|cell| Some((cell, cell.text()?.to_string()))) {
-            receives.push(GivenReceipt { cell, from, share: share.unwrap_or(0.0) });
+            receives.push(GivenReceipt { cell, from, share: share.unwrap_or(0.0), what: what.unwrap_or_default() });
         }
     }
     Some(receives)
@@ -491,7 +527,7 @@ fn blocked_under_count(
 /// Names areas that receive from one another in a circle, circle by circle; tells whether there are none.
 fn report_circles(project: &Section<'_>, given: &[Given<'_>], receipts: &[Vec<Option<Receipt>>]) -> bool {
     // Circles are looked for among areas that have nothing else: faults of other values do not hide them.
-    let dry = Storm { intensity: Intensity::ZERO, duration: None, return_period: None, source: None };
+    let dry = Storm::default();
     let mut areas: Vec<Catchment> =
         receipts.iter().map(|receives| without_size(receives.iter().flatten().copied().collect())).collect();
     let mut runs_one_way = true;

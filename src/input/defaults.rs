@@ -53,7 +53,7 @@ pub struct Default {
 }
 
 /// Every default, in the order of the files.
-pub static DEFAULTS: [Default; 15] = [
+pub static DEFAULTS: [Default; 16] = [
     entry("search.rank_by", "cost, load", "the cheapest first; of equals the one with less load"),
     entry("search.keep", "8", "eight layouts are listed for each area"),
     entry("search.mix", "1", "all devices of a layout are of one size"),
@@ -69,6 +69,7 @@ pub static DEFAULTS: [Default; 15] = [
     entry("channel.roughness", "0.013", "Manning's n of membrane or sheet metal"),
     entry("structure.most", "20 psf or 1 kPa", "load limits are raised by so much at most"),
     entry("receives.share", "1", "all that leaves the other area arrives"),
+    entry("receives.what", "all", "by its primary drains or its overflow, whichever way the other area's water leaves"),
 ];
 
 const fn entry(key: &'static str, value: &'static str, meaning: &'static str) -> Default {

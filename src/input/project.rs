@@ -4,9 +4,9 @@ use std::path::Path;
 
 use crate::device::{Choice, Kind, Law};
 use crate::review::Tolerances;
-use crate::roof::{Case, Limits, Roof, Storm, demand};
+use crate::roof::{Case, Limits, Roof, demand};
 use crate::search::{Criterion, Options, PlanAsked, Watch};
-use crate::units::{Dimension, Intensity, Length, Money, ReturnPeriod, System, Time};
+use crate::units::{Length, Money, System};
 
 use super::catalog::{Catalogs, Offer, Offered};
 use super::defaults::{self, COUNT, KEEP, MIX, RANK_BY};
@@ -14,7 +14,7 @@ use super::fault::{Fault, Faults, Log, Span};
 use super::grid::{self, Least};
 use super::section::{Cell, Keys, Reader, Section, optional};
 use super::setting::{Cases, GivenCase, MOST_DEVICES, Names, Search, Setting, is_named, limits_of, read_count, unique};
-use super::{Assumed, Project, area, file, flow, layout, structure, tolerance};
+use super::{Assumed, Project, area, file, flow, layout, storm, structure, tolerance};
 
 static PROJECT: Keys = Keys {
     table: "the project",
@@ -35,12 +35,6 @@ static PROJECT: Keys = Keys {
         "schedule",
     ],
     unsupported: &[("rules", "sets of code rules to hold every layout against")],
-};
-
-static STORM: Keys = Keys {
-    table: "[storm]",
-    known: &["intensity", "duration", "return_period", "source"],
-    unsupported: &[("table", "a rainfall table to look the intensity up in"), ("storms", "a sweep of several storms")],
 };
 
 static SEARCH: Keys = Keys {
@@ -106,7 +100,7 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
     if let Some(cell) = named.filter(|cell| cell.items().is_empty()) {
         cell.at_fault("`catalogs` is an empty list", "no catalog stands here", "name at least one file");
     }
-    let storm = section.section("storm", &STORM).and_then(|storm| read_storm(&storm));
+    let storm = section.section("storm", &storm::STORM).and_then(|section| storm::read(path, &section));
     if section.get("storm").is_none() {
         section.missing("[storm] is missing in the project", "give [storm] with intensity = \"6.3 in/h\"");
     }
@@ -148,7 +142,7 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         sizes: catalogs.sizes,
         choice: choice?,
     };
-    let roof = under_each_law(roof, search.laws.as_deref()?);
+    let roof = under_each_law(storm::under_each_storm(roof), search.laws.as_deref()?);
     if !area::channels_flow(section, &roof) {
         return None;
     }
@@ -237,22 +231,6 @@ fn laws_fit(section: &Section<'_>, choice: Option<Choice>, search: &Search, cata
             cell.reader.log.put(fault);
         }
     }
-}
-
-fn read_storm(section: &Section<'_>) -> Option<Storm> {
-    let intensity = section
-        .need("intensity", "write intensity = \"6.3 in/h\" or intensity = \"160 mm/h\"")
-        .and_then(|cell| cell.positive(Dimension::Intensity, Intensity::m_per_s));
-    let duration = section.get("duration").map(|cell| cell.positive(Dimension::Time, Time::s));
-    let return_period =
-        section.get("return_period").map(|cell| cell.positive(Dimension::ReturnPeriod, ReturnPeriod::years));
-    let source = section.get("source").map(|cell| cell.text().map(str::to_string));
-    Some(Storm {
-        intensity: intensity?,
-        duration: optional(duration)?,
-        return_period: optional(return_period)?,
-        source: optional(source)?,
-    })
 }
 
 impl Search {
@@ -458,6 +436,7 @@ fn read_case(section: &Section<'_>, names: &mut Names) -> Option<GivenCase> {
             rain: rain?,
             discharge: discharge?,
             law: None,
+            storm: None,
         },
         limits: limits?,
         blocked_at: section.get("blocked").map(|cell| cell.span()),

@@ -11,7 +11,7 @@ use crate::search::{Answer, Fitted, Least, Measured, Opened, Opening, Outcome, P
 use crate::units::{Length, Money};
 
 use super::words::{self, Words};
-use super::{Asked, Sized, notes, ponding, ranking, reasons};
+use super::{Asked, Sized, cascade, notes, ponding, ranking, reasons, storm};
 
 mod front;
 
@@ -35,12 +35,19 @@ struct Storm<'a> {
     duration_s: Option<f64>,
     return_period_yr: Option<f64>,
     source: Option<&'a str>,
+    climate_factor: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    read: Option<storm::Read<'a>>,
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    storms: Vec<storm::Beside<'a>>,
 }
 
 #[derive(Serialize)]
 struct Area<'a> {
     name: &'a str,
     demand_m3_s: f64,
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    receives: Vec<cascade::Received<'a>>,
     outcome: &'static str,
     #[serde(skip_serializing_if = "Option::is_none")]
     why: Option<String>,
@@ -229,6 +236,9 @@ pub(super) fn document(sized: &Sized<'_, '_>) -> String {
             duration_s: storm.duration.map(crate::units::Time::s),
             return_period_yr: storm.return_period.map(crate::units::ReturnPeriod::years),
             source: storm.source.as_deref(),
+            climate_factor: storm.climate,
+            read: storm::read(storm, storm.reading.as_ref()),
+            storms: storm::beside(storm),
         },
         areas: sized.answers.iter().map(|answer| area(sized, answer)).collect(),
         plan: plans.is_empty().not().then(|| plans.remove(0)),
@@ -312,6 +322,7 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
         stiffened: strengthened,
         name: &sized.roof.areas[answer.area].name,
         demand_m3_s: sized.roof.demands[answer.area].m3_per_s(),
+        receives: cascade::receives(sized.roof, answer.area),
         outcome: words::outcome(&answer.outcome),
         why,
         bound: bound.map(bound_of),

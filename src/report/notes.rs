@@ -12,6 +12,7 @@ use crate::units::{Area, Length, System};
 
 use super::measure;
 use super::words::{self, Words, list, ranked_by, trimmed};
+use super::{cascade, storm};
 
 /// Excess of straight lines over logarithmic ones, as a part of the demand, from which it is told.
 pub(super) const CHORD_TOLD: f64 = 0.02;
@@ -161,7 +162,7 @@ pub(super) fn assumptions(told: &Told<'_, '_>) -> Vec<String> {
         System::Si => "Water weighs 9.802 kN/m3 (62.4 lb/ft3): 0.0098 kPa for each mm of depth",
     };
     let mut lines = vec![
-        "The primary drains carry nothing.".to_string(),
+        cascade::primary_drains(told.roof).to_string(),
         format!("{weight}. Load = unit weight x (water depth + ponding head)."),
         "Depths and set heights are above the low point of each area, where the primary inlet sits; water ponds level."
             .into(),
@@ -182,6 +183,7 @@ pub(super) fn assumptions(told: &Told<'_, '_>) -> Vec<String> {
             if told.options.fold { " Of layouts with the same number of each device the best is listed." } else { "" }
         ));
     }
+    lines.extend(storm::interpolated(&told.roof.storm));
     lines.push("In a window all groups rise together, each stopping at the top of its own range.".into());
     if told.fronts {
         lines.push(
@@ -219,7 +221,7 @@ pub(super) fn cautions(told: &Told<'_, '_>) -> Vec<String> {
         "The limit is for rain alone: take dead load, equipment and ballast off the roof's capacity before it is given."
             .to_string(),
     ];
-    storm(told, &mut lines);
+    rain(told, &mut lines);
     structure(told, &mut lines);
     openings(told, &mut lines);
     cases(told, &mut lines);
@@ -244,7 +246,7 @@ pub(super) fn cautions(told: &Told<'_, '_>) -> Vec<String> {
     lines
 }
 
-fn storm(told: &Told<'_, '_>, lines: &mut Vec<String>) {
+fn rain(told: &Told<'_, '_>, lines: &mut Vec<String>) {
     let storm = &told.roof.storm;
     match storm.duration {
         None => lines.push(

@@ -15,6 +15,8 @@ pub(super) enum Block {
     Text(String),
     /// Short texts one below another.
     List(Vec<String>),
+    /// Short texts, each with how deep it stands under the one before it that is less deep.
+    Tree(Vec<(usize, String)>),
     /// Lines whose columns stand under one another: a calculation.
     Lines(Vec<(String, String)>),
     /// A table.
@@ -107,6 +109,10 @@ pub(super) fn text(blocks: &[Block], width: usize) -> String {
             Block::Heading(heading) => out += &format!("\n{heading}\n{}\n", "-".repeat(widest(heading).min(width))),
             Block::Text(text) => out += &wrapped(text, "", "", width),
             Block::List(items) => items.iter().for_each(|item| out += &wrapped(item, "- ", "  ", width)),
+            Block::Tree(items) => items.iter().for_each(|(depth, item)| {
+                let indent = "  ".repeat(*depth);
+                out += &wrapped(item, &format!("{indent}- "), &format!("{indent}  "), width);
+            }),
             Block::Lines(lines) => {
                 let left = lines.iter().map(|(label, _)| widest(label)).max().unwrap_or(0);
                 for (label, line) in lines {
@@ -133,6 +139,10 @@ pub(super) fn markdown(blocks: &[Block]) -> String {
             Block::Heading(heading) => format!("## {}\n\n", escaped(heading)),
             Block::Text(text) => format!("{}\n\n", escaped(text)),
             Block::List(items) => items.iter().map(|item| format!("- {}\n", escaped(item))).collect::<String>() + "\n",
+            Block::Tree(items) => {
+                let line = |(depth, item): &(usize, String)| format!("{}- {}\n", "  ".repeat(*depth), escaped(item));
+                items.iter().map(line).collect::<String>() + "\n"
+            }
             Block::Lines(lines) => {
                 let rows = lines.iter().map(|(label, line)| vec![label.clone(), line.clone()]).collect();
                 let head = vec!["Step".to_string(), "Arithmetic".to_string()];

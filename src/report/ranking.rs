@@ -2,13 +2,13 @@
 
 use crate::device::{Kind, Law};
 use crate::hydraulics::limits::Range;
-use crate::roof::{Case, Limits, Roof, demand};
+use crate::roof::{Case, Limits, Roof, Storm, demand};
 use crate::search::{Answer, Outcome, Ranked, UnderLaw};
 use crate::units::{Area, Length, Load};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Sized, cures, front, measure, notes, plan, ponding, reasons, work};
+use super::{Sized, cascade, cures, front, measure, notes, plan, ponding, reasons, storm, work};
 
 /// The mark behind a layout that leaves the published range of its law.
 const BEYOND: &str = "\u{2020}";
@@ -35,14 +35,18 @@ pub(super) fn page(sized: &Sized<'_, '_>) -> Vec<Block> {
     blocks
 }
 
-/// The storm, and the cases that a layout must withstand.
+/// The storm, the cases that a layout must withstand, and what runs onto what.
 pub(super) fn situation(roof: &Roof, words: Words) -> Vec<Block> {
-    let mut blocks = vec![Block::Text(storm(roof, words))];
-    let cases: Vec<_> = roof.cases.iter().map(|case| case_in_words(case, words)).collect();
+    let mut blocks = vec![Block::Text(storm::line(&roof.storm, words))];
+    // A further storm is told once, not case by case.
+    let given = roof.cases.iter().filter(|case| case.storm.is_none());
+    let cases: Vec<_> = given.map(|case| case_in_words(case, &roof.storm, words)).collect();
     if roof.cases.len() > 1 || roof.cases[0] != Case::as_designed() {
         blocks.push(Block::Text("Cases that a layout must withstand:".into()));
         blocks.push(Block::List(cases));
     }
+    blocks.extend(storm::further(roof, words));
+    blocks.extend(cascade::blocks(roof, words));
     blocks
 }
 
@@ -55,18 +59,8 @@ pub(super) fn area_head(roof: &Roof, area: usize, words: Words) -> [Block; 3] {
     ]
 }
 
-fn storm(roof: &Roof, words: Words) -> String {
-    let storm = &roof.storm;
-    let duration = storm.duration.map(|duration| format!("for {}", words::duration(duration)));
-    let period = storm.return_period.map(|period| format!("once in {} years", trimmed(period.years(), 1)));
-    let when: Vec<_> = duration.into_iter().chain(period).collect();
-    let when = if when.is_empty() { String::new() } else { format!(" ({})", when.join(", ")) };
-    let source = storm.source.as_ref().map_or(String::new(), |source| format!(" Source: {source}."));
-    format!("Storm: {}{when}.{source}", words.intensity(storm.intensity))
-}
-
 /// What a case does to the design.
-fn case_in_words(case: &Case, words: Words) -> String {
+fn case_in_words(case: &Case, rain: &Storm, words: Words) -> String {
     let mut parts = Vec::new();
     match case.blocked {
         0 => {}
@@ -81,7 +75,7 @@ fn case_in_words(case: &Case, words: Words) -> String {
     }
     let changed = |factor: f64| (factor - 1.0).abs() > 1e-12;
     if changed(case.rain) {
-        parts.push(format!("rain times {}", trimmed(case.rain, 3)));
+        parts.push(format!("rain times {}{}", trimmed(case.rain, 3), storm::recurrence(case, rain)));
     }
     if changed(case.discharge) {
         parts.push(format!("flow of every device times {}", trimmed(case.discharge, 3)));
@@ -159,15 +153,7 @@ fn demand_in_words(roof: &Roof, area: usize, words: Words) -> String {
         words.intensity(roof.storm.intensity),
         list(&parts)
     );
-    for receipt in &catchment.receives {
-        let share = if (receipt.share - 1.0).abs() < 1e-12 {
-            String::new()
-        } else {
-            format!("{} of ", trimmed(receipt.share, 3))
-        };
-        let (from, flow) = (&roof.areas[receipt.from].name, roof.demands[receipt.from]);
-        text += &format!(", and {share}the {} of {from}", words.flow(flow));
-    }
+    text += &cascade::received(roof, area, words);
     if roof.system == crate::units::System::Us {
         let by_hand = 0.0104 * catching.to_ft2() * roof.storm.intensity.to_inches_per_hour();
         text += &format!(
@@ -199,11 +185,13 @@ fn limit_in_words(roof: &Roof, area: usize, words: Words) -> String {
     let mut text = String::from("Limit: ");
     let first = catchment.limits[0];
     text += &water(first);
-    for (case, limits) in catchment.limits.iter().enumerate().skip(1) {
+    // Under every storm a case has the same limits.
+    let of_main = |case: &usize| roof.cases[*case].storm.is_none();
+    for (case, limits) in catchment.limits.iter().enumerate().skip(1).filter(|(case, _)| of_main(case)) {
         let before = catchment.limits[..case].iter().position(|known| known == limits);
         if before.is_none() {
             let alike: Vec<_> = (case..catchment.limits.len())
-                .filter(|&other| catchment.limits[other] == *limits)
+                .filter(|other| of_main(other) && catchment.limits[*other] == *limits)
                 .map(|other| format!("\"{}\"", roof.cases[other].name))
                 .collect();
             text += &format!("; in {}: {}", list(&alike), water(*limits));

@@ -6,8 +6,8 @@ use crate::roof::{Roof, Situation, demand};
 use crate::search::{Placed, Ranked};
 use crate::units::{Area, Length, System};
 
-use super::ponding;
 use super::words::{Words, grouped, trimmed};
+use super::{cascade, ponding};
 
 /// Each step with its arithmetic.
 pub(super) fn lines(roof: &Roof, area: usize, layout: &Ranked<'_>, words: Words) -> Vec<(String, String)> {
@@ -98,8 +98,8 @@ fn flow_demanded(roof: &Roof, area: usize, situation: &Situation<'_>, words: Wor
     } else {
         format!("{bare} x {} / 3600", trimmed(rain.m_per_s() * 3.6e6, 2))
     };
-    for receipt in &catchment.receives {
-        let from = fine_flow(words, roof.demands[receipt.from].m3_per_s());
+    for (receipt, leaving) in cascade::arriving(roof, area, &roof.at_once(area)) {
+        let from = fine_flow(words, leaving.m3_per_s());
         sum += &format!(" + {} x {from}", trimmed(receipt.share, 3));
     }
     let factor = situation.case.rain;
