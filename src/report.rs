@@ -7,7 +7,8 @@ use crate::device::{Law, Site, Size};
 use crate::input::Assumed;
 use crate::roof::Roof;
 use crate::search::{
-    Answer, Front, Opened, Opening, Options, PlanAsked, PlanAt, PlanFront, Plans, Ranked, Structure, UnderLaw,
+    Answer, Front, Opened, Opening, Options, PlanAsked, PlanAt, PlanFront, Plans, Ranked, StiffenedPlan, Structure,
+    UnderLaw,
 };
 use crate::units::{Flow, Length, Load, System};
 
@@ -125,6 +126,8 @@ pub struct Asked<'a, 'r> {
     pub found: Option<&'a Plans<'r>>,
     /// The plans that are not beaten; none where that is not asked for, or there is no plan.
     pub front: Option<&'a PlanFront<'r>>,
+    /// The cheapest plan where load limits may be raised; none where strength has no price, or none was found.
+    pub stiffened: Option<&'a StiffenedPlan>,
 }
 
 /// The layouts of an area that are not beaten.

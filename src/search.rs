@@ -32,7 +32,7 @@ mod watch;
 pub use cure::{Cure, Cures, Opened, Opening, Relaxation, binds, cures, opened, relaxed};
 pub use front::{Front, PlanFront, Unbeaten, UnbeatenPlan, front, plan_front};
 pub use measure::{Fitted, Measured};
-pub use plan::{Asked as PlanAsked, Plan, Plans, plan};
+pub use plan::{Asked as PlanAsked, Plan, Plans, StiffenedArea, StiffenedPlan, plan, stiffened_plan};
 pub use rank::Criterion;
 pub use standing::{Placed, Ranked, UnderLaw, standing, under_every_law};
 pub use structure::{Stiffened, Structure, stiffened};

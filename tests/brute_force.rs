@@ -534,6 +534,84 @@ fn the_plan_is_that_of_trying_everything() {
     assert!(found > 100 && none > 100, "{found} plans, {none} without: the roofs are not varied enough");
 }
 
+/// The plan with a price of strength, against every set of sizes with every layout of each area at every raise.
+#[test]
+fn the_plan_with_stronger_areas_is_that_of_trying_everything() {
+    let (mut raised, mut kept, mut none) = (0, 0, 0);
+    for seed in 1..=500_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0xd134_2543_de82_ef95));
+        let mut whole = roof(&mut dice);
+        let mut options = options(&mut dice);
+        options.mix = options.mix.min(2);
+        for _ in 0..dice.upto(2) {
+            let other = roof(&mut dice).areas.remove(0);
+            let limits = whole.cases.iter().map(|_| other.limits[0]).collect();
+            whole.areas.push(Catchment { limits, ..other });
+        }
+        whole.demands = whole.areas.iter().map(|area| whole.storm.intensity * area.area).collect();
+        let asked =
+            PlanAsked { sizes: Some(1 + dice.upto(1) as u32), size_price: Money::nearest(100.0 * dice.upto(2) as f64) };
+        let rate = dice.pick(&["0.002 / ft2 / psf", "0.02 / ft2 / psf", "0.2 / ft2 / psf"]);
+        let step = Load::psf(3.0);
+        let structure = search::Structure {
+            stiffen: brimline::units::read_price(rate, &[Dimension::Area, Dimension::Load]).expect("a price"),
+            step: Some(step),
+            most: step * 4.0,
+        };
+        let areas: Vec<usize> = (0..whole.areas.len()).collect();
+        // Every area's layouts at every raise: what each costs with its strength, and which sizes it needs.
+        let layouts: Vec<Vec<(i64, u32)>> = areas
+            .iter()
+            .map(|&area| {
+                let here = alone(&whole, area);
+                let at = |steps: u32| {
+                    let raise = step * f64::from(steps);
+                    let (roof, _) = search::relaxed(&here, &options, Relaxation::Load(raise));
+                    let strength = structure.cost(roof.areas[0].area, raise).millionths();
+                    let cost = |groups: &Vec<(usize, u32)>| -> i64 {
+                        let of_group = |&(size, count): &(usize, u32)| {
+                            roof.sizes[size].price.expect("priced").millionths() * i64::from(count)
+                        };
+                        groups.iter().map(of_group).sum()
+                    };
+                    let used = |groups: &Vec<(usize, u32)>| groups.iter().fold(0, |mask, &(size, _)| mask | 1 << size);
+                    let priced = |groups: Vec<(usize, u32)>| (cost(&groups) + strength, used(&groups));
+                    holding(&roof, &options).into_iter().map(priced).collect::<Vec<_>>()
+                };
+                (0..=4).flat_map(at).collect()
+            })
+            .collect();
+        let most = asked.sizes.expect("given");
+        let least = (1_u32..1 << whole.sizes.len())
+            .filter(|set| set.count_ones() <= most)
+            .filter_map(|set| {
+                let of_area = |layouts: &Vec<(i64, u32)>| {
+                    layouts.iter().filter(|(_, needs)| needs & !set == 0).map(|&(cost, _)| cost).min()
+                };
+                let costs = layouts.iter().map(of_area).collect::<Option<Vec<i64>>>()?;
+                Some(costs.iter().sum::<i64>() + asked.size_price.millionths() * i64::from(set.count_ones()))
+            })
+            .min();
+        let found = search::stiffened_plan(&whole, &options, asked, &structure, &areas);
+        assert_eq!(found.as_ref().map(|plan| plan.cost.millionths()), least, "seed {seed}");
+        let Some(plan) = found else {
+            none += 1;
+            continue;
+        };
+        let parts = plan.areas.iter().map(|area| area.openings.millionths() + area.strength.millionths());
+        let sizes = (asked.size_price * plan.sizes.len() as u32).millionths();
+        assert_eq!(parts.sum::<i64>() + sizes, plan.cost.millionths(), "seed {seed}: the parts make the whole");
+        for (area, &index) in plan.areas.iter().zip(&areas) {
+            let (roof, _) = search::relaxed(&alone(&whole, index), &options, Relaxation::Load(area.raise));
+            let asked = Asked { freeboard: options.freeboard };
+            let groups = area.layout.groups();
+            assert!(roof.situations(0).iter().all(|situation| layout::holds(&groups, situation, asked)), "seed {seed}");
+        }
+        if plan.areas.iter().any(|area| area.raise > Load::ZERO) { raised += 1 } else { kept += 1 }
+    }
+    assert!(raised > 25 && kept > 25 && none > 10, "{raised} raised, {kept} not, {none} without a plan");
+}
+
 /// One step less of a change, in the steps of a US roof; none where that is no change at all.
 fn a_step_less(change: Relaxation) -> Option<Relaxation> {
     let inches = |length: Length, step: f64| {

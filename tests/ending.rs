@@ -118,3 +118,22 @@ fn an_ended_search_lists_no_front() {
     let text = String::from_utf8(output.stdout).expect("UTF-8");
     assert!(text.contains("ended before it was known what is not beaten"), "{text}");
 }
+
+/// A plan that was ended is no infeasible one, and costs no less than what is told as bound.
+#[test]
+fn an_ended_plan_is_told_as_stopped() {
+    let roof = PathBuf::from(env!("CARGO_MANIFEST_DIR")).join("examples/three-sizes.toml");
+    let at_once = ["size", "--time-limit", "0.000001 s", "--format", "json"];
+    let output = command(&at_once, &roof).output().expect("starts");
+    let plan = &document(&output)["plan"];
+    assert_eq!((&plan["outcome"], &plan["cost"]), (&Value::from("stopped"), &Value::Null));
+    let output = command(&["size", "--time-limit", "0.000001 s"], &roof).output().expect("starts");
+    let text = String::from_utf8(output.stdout).expect("UTF-8");
+    assert!(text.contains("The search was ended before a plan was found"), "{text}");
+    let output = command(&["size", "--format", "json"], &roof).output().expect("starts");
+    let plan = &document(&output)["plan"];
+    assert_eq!(plan["outcome"], "optimal");
+    assert_eq!(plan["bound"], plan["cost"]);
+    let stiffened = plan["stiffened"]["cost"].as_f64().expect("strength has a price there");
+    assert!(stiffened <= plan["cost"].as_f64().expect("a cost"), "raising nothing is one of the choices");
+}

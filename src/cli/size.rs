@@ -78,6 +78,10 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         answers.par_iter().map(|answer| of_area(answer).ok().flatten()).collect::<Vec<_>>()
     };
     let stiffened = price.map_or(Vec::new(), stiffened);
+    let stronger = project
+        .plan
+        .zip(price)
+        .and_then(|(asked, price)| search::stiffened_plan(&project.roof, &options, asked, price, &areas));
     let strengthened: Vec<_> = stiffened.iter().map(|found| strengthened(found.as_ref())).collect();
     let fronts = if args.front { fronts(args, &project, &options, &areas) } else { Vec::new() };
     let unbeaten = plans.as_ref().filter(|_| args.front).and_then(|(asked, found)| {
@@ -99,6 +103,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
             asked: *asked,
             found: found.as_ref(),
             front: unbeaten.as_ref(),
+            stiffened: stronger.as_ref(),
         }),
     };
     args.of.deliver(|format, width| report::size(&sized, format, width))?;

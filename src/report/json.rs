@@ -102,8 +102,36 @@ struct Plan<'a> {
     layouts: Vec<PlanLayout<'a>>,
     #[serde(skip_serializing_if = "Vec::is_empty")]
     by_sizes: Vec<BySizes>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    stiffened: Option<StiffenedPlan<'a>>,
     #[serde(flatten)]
     front: Option<front::Plans<'a>>,
+}
+
+/// The plan of least cost where load limits may be raised and paid for.
+#[derive(Serialize)]
+struct StiffenedPlan<'a> {
+    cost: f64,
+    strength_cost: f64,
+    sizes: Vec<PlanSize<'a>>,
+    layouts: Vec<StiffenedArea<'a>>,
+}
+
+#[derive(Serialize)]
+struct StiffenedArea<'a> {
+    area: &'a str,
+    load_limit_more_pa: f64,
+    strength_cost: f64,
+    cost: f64,
+    groups: Vec<StiffenedGroup<'a>>,
+}
+
+#[derive(Serialize)]
+struct StiffenedGroup<'a> {
+    #[serde(flatten)]
+    size: PlanSize<'a>,
+    count: u32,
+    set_height_m: f64,
 }
 
 #[derive(Serialize)]
@@ -261,7 +289,7 @@ fn plans<'a>(sized: &Sized<'a, '_>, asked: &Asked<'a, '_>) -> Vec<Plan<'a>> {
         let (sizes, layouts) = (Vec::new(), Vec::new());
         let by_sizes = by_sizes();
         let outcome = if found.finished { "infeasible" } else { "stopped" };
-        return vec![Plan { outcome, cost: None, bound: None, sizes, layouts, by_sizes, front: None }];
+        return vec![Plan { outcome, cost: None, bound: None, sizes, layouts, by_sizes, stiffened: None, front: None }];
     }
     let plan = |(index, plan): (usize, &'a crate::search::Plan<'_>)| Plan {
         outcome: if found.finished { "optimal" } else { "stopped" },
@@ -283,9 +311,31 @@ fn plans<'a>(sized: &Sized<'a, '_>, asked: &Asked<'a, '_>) -> Vec<Plan<'a>> {
             })
             .collect(),
         by_sizes: if index == 0 { by_sizes() } else { Vec::new() },
+        stiffened: asked.stiffened.filter(|_| index == 0).map(|found| stiffened(sized, found)),
         front: asked.front.filter(|_| index == 0).map(|found| front::plans(sized, found)),
     };
     found.plans.iter().enumerate().map(plan).collect()
+}
+
+fn stiffened<'a>(sized: &Sized<'a, '_>, found: &'a crate::search::StiffenedPlan) -> StiffenedPlan<'a> {
+    let group = |group: &'a crate::roof::GivenGroup| StiffenedGroup {
+        size: plan_size(&group.size),
+        count: group.count,
+        set_height_m: group.set_height.m(),
+    };
+    let area = |area: &'a crate::search::StiffenedArea| StiffenedArea {
+        area: &sized.roof.areas[area.layout.area].name,
+        load_limit_more_pa: area.raise.pa(),
+        strength_cost: area.strength.amount(),
+        cost: area.openings.amount(),
+        groups: area.layout.groups.iter().map(group).collect(),
+    };
+    StiffenedPlan {
+        cost: found.cost.amount(),
+        strength_cost: found.strength.amount(),
+        sizes: found.sizes.iter().map(plan_size).collect(),
+        layouts: found.areas.iter().map(area).collect(),
+    }
 }
 
 fn plan_size(size: &Size) -> PlanSize<'_> {

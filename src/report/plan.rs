@@ -1,7 +1,7 @@
 //! The plan of the whole roof: its cost, its sizes, each area's layout, and what one size fewer or more would cost.
 
-use crate::search::{Outcome, Plan, Plans};
-use crate::units::Money;
+use crate::search::{Outcome, Plan, Plans, StiffenedArea};
+use crate::units::{Load, Money};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list};
@@ -16,6 +16,7 @@ pub(super) fn blocks(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, words: Words,
     let Some((first, others)) = found.plans.split_first() else {
         blocks.push(Block::Text(none(sized, asked, found)));
         blocks.extend(by_sizes(found));
+        blocks.extend(stronger(sized, asked, None, words));
         return;
     };
     blocks.push(Block::Text(told(asked, found, first, words)));
@@ -29,9 +30,48 @@ pub(super) fn blocks(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, words: Words,
         };
         blocks.push(Block::List(others.iter().map(line).collect()));
     }
+    blocks.extend(stronger(sized, asked, Some(first), words));
     if let Some(front) = asked.front {
         front::plans(sized, front, &sizes(first, words), words, blocks);
     }
+}
+
+/// The plan where load limits may be raised and paid for, against the one at the limits as given.
+fn stronger(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, given: Option<&Plan<'_>>, words: Words) -> Vec<Block> {
+    let (Some(stiffened), Some((structure, _))) = (asked.stiffened, sized.structure) else { return Vec::new() };
+    let price = super::structure::price(structure, words);
+    if stiffened.areas.iter().all(|area| area.raise == Load::ZERO) {
+        return vec![Block::Text(format!("No raise of load limits makes the plan cheaper at {price}."))];
+    }
+    let against = given.map_or("the limits as given have no plan".into(), |given| {
+        let less = Money::from_millionths(given.cost.millionths() - stiffened.cost.millionths());
+        format!("{} less than at the limits as given", words::money(less))
+    });
+    let sizes: Vec<_> = stiffened.sizes.iter().map(|size| words.name(size)).collect();
+    let rows = || stiffened.areas.iter();
+    let layout = |area: &StiffenedArea| {
+        let groups = area.layout.groups();
+        words.groups(&groups)
+    };
+    vec![
+        Block::Text(format!(
+            "With load limits raised where that pays, at {price}, the cheapest plan costs {}, {} of it strength ({against}): {}.",
+            words::money(stiffened.cost),
+            words::money(stiffened.strength),
+            list(&sizes)
+        )),
+        Block::Table(Table::of(vec![
+            ("area".into(), false, rows().map(|area| sized.roof.areas[area.layout.area].name.clone()).collect()),
+            (
+                format!("raise {}", words.load_unit()),
+                true,
+                rows().map(|area| words.bare_given_load(area.raise)).collect(),
+            ),
+            ("strength".into(), true, rows().map(|area| words::money(area.strength)).collect()),
+            ("layout".into(), false, rows().map(layout).collect()),
+            ("cost".into(), true, rows().map(|area| words::money(area.openings)).collect()),
+        ])),
+    ]
 }
 
 /// Why there is no plan: an area without any layout, or too few sizes for all areas together.

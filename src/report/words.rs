@@ -229,6 +229,11 @@ impl Words {
         format!("{} {}", self.bare_load(load), self.load_unit())
     }
 
+    /// A load as it was given, without its unit.
+    pub(super) fn bare_given_load(self, load: Load) -> String {
+        trimmed(self.in_load_unit(load), 3)
+    }
+
     /// A load as it was given.
     pub(super) fn given_load(self, load: Load) -> String {
         format!("{} {}", trimmed(self.in_load_unit(load), 3), self.load_unit())

@@ -26,7 +26,10 @@ mod kept;
 mod pairs;
 mod regrets;
 mod sets;
+mod stiffened;
 mod walk;
+
+pub use stiffened::{StiffenedArea, StiffenedPlan, stiffened_plan};
 
 use ending::Ending;
 use field::Field;

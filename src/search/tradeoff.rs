@@ -45,6 +45,11 @@ impl Raises {
         if system == System::Us { Load::psf(1.0) } else { Load::from_pa(50.0) }
     }
 
+    /// The raises, from the least on.
+    pub(super) fn each(&self) -> impl Iterator<Item = Load> {
+        self.steps.clone().map(|step| self.load(step))
+    }
+
     fn load(&self, step: i32) -> Load {
         self.step * f64::from(step)
     }
@@ -114,6 +119,15 @@ pub fn tradeoff(roof: &Roof, options: &Options, area: usize, raises: &Raises) ->
     Ok(treads.iter().rev().map(|&(step, _)| searched(step)).collect())
 }
 
+/// The roof with every load limit raised.
+pub(super) fn raised_by(roof: &Roof, raise: Load) -> Roof {
+    let mut roof = roof.clone();
+    for limits in roof.areas.iter_mut().flat_map(|area| &mut area.limits) {
+        limits.load = limits.load.map(|load| load + raise);
+    }
+    roof
+}
+
 /// The cheapest plan at every step; none where a device that may stand has no price.
 pub fn plan_tradeoff(
     roof: &Roof,
@@ -127,10 +141,7 @@ pub fn plan_tradeoff(
     options.watch.expect(steps.len());
     let at = |&step: &i32| {
         let raise = raises.load(step);
-        let mut roof = roof.clone();
-        for limits in roof.areas.iter_mut().flat_map(|area| &mut area.limits) {
-            limits.load = limits.load.map(|load| load + raise);
-        }
+        let roof = raised_by(roof, raise);
         let plans = plan(&roof, &options, asked, areas)?;
         options.watch.advance();
         let first = plans.plans.first();

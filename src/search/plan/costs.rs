@@ -41,6 +41,19 @@ impl Costs {
         self.sizes
     }
 
+    /// Lowers every cost to that of other costs, with so much more in each area; `places` says where each area stands there.
+    pub(super) fn lower_to(&mut self, other: &Self, places: &[usize], more: &[f64]) {
+        let areas = self.areas.max(1);
+        for (row, theirs) in self.pairs.chunks_mut(areas).zip(other.pairs.chunks(areas)) {
+            for ((cost, &place), more) in row.iter_mut().zip(places).zip(more) {
+                *cost = cost.min(theirs[place] + more);
+            }
+        }
+        for ((least, &place), more) in self.least.iter_mut().zip(places).zip(more) {
+            *least = least.min(other.least[place] + more);
+        }
+    }
+
     pub(super) fn areas(&self) -> usize {
         self.areas
     }

@@ -36,6 +36,8 @@ pub(super) struct Alike<'r> {
 
 /// What an area asks of a layout.
 pub(super) struct Asking {
+    /// Index of the area among the roof's.
+    area: usize,
     /// The demand in each case, m3/s.
     pub(super) demands: Vec<f64>,
     /// Edge in nanometres; none where it is not limited.
@@ -47,11 +49,13 @@ impl<'r> Field<'r> {
     pub(super) fn new(roof: &'r Roof, options: &Options, areas: &[usize]) -> Self {
         let groups = alike::groups(roof, areas);
         let alike: Vec<Alike<'r>> = groups.par_iter().map(|areas| Alike::new(roof, options, areas)).collect();
-        let stands = |size: usize| alike.iter().any(|alike| alike.candidates[size].is_some());
-        let standing = (0..roof.sizes.len()).filter(|&size| stands(size)).collect();
-        let outdoes = |better, worse| alike.iter().all(|alike| alike.outdoes(better, worse));
-        let sizes = not_outdone(standing, |size| roof.sizes[size].price, outdoes);
-        Self { sizes, alike }
+        let field = Self { sizes: Vec::new(), alike };
+        let sizes = not_outdone_in_all(roof, std::slice::from_ref(&field));
+        field.with_sizes(sizes)
+    }
+
+    fn stands(&self, size: usize) -> bool {
+        self.alike.iter().any(|alike| alike.candidates[size].is_some())
     }
 
     /// How many areas there are.
@@ -59,11 +63,30 @@ impl<'r> Field<'r> {
         self.alike.iter().map(|alike| alike.areas.len()).sum()
     }
 
+    /// The areas, by index among the roof's, in the order in which costs are held.
+    pub(super) fn order(&self) -> Vec<usize> {
+        self.alike.iter().flat_map(|alike| &alike.areas).map(|asking| asking.area).collect()
+    }
+
+    /// The same areas with other sizes.
+    pub(super) fn with_sizes(self, sizes: Vec<usize>) -> Self {
+        Self { sizes, ..self }
+    }
+
     /// Whether every size that may stand somewhere has a price.
     pub(super) fn is_priced(&self) -> bool {
         let candidates = self.alike.iter().flat_map(|alike| &alike.problem.candidates);
         candidates.into_iter().all(|candidate| candidate.size.price.is_some())
     }
+}
+
+/// The sizes that may stand somewhere and that no other outdoes in all of some fields of one roof.
+pub(super) fn not_outdone_in_all(roof: &Roof, fields: &[Field<'_>]) -> Vec<usize> {
+    let stands = |size: &usize| fields.iter().any(|field| field.stands(*size));
+    let standing = (0..roof.sizes.len()).filter(stands).collect();
+    let alike = || fields.iter().flat_map(|field| &field.alike);
+    let outdoes = |better, worse| alike().all(|alike| alike.outdoes(better, worse));
+    not_outdone(standing, |size| roof.sizes[size].price, outdoes)
 }
 
 /// The sizes that no other outdoes, of two alike the first; rising.
@@ -105,7 +128,7 @@ impl<'r> Alike<'r> {
             roof.cases.iter().map(demand).collect()
         };
         let mut asking: Vec<Asking> =
-            areas.iter().map(|&area| Asking { demands: demands(area), edge: edge(area) }).collect();
+            areas.iter().map(|&area| Asking { area, demands: demands(area), edge: edge(area) }).collect();
         asking.sort_by(|a, b| a.demands[0].total_cmp(&b.demands[0]));
         Self { problem, candidates, tables, areas: asking }
     }
