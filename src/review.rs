@@ -105,12 +105,13 @@ fn checked<'r>(
     let standing = search::standing(&groups, &liftable, situations, allowed, asked);
     let mut failings = misfits(roof, given.area, &groups);
     let broken = situations.iter().zip(allowed).enumerate().filter_map(|(case, (situation, &allowed))| {
-        let holds = |asked| layout::holds_at(&groups, situation, allowed, asked);
-        if !holds(Asked::default()) {
+        // The level is the least at which the demand leaves: it is allowed exactly where the capacity there suffices.
+        if standing.states[case].water.is_none_or(|water| water.level > allowed) {
             return Some(Failing::Limit { case });
         }
         let kept = standing.states[case].groups.iter().filter_map(|group| group.freeboard).reduce(Length::min)?;
-        (!holds(asked)).then_some(Failing::Freeboard { case, kept, asked: asked.freeboard? })
+        let holds = asked.freeboard.is_none() || layout::holds_at(&groups, situation, allowed, asked);
+        (!holds).then_some(Failing::Freeboard { case, kept, asked: asked.freeboard? })
     });
     failings.extend(broken);
     Checked { given, standing, failings }

@@ -564,3 +564,24 @@ fn a_flexible_roof_is_checked_with_its_ponding_head() {
         assert!(table.contains(told), "{told}: {table}");
     }
 }
+
+/// Of 5.70 in/h in a table of 5.20 in/h once in 25 years and 6.20 once in 100 the return period is half way on logarithms:
+/// once in 50 years. 12 in of open scupper under 3 in of head pass 180.83 gpm, which 3,053.4 ft2 gather at 5.70 in/h. By hand.
+#[test]
+fn the_return_period_that_an_opening_passes() {
+    let ft2 = 180.826 * 231.0 * 60.0 / 5.7 / 144.0;
+    let text = format!(
+        "title = \"old\"\nunits = \"us\"\ncatalogs = [\"devices.toml\"]\n\
+         storm = {{ table = \"rain.csv\", duration = \"15 min\", return_period = \"100 yr\" }}\nlimit = {{ load = \"26 psf\" }}\n\
+         area = [{{ name = \"a\", area = \"{ft2} ft2\" }}]\n[[layout]]\nname = \"x\"\narea = \"a\"\n\
+         groups = [{{ device = \"NS\", width = \"12 in\", count = 1, set_height = \"2 in\" }}]\n"
+    );
+    let rain = "duration_min,25_yr_in_h,100_yr_in_h\n15,5.2,6.2\n60,2.1,2.6\n";
+    let folder = Folder::new("return-period").with("drain.csv", DRAIN).with("rain.csv", rain).with("roof.toml", &text);
+    let output = folder.run(&["backsolve", "roof.toml", "--for", "rain", "--format", "json"]);
+    let document: Value = serde_json::from_slice(&output.stdout).expect("JSON");
+    let years = document["layouts"][0]["return_period_yr"].as_f64().expect("a return period");
+    assert_relative_eq!(years, 50.0, max_relative = 1e-3);
+    let table = String::from_utf8(folder.run(&["backsolve", "roof.toml", "--for", "rain"]).stdout).expect("UTF-8");
+    assert!(table.contains("up to once in 50 years; listed to 100 years"), "{table}");
+}

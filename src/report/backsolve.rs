@@ -5,9 +5,9 @@
 use serde::Serialize;
 
 use crate::review::{Checked, Solved, WIDEST};
-use crate::roof::Roof;
+use crate::roof::{Recurrence, Roof};
 use crate::search::Options;
-use crate::units::{Area, Intensity, Length, Load};
+use crate::units::{Area, Intensity, Length, Load, ReturnPeriod};
 
 use super::page::{self, Block, Table};
 use super::words::{Words, list, trimmed};
@@ -114,7 +114,9 @@ fn lines(roof: &Roof, checked: &Checked<'_>, solved: &Solved, words: Words) -> V
             let now = roof.storm.intensity;
             let holds = most.map_or(NONE.into(), |most| format!("at most {}", words.intensity_down(most)));
             let margin = most.map_or("-".into(), |most| percent(most.m_per_s() / now.m_per_s() - 1.0));
-            vec![line("rain", words.intensity(now), holds, margin)]
+            let mut lines = vec![line("rain", words.intensity(now), holds, margin)];
+            lines.extend(most.and_then(|most| return_period(roof, most)));
+            lines
         }
         Solved::Area(most) => {
             let holds = most.map_or(NONE.into(), |most| format!("at most {}", words.area_down(most)));
@@ -173,6 +175,21 @@ fn lines(roof: &Roof, checked: &Checked<'_>, solved: &Solved, words: Words) -> V
             vec![line("blocked", now, holds, more.map_or("-".into(), |more| change(i64::from(more))))]
         }
     }
+}
+
+/// How seldom the storm is that a layout just holds, where a rainfall table says.
+fn return_period(roof: &Roof, most: Intensity) -> Option<Line> {
+    let storm = &roof.storm;
+    let longest = storm.rainfall.as_ref()?.return_periods().last().copied()?;
+    // Never said to be more seldom than it is.
+    let years = |period: ReturnPeriod| format!("{} years", trimmed((period.years() * 10.0 + 1e-6).floor() / 10.0, 1));
+    let holds = match storm.recurrence(most)? {
+        Recurrence::Once(period) => format!("up to once in {}; listed to {}", years(period), years(longest)),
+        Recurrence::Oftener(period) => format!("not even once in {}, the least listed", years(period)),
+        Recurrence::Rarer(period) => format!("once in {} and more seldom storms, the most listed", years(period)),
+    };
+    let given = storm.return_period.map_or("-".into(), |period| format!("once in {}", years(period)));
+    Some(Line { unknown: "return period".into(), given, holds, margin: "-".into() })
 }
 
 fn limits(roof: &Roof, checked: &Checked<'_>, load: Option<Load>, depth: Option<Length>, words: Words) -> Vec<Line> {
@@ -274,6 +291,8 @@ struct OfLayout<'a> {
     #[serde(skip_serializing_if = "Option::is_none")]
     intensity_most_m_s: Option<f64>,
     #[serde(skip_serializing_if = "Option::is_none")]
+    return_period_yr: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
     area_most_m2: Option<f64>,
     #[serde(skip_serializing_if = "Option::is_none")]
     set_heights_up_m: Option<f64>,
@@ -313,6 +332,11 @@ fn of_layout<'a>(roof: &'a Roof, checked: &'a Checked<'_>, solved: &[Solved]) ->
     };
     for solved in solved {
         tell(&mut told, solved);
+        if let Solved::Rain(Some(most)) = solved
+            && let Some(Recurrence::Once(period)) = roof.storm.recurrence(*most)
+        {
+            told.return_period_yr = Some(period.years());
+        }
     }
     told
 }

@@ -1,5 +1,6 @@
 //! The report of `check`: the given layouts of each area side by side, what each leaves, and what fails.
 
+use rayon::prelude::*;
 use serde::Serialize;
 
 use crate::device::Place;
@@ -357,7 +358,8 @@ fn rows(checks: &Checks<'_, '_>) -> String {
     ];
     let mut rows = vec![head.to_vec()];
     let length = |length: Option<Length>| length.map_or(String::new(), |length| plain(words.small(length), 4));
-    for checked in checks.checked {
+    let of_layout = |checked: &Checked<'_>| {
+        let mut rows = Vec::with_capacity(checked.given.groups.len());
         let standing = &checked.standing;
         let water = standing.states[standing.case].water;
         let why: Vec<String> =
@@ -390,7 +392,9 @@ fn rows(checks: &Checks<'_, '_>) -> String {
                 why.join("; "),
             ]);
         }
-    }
+        rows
+    };
+    rows.extend(checks.checked.par_iter().flat_map_iter(of_layout).collect::<Vec<_>>());
     written(&rows)
 }
 

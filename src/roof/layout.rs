@@ -1,6 +1,8 @@
 //! A layout in an area: its groups, how it stands in a case, and how high its sills may be built.
 
-use crate::device::Size;
+use std::cell::RefCell;
+
+use crate::device::{Law, Size};
 use crate::root::crossing;
 use crate::units::{Flow, Length, Load, Money};
 
@@ -163,8 +165,13 @@ pub(crate) fn highest_level(groups: &[Group<'_>], situation: &Situation<'_>, all
 
 /// What the groups can carry at the highest level allowed, less the demand, m3/s.
 fn spare(groups: &[Group<'_>], situation: &Situation<'_>, allowed: Length, asked: Asked) -> f64 {
+    spare_of(&pool(groups, situation), groups, situation, allowed, asked)
+}
+
+/// The same of groups as they stand in a pool already.
+fn spare_of(pool: &Pool, groups: &[Group<'_>], situation: &Situation<'_>, allowed: Length, asked: Asked) -> f64 {
     let level = highest_level(groups, situation, allowed, asked);
-    (pool(groups, situation).capacity(level) - situation.demand).m3_per_s()
+    (pool.capacity(level) - situation.demand).m3_per_s()
 }
 
 /// What the groups can carry in the case that leaves least to spare, each at the highest level that its situation allows,
@@ -174,17 +181,58 @@ pub(crate) fn least_spare(groups: &[Group<'_>], situations: &[Situation<'_>], as
     situations.iter().map(spare).fold(f64::INFINITY, f64::min)
 }
 
+/// Groups in one situation, stood again and again at other heights.
+struct Lift<'s, 'r> {
+    situation: &'s Situation<'r>,
+    allowed: Length,
+    pool: Pool,
+    /// How much a loss raises each sill; it does not hang on the height.
+    rises: Vec<Length>,
+    /// Whether a flow hangs on how high the sill stands, so that curves are made anew.
+    hangs_on_sill: bool,
+}
+
+impl<'s, 'r> Lift<'s, 'r> {
+    fn new(groups: &[Group<'_>], situation: &'s Situation<'r>) -> Self {
+        let rise = |group: &Group<'_>| group.size.device.narrowed(situation.case.opening_loss).1;
+        let hangs = |group: &Group<'_>| group.size.law_at(&situation.site) == Law::KindsvaterCarter;
+        Self {
+            situation,
+            allowed: situation.allowable_level(),
+            pool: pool(groups, situation),
+            rises: groups.iter().map(rise).collect(),
+            hangs_on_sill: groups.iter().any(hangs),
+        }
+    }
+
+    fn stand(&mut self, groups: &[Group<'_>]) {
+        if self.hangs_on_sill {
+            self.pool = pool(groups, self.situation);
+            return;
+        }
+        for ((outlet, group), rise) in self.pool.outlets.iter_mut().zip(groups).zip(&self.rises) {
+            outlet.sill = (group.set_height + self.situation.case.sill_error) + *rise;
+        }
+    }
+}
+
 /// The highest common lift at which every case still meets every limit; none where the lowest heights already do not.
 ///
 /// All groups are lifted by the same amount, each stopping at the top of its own range. Lifting sills raises the level by
 /// at most the lift, so limits that hold at one lift hold at every lower one. Freeboard grows while its opening is lifted
 /// and falls once it has stopped, so it too, held at the lowest heights, ends once: the lifts that pass are one stretch.
 pub fn highest_lift(groups: &[Liftable<'_>], situations: &[Situation<'_>], asked: Asked) -> Option<Length> {
-    let allowed: Vec<Length> = situations.iter().map(Situation::allowable_level).collect();
+    let lowest: Vec<Group<'_>> = groups.iter().map(|group| group.group).collect();
+    let lifts = situations.iter().map(|situation| Lift::new(&lowest, situation));
+    let lifts = RefCell::new(lifts.collect::<Vec<_>>());
     let least_spare = |lift: f64| {
         let lifted: Vec<_> = groups.iter().map(|group| group.lifted(Length::from_m(lift))).collect();
-        let spare = |(situation, &allowed)| spare(&lifted, situation, allowed, asked);
-        situations.iter().zip(&allowed).map(spare).fold(f64::INFINITY, f64::min)
+        let mut lifts = lifts.borrow_mut();
+        let spares = lifts.iter_mut().map(|lift| {
+            lift.stand(&lifted);
+            spare_of(&lift.pool, &lifted, lift.situation, lift.allowed, asked)
+        });
+        spares.fold(f64::INFINITY, f64::min)
     };
     let most = groups.iter().map(|group| group.highest - group.group.set_height).fold(Length::ZERO, Length::max).m();
     if least_spare(0.0) < 0.0 {

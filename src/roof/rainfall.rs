@@ -180,6 +180,11 @@ impl Rainfall {
         })
     }
 
+    /// The return periods of the table, rising.
+    pub fn return_periods(&self) -> &[ReturnPeriod] {
+        &self.return_periods
+    }
+
     /// How often an intensity over a duration is met or passed: [`Self::intensity`] read backwards. Where several return
     /// periods have the same intensity, the longest of them.
     ///
