@@ -18,7 +18,7 @@ use super::file;
 use super::height::{self, Datum};
 use super::section::{Cell, Keys, Section, any_of, near};
 use super::setting::MOST_DEVICES;
-use super::sheet::{Entry, records, whole};
+use super::sheet::{Entry, is_headless, records, whole};
 
 static LAYOUT: Keys = Keys { table: "a [[layout]]", known: &["name", "area", "groups", "note"], unsupported: &[] };
 
@@ -387,6 +387,9 @@ impl Against<'_> {
             refuse(0..0, &format!("`{name}` is empty"), FORM);
             return None;
         };
+        if is_headless(&head, &source, log, FORM) {
+            return None;
+        }
         let schedule = Schedule { source: &source, log, columns: columns(&head, &source, log)? };
         // The layouts of this file by area and name; a name that stands in another place already is told once.
         let mut places: HashMap<(usize, String), usize> = HashMap::new();

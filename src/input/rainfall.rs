@@ -11,7 +11,7 @@ use crate::units::{Intensity, METRES_PER_INCH, ReturnPeriod, Time};
 use super::fault::{Fault, Log, Source, Span};
 use super::file;
 use super::section::{Cell, any_of, near};
-use super::sheet::{Entry, records, whole};
+use super::sheet::{Entry, is_headless, records, whole};
 
 /// Heads of the column of durations, with the size of their units in seconds.
 const DURATIONS: [(&str, f64); 2] = [("duration_min", 60.0), ("duration_h", 3600.0)];
@@ -118,17 +118,7 @@ impl Table<'_> {
 
     /// Reads what stands in each column; no answer where one is unknown, and whether all is well besides.
     fn read_head(&mut self, head: &[Entry<'_>]) -> Option<bool> {
-        if let [only] = head
-            && let Some(mark) = only.text.chars().find(|mark| ";\t".contains(*mark))
-        {
-            let mark = if mark == ';' { "semicolons" } else { "tabs" };
-            let title = format!("the columns are parted by {mark}");
-            let help = "part columns by commas, and write decimals with a point";
-            self.refuse(only.span.clone(), title, "one column only is seen here", help);
-            return None;
-        }
-        if head.iter().all(|entry| entry.text.parse::<f64>().is_ok()) {
-            self.refuse(whole(head), "the columns have no names", "the first row is one of numbers", FORM);
+        if is_headless(head, self.source, self.log, FORM) {
             return None;
         }
         let columns: Vec<Option<Column>> = head.iter().map(|entry| self.column(entry)).collect();

@@ -9,7 +9,7 @@ use crate::units::{Flow, Length};
 use super::fault::{Fault, Log, Source, Span};
 use super::file;
 use super::section::{Cell, any_of, near, optional};
-use super::sheet::{Entry, records, whole};
+use super::sheet::{Entry, is_headless, records, whole};
 
 const HEADS: [(&str, f64); 3] = [("head_in", 0.0254), ("head_mm", 0.001), ("head_m", 1.0)];
 const WIDTHS: [(&str, f64); 3] = [("width_in", 0.0254), ("width_mm", 0.001), ("width_m", 1.0)];
@@ -134,17 +134,7 @@ impl Table<'_> {
 
     /// Where heads and flows stand, and whether no other column is at fault.
     fn columns(&self, head: &[Entry<'_>]) -> Option<(Columns, bool)> {
-        if let [only] = head
-            && let Some(mark) = only.text.chars().find(|mark| ";\t".contains(*mark))
-        {
-            let mark = if mark == ';' { "semicolons" } else { "tabs" };
-            let title = format!("the columns are parted by {mark}");
-            let help = "part columns by commas, and write decimals with a point";
-            self.refuse(only.span.clone(), title, "one column only is seen here", help);
-            return None;
-        }
-        if head.iter().all(|entry| entry.text.parse::<f64>().is_ok()) {
-            self.refuse(whole(head), "the columns have no names", "the first row is one of numbers", FORM);
+        if is_headless(head, self.source, self.log, FORM) {
             return None;
         }
         let find = |names: &[(&'static str, f64)]| {

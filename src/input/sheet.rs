@@ -1,6 +1,8 @@
 //! CSV files as rows of cells, each with its place.
 
-use super::fault::{Source, Span};
+use std::sync::Arc;
+
+use super::fault::{Fault, Log, Source, Span};
 
 /// A cell: its text and where it stands.
 #[derive(Clone, Debug)]
@@ -12,6 +14,25 @@ pub(super) struct Entry<'t> {
 /// From the first cell of a row to its last.
 pub(super) fn whole(row: &[Entry<'_>]) -> Span {
     row.first().map_or(0, |entry| entry.span.start)..row.last().map_or(0, |entry| entry.span.end)
+}
+
+/// Whether a first row cannot be the head of a table, which is then logged: its columns are not parted by commas, or have no
+/// names. `form` says how a table looks.
+pub(super) fn is_headless(head: &[Entry<'_>], source: &Arc<Source>, log: &Log, form: &str) -> bool {
+    let refuse = |span: Span, title: String, label: &str, help: &str| {
+        log.put(Fault::error(title).at(source, span, label).help(help));
+        true
+    };
+    if let [only] = head
+        && let Some(mark) = only.text.chars().find(|mark| ";\t".contains(*mark))
+    {
+        let mark = if mark == ';' { "semicolons" } else { "tabs" };
+        let help = "part columns by commas, and write decimals with a point";
+        let title = format!("the columns are parted by {mark}");
+        return refuse(only.span.clone(), title, "one column only is seen here", help);
+    }
+    let numbers = head.iter().all(|entry| entry.text.parse::<f64>().is_ok());
+    numbers && refuse(whole(head), "the columns have no names".into(), "the first row is one of numbers", form)
 }
 
 /// The rows of a table that are neither empty nor a comment.

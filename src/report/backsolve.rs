@@ -83,10 +83,7 @@ fn blocks(backsolved: &Backsolved<'_, '_>) -> Vec<Block> {
          all together. Whether edge, parapet and code allow it is not asked."
             .into(),
     ));
-    blocks.push(Block::Heading("Assumptions".into()));
-    blocks.push(Block::List(notes::assumptions(&told)));
-    blocks.push(Block::Heading("Cautions".into()));
-    blocks.push(Block::List(notes::cautions(&told)));
+    blocks.extend(notes::blocks(&told, words));
     blocks
 }
 

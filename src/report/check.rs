@@ -85,12 +85,7 @@ fn blocks(checks: &Checks<'_, '_>) -> Vec<Block> {
         area_blocks(checks, area, words, &mut blocks);
     }
     let told = checks.told();
-    blocks.push(Block::Heading("Devices".into()));
-    blocks.push(Block::List(notes::laws(&told, words)));
-    blocks.push(Block::Heading("Assumptions".into()));
-    blocks.push(Block::List(notes::assumptions(&told)));
-    blocks.push(Block::Heading("Cautions".into()));
-    blocks.push(Block::List(notes::cautions(&told)));
+    blocks.extend(notes::blocks(&told, words));
     blocks
 }
 

@@ -11,6 +11,7 @@ use crate::search::{Measured, Options, Ranked};
 use crate::units::{Area, Length, System};
 
 use super::measure;
+use super::page::Block;
 use super::words::{self, Words, list, ranked_by, trimmed};
 use super::{cascade, storm};
 
@@ -64,8 +65,20 @@ fn sizes<'r>(told: &Told<'_, 'r>) -> Vec<&'r Size> {
     sizes
 }
 
+/// The notes at the end of every report: devices, assumptions, cautions.
+pub(super) fn blocks(told: &Told<'_, '_>, words: Words) -> Vec<Block> {
+    vec![
+        Block::Heading("Devices".into()),
+        Block::List(laws(told, words)),
+        Block::Heading("Assumptions".into()),
+        Block::List(assumptions(told)),
+        Block::Heading("Cautions".into()),
+        Block::List(cautions(told)),
+    ]
+}
+
 /// The devices that the layouts are made of, with their laws and sources; devices of one law in one line.
-pub(super) fn laws(told: &Told<'_, '_>, words: Words) -> Vec<String> {
+fn laws(told: &Told<'_, '_>, words: Words) -> Vec<String> {
     let mut lines: Vec<(String, Vec<String>)> = Vec::new();
     let area = told.areas.first().copied().unwrap_or(0);
     for size in sizes(told) {

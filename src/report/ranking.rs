@@ -26,12 +26,7 @@ pub(super) fn page(sized: &Sized<'_, '_>) -> Vec<Block> {
         plan::blocks(sized, asked, words, &mut blocks);
     }
     let told = sized.told();
-    blocks.push(Block::Heading("Devices".into()));
-    blocks.push(Block::List(notes::laws(&told, words)));
-    blocks.push(Block::Heading("Assumptions".into()));
-    blocks.push(Block::List(notes::assumptions(&told)));
-    blocks.push(Block::Heading("Cautions".into()));
-    blocks.push(Block::List(notes::cautions(&told)));
+    blocks.extend(notes::blocks(&told, words));
     blocks
 }
 
