@@ -68,8 +68,8 @@ pub struct Sized<'a, 'r> {
     /// that was asked for.
     pub changes: &'a [Option<Opened<'a>>],
     /// The price of strength, where the project gives one, and in the order of the answers each area so strengthened: an
-    /// inner none where no raise opens a layout, or where that was not found in time.
-    pub structure: Option<(&'a Structure, &'a [Option<Strengthened<'a>>])>,
+    /// inner none where no raise opens a layout, an error where the search was ended before that was known.
+    pub structure: Option<(&'a Structure, &'a [Weighed<'a>])>,
     /// The layouts that are not beaten, area by area in the order of the answers; empty where that is not asked for.
     pub fronts: &'a [Fronted<'r>],
     /// The plans of the whole roof, where one was asked for.
@@ -184,7 +184,7 @@ pub use backsolve::Backsolved;
 pub use check::Checks;
 pub use front::FRONT_ROWS;
 pub use rate::head_for;
-pub use structure::Strengthened;
+pub use structure::{Strengthened, Weighed};
 
 /// Writes what a device passes under each law.
 pub fn rate(rated: &Rated<'_>, format: Format, width: usize) -> String {

@@ -83,6 +83,11 @@ impl Default for Storm {
 }
 
 impl Storm {
+    /// How long the storm lasts that a case is held under, where stated.
+    pub fn duration_in(&self, case: &Case) -> Option<Time> {
+        case.storm.and_then(|storm| self.further.get(storm)).map_or(self.duration, |further| further.duration)
+    }
+
     /// How often an intensity, climate counted in, is met or passed over the duration of this storm; none without a table.
     pub fn recurrence(&self, intensity: Intensity) -> Option<Recurrence> {
         self.rainfall.as_ref()?.recurrence(intensity * (1.0 / self.climate), self.duration?).ok()

@@ -901,9 +901,9 @@ error: `OD` has no price, and strength is weighed against it
   ::: roof.toml:10:1
    |
 10 | [structure]
-   | ----------- weighed here
+   | ----------- asked for here
    |
-   = help: give the device a price, or take [structure] out
+   = help: give the device a price, or take what asks for it out
 
 "#]]);
 }

@@ -5,8 +5,8 @@ use std::process::ExitCode;
 use rayon::prelude::*;
 
 use crate::input::Project;
-use crate::report::{self, Format, Fronted, Sized, Strengthened};
-use crate::search::{self, Answer, Cures, Options, Outcome, Stiffened};
+use crate::report::{self, Format, Fronted, Sized, Strengthened, Weighed};
+use crate::search::{self, Answer, Cures, Options, Outcome, Stiffened, Stopped};
 
 use super::watching::Ending;
 use super::{Failure, OfProject};
@@ -44,8 +44,11 @@ pub(super) struct Args {
 }
 
 /// An area with a raised limit and its first layout there.
-fn strengthened(stiffened: Option<&Stiffened>) -> Option<Strengthened<'_>> {
-    stiffened.and_then(|stiffened| Some(Strengthened { stiffened, layout: stiffened.raised.layout()? }))
+fn strengthened(found: &Result<Option<Stiffened>, Stopped>) -> Weighed<'_> {
+    Ok(match found.as_ref().map_err(|&stopped| stopped)? {
+        Some(stiffened) => stiffened.raised.layout().map(|layout| Strengthened { stiffened, layout }),
+        None => None,
+    })
 }
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
@@ -75,14 +78,14 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let price = project.structure.as_ref();
     let stiffened = |structure| {
         let of_area = |answer: &Answer<'_>| search::stiffened(&project.roof, &options, structure, answer.area);
-        answers.par_iter().map(|answer| of_area(answer).ok().flatten()).collect::<Vec<_>>()
+        answers.par_iter().map(of_area).collect::<Vec<_>>()
     };
     let stiffened = price.map_or(Vec::new(), stiffened);
     let stronger = project
         .plan
         .zip(price)
         .and_then(|(asked, price)| search::stiffened_plan(&project.roof, &options, asked, price, &areas));
-    let strengthened: Vec<_> = stiffened.iter().map(|found| strengthened(found.as_ref())).collect();
+    let strengthened: Vec<_> = stiffened.iter().map(strengthened).collect();
     let fronts = if args.front { fronts(args, &project, &options, &areas) } else { Vec::new() };
     let unbeaten = plans.as_ref().filter(|_| args.front).and_then(|(asked, found)| {
         let cheapest = found.as_ref()?.plans.first()?;

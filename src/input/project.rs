@@ -115,15 +115,14 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
     };
     measure(section, &search, system, &mut catalogs, &mut assumed);
     laws_fit(section, choice, &search, &catalogs);
+    // Faults are looked for whatever the units are; they only say what is usual.
+    let usual = system.unwrap_or(System::Us);
     let structure = section
         .section("structure", &structure::STRUCTURE)
-        .zip(system)
-        .map(|(section, system)| structure::read(&section, system, &mut assumed));
-    let tolerances = system.map(|system| {
-        section
-            .section("tolerance", &tolerance::TOLERANCE)
-            .map_or_else(|| Some(Tolerances::usual(system)), |section| tolerance::read(&section, system))
-    });
+        .map(|section| structure::read(&section, usual, &mut assumed));
+    let tolerances = section
+        .section("tolerance", &tolerance::TOLERANCE)
+        .map_or_else(|| Some(Tolerances::usual(usual)), |section| tolerance::read(&section, usual));
     // A fault above does not keep the areas from being read: whatever is at fault in any file is told in one run.
     let cases = read_cases(section, &mut assumed);
     let searched = section.get("layout").is_none() && section.get("schedule").is_none();
@@ -153,7 +152,7 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         options: search.options()?,
         plan,
         structure,
-        tolerances: tolerances??,
+        tolerances: tolerances?,
         layouts: layouts?,
         assumed,
         warnings: Faults::default(),
@@ -449,7 +448,10 @@ fn prices(section: &Section<'_>, search: &Search, kinds: &[Option<Vec<Kind>>], c
     let reader = section.reader;
     let by_cost = search.rank_by.as_ref().is_some_and(|rank_by| rank_by.contains(&Criterion::Cost));
     // What a broken file seems not to say is no default.
-    let weighed = section.get("structure").map(|cell| cell.span());
+    let search_section = || section.get("search").and_then(|cell| cell.section(&SEARCH));
+    let planned = || search_section().and_then(|search| search.get("sizes").or(search.get("size_price")));
+    let weighed = section.get("structure").map(|cell| (cell.span(), "strength is weighed against it"));
+    let weighed = weighed.or_else(|| planned().map(|cell| (cell.span(), "a plan of the whole roof is of least cost")));
     if weighed.is_none() && (!by_cost || (search.rank_by_at.is_none() && !reader.log.is_whole(reader.source))) {
         return;
     }
@@ -461,7 +463,8 @@ fn prices(section: &Section<'_>, search: &Search, kinds: &[Option<Vec<Kind>>], c
         let (why, help) = if by_cost {
             ("layouts are ranked by cost", "leave \"cost\" out of `rank_by`: [\"count\", \"load\"] would pass")
         } else {
-            ("strength is weighed against it", "take [structure] out")
+            let why = weighed.as_ref().map_or("it is asked for", |(_, why)| why);
+            (why, "take what asks for it out")
         };
         let mut fault = Fault::error(format!("{named} has no price, and {why}"))
             .at(&offer.at.source, offer.at.span.clone(), "nothing is free by omission")
@@ -469,8 +472,8 @@ fn prices(section: &Section<'_>, search: &Search, kinds: &[Option<Vec<Kind>>], c
         if let (Some(at), true) = (&search.rank_by_at, by_cost) {
             fault = fault.at(reader.source, at.clone(), "ranked by cost here");
         }
-        if let (Some(at), false) = (&weighed, by_cost) {
-            fault = fault.at(reader.source, at.clone(), "weighed here");
+        if let (Some((at, _)), false) = (&weighed, by_cost) {
+            fault = fault.at(reader.source, at.clone(), "asked for here");
         }
         reader.log.put(fault.absent());
     }

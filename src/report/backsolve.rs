@@ -10,7 +10,7 @@ use crate::search::Options;
 use crate::units::{Area, Intensity, Length, Load, ReturnPeriod};
 
 use super::page::{self, Block, Table};
-use super::words::{Words, list, trimmed};
+use super::words::{self, Words, list, trimmed};
 use super::{Format, check, json, notes, ranking, written};
 
 /// What a report of values solved for is made of.
@@ -189,48 +189,51 @@ fn return_period(roof: &Roof, most: Intensity) -> Option<Line> {
     Some(Line { unknown: "return period".into(), given, holds, margin: "-".into() })
 }
 
-fn limits(roof: &Roof, checked: &Checked<'_>, load: Option<Load>, depth: Option<Length>, words: Words) -> Vec<Line> {
+fn limits(
+    roof: &Roof,
+    checked: &Checked<'_>,
+    load: Option<Option<Load>>,
+    depth: Option<Option<Length>>,
+    words: Words,
+) -> Vec<Line> {
     let limits = &roof.areas[checked.given.area].limits;
-    let mut lines = Vec::new();
-    let mut distinct = |unknown: &str, now: Vec<String>, least: Vec<String>, margin: String| {
-        let once = |mut texts: Vec<String>| {
-            texts.dedup();
-            list(&texts)
-        };
-        lines.push(Line {
-            unknown: unknown.into(),
-            given: once(now),
-            holds: format!("at least {}", once(least)),
-            margin,
-        });
+    let once = |mut texts: Vec<String>| {
+        texts.dedup();
+        list(&texts)
     };
+    let line = |unknown: &str, now: Vec<String>, least: Option<Vec<String>>, margin: Option<String>| Line {
+        unknown: unknown.into(),
+        given: once(now),
+        holds: least.map_or("no value holds: something else fails".into(), |least| format!("at least {}", once(least))),
+        margin: margin.unwrap_or("-".into()),
+    };
+    let mut lines = Vec::new();
     if let Some(by) = load {
         let loads = || limits.iter().filter_map(|limits| limits.load);
-        distinct(
+        lines.push(line(
             "load limit",
             loads().map(|load| words.given_load(load)).collect(),
-            loads().map(|load| words.load_up(load + by)).collect(),
-            format!("{:+.*} {}", if words.us() { 1 } else { 2 }, words.in_load_unit(by), words.load_unit()),
-        );
+            by.map(|by| loads().map(|load| words.load_up(load + by)).collect()),
+            by.map(|by| format!("{} {}", signed_load_up(by, words), words.load_unit())),
+        ));
     }
     if let Some(by) = depth {
         let depths = || limits.iter().filter_map(|limits| limits.depth);
-        distinct(
+        let up = |depth: Length| format!("{} {}", words.depth_up(depth), words.small_unit());
+        lines.push(line(
             "depth limit",
             depths().map(|depth| words.size(depth)).collect(),
-            depths().map(|depth| format!("{} {}", words.depth_up(depth + by), words.small_unit())).collect(),
-            format!("{} {}", signed_up(by, words), words.small_unit()),
-        );
-    }
-    if lines.is_empty() {
-        lines.push(Line {
-            unknown: "limit".into(),
-            given: "-".into(),
-            holds: "no limit holds: overwhelmed".into(),
-            margin: "-".into(),
-        });
+            by.map(|by| depths().map(|depth| up(depth + by)).collect()),
+            by.map(|by| format!("{} {}", signed_up(by, words), words.small_unit())),
+        ));
     }
     lines
+}
+
+fn signed_load_up(load: Load, words: Words) -> String {
+    let (scale, decimals) = if words.us() { (10.0, 1) } else { (100.0, 2) };
+    let value = (words.in_load_unit(load) * scale - 1e-6).ceil() / scale;
+    format!("{}{}", if value < 0.0 { "" } else { "+" }, words::grouped(value, decimals))
 }
 
 /// A change of a count.
@@ -359,9 +362,10 @@ fn tell(told: &mut OfLayout<'_>, solved: &Solved) {
         }
         Solved::Count(least) => told.counts_least.clone_from(least),
         Solved::Limit { load, depth } => {
-            told.load_limits_change_pa = load.map(Load::pa);
-            told.depth_limits_change_m = depth.map(Length::m);
-            (load.is_none() && depth.is_none()).then(|| none("limit"));
+            told.load_limits_change_pa = load.flatten().map(Load::pa);
+            told.depth_limits_change_m = depth.flatten().map(Length::m);
+            matches!(load, Some(None)).then(|| none("load limit"));
+            matches!(depth, Some(None)).then(|| none("depth limit"));
         }
         Solved::Blocked(more) => {
             told.blocked_more = *more;

@@ -48,7 +48,7 @@ impl<'a, 'r> Checks<'a, 'r> {
     }
 
     /// The storm through the storage of a layout, by its place; nothing where that was not asked for, or cannot be routed.
-    fn routed(&self, place: usize) -> &'a [Routed] {
+    fn routed(&self, place: usize) -> &'a [Option<Routed>] {
         self.storage.and_then(|storage| storage.layouts.get(place)).map_or(&[], Vec::as_slice)
     }
 
@@ -235,7 +235,7 @@ pub(super) fn failing_in_words(roof: &Roof, checked: &Checked<'_>, failing: &Fai
             match checked.standing.states[case].water {
                 Some(_) if situation.ponding.is_unstable() => format!("the roof is unstable in {}", case_named(case)),
                 None => format!(
-                    "it does not carry {} in {}: its tables are at their end",
+                    "it does not carry {} in {}: its tables are at their end, or what is left of it is shut or blocked",
                     words.flow(situation.demand),
                     case_named(case)
                 ),
@@ -442,6 +442,8 @@ struct OfSensitivity<'a> {
 struct OfStep<'a> {
     input: String,
     load_pa: Option<f64>,
+    worst_load_pa: Option<f64>,
+    worst_case: Option<&'a str>,
     breaks_in: Option<&'a str>,
     steps_that_hold: Option<f64>,
 }
@@ -511,7 +513,9 @@ fn of_sensitivity<'a>(roof: &'a Roof, found: &Sensitivity) -> OfSensitivity<'a> 
             Some(Input::Law(law)) => law.name().into(),
             _ => sensitivity::input(effect),
         },
-        load_pa: effect.load.map(Load::pa),
+        load_pa: effect.load.map(Load::pa).filter(|load| load.is_finite()),
+        worst_load_pa: effect.worst.map(|(load, _)| load.pa()).filter(|load| load.is_finite()),
+        worst_case: effect.worst.map(|(_, case)| roof.cases[case].name.as_str()),
         breaks_in: effect.breaks.map(|case| roof.cases[case].name.as_str()),
         steps_that_hold: effect.holds,
     };

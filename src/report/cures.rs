@@ -21,11 +21,11 @@ pub(super) fn blocks(opened: &Opened<'_>, words: Words) -> Vec<Block> {
     blocks
 }
 
-/// What the cost of the first layout binds on: the single changes that save, the greatest saving first.
-pub(super) fn binding(opened: &Opened<'_>, first: &Ranked<'_>, words: Words) -> Vec<Block> {
+/// What the least cost binds on: the single changes that save, the greatest saving first.
+pub(super) fn binding(opened: &Opened<'_>, words: Words) -> Vec<Block> {
     let mut blocks = Vec::new();
     let saved = |layout: &Ranked<'_>| {
-        let (now, then) = (first.cost?.millionths(), layout.cost?.millionths());
+        let (now, then) = (opened.now?.millionths(), layout.cost?.millionths());
         Some(words::money(Money::from_millionths(now - then)))
     };
     let line = |(cure, layout): &Opening<'_>| {

@@ -62,6 +62,8 @@ struct Area<'a> {
     #[serde(skip_serializing_if = "Option::is_none")]
     stiffened: Option<Stiffened<'a>>,
     #[serde(skip_serializing_if = "Option::is_none")]
+    stiffened_outcome: Option<&'static str>,
+    #[serde(skip_serializing_if = "Option::is_none")]
     ponding: Option<ponding::OfArea>,
     framing_analysis: Vec<String>,
     layouts: Vec<Layout<'a>>,
@@ -359,7 +361,8 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
     let cures = opened.filter(|_| found.is_empty());
     let layouts = found.iter().enumerate().map(|(index, ranked)| layout(sized, answer.area, index + 1, ranked));
     let strengthened = sized.structure.and_then(|(_, found)| {
-        let found = sized.place(answer.area).and_then(|place| found[place].as_ref())?;
+        let weighed = sized.place(answer.area).and_then(|place| found.get(place))?;
+        let found = weighed.as_ref().ok()?.as_ref()?;
         let site = found.stiffened.raised.roof.site(0, None);
         Some(Stiffened {
             load_limit_more_pa: found.stiffened.raise.pa(),
@@ -368,7 +371,14 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
             groups: found.layout.groups.iter().map(|placed| group(placed, &site)).collect(),
         })
     });
+    let weighed = sized.structure.and_then(|(_, found)| found.get(sized.place(answer.area)?));
+    let stiffened_outcome = weighed.map(|weighed| match weighed {
+        Ok(Some(_)) => "optimal",
+        Ok(None) => "infeasible",
+        Err(_) => "stopped",
+    });
     Area {
+        stiffened_outcome,
         stiffened: strengthened,
         name: &sized.roof.areas[answer.area].name,
         demand_m3_s: sized.roof.demands[answer.area].m3_per_s(),

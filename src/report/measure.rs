@@ -12,12 +12,16 @@ use super::{Sized, ranking, work};
 /// The lines of an area; none where nothing in its layouts is made to measure.
 pub(super) fn blocks(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Words) -> Vec<Block> {
     let numbered = layouts.iter().enumerate().filter_map(|(index, layout)| Some((index + 1, layout.made.as_ref()?)));
-    let lines: Vec<String> = numbered
-        .map(|(rank, made)| match made {
-            Measured::NoBetter => format!("{rank}: no better than on the grid"),
-            Measured::Fitted(fitted) => format!("{rank}: {}", in_words(sized, fitted, words)),
-        })
-        .collect();
+    let (mut lines, mut kept) = (Vec::new(), Vec::new());
+    for (rank, made) in numbered {
+        match made {
+            Measured::NoBetter => kept.push(rank.to_string()),
+            Measured::Fitted(fitted) => lines.push(format!("{rank}: {}", in_words(sized, fitted, words))),
+        }
+    }
+    if !kept.is_empty() {
+        lines.push(format!("{}: no better than on the grid", list(&kept)));
+    }
     let Some(made) = made_of(&sized.roof.sizes).next().filter(|_| !lines.is_empty()) else { return Vec::new() };
     let fitted: Vec<(usize, Ranked<'_>)> = fitted(layouts);
     let cheapest = cheapest(layouts).map_or(String::new(), |rank| format!("; the cheapest is now {rank}"));

@@ -47,10 +47,29 @@ impl Table {
         table
     }
 
-    /// The widest column of text: the one that gives way on a narrow terminal.
-    fn widest(&self) -> Option<usize> {
-        let wide = |&index: &usize| self.rows.iter().map(|row| widest(&row[index])).max().unwrap_or(0);
-        (0..self.head.len()).filter(|&index| !self.numbers[index]).max_by_key(|index| (wide(index), usize::MAX - index))
+    /// Characters of the widest cell of a column, its head included.
+    fn content(&self, index: usize) -> usize {
+        self.rows.iter().map(|row| widest(&row[index])).max().unwrap_or(0).max(widest(&self.head[index]))
+    }
+
+    /// The columns of text that give way on a terminal so wide, the widest first, and the least that each may become: as many
+    /// as it takes.
+    fn yielding(&self, width: usize) -> Vec<(usize, u16)> {
+        let mut texts: Vec<usize> = (0..self.head.len()).filter(|&index| !self.numbers[index]).collect();
+        texts.sort_by_key(|&index| std::cmp::Reverse(self.content(index)));
+        let all: usize = (0..self.head.len()).map(|index| self.content(index) + PADDING + 1).sum::<usize>() + 1;
+        let mut yielding = Vec::new();
+        let mut left = all;
+        for (place, index) in texts.into_iter().enumerate() {
+            if place > 0 && left <= width {
+                break;
+            }
+            let content = self.content(index) + PADDING;
+            let least = content.min(usize::from(if place == 0 { TEXT_COLUMN } else { NARROW_COLUMN }));
+            left -= content - least;
+            yielding.push((index, u16::try_from(least).unwrap_or(TEXT_COLUMN)));
+        }
+        yielding
     }
 
     fn escaped(&self) -> Self {
@@ -71,6 +90,7 @@ impl Table {
         for row in &self.rows {
             grid.add_row(row.iter().map(Cell::new));
         }
+        let yielding = width.map_or(Vec::new(), |width| self.yielding(width));
         for (index, &numbers) in self.numbers.iter().enumerate() {
             let Some(column) = grid.column_mut(index) else { continue };
             if numbers {
@@ -79,14 +99,12 @@ impl Table {
             if width.is_none() {
                 continue;
             }
-            if self.widest() == Some(index) {
-                let content =
-                    self.rows.iter().map(|row| widest(&row[index])).max().unwrap_or(0).max(widest(&self.head[index]));
-                let least = u16::try_from(content + PADDING).unwrap_or(TEXT_COLUMN).min(TEXT_COLUMN);
-                column.set_constraint(ColumnConstraint::LowerBoundary(Width::Fixed(least)));
-            } else {
-                column.set_constraint(ColumnConstraint::ContentWidth);
-            }
+            let least = yielding.iter().find(|(place, _)| *place == index).map(|&(_, least)| least);
+            column.set_constraint(
+                least.map_or(ColumnConstraint::ContentWidth, |least| {
+                    ColumnConstraint::LowerBoundary(Width::Fixed(least))
+                }),
+            );
         }
         grid.to_string()
     }
@@ -94,6 +112,8 @@ impl Table {
 
 /// Narrowest that the widest column of text may become, in characters.
 const TEXT_COLUMN: u16 = 24;
+/// Narrowest that a further column of text may become, where that one is not enough.
+const NARROW_COLUMN: u16 = 10;
 /// Blanks on both sides of a cell.
 const PADDING: usize = 2;
 

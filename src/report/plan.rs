@@ -1,6 +1,6 @@
 //! The plan of the whole roof: its cost, its sizes, each area's layout, and what one size fewer or more would cost.
 
-use crate::search::{Outcome, Plan, Plans, StiffenedArea};
+use crate::search::{Criterion, Outcome, Plan, Plans, StiffenedArea};
 use crate::units::{Load, Money};
 
 use super::page::{Block, Table};
@@ -8,7 +8,8 @@ use super::words::{self, Words, list};
 use super::{Asked, Sized, front};
 
 pub(super) fn blocks(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, words: Words, blocks: &mut Vec<Block>) {
-    blocks.push(Block::Heading("The whole roof".into()));
+    let whole = sized.answers.len() == sized.roof.areas.len();
+    blocks.push(Block::Heading(if whole { "The whole roof" } else { "The areas asked for together" }.into()));
     let Some(found) = asked.found else {
         blocks.push(Block::Text("No plan: a device that may stand on the roof has no price.".into()));
         return;
@@ -99,8 +100,9 @@ fn told(asked: &Asked<'_, '_>, found: &Plans<'_>, plan: &Plan<'_>, words: Words)
     let count = plan.sizes.len();
     let priced = if price > Money::default() {
         format!(
-            ", {} of it for {count} distinct sizes at {}",
+            ", {} of it for {count} distinct {} at {}",
             words::money(price * u32::try_from(count).unwrap_or(0)),
+            if count == 1 { "size" } else { "sizes" },
             words::money(price)
         )
     } else {
@@ -125,7 +127,7 @@ fn areas(sized: &Sized<'_, '_>, plan: &Plan<'_>, words: Words) -> Table {
     let roof = sized.roof;
     let rows = || sized.answers.iter().zip(&plan.layouts);
     let alone = |outcome: &Outcome<'_>| outcome.layouts().iter().filter_map(|layout| layout.cost).min();
-    Table::of(vec![
+    let mut columns = vec![
         ("area".into(), false, rows().map(|(answer, _)| roof.areas[answer.area].name.clone()).collect()),
         ("layout".into(), false, rows().map(|(_, layout)| words.layout(layout)).collect()),
         ("cost".into(), true, rows().map(|(_, layout)| layout.cost.map_or("-".into(), words::money)).collect()),
@@ -142,7 +144,12 @@ fn areas(sized: &Sized<'_, '_>, plan: &Plan<'_>, words: Words) -> Table {
                 .collect(),
         ),
         ("case".into(), false, rows().map(|(_, layout)| roof.cases[layout.case].name.clone()).collect()),
-    ])
+    ];
+    // Another first criterion lists other layouts: the cheapest of the list is not the cheapest of all.
+    if sized.options.rank_by.first() != Some(&Criterion::Cost) {
+        columns.retain(|(head, _, _)| head != "alone");
+    }
+    Table::of(columns)
 }
 
 /// Least cost by the number of sizes allowed.
@@ -158,9 +165,6 @@ fn by_sizes(found: &Plans<'_>) -> Vec<Block> {
         (Some(before), Some(now)) => words::money(Money::from_millionths(before.millionths() - now.millionths())),
         _ => "-".into(),
     };
-    if found.by_sizes.is_empty() {
-        return Vec::new();
-    }
     let rows = || 0..found.by_sizes.len();
     vec![
         Block::Text("Least cost by the number of sizes allowed, the price of sizes included:".into()),

@@ -115,7 +115,7 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
                 blocks.extend(measure::work(roof, answer.area, &layouts[0], words));
             }
             if let Some(opened) = sized.changes_of(answer.area) {
-                blocks.extend(cures::binding(opened, &layouts[0], words));
+                blocks.extend(cures::binding(opened, words));
             }
         }
     }
@@ -126,11 +126,11 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
 fn strengthened(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut Vec<Block>) {
     let Some((structure, found)) = sized.structure else { return };
     if sized.roof.areas[answer.area].limits.iter().all(|limits| limits.load.is_none()) {
+        blocks.push(Block::Text("Stiffened: no load limit is given here, so there is none to raise.".into()));
         return;
     }
-    let found = sized.place(answer.area).and_then(|place| found[place].as_ref());
-    let given = answer.outcome.layouts().iter().filter_map(|layout| layout.cost).min();
-    blocks.push(Block::Text(super::structure::told(found, structure, given, words)));
+    let weighed = sized.place(answer.area).and_then(|place| found.get(place));
+    blocks.extend(weighed.map(|weighed| Block::Text(super::structure::told(weighed, structure, words))));
 }
 
 /// What the area must pass, and the same by the constant that practice writes.
@@ -170,7 +170,12 @@ fn limit_in_words(roof: &Roof, area: usize, words: Words) -> String {
         let level = crate::roof::Situation { limits, ..level };
         let allowed = level.allowable_level();
         if allowed > Length::ZERO {
-            return format!("{}, water up to {}", words.limits(limits), words.depth(allowed));
+            return format!(
+                "{}, water up to {} {}",
+                words.limits(limits),
+                words.depth_down(allowed),
+                words.small_unit()
+            );
         }
         let free = level.reach(Length::ZERO).map_or(String::new(), |reach| {
             format!(": with a free outlet its channel already stands {} deep", words.depth(reach.deepest))

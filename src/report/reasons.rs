@@ -89,8 +89,8 @@ fn limits_not_held(
     let all = |cases: &[usize]| list(&cases.iter().map(|&one| case(one)).collect::<Vec<_>>());
     let Some(governing) = best.governing else {
         return format!(
-            "Nothing here carries the {} of {name} in {}: every layout of rated devices is overwhelmed, its tables at \
-             their end, as is {}.",
+            "Nothing here carries the {} of {name} in {}: every layout is overwhelmed, its tables at their end \
+             or its openings shut or blocked, as is {}.",
             words.flow(situation.demand),
             case(best.case),
             words.layout(best)

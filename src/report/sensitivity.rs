@@ -16,8 +16,9 @@ pub(super) fn blocks(
 ) -> Vec<Block> {
     let name = &checked.given.name;
     let case = &roof.cases[found.case].name;
-    let Some(base) = found.load else {
-        return vec![Block::Text(format!("\"{name}\" is overwhelmed in \"{case}\" as it is: no step says more."))];
+    let Some(base) = found.load.filter(|load| load.pa().is_finite()) else {
+        let how = if found.load.is_some() { "unstable under water" } else { "overwhelmed" };
+        return vec![Block::Text(format!("\"{name}\" is {how} in \"{case}\" as it is: no step says more."))];
     };
     let column = |tell: &dyn Fn(&Effect) -> String| found.effects.iter().map(tell).collect::<Vec<_>>();
     let table = Table::of(vec![
@@ -36,8 +37,8 @@ pub(super) fn blocks(
             column(&|effect| effect.holds.map_or("-".into(), |many| step(effect, many, tolerances, words))),
         ),
     ]);
-    let corner = match found.corner.load {
-        Some(load) => words.load(load),
+    let corner = match found.corner.worst {
+        Some((load, case)) => format!("{} in \"{}\"", words.load(load), roof.cases[case].name),
         None => "overwhelmed".into(),
     };
     let broken = holds(roof, &found.corner);

@@ -16,16 +16,15 @@ const MISSING: &str = "the duration of the storm: give [storm] duration = \"15 m
 pub(super) fn blocks(
     roof: &Roof,
     area: usize,
-    routed: &[(&Checked<'_>, &[Routed])],
+    routed: &[(&Checked<'_>, &[Option<Routed>])],
     storage: &Storage,
     words: Words,
 ) -> Vec<Block> {
-    let Some(duration) = storage.duration else {
+    if !is_any_routed(storage) {
         return vec![Block::Text(format!("With storage on the roof: not routed, for want of {MISSING}."))];
-    };
+    }
     let head = format!(
-        "With storage on the roof, a second opinion that changes no verdict: the storm as one block of {}, {}.",
-        words::duration(duration),
+        "With storage on the roof, a second opinion that changes no verdict: the storm of each case as one block, {}.",
         held(&roof.areas[area], words)
     );
     let foot = format!(
@@ -35,6 +34,11 @@ pub(super) fn blocks(
         words.size(DRAINED)
     );
     vec![Block::Text(head), Block::Table(table(roof, routed, words)), Block::Text(foot)]
+}
+
+/// Whether any case's storm has a duration.
+fn is_any_routed(storage: &Storage) -> bool {
+    storage.layouts.iter().flatten().any(Option::is_some)
 }
 
 /// How water is held on an area.
@@ -47,24 +51,26 @@ fn held(area: &Catchment, words: Words) -> String {
     }
 }
 
-fn table(roof: &Roof, routed: &[(&Checked<'_>, &[Routed])], words: Words) -> Table {
+fn table(roof: &Roof, routed: &[(&Checked<'_>, &[Option<Routed>])], words: Words) -> Table {
     let rows = || {
         routed.iter().flat_map(|(checked, cases)| {
             cases.iter().enumerate().map(move |(case, routed)| (checked.given.name.as_str(), case, routed))
         })
     };
-    let column = |tell: &dyn Fn(&Routed) -> String| rows().map(|(_, _, routed)| tell(routed)).collect::<Vec<_>>();
-    let duration = roof.storm.duration.unwrap_or(Time::ZERO);
+    let column = |tell: &dyn Fn(&Routed) -> String| {
+        rows().map(|(_, _, routed)| routed.as_ref().map_or("not routed".into(), tell)).collect::<Vec<_>>()
+    };
     let mut columns = vec![
         ("layout".to_string(), false, rows().map(|(name, _, _)| name.to_string()).collect::<Vec<_>>()),
         ("case".into(), false, rows().map(|(_, case, _)| roof.cases[case].name.clone()).collect()),
+        ("rain for".into(), true, column(&|routed| words::duration(routed.duration))),
         (
             format!("steady {}", words.small_unit()),
             true,
             column(&|routed| routed.steady.map_or("overwhelmed".into(), |level| words.bare_depth(level))),
         ),
         (format!("peak {}", words.small_unit()), true, column(&|routed| words.bare_depth(routed.peak))),
-        ("at the sill after".into(), false, column(&|routed| fills(routed, duration))),
+        ("at the sill after".into(), false, column(&fills)),
         ("drained after".into(), false, column(&|routed| routed.drains.map_or("-".into(), time))),
     ];
     if roof.cases.len() == 1 {
@@ -73,10 +79,10 @@ fn table(roof: &Roof, routed: &[(&Checked<'_>, &[Routed])], words: Words) -> Tab
     Table::of(columns)
 }
 
-fn fills(routed: &Routed, duration: Time) -> String {
+fn fills(routed: &Routed) -> String {
     match routed.fills {
         None => "no sill passes water".into(),
-        Some(fills) if fills >= duration => format!("{}: not in this storm", time(fills)),
+        Some(fills) if fills >= routed.duration => format!("{}: not in this storm", time(fills)),
         Some(fills) => time(fills),
     }
 }
@@ -91,7 +97,6 @@ fn time(time: Time) -> String {
 #[derive(Serialize)]
 pub(super) struct OfLayout<'a> {
     credit: &'static str,
-    duration_s: Option<f64>,
     drained_above_sill_m: f64,
     #[serde(skip_serializing_if = "Option::is_none")]
     missing: Option<&'static str>,
@@ -101,6 +106,7 @@ pub(super) struct OfLayout<'a> {
 #[derive(Serialize)]
 struct OfCase<'a> {
     name: &'a str,
+    duration_s: f64,
     steady_level_m: Option<f64>,
     peak_level_m: f64,
     sill_m: Option<f64>,
@@ -110,9 +116,10 @@ struct OfCase<'a> {
 }
 
 /// What storage does for a layout, for other programs.
-pub(super) fn of_layout<'a>(roof: &'a Roof, storage: &Storage, routed: &[Routed]) -> OfLayout<'a> {
+pub(super) fn of_layout<'a>(roof: &'a Roof, storage: &Storage, routed: &[Option<Routed>]) -> OfLayout<'a> {
     let of_case = |(case, routed): (usize, &Routed)| OfCase {
         name: &roof.cases[case].name,
+        duration_s: routed.duration.s(),
         steady_level_m: routed.steady.map(Length::m),
         peak_level_m: routed.peak.m(),
         sill_m: routed.sill.map(Length::m),
@@ -122,9 +129,8 @@ pub(super) fn of_layout<'a>(roof: &'a Roof, storage: &Storage, routed: &[Routed]
     };
     OfLayout {
         credit: "none: codes size by the steady level",
-        duration_s: storage.duration.map(Time::s),
         drained_above_sill_m: DRAINED.m(),
-        missing: storage.duration.is_none().then_some(MISSING),
-        cases: routed.iter().enumerate().map(of_case).collect(),
+        missing: (!is_any_routed(storage)).then_some(MISSING),
+        cases: routed.iter().enumerate().filter_map(|(case, routed)| Some(of_case((case, routed.as_ref()?)))).collect(),
     }
 }

@@ -101,7 +101,11 @@ fn place(reading: &Reading) -> String {
 
 /// How often a case's rain is met, where it differs from the design rain and there is a table.
 pub(super) fn recurrence(case: &Case, storm: &Storm) -> String {
-    let years = |period: ReturnPeriod| trimmed(period.years(), usize::from(period.years() < 10.0));
+    // Never said to be more seldom than it is.
+    let years = |period: ReturnPeriod| {
+        let scale = if period.years() < 10.0 { 10.0 } else { 1.0 };
+        trimmed((period.years() * scale + 1e-6).floor() / scale, 1)
+    };
     match storm.recurrence(storm.intensity * case.rain) {
         Some(Recurrence::Once(period)) => format!(", once in {} years by the table", years(period)),
         Some(Recurrence::Oftener(period)) => format!(", more often than once in {} years", years(period)),

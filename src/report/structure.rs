@@ -1,6 +1,6 @@
 //! A stronger roof against fewer openings, in words.
 
-use crate::search::{Opening, Ranked, Relaxation, Stiffened, Structure};
+use crate::search::{Opening, Ranked, Relaxation, Stiffened, Stopped, Structure};
 use crate::units::{Area, Load, METRES_PER_FOOT, Money};
 
 use super::words::{self, Words};
@@ -14,6 +14,9 @@ pub struct Strengthened<'a> {
     pub layout: Ranked<'a>,
 }
 
+/// Whether and how a raise of an area's limit pays: none where no raise opens a layout.
+pub type Weighed<'a> = Result<Option<Strengthened<'a>>, Stopped>;
+
 impl Strengthened<'_> {
     /// Openings and strength together; none where a device has no price.
     pub(super) fn total(&self) -> Option<Money> {
@@ -21,15 +24,13 @@ impl Strengthened<'_> {
     }
 }
 
-/// Whether and how a raise of an area's load limit pays; `given` is the least cost at the limit as given.
-pub(super) fn told(
-    strengthened: Option<&Strengthened<'_>>,
-    structure: &Structure,
-    given: Option<Money>,
-    words: Words,
-) -> String {
+/// Whether and how a raise of an area's load limit pays.
+pub(super) fn told(weighed: &Weighed<'_>, structure: &Structure, words: Words) -> String {
     let price = price(structure, words);
     let most = words.given_load(structure.most);
+    let Ok(strengthened) = weighed else {
+        return "Stiffened: the search was ended before it was known whether a raise of the load limit pays.".into();
+    };
     let Some(strengthened) = strengthened else {
         return format!("Stiffened: no layout was found, even with the load limit raised by {most}.");
     };
@@ -38,7 +39,7 @@ pub(super) fn told(
     if found.raise == Load::ZERO {
         return format!("Stiffened: no raise of the load limit by up to {most} pays at {price}.");
     }
-    let against = match given.map(|given| given.millionths() - total.millionths()) {
+    let against = match found.given.map(|given| given.millionths() - total.millionths()) {
         Some(saved) => format!("{} less than at the limit as given", words::money(Money::from_millionths(saved))),
         None => "while the limit as given has no layout".into(),
     };

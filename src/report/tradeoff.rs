@@ -61,12 +61,14 @@ fn pays_under(cost: Money, given: Option<Money>, raise: Load, ground: f64, words
 
 fn blocks(traded: &Traded<'_>) -> Vec<Block> {
     let words = Words(traded.roof.system);
+    let step = traded.structure.and_then(|structure| structure.step);
+    let steps = step.map_or(String::new(), |step| format!(", in the structure's steps of {},", words.given_load(step)));
     let mut blocks = vec![
         Block::Title(format!("{}: openings against strength", traded.roof.title)),
         Block::Text(format!(
             "The load limits of all cases are raised alike, from {} to {}; depth limits and all else stay. A row is the least \
-             raise from which a layout so cheap exists; the first may reach lower. A raise pays where strength costs less \
-             than the last column says.",
+             raise{steps} from which a layout so cheap exists; the first may reach lower. A raise pays where strength costs \
+             less than the last column says.",
             signed(traded.lowest, words),
             signed(traded.highest, words)
         )),

@@ -8,7 +8,7 @@
 
 use crate::device::{Device, Size};
 use crate::roof::layout::{Asked, Group, least_spare};
-use crate::roof::{Given, Roof, Situation};
+use crate::roof::{Given, Limits, Roof, Situation};
 use crate::root::crossing;
 use crate::search::Options;
 use crate::units::{Area, Intensity, Length, Load};
@@ -65,12 +65,13 @@ pub enum Solved {
     Width(Option<Option<Length>>),
     /// Fewest of each group, the others as given; a group may not be needed at all.
     Count(Vec<Option<u32>>),
-    /// By how much the limits of all cases may be moved together, each as if the others were not there.
+    /// By how much the limits of all cases may be moved together, loads and depths each with the others as given. None where
+    /// no such limit is given; an inner none where no value holds, as another limit or the freeboard fails.
     Limit {
-        /// Of loads: below zero lower. None where no load limit is given, or the layout is overwhelmed.
-        load: Option<Load>,
+        /// Of loads: below zero lower.
+        load: Option<Option<Load>>,
         /// Of depths.
-        depth: Option<Length>,
+        depth: Option<Option<Length>>,
     },
     /// How many more may be blocked in every case; none where the cases do not hold as given.
     Blocked(Option<u32>),
@@ -189,17 +190,32 @@ impl Back<'_> {
 
     /// By how much the limits may be moved: by the case that is nearest to its limit, or farthest over.
     fn limit(&self) -> Solved {
-        let states: Vec<_> =
+        let waters: Option<Vec<_>> =
             self.situations.iter().map(|situation| crate::roof::layout::state(&self.groups, situation).water).collect();
-        let all: Option<Vec<_>> = states.into_iter().collect();
-        let waters = all.unwrap_or_default();
+        let waters = waters.unwrap_or_default();
         let pairs = || waters.iter().zip(&self.situations);
         let loads = pairs().filter_map(|(water, situation)| Some((water.load - situation.limits.load?).pa()));
         let depths = pairs().filter_map(|(water, situation)| Some((water.depth() - situation.limits.depth?).m()));
+        let finite = |value: &f64| value.is_finite();
+        let load = loads.reduce(f64::max).filter(finite).map(Load::from_pa);
+        let depth = depths.reduce(f64::max).filter(finite).map(Length::from_m);
+        let given = |has: fn(&Limits) -> bool| self.situations.iter().any(|situation| has(&situation.limits));
+        // Far beyond any roof, so that the others alone decide.
+        let without_loads = || self.holds_with(|limits| limits.load = limits.load.map(|_| Load::from_pa(1e8)));
+        let without_depths = || self.holds_with(|limits| limits.depth = limits.depth.map(|_| Length::from_m(1e4)));
         Solved::Limit {
-            load: loads.reduce(f64::max).map(Load::from_pa),
-            depth: depths.reduce(f64::max).map(Length::from_m),
+            load: given(|limits| limits.load.is_some()).then(|| load.filter(|_| without_loads())),
+            depth: given(|limits| limits.depth.is_some()).then(|| depth.filter(|_| without_depths())),
         }
+    }
+
+    /// Whether every case holds with its limits changed.
+    fn holds_with(&self, change: impl Fn(&mut Limits)) -> bool {
+        let mut situations = self.situations.clone();
+        for situation in &mut situations {
+            change(&mut situation.limits);
+        }
+        least_spare(&self.groups, &situations, self.asked) >= 0.0
     }
 
     /// How many more devices may be blocked in every case.

@@ -61,6 +61,8 @@ pub struct Effect {
     pub input: Option<Input>,
     /// The load after the step, in the case that governs before it; none where the layout is overwhelmed.
     pub load: Option<Load>,
+    /// The greatest load of all cases after the step and its case; none where the layout is overwhelmed in one.
+    pub worst: Option<(Load, usize)>,
     /// The first case that no longer holds.
     pub breaks: Option<usize>,
     /// How many such steps just hold every case; none where the layout fails as it is, or the step is of no amount.
@@ -146,14 +148,21 @@ impl Stepped<'_, '_> {
 
     fn effect(&self, input: Option<Input>, steps: Steps) -> Effect {
         let asked = Asked { freeboard: self.options.freeboard };
-        let (load, breaks) = self.with(steps, |groups, situations| {
+        let (load, worst, breaks) = self.with(steps, |groups, situations| {
+            let loads: Option<Vec<Load>> = situations
+                .iter()
+                .map(|situation| layout::state(groups, situation).water.map(|water| water.load))
+                .collect();
             let load = layout::state(groups, &situations[self.case]).water.map(|water| water.load);
+            // The first of equals.
+            let greater = |most: (Load, usize), next: (Load, usize)| if next.0 > most.0 { next } else { most };
+            let worst = loads.and_then(|loads| (0..).zip(loads).map(|(case, load)| (load, case)).reduce(greater));
             let fails = |situation: &Situation<'_>| least_spare(groups, std::slice::from_ref(situation), asked) < 0.0;
-            (load, situations.iter().position(fails))
+            (load, worst, situations.iter().position(fails))
         });
         let counted = steps.blocked > 0 || steps.law.is_some();
         let holds = (!counted).then(|| self.steps_that_hold(steps)).flatten();
-        Effect { input, load, breaks, holds }
+        Effect { input, load, worst, breaks, holds }
     }
 
     /// How many of the steps just hold every case.

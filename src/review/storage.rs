@@ -1,6 +1,6 @@
 //! A storm through the storage of a roof, as a second opinion: no code gives credit for it, and no verdict heeds it.
 //!
-//! The storm is one block: for its duration the whole demand of the case runs in, what other areas send arriving at once.
+//! The storm of a case is one block: for its duration the whole demand of the case runs in, what other areas send arriving at once.
 //! Water stands level, as a wedge on an even slope and else on a level roof; the room that a sagging roof makes is not
 //! counted, nor the primary drains. Water runs in until it stands at the lowest sill that passes any; from there the layout's
 //! capacity is followed to the end of the storm, and then down to where hardly any head is left.
@@ -28,15 +28,15 @@ const LONGEST: Time = Time::from_s(30.0 * 86_400.0);
 /// What the storage of the roof would do for given layouts.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Storage {
-    /// How long the storm lasts; where that is not given nothing can be routed.
-    pub duration: Option<Time>,
-    /// Each layout, in their order, in every case; empty without a duration.
-    pub layouts: Vec<Vec<Routed>>,
+    /// Each layout, in their order, in every case; none in a case whose storm has no duration.
+    pub layouts: Vec<Vec<Option<Routed>>>,
 }
 
 /// The storm through the storage of one layout in one case.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Routed {
+    /// How long the storm of the case lasts.
+    pub duration: Time,
     /// The level at which water would stand were it to rain for ever; none where the layout is overwhelmed.
     pub steady: Option<Length>,
     /// The highest level, at the end of the storm.
@@ -55,15 +55,16 @@ pub struct Routed {
 /// # Errors
 /// [`RoutingError`] where a pond cannot be followed to the end of the storm.
 pub fn storage(roof: &Roof, given: &[Given]) -> Result<Storage, RoutingError> {
-    let Some(duration) = roof.storm.duration else {
-        return Ok(Storage { duration: None, layouts: Vec::new() });
-    };
     let of_layout = |given: &Given| {
         let (groups, area) = (given.groups(), &roof.areas[given.area]);
-        roof.situations(given.area).iter().map(|situation| routed(&groups, area, situation, duration)).collect()
+        let of_case = |situation: &Situation<'_>| {
+            let duration = roof.storm.duration_in(situation.case);
+            duration.map(|duration| routed(&groups, area, situation, duration)).transpose()
+        };
+        roof.situations(given.area).iter().map(of_case).collect()
     };
     let layouts = given.par_iter().map(of_layout).collect::<Result<_, _>>()?;
-    Ok(Storage { duration: Some(duration), layouts })
+    Ok(Storage { layouts })
 }
 
 fn routed(
@@ -80,7 +81,7 @@ fn routed(
     let fills = sill.map(|sill| time_of(volume(sill), demand));
     let Some((sill, fills)) = sill.zip(fills.filter(|&fills| fills < duration)) else {
         let peak = area.surface.level(area.area, Volume::from_m3(demand.m3_per_s() * duration.s()));
-        return Ok(Routed { steady, peak, sill, fills, drains: None });
+        return Ok(Routed { duration, steady, peak, sill, fills, drains: None });
     };
     let outflow = |stored| pool.capacity(area.surface.level(area.area, stored));
     let accuracy = Volume::from_m3(area.area.m2() * ACCURACY.m());
@@ -93,7 +94,7 @@ fn routed(
     let peak = area.surface.level(area.area, crest);
     let dry = LevelPool { inflow: |_: Time| Flow::ZERO, outflow, accuracy };
     let drains = drained(&dry, crest, volume(sill + DRAINED))?;
-    Ok(Routed { steady, peak, sill: Some(sill), fills: Some(fills), drains })
+    Ok(Routed { duration, steady, peak, sill: Some(sill), fills: Some(fills), drains })
 }
 
 /// How long so much water takes to run in.

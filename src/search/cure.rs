@@ -70,6 +70,8 @@ pub struct Cures {
     pub useless: Vec<Relaxation>,
     /// Whether the search was ended before everything was tried.
     pub stopped: bool,
+    /// What the cheapest layout costs now, where changes are to save; none where they are to cure.
+    pub now: Option<Money>,
 }
 
 /// A change with the first layout that it opens.
@@ -84,6 +86,8 @@ pub struct Opened<'a> {
     pub useless: &'a [Relaxation],
     /// Whether the search was ended before everything was tried.
     pub stopped: bool,
+    /// What the cheapest layout costs now, where changes are to save; none where they are to cure.
+    pub now: Option<Money>,
 }
 
 impl Cures {
@@ -91,7 +95,7 @@ impl Cures {
     pub fn open(&self) -> Opened<'_> {
         let mut cures = opened(&self.found);
         cures.sort_by_key(|(_, layout)| layout.cost.map_or(i64::MAX, Money::millionths));
-        Opened { cures, useless: &self.useless, stopped: self.stopped }
+        Opened { cures, useless: &self.useless, stopped: self.stopped, now: self.now }
     }
 }
 
@@ -154,7 +158,7 @@ impl Scale {
 pub fn cures(roof: &Roof, options: &Options, area: usize) -> Cures {
     if roof.areas[area].ponding.is_some_and(|ponding| ponding.is_unstable()) {
         // No level is allowed whatever is let out.
-        return Cures { found: Vec::new(), useless: Vec::new(), stopped: false };
+        return Cures { found: Vec::new(), useless: Vec::new(), stopped: false, now: None };
     }
     let asked = Changed { roof: alone(roof, area), options: Options { keep: 1, ..options.clone() } };
     let scales = scales(&asked.roof, &asked.options);
@@ -172,10 +176,13 @@ pub fn binds(roof: &Roof, options: &Options, area: usize) -> Option<Cures> {
     if now.candidates.iter().any(|candidate| candidate.size.price.is_none()) {
         return None;
     }
-    let now = cheapest(&now).ok().flatten()?;
+    let Ok(now) = cheapest(&now) else {
+        return Some(Cures { found: Vec::new(), useless: Vec::new(), stopped: true, now: None });
+    };
+    let now = now?;
     let mut scales = scales(&asked.roof, &asked.options);
     scales.retain(|scale| !matches!((scale.of)(1), Relaxation::Width(_) | Relaxation::Height(_)));
-    Some(asked.tried(scales, |scale| {
+    let cures = asked.tried(scales, |scale| {
         let last = scale.moderate.min(scale.steps);
         let mut least = now;
         for step in scale.looks(last) {
@@ -183,7 +190,8 @@ pub fn binds(roof: &Roof, options: &Options, area: usize) -> Option<Cures> {
         }
         let as_cheap = |change| asked.with(change, |problem| any_under(problem, least));
         if least < now { scale.least(last, as_cheap) } else { Ok(None) }
-    }))
+    });
+    Some(Cures { now: Some(Money::from_millionths(now)), ..cures })
 }
 
 /// Least cost of any layout, millionths; none where there is none.
@@ -212,7 +220,7 @@ impl Changed {
 
     /// What `found` makes of every scale.
     fn tried(&self, scales: Vec<Scale>, found: impl Fn(&Scale) -> Result<Option<Relaxation>, Stopped>) -> Cures {
-        let mut cures = Cures { found: Vec::new(), useless: Vec::new(), stopped: false };
+        let mut cures = Cures { found: Vec::new(), useless: Vec::new(), stopped: false, now: None };
         for scale in scales {
             let of_limits =
                 cures.found.iter().any(|cure| matches!(cure.change, Relaxation::Load(_) | Relaxation::Depth(_)));

@@ -41,6 +41,8 @@ pub struct Stiffened {
     pub raise: Load,
     /// What it costs.
     pub strength: Money,
+    /// The least cost of openings at the limit as given; none where that has no layout.
+    pub given: Option<Money>,
     /// The area so raised; its first layout is the cheapest.
     pub raised: Cure,
 }
@@ -58,15 +60,19 @@ pub fn stiffened(
 ) -> Result<Option<Stiffened>, Stopped> {
     let treads = tradeoff(roof, options, area, &structure.raises(roof.system))?;
     let mut best: Option<(i64, Stiffened)> = None;
+    let mut given = None;
     for raised in treads {
         let (Relaxation::Load(raise), Some(openings)) = (raised.change, raised.layout().and_then(|layout| layout.cost))
         else {
             continue;
         };
+        if raise == Load::ZERO {
+            given = Some(openings);
+        }
         let strength = structure.cost(roof.areas[area].area, raise);
         let total = openings.millionths().saturating_add(strength.millionths());
         if best.as_ref().is_none_or(|(least, _)| total < *least) {
-            best = Some((total, Stiffened { raise, strength, raised }));
+            best = Some((total, Stiffened { raise, strength, given, raised }));
         }
     }
     Ok(best.map(|(_, stiffened)| stiffened))
