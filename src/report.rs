@@ -19,6 +19,7 @@ mod cures;
 mod front;
 mod json;
 mod measure;
+mod mend;
 mod notes;
 mod page;
 mod plan;

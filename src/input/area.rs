@@ -6,7 +6,7 @@ use std::ops::RangeInclusive;
 use crate::device::Kind;
 use crate::roof::demand::{self, Circle};
 use crate::roof::{Catchment, Limits, Parapet, Passed, Receipt, Rise, Roof, Storm, Surface};
-use crate::units::{Area, Dimension, Flow, Length};
+use crate::units::{Area, Dimension, Flow, Length, Money};
 
 use super::Assumed;
 use super::catalog::Offer;
@@ -42,8 +42,9 @@ static AREA: Keys = Keys {
         "low_point",
         "slope",
         "distance",
+        "replace",
     ],
-    unsupported: &[("existing", "openings that are there already"), ("replace", "the price of closing an opening")],
+    unsupported: &[("existing", "openings that are there already")],
 };
 
 static PARAPET: Keys = Keys { table: "`parapet`", known: &["height", "thickness"], unsupported: &[] };
@@ -349,6 +350,18 @@ fn thickness_given(
             return;
         }
     }
+}
+
+/// What closing or removing one opening costs in each area: its own price, else the project's; none where neither is given.
+pub(super) fn replace_prices(project: &Section<'_>) -> Option<Vec<Option<Money>>> {
+    let price = |section: &Section<'_>| {
+        optional(section.get("replace").map(|cell| cell.number_not_negative())).map(|price| price.map(Money::nearest))
+    };
+    let of_project = price(project);
+    let tables = project.sections("area", &AREA, "a list of areas, each under [[area]]").unwrap_or_default();
+    let own: Vec<_> = tables.iter().flatten().map(price).collect();
+    let of_project = of_project?;
+    own.into_iter().map(|own| own.map(|own| own.or(of_project))).collect()
 }
 
 /// Whether the flow in every channel stays subcritical, in every case; where it does not, that is told with its numbers.

@@ -33,6 +33,7 @@ static PROJECT: Keys = Keys {
         "area",
         "layout",
         "schedule",
+        "replace",
     ],
     unsupported: &[("rules", "sets of code rules to hold every layout against")],
 };
@@ -130,6 +131,7 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
     let setting = Setting { cases: &cases, limits, search: &search, choice, catalogs: &catalogs, searched };
     let areas = area::read_all(section, &setting, &mut assumed);
     prices(section, &search, &areas.kinds, &catalogs);
+    let replace = area::replace_prices(section);
     let layouts = areas.complete.as_deref().and_then(|areas| layout::read_all(path, section, areas, &catalogs));
     let (areas, storm) = (areas.complete?, storm?);
     let roof = Roof {
@@ -155,6 +157,7 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         structure,
         tolerances: tolerances??,
         layouts: layouts?,
+        replace: replace?,
         assumed,
         warnings: Faults::default(),
     })

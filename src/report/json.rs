@@ -470,7 +470,7 @@ fn under_law<'a>(sized: &Sized<'a, '_>, under: &UnderLaw) -> Under<'a> {
     }
 }
 
-fn group<'a>(placed: &Placed<'a>, site: &Site) -> Group<'a> {
+pub(super) fn group<'a>(placed: &Placed<'a>, site: &Site) -> Group<'a> {
     let size = placed.group.size;
     let law = size.law_at(site);
     let round = size.device.kind() == Kind::PipeScupper;
