@@ -790,6 +790,43 @@ error: `existing` in an [[area]] is not supported in this version
 }
 
 #[test]
+fn a_price_of_closing_an_opening_that_is_none() {
+    project(&[("units =", "replace = \"250\"\nunits ="), ("edge = \"120 ft\"", "edge = \"120 ft\"\nreplace = -5")])
+        .refuses(str![[r#"
+error: `replace` must be a bare number
+ --> roof.toml:2:11
+  |
+2 | replace = "250"
+  |           ^^^^^ a text stands here
+  |
+  = help: write a bare number
+
+error: `replace` must not be negative
+  --> roof.toml:32:11
+   |
+32 | replace = -5
+   |           ^^ below zero
+   |
+   = help: write zero or more
+
+"#]]);
+}
+
+#[test]
+fn nothing_is_added_where_no_set_height_is_given() {
+    let layout = "[[layout]]\nname = \"x\"\narea = \"north bay\"\n\
+                  groups = [{ device = \"RS\", width = \"6 in\", height = \"4 in\", count = 1, set_height = \"2 in\" }]\n\n[[area]]";
+    let folder =
+        project(&[("set_height = { from = \"2 in\", to = \"4 in\", step = \"0.5 in\" }\n", ""), ("[[area]]", layout)]);
+    folder.brimline(&["check", "roof.toml", "--mend"]).code(2).stdout_eq("").stderr_eq(str![[r#"
+error: no set height is given for `north bay`
+  = help: a search needs one: [search] set_height = { from = "2 in", to = "4 in", step = "0.25 in" }
+
+"#]]);
+    folder.brimline(&["check", "roof.toml"]).code(1);
+}
+
+#[test]
 fn a_price_of_strength_that_is_none() {
     let with = |structure: &str| {
         Folder::new()

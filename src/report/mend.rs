@@ -175,7 +175,10 @@ fn sum(checks: &Checks<'_, '_>, mends: &[Vec<Mend>], failing: &[usize]) -> Strin
         more => format!(" Of {more} no mend has a price."),
     };
     let total: Money = costs.iter().copied().sum();
-    format!("{} {fail}; the mends with a price come to {}.{rest}", count(failing.len()), words::money(total))
+    let lowered = failing.iter().any(|&place| has(&mends[place], "lower"));
+    let unknown = if lowered { " What lowering sills costs is not known: it is not among them." } else { "" };
+    let total = words::money(total);
+    format!("{} {fail}; the cheapest mends with a price come to {total} in all.{rest}{unknown}", count(failing.len()))
 }
 
 /// What mends a layout, for a spreadsheet: the change and its cost; no cells where that was not asked for.
