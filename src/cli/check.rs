@@ -19,6 +19,7 @@ use super::{Failure, OfProject};
 /// The layouts are those of the project, each a [[layout]] or rows of a `schedule`. Exit code 0: every layout passes; 1: one
 /// fails; 2: the input cannot be used.
 #[derive(Debug, clap::Args)]
+#[expect(clippy::struct_excessive_bools, reason = "each is a flag")]
 pub(super) struct Args {
     #[command(flatten)]
     of: OfProject,

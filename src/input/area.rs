@@ -291,6 +291,7 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
             count: count?,
             set_heights: set_heights?,
             limits: limits?,
+            existing: Vec::new(),
             channel: optional(channel)?,
         })
     };
@@ -587,6 +588,7 @@ fn without_size(receives: Vec<Receipt>) -> Catchment {
         count: COUNT,
         set_heights: None,
         limits: Vec::new(),
+        existing: Vec::new(),
         channel: None,
     }
 }
