@@ -11,6 +11,7 @@ use crate::units::Money;
 mod area;
 mod catalog;
 mod defaults;
+mod existing;
 mod fault;
 mod file;
 mod flow;

@@ -19,7 +19,7 @@ use super::ponding;
 use super::section::{Cell, Keys, Section, any_of, near, optional};
 use super::setting::{Names, Setting, is_named, limits_of, read_count, unique};
 
-static AREA: Keys = Keys {
+pub(super) static AREA: Keys = Keys {
     table: "an [[area]]",
     known: &[
         "name",
@@ -43,8 +43,9 @@ static AREA: Keys = Keys {
         "slope",
         "distance",
         "replace",
+        "existing",
     ],
-    unsupported: &[("existing", "openings that are there already")],
+    unsupported: &[],
 };
 
 static PARAPET: Keys = Keys { table: "`parapet`", known: &["height", "thickness"], unsupported: &[] };

@@ -99,6 +99,9 @@ fn blocks(checks: &Checks<'_, '_>) -> Vec<Block> {
 fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut Vec<Block>) {
     let roof = checks.roof;
     blocks.extend(ranking::area_head(roof, area, words));
+    if checks.best_of(area).is_some() {
+        blocks.extend(ranking::there_already(roof, area, words));
+    }
     let checked: Vec<_> = checks.of_area(area).collect();
     if checked.is_empty() {
         blocks.push(Block::Text("No layout is given here.".into()));

@@ -48,6 +48,13 @@ pub struct Ranked<'r> {
     pub made: Option<Measured>,
 }
 
+impl<'r> Ranked<'r> {
+    /// The groups that are not there already.
+    pub fn added(&self) -> &[Placed<'r>] {
+        &self.groups[..self.groups.len() - self.kept]
+    }
+}
+
 /// A layout under another flow law.
 #[derive(Clone, Copy, Debug)]
 pub struct UnderLaw {
