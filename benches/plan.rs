@@ -45,6 +45,7 @@ fn area(index: u32, unlike: bool) -> Catchment {
         count: 1..=30,
         set_heights: Some(vec![Length::inches(2.0)]),
         limits: vec![load(26), load(32)],
+        existing: Vec::new(),
         channel: None,
     }
 }

@@ -58,6 +58,7 @@ fn area(index: u32) -> Catchment {
         count: 1..=12,
         set_heights: Some((8..=16).map(|quarter| Length::from_nm(quarter * 6_350_000)).collect()),
         limits: vec![load(28), load(34), load(30)],
+        existing: Vec::new(),
         channel: None,
     }
 }

@@ -6,10 +6,12 @@ use crate::device::Size;
 use crate::review::Tolerances;
 use crate::roof::{Given, Roof};
 use crate::search::{Options, PlanAsked, Structure};
+use crate::units::Money;
 
 mod area;
 mod catalog;
 mod defaults;
+mod existing;
 mod fault;
 mod file;
 mod flow;
@@ -46,12 +48,25 @@ pub struct Project {
     pub structure: Option<Structure>,
     /// The layouts that the project gives, in the order of the files.
     pub layouts: Vec<Given>,
+    /// What closing or removing one opening costs in each area; none where that is not given, which counts as nothing.
+    pub replace: Vec<Option<Money>>,
     /// How far each input may be off, for the worse.
     pub tolerances: Tolerances,
     /// What was taken where the files say nothing.
     pub assumed: Vec<Assumed>,
     /// What in the files is probably not meant; they can be used all the same.
     pub warnings: Faults,
+}
+
+impl Project {
+    /// What is taken where a change of a layout closes openings: nothing, in the areas that give no price for it.
+    pub fn assumed_of_mends(&self) -> Option<Assumed> {
+        let free = self.replace.iter().zip(&self.roof.areas).filter(|(price, _)| price.is_none());
+        let areas: Vec<String> = free.map(|(_, area)| area.name.clone()).collect();
+        let all = areas.len() == self.roof.areas.len();
+        let default = defaults::default("area.replace");
+        (!areas.is_empty()).then(|| Assumed { default, areas: if all { Vec::new() } else { areas } })
+    }
 }
 
 /// A default that was taken.

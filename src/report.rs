@@ -20,6 +20,7 @@ mod cures;
 mod front;
 mod json;
 mod measure;
+mod mend;
 mod notes;
 mod page;
 mod plan;

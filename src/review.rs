@@ -14,10 +14,12 @@ use crate::search::{self, Options, Ranked};
 use crate::units::Length;
 
 mod backsolve;
+mod mend;
 mod sensitivity;
 mod storage;
 
 pub use backsolve::{Solved, Unknown, WIDEST, backsolve};
+pub use mend::{Change, Mend, mends, worst_first};
 pub use sensitivity::{Effect, Input, Sensitivity, Tolerances, sensitivity};
 pub use storage::{DRAINED, Routed, Storage, storage};
 

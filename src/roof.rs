@@ -231,6 +231,8 @@ pub struct Catchment {
     pub set_heights: Option<Vec<Length>>,
     /// What holds in each case of the roof, in their order.
     pub limits: Vec<Limits>,
+    /// What is there already and stays: it costs nothing and stands where it stands.
+    pub existing: Vec<GivenGroup>,
     /// The gutter or valley between its far end and its devices, where there is one.
     pub channel: Option<channel::Channel>,
 }

@@ -217,7 +217,7 @@ fn best_of<'r>(problem: &Problem<'r>, options: &Options) -> Sought<'r> {
 
 /// Why an area has no layout.
 fn none<'r>(problem: Problem<'r>, misfits: Vec<(&'r Size, Misfit)>) -> Outcome<'r> {
-    let nothing_stands = problem.candidates.is_empty();
+    let nothing_stands = problem.candidates.is_empty() && problem.fixed.is_empty();
     let why = || infeasible::why(problem).unwrap_or(Why::Stopped);
     Outcome::Infeasible(if nothing_stands { Why::NothingStands { misfits } } else { why() })
 }
@@ -239,5 +239,7 @@ fn measured<'r, 'f>(problem: &Problem<'r>, layouts: impl Iterator<Item = (Ranked
 /// All that is reported of a layout on the grid.
 fn ranked<'r>(problem: &Problem<'r>, found: &Found) -> Ranked<'r> {
     let liftable = problem.liftable(&found.groups);
-    standing(&reported(problem, &found.groups), &liftable, &problem.situations, &problem.allowed, problem.asked)
+    let groups = reported(problem, &found.groups);
+    let standing = standing(&groups, &liftable, &problem.situations, &problem.allowed, problem.asked);
+    Ranked { kept: problem.fixed.len(), ..standing }
 }

@@ -178,7 +178,7 @@ error: unknown key `titel` in the project
 1 | titel = "Depot"
   | ^^^^^ not a key of this table
   |
-  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, tolerance, case, area, layout or schedule
+  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, tolerance, case, area, layout, schedule or replace
 
 error: `intensity`: `6.3` has no unit; this is a rain intensity
  --> roof.toml:6:13
@@ -655,7 +655,7 @@ error: unknown key `titel` in the project
 1 | titel = "Depot"
   | ^^^^^ not a key of this table
   |
-  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, tolerance, case, area, layout or schedule
+  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, tolerance, case, area, layout, schedule or replace
 
 error: unknown key `durration` in [storm]
  --> roof.toml:7:1
@@ -755,10 +755,7 @@ fn keys_of_later_work_are_refused_by_name() {
             "roof.toml",
             exchange(
                 PROJECT,
-                &[
-                    ("units =", "layout = []\nrules = []\nunits ="),
-                    ("edge = \"120 ft\"", "slope = \"1/4 in/ft\"\nexisting = []"),
-                ],
+                &[("units =", "layout = []\nrules = []\nunits ="), ("edge = \"120 ft\"", "slope = \"1/4 in/ft\"")],
             ),
         )
         .refuses(str![[r#"
@@ -778,15 +775,193 @@ error: `slope` and `distance` belong together
    |
    = help: give slope = "0.25 in/ft" and distance = "20 ft", from the low point to the wall
 
-error: `existing` in an [[area]] is not supported in this version
-  --> roof.toml:33:1
+"#]]);
+}
+
+/// The sound project with what is there already in its first area, and other parts exchanged.
+fn existing(there: &str, parts: &[(&str, &str)]) -> Folder {
+    let with = format!("edge = \"120 ft\"\nexisting = {there}");
+    project(&[&[("edge = \"120 ft\"", with.as_str())], parts].concat())
+}
+
+const THERE: &str = "[{ device = \"RS\", width = \"12 in\", height = \"4 in\", count = 2, set_height = \"2 in\" }]";
+
+#[test]
+fn what_is_said_to_be_there_already_and_cannot_be() {
+    existing("\"as found\"", &[]).refuses(str![[r#"
+error: `north bay` has no layout `as found`
+  --> roof.toml:31:12
    |
-33 | existing = []
-   | ^^^^^^^^ meant for openings that are there already
+31 | existing = "as found"
+   |            ^^^^^^^^^^ not a layout of this area
    |
-   = help: take the key out: the answer would not heed it
+   = help: give a [[layout]] of this name and area, or the groups themselves
 
 "#]]);
+    let elsewhere = format!(
+        "[[layout]]\nname = \"as fuond\"\narea = \"north bay\"\ngroups = {THERE}\n\n[[area]]\nname = \"south bay\""
+    );
+    existing("\"as found\"", &[("[[area]]\nname = \"south bay\"", &elsewhere)]).refuses(str![[r#"
+error: `north bay` has no layout `as found`
+  --> roof.toml:31:12
+   |
+31 | existing = "as found"
+   |            ^^^^^^^^^^ not a layout of this area
+   |
+   = help: did you mean "as fuond"? layouts of the area are as fuond
+
+"#]]);
+    existing("[]", &[]).refuses(str![[r#"
+error: `existing` is an empty list
+  --> roof.toml:31:12
+   |
+31 | existing = []
+   |            ^^ nothing stands here
+   |
+   = help: write the name of a layout, or a list, such as [{ device = "RS", width = "12 in", height = "4 in", count = 2, set_height = "2 in" }]
+
+"#]]);
+    existing("3", &[]).refuses(str![[r#"
+error: `existing` must be the name of a layout, or a list, such as [{ device = "RS", width = "12 in", height = "4 in", count = 2, set_height = "2 in" }]
+  --> roof.toml:31:12
+   |
+31 | existing = 3
+   |            ^ a bare number stands here
+   |
+   = help: write the name of a layout, or a list, such as [{ device = "RS", width = "12 in", height = "4 in", count = 2, set_height = "2 in" }]
+
+"#]]);
+    existing("[{ device = \"RX\", count = 0 }]", &[]).refuses(str![[r#"
+error: `set_height` is missing in a group
+  --> roof.toml:31:13
+   |
+31 | existing = [{ device = "RX", count = 0 }]
+   |             ^^^^^^^^^^^^^^^^^^^^^^^^^^^^ this table
+   |
+   = help: say how high its sill stands: set_height = "2 in"
+
+error: no catalog has a device `RX`
+  --> roof.toml:31:24
+   |
+31 | existing = [{ device = "RX", count = 0 }]
+   |                        ^^^^ here
+   |
+   = help: did you mean "RS"? the catalogs have OD or RS
+
+error: `count` must be a whole number from 1 to 10000
+  --> roof.toml:31:38
+   |
+31 | existing = [{ device = "RX", count = 0 }]
+   |                                      ^ outside that range
+   |
+   = help: 1 to 10000 would pass
+
+"#]]);
+    existing(&THERE.replace("count = 2", "count = 200"), &[]).refuses(str![[r#"
+error: what is there in `north bay` takes more edge than it has
+  --> roof.toml:31:12
+   |
+31 | existing = [{ device = "RS", width = "12 in", height = "4 in", count = 200, set_height = "2 in" }]
+   |            ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ with the gaps between openings
+   |
+   = help: give the length of parapet that these openings stand in as well, or a lesser gap
+
+"#]]);
+    existing(&format!("[{}]", vec![&THERE[1..THERE.len() - 1]; 14].join(", ")), &[]).refuses(str![[r#"
+error: at most 13 groups are there already
+  --> roof.toml:31:12
+   |
+31 | ... = [{ device = "RS", width = "12 in", height = "...t = "4 in", count = 2, set_height = "2 in" }]
+   |       ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^...^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ 14 stand here
+   |
+   = help: put openings of one size and one height into one group
+
+"#]]);
+}
+
+#[test]
+fn what_does_not_heed_what_is_there_already() {
+    existing(
+        THERE,
+        &[("keep = 5", "sizes = 2"), ("[limit]", "[structure]\nstiffen = \"0.07 / ft2 / psf\"\n\n[limit]")],
+    )
+    .refuses(str![[r#"
+error: a plan of few sizes and `existing` do not go together in this version
+  --> roof.toml:34:12
+   |
+34 | existing = [{ device = "RS", width = "12 in", height = "4 in", count = 2, set_height = "2 in" }]
+   |            ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ it would not be heeded
+   |
+   = help: take `sizes` and `size_price` out, or take `existing` out
+
+error: a price of strength and `existing` do not go together in this version
+  --> roof.toml:34:12
+   |
+34 | existing = [{ device = "RS", width = "12 in", height = "4 in", count = 2, set_height = "2 in" }]
+   |            ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ it would not be heeded
+   |
+   = help: take [structure] out, or take `existing` out
+
+"#]]);
+    existing(THERE, &[("keep = 5", "made_to_measure = true")]).refuses(str![[r#"
+error: openings made to measure and `existing` do not go together in this version
+  --> roof.toml:31:12
+   |
+31 | existing = [{ device = "RS", width = "12 in", height = "4 in", count = 2, set_height = "2 in" }]
+   |            ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ it would not be heeded
+   |
+   = help: take `made_to_measure` out and give every range of widths a step, or take `existing` out
+
+"#]]);
+    let sound = existing(THERE, &[]);
+    sound.brimline(&["size", "roof.toml"]).code(0).stderr_eq("");
+    sound.brimline(&["size", "roof.toml", "--front"]).code(2).stdout_eq("").stderr_eq(str![[r#"
+error: --front does not heed `existing` in this version, and `north bay` has it
+  = help: leave the area out with --area, or take `existing` out
+
+"#]]);
+    sound.brimline(&["tradeoff", "roof.toml"]).code(2).stdout_eq("").stderr_eq(str![[r#"
+error: a trade-off does not heed `existing` in this version, and `north bay` has it
+  = help: leave the area out with --area, or take `existing` out
+
+"#]]);
+}
+
+#[test]
+fn a_price_of_closing_an_opening_that_is_none() {
+    project(&[("units =", "replace = \"250\"\nunits ="), ("edge = \"120 ft\"", "edge = \"120 ft\"\nreplace = -5")])
+        .refuses(str![[r#"
+error: `replace` must be a bare number
+ --> roof.toml:2:11
+  |
+2 | replace = "250"
+  |           ^^^^^ a text stands here
+  |
+  = help: write a bare number
+
+error: `replace` must not be negative
+  --> roof.toml:32:11
+   |
+32 | replace = -5
+   |           ^^ below zero
+   |
+   = help: write zero or more
+
+"#]]);
+}
+
+#[test]
+fn nothing_is_added_where_no_set_height_is_given() {
+    let layout = "[[layout]]\nname = \"x\"\narea = \"north bay\"\n\
+                  groups = [{ device = \"RS\", width = \"6 in\", height = \"4 in\", count = 1, set_height = \"2 in\" }]\n\n[[area]]";
+    let folder =
+        project(&[("set_height = { from = \"2 in\", to = \"4 in\", step = \"0.5 in\" }\n", ""), ("[[area]]", layout)]);
+    folder.brimline(&["check", "roof.toml", "--mend"]).code(2).stdout_eq("").stderr_eq(str![[r#"
+error: no set height is given for `north bay`
+  = help: a search needs one: [search] set_height = { from = "2 in", to = "4 in", step = "0.25 in" }
+
+"#]]);
+    folder.brimline(&["check", "roof.toml"]).code(1);
 }
 
 #[test]

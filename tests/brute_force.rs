@@ -11,7 +11,7 @@ use std::sync::Arc;
 use brimline::device::{Choice, Device, Kind, Law, Place, Rating, Size};
 use brimline::roof::channel::Channel;
 use brimline::roof::layout::{self, Asked, Group, Liftable};
-use brimline::roof::{Case, Catchment, Limits, Parapet, Ponding, Roof, Situation, Storm, Surface};
+use brimline::roof::{Case, Catchment, GivenGroup, Limits, Parapet, Ponding, Roof, Situation, Storm, Surface};
 use brimline::search::{self, Criterion, Least, Options, Outcome, PlanAsked, PlanFront, Relaxation, Watch, Why};
 use brimline::units::{Area, Dimension, Flow, Intensity, Length, Load, Money, System};
 
@@ -151,6 +151,7 @@ fn roof(dice: &mut Dice) -> Roof {
         count: least..=least + dice.upto(3) as u32,
         set_heights: Some((0..=2).map(|step| on_grid(Length::inches((grid_start + step) as f64 * 0.75))).collect()),
         limits,
+        existing: Vec::new(),
         channel: dice.one_in(12).then(|| Channel {
             width: on_grid(dice.inches(8, 40)),
             length: Length::from_m(5.0 + dice.upto(20) as f64),
@@ -213,11 +214,14 @@ struct Tried {
 /// The groups at their lowest heights, and the heights of each, where they fit the area.
 fn fit<'r>(roof: &'r Roof, groups: &[(usize, u32)]) -> Option<(Vec<Liftable<'r>>, Vec<Vec<Length>>)> {
     let area = &roof.areas[0];
-    if !area.count.contains(&groups.iter().map(|&(_, count)| count).sum()) {
+    let there = |at_edge: bool| area.existing.iter().filter(move |group| !at_edge || group.size.place == Place::Edge);
+    let all = groups.iter().map(|&(_, count)| count).chain(there(false).map(|group| group.count)).sum::<u32>();
+    // What is there may be more than an area may have: then nothing is added.
+    if all < *area.count.start() || (all > *area.count.end() && !groups.is_empty()) {
         return None;
     }
-    let mut openings = 0;
-    let mut edge = 0;
+    let mut openings: i64 = there(true).map(|group| i64::from(group.count)).sum();
+    let mut edge: i64 = there(true).map(|group| group.size.clear_width().nm() * i64::from(group.count)).sum();
     let mut liftable = Vec::new();
     let mut stands = Vec::new();
     for &(index, count) in groups {
@@ -239,6 +243,10 @@ fn fit<'r>(roof: &'r Roof, groups: &[(usize, u32)]) -> Option<(Vec<Liftable<'r>>
         && (most == Length::ZERO || edge + area.gap.nm() * (openings - 1) > most.nm())
     {
         return None;
+    }
+    for group in &area.existing {
+        liftable.push(Liftable { group: group.group(), highest: group.set_height });
+        stands.push(vec![group.set_height]);
     }
     Some((liftable, stands))
 }
@@ -312,7 +320,9 @@ fn try_layout<'r>(
             .map(|&(index, count)| roof.sizes[index].device.width().map_or(0, Length::nm) * i64::from(count))
             .sum::<i64>() as f64,
         Criterion::Sizes => groups.len() as f64,
-        Criterion::SetHeight => -reported.iter().map(|group| group.set_height.m()).fold(f64::INFINITY, f64::min),
+        Criterion::SetHeight => {
+            -reported.iter().take(groups.len()).map(|group| group.set_height.m()).fold(f64::INFINITY, f64::min)
+        }
         Criterion::Utilisation => unreachable!("no file asks for it"),
     };
     let rest = Criterion::ALL.into_iter().filter(|criterion| !options.rank_by.contains(criterion));
@@ -338,7 +348,7 @@ fn every_choice(roof: &Roof, options: &Options) -> Vec<Vec<(usize, u32)>> {
         }
         all.push(groups);
     }
-    all.retain(|groups| !groups.is_empty());
+    all.retain(|groups| !groups.is_empty() || !roof.areas[0].existing.is_empty());
     all
 }
 
@@ -414,6 +424,72 @@ fn the_search_finds_what_trying_everything_finds() {
         feasible > 300 && infeasible > 300,
         "{feasible} feasible, {infeasible} not: the roofs are not varied enough"
     );
+}
+
+/// Devices that are there already: their flow, edge, tops and blocking count, they cost nothing, and nothing need be added.
+#[test]
+fn what_is_added_to_what_is_there_is_what_trying_everything_adds() {
+    let (mut nothing, mut added, mut infeasible) = (0, 0, 0);
+    for seed in 1..=1500_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15) ^ 0x5555);
+        let (mut roof, options) = (roof(&mut dice), options(&mut dice));
+        there_already(&mut roof, &mut dice);
+        let expected = everything(&roof, &options);
+        match search::size(&roof, &options, &[0]).remove(0).outcome {
+            Outcome::Optimal(layouts) => {
+                let index = |size: &Size| roof.sizes.iter().position(|known| std::ptr::eq(known, size)).unwrap();
+                let of = |layout: &search::Ranked<'_>| {
+                    let (new, there) = layout.groups.split_at(layout.groups.len() - layout.kept);
+                    let as_given = there.iter().zip(&roof.areas[0].existing);
+                    assert!(as_given.clone().count() == roof.areas[0].existing.len());
+                    assert!(
+                        as_given
+                            .clone()
+                            .all(|(placed, given)| placed.from == given.set_height && placed.to == placed.from)
+                    );
+                    let group = |placed: &search::Placed<'_>| {
+                        (index(placed.group.size), placed.group.count, placed.group.set_height)
+                    };
+                    new.iter().map(group).collect::<Vec<_>>()
+                };
+                let found: Vec<_> = layouts.iter().map(of).collect();
+                let wanted: Vec<_> = expected
+                    .iter()
+                    .map(|tried| {
+                        let groups = tried.groups.iter().zip(&tried.reported);
+                        groups.map(|(&(index, count), &height)| (index, count, height)).collect::<Vec<_>>()
+                    })
+                    .collect();
+                assert_eq!(found, wanted, "seed {seed}, {options:?}");
+                nothing += u32::from(found.iter().any(Vec::is_empty));
+                added += u32::from(found.iter().all(|groups| !groups.is_empty()));
+            }
+            Outcome::Stopped { .. } => unreachable!("nobody ends it"),
+            Outcome::Infeasible(why) => {
+                infeasible += 1;
+                assert!(expected.is_empty(), "seed {seed}: the search found none of {}", expected.len());
+                check_why(&roof, &options, &why, seed);
+            }
+        }
+    }
+    let enough = nothing > 200 && added > 100 && infeasible > 200;
+    assert!(enough, "nothing {nothing}, added {added}, none {infeasible}: the roofs are not varied enough");
+}
+
+/// One group or two that are there already, and an edge that is long enough for them.
+fn there_already(roof: &mut Roof, dice: &mut Dice) {
+    let offered = sizes(dice);
+    let area = &mut roof.areas[0];
+    for _ in 0..=dice.upto(1) {
+        let size =
+            Size { price: Some(Money::default()), ..offered[dice.upto(offered.len() as u64 - 1) as usize].clone() };
+        let set_height = on_grid(Length::inches(dice.upto(12) as f64 * 0.25));
+        area.existing.push(GivenGroup { size, count: 1 + dice.upto(1) as u32, set_height });
+    }
+    area.count = *area.count.start()..=area.count.end() + dice.upto(3) as u32;
+    let at_edge = area.existing.iter().filter(|group| group.size.place == Place::Edge);
+    let taken = brimline::rules::edge_used(at_edge.map(|group| (&group.size, group.count)), area);
+    area.edge = area.edge.map(|edge| Length::from_nm(edge.nm() + taken));
 }
 
 /// The reasons that the search gives, against every layout that fits.

@@ -121,6 +121,7 @@ fn roof(dice: &mut Dice, mix: usize) -> (Roof, Options) {
         count: if mix == 3 { 3 } else { 1 }..=1 + dice.upto(3) as u32 + mix as u32,
         set_heights: Some((0..=2).map(|step| inches(1.0 + f64::from(step) * 0.75)).collect()),
         limits,
+        existing: Vec::new(),
         channel: None,
     };
     let storm = Storm { intensity: Intensity::from_m_per_s(3e-5), ..Storm::default() };

@@ -197,6 +197,7 @@ fn roof(given: &Given) -> Roof {
         count: 1..=given.most_devices,
         set_heights: Some(vec![Length::inches(SET_HEIGHT)]),
         limits: ask.psf.map(|psf| Limits { load: Some(Load::psf(f64::from(psf))), depth: None }).to_vec(),
+        existing: Vec::new(),
         channel: None,
     };
     let areas: Vec<Catchment> = given.areas.iter().map(area).collect();

@@ -4,10 +4,12 @@ use std::process::ExitCode;
 
 use rayon::prelude::*;
 
+use crate::input::{Assumed, Project};
 use crate::report::{self, Checks};
-use crate::review::{self, Storage};
+use crate::review::{self, Checked, Mend, Storage};
 use crate::roof::{Given, Roof};
 use crate::search;
+use crate::units::Money;
 
 use super::given::Chosen;
 use super::{Failure, OfProject};
@@ -17,6 +19,7 @@ use super::{Failure, OfProject};
 /// The layouts are those of the project, each a [[layout]] or rows of a `schedule`. Exit code 0: every layout passes; 1: one
 /// fails; 2: the input cannot be used.
 #[derive(Debug, clap::Args)]
+#[expect(clippy::struct_excessive_bools, reason = "each is a flag")]
 pub(super) struct Args {
     #[command(flatten)]
     of: OfProject,
@@ -32,6 +35,10 @@ pub(super) struct Args {
     /// Route the storm through the storage of the roof as a second opinion, which changes no verdict.
     #[arg(long)]
     storage: bool,
+    /// Find what mends each layout that fails: the cheapest added, larger, lower or other openings that make it pass; and list
+    /// the failing ones, worst first.
+    #[arg(long)]
+    mend: bool,
 }
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
@@ -53,18 +60,29 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         checked.par_iter().map(one).collect()
     });
     let storage = if args.storage { Some(routed(&project.roof, &given)?) } else { None };
+    let mends = if args.mend { Some(mends(&project, &areas, &checked)?) } else { None };
+    let assumed: Vec<Assumed> =
+        project.assumed.iter().cloned().chain(mends.as_ref().and_then(|_| project.assumed_of_mends())).collect();
     let checks = Checks {
         sensitivities: sensitivities.as_deref().map(|found| (found, &project.tolerances)),
         roof: &project.roof,
         options: &project.options,
-        assumed: &project.assumed,
+        assumed: &assumed,
         areas: &areas,
         checked: &checked,
         best: best.as_deref(),
         storage: storage.as_ref(),
+        mends: mends.as_deref(),
     };
     args.of.deliver(|format, width| report::check(&checks, format, width))?;
     Ok(ExitCode::from(u8::from(checked.iter().any(|checked| !checked.passes()))))
+}
+
+/// What mends each layout, where a search has set heights to try.
+fn mends(project: &Project, areas: &[usize], checked: &[Checked<'_>]) -> Result<Vec<Vec<Mend>>, Failure> {
+    super::without_set_height(&project.roof, areas).map_or(Ok(()), Err)?;
+    let replace: Vec<Money> = project.replace.iter().map(|price| price.unwrap_or_default()).collect();
+    Ok(review::mends(&project.roof, &project.options, &replace, checked))
 }
 
 fn routed(roof: &Roof, given: &[Given]) -> Result<Storage, Failure> {

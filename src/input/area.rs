@@ -6,7 +6,7 @@ use std::ops::RangeInclusive;
 use crate::device::Kind;
 use crate::roof::demand::{self, Circle};
 use crate::roof::{Catchment, Limits, Parapet, Passed, Receipt, Rise, Roof, Storm, Surface};
-use crate::units::{Area, Dimension, Flow, Length};
+use crate::units::{Area, Dimension, Flow, Length, Money};
 
 use super::Assumed;
 use super::catalog::Offer;
@@ -19,7 +19,7 @@ use super::ponding;
 use super::section::{Cell, Keys, Section, any_of, near, optional};
 use super::setting::{Names, Setting, is_named, limits_of, read_count, unique};
 
-static AREA: Keys = Keys {
+pub(super) static AREA: Keys = Keys {
     table: "an [[area]]",
     known: &[
         "name",
@@ -42,8 +42,10 @@ static AREA: Keys = Keys {
         "low_point",
         "slope",
         "distance",
+        "replace",
+        "existing",
     ],
-    unsupported: &[("existing", "openings that are there already"), ("replace", "the price of closing an opening")],
+    unsupported: &[],
 };
 
 static PARAPET: Keys = Keys { table: "`parapet`", known: &["height", "thickness"], unsupported: &[] };
@@ -290,6 +292,7 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
             count: count?,
             set_heights: set_heights?,
             limits: limits?,
+            existing: Vec::new(),
             channel: optional(channel)?,
         })
     };
@@ -349,6 +352,18 @@ fn thickness_given(
             return;
         }
     }
+}
+
+/// What closing or removing one opening costs in each area: its own price, else the project's; none where neither is given.
+pub(super) fn replace_prices(project: &Section<'_>) -> Option<Vec<Option<Money>>> {
+    let price = |section: &Section<'_>| {
+        optional(section.get("replace").map(|cell| cell.number_not_negative())).map(|price| price.map(Money::nearest))
+    };
+    let of_project = price(project);
+    let tables = project.sections("area", &AREA, "a list of areas, each under [[area]]").unwrap_or_default();
+    let own: Vec<_> = tables.iter().flatten().map(price).collect();
+    let of_project = of_project?;
+    own.into_iter().map(|own| own.map(|own| own.or(of_project))).collect()
 }
 
 /// Whether the flow in every channel stays subcritical, in every case; where it does not, that is told with its numbers.
@@ -574,6 +589,7 @@ fn without_size(receives: Vec<Receipt>) -> Catchment {
         count: COUNT,
         set_heights: None,
         limits: Vec::new(),
+        existing: Vec::new(),
         channel: None,
     }
 }

@@ -53,7 +53,7 @@ pub struct Default {
 }
 
 /// Every default, in the order of the files.
-pub static DEFAULTS: [Default; 16] = [
+pub static DEFAULTS: [Default; 17] = [
     entry("search.rank_by", "cost, load", "the cheapest first; of equals the one with less load"),
     entry("search.keep", "8", "eight layouts are listed for each area"),
     entry("search.mix", "1", "all devices of a layout are of one size"),
@@ -65,6 +65,7 @@ pub static DEFAULTS: [Default; 16] = [
     entry("area.edge", "unlimited", "openings may use any length of parapet"),
     entry("area.gap", "0", "openings may stand side by side"),
     entry("area.roof_at_wall", "0", "the roof at the parapet is as low as the low point"),
+    entry("area.replace", "0", "closing or removing an opening costs nothing"),
     entry("channel.slope", "0", "the channel is level, which stands deepest"),
     entry("channel.roughness", "0.013", "Manning's n of membrane or sheet metal"),
     entry("structure.most", "20 psf or 1 kPa", "load limits are raised by so much at most"),

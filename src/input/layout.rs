@@ -59,7 +59,7 @@ struct Wanted {
 }
 
 /// What a layout is read against.
-struct Against<'s> {
+pub(super) struct Against<'s> {
     areas: &'s [Catchment],
     by_name: HashMap<&'s str, usize>,
     sizes: &'s [Size],
@@ -75,12 +75,7 @@ pub(super) fn read_all(
     areas: &[Catchment],
     catalogs: &Catalogs,
 ) -> Option<Vec<Given>> {
-    let mut by_tag: HashMap<&str, Vec<usize>> = HashMap::new();
-    for (index, size) in catalogs.sizes.iter().enumerate() {
-        by_tag.entry(&size.tag).or_default().push(index);
-    }
-    let by_name = areas.iter().enumerate().map(|(index, area)| (area.name.as_str(), index)).collect();
-    let against = Against { areas, by_name, sizes: &catalogs.sizes, by_tag, complete: catalogs.complete };
+    let against = Against::new(areas, catalogs);
     let mut layouts = Vec::new();
     let mut sound = true;
     if project.get("layout").is_some() {
@@ -99,7 +94,34 @@ pub(super) fn read_all(
     sound.then_some(layouts)
 }
 
+impl<'s> Against<'s> {
+    pub(super) fn new(areas: &'s [Catchment], catalogs: &'s Catalogs) -> Self {
+        let mut by_tag: HashMap<&str, Vec<usize>> = HashMap::new();
+        for (index, size) in catalogs.sizes.iter().enumerate() {
+            by_tag.entry(&size.tag).or_default().push(index);
+        }
+        let by_name = areas.iter().enumerate().map(|(index, area)| (area.name.as_str(), index)).collect();
+        Self { areas, by_name, sizes: &catalogs.sizes, by_tag, complete: catalogs.complete }
+    }
+}
+
 impl Against<'_> {
+    /// The groups under a key of a table; none where one is at fault.
+    pub(super) fn groups(
+        &self,
+        path: &Path,
+        table: &Section<'_>,
+        key: &'static str,
+        wanted: &str,
+        area: usize,
+    ) -> Option<Vec<GivenGroup>> {
+        let groups = table.sections(key, &GROUP, wanted)?;
+        let read = |group: &Option<Section<'_>>| self.group(path, group.as_ref()?, area);
+        // All are read, so that every fault is told.
+        let groups: Vec<Option<GivenGroup>> = groups.iter().map(read).collect();
+        groups.into_iter().collect()
+    }
+
     fn layout(&self, path: &Path, table: &Section<'_>, before: &[Given]) -> Option<Given> {
         let _ = table.get("note").and_then(|cell| cell.text());
         let name = table.need("name", "name the layout: name = \"as drawn\"");

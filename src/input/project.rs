@@ -14,7 +14,7 @@ use super::fault::{Fault, Faults, Log, Span};
 use super::grid::{self, Least};
 use super::section::{Cell, Keys, Reader, Section, optional};
 use super::setting::{Cases, GivenCase, MOST_DEVICES, Names, Search, Setting, is_named, limits_of, read_count, unique};
-use super::{Assumed, Project, area, file, flow, layout, storm, structure, tolerance};
+use super::{Assumed, Project, area, existing, file, flow, layout, storm, structure, tolerance};
 
 static PROJECT: Keys = Keys {
     table: "the project",
@@ -33,6 +33,7 @@ static PROJECT: Keys = Keys {
         "area",
         "layout",
         "schedule",
+        "replace",
     ],
     unsupported: &[("rules", "sets of code rules to hold every layout against")],
 };
@@ -129,8 +130,22 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
     let setting = Setting { cases: &cases, limits, search: &search, choice, catalogs: &catalogs, searched };
     let areas = area::read_all(section, &setting, &mut assumed);
     prices(section, &search, &areas.kinds, &catalogs);
+    let replace = area::replace_prices(section);
     let layouts = areas.complete.as_deref().and_then(|areas| layout::read_all(path, section, areas, &catalogs));
-    let (areas, storm) = (areas.complete?, storm?);
+    let beside = existing::Beside {
+        plan: search.plan.is_some_and(|plan| plan.is_some()),
+        structure: section.get("structure").is_some(),
+        measure: catalogs.sizes.iter().any(|size| size.made.is_some()),
+    };
+    let existing = areas
+        .complete
+        .as_deref()
+        .zip(layouts.as_deref())
+        .and_then(|(areas, layouts)| existing::read_all(path, section, areas, &catalogs, layouts, &beside));
+    let (mut areas, storm) = (areas.complete?, storm?);
+    for (area, there) in areas.iter_mut().zip(existing?) {
+        area.existing = there;
+    }
     let roof = Roof {
         title: title?,
         system: system?,
@@ -154,6 +169,7 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         structure,
         tolerances: tolerances?,
         layouts: layouts?,
+        replace: replace?,
         assumed,
         warnings: Faults::default(),
     })

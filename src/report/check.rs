@@ -5,7 +5,7 @@ use serde::Serialize;
 
 use crate::device::Place;
 use crate::input::Assumed;
-use crate::review::{Checked, Effect, Failing, Input, Routed, Sensitivity, Storage, Tolerances};
+use crate::review::{Checked, Effect, Failing, Input, Mend, Routed, Sensitivity, Storage, Tolerances};
 use crate::roof::layout::Group;
 use crate::roof::{Roof, Situation};
 use crate::search::{Answer, Options, Ranked};
@@ -14,7 +14,7 @@ use crate::units::{Length, Load, Money};
 use super::json;
 use super::page::{self, Block, Table};
 use super::words::{self, Words, list};
-use super::{Format, notes, plain, ponding, ranking, sensitivity, storage, written};
+use super::{Format, mend, notes, plain, ponding, ranking, sensitivity, storage, written};
 
 /// What a report of given layouts is made of.
 #[derive(Clone, Copy, Debug)]
@@ -35,6 +35,8 @@ pub struct Checks<'a, 'r> {
     pub best: Option<&'a [Answer<'r>]>,
     /// What the storage of the roof would do for the layouts, where that was asked for.
     pub storage: Option<&'a Storage>,
+    /// What mends each layout, in the order of the layouts, where that was asked for.
+    pub mends: Option<&'a [Vec<Mend>]>,
 }
 
 impl<'a, 'r> Checks<'a, 'r> {
@@ -84,6 +86,7 @@ fn blocks(checks: &Checks<'_, '_>) -> Vec<Block> {
     for &area in checks.areas {
         area_blocks(checks, area, words, &mut blocks);
     }
+    blocks.extend(mend::survey(checks, words));
     let told = checks.told();
     blocks.extend(notes::blocks(&told, words));
     blocks
@@ -92,6 +95,9 @@ fn blocks(checks: &Checks<'_, '_>) -> Vec<Block> {
 fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut Vec<Block>) {
     let roof = checks.roof;
     blocks.extend(ranking::area_head(roof, area, words));
+    if checks.best_of(area).is_some() {
+        blocks.extend(ranking::there_already(roof, area, words));
+    }
     let checked: Vec<_> = checks.of_area(area).collect();
     if checked.is_empty() {
         blocks.push(Block::Text("No layout is given here.".into()));
@@ -109,6 +115,9 @@ fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut 
         checked.iter().copied().filter(failing).map(|checked| fails(roof, checked, words)).collect();
     if !lines.is_empty() {
         blocks.push(Block::List(lines));
+    }
+    for (place, _) in checks.checked.iter().enumerate().filter(|(_, checked)| checked.given.area == area) {
+        blocks.extend(mend::blocks(checks, place, words));
     }
     let sills: Vec<String> = checked.iter().flat_map(|checked| sills(roof, checked, words)).collect();
     if !sills.is_empty() {
@@ -205,7 +214,7 @@ fn ponding_head(checks: &Checks<'_, '_>, area: usize, standing: &Ranked<'_>, wor
 }
 
 /// How much of its limit a layout uses in its governing case.
-fn utilisation(standing: &Ranked<'_>) -> String {
+pub(super) fn utilisation(standing: &Ranked<'_>) -> String {
     match standing.governing {
         None => "overwhelmed".into(),
         Some(governing) if governing.utilisation.is_infinite() => "unstable".into(),
@@ -351,9 +360,13 @@ fn rows(checks: &Checks<'_, '_>) -> String {
         "utilisation".into(),
         "why".into(),
     ];
-    let mut rows = vec![head.to_vec()];
+    let mut head = head.to_vec();
+    if checks.mends.is_some() {
+        head.extend(["mend", "mend_cost"].map(String::from));
+    }
+    let mut rows = vec![head];
     let length = |length: Option<Length>| length.map_or(String::new(), |length| plain(words.small(length), 4));
-    let of_layout = |checked: &Checked<'_>| {
+    let of_layout = |(place, checked): (usize, &Checked<'_>)| {
         let mut rows = Vec::with_capacity(checked.given.groups.len());
         let standing = &checked.standing;
         let water = standing.states[standing.case].water;
@@ -362,7 +375,7 @@ fn rows(checks: &Checks<'_, '_>) -> String {
         for placed in &standing.groups {
             let device = &placed.group.size.device;
             let round = device.kind() == crate::device::Kind::PipeScupper;
-            rows.push(vec![
+            let mut row = vec![
                 checks.roof.areas[checked.given.area].name.clone(),
                 checked.given.name.clone(),
                 if checked.passes() { "yes" } else { "no" }.into(),
@@ -385,11 +398,13 @@ fn rows(checks: &Checks<'_, '_>) -> String {
                     .filter(|governing| governing.utilisation.is_finite())
                     .map_or_else(|| utilisation(standing), |governing| plain(governing.utilisation, 4)),
                 why.join("; "),
-            ]);
+            ];
+            row.extend(mend::cells(checks, place, words));
+            rows.push(row);
         }
         rows
     };
-    rows.extend(checks.checked.par_iter().flat_map_iter(of_layout).collect::<Vec<_>>());
+    rows.extend(checks.checked.par_iter().enumerate().flat_map_iter(of_layout).collect::<Vec<_>>());
     written(&rows)
 }
 
@@ -398,6 +413,8 @@ struct Document<'a> {
     format: &'static str,
     title: &'a str,
     areas: Vec<OfArea<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    worst_first: Option<Vec<mend::OfFailing<'a>>>,
     assumptions: Vec<String>,
     cautions: Vec<String>,
 }
@@ -428,6 +445,8 @@ struct OfLayout<'a> {
     sensitivity: Option<OfSensitivity<'a>>,
     #[serde(skip_serializing_if = "Option::is_none")]
     storage: Option<storage::OfLayout<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    mends: Option<Vec<mend::OfMend<'a>>>,
 }
 
 #[derive(Serialize)]
@@ -473,6 +492,7 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
             fails: checked.failings.iter().map(failing).collect(),
             sensitivity: checks.sensitivities.map(|(found, _)| of_sensitivity(roof, &found[place])),
             storage: checks.storage.map(|stored| storage::of_layout(roof, stored, checks.routed(place))),
+            mends: mend::of_layout(checks, place),
         }
     };
     let best = |area: usize, best: &'a Ranked<'_>| OfBest {
@@ -498,6 +518,7 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
         format: "brimline check 1",
         title: &roof.title,
         areas: checks.areas.iter().map(area).collect(),
+        worst_first: mend::worst_first(checks),
         assumptions: notes::assumptions(&told),
         cautions: notes::cautions(&told),
     };

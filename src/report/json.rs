@@ -208,6 +208,9 @@ pub(super) struct Group<'a> {
     set_height_to_m: f64,
     law: &'static str,
     law_source: &'static str,
+    /// Whether it is there already.
+    #[serde(skip_serializing_if = "Not::not")]
+    existing: bool,
 }
 
 #[derive(Serialize)]
@@ -462,7 +465,14 @@ fn made_layout<'a>(sized: &Sized<'a, '_>, area: usize, fitted: &'a Fitted) -> Ma
 /// The groups of a layout.
 pub(super) fn groups<'a>(roof: &'a Roof, area: usize, ranked: &'a Ranked<'_>) -> Vec<Group<'a>> {
     let site = roof.site(area, None);
-    ranked.groups.iter().map(|placed| group(placed, &site)).collect()
+    groups_at(ranked, &site)
+}
+
+/// The groups of a layout at a site, those that are there already marked.
+fn groups_at<'a>(ranked: &Ranked<'a>, site: &Site) -> Vec<Group<'a>> {
+    let added = ranked.added().len();
+    let one = |(place, placed): (usize, &Placed<'a>)| Group { existing: place >= added, ..group(placed, site) };
+    ranked.groups.iter().enumerate().map(one).collect()
 }
 
 /// What governs a layout.
@@ -512,7 +522,7 @@ fn found_cures<'a>(opened: &'a Opened<'_>) -> Vec<CureFound<'a>> {
     let found = |(cure, layout): &'a Opening<'_>| {
         let (change, amount) = super::cures::amount(cure.change);
         let site = cure.roof.site(0, None);
-        let groups = layout.groups.iter().map(|placed| group(placed, &site)).collect();
+        let groups = groups_at(layout, &site);
         CureFound { change, amount, cost: layout.cost.map(Money::amount), groups }
     };
     opened.cures.iter().map(found).collect()
@@ -530,7 +540,7 @@ fn under_law<'a>(sized: &Sized<'a, '_>, under: &UnderLaw) -> Under<'a> {
     }
 }
 
-fn group<'a>(placed: &Placed<'a>, site: &Site) -> Group<'a> {
+pub(super) fn group<'a>(placed: &Placed<'a>, site: &Site) -> Group<'a> {
     let size = placed.group.size;
     let law = size.law_at(site);
     let round = size.device.kind() == Kind::PipeScupper;
@@ -546,5 +556,6 @@ fn group<'a>(placed: &Placed<'a>, site: &Site) -> Group<'a> {
         set_height_to_m: placed.to.m(),
         law: law.name(),
         law_source: law.account(size.device.kind()).source,
+        existing: false,
     }
 }

@@ -2,7 +2,7 @@
 
 use crate::device::{Kind, Law};
 use crate::hydraulics::limits::Range;
-use crate::roof::{Case, Limits, Roof, Storm, demand};
+use crate::roof::{Case, GivenGroup, Limits, Roof, Storm, demand};
 use crate::search::{Answer, Outcome, Ranked, UnderLaw};
 use crate::units::{Area, Length, Load};
 
@@ -54,6 +54,16 @@ pub(super) fn area_head(roof: &Roof, area: usize, words: Words) -> [Block; 3] {
     ]
 }
 
+/// What is there already, where anything is: what a search adds to.
+pub(super) fn there_already(roof: &Roof, area: usize, words: Words) -> Option<Block> {
+    let there: Vec<_> = roof.areas[area].existing.iter().map(GivenGroup::group).collect();
+    let text = format!(
+        "There already: {}. All of it is kept at no cost, moves no sill and may be what is blocked; layouts say what is added.",
+        words.groups(&there)
+    );
+    (!there.is_empty()).then_some(Block::Text(text))
+}
+
 /// What a case does to the design.
 fn case_in_words(case: &Case, rain: &Storm, words: Words) -> String {
     let mut parts = Vec::new();
@@ -84,6 +94,10 @@ fn case_in_words(case: &Case, rain: &Storm, words: Words) -> String {
 fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut Vec<Block>) {
     let roof = sized.roof;
     blocks.extend(area_head(roof, answer.area, words));
+    blocks.extend(there_already(roof, answer.area, words));
+    if answer.outcome.layouts().iter().any(|layout| layout.added().is_empty()) {
+        blocks.push(Block::Text("What is there holds: nothing need be added.".into()));
+    }
     match &answer.outcome {
         Outcome::Optimal(_) => {}
         Outcome::Stopped { layouts, bound } => {
@@ -269,7 +283,7 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
         column("case".into(), false, "governing case", &|layout| sized.roof.cases[layout.case].name.clone()),
         column("limit".into(), false, "governing limit", &|layout| governing_limit(layout).to_string()),
         column(format!("set height {}", words.small_unit()), false, "set height may run", &|layout| {
-            words.window(&layout.groups)
+            if layout.added().is_empty() { "-".into() } else { words.window(layout.added()) }
         }),
     ];
     let mut kept = vec![

@@ -75,7 +75,8 @@ fn listed(
     for (index, layout) in layouts.iter().enumerate() {
         let mut add = |outcome: &str, layout: &Ranked<'_>| {
             let compared = if sized.fronts.is_empty() { Vec::new() } else { compared(sized, layout, list, words) };
-            for placed in &layout.groups {
+            for (place, placed) in layout.groups.iter().enumerate() {
+                let outcome = if place < layout.added().len() { outcome } else { "existing" };
                 let row = row(sized, answer.area, outcome, index + 1, layout, placed, words);
                 rows.push(row.into_iter().chain(compared.iter().cloned()).collect());
             }

@@ -270,8 +270,12 @@ impl Words {
     }
 
     /// All groups of a layout; a set height that they share is said once.
+    /// Of one that adds to what is there already, what it adds.
     pub(super) fn layout(self, layout: &Ranked<'_>) -> String {
-        self.groups(&layout.groups.iter().map(|placed| placed.group).collect::<Vec<_>>())
+        if layout.added().is_empty() {
+            return "nothing added".into();
+        }
+        self.groups(&layout.added().iter().map(|placed| placed.group).collect::<Vec<_>>())
     }
 
     /// Groups of one layout.

@@ -150,6 +150,7 @@ mod tests {
             count: 1..=8,
             set_heights: None,
             limits: Vec::new(),
+            existing: Vec::new(),
             channel: None,
         }
     }

@@ -59,7 +59,9 @@ impl Found {
 
     /// Set height of the lowest sill as reported, nanometres.
     fn set_height(&self, problem: &Problem<'_>) -> i64 {
-        let lowest = || reported(problem, &self.groups).iter().map(|group| group.set_height.nm()).min();
+        // What is there moves no sill: it says nothing of how high a layout stands.
+        let added = self.groups.len();
+        let lowest = || reported(problem, &self.groups).iter().take(added).map(|group| group.set_height.nm()).min();
         *self.set_height.get_or_init(|| lowest().unwrap_or(i64::MAX))
     }
 
@@ -165,7 +167,9 @@ pub(super) fn reported<'r>(problem: &Problem<'r>, groups: &[(usize, u32)]) -> Ve
             let reached = heights.partition_point(|&height| height <= group.set_height).max(1);
             Group { set_height: heights[reached - 1], ..group }
         };
-        together(lift).into_iter().zip(groups).map(down).collect::<Vec<_>>()
+        let lifted = together(lift);
+        let (added, there) = lifted.split_at(groups.len());
+        added.iter().copied().zip(groups).map(down).chain(there.iter().copied()).collect::<Vec<_>>()
     };
     let standing = lifts[..passing].iter().rev().map(|&lift| on_grid(lift));
     standing.into_iter().find(|groups| problem.asked.freeboard.is_none() || holds(groups)).unwrap_or(lowest)

@@ -8,6 +8,9 @@
 //!
 //! 1. *What must be installed.* With k of n devices blocked, the n - k weakest remain; they carry at most (n - k)/n of the
 //!    total, which is at most (N - k)/N of it. So every layout that holds the case has a total of at least Q N/(N - k).
+//!    Where devices are there already, E in all, N counts them too, and the rest has at least Q N/(N - k) - E. Blocking the k
+//!    strongest of all leaves no more than blocking the k strongest of those that are there; these then carry E': so the rest
+//!    has at least Q - E' as well.
 //! 2. *Capacity.* If the prefix's total plus (devices left) x (greatest c(s) behind the prefix) is less, no layout in the
 //!    branch holds the case.
 //! 3. *Price of what is missing.* Where layouts rank by cost, count or width first, what the prefix lacks costs at least
@@ -24,9 +27,10 @@
 //!    family that holds as well. Where one layout alone is kept, the other may be of any tag. (What holds to the last bit of
 //!    a sum alone is not told apart here from what does not: the flows of both may be added in another order.)
 //!
-//! Nothing else is left out. Layouts of one group are tried first, then of two, then of three: good layouts early make the
+//! Nothing else is left out. Where devices are there already, adding nothing is tried first. Layouts of one group are tried first, then of two, then of three: good layouts early make the
 //! bounds tight.
 
+use crate::device::Place;
 use crate::roof::{MOST_GROUPS, Situation};
 use crate::units::{Length, Money};
 
@@ -93,8 +97,12 @@ pub(super) fn dive(problem: &Problem<'_>, aim: Aim, best: Best) -> Dived {
             looks: 0,
         };
         dive.tighten();
+        let there = Used::of_what_is_there(problem);
+        if class.is_none() && !problem.fixed.is_empty() {
+            dive.offer(0, there);
+        }
         for groups in 1..=problem.mix {
-            dive.extend(groups, 0, 0, Used::default());
+            dive.extend(groups, 0, 0, there);
         }
         ended = dive.ended;
         best = dive.best;
@@ -111,7 +119,7 @@ pub(super) fn least(problem: &Problem<'_>) -> Option<Least> {
     let of_one = |index: usize| of_one(&problem.candidates[index], Some(lead));
     let everyone = || 0..problem.candidates.len();
     let mut least = everyone().map(of_one).min()? as f64 * f64::from(problem.least);
-    for (case, needed) in needed(problem).into_iter().enumerate() {
+    for (case, needed) in needed(problem, &table).into_iter().enumerate() {
         let dearest = everyone().map(|index| price_of_flow(of_one(index), table.of(index)[case]));
         least = least.max(needed * dearest.fold(f64::INFINITY, f64::min));
     }
@@ -124,16 +132,22 @@ pub(super) fn least(problem: &Problem<'_>) -> Option<Least> {
     })
 }
 
-/// The total that a layout must have in each case: bound 1.
-fn needed(problem: &Problem<'_>) -> Vec<f64> {
-    let most = f64::from(problem.most);
-    let of_case = |situation: &Situation<'_>| {
+/// The total that a layout must have in each case, beside what is there: bound 1.
+fn needed(problem: &Problem<'_>, table: &Table) -> Vec<f64> {
+    let most = f64::from(problem.most.saturating_add(problem.devices_there()));
+    let of_case = |(case, situation): (usize, &Situation<'_>)| {
         let left = most - f64::from(situation.case.blocked);
         let share = if left > 0.0 { most / left } else { f64::INFINITY };
         // A little less, so that rounding never makes a bound of what is none.
-        situation.demand.m3_per_s() * share * (1.0 - SLACK)
+        let needed = situation.demand.m3_per_s() * share * (1.0 - SLACK);
+        if problem.fixed.is_empty() {
+            return needed;
+        }
+        let (all, unblocked) = problem.carried_there(table, case, situation.case.blocked);
+        let beside = situation.demand.m3_per_s() * (1.0 - SLACK) - unblocked * (1.0 + SLACK);
+        (needed - all * (1.0 + SLACK)).max(beside)
     };
-    problem.situations.iter().map(of_case).collect()
+    problem.situations.iter().enumerate().map(of_case).collect()
 }
 
 /// What one device has of the leading criterion.
@@ -213,6 +227,17 @@ struct Bounds {
 }
 
 impl Used {
+    /// Of what is there, which takes edge and counts for nothing else.
+    fn of_what_is_there(problem: &Problem<'_>) -> Self {
+        let at_edge = problem.fixed.iter().filter(|group| group.size.place == Place::Edge);
+        at_edge.fold(Self::default(), |mut used, group| {
+            let many = i64::from(group.count);
+            used.openings += many;
+            used.edge += group.size.clear_width().nm().saturating_mul(many);
+            used
+        })
+    }
+
     /// With one more group.
     fn with(mut self, candidate: &Candidate<'_>, count: u32, class: Class) -> Self {
         let many = i64::from(count);
@@ -292,7 +317,7 @@ impl Dive<'_, '_> {
             flows: Vec::with_capacity(count * cases),
             greatest: vec![0.0; (count + 1) * cases],
             dearest: vec![f64::INFINITY; (count + 1) * cases],
-            needed: needed(problem),
+            needed: needed(problem, table),
         };
         for &member in &self.members {
             bounds.flows.extend_from_slice(table.of(member));

@@ -291,6 +291,7 @@ fn told(problem: &Problem<'_>, groups: &[Built]) -> Box<Ranked<'static>> {
     let told = described(groups.iter().map(Built::placed).collect(), &problem.situations, &problem.allowed);
     Box::new(Ranked {
         groups: Vec::new(),
+        kept: 0,
         cost: told.cost,
         states: told.states,
         allowed: told.allowed,

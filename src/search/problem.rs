@@ -8,8 +8,8 @@
 //! by classes of equal lowest top ([`Problem::classes`]), and within a class the level is one number again.
 
 use crate::device::{Place, Size};
-use crate::roof::layout::{Asked, Group, Liftable};
-use crate::roof::{Catchment, MOST_GROUPS, Roof, Situation, working_capacity};
+use crate::roof::layout::{self, Asked, Group, Liftable};
+use crate::roof::{Catchment, GivenGroup, MOST_GROUPS, MOST_OUTLETS, Roof, Situation, working_capacity};
 use crate::rules::{self, Misfit, Stand};
 use crate::units::Length;
 
@@ -52,6 +52,9 @@ pub(super) struct Problem<'r> {
     /// The highest level that each situation allows, to any layout.
     pub(super) allowed: Vec<Length>,
     pub(super) candidates: Vec<Candidate<'r>>,
+    /// What is there already and stays, behind the groups of every layout.
+    pub(super) fixed: Vec<Group<'r>>,
+    /// Least and most devices that a layout adds to what is there.
     pub(super) least: u32,
     pub(super) most: u32,
     pub(super) mix: usize,
@@ -71,6 +74,8 @@ pub(super) type Class = Option<i64>;
 pub(super) struct Table {
     cases: usize,
     flows: Vec<f64>,
+    /// What one device of each group that is there carries, case by case.
+    fixed: Vec<f64>,
 }
 
 impl Table {
@@ -112,12 +117,15 @@ impl<'r> Problem<'r> {
         }
         let priced = candidates.iter().all(|candidate| candidate.size.price.is_some());
         let situations = roof.situations(area);
+        let fixed: Vec<Group<'r>> = catchment.existing.iter().map(GivenGroup::group).collect();
+        let there = devices(&fixed);
         let problem = Self {
             allowed: situations.iter().map(Situation::allowable_level).collect(),
             situations,
             candidates,
-            least: *catchment.count.start(),
-            most: *catchment.count.end(),
+            least: catchment.count.start().saturating_sub(there),
+            most: catchment.count.end().saturating_sub(there),
+            fixed,
             mix: options.mix,
             edge: limited_edge(catchment),
             gap: catchment.gap.nm(),
@@ -158,6 +166,7 @@ impl<'r> Problem<'r> {
             Some(top - self.asked.freeboard?)
         };
         let level = |(situation, &allowed): (&Situation<'_>, &Length)| {
+            let allowed = layout::highest_level(&self.fixed, situation, allowed, self.asked);
             under_the_top(situation).map_or(allowed, |ceiling| ceiling.min(allowed))
         };
         self.situations.iter().zip(&self.allowed).map(level).collect()
@@ -174,11 +183,42 @@ impl<'r> Problem<'r> {
                 flows.push(height.map_or(f64::NEG_INFINITY, one));
             }
         }
-        Table { cases: levels.len(), flows }
+        let of_case = |(situation, &level): (&Situation<'r>, &Length)| {
+            self.fixed
+                .iter()
+                .map(|group| one_carries(group.size, group.set_height, situation, level))
+                .collect::<Vec<_>>()
+        };
+        let fixed = self.situations.iter().zip(levels).flat_map(of_case).collect();
+        Table { cases: levels.len(), flows, fixed }
+    }
+
+    /// What each group that is there carries in a case by a table, with its count.
+    fn flows_there<'t>(&'t self, table: &'t Table, case: usize) -> impl Iterator<Item = (f64, u32)> + 't {
+        let flows = &table.fixed[case * self.fixed.len()..(case + 1) * self.fixed.len()];
+        flows.iter().zip(&self.fixed).map(|(&flow, group)| (flow, group.count))
+    }
+
+    /// What is there carries in a case by a table: all of it, and with so many of the most effective blocked.
+    pub(super) fn carried_there(&self, table: &Table, case: usize, blocked: u32) -> (f64, f64) {
+        let mut flows = [(0.0, 0); MOST_OUTLETS];
+        for (slot, there) in flows.iter_mut().zip(self.flows_there(table, case)) {
+            *slot = there;
+        }
+        let carried = |blocked| working_capacity(&flows, self.fixed.len(), blocked);
+        (carried(0), carried(blocked))
+    }
+
+    /// How many devices are there already.
+    pub(super) fn devices_there(&self) -> u32 {
+        devices(&self.fixed)
     }
 
     /// Whether groups of candidates carry every case's demand by a table.
     pub(super) fn carries(&self, table: &Table, groups: &[(usize, u32)]) -> bool {
+        if !self.fixed.is_empty() {
+            return self.carries_with_what_is_there(table, groups);
+        }
         self.situations.iter().enumerate().all(|(case, situation)| {
             let mut flows = [(0.0, 0); MOST_GROUPS];
             for (slot, &(candidate, count)) in flows.iter_mut().zip(groups) {
@@ -188,14 +228,29 @@ impl<'r> Problem<'r> {
         })
     }
 
-    /// The groups at the lowest of their heights, with the highest they may be lifted to.
+    /// Whether groups of candidates, with what is there behind them, carry every case's demand by a table.
+    fn carries_with_what_is_there(&self, table: &Table, groups: &[(usize, u32)]) -> bool {
+        self.situations.iter().enumerate().all(|(case, situation)| {
+            let mut flows = [(0.0, 0); MOST_OUTLETS];
+            let added = groups.iter().map(|&(candidate, count)| (table.of(candidate)[case], count));
+            for (slot, group) in flows.iter_mut().zip(added.chain(self.flows_there(table, case))) {
+                *slot = group;
+            }
+            let all = groups.len() + self.fixed.len();
+            working_capacity(&flows, all, situation.case.blocked) >= situation.demand.m3_per_s()
+        })
+    }
+
+    /// The groups at the lowest of their heights, with the highest they may be lifted to; behind them what is there, which
+    /// stays where it stands.
     pub(super) fn liftable(&self, groups: &[(usize, u32)]) -> Vec<Liftable<'r>> {
         let liftable = |&(index, count): &(usize, u32)| {
             let candidate = &self.candidates[index];
             let group = Group { size: candidate.size, count, set_height: candidate.lowest() };
             Liftable { group, highest: candidate.highest }
         };
-        groups.iter().map(liftable).collect()
+        let stays = |&group: &Group<'r>| Liftable { group, highest: group.set_height };
+        groups.iter().map(liftable).chain(self.fixed.iter().map(stays)).collect()
     }
 
     /// Edge that groups and the gaps between all openings of a layout leave free, nanometres, below zero where they want more
@@ -217,6 +272,7 @@ impl<'r> Problem<'r> {
             situations: keep.iter().map(|&case| self.situations[case]).collect(),
             allowed: keep.iter().map(|&case| self.allowed[case]).collect(),
             candidates: self.candidates.clone(),
+            fixed: self.fixed.clone(),
             asked: self.asked,
             order: self.order.clone(),
             watch: self.watch.clone(),
@@ -260,6 +316,10 @@ fn candidate(size: &Size, index: usize, tag: u32, stand: Stand) -> Candidate<'_>
         highest: stand.highest,
         size,
     }
+}
+
+fn devices(groups: &[Group<'_>]) -> u32 {
+    groups.iter().map(|group| group.count).sum()
 }
 
 fn limited_edge(area: &Catchment) -> Option<i64> {

@@ -25,6 +25,8 @@ pub struct Placed<'r> {
 pub struct Ranked<'r> {
     /// Its groups, in catalog order.
     pub groups: Vec<Placed<'r>>,
+    /// How many of the last groups are there already and are kept.
+    pub kept: usize,
     /// Its cost; none where one of its devices has no price.
     pub cost: Option<Money>,
     /// How it stands in each case, in the order of the cases.
@@ -44,6 +46,13 @@ pub struct Ranked<'r> {
     pub chord: f64,
     /// What became of it where openings are made to measure; none where none of it is.
     pub made: Option<Measured>,
+}
+
+impl<'r> Ranked<'r> {
+    /// The groups that are not there already.
+    pub fn added(&self) -> &[Placed<'r>] {
+        &self.groups[..self.groups.len() - self.kept]
+    }
 }
 
 /// A layout under another flow law.
@@ -83,6 +92,7 @@ pub(super) fn described<'g>(placed: Vec<Placed<'g>>, situations: &[Situation<'_>
     let states: Vec<_> = situations.iter().map(|situation| layout::state(&groups, situation)).collect();
     let (case, governing) = governing(&states);
     Ranked {
+        kept: 0,
         cost: layout::cost(&groups),
         case,
         governing,
