@@ -634,3 +634,41 @@ fn no_limit_is_told_where_another_fails() {
     assert_relative_eq!(deep["depth_limits_change_m"].as_f64().expect("a depth") / 0.0254, 1.0, max_relative = 1e-3);
     assert_eq!(deep["no_value_holds"], serde_json::json!(["load limit"]));
 }
+
+/// 600 less 300 l/(s ha) on 2,500 m2 are 75 l/s, and 75 mm allowed less the 35 mm that the primary needs are 40 mm of head.
+/// Source: example of the German practice after DIN 1986-100, as practice notes quote it. 300 l/(s ha) are 108 mm/h. The width that
+/// just carries it is Q / (C H^1.5) with C of the practice form, 2.9 gpm and inches: 1.818 m^0.5/s. By hand.
+#[test]
+fn the_usable_head_is_what_the_limit_leaves_over_the_sill() {
+    let text = "title = \"x\"\nunits = \"si\"\ncatalogs = [\"devices.toml\"]\nstorm = { intensity = \"108 mm/h\" }\nlimit = { depth = \"75 mm\" }\n\
+                area = [{ name = \"a\", area = \"2500 m2\" }]\n[[layout]]\nname = \"x\"\narea = \"a\"\n\
+                groups = [{ kind = \"open scupper\", width = \"6 m\", count = 1, set_height = \"35 mm\" }]\n";
+    let folder = Folder::new("usable-head").with("drain.csv", DRAIN).with("roof.toml", text);
+    let document = folder.check(0);
+    let case = &layout(&document, 0, "x")["cases"][0];
+    assert_relative_eq!(case["demand_m3_s"].as_f64().expect("a flow"), 0.075, max_relative = 1e-9);
+    let head = case["allowable_level_m"].as_f64().expect("a level") - 0.035;
+    assert_relative_eq!(head, 0.040, max_relative = 1e-9);
+    let output = folder.run(&["backsolve", "roof.toml", "--for", "width", "--format", "json"]);
+    let document: Value = serde_json::from_slice(&output.stdout).expect("JSON");
+    let width = 6.0 + document["layouts"][0]["widths_change_m"].as_f64().expect("a change");
+    // 2.9 gal/min over in^2.5 in SI: 2.9 x 6.309 02e-5 / 0.0254^2.5.
+    let coefficient = 2.9 * 6.309_02e-5 / (0.0254 * 0.0254 * 0.0254_f64.sqrt());
+    assert_relative_eq!(width, 0.075 / (coefficient * 0.04 * 0.04_f64.sqrt()), max_relative = 1e-5);
+}
+
+/// 20 ft up a slope of 1/4 in/ft, 2 in above the roof: 7 in stand at the low point before any water leaves, 36.4 psf. By hand.
+#[test]
+fn the_trap_of_the_datum_costs_36_psf() {
+    let area = "[[area]]\nname = \"a\"\narea = \"900 ft2\"\nslope = \"0.25 in/ft\"\ndistance = \"20 ft\"\nlimit = { load = \"36.3 psf\" }";
+    let groups = "[[layout]]\nname = \"x\"\narea = \"a\"\ngroups = [{ device = \"NS\", width = \"24 in\", count = 4, set_height = \"2 in above roof at wall\" }]";
+    let folder = Folder::new("trap").with("drain.csv", DRAIN).with("roof.toml", &project(area, groups));
+    let document = folder.check(1);
+    let found = layout(&document, 0, "x");
+    assert_relative_eq!(
+        found["groups"][0]["set_height_m"].as_f64().expect("a height") / 0.0254,
+        7.0,
+        max_relative = 1e-9
+    );
+    assert!(found["cases"][0]["load_pa"].as_f64().expect("a load") / 47.880_26 > 36.4);
+}
