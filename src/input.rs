@@ -22,6 +22,7 @@ mod ponding;
 mod project;
 mod rainfall;
 mod rating;
+mod schedule;
 mod section;
 mod setting;
 mod sheet;
