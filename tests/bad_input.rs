@@ -178,7 +178,7 @@ error: unknown key `titel` in the project
 1 | titel = "Depot"
   | ^^^^^ not a key of this table
   |
-  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, tolerance, case, area, layout or schedule
+  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, tolerance, case, area, layout, schedule or replace
 
 error: `intensity`: `6.3` has no unit; this is a rain intensity
  --> roof.toml:6:13
@@ -655,7 +655,7 @@ error: unknown key `titel` in the project
 1 | titel = "Depot"
   | ^^^^^ not a key of this table
   |
-  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, tolerance, case, area, layout or schedule
+  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, tolerance, case, area, layout, schedule or replace
 
 error: unknown key `durration` in [storm]
  --> roof.toml:7:1
