@@ -231,7 +231,8 @@ pub struct Catchment {
     pub set_heights: Option<Vec<Length>>,
     /// What holds in each case of the roof, in their order.
     pub limits: Vec<Limits>,
-    /// What is there already and stays: it costs nothing and stands where it stands.
+    /// What is there already and stays: it costs nothing and stands where it stands. A search of an area heeds it; plans, fronts
+    /// and made widths do not, and input refuses them beside it.
     pub existing: Vec<GivenGroup>,
     /// The gutter or valley between its far end and its devices, where there is one.
     pub channel: Option<channel::Channel>,

@@ -476,6 +476,28 @@ fn what_is_added_to_what_is_there_is_what_trying_everything_adds() {
     assert!(enough, "nothing {nothing}, added {added}, none {infeasible}: the roofs are not varied enough");
 }
 
+/// Areas alike but for what is there are asked together which sizes are worth trying: the answers are those of each alone.
+#[test]
+fn what_is_there_does_not_change_the_answer_of_another_area() {
+    for seed in 1..=300_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15) ^ 0x3333);
+        let (mut roof, options) = (roof(&mut dice), options(&mut dice));
+        let bare = roof.areas[0].clone();
+        there_already(&mut roof, &mut dice);
+        roof.areas.push(Catchment { count: roof.areas[0].count.clone(), ..bare });
+        roof.demands.push(roof.demands[0]);
+        let told = |answer: &search::Answer<'_>| {
+            let groups = |layout: &search::Ranked<'_>| format!("{:?} {:?}", layout.cost, layout.groups);
+            answer.outcome.layouts().iter().map(groups).collect::<Vec<_>>()
+        };
+        for together in search::size(&roof, &options, &[0, 1]) {
+            let area = together.area;
+            let alone = search::size(&roof, &options, &[area]);
+            assert_eq!(told(&together), told(&alone[0]), "seed {seed}, area {area}");
+        }
+    }
+}
+
 /// One group or two that are there already, and an edge that is long enough for them.
 fn there_already(roof: &mut Roof, dice: &mut Dice) {
     let offered = sizes(dice);

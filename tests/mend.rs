@@ -1,4 +1,5 @@
-//! What mends failing layouts: against trying every change of each kind on random roofs, and one roof by hand.
+//! What mends failing layouts: against trying every change of each kind on random roofs, and one roof by hand; and the same
+//! roof with what is there already kept.
 
 use std::path::{Path, PathBuf};
 use std::process::Command;
@@ -287,6 +288,49 @@ fn one_roof_by_hand() {
     assert!(text.contains("add 1 of NS 7 in at 2 in: 370; then"), "{text}");
     assert!(text.contains("to 1.79 in, low: check the least set height of the code: cost not known"), "{text}");
     assert!(text.contains("1 of 2 layouts fails; the cheapest mends with a price come to 370 in all."), "{text}");
+}
+
+/// What `size` prints of a project, as JSON.
+fn sized(path: &Path) -> Value {
+    let mut command = Command::new(snapbox::cmd::cargo_bin!("brimline"));
+    let output = command.args(["size", path.to_str().expect("UTF-8"), "--format", "json"]).output().expect("starts");
+    assert_eq!(output.status.code(), Some(0), "{}", String::from_utf8_lossy(&output.stderr));
+    serde_json::from_slice(&output.stdout).expect("JSON")
+}
+
+/// The roof of [`one_roof_by_hand`] with its opening kept: 7 in at 2 in are added. With one blocked, the strongest: of two of
+/// 7 in, 105.5 gpm each, one is blocked, which leaves 98.4 + 105.5 = 203.9 of 199.5 gpm; of 6 in, 90.4 gpm each, three are needed
+/// since then the opening that is there is the blocked one.
+#[test]
+fn what_is_added_to_what_is_there_by_hand() {
+    let devices = "[[device]]\ntag = \"NS\"\nkind = \"open scupper\"\nwidth = { from = \"6 in\", to = \"30 in\", step = \"1 in\" }\n\
+                   price = { each = 300, per_width = \"10 / in\" }\n";
+    let there = "[{ device = \"NS\", width = \"12 in\", count = 1, set_height = \"3 in\" }]";
+    let layout = format!("[[layout]]\nname = \"found\"\narea = \"mill\"\ngroups = {there}\n");
+    let project = |existing: &str, layouts: &str| {
+        format!(
+            "units = \"us\"\ncatalogs = [\"devices.toml\"]\n[storm]\nintensity = \"6 in/h\"\n[limit]\nload = \"26 psf\"\n\
+             [search]\nset_height = [\"2 in\", \"3 in\"]\n[[area]]\nname = \"mill\"\narea = \"3200 ft2\"\nexisting = {existing}\n{layouts}"
+        )
+    };
+    let named = sized(&folder("there-named", devices, &project("\"found\"", &layout)));
+    let typed = sized(&folder("there-typed", devices, &project(there, "")));
+    assert_eq!(named["areas"], typed["areas"]);
+    let first = &named["areas"][0]["layouts"][0];
+    let groups = first["groups"].as_array().expect("groups");
+    let inches = |group: &Value| (group["width_m"].as_f64().expect("a width") / 0.0254 * 1e6).round() / 1e6;
+    assert_eq!((first["cost"].as_f64(), groups.len()), (Some(370.0), 2));
+    assert_eq!((inches(&groups[0]), groups[0].get("existing")), (7.0, None));
+    assert_eq!((inches(&groups[1]), groups[1].get("existing")), (12.0, Some(&true.into())));
+    // Enough is there: nothing is added.
+    let enough = sized(&folder("there-enough", devices, &project(there, "").replace("3200", "1500")));
+    let first = &enough["areas"][0]["layouts"][0];
+    assert_eq!((first["cost"].as_f64(), first["groups"].as_array().map(Vec::len)), (Some(0.0), Some(1)));
+    let blocked = project(there, "").replace("[[area]]", "[[case]]\nname = \"one blocked\"\nblocked = 1\n[[area]]");
+    let blocked = sized(&folder("there-blocked", devices, &blocked));
+    let first = &blocked["areas"][0]["layouts"][0];
+    let added = &first["groups"][0];
+    assert_eq!((added["count"].as_u64(), inches(added), first["cost"].as_f64()), (Some(2), 7.0, Some(740.0)));
 }
 
 /// Where no price for closing is given none is taken, and that is said of the areas it holds for.

@@ -63,6 +63,8 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let mends = if args.mend { Some(mends(&project, &areas, &checked)?) } else { None };
     let assumed: Vec<Assumed> =
         project.assumed.iter().cloned().chain(mends.as_ref().and_then(|_| project.assumed_of_mends())).collect();
+    let mended: Vec<Given> = mends.iter().flatten().flatten().map(|mend| mend.given.clone()).collect();
+    let mended = review::check(&project.roof, &project.options, &mended);
     let checks = Checks {
         sensitivities: sensitivities.as_deref().map(|found| (found, &project.tolerances)),
         roof: &project.roof,
@@ -73,6 +75,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         best: best.as_deref(),
         storage: storage.as_ref(),
         mends: mends.as_deref(),
+        mended: &mended,
     };
     args.of.deliver(|format, width| report::check(&checks, format, width))?;
     Ok(ExitCode::from(u8::from(checked.iter().any(|checked| !checked.passes()))))

@@ -37,6 +37,8 @@ pub struct Checks<'a, 'r> {
     pub storage: Option<&'a Storage>,
     /// What mends each layout, in the order of the layouts, where that was asked for.
     pub mends: Option<&'a [Vec<Mend>]>,
+    /// The layouts so mended, each as it stands: what is said of devices and cautions is said of them too.
+    pub mended: &'a [Checked<'r>],
 }
 
 impl<'a, 'r> Checks<'a, 'r> {
@@ -55,7 +57,8 @@ impl<'a, 'r> Checks<'a, 'r> {
     }
 
     fn told(&self) -> notes::Told<'a, 'r> {
-        let given = self.checked.iter().map(|checked| (checked.given.area, &checked.standing));
+        let all = self.checked.iter().chain(self.mended);
+        let given = all.map(|checked| (checked.given.area, &checked.standing));
         let best = self.areas.iter().filter_map(|&area| Some((area, self.best_of(area)?)));
         notes::Told {
             roof: self.roof,

@@ -30,7 +30,10 @@ pub(super) fn blocks(checks: &Checks<'_, '_>, place: usize, words: Words) -> Vec
              replaced by another size."
         ))];
     }
-    let mut head = format!("Any one of these mends \"{name}\", the least of each kind, the cheapest first");
+    let mut head = match mends.len() {
+        1 => format!("One change mends \"{name}\", the least of its kind"),
+        _ => format!("Any one of these mends \"{name}\", the least of each kind, the cheapest first"),
+    };
     let lacking: Vec<&str> = Change::NAMES.into_iter().filter(|name| !has(mends, name)).map(in_words).collect();
     if !lacking.is_empty() {
         head += &format!("; {} alone {} not", list(&lacking), if lacking.len() == 1 { "does" } else { "do" });

@@ -3,7 +3,8 @@
 //! Four kinds of change are looked at, each by itself: openings of one size added, the openings of one group replaced by
 //! larger ones of its kind where they stand, the sills of one group lowered, one group replaced by openings of another size. A
 //! change must fit as a layout must: the kinds, the edge and its gaps, the parapet, the roof at the wall. Whatever is told was
-//! held against the model as every given layout is ([`super::check`]).
+//! held against the model as every given layout is ([`super::check`]). A layout that has as many groups as any may have is not
+//! added to.
 //!
 //! # What is left out, and why it may be
 //!
