@@ -59,7 +59,7 @@ pub struct Sized<'a, 'r> {
     pub options: &'a Options,
     /// The defaults that were taken.
     pub assumed: &'a [Assumed],
-    /// The answers, in the order in which they are reported.
+    /// The answers, in the order of their areas on the roof, in which they are reported.
     pub answers: &'a [Answer<'r>],
     /// Whether the arithmetic of each area's first layout is written out.
     pub work: bool,
@@ -99,7 +99,7 @@ impl<'a, 'r> Sized<'a, 'r> {
     }
 
     fn place(&self, area: usize) -> Option<usize> {
-        self.answers.iter().position(|answer| answer.area == area)
+        self.answers.binary_search_by_key(&area, |answer| answer.area).ok()
     }
 
     /// The first layout of an area under every law; none where that was not asked for.
@@ -109,7 +109,8 @@ impl<'a, 'r> Sized<'a, 'r> {
 
     /// The layouts of an area that are not beaten; none where that was not asked for.
     fn front_of(&self, area: usize) -> Option<&'a Fronted<'r>> {
-        self.fronts.iter().find(|fronted| fronted.front.area == area)
+        let place = self.fronts.binary_search_by_key(&area, |fronted| fronted.front.area).ok();
+        place.map(|place| &self.fronts[place])
     }
 
     /// What would cure an area without a layout, or what the cost of another binds on.

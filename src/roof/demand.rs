@@ -7,6 +7,8 @@
 //! most all of it. Which of the two it is on a higher area is open, so an area is sized for the worse: the most that can
 //! arrive at once ([`at_once`]). The same water never arrives by both.
 
+use std::collections::{BTreeMap, BTreeSet};
+
 use crate::units::{Area, Flow};
 
 use super::{Catchment, Passed, Receipt, Storm};
@@ -33,35 +35,39 @@ pub fn own(storm: &Storm, area: &Catchment) -> Flow {
 /// # Errors
 /// The [`Circle`] of areas where receiving has no beginning.
 pub fn flows(storm: &Storm, areas: &[Catchment]) -> Result<Vec<Flow>, Circle> {
-    let order = downstream(areas)?;
-    let demand = |area: usize| match areas[area].receives[..] {
-        [] => own(storm, &areas[area]),
-        [..] => worst(storm, areas, &order, area).leaving(area),
-    };
-    Ok((0..areas.len()).map(demand).collect())
+    downstream(areas, 0..areas.len())?;
+    Ok((0..areas.len()).map(|area| at_once(storm, areas, area).leaving(area)).collect())
 }
 
 /// What runs when the most that is possible at once arrives at one area.
 #[derive(Clone, Debug, PartialEq)]
 pub struct AtOnce {
-    leaving: Vec<Flow>,
-    by_primary: Vec<bool>,
+    /// The area and those that anything arrives from, by their indices.
+    leaving: BTreeMap<usize, Leaving>,
+}
+
+/// What leaves an area.
+#[derive(Clone, Copy, Debug, PartialEq)]
+struct Leaving {
+    flow: Flow,
+    by_primary: bool,
 }
 
 impl AtOnce {
-    /// What leaves an area then.
+    /// What leaves an area then; zero for one that nothing arrives from.
     pub fn leaving(&self, area: usize) -> Flow {
-        self.leaving[area]
+        self.leaving.get(&area).map_or(Flow::ZERO, |leaving| leaving.flow)
     }
 
     /// What arrives then by one way; none where the water of the other area takes its other way out.
     pub fn arriving(&self, receipt: &Receipt) -> Option<Flow> {
+        let leaving = self.leaving.get(&receipt.from)?;
         let open = match receipt.what {
             Passed::All => true,
-            Passed::Overflow => !self.by_primary[receipt.from],
-            Passed::Primary => self.by_primary[receipt.from],
+            Passed::Overflow => !leaving.by_primary,
+            Passed::Primary => leaving.by_primary,
         };
-        open.then(|| self.leaving[receipt.from] * receipt.share)
+        open.then(|| leaving.flow * receipt.share)
     }
 }
 
@@ -69,19 +75,16 @@ impl AtOnce {
 ///
 /// Each area above lets its water out by its primary drains or by its overflow. What of its water arrives here by either is
 /// known once the areas below it are, and the greater of the two is taken: as flows add up, the greatest of each is the
-/// greatest of all.
+/// greatest of all. Only the areas above are visited, however many the roof has.
 pub fn at_once(storm: &Storm, areas: &[Catchment], area: usize) -> AtOnce {
-    worst(storm, areas, &downstream(areas).unwrap_or_default(), area)
-}
-
-fn worst(storm: &Storm, areas: &[Catchment], order: &[usize], area: usize) -> AtOnce {
+    let order = downstream(areas, [area]).unwrap_or_default();
     // The part of what leaves each area that arrives here: by its primary drains, and by its overflow.
-    let mut part = vec![(0.0_f64, 0.0_f64); areas.len()];
-    part[area] = (0.0, 1.0);
+    let mut part: BTreeMap<_, _> = order.iter().map(|&above| (above, (0.0_f64, 0.0_f64))).collect();
+    part.insert(area, (0.0, 1.0));
     for &below in order.iter().rev() {
-        let arrives = part[below].0.max(part[below].1);
-        for receipt in areas[below].receives.iter().filter(|_| arrives > 0.0) {
-            let (primary, overflow) = &mut part[receipt.from];
+        let arrives = part[&below].0.max(part[&below].1);
+        for receipt in &areas[below].receives {
+            let (primary, overflow) = part.entry(receipt.from).or_default();
             if receipt.what != Passed::Overflow {
                 *primary += receipt.share * arrives;
             }
@@ -90,25 +93,24 @@ fn worst(storm: &Storm, areas: &[Catchment], order: &[usize], area: usize) -> At
             }
         }
     }
-    let mut at_once = AtOnce {
-        leaving: vec![Flow::ZERO; areas.len()],
-        by_primary: part.iter().map(|(primary, overflow)| primary > overflow).collect(),
-    };
-    for &here in order {
+    let mut at_once = AtOnce { leaving: BTreeMap::new() };
+    for &here in &order {
         let received = areas[here].receives.iter().filter_map(|receipt| at_once.arriving(receipt)).sum();
-        at_once.leaving[here] = own(storm, &areas[here]) + received;
+        let (primary, overflow) = part[&here];
+        let leaving = Leaving { flow: own(storm, &areas[here]) + received, by_primary: primary > overflow };
+        at_once.leaving.insert(here, leaving);
     }
     at_once
 }
 
-/// The areas, each behind those that it receives from.
-fn downstream(areas: &[Catchment]) -> Result<Vec<usize>, Circle> {
-    let mut order = Vec::with_capacity(areas.len());
-    let mut known = vec![false; areas.len()];
-    for start in 0..areas.len() {
-        let mut path = if known[start] { Vec::new() } else { vec![start] };
+/// The areas given and all that run onto them, each behind those that it receives from.
+fn downstream(areas: &[Catchment], lowest: impl IntoIterator<Item = usize>) -> Result<Vec<usize>, Circle> {
+    let mut order = Vec::new();
+    let mut known = BTreeSet::new();
+    for start in lowest {
+        let mut path = if known.contains(&start) { Vec::new() } else { vec![start] };
         while let Some(&here) = path.last() {
-            let unknown = areas[here].receives.iter().map(|receipt| receipt.from).find(|&from| !known[from]);
+            let unknown = areas[here].receives.iter().map(|receipt| receipt.from).find(|from| !known.contains(from));
             match unknown {
                 Some(from) => {
                     if let Some(at) = path.iter().position(|&passed| passed == from) {
@@ -118,7 +120,7 @@ fn downstream(areas: &[Catchment]) -> Result<Vec<usize>, Circle> {
                     path.push(from);
                 }
                 None => {
-                    known[here] = true;
+                    known.insert(here);
                     order.push(here);
                     path.pop();
                 }
