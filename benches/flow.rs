@@ -73,6 +73,7 @@ fn level(bencher: divan::Bencher, name: &str) {
         ponding: Ponding::default(),
         parapet: None,
         site: site(),
+        freeboard: None,
         channel: None,
     };
     let group = Group { size: &size, count: 2, set_height: inches(2.0) };

@@ -4,7 +4,7 @@
 use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Kind, Size};
-use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Storm, Surface, demand};
+use brimline::roof::{Case, Catchment, Facts, Limits, Parapet, Roof, Storm, Surface, demand};
 use brimline::search::{self, Answer, Criterion, Options, PlanAsked, Raises, Watch};
 use brimline::units::{Area, Length, Load, Money, System};
 
@@ -47,6 +47,7 @@ fn area(index: u32, unlike: bool) -> Catchment {
         limits: vec![load(26), load(32)],
         existing: Vec::new(),
         channel: None,
+        facts: Facts::default(),
     }
 }
 
@@ -56,7 +57,17 @@ fn roof(areas: u32, sizes: Vec<Size>, unlike: bool) -> Roof {
     let designed = Case::as_designed();
     let cases = vec![designed.clone(), Case { name: "one blocked".into(), blocked: 1, ..designed }];
     let demands = demand::flows(&storm, &areas).expect("no circle");
-    Roof { title: "bench".into(), system: System::Us, storm, cases, areas, sizes, choice: Choice::default(), demands }
+    Roof {
+        title: "bench".into(),
+        system: System::Us,
+        storm,
+        cases,
+        areas,
+        sizes,
+        choice: Choice::default(),
+        demands,
+        bases: Vec::new(),
+    }
 }
 
 fn options(keep: usize) -> Options {
@@ -67,6 +78,7 @@ fn options(keep: usize) -> Options {
         freeboard: None,
         fold: true,
         watch: Watch::default(),
+        rules: Arc::default(),
     }
 }
 

@@ -4,7 +4,9 @@ use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Size};
 use brimline::roof::layout::{self, Group};
-use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm, Surface, demand, working_capacity};
+use brimline::roof::{
+    Case, Catchment, Facts, Limits, Parapet, Roof, Situation, Storm, Surface, demand, working_capacity,
+};
 use brimline::search::{self, Answer, Criterion, Options, Outcome, Watch};
 use brimline::units::{Area, Length, Load, Money, System};
 
@@ -60,6 +62,7 @@ fn area(index: u32) -> Catchment {
         limits: vec![load(28), load(34), load(30)],
         existing: Vec::new(),
         channel: None,
+        facts: Facts::default(),
     }
 }
 
@@ -75,12 +78,21 @@ fn roof(areas: u32) -> Roof {
         areas,
         sizes: sizes(),
         choice: Choice::default(),
+        bases: Vec::new(),
         demands,
     }
 }
 
 fn options(rank_by: &[Criterion], mix: usize) -> Options {
-    Options { rank_by: rank_by.to_vec(), keep: 8, mix, freeboard: None, fold: true, watch: Watch::default() }
+    Options {
+        rank_by: rank_by.to_vec(),
+        keep: 8,
+        mix,
+        freeboard: None,
+        fold: true,
+        watch: Watch::default(),
+        rules: Arc::default(),
+    }
 }
 
 /// The least cost of an area's layouts, by trying every count of every two sizes without any bound.

@@ -17,6 +17,7 @@ mod catalog;
 mod check;
 mod given;
 mod rate;
+mod rules;
 mod size;
 mod start;
 mod tradeoff;
@@ -46,6 +47,7 @@ enum Command {
     Backsolve(backsolve::Args),
     Rate(Box<rate::Args>),
     Catalog(catalog::Args),
+    Rules(rules::Args),
     Start(start::Args),
     Tradeoff(tradeoff::Args),
 }
@@ -133,6 +135,7 @@ pub fn run() -> ExitCode {
         Command::Backsolve(args) => backsolve::run(args),
         Command::Rate(args) => rate::run(args),
         Command::Catalog(args) => catalog::run(args),
+        Command::Rules(args) => rules::run(args),
         Command::Start(args) => start::run(args),
         Command::Tradeoff(args) => tradeoff::run(args),
     };

@@ -5,6 +5,7 @@ use std::path::Path;
 use crate::device::Size;
 use crate::review::Tolerances;
 use crate::roof::{Given, Roof};
+use crate::rules::RuleSet;
 use crate::search::{Options, PlanAsked, Structure};
 use crate::units::Money;
 
@@ -12,6 +13,7 @@ mod area;
 mod catalog;
 mod defaults;
 mod existing;
+mod facts;
 mod fault;
 mod file;
 mod flow;
@@ -22,6 +24,7 @@ mod ponding;
 mod project;
 mod rainfall;
 mod rating;
+mod rules;
 mod schedule;
 mod section;
 mod setting;
@@ -97,6 +100,20 @@ pub fn read_catalog(path: &Path) -> Result<Catalog, Faults> {
     let catalog = catalog::read_alone(path, &log);
     let faults = log.into_faults();
     catalog.filter(|_| !faults.any_error()).ok_or(faults)
+}
+
+/// Reads a rule set.
+///
+/// # Errors
+/// Every fault of the file, each with its place.
+pub fn read_rules(path: &Path) -> Result<(RuleSet, Faults), Faults> {
+    let log = fault::Log::default();
+    let set = rules::read_alone(path, &log);
+    let faults = log.into_faults();
+    match set {
+        Some(set) if !faults.any_error() => Ok((set, faults)),
+        _ => Err(faults),
+    }
 }
 
 /// Reads a project and all files that it names.

@@ -6,6 +6,7 @@
 use crate::device::{Law, Site, Size};
 use crate::input::Assumed;
 use crate::roof::Roof;
+use crate::rules::RuleSet;
 use crate::search::{
     Answer, Front, Opened, Opening, Options, PlanAsked, PlanAt, PlanFront, Plans, Ranked, StiffenedPlan, Structure,
     UnderLaw,
@@ -15,6 +16,7 @@ use crate::units::{Flow, Length, Load, System};
 mod backsolve;
 mod cascade;
 mod check;
+mod codebook;
 mod contents;
 mod cures;
 mod front;
@@ -28,6 +30,7 @@ mod ponding;
 mod ranking;
 mod rate;
 mod reasons;
+mod rules;
 mod schedule;
 mod sensitivity;
 mod storage;
@@ -218,6 +221,11 @@ pub fn tradeoff(traded: &Traded<'_>, format: Format, width: usize) -> String {
 /// Writes what is in a catalog.
 pub fn contents(sizes: &[Size], title: &str, system: System, format: Format, width: usize) -> String {
     contents::write(sizes, title, system, format, width)
+}
+
+/// Writes what a rule set asks; of several, row by row beside one another.
+pub fn rule_sets(sets: &[RuleSet], system: System, format: Format, width: usize) -> String {
+    codebook::write(sets, system, format, width)
 }
 
 /// A number for another program: no separator of thousands, no zeros at its end.

@@ -9,7 +9,7 @@ use rayon::prelude::*;
 use crate::device::Place;
 use crate::roof::layout::{self, Asked, Group, Liftable};
 use crate::roof::{Given, Roof, Situation};
-use crate::rules;
+use crate::rules::{self, Family, Finding, Verdict};
 use crate::search::{self, Options, Ranked};
 use crate::units::Length;
 
@@ -75,6 +75,8 @@ pub enum Failing {
         /// The top of the parapet above the low point.
         parapet: Length,
     },
+    /// A rule of a binding set is broken.
+    Rule(Finding),
 }
 
 impl Checked<'_> {
@@ -112,11 +114,27 @@ fn checked<'r>(
             return Some(Failing::Limit { case });
         }
         let kept = standing.states[case].groups.iter().filter_map(|group| group.freeboard).reduce(Length::min)?;
-        let holds = asked.freeboard.is_none() || layout::holds_at(&groups, situation, allowed, asked);
-        (!holds).then_some(Failing::Freeboard { case, kept, asked: asked.freeboard? })
+        let wanted = layout::freeboard_asked(situation, asked)?;
+        let holds = layout::holds_at(&groups, situation, allowed, asked);
+        (!holds).then_some(Failing::Freeboard { case, kept, asked: wanted })
     });
     failings.extend(broken);
+    failings.extend(broken_rules(roof, options, given.area, &groups));
     Checked { given, standing, failings }
+}
+
+/// The binding rules that groups break, of those that no case of the roof holds them to already.
+fn broken_rules(roof: &Roof, options: &Options, area: usize, groups: &[Group<'_>]) -> Vec<Failing> {
+    let book = &options.rules;
+    if !book.sets.iter().any(|applied| applied.binding) {
+        return Vec::new();
+    }
+    let breaks = |finding: &Finding| {
+        let family = book.rule(finding.at).kind.role.family();
+        let by_a_case = matches!(family, Family::Demand | Family::Water);
+        book.sets[finding.at.set].binding && finding.verdict == Verdict::Fail && !by_a_case
+    };
+    rules::findings(book, roof, area, groups).into_iter().filter(breaks).map(Failing::Rule).collect()
 }
 
 /// How high a group may be lifted: under the top of the parapet, and no higher than any case lets water stand.

@@ -10,8 +10,10 @@ use std::sync::Arc;
 use crate::device::{Choice, Kind, Law, Site, Size};
 use crate::units::{Area, Flow, Intensity, Length, Load, ReturnPeriod, System, Time};
 
+mod basis;
 pub mod channel;
 pub mod demand;
+mod facts;
 pub mod framing;
 mod given;
 pub mod layout;
@@ -21,6 +23,8 @@ mod rainfall;
 mod situation;
 mod surface;
 
+pub use basis::{AreaBasis, Basis};
+pub use facts::{Facts, Primary, Risk, Separation, Side, Wall, WallRule};
 pub use given::{Given, GivenGroup};
 pub use ponding::Ponding;
 pub use pool::{MOST_GROUPS, MOST_OUTLETS, Outlet, Pool, Share, working, working_capacity};
@@ -131,6 +135,9 @@ pub struct Case {
     pub law: Option<Law>,
     /// The further storm it is held under, by its place in [`Storm::further`]; none for the design rain.
     pub storm: Option<usize>,
+    /// The rule set by whose basis the demand is counted, its cap on the depth and its freeboard kept, by its place in
+    /// [`Roof::bases`]; none for the project's own.
+    pub basis: Option<usize>,
 }
 
 impl Case {
@@ -145,6 +152,7 @@ impl Case {
             discharge: 1.0,
             law: None,
             storm: None,
+            basis: None,
         }
     }
 }
@@ -236,9 +244,16 @@ pub struct Catchment {
     pub existing: Vec<GivenGroup>,
     /// The gutter or valley between its far end and its devices, where there is one.
     pub channel: Option<channel::Channel>,
+    /// What rule sets ask about it.
+    pub facts: Facts,
 }
 
 impl Catchment {
+    /// Its limits in every case, and those that rule sets hold it to, to be changed alike.
+    pub(crate) fn every_limit(&mut self) -> impl Iterator<Item = &mut Limits> {
+        self.limits.iter_mut().chain([&mut self.facts.limits])
+    }
+
     /// Whether a kind of device may stand here.
     pub fn takes(&self, kind: Kind) -> bool {
         self.kinds.as_ref().is_none_or(|kinds| kinds.contains(&kind))
@@ -264,6 +279,8 @@ pub struct Roof {
     pub choice: Choice,
     /// Flow that each area must pass under the storm, in the order of the areas; from [`demand::flows`].
     pub demands: Vec<Flow>,
+    /// The roof as each rule set counts it, in the order of the sets.
+    pub bases: Vec<Basis>,
 }
 
 impl Roof {
@@ -280,15 +297,46 @@ impl Roof {
 
     /// Everything that decides about one area in one case.
     pub fn situation(&self, area: usize, case: usize) -> Situation<'_> {
+        self.in_case(area, &self.cases[case], self.areas[area].limits[case])
+    }
+
+    /// Everything that decides about one area as a rule set counts it, whether or not that is one of the cases.
+    pub fn situation_under(&self, area: usize, basis: usize) -> Situation<'_> {
+        self.in_case(area, &self.bases[basis].case, self.areas[area].facts.limits)
+    }
+
+    fn in_case<'r>(&'r self, area: usize, case: &'r Case, limits: Limits) -> Situation<'r> {
         let catchment = &self.areas[area];
+        let basis = case.basis.map(|basis| &self.bases[basis].areas[area]);
+        let depth = limits.depth.into_iter().chain(basis.and_then(|basis| basis.depth)).reduce(Length::min);
         Situation {
-            case: &self.cases[case],
-            demand: self.demands[area] * self.cases[case].rain,
-            limits: catchment.limits[case],
+            case,
+            demand: self.demand_with(area, case, Area::ZERO, 1.0),
+            limits: Limits { depth, ..limits },
+            freeboard: basis.and_then(|basis| basis.freeboard),
             ponding: catchment.ponding.unwrap_or_default(),
             parapet: catchment.parapet.height,
-            site: self.site(area, self.cases[case].law),
+            site: self.site(area, case.law),
             channel: catchment.channel,
+        }
+    }
+
+    /// Flow that an area must pass in a case with so much more roof of its own and so many times the rain.
+    pub fn demand_with(&self, area: usize, case: &Case, more: Area, times: f64) -> Flow {
+        match case.basis {
+            Some(basis) => {
+                let basis = &self.bases[basis].areas[area];
+                basis.demand_with(basis.intensity * more, case.rain * times)
+            }
+            None => (self.demands[area] + self.storm.intensity * more) * case.rain * times,
+        }
+    }
+
+    /// How long the storm lasts that an area is held under in a case, where stated.
+    pub fn duration_in(&self, area: usize, case: &Case) -> Option<Time> {
+        match case.basis {
+            Some(basis) => self.bases[basis].areas[area].duration,
+            None => self.storm.duration_in(case),
         }
     }
 

@@ -6,12 +6,14 @@
 //! measure are searched on that grid too; the layouts kept are then fitted with widths of their own (`measure`). The answer does not
 //! depend on the number of threads, and equal input gives equal answers to the last bit.
 
+use std::sync::Arc;
+
 use rayon::prelude::*;
 use rustc_hash::FxHashMap;
 
 use crate::device::Size;
 use crate::roof::Roof;
-use crate::rules::Misfit;
+use crate::rules::{Misfit, RuleAt, Rulebook};
 use crate::units::{Length, Money};
 
 mod alike;
@@ -58,6 +60,8 @@ pub struct Options {
     pub fold: bool,
     /// Who may end the search before everything was tried.
     pub watch: Watch,
+    /// The rule sets over the roof, of which those that bind restrict what is searched.
+    pub rules: Arc<Rulebook>,
 }
 
 /// How the search of one area ended.
@@ -110,6 +114,8 @@ pub enum Why<'r> {
     NothingFits {
         /// Least number of devices.
         least: u32,
+        /// The binding rule that asks for so many, where one does.
+        rule: Option<RuleAt>,
     },
     /// No layout keeps under the limits.
     Limits {
@@ -195,7 +201,7 @@ impl<'r> Sought<'r> {
 /// The best layouts of each area.
 fn best_of_each<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<Sought<'r>> {
     options.watch.expect(areas.len());
-    let groups = alike::groups(roof, areas);
+    let groups = alike::groups(roof, options, areas);
     let worth_trying: Vec<_> = groups.par_iter().map(|group| alike::worth_trying(roof, options, group)).collect();
     let of_group = |(group, sizes): (&Vec<usize>, _)| group.iter().map(|&area| (area, sizes)).collect::<Vec<_>>();
     let sizes_of: FxHashMap<usize, &Vec<usize>> = groups.iter().zip(&worth_trying).flat_map(of_group).collect();
@@ -209,7 +215,9 @@ fn best_of_each<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<S
 
 /// The best layouts of an area.
 fn best_of<'r>(problem: &Problem<'r>, options: &Options) -> Sought<'r> {
-    let dived = dive(problem, Aim::Rank, Best::new(options.keep, options.fold));
+    let deciding = problem.deciding();
+    let searched = deciding.as_ref().unwrap_or(problem);
+    let dived = dive(searched, Aim::Rank, Best::new(options.keep, options.fold));
     let layouts = measured(problem, dived.found.iter().map(|found| (ranked(problem, found), found)));
     let bound = if dived.finished { None } else { least(problem) };
     Sought { layouts, finished: dived.finished, bound }

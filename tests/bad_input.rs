@@ -178,7 +178,7 @@ error: unknown key `titel` in the project
 1 | titel = "Depot"
   | ^^^^^ not a key of this table
   |
-  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, tolerance, case, area, layout, schedule or replace
+  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, tolerance, case, area, layout, schedule, replace, rules or risk_category
 
 error: `intensity`: `6.3` has no unit; this is a rain intensity
  --> roof.toml:6:13
@@ -655,7 +655,7 @@ error: unknown key `titel` in the project
 1 | titel = "Depot"
   | ^^^^^ not a key of this table
   |
-  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, tolerance, case, area, layout, schedule or replace
+  = help: did you mean `title`? the project takes title, note, units, catalogs, storm, limit, flow, search, structure, tolerance, case, area, layout, schedule, replace, rules or risk_category
 
 error: unknown key `durration` in [storm]
  --> roof.toml:7:1
@@ -703,7 +703,7 @@ error: unknown key `blokced` in a [[case]]
 26 | blokced = 1
    | ^^^^^^^ not a key of this table
    |
-   = help: did you mean `blocked`? a [[case]] takes name, blocked, sill_error, opening_loss, rain, discharge or limit
+   = help: did you mean `blocked`? a [[case]] takes name, blocked, sill_error, opening_loss, rain, discharge, limit or rules
 
 error: unknown key `thicknes` in `parapet`
   --> roof.toml:33:31
@@ -749,7 +749,7 @@ error: unknown key `per_widht` in `price`
 }
 
 #[test]
-fn keys_of_later_work_are_refused_by_name() {
+fn an_empty_list_of_rules_and_half_a_slope() {
     Folder::new()
         .with(
             "roof.toml",
@@ -759,13 +759,13 @@ fn keys_of_later_work_are_refused_by_name() {
             ),
         )
         .refuses(str![[r#"
-error: `rules` in the project is not supported in this version
- --> roof.toml:3:1
+error: `rules` is an empty list
+ --> roof.toml:3:9
   |
 3 | rules = []
-  | ^^^^^ meant for sets of code rules to hold every layout against
+  |         ^^ no rule set stands here
   |
-  = help: take the key out: the answer would not heed it
+  = help: name at least one, or take the key out
 
 error: `slope` and `distance` belong together
   --> roof.toml:32:9

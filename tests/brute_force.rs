@@ -11,7 +11,7 @@ use std::sync::Arc;
 use brimline::device::{Choice, Device, Kind, Law, Place, Rating, Size};
 use brimline::roof::channel::Channel;
 use brimline::roof::layout::{self, Asked, Group, Liftable};
-use brimline::roof::{Case, Catchment, GivenGroup, Limits, Parapet, Ponding, Roof, Situation, Storm, Surface};
+use brimline::roof::{Case, Catchment, Facts, GivenGroup, Limits, Parapet, Ponding, Roof, Situation, Storm, Surface};
 use brimline::search::{self, Criterion, Least, Options, Outcome, PlanAsked, PlanFront, Relaxation, Watch, Why};
 use brimline::units::{Area, Dimension, Flow, Intensity, Length, Load, Money, System};
 
@@ -99,6 +99,7 @@ fn cases(dice: &mut Dice) -> Vec<Case> {
             discharge: dice.pick(&[1.0, 1.0, 0.8]),
             law: None,
             storm: None,
+            basis: None,
         })
         .collect()
 }
@@ -152,6 +153,7 @@ fn roof(dice: &mut Dice) -> Roof {
         set_heights: Some((0..=2).map(|step| on_grid(Length::inches((grid_start + step) as f64 * 0.75))).collect()),
         limits,
         existing: Vec::new(),
+        facts: Facts::default(),
         channel: dice.one_in(12).then(|| Channel {
             width: on_grid(dice.inches(8, 40)),
             length: Length::from_m(5.0 + dice.upto(20) as f64),
@@ -166,7 +168,17 @@ fn roof(dice: &mut Dice) -> Roof {
         choice.scupper =
             dice.pick(&[Law::Contracted, Law::KindsvaterCarter, Law::ShortCrest, Law::En12056, Law::Throat]);
     }
-    Roof { title: String::new(), system: System::Us, storm, cases, areas: vec![catchment], sizes, choice, demands }
+    Roof {
+        title: String::new(),
+        system: System::Us,
+        storm,
+        cases,
+        areas: vec![catchment],
+        sizes,
+        choice,
+        demands,
+        bases: Vec::new(),
+    }
 }
 
 fn options(dice: &mut Dice) -> Options {
@@ -183,6 +195,7 @@ fn options(dice: &mut Dice) -> Options {
         freeboard: dice.one_in(3).then(|| Length::inches(dice.pick(&[0.0, 0.5, 1.0]))),
         fold: !dice.one_in(3),
         watch: Watch::default(),
+        rules: Arc::default(),
     }
 }
 
@@ -728,6 +741,7 @@ fn a_step_less(change: Relaxation) -> Option<Relaxation> {
         Relaxation::Freeboard(less) => inches(less, 0.01).map(Relaxation::Freeboard),
         Relaxation::Edge(more) => inches(more, 3.0).map(Relaxation::Edge),
         Relaxation::Demand(factor) => (factor < 0.9989).then_some(Relaxation::Demand(factor + 0.001)),
+        Relaxation::Rule(_) => None,
     }
 }
 

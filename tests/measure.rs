@@ -5,7 +5,7 @@ use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Head, Kind, Law, Made, Place, Rating, Site, Size, Tariff};
 use brimline::roof::layout::{self, Asked, Group};
-use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm, Surface};
+use brimline::roof::{Case, Catchment, Facts, Limits, Parapet, Roof, Situation, Storm, Surface};
 use brimline::search::{self, Criterion, Fitted, Measured, Options, Outcome, Ranked, Watch};
 use brimline::units::{Area, Dimension, Flow, Intensity, Length, Load, Money, System, read_price};
 
@@ -93,6 +93,7 @@ fn cases(dice: &mut Dice) -> Vec<Case> {
             rain: dice.pick(&[1.0, 1.0, 1.3]),
             discharge: dice.pick(&[1.0, 1.0, 0.8]),
             storm: None,
+            basis: None,
             law: None,
         })
         .collect()
@@ -123,6 +124,7 @@ fn roof(dice: &mut Dice, mix: usize) -> (Roof, Options) {
         limits,
         existing: Vec::new(),
         channel: None,
+        facts: Facts::default(),
     };
     let storm = Storm { intensity: Intensity::from_m_per_s(3e-5), ..Storm::default() };
     let choice =
@@ -134,10 +136,18 @@ fn roof(dice: &mut Dice, mix: usize) -> (Roof, Options) {
     };
     let freeboard = dice.one_in(4).then(|| inches(dice.pick(&[0.0, 0.5])));
     let keep = if mix == 3 { 8 } else { 3 };
-    let options = Options { rank_by, keep, mix, freeboard, fold: !dice.one_in(3), watch: Watch::default() };
+    let options = Options {
+        rank_by,
+        keep,
+        mix,
+        freeboard,
+        fold: !dice.one_in(3),
+        watch: Watch::default(),
+        rules: Arc::default(),
+    };
     let demands = vec![storm.intensity * catchment.area];
     let (title, system, areas) = (String::new(), System::Us, vec![catchment]);
-    (Roof { title, system, storm, cases, areas, sizes, choice, demands }, options)
+    (Roof { title, system, storm, cases, areas, sizes, choice, demands, bases: Vec::new() }, options)
 }
 
 fn groups<'r>(layout: &Ranked<'r>) -> Vec<Group<'r>> {

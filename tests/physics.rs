@@ -80,6 +80,7 @@ fn published_example_of_a_rain_load() {
         ponding: Ponding::default(),
         parapet: None,
         site: Site::default(),
+        freeboard: None,
         channel: None,
     };
     let group = Group { size: &channel, count: 1, set_height: inches(2.0) };
@@ -103,6 +104,7 @@ fn published_example_of_a_drain() {
         ponding: Ponding::default(),
         parapet: None,
         site: Site::default(),
+        freeboard: None,
         channel: None,
     };
     let water = layout::state(&[Group { size: &drain, count: 1, set_height: inches(2.0) }], &situation).water.unwrap();
@@ -134,6 +136,7 @@ fn random() -> impl Strategy<Value = Random> {
             discharge,
             law: None,
             storm: None,
+            basis: None,
         };
         (pieces, case, gpm)
     })
@@ -167,6 +170,7 @@ fn situation(case: &Case, gpm: f64) -> Situation<'_> {
         ponding: Ponding::Head(inches(0.3)),
         parapet: None,
         site: Site::default(),
+        freeboard: None,
         channel: None,
     }
 }

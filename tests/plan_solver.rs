@@ -7,7 +7,7 @@
 use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Size};
-use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Storm, Surface, demand};
+use brimline::roof::{Case, Catchment, Facts, Limits, Parapet, Roof, Storm, Surface, demand};
 use brimline::search::{self, Criterion, Options, PlanAsked, Watch};
 use brimline::units::{Area, Length, Load, Money, System};
 use good_lp::{Constraint, Expression, ProblemVariables, Solution, SolverModel, Variable, microlp, variable};
@@ -199,6 +199,7 @@ fn roof(given: &Given) -> Roof {
         limits: ask.psf.map(|psf| Limits { load: Some(Load::psf(f64::from(psf))), depth: None }).to_vec(),
         existing: Vec::new(),
         channel: None,
+        facts: Facts::default(),
     };
     let areas: Vec<Catchment> = given.areas.iter().map(area).collect();
     let storm = Storm { intensity: format!("{RAIN} in/h").parse().expect("an intensity"), ..Storm::default() };
@@ -212,6 +213,7 @@ fn roof(given: &Given) -> Roof {
         areas,
         sizes: given.sizes.iter().map(size).collect(),
         choice: Choice::default(),
+        bases: Vec::new(),
     }
 }
 
@@ -233,6 +235,7 @@ fn compare(
             freeboard: None,
             fold: true,
             watch: Watch::default(),
+            rules: Arc::default(),
         };
         let size_price = Money::nearest(f64::from(given.size_price));
         let asked = PlanAsked { sizes: Some(given.most_sizes), size_price };

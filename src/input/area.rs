@@ -5,12 +5,13 @@ use std::ops::RangeInclusive;
 
 use crate::device::Kind;
 use crate::roof::demand::{self, Circle};
-use crate::roof::{Catchment, Limits, Parapet, Passed, Receipt, Rise, Roof, Storm, Surface};
+use crate::roof::{Catchment, Facts, Limits, Parapet, Passed, Receipt, Rise, Roof, Storm, Surface, Wall};
 use crate::units::{Area, Dimension, Flow, Length, Money};
 
 use super::Assumed;
 use super::catalog::Offer;
 use super::defaults::{COUNT, SHARE, WALL_SHARE, default};
+use super::facts;
 use super::fault::{Fault, Span};
 use super::flow;
 use super::grid::{self, Least};
@@ -44,6 +45,10 @@ pub(super) static AREA: Keys = Keys {
         "distance",
         "replace",
         "existing",
+        "walls",
+        "primary",
+        "risk_category",
+        "overflow_to",
     ],
     unsupported: &[],
 };
@@ -216,24 +221,13 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
         }
         cell
     };
-    let wall = otherwise("wall", "area.wall");
-    let wall_share =
-        if wall.is_some() { otherwise("wall_share", "area.wall_share") } else { section.get("wall_share") };
+    let walls = read_walls(section, &mut otherwise);
     let edge = otherwise("edge", "area.edge");
     let gap = otherwise("gap", "area.gap");
     let surface = read_surface(section);
     let sloped = section.get("slope").is_some() || section.get("distance").is_some();
     let roof_at_wall =
         if sloped { section.get("roof_at_wall") } else { otherwise("roof_at_wall", "area.roof_at_wall") };
-    let wall = wall.map_or(Some(Area::ZERO), |cell| cell.zero_or_more(Dimension::Area, Area::m2));
-    let wall_share = wall_share.map_or(Some(WALL_SHARE), |cell| {
-        let share = cell.number_not_negative()?;
-        if share > 1.0 {
-            cell.at_fault("`wall_share` must be a part of one", "above 1", "0.5 counts half of the wall");
-            return None;
-        }
-        Some(share)
-    });
     let edge = edge.map(|cell| cell.length());
     let gap = gap.map_or(Some(Length::ZERO), |cell| cell.length());
     let parapet = section.section("parapet", &PARAPET).map(|parapet| {
@@ -263,6 +257,12 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
         thickness_given(section, setting, kinds.as_ref(), parapet, &called);
     }
     let limits = read_limits(section, setting, &called);
+    let facts = facts::read(
+        section,
+        setting.risk,
+        walls.as_ref().map(|walls| walls.one_by_one.clone()),
+        limits.as_ref().map(|limits| limits.general),
+    );
     let receives = read_receives(section, taken, &called).unwrap_or_default();
     if let Some(cell) = section.get("count") {
         blocked_under_count(section, setting, count.as_ref(), Some(&cell.span()), Some(&called));
@@ -279,8 +279,8 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
         Some(Catchment {
             name: name.clone()?,
             area: area?,
-            wall: wall?,
-            wall_share: wall_share?,
+            wall: walls.as_ref()?.sum,
+            wall_share: walls.as_ref()?.share,
             edge: optional(edge)?,
             gap: gap?,
             parapet: parapet?,
@@ -291,12 +291,47 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
             kinds: kinds.clone()?,
             count: count?,
             set_heights: set_heights?,
-            limits: limits?,
+            limits: limits?.in_case,
             existing: Vec::new(),
             channel: optional(channel)?,
+            facts: facts?,
         })
     };
     Given { area: whole(), name, kinds, receives }
+}
+
+/// The walls over an area.
+struct Walls {
+    /// Each with its side; empty where their sum is given.
+    one_by_one: Vec<Wall>,
+    sum: Area,
+    /// The part of them that counts.
+    share: f64,
+}
+
+/// The walls over an area; `otherwise` looks a key up and notes the default where it is absent.
+fn read_walls<'a>(
+    section: &Section<'a>,
+    otherwise: &mut impl FnMut(&'static str, &'static str) -> Option<Cell<'a>>,
+) -> Option<Walls> {
+    let given = section.get("walls").is_some();
+    let wall = if given { section.get("wall") } else { otherwise("wall", "area.wall") };
+    let share =
+        if given || wall.is_some() { otherwise("wall_share", "area.wall_share") } else { section.get("wall_share") };
+    let one_by_one = facts::walls(section);
+    let sum = match (wall, &one_by_one) {
+        (Some(cell), _) => cell.zero_or_more(Dimension::Area, Area::m2),
+        (None, walls) => walls.as_ref().map(|walls| walls.iter().map(|wall| wall.area).sum()),
+    };
+    let share = share.map_or(Some(WALL_SHARE), |cell| {
+        let share = cell.number_not_negative()?;
+        if share > 1.0 {
+            cell.at_fault("`wall_share` must be a part of one", "above 1", "0.5 counts half of the wall");
+            return None;
+        }
+        Some(share)
+    });
+    Some(Walls { one_by_one: one_by_one?, sum: sum?, share: share? })
 }
 
 /// How the surface of an area lies.
@@ -416,8 +451,16 @@ fn read_kinds(cell: &Cell<'_>, setting: &Setting<'_>) -> Option<Vec<Kind>> {
     Some(kinds)
 }
 
+/// The limits of an area.
+struct AreaLimits {
+    /// What holds in each case.
+    in_case: Vec<Limits>,
+    /// What holds in every case that says nothing else; where that is nowhere given, what holds in the first.
+    general: Limits,
+}
+
 /// What holds in each case: key by key the area's own limit for the case, its own, the case's, the roof's.
-fn read_limits(section: &Section<'_>, setting: &Setting<'_>, called: &str) -> Option<Vec<Limits>> {
+fn read_limits(section: &Section<'_>, setting: &Setting<'_>, called: &str) -> Option<AreaLimits> {
     let own = section.get("limit").map_or(Some(Limits::default()), |cell| limits_of(&cell));
     let cases = &setting.cases.given;
     let mut in_case = vec![Limits::default(); cases.len()];
@@ -441,7 +484,7 @@ fn read_limits(section: &Section<'_>, setting: &Setting<'_>, called: &str) -> Op
         }
     }
     let (own, roof) = (own?, setting.limits?);
-    let pick = |given: &[Limits; 4]| Limits {
+    let pick = |given: &[Limits]| Limits {
         load: given.iter().find_map(|limits| limits.load),
         depth: given.iter().find_map(|limits| limits.depth),
     };
@@ -456,7 +499,9 @@ fn read_limits(section: &Section<'_>, setting: &Setting<'_>, called: &str) -> Op
             return None;
         }
     }
-    sound.then_some(limits)
+    let general = Some(pick(&[own, roof])).filter(|limits| limits.load.is_some() || limits.depth.is_some());
+    let general = general.or(limits.first().copied())?;
+    sound.then_some(AreaLimits { in_case: limits, general })
 }
 
 fn unknown_case(entry: &Cell<'_>, key: Span, names: &[String]) {
@@ -591,5 +636,6 @@ fn without_size(receives: Vec<Receipt>) -> Catchment {
         limits: Vec::new(),
         existing: Vec::new(),
         channel: None,
+        facts: Facts::default(),
     }
 }

@@ -29,12 +29,12 @@ pub(super) fn read(path: &Path, as_written: &str, named_in: Option<&Cell<'_>>, l
     };
     if shipped::is_shipped(path) {
         let Some(text) = shipped::text(path) else {
-            let names = shipped::names();
+            let (sort, names) = shipped::sort_of(as_written);
             let names: Vec<&str> = names.iter().map(String::as_str).collect();
             let did_you = near(as_written, names.iter().copied())
                 .map_or(String::new(), |near| format!("did you mean `{near}`? "));
             return refuse(
-                format!("there is no catalog `{as_written}`"),
+                format!("there is no {sort} `{as_written}`"),
                 &format!("{did_you}{} would pass", any_of(&names)),
             );
         };

@@ -5,6 +5,7 @@ use std::path::Path;
 use crate::device::{Choice, Kind, Law};
 use crate::review::Tolerances;
 use crate::roof::{Case, Limits, Roof, demand};
+use crate::rules::{Rulebook, bases};
 use crate::search::{Criterion, Options, PlanAsked, Watch};
 use crate::units::{Length, Money, System};
 
@@ -12,9 +13,9 @@ use super::catalog::{Catalogs, Offer, Offered};
 use super::defaults::{self, COUNT, KEEP, MIX, RANK_BY};
 use super::fault::{Fault, Faults, Log, Span};
 use super::grid::{self, Least};
-use super::section::{Cell, Keys, Reader, Section, optional};
+use super::section::{Cell, Keys, Reader, Section, any_of, near, optional};
 use super::setting::{Cases, GivenCase, MOST_DEVICES, Names, Search, Setting, is_named, limits_of, read_count, unique};
-use super::{Assumed, Project, area, existing, file, flow, layout, storm, structure, tolerance};
+use super::{Assumed, Project, area, existing, facts, file, flow, layout, rules, storm, structure, tolerance};
 
 static PROJECT: Keys = Keys {
     table: "the project",
@@ -34,8 +35,10 @@ static PROJECT: Keys = Keys {
         "layout",
         "schedule",
         "replace",
+        "rules",
+        "risk_category",
     ],
-    unsupported: &[("rules", "sets of code rules to hold every layout against")],
+    unsupported: &[],
 };
 
 static SEARCH: Keys = Keys {
@@ -58,7 +61,7 @@ static SEARCH: Keys = Keys {
 
 static CASE: Keys = Keys {
     table: "a [[case]]",
-    known: &["name", "blocked", "sill_error", "opening_loss", "rain", "discharge", "limit"],
+    known: &["name", "blocked", "sill_error", "opening_loss", "rain", "discharge", "limit", "rules"],
     unsupported: &[],
 };
 
@@ -125,9 +128,12 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         .section("tolerance", &tolerance::TOLERANCE)
         .map_or_else(|| Some(Tolerances::usual(usual)), |section| tolerance::read(&section, usual));
     // A fault above does not keep the areas from being read: whatever is at fault in any file is told in one run.
-    let cases = read_cases(section, &mut assumed);
+    let book = rules::read_all(path, section);
+    let cases = read_cases(section, book.as_ref(), &mut assumed);
     let searched = section.get("layout").is_none() && section.get("schedule").is_none();
-    let setting = Setting { cases: &cases, limits, search: &search, choice, catalogs: &catalogs, searched };
+    let risk = optional(section.get("risk_category").map(|cell| facts::risk(&cell)));
+    let setting = Setting { cases: &cases, limits, search: &search, choice, catalogs: &catalogs, risk, searched };
+    set_named_as_case(section, &cases, book.as_ref());
     let areas = area::read_all(section, &setting, &mut assumed);
     prices(section, &search, &areas.kinds, &catalogs);
     let replace = area::replace_prices(section);
@@ -155,8 +161,10 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         areas,
         sizes: catalogs.sizes,
         choice: choice?,
+        bases: Vec::new(),
     };
-    let roof = under_each_law(storm::under_each_storm(roof), search.laws.as_deref()?);
+    let book = book?;
+    let roof = under_each_law(under_each_set(storm::under_each_storm(roof), &book), search.laws.as_deref()?);
     if !area::channels_flow(section, &roof) {
         return None;
     }
@@ -164,7 +172,7 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
     let structure = optional(structure)?;
     Some(Project {
         roof,
-        options: search.options()?,
+        options: search.options(book)?,
         plan,
         structure,
         tolerances: tolerances?,
@@ -173,6 +181,32 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         assumed,
         warnings: Faults::default(),
     })
+}
+
+/// The roof with one more case for each rule set that binds: the layout as drawn, under what the set counts.
+fn under_each_set(mut roof: Roof, book: &Rulebook) -> Roof {
+    roof.bases = bases(book, &roof);
+    for (basis, _) in roof.bases.iter().zip(&book.sets).filter(|(_, applied)| applied.binding) {
+        roof.cases.push(basis.case.clone());
+        for area in &mut roof.areas {
+            area.limits.push(area.facts.limits);
+        }
+    }
+    roof
+}
+
+/// Refuses a rule set that is called as a case is: its own case is named after it.
+fn set_named_as_case(section: &Section<'_>, cases: &Cases, book: Option<&Rulebook>) {
+    for applied in book.iter().flat_map(|book| &book.sets) {
+        let title = &applied.set.title;
+        if let (true, Some(cell)) = (cases.names.contains(title), section.get("rules")) {
+            cell.at_fault(
+                format!("a rule set and a case are both called `{title}`"),
+                "the set makes a case of its own, named after it",
+                "give the case another name",
+            );
+        }
+    }
 }
 
 /// The roof with each case held under each law: as many cases as there are pairs, named after both.
@@ -286,7 +320,7 @@ impl Search {
         }
     }
 
-    fn options(self) -> Option<Options> {
+    fn options(self, book: Rulebook) -> Option<Options> {
         Some(Options {
             rank_by: self.rank_by?,
             keep: self.keep? as usize,
@@ -294,6 +328,7 @@ impl Search {
             freeboard: self.freeboard?,
             fold: true,
             watch: Watch::default(),
+            rules: book.into(),
         })
     }
 }
@@ -408,7 +443,7 @@ fn read_rank_by(cell: &Cell<'_>) -> Option<Vec<Criterion>> {
     sound.then_some(criteria)
 }
 
-fn read_cases(section: &Section<'_>, assumed: &mut Vec<Assumed>) -> Cases {
+fn read_cases(section: &Section<'_>, book: Option<&Rulebook>, assumed: &mut Vec<Assumed>) -> Cases {
     if section.get("case").is_none() {
         assume(assumed, "case");
         let as_designed = GivenCase { case: Case::as_designed(), limits: Limits::default(), blocked_at: None };
@@ -417,13 +452,30 @@ fn read_cases(section: &Section<'_>, assumed: &mut Vec<Assumed>) -> Cases {
     }
     let mut names = Names::default();
     let tables = section.sections("case", &CASE, "a list of cases, each under [[case]]").unwrap_or_default();
-    let cases: Vec<Option<GivenCase>> = tables.iter().map(|table| read_case(table.as_ref()?, &mut names)).collect();
+    let cases: Vec<Option<GivenCase>> =
+        tables.iter().map(|table| read_case(table.as_ref()?, book, &mut names)).collect();
     Cases {
         names_complete: !tables.is_empty() && tables.iter().all(|table| is_named(table.as_ref())),
         complete: !cases.is_empty() && cases.iter().all(Option::is_some),
         given: cases.into_iter().flatten().collect(),
         names: in_order(names),
     }
+}
+
+/// The rule set that counts a case, by its place among those of the project.
+fn counted_by(cell: &Cell<'_>, book: &Rulebook) -> Option<usize> {
+    let title = cell.text()?;
+    let titles: Vec<&str> = book.sets.iter().map(|applied| applied.set.title.as_str()).collect();
+    let found = titles.iter().position(|known| *known == title);
+    if found.is_none() {
+        let help = match (near(title, titles.iter().copied()), &titles[..]) {
+            (_, []) => "name the set in the project first: rules = [\"firm-rules.toml\"]".to_string(),
+            (Some(near), _) => format!("did you mean `{near}`?"),
+            (None, titles) => format!("the sets are {}", any_of(titles)),
+        };
+        cell.at_fault(format!("no rule set of this project has the title `{title}`"), "not one of them", help);
+    }
+    found
 }
 
 /// Names in the order of the file.
@@ -433,7 +485,7 @@ fn in_order(names: Names) -> Vec<String> {
     names.into_iter().map(|(name, _)| name).collect()
 }
 
-fn read_case(section: &Section<'_>, names: &mut Names) -> Option<GivenCase> {
+fn read_case(section: &Section<'_>, book: Option<&Rulebook>, names: &mut Names) -> Option<GivenCase> {
     let name =
         section.need("name", "name the case: name = \"one blocked\"").and_then(|cell| unique(&cell, names, "case"));
     let blocked = section.get("blocked").map_or(Some(0), |cell| cell.whole(0, MOST_DEVICES));
@@ -441,6 +493,7 @@ fn read_case(section: &Section<'_>, names: &mut Names) -> Option<GivenCase> {
     let (sill_error, opening_loss) = (length("sill_error"), length("opening_loss"));
     let factor = |key| section.get(key).map_or(Some(1.0), |cell| cell.number_positive());
     let (rain, discharge) = (factor("rain"), factor("discharge"));
+    let basis = section.get("rules").map_or(Some(None), |cell| counted_by(&cell, book?).map(Some));
     let limits = section.get("limit").map_or(Some(Limits::default()), |cell| limits_of(&cell));
     Some(GivenCase {
         case: Case {
@@ -452,6 +505,7 @@ fn read_case(section: &Section<'_>, names: &mut Names) -> Option<GivenCase> {
             discharge: discharge?,
             law: None,
             storm: None,
+            basis: basis?,
         },
         limits: limits?,
         blocked_at: section.get("blocked").map(|cell| cell.span()),

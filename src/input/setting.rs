@@ -6,7 +6,7 @@ use rustc_hash::FxHashMap;
 
 use crate::device::Choice;
 use crate::device::Law;
-use crate::roof::{Case, Limits};
+use crate::roof::{Case, Limits, Risk};
 use crate::search::{Criterion, PlanAsked};
 use crate::units::{Dimension, Length, Load};
 
@@ -45,6 +45,8 @@ pub(super) struct Setting<'s> {
     /// The flow laws chosen; none where they are at fault.
     pub(super) choice: Option<Choice>,
     pub(super) catalogs: &'s Catalogs,
+    /// Risk category of areas that give none.
+    pub(super) risk: Option<Option<Risk>>,
     /// Whether layouts can only be searched for: the project gives none.
     pub(super) searched: bool,
 }

@@ -1,12 +1,16 @@
-//! The catalogs that come with the program, usable without any file: `catalogs = ["builtin:through-wall-scuppers"]`.
+//! The files that come with the program, usable without any file of one's own: catalogs,
+//! `catalogs = ["builtin:through-wall-scuppers"]`, and rule sets, `rules = ["builtin:rules/ipc"]`.
 
 use std::path::{Path, PathBuf};
 
-/// What a path begins with that names a catalog of the program.
+/// What a path begins with that names a file of the program.
 const MARK: &str = "builtin:";
 
-/// Files of the catalogs, by their path under `catalogs`.
-pub(super) static FILES: [(&str, &str); 14] = [
+/// Folder of the rule sets.
+const RULES: &str = "rules/";
+
+/// Files of the catalogs and the rule sets, by their path under `catalogs`.
+pub(super) static FILES: [(&str, &str); 29] = [
     ("through-wall-scuppers.toml", include_str!("../../catalogs/through-wall-scuppers.toml")),
     ("made-to-measure.toml", include_str!("../../catalogs/made-to-measure.toml")),
     ("overflow-drains.toml", include_str!("../../catalogs/overflow-drains.toml")),
@@ -27,9 +31,24 @@ pub(super) static FILES: [(&str, &str); 14] = [
         "ratings/published-closed-scupper-6in.csv",
         include_str!("../../catalogs/ratings/published-closed-scupper-6in.csv"),
     ),
+    ("rules/asce-7-16.toml", include_str!("../../catalogs/rules/asce-7-16.toml")),
+    ("rules/asce-7-22.toml", include_str!("../../catalogs/rules/asce-7-22.toml")),
+    ("rules/ibc-2018.toml", include_str!("../../catalogs/rules/ibc-2018.toml")),
+    ("rules/ibc-2021.toml", include_str!("../../catalogs/rules/ibc-2021.toml")),
+    ("rules/ipc.toml", include_str!("../../catalogs/rules/ipc.toml")),
+    ("rules/upc-family.toml", include_str!("../../catalogs/rules/upc-family.toml")),
+    ("rules/irc-by-width.toml", include_str!("../../catalogs/rules/irc-by-width.toml")),
+    ("rules/irc-by-area.toml", include_str!("../../catalogs/rules/irc-by-area.toml")),
+    ("rules/high-wind-coast.toml", include_str!("../../catalogs/rules/high-wind-coast.toml")),
+    ("rules/fm-1-54.toml", include_str!("../../catalogs/rules/fm-1-54.toml")),
+    ("rules/en-12056-3-bs-8490.toml", include_str!("../../catalogs/rules/en-12056-3-bs-8490.toml")),
+    ("rules/din-1986-100.toml", include_str!("../../catalogs/rules/din-1986-100.toml")),
+    ("rules/as-nzs-3500-3.toml", include_str!("../../catalogs/rules/as-nzs-3500-3.toml")),
+    ("rules/obc.toml", include_str!("../../catalogs/rules/obc.toml")),
+    ("rules/obc-flow-control.toml", include_str!("../../catalogs/rules/obc-flow-control.toml")),
 ];
 
-/// The path that stands for a catalog of the program, where a text names one; whether there is such a catalog is not asked.
+/// The path that stands for a file of the program, where a text names one; whether there is such a file is not asked.
 pub(super) fn path_of(named: &str) -> Option<PathBuf> {
     named.strip_prefix(MARK).map(|name| Path::new(MARK).join(format!("{name}.toml")))
 }
@@ -45,8 +64,11 @@ pub(super) fn text(path: &Path) -> Option<&'static str> {
     FILES.iter().find(|(name, _)| *name == under).map(|&(_, text)| text)
 }
 
-/// How the catalogs of the program are named in a project.
-pub(super) fn names() -> Vec<String> {
-    let catalogs = FILES.iter().filter_map(|(name, _)| name.strip_suffix(".toml"));
-    catalogs.map(|name| format!("{MARK}{name}")).collect()
+/// What a text asks for that names a file of the program, and how the files of that sort are named in a project.
+pub(super) fn sort_of(named: &str) -> (&'static str, Vec<String>) {
+    let is_set = |name: &str| name.starts_with(RULES);
+    let asks_set = named.strip_prefix(MARK).is_some_and(is_set);
+    let files = FILES.iter().filter_map(|(name, _)| name.strip_suffix(".toml"));
+    let names = files.filter(|name| is_set(name) == asks_set).map(|name| format!("{MARK}{name}"));
+    (if asks_set { "rule set" } else { "catalog" }, names.collect())
 }

@@ -243,14 +243,17 @@ pub(super) fn under_each_storm(mut roof: Roof) -> Roof {
         storm: Some(index),
         ..case.clone()
     };
+    // A case that a rule set counts has the rain of the set.
+    let further = |case: &Case| if case.basis.is_some() { &[][..] } else { &storms.further[..] };
     let of_case = |case: &Case| {
-        let further = storms.further.iter().enumerate().map(|further| under(case, further)).collect::<Vec<_>>();
+        let further = further(case).iter().enumerate().map(|further| under(case, further)).collect::<Vec<_>>();
         [case.clone()].into_iter().chain(further)
     };
+    let counts: Vec<usize> = roof.cases.iter().map(|case| 1 + further(case).len()).collect();
     let cases = roof.cases.iter().flat_map(of_case).collect();
-    let count = 1 + storms.further.len();
     for area in &mut roof.areas {
-        area.limits = area.limits.iter().flat_map(|&limits| vec![limits; count]).collect();
+        let of_each = area.limits.iter().zip(&counts);
+        area.limits = of_each.flat_map(|(&limits, &count)| vec![limits; count]).collect();
     }
     Roof { cases, ..roof }
 }

@@ -64,7 +64,7 @@ fn blocks(backsolved: &Backsolved<'_, '_>) -> Vec<Block> {
         let layout = ranking::marked(&checked.standing, words);
         blocks.push(Block::Text(format!("\"{}\", {layout}, {passes}.", checked.given.name)));
         if !checked.passes() {
-            let failing = |failing| check::failing_in_words(roof, checked, failing, words);
+            let failing = |failing| check::failing_in_words(roof, backsolved.options, checked, failing, words);
             blocks.push(Block::List(checked.failings.iter().map(failing).collect()));
         }
         let lines: Vec<Line> = solved.iter().flat_map(|solved| lines(roof, checked, solved, words)).collect();

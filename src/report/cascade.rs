@@ -7,6 +7,7 @@ use crate::roof::{Passed, Receipt, Roof};
 use crate::units::Flow;
 
 use super::page::Block;
+use super::rules;
 use super::words::{Words, trimmed};
 
 /// The areas that receive and pass nothing on, each with those above it; nothing where no area receives.
@@ -101,6 +102,9 @@ impl Tree<'_> {
 
 /// What is assumed of primary drains.
 pub(super) fn primary_drains(roof: &Roof) -> &'static str {
+    if rules::credits(roof) {
+        return "The primary drains carry nothing, but where a rule set credits them.";
+    }
     if roof.areas.iter().flat_map(|area| &area.receives).any(|receipt| receipt.what == Passed::Primary) {
         "The primary drains of an area carry nothing for it; those of an area above may bring all its flow."
     } else {

@@ -14,7 +14,7 @@ use crate::units::{Length, Load, Money};
 use super::json;
 use super::page::{self, Block, Table};
 use super::words::{self, Words, list};
-use super::{Format, mend, notes, plain, ponding, ranking, sensitivity, storage, written};
+use super::{Format, mend, notes, plain, ponding, ranking, rules, sensitivity, storage, written};
 
 /// What a report of given layouts is made of.
 #[derive(Clone, Copy, Debug)]
@@ -84,8 +84,10 @@ pub(super) fn write(checks: &Checks<'_, '_>, format: Format, width: usize) -> St
 
 fn blocks(checks: &Checks<'_, '_>) -> Vec<Block> {
     let words = Words(checks.roof.system);
-    let mut blocks = vec![Block::Title(format!("{}: given layouts, primary drains blocked", checks.roof.title))];
+    let mut blocks =
+        vec![Block::Title(format!("{}: given layouts, {}", checks.roof.title, rules::drains_in_title(checks.roof)))];
     blocks.extend(ranking::situation(checks.roof, words));
+    blocks.extend(rules::over(checks.roof, checks.options, words));
     for &area in checks.areas {
         area_blocks(checks, area, words, &mut blocks);
     }
@@ -113,9 +115,11 @@ fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut 
         blocks
             .push(Block::Text("A layout with a device or a size that no catalog has a price for has no cost.".into()));
     }
+    let named: Vec<_> = checked.iter().map(|checked| (checked.given.name.clone(), &checked.standing)).collect();
+    blocks.extend(rules::blocks(roof, checks.options, area, &named, named.len(), words));
     let failing = |checked: &&Checked<'_>| !checked.passes();
     let lines: Vec<String> =
-        checked.iter().copied().filter(failing).map(|checked| fails(roof, checked, words)).collect();
+        checked.iter().copied().filter(failing).map(|checked| fails(checks, checked, words)).collect();
     if !lines.is_empty() {
         blocks.push(Block::List(lines));
     }
@@ -231,13 +235,22 @@ fn window_left(standing: &Ranked<'_>) -> Length {
 }
 
 /// What fails in a layout.
-fn fails(roof: &Roof, checked: &Checked<'_>, words: Words) -> String {
-    let failings: Vec<String> =
-        checked.failings.iter().map(|failing| failing_in_words(roof, checked, failing, words)).collect();
+fn fails(checks: &Checks<'_, '_>, checked: &Checked<'_>, words: Words) -> String {
+    let failings: Vec<String> = checked
+        .failings
+        .iter()
+        .map(|failing| failing_in_words(checks.roof, checks.options, checked, failing, words))
+        .collect();
     format!("\"{}\" fails: {}.", checked.given.name, failings.join("; "))
 }
 
-pub(super) fn failing_in_words(roof: &Roof, checked: &Checked<'_>, failing: &Failing, words: Words) -> String {
+pub(super) fn failing_in_words(
+    roof: &Roof,
+    options: &Options,
+    checked: &Checked<'_>,
+    failing: &Failing,
+    words: Words,
+) -> String {
     let area = checked.given.area;
     let case_named = |case: usize| format!("\"{}\"", roof.cases[case].name);
     let group = |index: usize| words.name(&checked.given.groups[index].size);
@@ -273,6 +286,7 @@ pub(super) fn failing_in_words(roof: &Roof, checked: &Checked<'_>, failing: &Fai
                 words.size(at_wall + sill)
             )
         }
+        Failing::Rule(finding) => rules::broken(&options.rules, &finding, words),
         Failing::Parapet { group: index, top, parapet } => format!(
             "the top of {} at {} is not below the parapet's top at {}",
             group(index),
@@ -373,8 +387,11 @@ fn rows(checks: &Checks<'_, '_>) -> String {
         let mut rows = Vec::with_capacity(checked.given.groups.len());
         let standing = &checked.standing;
         let water = standing.states[standing.case].water;
-        let why: Vec<String> =
-            checked.failings.iter().map(|failing| failing_in_words(checks.roof, checked, failing, words)).collect();
+        let why: Vec<String> = checked
+            .failings
+            .iter()
+            .map(|failing| failing_in_words(checks.roof, checks.options, checked, failing, words))
+            .collect();
         for placed in &standing.groups {
             let device = &placed.group.size.device;
             let round = device.kind() == crate::device::Kind::PipeScupper;
@@ -445,6 +462,10 @@ struct OfLayout<'a> {
     sills_could_rise_m: Option<f64>,
     fails: Vec<String>,
     #[serde(skip_serializing_if = "Option::is_none")]
+    rule_sets: Option<Vec<rules::OfSet<'a>>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    rules: Option<Vec<rules::OfRule<'a>>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
     sensitivity: Option<OfSensitivity<'a>>,
     #[serde(skip_serializing_if = "Option::is_none")]
     storage: Option<storage::OfLayout<'a>>,
@@ -483,7 +504,7 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
     let roof = checks.roof;
     let layout = |place: usize, checked: &'a Checked<'_>| {
         let (area, standing) = (checked.given.area, &checked.standing);
-        let failing = |failing| failing_in_words(roof, checked, failing, words);
+        let failing = |failing| failing_in_words(roof, checks.options, checked, failing, words);
         OfLayout {
             name: &checked.given.name,
             passes: checked.passes(),
@@ -493,6 +514,8 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
             cases: json::cases(roof, area, standing),
             sills_could_rise_m: checked.passes().then(|| window_left(standing).m()),
             fails: checked.failings.iter().map(failing).collect(),
+            rule_sets: rules::of_sets(roof, &checks.options.rules, area, standing),
+            rules: rules::of_layout_in_document(roof, &checks.options.rules, area, standing),
             sensitivity: checks.sensitivities.map(|(found, _)| of_sensitivity(roof, &found[place])),
             storage: checks.storage.map(|stored| storage::of_layout(roof, stored, checks.routed(place))),
             mends: mend::of_layout(checks, place),

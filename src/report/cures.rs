@@ -1,18 +1,21 @@
 //! What would cure an area without a layout, each change with the first layout that it opens.
 
 use crate::roof::load_of;
+use crate::rules::Rulebook;
 use crate::search::{Cure, Opened, Opening, Ranked, Relaxation};
 use crate::units::{Length, Money};
 
 use super::page::Block;
+use super::rules;
 use super::words::{self, Words, list, trimmed};
 
-pub(super) fn blocks(opened: &Opened<'_>, words: Words) -> Vec<Block> {
+pub(super) fn blocks(opened: &Opened<'_>, book: &Rulebook, words: Words) -> Vec<Block> {
     let mut blocks = Vec::new();
+    blocks.extend(rules::contradiction(book, &opened.cures).map(Block::Text));
     if let [(_, first), ..] = &opened.cures[..] {
         let order = if first.cost.is_some() { ", the cheapest openings first" } else { "" };
         blocks.push(Block::Text(format!("Any one of these would cure it, the least of each kind{order}:")));
-        blocks.push(Block::List(opened.cures.iter().map(|(cure, layout)| line(cure, layout, words)).collect()));
+        blocks.push(Block::List(opened.cures.iter().map(|(cure, layout)| line(cure, layout, book, words)).collect()));
     }
     if !opened.useless.is_empty() {
         blocks.push(Block::Text(format!("No cure was found in {} alone.", kinds(opened.useless))));
@@ -22,7 +25,7 @@ pub(super) fn blocks(opened: &Opened<'_>, words: Words) -> Vec<Block> {
 }
 
 /// What the least cost binds on: the single changes that save, the greatest saving first.
-pub(super) fn binding(opened: &Opened<'_>, words: Words) -> Vec<Block> {
+pub(super) fn binding(opened: &Opened<'_>, book: &Rulebook, words: Words) -> Vec<Block> {
     let mut blocks = Vec::new();
     let saved = |layout: &Ranked<'_>| {
         let (now, then) = (opened.now?.millionths(), layout.cost?.millionths());
@@ -30,7 +33,7 @@ pub(super) fn binding(opened: &Opened<'_>, words: Words) -> Vec<Block> {
     };
     let line = |(cure, layout): &Opening<'_>| {
         let saved = saved(layout).map_or(String::new(), |saved| format!("{saved} less with "));
-        format!("{saved}{}: {}", change(cure, layout, words), priced_layout(cure, layout, words))
+        format!("{saved}{}: {}", change(cure, layout, book, words), priced_layout(cure, layout, words))
     };
     if !opened.cures.is_empty() {
         blocks
@@ -57,8 +60,8 @@ fn kinds(changes: &[Relaxation]) -> String {
     })
 }
 
-fn line(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
-    format!("{}: {}", change(cure, layout, words), priced_layout(cure, layout, words))
+fn line(cure: &Cure, layout: &Ranked<'_>, book: &Rulebook, words: Words) -> String {
+    format!("{}: {}", change(cure, layout, book, words), priced_layout(cure, layout, words))
 }
 
 fn priced_layout(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
@@ -75,7 +78,7 @@ fn priced(change: Relaxation, cost: Money) -> String {
 }
 
 /// The change in words, with what it leads to.
-fn change(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
+fn change(cure: &Cure, layout: &Ranked<'_>, book: &Rulebook, words: Words) -> String {
     let limits = &cure.roof.areas[0].limits;
     let depths = || listed(limits.iter().filter_map(|limits| limits.depth).map(|depth| words.size(depth)));
     match cure.change {
@@ -100,6 +103,7 @@ fn change(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
         Relaxation::Demand(factor) => {
             format!("demand - {} %, to {}", trimmed((1.0 - factor) * 100.0, 1), words.flow(cure.roof.demands[0]))
         }
+        Relaxation::Rule(at) => format!("without {}", rules::named(book, at)),
     }
 }
 
@@ -134,6 +138,7 @@ pub(super) fn bare(change: Relaxation) -> &'static str {
         Relaxation::Edge(_) => "a longer edge",
         Relaxation::Freeboard(_) => "less freeboard",
         Relaxation::Demand(_) => "less demand",
+        Relaxation::Rule(_) => "a rule less",
     }
 }
 
@@ -151,5 +156,6 @@ pub(super) fn amount(change: Relaxation) -> (&'static str, f64) {
         Relaxation::Edge(more) => ("edge_more_m", more.m()),
         Relaxation::Freeboard(less) => ("freeboard_less_m", less.m()),
         Relaxation::Demand(factor) => ("demand_factor", factor),
+        Relaxation::Rule(_) => ("rules_waived", 1.0),
     }
 }

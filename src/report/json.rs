@@ -11,7 +11,7 @@ use crate::search::{Answer, Fitted, Least, Measured, Opened, Opening, Outcome, P
 use crate::units::{Length, Money};
 
 use super::words::{self, Words};
-use super::{Asked, Sized, cascade, notes, ponding, ranking, reasons, storm};
+use super::{Asked, Sized, cascade, notes, ponding, ranking, reasons, rules, storm};
 
 mod front;
 
@@ -169,6 +169,10 @@ struct Layout<'a> {
     straight_line_excess: f64,
     under_other_laws: Vec<Under<'a>>,
     notes: Vec<String>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    rule_sets: Option<Vec<rules::OfSet<'a>>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    rules: Option<Vec<rules::OfRule<'a>>>,
     #[serde(skip_serializing_if = "Option::is_none")]
     made_to_measure: Option<Made<'a>>,
 }
@@ -431,6 +435,8 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
         straight_line_excess: ranked.chord,
         under_other_laws: others.iter().map(|under| under_law(sized, under)).collect(),
         notes: remarks,
+        rule_sets: rules::of_sets(sized.roof, &sized.options.rules, area, ranked),
+        rules: rules::of_layout_in_document(sized.roof, &sized.options.rules, area, ranked),
         made_to_measure: ranked.made.as_ref().map(|made| self::made(sized, area, ranked, made)),
     }
 }
@@ -487,7 +493,7 @@ pub(super) fn governing<'a>(roof: &'a Roof, ranked: &Ranked<'_>) -> Governing<'a
 /// A layout in every case.
 pub(super) fn cases<'a>(roof: &'a Roof, area: usize, ranked: &Ranked<'_>) -> Vec<Case<'a>> {
     let of_case = |(index, state): (usize, &CaseState)| {
-        let limits = roof.areas[area].limits[index];
+        let limits = roof.situation(area, index).limits;
         Case {
             name: &roof.cases[index].name,
             demand_m3_s: state.demand.m3_per_s(),

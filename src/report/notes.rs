@@ -5,15 +5,15 @@ use std::borrow::Cow;
 use crate::device::{Kind, Law, Place, Regime, Site, Size};
 use crate::hydraulics::practice::Transition;
 use crate::input::Assumed;
-use crate::roof::Roof;
 use crate::roof::layout::GroupState;
+use crate::roof::{Case, Roof};
 use crate::search::{Measured, Options, Ranked};
-use crate::units::{Area, Length, System};
+use crate::units::{Area, Intensity, Length, System};
 
 use super::measure;
 use super::page::Block;
 use super::words::{self, Words, list, ranked_by, trimmed};
-use super::{cascade, storm};
+use super::{cascade, rules, storm};
 
 /// Excess of straight lines over logarithmic ones, as a part of the demand, from which it is told.
 pub(super) const CHORD_TOLD: f64 = 0.02;
@@ -234,6 +234,7 @@ pub(super) fn cautions(told: &Told<'_, '_>) -> Vec<String> {
         "The limit is for rain alone: take dead load, equipment and ballast off the roof's capacity before it is given."
             .to_string(),
     ];
+    lines.extend(rules::cautions(told.roof, told.options));
     rain(told, &mut lines);
     structure(told, &mut lines);
     openings(told, &mut lines);
@@ -442,7 +443,11 @@ fn cases(told: &Told<'_, '_>, lines: &mut Vec<String>) {
     if cases.iter().all(|case| case.sill_error == Length::ZERO && case.opening_loss == Length::ZERO) {
         lines.push("No case covers sills built high or openings built narrow: each half inch of sill is 2.6 psf (13 mm: 0.12 kPa).".into());
     }
-    if cases.iter().all(|case| case.rain <= 1.0) {
+    let storm = told.roof.storm.intensity;
+    let of_set =
+        |basis: usize| told.roof.bases[basis].areas.iter().map(|area| area.intensity).fold(storm, Intensity::max);
+    let more = |case: &Case| case.basis.map_or(storm, of_set) * case.rain > storm;
+    if !cases.iter().any(more) {
         lines.push("No case has more rain than the design storm.".into());
     }
 }

@@ -2,13 +2,13 @@
 
 use crate::device::{Kind, Law};
 use crate::hydraulics::limits::Range;
-use crate::roof::{Case, GivenGroup, Limits, Roof, Storm, demand};
+use crate::roof::{Case, GivenGroup, Limits, Roof, demand};
 use crate::search::{Answer, Outcome, Ranked, UnderLaw};
 use crate::units::{Area, Length, Load};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Sized, cascade, cures, front, measure, notes, plan, ponding, reasons, storm, work};
+use super::{Sized, cascade, cures, front, measure, notes, plan, ponding, reasons, rules, storm, work};
 
 /// The mark behind a layout that leaves the published range of its law.
 const BEYOND: &str = "\u{2020}";
@@ -17,8 +17,10 @@ const CHORD: &str = "\u{2021}";
 
 pub(super) fn page(sized: &Sized<'_, '_>) -> Vec<Block> {
     let words = Words(sized.roof.system);
-    let mut blocks = vec![Block::Title(format!("{}: overflow drainage, primary drains blocked", sized.roof.title))];
+    let mut blocks =
+        vec![Block::Title(format!("{}: overflow drainage, {}", sized.roof.title, rules::drains_in_title(sized.roof)))];
     blocks.extend(situation(sized.roof, words));
+    blocks.extend(rules::over(sized.roof, sized.options, words));
     for answer in sized.answers {
         area(sized, answer, words, &mut blocks);
     }
@@ -34,8 +36,8 @@ pub(super) fn page(sized: &Sized<'_, '_>) -> Vec<Block> {
 pub(super) fn situation(roof: &Roof, words: Words) -> Vec<Block> {
     let mut blocks = vec![Block::Text(storm::line(&roof.storm, words))];
     // A further storm is told once, not case by case.
-    let given = roof.cases.iter().filter(|case| case.storm.is_none());
-    let cases: Vec<_> = given.map(|case| case_in_words(case, &roof.storm, words)).collect();
+    let given = roof.cases.iter().filter(|case| case.storm.is_none() && !rules::is_own_case(roof, case));
+    let cases: Vec<_> = given.map(|case| case_in_words(case, roof, words)).collect();
     if roof.cases.len() > 1 || roof.cases[0] != Case::as_designed() {
         blocks.push(Block::Text("Cases that a layout must withstand:".into()));
         blocks.push(Block::List(cases));
@@ -65,7 +67,7 @@ pub(super) fn there_already(roof: &Roof, area: usize, words: Words) -> Option<Bl
 }
 
 /// What a case does to the design.
-fn case_in_words(case: &Case, rain: &Storm, words: Words) -> String {
+fn case_in_words(case: &Case, roof: &Roof, words: Words) -> String {
     let mut parts = Vec::new();
     match case.blocked {
         0 => {}
@@ -80,10 +82,13 @@ fn case_in_words(case: &Case, rain: &Storm, words: Words) -> String {
     }
     let changed = |factor: f64| (factor - 1.0).abs() > 1e-12;
     if changed(case.rain) {
-        parts.push(format!("rain times {}{}", trimmed(case.rain, 3), storm::recurrence(case, rain)));
+        parts.push(format!("rain times {}{}", trimmed(case.rain, 3), storm::recurrence(case, &roof.storm)));
     }
     if changed(case.discharge) {
         parts.push(format!("flow of every device times {}", trimmed(case.discharge, 3)));
+    }
+    if let Some(basis) = case.basis {
+        parts.push(format!("counted by {}", roof.bases[basis].case.name));
     }
     if parts.is_empty() {
         parts.push("as drawn, under the storm as given".into());
@@ -111,12 +116,14 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
     match answer.outcome.layouts() {
         [] => {
             if let Some(opened) = sized.changes_of(answer.area) {
-                blocks.extend(cures::blocks(opened, words));
+                blocks.extend(cures::blocks(opened, &sized.options.rules, words));
             }
         }
         layouts => {
             ranking(sized, answer.area, layouts, words, blocks);
             blocks.extend(measure::blocks(sized, answer.area, layouts, words));
+            let named: Vec<_> = (1..).map(|rank: usize| format!("layout {rank}")).zip(layouts).collect();
+            blocks.extend(rules::blocks(roof, sized.options, answer.area, &named, 1, words));
             if let Some(fronted) = sized.front_of(answer.area) {
                 front::area(sized, fronted, words, blocks);
             }
@@ -129,7 +136,7 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
                 blocks.extend(measure::work(roof, answer.area, &layouts[0], words));
             }
             if let Some(opened) = sized.changes_of(answer.area) {
-                blocks.extend(cures::binding(opened, words));
+                blocks.extend(cures::binding(opened, &sized.options.rules, words));
             }
         }
     }

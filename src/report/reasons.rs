@@ -1,11 +1,12 @@
 //! Why an area has no layout, or no proven one, in a few sentences.
 
 use crate::roof::{LimitKind, Roof};
-use crate::rules::Misfit;
+use crate::rules::{Misfit, Rulebook};
 use crate::search::{Least, Ranked, Why};
 use crate::units::{Length, Money};
 
 use super::Sized;
+use super::rules;
 use super::words::{self, Words, list};
 
 /// What is known of an area whose search was ended before everything was tried.
@@ -39,14 +40,15 @@ pub(super) fn infeasible(sized: &Sized<'_, '_>, area: usize, why: &Why<'_>, word
             for (size, misfit) in misfits {
                 if !tags.contains(&&*size.tag) {
                     tags.push(&size.tag);
-                    told.push(misfit_in_words(&words.name(size), misfit, words));
+                    told.push(misfit_in_words(&words.name(size), misfit, &sized.options.rules, words));
                 }
             }
             format!("Nothing in the catalogs can stand in {name}: {}.", told.join("; "))
         }
-        Why::NothingFits { least } => {
+        Why::NothingFits { least, rule } => {
             let edge = roof.areas[area].edge.map_or("the area".into(), |edge| format!("{} of edge", words.long(edge)));
-            format!("{name} asks for at least {least} devices, and no {least} of the catalogs' sizes fit {edge}.")
+            let by = rule.map_or(String::new(), |at| format!(" by {}", rules::named(&sized.options.rules, at)));
+            format!("{name} asks for at least {least} devices{by}, and no {least} of the catalogs' sizes fit {edge}.")
         }
         Why::Limits { best, alone, together } => {
             let text = limits_not_held(roof, area, best, alone, together, words);
@@ -137,11 +139,12 @@ fn limits_not_held(
     text
 }
 
-fn misfit_in_words(size: &str, misfit: &Misfit, words: Words) -> String {
+fn misfit_in_words(size: &str, misfit: &Misfit, book: &Rulebook, words: Words) -> String {
     let between = |(low, high): (Length, Length)| {
         if low == high { words.size(low) } else { format!("{} to {}", words.bare_size(low), words.size(high)) }
     };
     match misfit {
+        Misfit::Rule(at) => format!("{size} breaks {}", rules::named(book, *at)),
         Misfit::Kind { found } => format!("{size} is a {found}, which the area does not take"),
         Misfit::SetHeight { own, area } => {
             format!("{size} stands at {} only, the area asks for {}", between(*own), between(*area))

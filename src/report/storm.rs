@@ -106,6 +106,9 @@ pub(super) fn recurrence(case: &Case, storm: &Storm) -> String {
         let scale = if period.years() < 10.0 { 10.0 } else { 1.0 };
         trimmed((period.years() * scale + 1e-6).floor() / scale, 1)
     };
+    if case.basis.is_some() {
+        return String::new();
+    }
     match storm.recurrence(storm.intensity * case.rain) {
         Some(Recurrence::Once(period)) => format!(", once in {} years by the table", years(period)),
         Some(Recurrence::Oftener(period)) => format!(", more often than once in {} years", years(period)),

@@ -18,7 +18,13 @@ pub(super) fn lines(roof: &Roof, area: usize, layout: &Ranked<'_>, words: Words)
     for (case, state) in layout.states.iter().enumerate() {
         let situation = roof.situation(area, case);
         let name = &situation.case.name;
-        lines.push((format!("{name}: demand"), flow_demanded(roof, area, &situation, words)));
+        match situation.case.basis {
+            Some(basis) => {
+                let counted = counted_by_set(roof, area, basis, words);
+                lines.extend(counted.into_iter().map(|(what, by_hand)| (format!("{name}: {what}"), by_hand)));
+            }
+            None => lines.push((format!("{name}: demand"), flow_demanded(roof, area, &situation, words))),
+        }
         lines.push((format!("{name}: level allowed"), level_allowed(&situation, words)));
         let Some(water) = state.water else {
             lines.push((format!("{name}: level"), "none: every table is at its end".into()));
@@ -87,6 +93,37 @@ fn catching(roof: &Roof, area: usize, words: Words) -> (String, String) {
         format!("A = {total}")
     };
     ("rain falls on".into(), text)
+}
+
+/// What a rule set counts of an area, from its rain to its demand.
+fn counted_by_set(roof: &Roof, area: usize, basis: usize, words: Words) -> Vec<(String, String)> {
+    let (catchment, counted) = (&roof.areas[area], &roof.bases[basis].areas[area]);
+    let total = catchment.area + counted.wall;
+    let mut sum = words.bare_area(catchment.area);
+    if counted.wall > Area::ZERO {
+        sum = format!("{sum} + {} of wall", words.bare_area(counted.wall));
+    }
+    let bare = words.bare_area(total);
+    let mut flow = if us(words) {
+        format!("0.0103896 x {bare} x {}", trimmed(counted.intensity.to_inches_per_hour(), 3))
+    } else {
+        format!("{bare} x {} / 3600", trimmed(counted.intensity.m_per_s() * 3.6e6, 2))
+    };
+    let fine = |flow: crate::units::Flow| fine_flow(words, flow.m3_per_s());
+    let received = counted.flow - counted.intensity * total;
+    if !catchment.receives.is_empty() {
+        flow += &format!(" + {} received", fine(received));
+    }
+    if counted.credited > crate::units::Flow::ZERO {
+        flow += &format!(" - {} of the primary drains", fine(counted.credited));
+    }
+    if counted.least > counted.flow - counted.credited {
+        flow += &format!(" or, being more, {} as it asks of the primary flow", fine(counted.least));
+    }
+    vec![
+        ("rain falls on".into(), format!("A = {sum} = {}", words.area(total))),
+        ("demand".into(), format!("Q = {flow} = {} {}", fine(counted.demand()), words.flow_unit())),
+    ]
 }
 
 fn flow_demanded(roof: &Roof, area: usize, situation: &Situation<'_>, words: Words) -> String {

@@ -11,7 +11,7 @@ use crate::roof::layout::{Asked, Group, least_spare};
 use crate::roof::{Given, Limits, Roof, Situation};
 use crate::root::crossing;
 use crate::search::Options;
-use crate::units::{Area, Intensity, Length, Load};
+use crate::units::{Area, Flow, Intensity, Length, Load};
 
 /// What may be asked for.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -92,21 +92,14 @@ pub fn backsolve(roof: &Roof, options: &Options, given: &Given, unknown: Unknown
         asked: Asked { freeboard: options.freeboard },
     };
     match unknown {
-        Unknown::Rain => Solved::Rain(back.demand().map(|factor| roof.storm.intensity * factor)),
-        Unknown::Area => Solved::Area(back.demand().and_then(|factor| most_area(roof, given.area, factor))),
+        Unknown::Rain => Solved::Rain(back.rain(roof, given.area).map(|factor| roof.storm.intensity * factor)),
+        Unknown::Area => Solved::Area(back.area(roof, given.area)),
         Unknown::SetHeight => Solved::SetHeight(back.set_height()),
         Unknown::Width => Solved::Width(back.width()),
         Unknown::Count => Solved::Count((0..back.groups.len()).map(|group| back.count(group)).collect()),
         Unknown::Limit => back.limit(),
         Unknown::Blocked => Solved::Blocked(back.blocked()),
     }
-}
-
-/// The roof of an area's own with which its demand is so many times what it is; none where what it receives is more already.
-fn most_area(roof: &Roof, area: usize, factor: f64) -> Option<Area> {
-    let spare = roof.demands[area].m3_per_s() * (factor - 1.0);
-    let most = roof.areas[area].area.m2() + spare / roof.storm.intensity.m_per_s();
-    (most > 0.0).then(|| Area::from_m2(most))
 }
 
 /// A layout whose one value is looked for.
@@ -117,12 +110,25 @@ struct Back<'r> {
 }
 
 impl Back<'_> {
-    /// The greatest factor on the demand of every case that holds.
-    fn demand(&self) -> Option<f64> {
-        let spare = |factor: f64| {
+    /// The greatest factor on every rain that holds in every case.
+    fn rain(&self, roof: &Roof, area: usize) -> Option<f64> {
+        self.greatest_demand(LEAST, |situation, factor| roof.demand_with(area, situation.case, Area::ZERO, factor))
+    }
+
+    /// The most roof of an area's own that holds in every case; none where what it receives is more already.
+    fn area(&self, roof: &Roof, area: usize) -> Option<Area> {
+        let own = roof.areas[area].area;
+        let part = self
+            .greatest_demand(LEAST, |situation, part| roof.demand_with(area, situation.case, own * (part - 1.0), 1.0));
+        part.map(|part| own * part)
+    }
+
+    /// The greatest value of what a demand rises with that holds in every case, from a least one on; 1 is as it is.
+    fn greatest_demand(&self, least: f64, demand: impl Fn(&Situation<'_>, f64) -> Flow) -> Option<f64> {
+        let spare = |value: f64| {
             let mut situations = self.situations.clone();
             for situation in &mut situations {
-                situation.demand = situation.demand * factor;
+                situation.demand = demand(situation, value);
             }
             least_spare(&self.groups, &situations, self.asked)
         };
@@ -130,7 +136,7 @@ impl Back<'_> {
         while spare(high) >= 0.0 && high < 1.0 / LEAST {
             high *= 2.0;
         }
-        greatest(spare, LEAST, high)
+        greatest(spare, least, high)
     }
 
     /// The greatest lift of all sills that holds, below zero where they must come down; none where sills at the low point do

@@ -2,7 +2,7 @@
 //!
 //! Four kinds of change are looked at, each by itself: openings of one size added, the openings of one group replaced by
 //! larger ones of its kind where they stand, the sills of one group lowered, one group replaced by openings of another size. A
-//! change must fit as a layout must: the kinds, the edge and its gaps, the parapet, the roof at the wall. Whatever is told was
+//! change must fit as a layout must: the kinds, the edge and its gaps, the parapet, the roof at the wall, binding rules. Whatever is told was
 //! held against the model as every given layout is ([`super::check`]). A layout that has as many groups as any may have is not
 //! added to.
 //!
@@ -33,7 +33,7 @@ use rayon::prelude::*;
 use crate::device::{Device, Law, Place, Size};
 use crate::roof::layout::{self, Asked, Group, Water, highest_level, least_spare};
 use crate::roof::{Catchment, Given, GivenGroup, Governing, MOST_OUTLETS, Roof, Situation, working_capacity};
-use crate::rules;
+use crate::rules::{self, Restriction};
 use crate::search::Options;
 use crate::units::{Length, Money, System};
 
@@ -145,6 +145,8 @@ struct Mending<'r> {
     situations: Vec<Situation<'r>>,
     allowed: Vec<Length>,
     asked: Asked,
+    /// What binding rule sets leave of the area.
+    restriction: Restriction<'r>,
     /// What closing or removing one opening costs.
     replace: Money,
 }
@@ -174,6 +176,7 @@ impl<'r> Mending<'r> {
             allowed: situations.iter().map(Situation::allowable_level).collect(),
             asked: Asked { freeboard: options.freeboard },
             area: &roof.areas[given.area],
+            restriction: Restriction::new(&options.rules, &roof.bases, &roof.areas[given.area], given.area),
             groups: given.groups(),
             roof,
             options,
@@ -269,6 +272,9 @@ impl<'r> Mending<'r> {
             if !stands || !self.area.takes(size.device.kind()) || !is_larger(size, there.size) {
                 return None;
             }
+            if !self.restriction.allows(size, there.set_height, self.area) {
+                return None;
+            }
             let group = Group { size, ..there };
             self.fewest(&kept, group, there.count..=there.count)?;
             Some(self.candidate(Change::Widen(place), group, index))
@@ -284,6 +290,8 @@ impl<'r> Mending<'r> {
         let under = self.area.parapet.height.zip(there.size.device.height()).filter(|_| at_edge);
         let under = under.map(|(top, opening)| Length::from_nm(top.nm() - opening.nm() - 1));
         let high = under.map_or(there.set_height, |under| under.min(there.set_height));
+        let (least, most) = self.restriction.sills(there.size, self.area);
+        let (low, high) = (low.max(least), high.min(most));
         if low >= high {
             return None;
         }
@@ -319,7 +327,8 @@ impl<'r> Mending<'r> {
         };
         // Where its top meets the level that all else allows: lower only lowers that level.
         let top = layout::top(&Group { set_height: Length::ZERO, ..self.groups[place] }, &self.situations[case]);
-        let met = self.asked.freeboard.zip(top).map(|(freeboard, top)| beside.levels[case] + freeboard - top);
+        let freeboard = layout::freeboard_asked(&self.situations[case], self.asked);
+        let met = freeboard.zip(top).map(|(freeboard, top)| beside.levels[case] + freeboard - top);
         let from = met.filter(|met| met.m().is_finite()).map_or(low, |met| met.max(low).min(high));
         greatest(spare, from.m(), high.m()).map(Length::from_m)
     }
@@ -340,8 +349,10 @@ impl<'r> Mending<'r> {
     /// Every size at the heights that are to be tried of those at which it may stand, one of it.
     fn standing_sizes(&self) -> impl Iterator<Item = (usize, Group<'r>)> + '_ {
         self.roof.sizes.iter().enumerate().flat_map(|(index, size)| {
-            let mut heights = rules::stands(size, self.area).map_or(Vec::new(), |stand| stand.heights);
-            if self.asked.freeboard.is_none() || size.device.height().is_none() {
+            let stand = rules::stands(size, self.area).and_then(|stand| self.restriction.on(stand, size, self.area));
+            let mut heights = stand.map_or(Vec::new(), |stand| stand.heights);
+            let asked = |situation| layout::freeboard_asked(situation, self.asked).is_some();
+            if !self.situations.iter().any(asked) || size.device.height().is_none() {
                 heights.truncate(1);
             }
             heights.into_iter().map(move |set_height| (index, Group { size, count: 1, set_height }))
@@ -352,8 +363,8 @@ impl<'r> Mending<'r> {
     fn fewest(&self, kept: &Beside<'r>, new: Group<'r>, counts: RangeInclusive<u32>) -> Option<u32> {
         let sums: Vec<Sum> = (0..self.situations.len()).map(|case| self.sum(kept, new, case)).collect();
         let holds = |count: u32| sums.iter().all(|sum| sum.holds(kept.place, count));
-        let (mut least, mut most) = (*counts.start(), *counts.end());
-        if !holds(most) {
+        let (mut least, mut most) = (self.fewest_by_rules(kept, new).max(*counts.start()), *counts.end());
+        if least > most || !holds(most) {
             return None;
         }
         while least < most {
@@ -363,6 +374,17 @@ impl<'r> Mending<'r> {
         let mut groups = kept.groups.clone();
         groups.insert(kept.place, Group { count: least, ..new });
         misfits(self.roof, self.given.area, &groups).is_empty().then_some(least)
+    }
+
+    /// The fewest of one more group that the rules let stand beside what is kept.
+    fn fewest_by_rules(&self, kept: &Beside<'r>, new: Group<'r>) -> u32 {
+        let count = |at_edge: bool| {
+            let counts = kept.groups.iter().filter(|group| !at_edge || group.size.place == Place::Edge);
+            counts.map(|group| group.count).sum::<u32>()
+        };
+        let in_all = self.restriction.least.map_or(0, |(least, _)| least.saturating_sub(count(false)));
+        let at_edge = self.restriction.at_edge.filter(|_| new.size.place == Place::Edge);
+        in_all.max(at_edge.map_or(0, |(least, _)| least.saturating_sub(count(true))))
     }
 
     /// What stays where a group goes, or all of it; a new group takes its place, or the last.

@@ -195,7 +195,6 @@ impl Stepped<'_, '_> {
     /// What is found on the layout and its situations so stepped.
     fn with<T>(&self, steps: Steps, find: impl FnOnce(&[Group<'_>], &[Situation<'_>]) -> T) -> T {
         let (roof, area, tolerances) = (self.roof, self.given.area, self.tolerances);
-        let own = roof.storm.intensity * roof.areas[area].area;
         let cases: Vec<Case> = roof
             .cases
             .iter()
@@ -211,10 +210,10 @@ impl Stepped<'_, '_> {
             .into_iter()
             .zip(&cases)
             .map(|(situation, case)| {
-                let more = own * (tolerances.area * steps.area * case.rain);
                 let mut site = situation.site;
                 site.forced = steps.law;
-                let demand = (situation.demand + more) * (1.0 + tolerances.rain * steps.rain);
+                let more = roof.areas[area].area * (tolerances.area * steps.area);
+                let demand = roof.demand_with(area, situation.case, more, 1.0 + tolerances.rain * steps.rain);
                 Situation { case, demand, site, ..situation }
             })
             .collect();

@@ -58,7 +58,7 @@ pub fn storage(roof: &Roof, given: &[Given]) -> Result<Storage, RoutingError> {
     let of_layout = |given: &Given| {
         let (groups, area) = (given.groups(), &roof.areas[given.area]);
         let of_case = |situation: &Situation<'_>| {
-            let duration = roof.storm.duration_in(situation.case);
+            let duration = roof.duration_in(given.area, situation.case);
             duration.map(|duration| routed(&groups, area, situation, duration)).transpose()
         };
         roof.situations(given.area).iter().map(of_case).collect()
@@ -129,7 +129,7 @@ fn drained<I: Fn(Time) -> Flow, O: Fn(Volume) -> Flow>(
 mod tests {
     use super::*;
     use crate::device::{Device, Site, Size};
-    use crate::roof::{Case, Limits, Parapet, Ponding, Rise, Surface};
+    use crate::roof::{Case, Facts, Limits, Parapet, Ponding, Rise, Surface};
     use crate::units::{Area, Intensity};
     use approx::assert_relative_eq;
 
@@ -152,6 +152,7 @@ mod tests {
             limits: Vec::new(),
             existing: Vec::new(),
             channel: None,
+            facts: Facts::default(),
         }
     }
 
@@ -163,6 +164,7 @@ mod tests {
             ponding: Ponding::default(),
             parapet: None,
             site: Site::default(),
+            freeboard: None,
             channel: None,
         }
     }

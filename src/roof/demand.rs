@@ -35,8 +35,16 @@ pub fn own(storm: &Storm, area: &Catchment) -> Flow {
 /// # Errors
 /// The [`Circle`] of areas where receiving has no beginning.
 pub fn flows(storm: &Storm, areas: &[Catchment]) -> Result<Vec<Flow>, Circle> {
+    flows_of(areas, |area| own(storm, &areas[area]))
+}
+
+/// The same with what falls on each area itself given by its index.
+///
+/// # Errors
+/// The [`Circle`] of areas where receiving has no beginning.
+pub fn flows_of(areas: &[Catchment], own: impl Fn(usize) -> Flow) -> Result<Vec<Flow>, Circle> {
     downstream(areas, 0..areas.len())?;
-    Ok((0..areas.len()).map(|area| at_once(storm, areas, area).leaving(area)).collect())
+    Ok((0..areas.len()).map(|area| worst(areas, &own, area).leaving(area)).collect())
 }
 
 /// What runs when the most that is possible at once arrives at one area.
@@ -77,6 +85,10 @@ impl AtOnce {
 /// known once the areas below it are, and the greater of the two is taken: as flows add up, the greatest of each is the
 /// greatest of all. Only the areas above are visited, however many the roof has.
 pub fn at_once(storm: &Storm, areas: &[Catchment], area: usize) -> AtOnce {
+    worst(areas, |area| own(storm, &areas[area]), area)
+}
+
+fn worst(areas: &[Catchment], own: impl Fn(usize) -> Flow, area: usize) -> AtOnce {
     let order = downstream(areas, [area]).unwrap_or_default();
     // The part of what leaves each area that arrives here: by its primary drains, and by its overflow.
     let mut part: BTreeMap<_, _> = order.iter().map(|&above| (above, (0.0_f64, 0.0_f64))).collect();
@@ -97,7 +109,7 @@ pub fn at_once(storm: &Storm, areas: &[Catchment], area: usize) -> AtOnce {
     for &here in &order {
         let received = areas[here].receives.iter().filter_map(|receipt| at_once.arriving(receipt)).sum();
         let (primary, overflow) = part[&here];
-        let leaving = Leaving { flow: own(storm, &areas[here]) + received, by_primary: primary > overflow };
+        let leaving = Leaving { flow: own(here) + received, by_primary: primary > overflow };
         at_once.leaving.insert(here, leaving);
     }
     at_once
@@ -133,7 +145,7 @@ fn downstream(areas: &[Catchment], lowest: impl IntoIterator<Item = usize>) -> R
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::roof::{Parapet, Surface};
+    use crate::roof::{Facts, Parapet, Surface};
     use crate::units::{Intensity, Length};
     use approx::assert_relative_eq;
 
@@ -161,6 +173,7 @@ mod tests {
             limits: Vec::new(),
             existing: Vec::new(),
             channel: None,
+            facts: Facts::default(),
         }
     }
 

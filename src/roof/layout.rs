@@ -156,10 +156,16 @@ pub(crate) fn holds_at(groups: &[Group<'_>], situation: &Situation<'_>, allowed:
     spare(groups, situation, allowed, asked) >= 0.0
 }
 
+/// What must stay free from the water up to the top of every closed opening: what is asked everywhere, or more in this case.
+pub(crate) fn freeboard_asked(situation: &Situation<'_>, asked: Asked) -> Option<Length> {
+    asked.freeboard.into_iter().chain(situation.freeboard).reduce(Length::max)
+}
+
 /// The highest level that a situation allows the groups: under its limits, and under their lowest top by the freeboard.
 pub(crate) fn highest_level(groups: &[Group<'_>], situation: &Situation<'_>, allowed: Length, asked: Asked) -> Length {
     let tops = groups.iter().filter_map(|group| top(group, situation));
-    let ceiling = asked.freeboard.and_then(|freeboard| tops.map(|top| top - freeboard).reduce(Length::min));
+    let ceiling =
+        freeboard_asked(situation, asked).and_then(|freeboard| tops.map(|top| top - freeboard).reduce(Length::min));
     ceiling.map_or(allowed, |ceiling| ceiling.min(allowed))
 }
 

@@ -55,6 +55,8 @@ pub struct Situation<'r> {
     pub demand: Flow,
     /// What holds here.
     pub limits: Limits,
+    /// What a rule set asks for from the water up to the top of every closed opening, beside what the project asks.
+    pub freeboard: Option<Length>,
     /// What deflection adds to the water, counted in the load alone.
     pub ponding: Ponding,
     /// Height of the parapet's top above the low point, where given.
@@ -154,6 +156,7 @@ mod tests {
             ponding: Ponding::Head(Length::inches(0.4)),
             parapet: Some(Length::inches(4.0)),
             site: Site::default(),
+            freeboard: None,
             channel: None,
         }
     }

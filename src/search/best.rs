@@ -172,7 +172,7 @@ pub(super) fn reported<'r>(problem: &Problem<'r>, groups: &[(usize, u32)]) -> Ve
         added.iter().copied().zip(groups).map(down).chain(there.iter().copied()).collect::<Vec<_>>()
     };
     let standing = lifts[..passing].iter().rev().map(|&lift| on_grid(lift));
-    standing.into_iter().find(|groups| problem.asked.freeboard.is_none() || holds(groups)).unwrap_or(lowest)
+    standing.into_iter().find(|groups| !problem.asks_freeboard() || holds(groups)).unwrap_or(lowest)
 }
 
 /// At most `keep` layouts in order, each the best of its family.

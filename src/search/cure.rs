@@ -12,7 +12,8 @@
 //! reach of a change is found first, then the least change that already has it.
 
 use crate::device::{Device, Size};
-use crate::roof::{Roof, load_of};
+use crate::roof::{Basis, Roof, load_of};
+use crate::rules::{self, RuleAt};
 use crate::units::{Length, Load, Money, System};
 
 use super::best::Best;
@@ -48,6 +49,8 @@ pub enum Relaxation {
     Freeboard(Length),
     /// The demand times this: less rain, or less roof that drains here.
     Demand(f64),
+    /// A rule of a binding set waived.
+    Rule(RuleAt),
 }
 
 /// A change of an area, most often one that makes a layout exist.
@@ -162,7 +165,24 @@ pub fn cures(roof: &Roof, options: &Options, area: usize) -> Cures {
     }
     let asked = Changed { roof: alone(roof, area), options: Options { keep: 1, ..options.clone() } };
     let scales = scales(&asked.roof, &asked.options);
-    asked.tried(scales, |scale| scale.least(scale.steps, |change| asked.with(change, any)))
+    let cures = asked.tried(scales, |scale| scale.least(scale.steps, |change| asked.with(change, any)));
+    without_each_rule(roof, &asked.options, area, cures)
+}
+
+/// The cures, and with them every binding rule without which the area has a layout.
+fn without_each_rule(roof: &Roof, options: &Options, area: usize, mut cures: Cures) -> Cures {
+    let places: Vec<RuleAt> = options.rules.binding().map(|(at, _)| at).collect();
+    for at in places {
+        let change = Relaxation::Rule(at);
+        let (whole, options) = relaxed(roof, options, change);
+        let roof = alone(&whole, area);
+        match any(&Problem::new(&roof, 0, &options).0) {
+            Ok(true) => cures.found.push(Cure { change, roof, options }),
+            Ok(false) => {}
+            Err(Stopped) => cures.stopped = true,
+        }
+    }
+    cures
 }
 
 /// The single changes of moderate size that make a cheaper layout exist than the cheapest now, each the least that saves as
@@ -241,7 +261,9 @@ impl Changed {
 pub(super) fn alone(roof: &Roof, area: usize) -> Roof {
     let mut one = roof.areas[area].clone();
     one.receives.clear();
-    Roof { areas: vec![one], demands: vec![roof.demands[area]], ..roof.clone() }
+    let of_area = |basis: &Basis| Basis { case: basis.case.clone(), areas: vec![basis.areas[area]] };
+    let bases = roof.bases.iter().map(of_area).collect();
+    Roof { areas: vec![one], demands: vec![roof.demands[area]], bases, ..roof.clone() }
 }
 
 /// What can be relaxed, on scales of steps that can be built or asked for.
@@ -300,19 +322,19 @@ fn scales(roof: &Roof, options: &Options) -> Vec<Scale> {
     scales
 }
 
-/// A roof of one area and its options, with one thing changed.
+/// A roof of one area and its options, with one thing changed; of a rule, a whole roof without it.
 pub fn relaxed(roof: &Roof, options: &Options, change: Relaxation) -> (Roof, Options) {
     let (mut roof, mut options) = (roof.clone(), options.clone());
     let area = &mut roof.areas[0];
     match change {
         Relaxation::Load(more) => {
-            area.limits.iter_mut().for_each(|limits| limits.load = limits.load.map(|load| load + more));
+            area.every_limit().for_each(|limits| limits.load = limits.load.map(|load| load + more));
         }
         Relaxation::Depth(more) => {
-            area.limits.iter_mut().for_each(|limits| limits.depth = limits.depth.map(|depth| depth + more));
+            area.every_limit().for_each(|limits| limits.depth = limits.depth.map(|depth| depth + more));
         }
         Relaxation::Limits(more) => {
-            for limits in &mut area.limits {
+            for limits in area.every_limit() {
                 limits.load = limits.load.map(|load| load + load_of(more));
                 limits.depth = limits.depth.map(|depth| depth + more);
             }
@@ -332,7 +354,19 @@ pub fn relaxed(roof: &Roof, options: &Options, change: Relaxation) -> (Roof, Opt
         Relaxation::Height(more) => roof.sizes.iter_mut().for_each(|size| heighten(size, more)),
         Relaxation::Edge(more) => area.edge = area.edge.map(|edge| edge + more),
         Relaxation::Freeboard(less) => options.freeboard = options.freeboard.map(|asked| asked - less),
-        Relaxation::Demand(factor) => roof.demands[0] = roof.demands[0] * factor,
+        Relaxation::Demand(factor) => {
+            roof.demands[0] = roof.demands[0] * factor;
+            for basis in &mut roof.bases {
+                let area = &mut basis.areas[0];
+                (area.flow, area.credited, area.least) =
+                    (area.flow * factor, area.credited * factor, area.least * factor);
+            }
+        }
+        Relaxation::Rule(at) => {
+            let book = options.rules.without(at);
+            roof.bases = rules::bases(&book, &roof);
+            options.rules = book.into();
+        }
     }
     (roof, options)
 }

@@ -23,7 +23,7 @@
 //! Totals found before such a change are too great by then, never too small, so every bound above stays one.
 //!
 //! 5. *Sizes outdone.* A size is not tried where another of the same tag is cheaper, carries at least as much in every case,
-//!    takes no more edge, and cost ranks first: put in its place, device for device, it makes a cheaper layout of the same
+//!    takes no more edge, stands at the edge or not alike where a rule asks for a least number there, and cost ranks first: put in its place, device for device, it makes a cheaper layout of the same
 //!    family that holds as well. Where one layout alone is kept, the other may be of any tag. (What holds to the last bit of
 //!    a sum alone is not told apart here from what does not: the flows of both may be added in another order.)
 //!
@@ -188,6 +188,7 @@ pub(super) fn not_outdone(
     let outdoes = |better: usize, worse: usize| {
         let (a, b) = (&problem.candidates[better], &problem.candidates[worse]);
         let fits = !edge_limited || !a.at_edge || (b.at_edge && a.width <= b.width);
+        let fits = fits && (problem.least_at_edge == 0 || a.at_edge == b.at_edge);
         let carries = || table.of(better).iter().zip(table.of(worse)).all(|(a, b)| a >= b);
         a.price < b.price && (a.tag == b.tag || keeps.one) && fits && carries()
     };
@@ -423,6 +424,9 @@ impl Dive<'_, '_> {
     fn least_of_last(&self, depth: usize, member: usize, used: Used) -> u32 {
         let cases = self.problem.situations.len();
         let mut least = self.problem.least.saturating_sub(used.devices).max(1);
+        if self.problem.candidates[self.members[member]].at_edge {
+            least = least.max(self.problem.short_at_edge(used.openings));
+        }
         for (case, needed) in self.bounds.needed.iter().enumerate() {
             let missing = needed - self.totals[depth * cases + case];
             if missing > 0.0 {
@@ -460,7 +464,8 @@ impl Dive<'_, '_> {
     }
 
     fn offer(&mut self, groups: usize, used: Used) {
-        if used.devices < self.problem.least || (self.class.is_some() && !used.has_lowest_top) {
+        let too_few = used.devices < self.problem.least || self.problem.is_short_at_edge(used.openings);
+        if too_few || (self.class.is_some() && !used.has_lowest_top) {
             return;
         }
         let chosen = &self.chosen[..groups];

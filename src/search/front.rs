@@ -199,8 +199,8 @@ fn stands_in(problem: &Problem<'_>, one: &Candidate<'_>, other: &Candidate<'_>) 
     let no_more = price(one) <= price(other) && one.width <= other.width;
     let less = price(one) < price(other) || one.width < other.width;
     let edge = problem.edge.is_none() || !one.at_edge || other.at_edge;
-    let tops =
-        problem.asked.freeboard.is_none() || one.top.is_none_or(|top| other.top.is_some_and(|other| top >= other));
+    let edge = edge && (problem.least_at_edge == 0 || one.at_edge == other.at_edge);
+    let tops = !problem.asks_freeboard() || one.top.is_none_or(|top| other.top.is_some_and(|other| top >= other));
     no_more && (less || one.index < other.index) && edge && tops && is_alike(problem, one, other)
 }
 

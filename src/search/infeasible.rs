@@ -16,7 +16,7 @@ pub(super) fn why(mut problem: Problem<'_>) -> Result<Why<'_>, Stopped> {
             return Ok(Why::Freeboard { asked, best: greatest_freeboard(problem, asked)? });
         }
     }
-    let least = problem.least;
+    let (least, rule) = (problem.least, problem.asked_for);
     let cases: Vec<usize> = (0..problem.situations.len()).collect();
     let held = |cases: &[usize]| any(&problem.with_cases(cases));
     let mut alone = Vec::new();
@@ -30,7 +30,7 @@ pub(super) fn why(mut problem: Problem<'_>) -> Result<Why<'_>, Stopped> {
     let found = dive(&nearest, Aim::Reach, Best::new(1, false)).complete()?;
     Ok(match found.first() {
         Some(best) => Why::Limits { best: Box::new(ranked(&nearest, best)), alone, together },
-        None => Why::NothingFits { least },
+        None => Why::NothingFits { least, rule },
     })
 }
 

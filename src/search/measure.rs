@@ -19,7 +19,8 @@
 
 use crate::device::{Made, Size};
 use crate::roof::layout::{self, Group, Liftable};
-use crate::roof::{MOST_GROUPS, working_capacity};
+use crate::roof::{Catchment, MOST_GROUPS, working_capacity};
+use crate::rules::Restriction;
 use crate::units::{Length, Money};
 
 use super::problem::{Problem, one_carries};
@@ -97,7 +98,8 @@ struct Free<'f> {
     /// Its place among the groups.
     place: usize,
     group: Group<'f>,
-    made: &'f Made,
+    /// The widths that it may have by the catalog and by binding rules.
+    made: Made,
 }
 
 impl Free<'_> {
@@ -109,6 +111,21 @@ impl Free<'_> {
     fn ends(&self) -> (f64, f64) {
         (self.made.from.m(), self.made.to.m())
     }
+}
+
+/// The widths that a group may have where it stands: rules ask for wide openings, so they cut off the narrowest. The width of
+/// the grid is among them.
+fn allowed_widths(group: &Group<'_>, made: &Made, restriction: &Restriction<'_>, area: &Catchment) -> Made {
+    let allows = |width: Length| {
+        let size = group.size.in_width(width);
+        size.is_none_or(|size| restriction.allows(&size, group.set_height, area))
+    };
+    let (mut under, mut least) = (0, made.widths() - 1);
+    while under < least {
+        let middle = usize::midpoint(under, least);
+        if allows(made.width(middle)) { least = middle } else { under = middle + 1 }
+    }
+    Made { from: made.width(least).min(group.size.clear_width()), ..*made }
 }
 
 /// A layout with the widths of some of its groups free.
@@ -130,8 +147,10 @@ type Widths = [f64; MOST_GROUPS];
 
 impl<'f, 'r> Fit<'f, 'r> {
     fn new(problem: &'f Problem<'r>, groups: &'f [Group<'r>]) -> Self {
+        let restriction = Restriction::of_sizes(&problem.rules);
         let free = |(place, group): (usize, &Group<'f>)| {
-            Some(Free { place, group: *group, made: group.size.made.as_deref()? })
+            let made = allowed_widths(group, group.size.made.as_deref()?, &restriction, problem.catchment);
+            Some(Free { place, group: *group, made })
         };
         let free: Vec<Free<'f>> = groups.iter().enumerate().filter_map(free).collect();
         let situations = problem.situations.iter().zip(&problem.allowed);

@@ -7,10 +7,12 @@
 //! Freeboard makes the level depend on the layout: water must stay under its lowest opening. Layouts are therefore searched
 //! by classes of equal lowest top ([`Problem::classes`]), and within a class the level is one number again.
 
+use std::sync::Arc;
+
 use crate::device::{Place, Size};
 use crate::roof::layout::{self, Asked, Group, Liftable};
 use crate::roof::{Catchment, GivenGroup, MOST_GROUPS, MOST_OUTLETS, Roof, Situation, working_capacity};
-use crate::rules::{self, Misfit, Stand};
+use crate::rules::{self, Misfit, Restriction, RuleAt, Rulebook, Stand};
 use crate::units::Length;
 
 use super::Options;
@@ -54,8 +56,11 @@ pub(super) struct Problem<'r> {
     pub(super) candidates: Vec<Candidate<'r>>,
     /// What is there already and stays, behind the groups of every layout.
     pub(super) fixed: Vec<Group<'r>>,
-    /// Least and most devices that a layout adds to what is there.
+    /// Least and most devices that a layout adds to what is there; and the rule that asks for the least, where one does.
     pub(super) least: u32,
+    pub(super) asked_for: Option<RuleAt>,
+    /// Least openings at the edge of a layout with any there, those that are there already among them.
+    pub(super) least_at_edge: u32,
     pub(super) most: u32,
     pub(super) mix: usize,
     /// Edge in nanometres; none where it is not limited.
@@ -64,6 +69,9 @@ pub(super) struct Problem<'r> {
     pub(super) asked: Asked,
     pub(super) order: Order,
     pub(super) watch: Watch,
+    /// The area, and the rule sets over it: for sizes that are not the catalog's.
+    pub(super) catchment: &'r Catchment,
+    pub(super) rules: Arc<Rulebook>,
 }
 
 /// Layouts whose lowest opening has its top at one height; none for those without any closed opening.
@@ -102,6 +110,7 @@ impl<'r> Problem<'r> {
         sizes: impl Iterator<Item = (usize, &'r Size)>,
     ) -> (Self, Vec<(&'r Size, Misfit)>) {
         let catchment = &roof.areas[area];
+        let restriction = Restriction::new(&options.rules, &roof.bases, catchment, area);
         let mut tags: Vec<&str> = Vec::new();
         let (mut candidates, mut misfits) = (Vec::new(), Vec::new());
         for (index, size) in sizes {
@@ -110,7 +119,8 @@ impl<'r> Problem<'r> {
                 tags.push(&size.tag);
                 tags.len() - 1
             });
-            match rules::stands(size, catchment) {
+            let stand = rules::stands(size, catchment);
+            match stand.and_then(|stand| restriction.on(stand, size, catchment)) {
                 Ok(stand) => candidates.push(candidate(size, index, u32::try_from(tag).unwrap_or(u32::MAX), stand)),
                 Err(misfit) => misfits.push((size, misfit)),
             }
@@ -119,11 +129,15 @@ impl<'r> Problem<'r> {
         let situations = roof.situations(area);
         let fixed: Vec<Group<'r>> = catchment.existing.iter().map(GivenGroup::group).collect();
         let there = devices(&fixed);
+        let by_rule = restriction.least.filter(|(least, _)| least > catchment.count.start());
+        let least = by_rule.map_or(*catchment.count.start(), |(least, _)| least);
         let problem = Self {
             allowed: situations.iter().map(Situation::allowable_level).collect(),
             situations,
             candidates,
-            least: catchment.count.start().saturating_sub(there),
+            least: least.saturating_sub(there),
+            asked_for: by_rule.map(|(_, at)| at),
+            least_at_edge: restriction.at_edge.map_or(0, |(least, _)| least),
             most: catchment.count.end().saturating_sub(there),
             fixed,
             mix: options.mix,
@@ -132,13 +146,20 @@ impl<'r> Problem<'r> {
             asked: Asked { freeboard: options.freeboard },
             order: Order::new(&options.rank_by, priced),
             watch: options.watch.clone(),
+            catchment,
+            rules: Arc::clone(&options.rules),
         };
         (problem, misfits)
     }
 
+    /// Whether any case asks for freeboard.
+    pub(super) fn asks_freeboard(&self) -> bool {
+        self.situations.iter().any(|situation| layout::freeboard_asked(situation, self.asked).is_some())
+    }
+
     /// The classes of layouts: one for all where no freeboard is asked, else one for each height of an opening's top.
     pub(super) fn classes(&self) -> Vec<Class> {
-        if self.asked.freeboard.is_none() {
+        if !self.asks_freeboard() {
             return vec![None];
         }
         let mut tops: Vec<_> = self.candidates.iter().filter_map(|candidate| candidate.top).collect();
@@ -149,10 +170,11 @@ impl<'r> Problem<'r> {
 
     /// The candidates that a layout of a class may be made of, in catalog order.
     pub(super) fn members(&self, class: Class) -> Vec<usize> {
-        let belongs = |candidate: &Candidate<'_>| match (self.asked.freeboard, class, candidate.top) {
-            (None, _, _) | (Some(_), _, None) => true,
-            (Some(_), None, Some(_)) => false,
-            (Some(_), Some(lowest), Some(top)) => top >= lowest,
+        let asked = self.asks_freeboard();
+        let belongs = |candidate: &Candidate<'_>| match (class, candidate.top) {
+            (_, None) => true,
+            (None, Some(_)) => !asked,
+            (Some(lowest), Some(top)) => !asked || top >= lowest,
         };
         (0..self.candidates.len()).filter(|&index| belongs(&self.candidates[index])).collect()
     }
@@ -163,7 +185,7 @@ impl<'r> Problem<'r> {
             let case = situation.case;
             // A loss lowers the top by as much as it raises the sill.
             let top = Length::from_nm(class?) + case.sill_error - case.opening_loss;
-            Some(top - self.asked.freeboard?)
+            Some(top - layout::freeboard_asked(situation, self.asked)?)
         };
         let level = |(situation, &allowed): (&Situation<'_>, &Length)| {
             let allowed = layout::highest_level(&self.fixed, situation, allowed, self.asked);
@@ -207,6 +229,16 @@ impl<'r> Problem<'r> {
         }
         let carried = |blocked| working_capacity(&flows, self.fixed.len(), blocked);
         (carried(0), carried(blocked))
+    }
+
+    /// How many openings a layout with so many at the edge lacks there by the rules, if one more group stands there too.
+    pub(super) fn short_at_edge(&self, openings: i64) -> u32 {
+        u32::try_from(i64::from(self.least_at_edge) - openings).unwrap_or(0)
+    }
+
+    /// Whether so many openings at the edge, if any, are fewer than the rules ask for.
+    pub(super) fn is_short_at_edge(&self, openings: i64) -> bool {
+        (1..i64::from(self.least_at_edge)).contains(&openings)
     }
 
     /// How many devices are there already.
@@ -266,6 +298,18 @@ impl<'r> Problem<'r> {
         self.edge.map(|edge| edge - taken)
     }
 
+    /// The cases that decide, where some are the same but for their demand: the greatest of each. Whoever holds it holds the
+    /// others, at no higher level.
+    pub(super) fn deciding(&self) -> Option<Problem<'r>> {
+        let classes = same_but_demand(&self.situations);
+        let greatest = |class: &Vec<usize>| {
+            let demand = |&&case: &&usize| self.situations[case].demand.m3_per_s();
+            class.iter().min_by(|a, b| demand(b).total_cmp(&demand(a))).copied()
+        };
+        let deciding: Vec<usize> = classes.iter().filter_map(greatest).collect();
+        (deciding.len() < self.situations.len()).then(|| self.with_cases(&deciding))
+    }
+
     /// This area, held to some of its cases only.
     pub(super) fn with_cases(&self, keep: &[usize]) -> Problem<'r> {
         Problem {
@@ -276,6 +320,7 @@ impl<'r> Problem<'r> {
             asked: self.asked,
             order: self.order.clone(),
             watch: self.watch.clone(),
+            rules: Arc::clone(&self.rules),
             ..*self
         }
     }
@@ -316,6 +361,28 @@ fn candidate(size: &Size, index: usize, tag: u32, stand: Stand) -> Candidate<'_>
         highest: stand.highest,
         size,
     }
+}
+
+/// Cases in groups of those that differ in their demand alone, in the order of the first of each.
+pub(super) fn same_but_demand(situations: &[Situation<'_>]) -> Vec<Vec<usize>> {
+    let mut classes: Vec<Vec<usize>> = Vec::new();
+    for (index, situation) in situations.iter().enumerate() {
+        let same = |class: &&mut Vec<usize>| {
+            let (a, b) = (&situations[class[0]], situation);
+            let cases = a.case.blocked == b.case.blocked
+                && a.case.sill_error == b.case.sill_error
+                && a.case.opening_loss == b.case.opening_loss
+                && a.case.law == b.case.law
+                && a.case.discharge.to_bits() == b.case.discharge.to_bits();
+            // Along a channel a greater demand also stands deeper.
+            cases && a.limits == b.limits && a.freeboard == b.freeboard && a.channel.is_none()
+        };
+        match classes.iter_mut().find(same) {
+            Some(class) => class.push(index),
+            None => classes.push(vec![index]),
+        }
+    }
+    classes
 }
 
 fn devices(groups: &[Group<'_>]) -> u32 {

@@ -208,7 +208,8 @@ impl<'p, 'r> Walk<'p, 'r> {
             let groups = &chosen[..=depth];
             // More of the last never carry less.
             holds = holds || self.problem.carries(&self.limits[class], groups);
-            if holds && used.lead >= self.low && self.may_stay(groups, used.count, used.rest) {
+            let short = self.problem.is_short_at_edge(used.openings);
+            if holds && !short && used.lead >= self.low && self.may_stay(groups, used.count, used.rest) {
                 self.take(groups, used);
             }
         }
@@ -218,6 +219,9 @@ impl<'p, 'r> Walk<'p, 'r> {
     fn least_of_last(&self, depth: usize, index: usize, used: Used) -> u32 {
         let cases = self.needed.len();
         let mut least = self.problem.least.saturating_sub(used.count).max(1);
+        if self.pieces[index].edge.is_some() {
+            least = least.max(self.problem.short_at_edge(used.openings));
+        }
         for (case, needed) in self.needed.iter().enumerate() {
             let missing = needed - self.totals[depth * cases + case];
             if missing > 0.0 {
@@ -317,7 +321,7 @@ impl<'p, 'r> Walk<'p, 'r> {
 
 fn pieces(problem: &Problem<'_>, classes: &[Option<i64>]) -> Vec<Piece> {
     let priced = is_priced(problem);
-    let asked = problem.asked.freeboard.is_some();
+    let asked = problem.asks_freeboard();
     let piece = |candidate: &super::super::problem::Candidate<'_>| {
         let place = |top| classes.iter().position(|&class| class == Some(top));
         Piece {

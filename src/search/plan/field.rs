@@ -10,9 +10,9 @@
 
 use rayon::prelude::*;
 
-use crate::roof::{Case, Roof};
-use crate::search::problem::{Candidate, Problem, Table};
-use crate::search::{Options, alike};
+use crate::roof::Roof;
+use crate::search::problem::{Candidate, Problem, Table, same_but_demand};
+use crate::search::{Options, alike, alike::by_demand};
 use crate::units::Length;
 
 /// The sizes of a roof that no other outdoes, and its areas.
@@ -30,7 +30,7 @@ pub(super) struct Alike<'r> {
     candidates: Vec<Option<usize>>,
     /// What one of each candidate carries, class by class.
     tables: Vec<(Option<i64>, Table)>,
-    /// The areas, by rising demand.
+    /// The areas, by rising demand, which rises in every case.
     pub(super) areas: Vec<Asking>,
 }
 
@@ -47,7 +47,7 @@ pub(super) struct Asking {
 impl<'r> Field<'r> {
     /// The sizes that may stand somewhere and that no other outdoes.
     pub(super) fn new(roof: &'r Roof, options: &Options, areas: &[usize]) -> Self {
-        let groups = alike::groups(roof, areas);
+        let groups = alike::groups(roof, options, areas);
         let alike: Vec<Alike<'r>> = groups.par_iter().map(|areas| Alike::new(roof, options, areas)).collect();
         let field = Self { sizes: Vec::new(), alike };
         let sizes = not_outdone_in_all(roof, std::slice::from_ref(&field));
@@ -116,6 +116,9 @@ impl<'r> Alike<'r> {
     fn new(roof: &'r Roof, options: &Options, areas: &[usize]) -> Self {
         let edge = |area: usize| roof.areas[area].edge.map(Length::nm);
         let (problem, _) = Problem::new(roof, alike::with_longest_edge(roof, areas), options);
+        let classes = same_but_demand(&problem.situations);
+        let first: Vec<usize> = classes.iter().map(|class| class[0]).collect();
+        let problem = if first.len() < problem.situations.len() { problem.with_cases(&first) } else { problem };
         let mut candidates = vec![None; roof.sizes.len()];
         for (index, candidate) in problem.candidates.iter().enumerate() {
             candidates[candidate.index] = Some(index);
@@ -124,12 +127,12 @@ impl<'r> Alike<'r> {
             |class| (class, problem.table(&problem.allowable_levels(class), |candidate| Some(candidate.lowest())));
         let tables = problem.classes().into_iter().map(table).collect();
         let demands = |area: usize| {
-            let demand = |case: &Case| (roof.demands[area] * case.rain).m3_per_s();
-            roof.cases.iter().map(demand).collect()
+            let demand = |&case: &usize| roof.situation(area, case).demand.m3_per_s();
+            classes.iter().map(|class| class.iter().map(demand).fold(0.0, f64::max)).collect()
         };
         let mut asking: Vec<Asking> =
             areas.iter().map(|&area| Asking { area, demands: demands(area), edge: edge(area) }).collect();
-        asking.sort_by(|a, b| a.demands[0].total_cmp(&b.demands[0]));
+        asking.sort_by(|a, b| by_demand(&a.demands, &b.demands));
         Self { problem, candidates, tables, areas: asking }
     }
 
@@ -140,10 +143,8 @@ impl<'r> Alike<'r> {
 
     /// The table that holds for a layout whose lowest top is that of these candidates.
     pub(super) fn table(&self, candidates: &[usize]) -> &Table {
-        let class = match self.problem.asked.freeboard {
-            None => None,
-            Some(_) => candidates.iter().filter_map(|&index| self.problem.candidates[index].top).min(),
-        };
+        let top = |&index: &usize| self.problem.candidates[index].top;
+        let class = if self.problem.asks_freeboard() { candidates.iter().filter_map(top).min() } else { None };
         let found = self.tables.iter().find(|(known, _)| *known == class);
         found.map_or(&self.tables[0].1, |(_, table)| table)
     }
@@ -160,7 +161,8 @@ impl<'r> Alike<'r> {
         let (a, b) = (&self.problem.candidates[better], &self.problem.candidates[worse]);
         let edge = |candidate: &Candidate<'_>| if candidate.at_edge { candidate.width } else { 0 };
         let fits = !self.is_edge_limited() || ((!a.at_edge || b.at_edge) && edge(a) <= edge(b));
-        let tops = self.problem.asked.freeboard.is_none() || a.top.is_none_or(|a| b.top.is_some_and(|b| a >= b));
+        let fits = fits && (self.problem.least_at_edge == 0 || a.at_edge == b.at_edge);
+        let tops = !self.problem.asks_freeboard() || a.top.is_none_or(|a| b.top.is_some_and(|b| a >= b));
         let carries =
             || self.tables.iter().all(|(_, table)| table.of(better).iter().zip(table.of(worse)).all(|(a, b)| a >= b));
         a.price <= b.price && fits && tops && carries()

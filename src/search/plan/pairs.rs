@@ -110,7 +110,7 @@ impl<'f, 'r> Pair<'f, 'r> {
     fn may_change_places(&self) -> bool {
         let problem = &self.alike.problem;
         let blocked = problem.situations.iter().map(|situation| situation.case.blocked).max();
-        problem.least <= 2 && blocked <= Some(1) && problem.asked.freeboard.is_none()
+        problem.least <= 2 && problem.least_at_edge == 0 && blocked <= Some(1) && !problem.asks_freeboard()
     }
 
     /// The least count of the less for which some of the greater, no dearer, carry as much and take no more edge.
@@ -200,6 +200,13 @@ impl<'f, 'r> Ladder<'f, 'r> {
         self.beside.1 = there;
         self.count = self.problem.least.saturating_sub(there).max(1);
         self.most = self.problem.most.saturating_sub(there);
+        let candidates = &self.problem.candidates;
+        let openings = if candidates[self.beside.0].at_edge { i64::from(there) } else { 0 };
+        if candidates[self.index].at_edge {
+            self.count = self.count.max(self.problem.short_at_edge(openings));
+        } else if self.problem.is_short_at_edge(openings) {
+            self.most = 0;
+        }
         self.add_up();
     }
 
