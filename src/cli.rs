@@ -163,18 +163,6 @@ fn without_set_height(roof: &Roof, areas: &[usize]) -> Option<Failure> {
     ))
 }
 
-/// Refuses what does not heed the devices that are there already.
-fn heeds_existing(project: &Project, areas: &[usize], what: &str) -> Result<(), Failure> {
-    let roof = &project.roof;
-    match areas.iter().find(|&&area| !roof.areas[area].existing.is_empty()) {
-        None => Ok(()),
-        Some(&area) => Err(Failure::said(
-            &format!("{what} does not heed `existing` in this version, and `{}` has it", roof.areas[area].name),
-            "leave the area out with --area, or take `existing` out",
-        )),
-    }
-}
-
 /// Whether messages on stderr take colour: on a terminal, unless `NO_COLOR` is set.
 fn coloured_messages() -> bool {
     io::stderr().is_terminal() && std::env::var_os("NO_COLOR").is_none_or(|value| value.is_empty())

@@ -239,8 +239,7 @@ pub struct Catchment {
     pub set_heights: Option<Vec<Length>>,
     /// What holds in each case of the roof, in their order.
     pub limits: Vec<Limits>,
-    /// What is there already and stays: it costs nothing and stands where it stands. A search of an area heeds it; plans, fronts
-    /// and made widths do not, and input refuses them beside it.
+    /// What is there already and stays: it costs nothing, stands where it stands, and counts for none of the sizes of a plan.
     pub existing: Vec<GivenGroup>,
     /// The gutter or valley between its far end and its devices, where there is one.
     pub channel: Option<channel::Channel>,

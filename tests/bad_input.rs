@@ -880,54 +880,6 @@ error: at most 13 groups are there already
 }
 
 #[test]
-fn what_does_not_heed_what_is_there_already() {
-    existing(
-        THERE,
-        &[("keep = 5", "sizes = 2"), ("[limit]", "[structure]\nstiffen = \"0.07 / ft2 / psf\"\n\n[limit]")],
-    )
-    .refuses(str![[r#"
-error: a plan of few sizes and `existing` do not go together in this version
-  --> roof.toml:34:12
-   |
-34 | existing = [{ device = "RS", width = "12 in", height = "4 in", count = 2, set_height = "2 in" }]
-   |            ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ it would not be heeded
-   |
-   = help: take `sizes` and `size_price` out, or take `existing` out
-
-error: a price of strength and `existing` do not go together in this version
-  --> roof.toml:34:12
-   |
-34 | existing = [{ device = "RS", width = "12 in", height = "4 in", count = 2, set_height = "2 in" }]
-   |            ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ it would not be heeded
-   |
-   = help: take [structure] out, or take `existing` out
-
-"#]]);
-    existing(THERE, &[("keep = 5", "made_to_measure = true")]).refuses(str![[r#"
-error: openings made to measure and `existing` do not go together in this version
-  --> roof.toml:31:12
-   |
-31 | existing = [{ device = "RS", width = "12 in", height = "4 in", count = 2, set_height = "2 in" }]
-   |            ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ it would not be heeded
-   |
-   = help: take `made_to_measure` out and give every range of widths a step, or take `existing` out
-
-"#]]);
-    let sound = existing(THERE, &[]);
-    sound.brimline(&["size", "roof.toml"]).code(0).stderr_eq("");
-    sound.brimline(&["size", "roof.toml", "--front"]).code(2).stdout_eq("").stderr_eq(str![[r#"
-error: --front does not heed `existing` in this version, and `north bay` has it
-  = help: leave the area out with --area, or take `existing` out
-
-"#]]);
-    sound.brimline(&["tradeoff", "roof.toml"]).code(2).stdout_eq("").stderr_eq(str![[r#"
-error: a trade-off does not heed `existing` in this version, and `north bay` has it
-  = help: leave the area out with --area, or take `existing` out
-
-"#]]);
-}
-
-#[test]
 fn a_price_of_closing_an_opening_that_is_none() {
     project(&[("units =", "replace = \"250\"\nunits ="), ("edge = \"120 ft\"", "edge = \"120 ft\"\nreplace = -5")])
         .refuses(str![[r#"

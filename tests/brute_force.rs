@@ -446,7 +446,7 @@ fn what_is_added_to_what_is_there_is_what_trying_everything_adds() {
     for seed in 1..=1500_u64 {
         let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15) ^ 0x5555);
         let (mut roof, options) = (roof(&mut dice), options(&mut dice));
-        there_already(&mut roof, &mut dice);
+        there_already(&mut roof, 0, &mut dice);
         let expected = everything(&roof, &options);
         match search::size(&roof, &options, &[0]).remove(0).outcome {
             Outcome::Optimal(layouts) => {
@@ -496,7 +496,7 @@ fn what_is_there_does_not_change_the_answer_of_another_area() {
         let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15) ^ 0x3333);
         let (mut roof, options) = (roof(&mut dice), options(&mut dice));
         let bare = roof.areas[0].clone();
-        there_already(&mut roof, &mut dice);
+        there_already(&mut roof, 0, &mut dice);
         roof.areas.push(Catchment { count: roof.areas[0].count.clone(), ..bare });
         roof.demands.push(roof.demands[0]);
         let told = |answer: &search::Answer<'_>| {
@@ -512,9 +512,9 @@ fn what_is_there_does_not_change_the_answer_of_another_area() {
 }
 
 /// One group or two that are there already, and an edge that is long enough for them.
-fn there_already(roof: &mut Roof, dice: &mut Dice) {
+fn there_already(roof: &mut Roof, area: usize, dice: &mut Dice) {
     let offered = sizes(dice);
-    let area = &mut roof.areas[0];
+    let area = &mut roof.areas[area];
     for _ in 0..=dice.upto(1) {
         let size =
             Size { price: Some(Money::default()), ..offered[dice.upto(offered.len() as u64 - 1) as usize].clone() };
@@ -525,6 +525,11 @@ fn there_already(roof: &mut Roof, dice: &mut Dice) {
     let at_edge = area.existing.iter().filter(|group| group.size.place == Place::Edge);
     let taken = brimline::rules::edge_used(at_edge.map(|group| (&group.size, group.count)), area);
     area.edge = area.edge.map(|edge| Length::from_nm(edge.nm() + taken));
+}
+
+/// What is added to an area, and what is there.
+fn with_what_is_there<'r>(roof: &'r Roof, area: usize, added: &[Group<'r>]) -> Vec<Group<'r>> {
+    added.iter().copied().chain(roof.areas[area].existing.iter().map(GivenGroup::group)).collect()
 }
 
 /// The reasons that the search gives, against every layout that fits.
@@ -570,8 +575,8 @@ fn check_why(roof: &Roof, options: &Options, why: &Why<'_>, seed: u64) {
 /// The cheapest plan of a few areas against trying every set of sizes with every layout of each area.
 #[test]
 fn the_plan_is_that_of_trying_everything() {
-    let (mut found, mut none) = (0, 0);
-    for seed in 1..=700_u64 {
+    let (mut found, mut none, mut beside) = (0, 0, 0);
+    for seed in 1..=1200_u64 {
         let mut dice = Dice(seed.wrapping_mul(0xd134_2543_de82_ef95));
         let mut whole = roof(&mut dice);
         let mut options = options(&mut dice);
@@ -583,6 +588,11 @@ fn the_plan_is_that_of_trying_everything() {
             whole.areas.push(Catchment { limits, ..other });
         }
         whole.demands = whole.areas.iter().map(|area| whole.storm.intensity * area.area).collect();
+        for area in 0..whole.areas.len() {
+            if dice.one_in(2) {
+                there_already(&mut whole, area, &mut dice);
+            }
+        }
         let asked = PlanAsked {
             sizes: dice.one_in(4).then_some(()).map_or(Some(1 + dice.upto(2) as u32), |()| None),
             size_price: Money::nearest(100.0 * dice.upto(3) as f64),
@@ -611,7 +621,7 @@ fn the_plan_is_that_of_trying_everything() {
             })
             .collect();
         let most = asked.sizes.unwrap_or(u32::MAX);
-        let least = (1_u32..1 << whole.sizes.len())
+        let least = (0_u32..1 << whole.sizes.len())
             .filter(|set| set.count_ones() <= most)
             .filter_map(|set| {
                 let of_area = |layouts: &Vec<(i64, u32)>| {
@@ -629,13 +639,15 @@ fn the_plan_is_that_of_trying_everything() {
             continue;
         };
         found += 1;
+        beside += usize::from(whole.areas.iter().any(|area| !area.existing.is_empty()));
         let of_layouts: i64 = plan.layouts.iter().map(|layout| layout.cost.expect("priced").millionths()).sum();
         let of_sizes = (asked.size_price * u32::try_from(plan.sizes.len()).expect("few")).millionths();
         assert_eq!(of_layouts + of_sizes, plan.cost.millionths(), "seed {seed}: the layouts cost what the plan says");
         assert!(plan.sizes.len() as u32 <= most);
         for (layout, &area) in plan.layouts.iter().zip(&areas) {
             let groups: Vec<_> = layout.groups.iter().map(|placed| placed.group).collect();
-            assert!(groups.iter().all(|group| plan.sizes.iter().any(|size| std::ptr::eq(*size, group.size))));
+            let of_the_plan = |size: &Size| plan.sizes.iter().any(|known| std::ptr::eq(*known, size));
+            assert!(layout.added().iter().all(|placed| of_the_plan(placed.group.size)));
             let asked = Asked { freeboard: options.freeboard };
             assert!(whole.situations(area).iter().all(|situation| layout::holds(&groups, situation, asked)));
         }
@@ -643,13 +655,14 @@ fn the_plan_is_that_of_trying_everything() {
         assert!(costs.is_sorted_by(|a, b| a >= b), "seed {seed}: more sizes allowed are never dearer");
     }
     assert!(found > 100 && none > 100, "{found} plans, {none} without: the roofs are not varied enough");
+    assert!(beside > 100, "{beside} plans beside what is there");
 }
 
 /// The plan with a price of strength, against every set of sizes with every layout of each area at every raise.
 #[test]
 fn the_plan_with_stronger_areas_is_that_of_trying_everything() {
-    let (mut raised, mut kept, mut none) = (0, 0, 0);
-    for seed in 1..=500_u64 {
+    let (mut raised, mut kept, mut none, mut bare) = (0, 0, 0, 0);
+    for seed in 1..=700_u64 {
         let mut dice = Dice(seed.wrapping_mul(0xd134_2543_de82_ef95));
         let mut whole = roof(&mut dice);
         let mut options = options(&mut dice);
@@ -660,6 +673,11 @@ fn the_plan_with_stronger_areas_is_that_of_trying_everything() {
             whole.areas.push(Catchment { limits, ..other });
         }
         whole.demands = whole.areas.iter().map(|area| whole.storm.intensity * area.area).collect();
+        for area in 0..whole.areas.len() {
+            if dice.one_in(2) {
+                there_already(&mut whole, area, &mut dice);
+            }
+        }
         let asked =
             PlanAsked { sizes: Some(1 + dice.upto(1) as u32), size_price: Money::nearest(100.0 * dice.upto(2) as f64) };
         let rate = dice.pick(&["0.002 / ft2 / psf", "0.02 / ft2 / psf", "0.2 / ft2 / psf"]);
@@ -693,7 +711,7 @@ fn the_plan_with_stronger_areas_is_that_of_trying_everything() {
             })
             .collect();
         let most = asked.sizes.expect("given");
-        let least = (1_u32..1 << whole.sizes.len())
+        let least = (0_u32..1 << whole.sizes.len())
             .filter(|set| set.count_ones() <= most)
             .filter_map(|set| {
                 let of_area = |layouts: &Vec<(i64, u32)>| {
@@ -715,12 +733,14 @@ fn the_plan_with_stronger_areas_is_that_of_trying_everything() {
         for (area, &index) in plan.areas.iter().zip(&areas) {
             let (roof, _) = search::relaxed(&alone(&whole, index), &options, Relaxation::Load(area.raise));
             let asked = Asked { freeboard: options.freeboard };
-            let groups = area.layout.groups();
+            let groups = with_what_is_there(&whole, index, &area.layout.groups());
             assert!(roof.situations(0).iter().all(|situation| layout::holds(&groups, situation, asked)), "seed {seed}");
         }
+        bare += usize::from(plan.sizes.is_empty());
         if plan.areas.iter().any(|area| area.raise > Load::ZERO) { raised += 1 } else { kept += 1 }
     }
     assert!(raised > 25 && kept > 25 && none > 10, "{raised} raised, {kept} not, {none} without a plan");
+    assert!(bare > 10, "{bare} plans that add nothing");
 }
 
 /// One step less of a change, in the steps of a US roof; none where that is no change at all.
@@ -792,7 +812,10 @@ fn a_stronger_roof_is_weighed_at_every_step() {
     let (mut raised, mut kept, mut none) = (0, 0, 0);
     for seed in 1..=380_u64 {
         let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15));
-        let (roof, options) = (roof(&mut dice), options(&mut dice));
+        let (mut roof, options) = (roof(&mut dice), options(&mut dice));
+        if dice.one_in(3) {
+            there_already(&mut roof, 0, &mut dice);
+        }
         // From next to nothing to more than the openings.
         let rate = dice.pick(&["0.002 / ft2 / psf", "0.05 / ft2 / psf", "1 / ft2 / psf"]);
         let structure = search::Structure {
@@ -906,7 +929,10 @@ fn treads_are_the_least_costs_at_every_step() {
     let (mut roofs, mut risers) = (0, 0);
     for seed in 1..=400_u64 {
         let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15));
-        let (roof, options) = (roof(&mut dice), options(&mut dice));
+        let (mut roof, options) = (roof(&mut dice), options(&mut dice));
+        if dice.one_in(3) {
+            there_already(&mut roof, 0, &mut dice);
+        }
         if roof.sizes.iter().any(|size| size.price.is_none()) {
             continue;
         }
@@ -1031,7 +1057,10 @@ fn the_front_is_that_of_trying_everything() {
     let (mut fronts, mut rows, mut unpriced) = (0, 0, 0);
     for seed in 1..=2000_u64 {
         let mut dice = Dice(seed.wrapping_mul(0xa076_1d64_78bd_642f));
-        let (roof, mut options) = (roof_of_alike_sizes(&mut dice), options(&mut dice));
+        let (mut roof, mut options) = (roof_of_alike_sizes(&mut dice), options(&mut dice));
+        if dice.one_in(3) {
+            there_already(&mut roof, 0, &mut dice);
+        }
         if dice.one_in(3) {
             // So much that of two openings alike under every limit only the higher one keeps it.
             options.freeboard = Some(Length::inches(dice.pick(&[2.0, 3.0])));
@@ -1050,7 +1079,7 @@ fn the_front_is_that_of_trying_everything() {
             assert_eq!((i64::from(row.count), row.width.nm()), (key[2], key[3]), "seed {seed}");
             assert_eq!(row.cost.map_or(0, Money::millionths), key[0], "seed {seed}");
             let situation = roof.situation(0, row.case);
-            let water = layout::state(&row.groups, &situation).water.expect("holds");
+            let water = layout::state(&with_what_is_there(&roof, 0, &row.groups), &situation).water.expect("holds");
             assert_eq!((water.depth().nm(), water.load), (key[1], row.load), "seed {seed}");
         }
         for (row, layout) in front.rows.iter().zip(front.opened(3)) {
@@ -1121,6 +1150,11 @@ fn the_front_of_plans_is_that_of_trying_everything() {
             area.count = *area.count.start()..=*area.count.end() + 2;
         }
         whole.demands = whole.areas.iter().map(|area| whole.storm.intensity * area.area).collect();
+        for area in 0..whole.areas.len() {
+            if dice.one_in(3) {
+                there_already(&mut whole, area, &mut dice);
+            }
+        }
         let asked =
             PlanAsked { sizes: Some(1 + dice.upto(2) as u32), size_price: Money::nearest(100.0 * dice.upto(3) as f64) };
         let areas: Vec<usize> = (0..whole.areas.len()).collect();
@@ -1145,8 +1179,9 @@ fn the_front_of_plans_is_that_of_trying_everything() {
             .map(|plan| {
                 let worst = |(layout, &area): (&Vec<Group<'_>>, &usize)| {
                     let situations = whole.situations(area);
+                    let groups = with_what_is_there(&whole, area, layout);
                     let depths =
-                        situations.iter().map(|here| layout::state(layout, here).water.expect("holds").depth().nm());
+                        situations.iter().map(|here| layout::state(&groups, here).water.expect("holds").depth().nm());
                     situations[0].ponding.weighed(Length::from_nm(depths.max().expect("cases"))).nm()
                 };
                 let load = plan.layouts.iter().zip(&areas).map(worst).max().expect("areas");

@@ -5,7 +5,7 @@ use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Head, Kind, Law, Made, Place, Rating, Site, Size, Tariff};
 use brimline::roof::layout::{self, Asked, Group};
-use brimline::roof::{Case, Catchment, Facts, Limits, Parapet, Roof, Situation, Storm, Surface};
+use brimline::roof::{Case, Catchment, Facts, GivenGroup, Limits, Parapet, Roof, Situation, Storm, Surface};
 use brimline::search::{self, Criterion, Fitted, Measured, Options, Outcome, Ranked, Watch};
 use brimline::units::{Area, Dimension, Flow, Intensity, Length, Load, Money, System, read_price};
 
@@ -126,6 +126,12 @@ fn roof(dice: &mut Dice, mix: usize) -> (Roof, Options) {
         channel: None,
         facts: Facts::default(),
     };
+    let mut catchment = catchment;
+    if dice.one_in(3) {
+        catchment.existing.push(there_already(dice));
+        catchment.edge = catchment.edge.map(|edge| edge + inches(12.0));
+        catchment.count = *catchment.count.start()..=catchment.count.end() + 2;
+    }
     let storm = Storm { intensity: Intensity::from_m_per_s(3e-5), ..Storm::default() };
     let choice =
         Choice { scupper: if dice.one_in(3) { dice.pick(&LAWS) } else { Law::ThinPlate }, ..Choice::default() };
@@ -148,6 +154,14 @@ fn roof(dice: &mut Dice, mix: usize) -> (Roof, Options) {
     let demands = vec![storm.intensity * catchment.area];
     let (title, system, areas) = (String::new(), System::Us, vec![catchment]);
     (Roof { title, system, storm, cases, areas, sizes, choice, demands, bases: Vec::new() }, options)
+}
+
+/// One or two openings that are there already, here and there as one of those that are made to measure.
+fn there_already(dice: &mut Dice) -> GivenGroup {
+    let device = Device::Open { width: inches(4.0 + dice.upto(4) as f64 * 0.5) };
+    let tag = dice.pick(&["A", "old"]).into();
+    let size = Size { tag, price: Some(Money::default()), ..Size::of(device) };
+    GivenGroup { size, count: 1 + dice.upto(1) as u32, set_height: inches(1.0 + dice.upto(2) as f64 * 0.75) }
 }
 
 fn groups<'r>(layout: &Ranked<'r>) -> Vec<Group<'r>> {

@@ -465,3 +465,17 @@ fn the_catalogs_of_the_program_need_no_file() {
     let message = String::from_utf8_lossy(&output.stderr).into_owned();
     assert!(message.contains("did you mean `builtin:through-wall-scuppers`?"), "{message}");
 }
+
+#[test]
+fn a_front_counts_what_is_added_and_shows_what_is_there() {
+    let document = json("old-roof-survey", &["--front", "--area", "dye house"]);
+    let rows = document["areas"][0]["front"].as_array().expect("a front");
+    assert!(rows.len() > 1, "{rows:?}");
+    for row in rows {
+        let (there, added): (Vec<_>, Vec<_>) =
+            row["groups"].as_array().expect("groups").iter().partition(|group| group["existing"] == true);
+        assert_eq!(there.len(), 1, "what the survey found is shown once");
+        let count: u64 = added.iter().map(|group| group["count"].as_u64().expect("a count")).sum();
+        assert_eq!(row["count"], count);
+    }
+}

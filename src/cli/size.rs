@@ -54,9 +54,6 @@ fn strengthened(found: &Result<Option<Stiffened>, Stopped>) -> Weighed<'_> {
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let (project, areas) = args.of.read()?;
     super::without_set_height(&project.roof, &areas).map_or(Ok(()), Err)?;
-    if args.front {
-        super::heeds_existing(&project, &areas, "--front")?;
-    }
     let watched = args.ending.watch()?;
     let mut options = project.options.clone();
     options.watch = watched.watch.clone();

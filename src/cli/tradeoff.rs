@@ -38,7 +38,6 @@ const MOST_STEPS: f64 = 1000.0;
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let (project, areas) = args.of.read()?;
     super::without_set_height(&project.roof, &areas).map_or(Ok(()), Err)?;
-    super::heeds_existing(&project, &areas, "a trade-off")?;
     if let Some(unpriced) = project.roof.sizes.iter().find(|size| size.price.is_none()) {
         let what = format!("a trade-off needs prices, and device `{}` has none", unpriced.tag);
         return Err(Failure::said(&what, "give it a price in its catalog: price = { each = 420 }"));

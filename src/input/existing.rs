@@ -19,16 +19,6 @@ const MOST: usize = MOST_OUTLETS - MOST_GROUPS;
 /// What belongs under the key.
 const WANTED: &str = "the name of a layout, or a list, such as [{ device = \"RS\", width = \"12 in\", height = \"4 in\", count = 2, set_height = \"2 in\" }]";
 
-/// What of the project does not go together with devices that are there, in the words of its keys.
-pub(super) struct Beside {
-    /// Few sizes on the whole roof.
-    pub(super) plan: bool,
-    /// A price of strength.
-    pub(super) structure: bool,
-    /// Openings made to measure.
-    pub(super) measure: bool,
-}
-
 /// What is there in each area, in their order; none where that of one is at fault.
 pub(super) fn read_all(
     path: &Path,
@@ -36,7 +26,6 @@ pub(super) fn read_all(
     areas: &[Catchment],
     catalogs: &Catalogs,
     layouts: &[Given],
-    beside: &Beside,
 ) -> Option<Vec<Vec<GivenGroup>>> {
     let tables = project.sections("area", &AREA, "a list of areas, each under [[area]]").unwrap_or_default();
     let against = Against::new(areas, catalogs);
@@ -46,8 +35,7 @@ pub(super) fn read_all(
             Some(name) => named(&cell, name, &areas[area], area, layouts),
             None => against.groups(path, table.as_ref()?, "existing", WANTED, area),
         }?;
-        let fits = fits(&cell, &areas[area], &groups);
-        (goes_together(&cell, beside) && fits).then(|| groups.into_iter().map(free).collect())
+        fits(&cell, &areas[area], &groups).then(|| groups.into_iter().map(free).collect())
     };
     let all: Vec<Option<Vec<GivenGroup>>> = tables.iter().enumerate().map(of_area).collect();
     all.into_iter().collect()
@@ -96,25 +84,4 @@ fn fits(cell: &Cell<'_>, area: &Catchment, groups: &[GivenGroup]) -> bool {
         );
     }
     !over
-}
-
-/// Whether nothing is asked for that does not heed what is there.
-fn goes_together(cell: &Cell<'_>, beside: &Beside) -> bool {
-    let asked = [
-        (beside.plan, "a plan of few sizes", "take `sizes` and `size_price` out"),
-        (beside.structure, "a price of strength", "take [structure] out"),
-        (
-            beside.measure,
-            "openings made to measure",
-            "take `made_to_measure` out and give every range of widths a step",
-        ),
-    ];
-    let refused = |&(asked, what, help): &(bool, &str, &str)| {
-        if asked {
-            let title = format!("{what} and `existing` do not go together in this version");
-            cell.at_fault(title, "it would not be heeded", format!("{help}, or take `existing` out"));
-        }
-        asked
-    };
-    asked.iter().filter(|&asked| refused(asked)).count() == 0
 }

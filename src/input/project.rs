@@ -138,16 +138,11 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
     prices(section, &search, &areas.kinds, &catalogs);
     let replace = area::replace_prices(section);
     let layouts = areas.complete.as_deref().and_then(|areas| layout::read_all(path, section, areas, &catalogs));
-    let beside = existing::Beside {
-        plan: search.plan.is_some_and(|plan| plan.is_some()),
-        structure: section.get("structure").is_some(),
-        measure: catalogs.sizes.iter().any(|size| size.made.is_some()),
-    };
     let existing = areas
         .complete
         .as_deref()
         .zip(layouts.as_deref())
-        .and_then(|(areas, layouts)| existing::read_all(path, section, areas, &catalogs, layouts, &beside));
+        .and_then(|(areas, layouts)| existing::read_all(path, section, areas, &catalogs, layouts));
     let (mut areas, storm) = (areas.complete?, storm?);
     for (area, there) in areas.iter_mut().zip(existing?) {
         area.existing = there;

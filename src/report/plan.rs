@@ -1,5 +1,6 @@
 //! The plan of the whole roof: its cost, its sizes, each area's layout, and what one size fewer or more would cost.
 
+use crate::device::Size;
 use crate::search::{Criterion, Outcome, Plan, Plans, StiffenedArea};
 use crate::units::{Load, Money};
 
@@ -48,7 +49,6 @@ fn stronger(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, given: Option<&Plan<'_
         let less = Money::from_millionths(given.cost.millionths() - stiffened.cost.millionths());
         format!("{} less than at the limits as given", words::money(less))
     });
-    let sizes: Vec<_> = stiffened.sizes.iter().map(|size| words.name(size)).collect();
     let rows = || stiffened.areas.iter();
     let layout = |area: &StiffenedArea| {
         let groups = area.layout.groups();
@@ -59,7 +59,7 @@ fn stronger(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, given: Option<&Plan<'_
             "With load limits raised where that pays, at {price}, the cheapest plan costs {}, {} of it strength ({against}): {}.",
             words::money(stiffened.cost),
             words::money(stiffened.strength),
-            list(&sizes)
+            names(stiffened.sizes.iter(), words)
         )),
         Block::Table(Table::of(vec![
             ("area".into(), false, rows().map(|area| sized.roof.areas[area.layout.area].name.clone()).collect()),
@@ -91,14 +91,20 @@ fn none(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, found: &Plans<'_>) -> Stri
 }
 
 fn sizes(plan: &Plan<'_>, words: Words) -> String {
-    list(&plan.sizes.iter().map(|size| words.name(size)).collect::<Vec<_>>())
+    names(plan.sizes.iter().copied(), words)
+}
+
+/// Sizes by their names; none where nothing is added to what is there already.
+fn names<'s>(sizes: impl Iterator<Item = &'s Size>, words: Words) -> String {
+    let names: Vec<_> = sizes.map(|size| words.name(size)).collect();
+    if names.is_empty() { "nothing is added".into() } else { list(&names) }
 }
 
 fn told(asked: &Asked<'_, '_>, found: &Plans<'_>, plan: &Plan<'_>, words: Words) -> String {
     let price = asked.asked.size_price;
     let most = asked.asked.sizes.map_or("any number of sizes".into(), |sizes| format!("at most {sizes} sizes"));
     let count = plan.sizes.len();
-    let priced = if price > Money::default() {
+    let priced = if price > Money::default() && count > 0 {
         format!(
             ", {} of it for {count} distinct {} at {}",
             words::money(price * u32::try_from(count).unwrap_or(0)),

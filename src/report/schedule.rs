@@ -89,9 +89,9 @@ fn listed(
     rows
 }
 
-/// Worst load and its case, devices and clear width of a whole layout, and the list it stands in.
+/// Worst load and its case, devices and clear width of all that a layout adds, and the list it stands in.
 fn compared(sized: &Sized<'_, '_>, layout: &Ranked<'_>, list: &str, words: Words) -> Vec<String> {
-    let groups = || layout.groups.iter().map(|placed| placed.group);
+    let groups = || layout.added().iter().map(|placed| placed.group);
     let width = groups().map(|group| group.size.clear_width().nm() * i64::from(group.count)).sum();
     let worst = front::worst(layout);
     vec![

@@ -272,23 +272,24 @@ impl Words {
     /// All groups of a layout; a set height that they share is said once.
     /// Of one that adds to what is there already, what it adds.
     pub(super) fn layout(self, layout: &Ranked<'_>) -> String {
-        if layout.added().is_empty() {
-            return "nothing added".into();
-        }
         self.groups(&layout.added().iter().map(|placed| placed.group).collect::<Vec<_>>())
     }
 
-    /// Groups of one layout.
+    /// Groups of one layout; none where what is there already is enough.
     pub(super) fn groups(self, groups: &[Group<'_>]) -> String {
         let shared = groups.iter().all(|group| group.set_height.nm() == groups[0].set_height.nm());
-        if groups.len() < 2 || !shared {
-            return groups.iter().map(|group| self.group(group)).collect::<Vec<_>>().join(" + ");
+        match groups {
+            [] => self.sizes(groups),
+            [first, _, ..] if shared => format!("{}, all at {}", self.sizes(groups), self.size(first.set_height)),
+            _ => groups.iter().map(|group| self.group(group)).collect::<Vec<_>>().join(" + "),
         }
-        format!("{}, all at {}", self.sizes(groups), self.size(groups[0].set_height))
     }
 
     /// Groups of one layout, their set heights left out.
     pub(super) fn sizes(self, groups: &[Group<'_>]) -> String {
+        if groups.is_empty() {
+            return "nothing added".into();
+        }
         let one = |group: &Group<'_>| format!("{} of {}", group.count, self.name(group.size));
         groups.iter().map(one).collect::<Vec<_>>().join(" + ")
     }

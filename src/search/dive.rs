@@ -30,7 +30,6 @@
 //! Nothing else is left out. Where devices are there already, adding nothing is tried first. Layouts of one group are tried first, then of two, then of three: good layouts early make the
 //! bounds tight.
 
-use crate::device::Place;
 use crate::roof::{MOST_GROUPS, Situation};
 use crate::units::{Length, Money};
 
@@ -133,7 +132,7 @@ pub(super) fn least(problem: &Problem<'_>) -> Option<Least> {
 }
 
 /// The total that a layout must have in each case, beside what is there: bound 1.
-fn needed(problem: &Problem<'_>, table: &Table) -> Vec<f64> {
+pub(super) fn needed(problem: &Problem<'_>, table: &Table) -> Vec<f64> {
     let most = f64::from(problem.most.saturating_add(problem.devices_there()));
     let of_case = |(case, situation): (usize, &Situation<'_>)| {
         let left = most - f64::from(situation.case.blocked);
@@ -230,13 +229,8 @@ struct Bounds {
 impl Used {
     /// Of what is there, which takes edge and counts for nothing else.
     fn of_what_is_there(problem: &Problem<'_>) -> Self {
-        let at_edge = problem.fixed.iter().filter(|group| group.size.place == Place::Edge);
-        at_edge.fold(Self::default(), |mut used, group| {
-            let many = i64::from(group.count);
-            used.openings += many;
-            used.edge += group.size.clear_width().nm().saturating_mul(many);
-            used
-        })
+        let (edge, openings) = problem.edge_taken_there();
+        Self { edge, openings, ..Self::default() }
     }
 
     /// With one more group.

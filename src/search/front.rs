@@ -42,7 +42,7 @@ pub use roofwide::{PlanFront, UnbeatenPlan, plan_front};
 /// A layout that no other beats in all of cost, load, count and width.
 #[derive(Clone, Debug)]
 pub struct Unbeaten<'r> {
-    /// Its groups at their lowest set heights, in catalog order.
+    /// Its groups at their lowest set heights, in catalog order; what is there already stands beside them and counts for nothing.
     pub groups: Vec<Group<'r>>,
     /// Its cost; none where a device that may stand in the area has no price.
     pub cost: Option<Money>,
@@ -148,7 +148,7 @@ fn is_priced(problem: &Problem<'_>) -> bool {
 
 fn unbeaten<'r>(problem: &Problem<'r>, kept: &Kept) -> Unbeaten<'r> {
     Unbeaten {
-        groups: at_lowest(problem, &kept.groups),
+        groups: standing_groups(problem, &kept.groups)[..kept.groups.len()].to_vec(),
         cost: is_priced(problem).then(|| Money::from_millionths(kept.sums.cost)),
         load: load_of(problem.situations[kept.worst.case].ponding.weighed(kept.worst.depth)),
         case: kept.worst.case,
@@ -157,12 +157,9 @@ fn unbeaten<'r>(problem: &Problem<'r>, kept: &Kept) -> Unbeaten<'r> {
     }
 }
 
-fn at_lowest<'r>(problem: &Problem<'r>, groups: &[(usize, u32)]) -> Vec<Group<'r>> {
-    let lowest = |&(index, count): &(usize, u32)| {
-        let candidate = &problem.candidates[index];
-        Group { size: candidate.size, count, set_height: candidate.lowest() }
-    };
-    groups.iter().map(lowest).collect()
+/// What stands of a layout: its groups at their lowest set heights, and what is there already.
+fn standing_groups<'r>(problem: &Problem<'r>, groups: &[(usize, u32)]) -> Vec<Group<'r>> {
+    problem.liftable(groups).iter().map(|liftable| liftable.group).collect()
 }
 
 /// The deepest water of all cases, the first of equals; none where a case overwhelms the layout.

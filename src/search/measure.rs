@@ -19,7 +19,7 @@
 
 use crate::device::{Made, Size};
 use crate::roof::layout::{self, Group, Liftable};
-use crate::roof::{Catchment, MOST_GROUPS, working_capacity};
+use crate::roof::{Catchment, MOST_GROUPS, MOST_OUTLETS, working_capacity};
 use crate::rules::Restriction;
 use crate::units::{Length, Money};
 
@@ -136,7 +136,7 @@ struct Fit<'f, 'r> {
     /// The highest level that each case allows the layout, whatever its widths.
     levels: Vec<Length>,
     /// What one of each group carries in each case at that level, on the grid, and their counts.
-    flows: Vec<[(f64, u32); MOST_GROUPS]>,
+    flows: Vec<[(f64, u32); MOST_OUTLETS]>,
     /// Edge that the free groups may take up in all, nanometres; none where it is not limited.
     edge: Option<i64>,
     priced: bool,
@@ -158,7 +158,7 @@ impl<'f, 'r> Fit<'f, 'r> {
             .map(|(situation, &allowed)| layout::highest_level(groups, situation, allowed, problem.asked))
             .collect();
         let flows = problem.situations.iter().zip(&levels).map(|(situation, &level)| {
-            let mut flows = [(0.0, 0); MOST_GROUPS];
+            let mut flows = [(0.0, 0); MOST_OUTLETS];
             for (slot, group) in flows.iter_mut().zip(groups) {
                 *slot = (one_carries(group.size, group.set_height, situation, level), group.count);
             }
@@ -263,15 +263,17 @@ impl<'f, 'r> Fit<'f, 'r> {
             .map(|((size, group), &to)| Built { size, count: group.count, set_height: group.set_height, to })
             .collect();
         // Adding alike groups up may change a last bit: then they stay apart.
-        [merged(&apart), apart].into_iter().find(|groups| self.stands(groups)).map(|mut groups| {
-            let liftable: Vec<Liftable<'_>> =
-                groups.iter().map(|built| Liftable { group: built.group(), highest: built.to }).collect();
-            let lift = layout::highest_lift(&liftable, &self.problem.situations, self.problem.asked);
-            let lift = lift.unwrap_or(Length::ZERO);
-            let tops: Vec<Length> = liftable.iter().map(|group| group.lifted(lift).set_height).collect();
-            groups.iter_mut().zip(tops).for_each(|(built, to)| built.to = to);
-            groups
-        })
+        [merged(&apart, self.problem.fixed.len()), apart].into_iter().find(|groups| self.stands(groups)).map(
+            |mut groups| {
+                let liftable: Vec<Liftable<'_>> =
+                    groups.iter().map(|built| Liftable { group: built.group(), highest: built.to }).collect();
+                let lift = layout::highest_lift(&liftable, &self.problem.situations, self.problem.asked);
+                let lift = lift.unwrap_or(Length::ZERO);
+                let tops: Vec<Length> = liftable.iter().map(|group| group.lifted(lift).set_height).collect();
+                groups.iter_mut().zip(tops).for_each(|(built, to)| built.to = to);
+                groups
+            },
+        )
     }
 
     /// Whether groups hold every case and fit the edge, asked as the search asks it.
@@ -283,10 +285,11 @@ impl<'f, 'r> Fit<'f, 'r> {
     }
 }
 
-/// Groups of which those that are alike are one.
-fn merged(groups: &[Built]) -> Vec<Built> {
+/// Groups of which those that are alike are one, but for the last, which are there already.
+fn merged(groups: &[Built], there: usize) -> Vec<Built> {
+    let (added, there) = groups.split_at(groups.len() - there);
     let mut all: Vec<Built> = Vec::new();
-    for built in groups {
+    for built in added {
         let alike = |other: &&mut Built| {
             other.size.tag == built.size.tag
                 && other.size.device == built.size.device
@@ -297,6 +300,7 @@ fn merged(groups: &[Built]) -> Vec<Built> {
             None => all.push(built.clone()),
         }
     }
+    all.extend_from_slice(there);
     all
 }
 
@@ -310,7 +314,7 @@ fn told(problem: &Problem<'_>, groups: &[Built]) -> Box<Ranked<'static>> {
     let told = described(groups.iter().map(Built::placed).collect(), &problem.situations, &problem.allowed);
     Box::new(Ranked {
         groups: Vec::new(),
-        kept: 0,
+        kept: problem.fixed.len(),
         cost: told.cost,
         states: told.states,
         allowed: told.allowed,

@@ -1,6 +1,7 @@
 //! The whole roof at once: one layout for each area, few sizes on the whole roof, least cost.
 //!
-//! Sizes that another outdoes in every area are left out first (`field`): replacing such a size by the other never raises the
+//! Areas whose devices that are there already hold by themselves cost nothing and need no size. Of the others, sizes that
+//! another outdoes in every area are left out first (`field`): replacing such a size by the other never raises the
 //! cost and adds no size. The runner-up plans are therefore of sizes that no other outdoes. An area's cheapest layout made of
 //! two given sizes is one number, found from the table of what one of each carries (`pairs`, kept in `costs`); which sizes the
 //! roof should have is then a question about those numbers alone (`sets`, with the proof). It is answered by good sets to begin
@@ -49,7 +50,7 @@ pub struct Asked {
 pub struct Plan<'r> {
     /// Cost of all layouts and of the sizes.
     pub cost: Money,
-    /// The sizes, in catalog order.
+    /// The sizes, in catalog order; of what is there already none.
     pub sizes: Vec<&'r Size>,
     /// The layout of each area, in the order in which the areas were given.
     pub layouts: Vec<Ranked<'r>>,
@@ -84,7 +85,8 @@ pub fn plan<'r>(roof: &'r Roof, options: &Options, asked: Asked, areas: &[usize]
     if !field.is_priced() {
         return None;
     }
-    if asked.sizes.is_none() && asked.size_price == Money::default() {
+    let free = asked.sizes.is_none() && asked.size_price == Money::default();
+    if free || field.areas() == 0 {
         return Some(each_alone(roof, &by_cost(options), areas));
     }
     let due = || options.watch.is_due();
@@ -121,7 +123,7 @@ pub fn plan<'r>(roof: &'r Roof, options: &Options, asked: Asked, areas: &[usize]
     Some(Plans { plans, by_sizes, alone: alone.is_finite().then(|| money(alone)), bound, finished: found.finished })
 }
 
-/// The plan where sizes are neither limited nor priced: each area as if it were alone.
+/// The plan where sizes are neither limited nor priced, or none is needed: each area as if it were alone.
 fn each_alone<'r>(roof: &'r Roof, by_cost: &Options, areas: &[usize]) -> Plans<'r> {
     let best = best_of_each(roof, by_cost, areas);
     let finished = best.iter().all(|best| best.finished);

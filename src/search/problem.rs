@@ -241,36 +241,46 @@ impl<'r> Problem<'r> {
         (1..i64::from(self.least_at_edge)).contains(&openings)
     }
 
+    /// Whether what is there already holds every case, and nothing has to be added.
+    pub(super) fn is_served(&self) -> bool {
+        let enough = self.least == 0 && !self.is_short_at_edge(self.edge_taken_there().1);
+        !self.fixed.is_empty() && enough && self.carries(&self.table(&self.allowable_levels(None), |_| None), &[])
+    }
+
     /// How many devices are there already.
     pub(super) fn devices_there(&self) -> u32 {
         devices(&self.fixed)
     }
 
-    /// Whether groups of candidates carry every case's demand by a table.
-    pub(super) fn carries(&self, table: &Table, groups: &[(usize, u32)]) -> bool {
-        if !self.fixed.is_empty() {
-            return self.carries_with_what_is_there(table, groups);
-        }
-        self.situations.iter().enumerate().all(|(case, situation)| {
-            let mut flows = [(0.0, 0); MOST_GROUPS];
-            for (slot, &(candidate, count)) in flows.iter_mut().zip(groups) {
-                *slot = (table.of(candidate)[case], count);
-            }
-            working_capacity(&flows, groups.len(), situation.case.blocked) >= situation.demand.m3_per_s()
+    /// Edge that the openings take up that are there already, nanometres, without gaps, and how many they are.
+    pub(super) fn edge_taken_there(&self) -> (i64, i64) {
+        let at_edge = self.fixed.iter().filter(|group| group.size.place == Place::Edge);
+        at_edge.fold((0, 0), |(edge, openings), group| {
+            let many = i64::from(group.count);
+            (edge + group.size.clear_width().nm().saturating_mul(many), openings + many)
         })
     }
 
-    /// Whether groups of candidates, with what is there behind them, carry every case's demand by a table.
-    fn carries_with_what_is_there(&self, table: &Table, groups: &[(usize, u32)]) -> bool {
-        self.situations.iter().enumerate().all(|(case, situation)| {
-            let mut flows = [(0.0, 0); MOST_OUTLETS];
-            let added = groups.iter().map(|&(candidate, count)| (table.of(candidate)[case], count));
-            for (slot, group) in flows.iter_mut().zip(added.chain(self.flows_there(table, case))) {
-                *slot = group;
-            }
-            let all = groups.len() + self.fixed.len();
-            working_capacity(&flows, all, situation.case.blocked) >= situation.demand.m3_per_s()
-        })
+    /// Whether groups of candidates carry every case's demand by a table.
+    pub(super) fn carries(&self, table: &Table, groups: &[(usize, u32)]) -> bool {
+        let holds = |(case, situation): (usize, &Situation<'_>)| {
+            self.capacity(table, case, groups) >= situation.demand.m3_per_s()
+        };
+        self.situations.iter().enumerate().all(holds)
+    }
+
+    /// What groups of candidates, with what is there behind them, carry in a case by a table.
+    pub(super) fn capacity(&self, table: &Table, case: usize, groups: &[(usize, u32)]) -> f64 {
+        let blocked = self.situations[case].case.blocked;
+        let added = groups.iter().map(|&(candidate, count)| (table.of(candidate)[case], count));
+        if self.fixed.is_empty() {
+            let mut flows = [(0.0, 0); MOST_GROUPS];
+            flows.iter_mut().zip(added).for_each(|(slot, group)| *slot = group);
+            return working_capacity(&flows, groups.len(), blocked);
+        }
+        let mut flows = [(0.0, 0); MOST_OUTLETS];
+        flows.iter_mut().zip(added.chain(self.flows_there(table, case))).for_each(|(slot, group)| *slot = group);
+        working_capacity(&flows, groups.len() + self.fixed.len(), blocked)
     }
 
     /// The groups at the lowest of their heights, with the highest they may be lifted to; behind them what is there, which

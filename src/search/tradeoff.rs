@@ -9,7 +9,7 @@ use std::ops::RangeInclusive;
 use rayon::prelude::*;
 
 use crate::device::Size;
-use crate::roof::Roof;
+use crate::roof::{Catchment, Roof};
 use crate::units::{Load, Money, System};
 
 use super::cure::{Cure, Relaxation, alone, relaxed};
@@ -122,7 +122,7 @@ pub fn tradeoff(roof: &Roof, options: &Options, area: usize, raises: &Raises) ->
 /// The roof with every load limit raised.
 pub(super) fn raised_by(roof: &Roof, raise: Load) -> Roof {
     let mut roof = roof.clone();
-    for limits in roof.areas.iter_mut().flat_map(|area| &mut area.limits) {
+    for limits in roof.areas.iter_mut().flat_map(Catchment::every_limit) {
         limits.load = limits.load.map(|load| load + raise);
     }
     roof

@@ -7,7 +7,7 @@ use crate::search::{PlanFront, UnbeatenPlan};
 use crate::units::Money;
 
 use super::super::{Fronted, Sized};
-use super::{Group, PlanSize, group, plan_size};
+use super::{Group, PlanSize, groups_at, plan_size};
 
 /// A layout of an area.
 #[derive(Serialize)]
@@ -64,7 +64,7 @@ pub(super) fn rows<'a>(sized: &Sized<'a, '_>, fronted: &'a Fronted<'_>) -> Vec<R
         count: row.count,
         width_m: row.width.m(),
         beyond_range: !ranked.beyond.is_empty(),
-        groups: ranked.groups.iter().map(|placed| group(placed, &site)).collect(),
+        groups: groups_at(ranked, &site),
     };
     opened.map(row).collect()
 }

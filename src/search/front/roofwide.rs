@@ -44,7 +44,8 @@ pub struct UnbeatenPlan<'r> {
     pub width: Length,
     /// The sizes it uses, in catalog order.
     pub sizes: Vec<&'r Size>,
-    /// The layout of each area at its lowest set heights, in the order in which the areas were given.
+    /// The layout of each area at its lowest set heights, in the order in which the areas were given; of an area with devices that
+    /// are there already, what is added.
     pub layouts: Vec<Vec<Group<'r>>>,
 }
 
@@ -114,7 +115,8 @@ fn sets(sizes: &[usize], price: Money) -> Vec<Vec<usize>> {
         return vec![sizes.to_vec()];
     }
     let chosen = |mask: u32| (0..sizes.len()).filter(|&bit| mask >> bit & 1 == 1).map(|bit| sizes[bit]).collect();
-    (1..1_u32 << sizes.len()).map(chosen).collect()
+    // None at all is enough where what is there already holds every area.
+    (0..1_u32 << sizes.len()).map(chosen).collect()
 }
 
 /// What plans are compared by, the first of equals known by what follows.

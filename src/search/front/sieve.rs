@@ -3,7 +3,7 @@
 /// Points met in the order of their first sum, asked for the least load of those that are no greater in the other two.
 ///
 /// For every count a staircase holds the points that are not beaten in the last sum and the load: the last sum rises, the
-/// load falls. A staircase serves a stretch of counts, as in a binary indexed tree, so that a question looks at a few.
+/// load falls. A staircase serves a stretch of counts, as in a binary indexed tree (which counts from one), so that a question looks at a few.
 pub(super) struct Sieve {
     staircases: Vec<Vec<Step>>,
 }
@@ -18,13 +18,13 @@ struct Step {
 impl Sieve {
     /// A sieve for counts up to `most`.
     pub(super) fn new(most: usize) -> Self {
-        Self { staircases: vec![Vec::new(); most + 1] }
+        Self { staircases: vec![Vec::new(); most + 2] }
     }
 
     /// The least load of a point with at most this count and at most this last sum; none where there is no such point.
     pub(super) fn least(&self, count: usize, rest: i64) -> Option<i64> {
         let mut least = None;
-        let mut at = count;
+        let mut at = count + 1;
         while at > 0 {
             let stairs = &self.staircases[at];
             if let Some(step) = stairs.partition_point(|step| step.rest <= rest).checked_sub(1) {
@@ -38,7 +38,7 @@ impl Sieve {
 
     /// Takes a point in; its first sum is none less than that of any point before.
     pub(super) fn add(&mut self, count: usize, rest: i64, load: i64) {
-        let mut at = count;
+        let mut at = count + 1;
         while at < self.staircases.len() {
             climb(&mut self.staircases[at], Step { rest, load });
             at += at & at.wrapping_neg();

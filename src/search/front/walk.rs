@@ -2,16 +2,16 @@
 
 use crate::roof::MOST_GROUPS;
 
-use super::super::dive::SLACK;
+use super::super::dive::{SLACK, needed};
 use super::super::problem::{Problem, Table};
 use super::super::watch::Stopped;
 use super::screens::Screens;
 use super::sieve::Sieve;
-use super::{Kept, Worst, at_lowest, is_priced, sums, worst};
+use super::{Kept, Worst, is_priced, standing_groups, sums, worst};
 
 /// The layouts that are not beaten, by cost, then load, count and width; where cost plays no part by width, count and load.
 pub(super) fn walk(problem: &Problem<'_>) -> Result<Vec<Kept>, Stopped> {
-    if problem.candidates.is_empty() {
+    if problem.candidates.is_empty() && problem.fixed.is_empty() {
         return Ok(Vec::new());
     }
     let mut walk = Walk::new(problem);
@@ -72,7 +72,11 @@ struct Used {
 }
 
 impl Used {
-    const NOTHING: Self = Self { lead: 0, rest: 0, count: 0, openings: 0, edge: 0, top: usize::MAX };
+    /// Of what is there, which takes edge and counts for nothing else.
+    fn of_what_is_there(problem: &Problem<'_>) -> Self {
+        let (edge, openings) = problem.edge_taken_there();
+        Self { lead: 0, rest: 0, count: 0, openings, edge, top: usize::MAX }
+    }
 
     fn with(mut self, piece: &Piece, count: u32) -> Self {
         let many = i64::from(count);
@@ -121,6 +125,7 @@ impl<'p, 'r> Walk<'p, 'r> {
         let classes = problem.classes();
         let limits = classes.iter().map(|&class| lowest(&problem.allowable_levels(class))).collect();
         let most = lowest(&problem.allowed);
+        let needed = needed(problem, &most);
         let cases = problem.situations.len();
         let pieces = pieces(problem, &classes);
         let mut greatest = vec![0.0_f64; (pieces.len() + 1) * cases];
@@ -138,7 +143,7 @@ impl<'p, 'r> Walk<'p, 'r> {
             most,
             greatest,
             greatest_lead,
-            needed: needed(problem),
+            needed,
             screens: Screens::default(),
             sieve: Sieve::new(problem.most as usize),
             low: 0,
@@ -156,8 +161,12 @@ impl<'p, 'r> Walk<'p, 'r> {
     fn collect(&mut self) {
         (self.high, self.room) = (i64::MAX, ROOM);
         self.pass.clear();
+        let there = Used::of_what_is_there(self.problem);
+        if self.low == 0 && self.problem.is_served() {
+            self.take(&[], there);
+        }
         for groups in 1..=self.problem.mix {
-            self.extend(groups, 0, 0, Used::NOTHING);
+            self.extend(groups, 0, 0, there);
         }
     }
 
@@ -298,7 +307,7 @@ impl<'p, 'r> Walk<'p, 'r> {
                 continue;
             }
             let least = self.sieve.least(entry.count as usize, entry.rest);
-            let Some(worst) = worst(self.problem, &at_lowest(self.problem, groups)) else { continue };
+            let Some(worst) = worst(self.problem, &standing_groups(self.problem, groups)) else { continue };
             if least.is_some_and(|least| worst.depth.nm() >= least) {
                 continue;
             }
@@ -332,16 +341,4 @@ fn pieces(problem: &Problem<'_>, classes: &[Option<i64>]) -> Vec<Piece> {
         }
     };
     problem.candidates.iter().map(piece).collect()
-}
-
-/// Total that a layout must have in each case, whatever is blocked (bound 1 of `dive`).
-fn needed(problem: &Problem<'_>) -> Vec<f64> {
-    let most = f64::from(problem.most);
-    let of_case = |situation: &crate::roof::Situation<'_>| {
-        let left = most - f64::from(situation.case.blocked);
-        let share = if left > 0.0 { most / left } else { f64::INFINITY };
-        // A little less, so that rounding never makes a bound of what is none.
-        situation.demand.m3_per_s() * share * (1.0 - SLACK)
-    };
-    problem.situations.iter().map(of_case).collect()
 }

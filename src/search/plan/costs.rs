@@ -41,17 +41,20 @@ impl Costs {
         self.sizes
     }
 
-    /// Lowers every cost to that of other costs, with so much more in each area; `places` says where each area stands there.
-    pub(super) fn lower_to(&mut self, other: &Self, places: &[usize], more: &[f64]) {
-        let areas = self.areas.max(1);
-        for (row, theirs) in self.pairs.chunks_mut(areas).zip(other.pairs.chunks(areas)) {
-            for ((cost, &place), more) in row.iter_mut().zip(places).zip(more) {
-                *cost = cost.min(theirs[place] + more);
+    /// Lowers every cost to that of other costs, with so much more in each area; `places` says where each area stands there,
+    /// none where nothing is needed for it.
+    pub(super) fn lower_to(&mut self, other: &Self, places: &[Option<usize>], more: &[f64]) {
+        let lower_row = |row: &mut [f64], theirs: &[f64]| {
+            for ((cost, place), more) in row.iter_mut().zip(places).zip(more) {
+                *cost = cost.min(place.map_or(0.0, |place| theirs[place]) + more);
             }
+        };
+        let none = vec![0.0; other.areas];
+        let theirs = other.pairs.chunks(other.areas.max(1)).chain(std::iter::repeat(&none[..]));
+        for (row, theirs) in self.pairs.chunks_mut(self.areas.max(1)).zip(theirs) {
+            lower_row(row, theirs);
         }
-        for ((least, &place), more) in self.least.iter_mut().zip(places).zip(more) {
-            *least = least.min(other.least[place] + more);
-        }
+        lower_row(&mut self.least, &other.least);
     }
 
     pub(super) fn areas(&self) -> usize {

@@ -1,6 +1,7 @@
 //! The sizes worth looking at, and the areas by what they have alike.
 //!
-//! Areas that differ in demand and edge alone share one table of what one of each size carries.
+//! Areas that differ in demand and edge alone share one table of what one of each size carries. An area with devices that are
+//! there already has one of its own; where these hold by themselves it needs no size, and is left out.
 //!
 //! # Sizes that are left out
 //!
@@ -47,8 +48,12 @@ pub(super) struct Asking {
 impl<'r> Field<'r> {
     /// The sizes that may stand somewhere and that no other outdoes.
     pub(super) fn new(roof: &'r Roof, options: &Options, areas: &[usize]) -> Self {
-        let groups = alike::groups(roof, options, areas);
+        let (bare, built): (Vec<usize>, Vec<usize>) =
+            areas.iter().partition(|&&area| roof.areas[area].existing.is_empty());
+        let mut groups = alike::groups(roof, options, &bare);
+        groups.extend(built.into_iter().map(|area| vec![area]));
         let alike: Vec<Alike<'r>> = groups.par_iter().map(|areas| Alike::new(roof, options, areas)).collect();
+        let alike = alike.into_iter().filter(|alike| !alike.problem.is_served()).collect();
         let field = Self { sizes: Vec::new(), alike };
         let sizes = not_outdone_in_all(roof, std::slice::from_ref(&field));
         field.with_sizes(sizes)
@@ -58,7 +63,7 @@ impl<'r> Field<'r> {
         self.alike.iter().any(|alike| alike.candidates[size].is_some())
     }
 
-    /// How many areas there are.
+    /// How many areas need a size.
     pub(super) fn areas(&self) -> usize {
         self.alike.iter().map(|alike| alike.areas.len()).sum()
     }

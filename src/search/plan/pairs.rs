@@ -16,7 +16,6 @@
 
 use rayon::prelude::*;
 
-use crate::roof::working_capacity;
 use crate::search::dive::{SLACK, rounded_up};
 use crate::search::problem::{Problem, Table};
 
@@ -161,14 +160,14 @@ fn carries_more(table: &Table, size: usize, other: usize) -> bool {
     table.of(size).iter().zip(table.of(other)).all(|(size, other)| size >= other)
 }
 
-/// Whether the openings of some groups, and the gaps between them, fit an edge.
+/// Whether the openings of some groups and those that are there, with the gaps between all, fit an edge.
 fn fits(problem: &Problem<'_>, edge: Option<i64>, groups: &[(usize, u32)]) -> bool {
     let Some(edge) = edge else { return true };
-    let (mut widths, mut openings) = (0_i64, 0_i64);
+    let (mut widths, mut openings) = problem.edge_taken_there();
     for &(index, count) in groups {
         let candidate = &problem.candidates[index];
         if candidate.at_edge {
-            widths += candidate.width.saturating_mul(i64::from(count));
+            widths = widths.saturating_add(candidate.width.saturating_mul(i64::from(count)));
             openings += i64::from(count);
         }
     }
@@ -201,7 +200,8 @@ impl<'f, 'r> Ladder<'f, 'r> {
         self.count = self.problem.least.saturating_sub(there).max(1);
         self.most = self.problem.most.saturating_sub(there);
         let candidates = &self.problem.candidates;
-        let openings = if candidates[self.beside.0].at_edge { i64::from(there) } else { 0 };
+        let beside = if candidates[self.beside.0].at_edge { i64::from(there) } else { 0 };
+        let openings = self.problem.edge_taken_there().1 + beside;
         if candidates[self.index].at_edge {
             self.count = self.count.max(self.problem.short_at_edge(openings));
         } else if self.problem.is_short_at_edge(openings) {
@@ -226,23 +226,25 @@ impl<'f, 'r> Ladder<'f, 'r> {
         let mut groups = [self.beside, (self.index, self.count)];
         groups.sort_unstable();
         self.capacities.clear();
-        self.capacities.extend(self.problem.situations.iter().enumerate().map(|(case, situation)| {
-            let flows = groups.map(|(candidate, count)| (self.table.of(candidate)[case], count));
-            working_capacity(&flows, flows.len(), situation.case.blocked)
-        }));
+        let cases = 0..self.problem.situations.len();
+        self.capacities.extend(cases.map(|case| self.problem.capacity(self.table, case, &groups)));
     }
 
-    /// A count that the least is not under: the blocked devices are the one that carries most and others.
+    /// A count that the least is not under: the blocked devices are the one that carries most and others. Beside what is there
+    /// they need not be of these sizes, but the first of them carries no less than one of these.
     fn least_for(&self, area: &Asking) -> u32 {
         let (other, there) = self.beside;
         let mut least = 1;
         for (case, (situation, &demand)) in self.problem.situations.iter().zip(&area.demands).enumerate() {
             let (one, beside) = (self.table.of(self.index)[case], self.table.of(other)[case]);
+            let any_there = !self.problem.fixed.is_empty();
+            let carried_there = if any_there { self.problem.carried_there(self.table, case, 0).0 } else { 0.0 };
             let gone = match situation.case.blocked {
                 0 => 0.0,
+                _ if any_there => one.max(beside),
                 blocked => one.max(beside) + f64::from(blocked - 1) * one.min(beside),
             };
-            let missing = demand + gone - beside * f64::from(there);
+            let missing = demand + gone - beside * f64::from(there) - carried_there;
             if demand > 0.0 && missing > 0.0 {
                 // A little less, so that rounding never makes a bound of what is none.
                 least = least.max(rounded_up(missing / one * (1.0 - SLACK)));

@@ -3,6 +3,9 @@
 //! What the cheapest layout of two sizes costs in an area is then the least, over the raises, of the openings at that limit and
 //! the strength that it takes: one number as before, so the sets of sizes are searched as before. A size goes only where one
 //! other outdoes it at every raise: areas may be raised unlike, and none may need another size for it.
+//!
+//! Raised enough, what is there already may hold an area by itself; where it does so in all of them, nothing is added at all,
+//! and that is weighed against the best set of sizes.
 
 use rayon::prelude::*;
 
@@ -13,7 +16,7 @@ use crate::search::tradeoff::{Raises, raised_by};
 use crate::search::{Options, best_of};
 use crate::units::{Load, Money};
 
-use super::costs::Costs;
+use super::costs::{Costs, SizeSet};
 use super::ending::Ending;
 use super::field::{Field, not_outdone_in_all};
 use super::sets::Search;
@@ -27,7 +30,7 @@ pub struct StiffenedPlan {
     pub cost: Money,
     /// Of it, the strength.
     pub strength: Money,
-    /// The sizes, in catalog order.
+    /// The sizes, in catalog order; of what is there already none.
     pub sizes: Vec<Size>,
     /// Each area's raise and layout, in the order in which the areas were given.
     pub areas: Vec<StiffenedArea>,
@@ -42,7 +45,7 @@ pub struct StiffenedArea {
     pub strength: Money,
     /// What its openings cost.
     pub openings: Money,
-    /// Its layout, under the name of the area.
+    /// Its layout, under the name of the area; where devices are there already, what is added.
     pub layout: Given,
 }
 
@@ -74,7 +77,11 @@ pub fn stiffened_plan(
     let price = asked.size_price.millionths() as f64;
     let most = asked.sizes.map_or(sizes.len(), |sizes| sizes as usize);
     let found = Search::new(&costs, price, &due).best(most, 1);
-    let set = found.sets.first().filter(|_| found.finished)?;
+    if !found.finished {
+        return None;
+    }
+    let bare = nothing_added(roof, structure, &raised, &fields, areas).map(|cost| SizeSet { cost, sizes: Vec::new() });
+    let set = bare.into_iter().chain(found.sets).min_by(|a, b| a.cost.total_cmp(&b.cost))?;
     let indices: Vec<usize> = set.sizes.iter().map(|&size| sizes[size]).collect();
     let by_cost = Options { watch: crate::search::Watch::default(), ..by_cost(options) };
     let one = |&area: &usize| cheapest(structure, &raised, &by_cost, &indices, area);
@@ -100,7 +107,7 @@ fn costs(
     for ((raise, _), field) in raised.iter().zip(fields) {
         let own = field.order();
         let place = |area: &usize| own.iter().position(|other| other == area);
-        let places: Vec<usize> = order.iter().map(place).collect::<Option<_>>()?;
+        let places: Vec<Option<usize>> = order.iter().map(place).collect();
         let strength = |&area: &usize| structure.cost(roof.areas[area].area, *raise).millionths() as f64;
         let strength: Vec<f64> = order.iter().map(strength).collect();
         let costs = pairs::costs(field, ending)?;
@@ -110,6 +117,22 @@ fn costs(
         }
     }
     least
+}
+
+/// The strength with which what is there already holds every area by itself; none where no raise is enough for one of them.
+fn nothing_added(
+    roof: &Roof,
+    structure: &Structure,
+    raised: &[(Load, Roof)],
+    fields: &[Field<'_>],
+    areas: &[usize],
+) -> Option<f64> {
+    let needs: Vec<Vec<usize>> = fields.iter().map(Field::order).collect();
+    let strength = |&area: &usize| {
+        let served = raised.iter().zip(&needs).filter(|(_, needs)| !needs.contains(&area));
+        served.map(|((raise, _), _)| structure.cost(roof.areas[area].area, *raise).millionths()).min()
+    };
+    areas.iter().map(strength).sum::<Option<i64>>().map(|cost| cost as f64)
 }
 
 /// The cheapest layout of some sizes in an area over all raises, strength included, the least raise of equals.
@@ -135,7 +158,7 @@ fn cheapest(
             layout: Given {
                 name: roof.areas[area].name.clone(),
                 area,
-                groups: layout.groups.iter().map(group).collect(),
+                groups: layout.added().iter().map(group).collect(),
             },
         })
     };
