@@ -230,7 +230,7 @@ impl Used {
     /// Of what is there, which takes edge and counts for nothing else.
     fn of_what_is_there(problem: &Problem<'_>) -> Self {
         let (edge, openings) = problem.edge_taken_there();
-        Self { edge, openings, ..Self::default() }
+        Self { openings, edge, ..Self::default() }
     }
 
     /// With one more group.
