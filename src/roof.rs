@@ -23,7 +23,7 @@ mod rainfall;
 mod situation;
 mod surface;
 
-pub use basis::{AreaBasis, Basis};
+pub use basis::{AreaBasis, Basis, StandsIn};
 pub use facts::{Facts, Primary, Risk, Separation, Side, Wall, WallRule};
 pub use given::{Given, GivenGroup};
 pub use ponding::Ponding;

@@ -29,7 +29,7 @@ mod set;
 pub use amount::Amount;
 pub use basis::{Rain, bases, rain, return_period};
 pub use finding::{Finding, Required, Verdict, findings};
-pub use kind::{Bounds, Family, Kind, Measure, Number, Open, Role, Takes, Term};
+pub use kind::{Bounds, Datum, Family, Kind, Measure, Number, Open, Role, Takes, Term};
 pub use kinds::KINDS;
 pub use place::{Misfit, Stand, edge_used, stands};
 pub use restriction::Restriction;

@@ -110,12 +110,18 @@ pub enum Why<'r> {
         /// Every size with the rule it breaks.
         misfits: Vec<(&'r Size, Misfit)>,
     },
+    /// A binding rule is broken whatever is added.
+    Breaks(Broken),
     /// Sizes may stand, but not as many as the area asks for.
     NothingFits {
         /// Least number of devices.
         least: u32,
         /// The binding rule that asks for so many, where one does.
         rule: Option<RuleAt>,
+        /// Least number of openings at the edge, and the binding rule that asks for so many.
+        at_edge: Option<(u32, RuleAt)>,
+        /// Greatest number of devices.
+        most: u32,
     },
     /// No layout keeps under the limits.
     Limits {
@@ -135,6 +141,15 @@ pub enum Why<'r> {
     },
     /// No layout holds, but the search was ended before it knew why.
     Stopped,
+}
+
+/// A binding rule that no layout of an area keeps, by the area itself or by what is there already.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct Broken {
+    /// The rule.
+    pub rule: RuleAt,
+    /// Which group of what is there breaks it; none where the area does.
+    pub there: Option<usize>,
 }
 
 /// The answer for one area.
@@ -225,6 +240,9 @@ fn best_of<'r>(problem: &Problem<'r>, options: &Options) -> Sought<'r> {
 
 /// Why an area has no layout.
 fn none<'r>(problem: Problem<'r>, misfits: Vec<(&'r Size, Misfit)>) -> Outcome<'r> {
+    if let Some(broken) = problem.broken {
+        return Outcome::Infeasible(Why::Breaks(broken));
+    }
     let nothing_stands = problem.candidates.is_empty() && problem.fixed.is_empty();
     let why = || infeasible::why(problem).unwrap_or(Why::Stopped);
     Outcome::Infeasible(if nothing_stands { Why::NothingStands { misfits } } else { why() })

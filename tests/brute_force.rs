@@ -695,7 +695,7 @@ fn the_plan_with_stronger_areas_is_that_of_trying_everything() {
                 let here = alone(&whole, area);
                 let at = |steps: u32| {
                     let raise = step * f64::from(steps);
-                    let (roof, _) = search::relaxed(&here, &options, Relaxation::Load(raise));
+                    let (roof, _) = search::relaxed(&here, &options, &Relaxation::Load(raise));
                     let strength = structure.cost(roof.areas[0].area, raise).millionths();
                     let cost = |groups: &Vec<(usize, u32)>| -> i64 {
                         let of_group = |&(size, count): &(usize, u32)| {
@@ -731,7 +731,7 @@ fn the_plan_with_stronger_areas_is_that_of_trying_everything() {
         let sizes = (asked.size_price * plan.sizes.len() as u32).millionths();
         assert_eq!(parts.sum::<i64>() + sizes, plan.cost.millionths(), "seed {seed}: the parts make the whole");
         for (area, &index) in plan.areas.iter().zip(&areas) {
-            let (roof, _) = search::relaxed(&alone(&whole, index), &options, Relaxation::Load(area.raise));
+            let (roof, _) = search::relaxed(&alone(&whole, index), &options, &Relaxation::Load(area.raise));
             let asked = Asked { freeboard: options.freeboard };
             let groups = with_what_is_there(&whole, index, &area.layout.groups());
             assert!(roof.situations(0).iter().all(|situation| layout::holds(&groups, situation, asked)), "seed {seed}");
@@ -744,12 +744,12 @@ fn the_plan_with_stronger_areas_is_that_of_trying_everything() {
 }
 
 /// One step less of a change, in the steps of a US roof; none where that is no change at all.
-fn a_step_less(change: Relaxation) -> Option<Relaxation> {
+fn a_step_less(change: &Relaxation) -> Option<Relaxation> {
     let inches = |length: Length, step: f64| {
         let less = Length::from_nm(length.nm() - Length::inches(step).nm());
         (less > Length::ZERO).then_some(less)
     };
-    match change {
+    match *change {
         Relaxation::Load(more) => Some(more - Load::psf(0.1)).filter(|less| less.to_psf() > 1e-6).map(Relaxation::Load),
         Relaxation::Depth(more) => inches(more, 0.01).map(Relaxation::Depth),
         Relaxation::Limits(more) => inches(more, 0.01).map(Relaxation::Limits),
@@ -761,7 +761,7 @@ fn a_step_less(change: Relaxation) -> Option<Relaxation> {
         Relaxation::Freeboard(less) => inches(less, 0.01).map(Relaxation::Freeboard),
         Relaxation::Edge(more) => inches(more, 3.0).map(Relaxation::Edge),
         Relaxation::Demand(factor) => (factor < 0.9989).then_some(Relaxation::Demand(factor + 0.001)),
-        Relaxation::Rule(_) => None,
+        Relaxation::Rules(_) => None,
     }
 }
 
@@ -782,8 +782,8 @@ fn cures_are_the_least_changes_that_cure() {
             assert!(cure.layout().is_some(), "seed {seed}: {:?}", cure.change);
             assert!(!everything(&cure.roof, &cure.options).is_empty(), "seed {seed}: {:?}", cure.change);
             cured += 1;
-            if let Some(less) = a_step_less(cure.change) {
-                let (roof, options) = search::relaxed(&roof, &options, less);
+            if let Some(less) = a_step_less(&cure.change) {
+                let (roof, options) = search::relaxed(&roof, &options, &less);
                 assert!(everything(&roof, &options).is_empty(), "seed {seed}: {less:?} cures too");
                 steps += 1;
             }
@@ -825,7 +825,7 @@ fn a_stronger_roof_is_weighed_at_every_step() {
         };
         let total = |step: i32| {
             let raise = structure.step.expect("given") * f64::from(step);
-            let (roof, options) = search::relaxed(&roof, &options, Relaxation::Load(raise));
+            let (roof, options) = search::relaxed(&roof, &options, &Relaxation::Load(raise));
             let cost = least_cost(&roof, &options)?.millionths();
             Some(cost + structure.cost(roof.areas[0].area, raise).millionths())
         };
@@ -864,8 +864,8 @@ fn what_binds_is_the_least_change_that_saves_as_much() {
             assert!(told < now, "seed {seed}: {:?}", bound.change);
             assert_eq!(least_cost(&bound.roof, &bound.options), Some(told), "seed {seed}: {:?}", bound.change);
             binding += 1;
-            if let Some(less) = a_step_less(bound.change) {
-                let (roof, options) = search::relaxed(&roof, &options, less);
+            if let Some(less) = a_step_less(&bound.change) {
+                let (roof, options) = search::relaxed(&roof, &options, &less);
                 assert!(least_cost(&roof, &options) > Some(told), "seed {seed}: {less:?} saves as much");
             }
         }
@@ -878,7 +878,7 @@ fn what_binds_is_the_least_change_that_saves_as_much() {
                 Relaxation::Devices(_) => Relaxation::Devices(1),
                 _ => continue,
             };
-            let (roof, options) = search::relaxed(&roof, &options, half);
+            let (roof, options) = search::relaxed(&roof, &options, &half);
             assert_eq!(least_cost(&roof, &options), Some(now), "seed {seed}: {half:?} saves");
             idle += 1;
         }
@@ -952,7 +952,7 @@ fn treads_are_the_least_costs_at_every_step() {
                 assert!(told.is_some() && told != before, "seed {seed}: {:?} is a riser", tread.change);
                 risers += usize::from(before.is_some());
             }
-            let (roof, options) = search::relaxed(&roof, &by_cost, Relaxation::Load(raise));
+            let (roof, options) = search::relaxed(&roof, &by_cost, &Relaxation::Load(raise));
             assert_eq!(told, cost(&roof, &options), "seed {seed}: raised by {step} steps");
         }
         assert!(reached.next().is_none(), "seed {seed}: every tread is at a step");

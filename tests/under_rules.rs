@@ -7,7 +7,9 @@ use std::sync::Arc;
 use brimline::device::{Choice, Device, Place, RingDrain, Size};
 use brimline::roof::layout::{self, Asked, Group};
 use brimline::roof::{Case, Catchment, Facts, Limits, Parapet, Primary, Roof, Situation, Storm, Surface, demand};
-use brimline::rules::{self, Amount, Applied, Bound, KINDS, Kind as RuleKind, Known, Rule, RuleSet, Rulebook, Verdict};
+use brimline::rules::{
+    self, Amount, Applied, Bound, KINDS, Kind as RuleKind, Known, Rule, RuleAt, RuleSet, Rulebook, Verdict,
+};
 use brimline::search::{self, Criterion, Options, Outcome, PlanAsked, Relaxation, Watch};
 use brimline::units::{Area, Intensity, Length, Load, Money, System};
 
@@ -354,11 +356,44 @@ fn dice(seed: u64) -> Dice {
     Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15))
 }
 
+/// Sets with only those of their rules that are kept.
+fn only(asks: &[Asks], keeps: impl Fn(&RuleAt) -> bool) -> Vec<Asks> {
+    let of_set = |(set, one): (usize, &Asks)| {
+        let all = (0..one.each_without().len()).rev().map(|rule| RuleAt { set, rule });
+        all.filter(|at| !keeps(at)).fold(*one, |left, at| left.each_without().remove(at.rule))
+    };
+    asks.iter().enumerate().map(of_set).collect()
+}
+
+/// The rules said to stand against each other leave no layout, and leave one without any of them; several that are to be waived
+/// together cure, and no longer do with one of them back. How many roofs say either, of two rules or more.
+fn check_together(roof: &Roof, options: &Options, asks: &[Asks], cures: &search::Cures, seed: u64) -> usize {
+    let holds = |asks: &[Asks]| !holding(roof, options, 0, asks).is_empty();
+    let conflict = &cures.conflict;
+    if !conflict.is_empty() {
+        assert!(!holds(&only(asks, |at| conflict.contains(at))), "seed {seed}: {conflict:?} of {asks:?}");
+        for out in conflict {
+            assert!(holds(&only(asks, |at| conflict.contains(at) && at != out)), "seed {seed}: {out:?} of {asks:?}");
+        }
+    }
+    let several = cures.found.iter().find_map(|cure| match &cure.change {
+        Relaxation::Rules(waived) if waived.len() > 1 => Some(waived),
+        _ => None,
+    });
+    if let Some(waived) = several {
+        assert!(holds(&only(asks, |at| !waived.contains(at))), "seed {seed}: {waived:?} of {asks:?}");
+        for back in waived {
+            assert!(!holds(&only(asks, |at| !waived.contains(at) || at == back)), "seed {seed}: {back:?} of {asks:?}");
+        }
+    }
+    usize::from(conflict.len() > 1 || several.is_some())
+}
+
 /// The layouts listed, all of them kept, are those that trying everything finds; each is said to keep every binding rule; where
 /// there are none, every rule whose waiver is offered as a cure cures, and no other would.
 #[test]
 fn binding_sets_leave_what_trying_everything_leaves() {
-    let (mut some, mut none, mut waived, mut with_rules_alone) = (0, 0, 0, 0);
+    let (mut some, mut none, mut waived, mut with_rules_alone, mut together) = (0, 0, 0, 0, 0);
     for seed in 1..=1500_u64 {
         let mut dice = dice(seed);
         let asks = asks(&mut dice);
@@ -373,11 +408,12 @@ fn binding_sets_leave_what_trying_everything_leaves() {
             let offered: BTreeSet<(usize, usize)> = cures
                 .found
                 .iter()
-                .filter_map(|cure| match cure.change {
-                    Relaxation::Rule(at) => Some((at.set, at.rule)),
+                .filter_map(|cure| match &cure.change {
+                    Relaxation::Rules(waived) if waived.len() == 1 => Some((waived[0].set, waived[0].rule)),
                     _ => None,
                 })
                 .collect();
+            together += check_together(&roof, &options, &asks, &cures, seed);
             for (set, one) in asks.iter().enumerate() {
                 for (rule, lesser) in one.each_without().into_iter().enumerate() {
                     let mut left = asks.clone();
@@ -405,6 +441,7 @@ fn binding_sets_leave_what_trying_everything_leaves() {
     }
     assert!(some > 300 && none > 300, "{some} with layouts, {none} without");
     assert!(waived > 100 && with_rules_alone > 150, "{waived} rules waived, {with_rules_alone} where rules forbid");
+    assert!(together > 50, "{together} roofs with rules against each other");
 }
 
 impl Asks {

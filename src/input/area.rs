@@ -263,6 +263,7 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
         walls.as_ref().map(|walls| walls.one_by_one.clone()),
         limits.as_ref().map(|limits| limits.general),
     );
+    let roof_at_wall_assumed = section.get("roof_at_wall").is_none() && !sloped;
     let receives = read_receives(section, taken, &called).unwrap_or_default();
     if let Some(cell) = section.get("count") {
         blocked_under_count(section, setting, count.as_ref(), Some(&cell.span()), Some(&called));
@@ -294,7 +295,7 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
             limits: limits?.in_case,
             existing: Vec::new(),
             channel: optional(channel)?,
-            facts: facts?,
+            facts: Facts { roof_at_wall_assumed, ..facts? },
         })
     };
     Given { area: whole(), name, kinds, receives }

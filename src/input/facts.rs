@@ -32,6 +32,7 @@ pub(super) fn read(
             None => project_risk?,
         },
         discharge: optional(discharge)?,
+        roof_at_wall_assumed: false,
     })
 }
 

@@ -11,7 +11,7 @@ use crate::units::{Area, Intensity, Length, Load, ReturnPeriod};
 
 use super::page::{self, Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Format, check, json, notes, ranking, written};
+use super::{Format, check, json, notes, ranking, rules, written};
 
 /// What a report of values solved for is made of.
 #[derive(Clone, Copy, Debug)]
@@ -55,6 +55,7 @@ fn blocks(backsolved: &Backsolved<'_, '_>) -> Vec<Block> {
     let roof = backsolved.roof;
     let mut blocks = vec![Block::Title(format!("{}: what given layouts could take", roof.title))];
     blocks.extend(ranking::situation(roof, words));
+    blocks.extend(rules::over(roof, backsolved.options, words));
     let mut area_before = None;
     for (checked, solved) in backsolved.layouts {
         if area_before.replace(checked.given.area) != Some(checked.given.area) {
@@ -78,11 +79,15 @@ fn blocks(backsolved: &Backsolved<'_, '_>) -> Vec<Block> {
     }
     let told = told(backsolved);
     blocks.push(Block::Heading("How to read this".into()));
-    blocks.push(Block::Text(
+    let own_rain = if backsolved.options.rules.sets.is_empty() {
+        ""
+    } else {
+        " The rain of rule sets rises and falls with the design rain, as many times as that; their other rules are not asked."
+    };
+    blocks.push(Block::Text(format!(
         "Each value stands alone: all else is as given, and in every case the layout just holds. Sills move and openings change \
-         all together. Whether edge, parapet and code allow it is not asked."
-            .into(),
-    ));
+         all together. Whether edge, parapet and code allow it is not asked.{own_rain}"
+    )));
     blocks.extend(notes::blocks(&told, words));
     blocks
 }
@@ -163,7 +168,8 @@ fn lines(roof: &Roof, checked: &Checked<'_>, solved: &Solved, words: Words) -> V
         Solved::Limit { load, depth } => limits(roof, checked, *load, *depth, words),
         Solved::Blocked(more) => {
             let now: Vec<_> = roof.cases.iter().map(|case| case.blocked.to_string()).collect();
-            let now = if now.len() == 1 { now[0].clone() } else { format!("{} by case", now.join(", ")) };
+            let one = now.iter().all(|blocked| *blocked == now[0]);
+            let now = if one { now[0].clone() } else { format!("{} by case", now.join(", ")) };
             let holds = match more {
                 None => "fails as it is".into(),
                 Some(0) => "no more in any case".into(),

@@ -432,6 +432,8 @@ fn rows(checks: &Checks<'_, '_>) -> String {
 struct Document<'a> {
     format: &'static str,
     title: &'a str,
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    rule_sets: Vec<rules::Over<'a>>,
     areas: Vec<OfArea<'a>>,
     #[serde(skip_serializing_if = "Option::is_none")]
     worst_first: Option<Vec<mend::OfFailing<'a>>>,
@@ -543,6 +545,7 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
     let document = Document {
         format: "brimline check 1",
         title: &roof.title,
+        rule_sets: rules::over_in_document(checks.roof, &checks.options.rules),
         areas: checks.areas.iter().map(area).collect(),
         worst_first: mend::worst_first(checks),
         assumptions: notes::assumptions(&told),

@@ -11,7 +11,7 @@ use super::words::{self, Words, list, trimmed};
 
 pub(super) fn blocks(opened: &Opened<'_>, book: &Rulebook, words: Words) -> Vec<Block> {
     let mut blocks = Vec::new();
-    blocks.extend(rules::contradiction(book, &opened.cures).map(Block::Text));
+    blocks.extend(rules::contradiction(book, opened.conflict, words).map(Block::Text));
     if let [(_, first), ..] = &opened.cures[..] {
         let order = if first.cost.is_some() { ", the cheapest openings first" } else { "" };
         blocks.push(Block::Text(format!("Any one of these would cure it, the least of each kind{order}:")));
@@ -53,7 +53,7 @@ fn stopped(opened: &Opened<'_>) -> Option<Block> {
 
 /// Kinds of change as alternatives.
 fn kinds(changes: &[Relaxation]) -> String {
-    let kinds: Vec<_> = changes.iter().map(|change| bare(*change)).collect();
+    let kinds: Vec<_> = changes.iter().map(|change| bare(change)).collect();
     kinds.split_last().map_or(String::new(), |(last, others)| match others {
         [] => (*last).to_string(),
         others => format!("{} or {last}", others.join(", ")),
@@ -65,12 +65,12 @@ fn line(cure: &Cure, layout: &Ranked<'_>, book: &Rulebook, words: Words) -> Stri
 }
 
 fn priced_layout(cure: &Cure, layout: &Ranked<'_>, words: Words) -> String {
-    let cost = layout.cost.map_or(String::new(), |cost| format!(", {}", priced(cure.change, cost)));
+    let cost = layout.cost.map_or(String::new(), |cost| format!(", {}", priced(&cure.change, cost)));
     format!("{}{cost}", words.layout(layout))
 }
 
 /// A cost; of openings that no catalog has, what those they replace would cost.
-fn priced(change: Relaxation, cost: Money) -> String {
+fn priced(change: &Relaxation, cost: Money) -> String {
     match change {
         Relaxation::Width(_) | Relaxation::Height(_) => format!("at least {}", words::money(cost)),
         _ => words::money(cost),
@@ -103,7 +103,10 @@ fn change(cure: &Cure, layout: &Ranked<'_>, book: &Rulebook, words: Words) -> St
         Relaxation::Demand(factor) => {
             format!("demand - {} %, to {}", trimmed((1.0 - factor) * 100.0, 1), words.flow(cure.roof.demands[0]))
         }
-        Relaxation::Rule(at) => format!("without {}", rules::named(book, at)),
+        Relaxation::Rules(ref waived) => {
+            let waived: Vec<String> = waived.iter().map(|&at| rules::named(book, at, words)).collect();
+            format!("without {}", list(&waived))
+        }
     }
 }
 
@@ -125,7 +128,7 @@ fn listed(texts: impl Iterator<Item = String>) -> String {
 }
 
 /// What a change is of, without its amount.
-pub(super) fn bare(change: Relaxation) -> &'static str {
+pub(super) fn bare(change: &Relaxation) -> &'static str {
     match change {
         Relaxation::Load(_) => "a greater load limit",
         Relaxation::Depth(_) => "a greater depth limit",
@@ -138,13 +141,13 @@ pub(super) fn bare(change: Relaxation) -> &'static str {
         Relaxation::Edge(_) => "a longer edge",
         Relaxation::Freeboard(_) => "less freeboard",
         Relaxation::Demand(_) => "less demand",
-        Relaxation::Rule(_) => "a rule less",
+        Relaxation::Rules(_) => "a rule less",
     }
 }
 
 /// The amount of a change in SI, with the key that JSON gives it.
-pub(super) fn amount(change: Relaxation) -> (&'static str, f64) {
-    match change {
+pub(super) fn amount(change: &Relaxation) -> (&'static str, f64) {
+    match *change {
         Relaxation::Load(more) => ("load_limit_more_pa", more.pa()),
         Relaxation::Depth(more) => ("depth_limit_more_m", more.m()),
         Relaxation::Limits(more) => ("limits_more_m", more.m()),
@@ -156,6 +159,6 @@ pub(super) fn amount(change: Relaxation) -> (&'static str, f64) {
         Relaxation::Edge(more) => ("edge_more_m", more.m()),
         Relaxation::Freeboard(less) => ("freeboard_less_m", less.m()),
         Relaxation::Demand(factor) => ("demand_factor", factor),
-        Relaxation::Rule(_) => ("rules_waived", 1.0),
+        Relaxation::Rules(ref waived) => ("rules_waived", waived.len() as f64),
     }
 }

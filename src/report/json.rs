@@ -7,7 +7,8 @@ use serde::Serialize;
 use crate::device::{Kind, Site, Size};
 use crate::roof::Roof;
 use crate::roof::layout::CaseState;
-use crate::search::{Answer, Fitted, Least, Measured, Opened, Opening, Outcome, Placed, Ranked, UnderLaw};
+use crate::rules::{RuleAt, Rulebook};
+use crate::search::{Answer, Fitted, Least, Measured, Opened, Opening, Outcome, Placed, Ranked, Relaxation, UnderLaw};
 use crate::units::{Length, Money};
 
 use super::words::{self, Words};
@@ -20,6 +21,8 @@ struct Document<'a> {
     format: &'static str,
     title: &'a str,
     storm: Storm<'a>,
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    rule_sets: Vec<rules::Over<'a>>,
     areas: Vec<Area<'a>>,
     #[serde(skip_serializing_if = "Option::is_none")]
     plan: Option<Plan<'a>>,
@@ -55,6 +58,9 @@ struct Area<'a> {
     bound: Option<AtLeast>,
     #[serde(skip_serializing_if = "Option::is_none")]
     cures: Option<Vec<CureFound<'a>>>,
+    /// Rules that no layout keeps together.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    contradiction: Vec<rules::NamedRule<'a>>,
     #[serde(skip_serializing_if = "Option::is_none")]
     binds: Option<Vec<CureFound<'a>>>,
     #[serde(skip_serializing_if = "Vec::is_empty")]
@@ -93,6 +99,9 @@ struct CureFound<'a> {
     amount: f64,
     cost: Option<f64>,
     groups: Vec<Group<'a>>,
+    /// The rules waived.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    rules: Vec<rules::NamedRule<'a>>,
 }
 
 #[derive(Serialize)]
@@ -268,6 +277,7 @@ pub(super) fn document(sized: &Sized<'_, '_>) -> String {
     let document = Document {
         format: "brimline size 1",
         title: &sized.roof.title,
+        rule_sets: rules::over_in_document(sized.roof, &sized.options.rules),
         storm: Storm {
             intensity_m_s: storm.intensity.m_per_s(),
             duration_s: storm.duration.map(crate::units::Time::s),
@@ -378,6 +388,8 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
             groups: found.layout.groups.iter().map(|placed| group(placed, &site)).collect(),
         })
     });
+    let book = &*sized.options.rules;
+    let named = |rules: &[RuleAt]| rules.iter().map(|&at| rules::named_rule(book, at)).collect::<Vec<_>>();
     let weighed = sized.structure.and_then(|(_, found)| found.get(sized.place(answer.area)?));
     let stiffened_outcome = weighed.map(|weighed| match weighed {
         Ok(Some(_)) => "optimal",
@@ -393,10 +405,11 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
         outcome: words::outcome(&answer.outcome),
         why,
         bound: bound.map(bound_of),
-        cures: cures.map(found_cures),
-        binds: opened.filter(|_| !found.is_empty()).map(found_cures),
+        cures: cures.map(|opened| found_cures(opened, book)),
+        contradiction: cures.map_or(Vec::new(), |opened| named(opened.conflict)),
+        binds: opened.filter(|_| !found.is_empty()).map(|opened| found_cures(opened, book)),
         cures_nothing: cures
-            .map_or(Vec::new(), |opened| opened.useless.iter().map(|&change| super::cures::amount(change).0).collect()),
+            .map_or(Vec::new(), |opened| opened.useless.iter().map(|change| super::cures::amount(change).0).collect()),
         ponding: ponding::of_area(&sized.roof.areas[answer.area]),
         framing_analysis: ponding::reasons(&sized.roof.areas[answer.area], words),
         layouts: layouts.collect(),
@@ -524,12 +537,16 @@ pub(super) fn cases<'a>(roof: &'a Roof, area: usize, ranked: &Ranked<'_>) -> Vec
     ranked.states.iter().enumerate().map(of_case).collect()
 }
 
-fn found_cures<'a>(opened: &'a Opened<'_>) -> Vec<CureFound<'a>> {
+fn found_cures<'a>(opened: &'a Opened<'_>, book: &'a Rulebook) -> Vec<CureFound<'a>> {
     let found = |(cure, layout): &'a Opening<'_>| {
-        let (change, amount) = super::cures::amount(cure.change);
+        let (change, amount) = super::cures::amount(&cure.change);
         let site = cure.roof.site(0, None);
         let groups = groups_at(layout, &site);
-        CureFound { change, amount, cost: layout.cost.map(Money::amount), groups }
+        let rules = match &cure.change {
+            Relaxation::Rules(waived) => waived.iter().map(|&at| rules::named_rule(book, at)).collect(),
+            _ => Vec::new(),
+        };
+        CureFound { change, amount, cost: layout.cost.map(Money::amount), groups, rules }
     };
     opened.cures.iter().map(found).collect()
 }

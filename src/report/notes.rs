@@ -67,14 +67,18 @@ fn sizes<'r>(told: &Told<'_, 'r>) -> Vec<&'r Size> {
 
 /// The notes at the end of every report: devices, assumptions, cautions.
 pub(super) fn blocks(told: &Told<'_, '_>, words: Words) -> Vec<Block> {
-    vec![
-        Block::Heading("Devices".into()),
-        Block::List(laws(told, words)),
+    let mut blocks = vec![Block::Heading("Devices".into()), Block::List(laws(told, words))];
+    let besides = rules::besides(&told.options.rules);
+    if !besides.is_empty() {
+        blocks.extend([Block::Heading("What the rule sets say besides".into()), Block::List(besides)]);
+    }
+    blocks.extend([
         Block::Heading("Assumptions".into()),
         Block::List(assumptions(told)),
         Block::Heading("Cautions".into()),
         Block::List(cautions(told)),
-    ]
+    ]);
+    blocks
 }
 
 /// The devices that the layouts are made of, with their laws and sources; devices of one law in one line.

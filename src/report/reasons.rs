@@ -45,10 +45,29 @@ pub(super) fn infeasible(sized: &Sized<'_, '_>, area: usize, why: &Why<'_>, word
             }
             format!("Nothing in the catalogs can stand in {name}: {}.", told.join("; "))
         }
-        Why::NothingFits { least, rule } => {
+        Why::Breaks(broken) => {
+            let rule = rules::named(&sized.options.rules, broken.rule, words);
+            let there = broken.there.map(|place| words.group(&roof.areas[area].existing[place].group()));
+            let broken = |there| format!("What is there already in {name}, {there}, breaks {rule}, whatever is added.");
+            there.map_or(format!("{name} itself breaks {rule}, whatever stands in it."), broken)
+        }
+        Why::NothingFits { least, rule, at_edge, most } => {
+            let by = |at| format!(" by {}", rules::named(&sized.options.rules, at, words));
+            let devices = format!("at least {least} devices{}", rule.map_or(String::new(), by));
             let edge = roof.areas[area].edge.map_or("the area".into(), |edge| format!("{} of edge", words.long(edge)));
-            let by = rule.map_or(String::new(), |at| format!(" by {}", rules::named(&sized.options.rules, at)));
-            format!("{name} asks for at least {least} devices{by}, and no {least} of the catalogs' sizes fit {edge}.")
+            match at_edge {
+                _ if least > most => format!("{name} asks for {devices}, and its count goes to {most}."),
+                Some((openings, at)) if openings > most => format!(
+                    "{name} asks for at least {openings} openings at the edge{}, and its count goes to {most}.",
+                    by(*at)
+                ),
+                Some((openings, at)) if openings > least => format!(
+                    "{name} asks for at least {openings} openings at the edge{}, and no {openings} of the catalogs' sizes fit \
+                     {edge}.",
+                    by(*at)
+                ),
+                _ => format!("{name} asks for {devices}, and no {least} of the catalogs' sizes fit {edge}."),
+            }
         }
         Why::Limits { best, alone, together } => {
             let text = limits_not_held(roof, area, best, alone, together, words);
@@ -144,7 +163,7 @@ fn misfit_in_words(size: &str, misfit: &Misfit, book: &Rulebook, words: Words) -
         if low == high { words.size(low) } else { format!("{} to {}", words.bare_size(low), words.size(high)) }
     };
     match misfit {
-        Misfit::Rule(at) => format!("{size} breaks {}", rules::named(book, *at)),
+        Misfit::Rule(at) => format!("{size} breaks {}", rules::named(book, *at, words)),
         Misfit::Kind { found } => format!("{size} is a {found}, which the area does not take"),
         Misfit::SetHeight { own, area } => {
             format!("{size} stands at {} only, the area asks for {}", between(*own), between(*area))

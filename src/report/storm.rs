@@ -2,7 +2,7 @@
 
 use serde::Serialize;
 
-use crate::roof::{Case, Further, Reading, Recurrence, Roof, Storm};
+use crate::roof::{Case, Further, Rainfall, Reading, Recurrence, Roof, Storm};
 use crate::units::{ReturnPeriod, Time};
 
 use super::page::Block;
@@ -57,7 +57,7 @@ struct Told<'s> {
 impl Told<'_> {
     fn in_words(&self, storm: &Storm) -> String {
         let read = self.reading.zip(storm.rainfall.as_ref());
-        let read = read.map(|(reading, table)| format!("read in {}{}", table.name(), place(reading)));
+        let read = read.map(|(reading, table)| read_in(reading, table));
         let multiplied = !self.factors.is_empty();
         let origin = match (read, multiplied) {
             (None, false) => String::new(),
@@ -81,6 +81,11 @@ fn when(duration: Option<Time>, return_period: Option<ReturnPeriod>) -> String {
     let period = return_period.map(|period| format!("once in {} years", trimmed(period.years(), 1)));
     let when: Vec<_> = duration.into_iter().chain(period).collect();
     if when.is_empty() { String::new() } else { format!(" ({})", when.join(", ")) }
+}
+
+/// Where in its table an intensity was read.
+pub(super) fn read_in(reading: &Reading, table: &Rainfall) -> String {
+    format!("read in {}{}", table.name(), place(reading))
 }
 
 /// Between which neighbours an intensity was read; nothing where it stands in the table.

@@ -88,6 +88,11 @@ impl Words {
         trimmed(value, if self.us() { 2 } else { 0 })
     }
 
+    /// A depth to the nearest figure.
+    pub(super) fn depth_near(self, depth: Length) -> String {
+        trimmed(self.small(depth), if self.us() { 2 } else { 0 })
+    }
+
     /// A depth that is never said to be less than it is.
     pub(super) fn depth_up(self, depth: Length) -> String {
         let scale = if self.us() { 100.0 } else { 1.0 };

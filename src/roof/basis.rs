@@ -13,6 +13,29 @@ pub struct Basis {
     pub areas: Vec<AreaBasis>,
 }
 
+/// What a set counts by and is not given, so that something else stands in for it.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct StandsIn {
+    /// What is not given.
+    pub missing: &'static str,
+    /// Whether the demand may be more than what is counted.
+    pub may_be_more: bool,
+    /// Whether it may be less.
+    pub may_be_less: bool,
+}
+
+impl StandsIn {
+    /// Both, the first of them told.
+    #[must_use]
+    pub fn with(self, other: Self) -> Self {
+        Self {
+            missing: self.missing,
+            may_be_more: self.may_be_more || other.may_be_more,
+            may_be_less: self.may_be_less || other.may_be_less,
+        }
+    }
+}
+
 /// An area as a rule set counts it.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct AreaBasis {
@@ -32,6 +55,8 @@ pub struct AreaBasis {
     pub depth: Option<Length>,
     /// Distance that it asks for from the water up to the top of every closed opening.
     pub freeboard: Option<Length>,
+    /// What of its demand is not known.
+    pub stands_in: Option<StandsIn>,
 }
 
 impl AreaBasis {

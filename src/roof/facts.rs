@@ -17,6 +17,8 @@ pub struct Facts {
     pub risk: Option<Risk>,
     /// Where its overflow runs.
     pub discharge: Option<Separation>,
+    /// Whether the height of the roof at the wall was not given and is taken as that of the low point.
+    pub roof_at_wall_assumed: bool,
 }
 
 /// The primary drains of an area.
@@ -110,7 +112,8 @@ pub enum WallRule {
     /// Half of the largest wall.
     HalfOfLargest,
     /// By how many there are and how they stand: half of one; 0.35 of the sum of two at a corner; of two that face each other
-    /// half of what the greater has more; of three and four the same, each facing pair counted by its difference first.
+    /// half of what the greater has more; of three and four, each facing pair counted by its difference first, the greater of
+    /// half of the larger and 0.35 of the sum of what is left.
     ByCorner,
     /// Half of the greatest elevation of all walls together, seen from any direction.
     GreatestElevation,
@@ -144,15 +147,18 @@ impl WallRule {
         let on = |side: Side| walls.iter().filter(|wall| wall.side == side).map(|wall| wall.area.m2()).sum::<f64>();
         let (north, east, south, west) = (on(Side::North), on(Side::East), on(Side::South), on(Side::West));
         let (along, across) = ((north - south).abs(), (east - west).abs());
-        Area::from_m2(match self {
+        let sides = [north, east, south, west].into_iter().filter(|&side| side > 0.0).count();
+        let counted = match self {
             Self::None => 0.0,
             Self::HalfOfEach => 0.5 * (north + east + south + west),
             Self::HalfOfLargest => 0.5 * walls.iter().map(|wall| wall.area.m2()).fold(0.0, f64::max),
-            Self::ByCorner if along > 0.0 && across > 0.0 => 0.35 * (along + across),
-            Self::ByCorner => 0.5 * (along + across),
+            Self::ByCorner if sides == 2 && along > 0.0 && across > 0.0 => 0.35 * (along + across),
+            Self::ByCorner => (0.5 * along.max(across)).max(0.35 * (along + across)),
             Self::GreatestElevation => 0.5 * north.max(south).hypot(east.max(west)),
             Self::WindDriven => 0.5 * along.hypot(across),
-        })
+        };
+        // The sum of no walls at all is minus zero.
+        Area::from_m2(counted.max(0.0))
     }
 }
 
@@ -176,6 +182,8 @@ mod tests {
         assert_relative_eq!(counted(rule, &[(100.0, Side::North), (100.0, Side::South)]), 0.0);
         assert_relative_eq!(counted(rule, &[(100.0, Side::North), (60.0, Side::South)]), 20.0);
         assert_relative_eq!(counted(rule, &[(80.0, Side::North), (80.0, Side::South), (50.0, Side::West)]), 25.0);
+        // A wall that is a little larger never makes it less.
+        assert_relative_eq!(counted(rule, &[(81.0, Side::North), (80.0, Side::South), (50.0, Side::West)]), 25.0);
     }
 
     /// Half of 300 and 400 m2 at a corner seen across it: 250 m2 of 500. By hand.

@@ -10,9 +10,9 @@
 //!
 //! Of the storms of a set the first that can be found counts: one of a fixed intensity; else one that stands in the rainfall
 //! table; else one of the project whose duration and return period are stated the same. Where none can be found the design
-//! rain of the project stands in, and the verdict says that it cannot tell.
+//! rain of the project stands in, and verdicts that go by it say that they cannot tell.
 
-use crate::roof::{AreaBasis, Basis, Case, Catchment, Reading, Risk, Roof, Storm, Wall, WallRule, demand};
+use crate::roof::{AreaBasis, Basis, Case, Catchment, Reading, Risk, Roof, StandsIn, Storm, Wall, WallRule, demand};
 use crate::units::{Area, Flow, Intensity, Length, ReturnPeriod, Time};
 
 use super::amount::Amount;
@@ -45,8 +45,14 @@ fn areas(set: &RuleSet, roof: &Roof) -> Vec<AreaBasis> {
         intensity * (roof.areas[area].area + wall)
     };
     let flows = demand::flows_of(&roof.areas, own).unwrap_or_default();
-    let all = roof.areas.iter().zip(counted).zip(flows);
-    all.map(|((area, (intensity, wall)), flow)| AreaBasis {
+    let rain: Vec<Option<StandsIn>> = roof.areas.iter().map(|area| rain_stands_in(set, &roof.storm, area)).collect();
+    let stands_in = |area: usize| {
+        let above = !roof.areas[area].receives.is_empty();
+        let rain = rain[area].or_else(|| rain.iter().flatten().next().copied().filter(|_| above));
+        rain.into_iter().chain(primary_stands_in(set, &roof.areas[area])).reduce(StandsIn::with)
+    };
+    let all = roof.areas.iter().enumerate().zip(counted).zip(flows);
+    all.map(|(((index, area), (intensity, wall)), flow)| AreaBasis {
         intensity,
         duration: duration(set, &roof.storm, area),
         wall,
@@ -55,6 +61,7 @@ fn areas(set: &RuleSet, roof: &Roof) -> Vec<AreaBasis> {
         least: asked_of_primary(set, area),
         depth: least_depth(set, area),
         freeboard: freeboard(set),
+        stands_in: stands_in(index),
     })
     .collect()
 }
@@ -68,6 +75,28 @@ fn intensity(set: &RuleSet, storm: &Storm, area: &Catchment) -> Intensity {
     let mut found = of_role(set, |role| matches!(role, Role::Rain)).filter_map(|rule| rain(rule, storm, area).ok());
     found.next().map_or(storm.intensity, |rain| rain.intensity)
 }
+
+/// What of the rain of a set is not given: the design rain stands in, which may be more or less.
+fn rain_stands_in(set: &RuleSet, storm: &Storm, area: &Catchment) -> Option<StandsIn> {
+    let storms: Result<Vec<Rain>, Open> =
+        of_role(set, |role| matches!(role, Role::Rain)).map(|rule| rain(rule, storm, area)).collect();
+    let found = of_role(set, |role| matches!(role, Role::Rain)).any(|rule| rain(rule, storm, area).is_ok());
+    match storms {
+        Err(Open::Missing(missing)) if !found => Some(StandsIn { missing, may_be_more: true, may_be_less: true }),
+        _ => None,
+    }
+}
+
+/// What of the primary drains is not given that a set counts by: it asks for a part of their flow, or takes it off.
+fn primary_stands_in(set: &RuleSet, area: &Catchment) -> Option<StandsIn> {
+    let asks = of_role(set, |role| matches!(role, Role::PrimaryFlow)).next().is_some();
+    let credits = of_role(set, |role| matches!(role, Role::Credit)).any(is_credit);
+    let open = area.facts.primary.flow.is_none() && (asks || credits);
+    open.then_some(StandsIn { missing: NO_FLOW, may_be_more: asks, may_be_less: credits })
+}
+
+/// What is missing where the flow of the primary drains is not given.
+pub(super) const NO_FLOW: &str = "what the primary drains carry: primary = { flow = .. }";
 
 /// How long the rain lasts that a set counts on an area, where that is stated.
 fn duration(set: &RuleSet, storm: &Storm, area: &Catchment) -> Option<Time> {
@@ -107,9 +136,9 @@ pub fn rain(rule: &Rule, storm: &Storm, area: &Catchment) -> Result<Rain, Open> 
     let further = storm.further.iter().find(|further| same(further.duration, further.return_period));
     let found = main.or(further.map(|further| further.intensity * (1.0 / further.factor)));
     let missing = Open::Missing(if storm.rainfall.is_some() {
-        "this storm: the rainfall table does not reach so far, and no storm of the project is the same"
+        "its rain: the rainfall table does not reach so far, and no storm of the project is the same"
     } else {
-        "the rain of this storm: a rainfall table, or [storm] with this duration and return period"
+        "its rain: a rainfall table, or a storm of the project with this duration and return period"
     });
     found.map(|intensity| Rain { intensity: intensity * times, reading: None }).ok_or(missing)
 }
@@ -143,7 +172,7 @@ fn walls(set: &RuleSet, area: &Catchment) -> Area {
     rule.map_or_else(by_project, |rule| counted_walls(rule, area))
 }
 
-/// The walls of an area by a rule; where only their sum is known, as one wall.
+/// The walls of an area by a rule; where only their sum is known, as one wall: no rule counts that as less than as much in several.
 pub(super) fn counted_walls(rule: &Rule, area: &Catchment) -> Area {
     let word = rule.word("count");
     let how = WallRule::NAMED.iter().find(|(name, _)| Some(*name) == word).map_or(WallRule::None, |&(_, how)| how);

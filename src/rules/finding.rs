@@ -2,12 +2,12 @@
 
 use crate::device::Place;
 use crate::roof::layout::{self, CaseState, Group};
-use crate::roof::{AreaBasis, Catchment, LimitKind, Roof, Situation};
-use crate::units::Length;
+use crate::roof::{AreaBasis, Case, Catchment, LimitKind, Roof, Situation};
+use crate::units::{Area, Flow, Intensity, Length};
 
 use super::amount::Amount;
-use super::basis::{counted_walls, is_credit, rain};
-use super::kind::{Measure, Open, Role};
+use super::basis::{NO_FLOW, counted_walls, is_credit, rain};
+use super::kind::{Datum, Measure, Open, Role};
 use super::restriction::kept;
 use super::set::{Applied, Bound, Rule, RuleAt, Rulebook};
 
@@ -61,6 +61,7 @@ impl Verdict {
 /// A layout in an area as a rule set counts it.
 struct Under<'a> {
     roof: &'a Roof,
+    index: usize,
     area: &'a Catchment,
     basis: &'a AreaBasis,
     groups: &'a [Group<'a>],
@@ -75,6 +76,7 @@ pub fn findings(book: &Rulebook, roof: &Roof, area: usize, groups: &[Group<'_>])
         let situation = roof.situation_under(area, set);
         let under = Under {
             roof,
+            index: area,
             area: &roof.areas[area],
             basis: &roof.bases[set].areas[area],
             groups,
@@ -92,51 +94,63 @@ impl Under<'_> {
     fn finding(&self, at: RuleAt, rule: &Rule) -> Finding {
         match rule.kind.role {
             Role::Opening(measure) => {
-                of_worst(at, rule, self.groups.iter().map(|group| measure(rule, group.size, self.area)))
+                let one = |group: &Group<'_>| of(at, rule, measure(rule, group.size, self.area));
+                of_worst(at, rule, self.groups.iter().map(one))
             }
-            Role::Sill(datum) => of_worst(at, rule, self.groups.iter().map(|group| self.sill(rule, group, datum))),
+            Role::Sill(datum) => {
+                let one = |group: &Group<'_>| sill(at, rule, group, datum(rule, group.size, self.area));
+                of_worst(at, rule, self.groups.iter().map(one))
+            }
             Role::Count(least) => of(at, rule, least(rule, self.area).map(|least| self.counted(least, |_| true))),
             Role::AtEdge(least) => of(at, rule, self.spacing(rule, least(rule, self.area))),
-            Role::Depth(depth) => of(at, rule, depth(rule, self.area).map(|most| self.depth(rule, most))),
-            Role::Freeboard => of(at, rule, self.freeboard(rule)),
-            Role::Limits => self.limits(at),
+            Role::Depth(depth) => {
+                self.by_its_water(of(at, rule, depth(rule, self.area).map(|most| self.depth(rule, most))))
+            }
+            Role::Freeboard => self.by_its_water(of(at, rule, self.freeboard(rule))),
+            Role::Limits => self.by_its_water(self.limits(at)),
             Role::Area(measure) => of(at, rule, measure(rule, self.area, self.basis)),
             Role::Rain => self.rain(at, rule),
-            Role::Walls => {
-                let by_project = self.area.wall * self.area.wall_share;
-                let (counted, required) =
-                    (if self.applied.binding { self.basis.wall } else { by_project }, counted_walls(rule, self.area));
-                let none = self.area.wall == crate::units::Area::ZERO && self.area.facts.walls.is_empty();
-                let measured = (Amount::Area(counted), Amount::Area(required));
-                let measured = if none { Err(Open::NotApplicable("no wall sheds on the area")) } else { Ok(measured) };
-                judged(at, measured, Amount::reaches, Bound::AtLeast)
-            }
+            Role::Walls => judged(at, self.walls(rule), Amount::reaches, Bound::AtLeast),
             Role::Credit => self.credit(at, rule),
             Role::PrimaryFlow => {
-                let flow = self.area.facts.primary.flow.ok_or(NO_FLOW);
-                let demand = if self.applied.binding { self.basis.demand() } else { self.demand_held() };
-                of(at, rule, flow.map(|flow| (Amount::Flow(demand), Amount::Flow(flow * rule.times()))))
+                let flow = self.area.facts.primary.flow.ok_or(Open::Missing(NO_FLOW));
+                of(at, rule, flow.map(|flow| (Amount::Flow(self.demand_held()), Amount::Flow(flow * rule.times()))))
             }
         }
     }
 
-    /// The greatest demand that a layout of this area is held to in any case.
-    fn demand_held(&self) -> crate::units::Flow {
-        let area = self.roof.areas.iter().position(|area| std::ptr::eq(area, self.area)).unwrap_or_default();
-        let demands = self.roof.situations(area).into_iter().map(|situation| situation.demand);
-        demands.fold(crate::units::Flow::ZERO, crate::units::Flow::max)
+    /// A verdict that goes by the water of the set; where something stands in for the demand, only what holds all the same.
+    fn by_its_water(&self, finding: Finding) -> Finding {
+        let Some(stands_in) = self.basis.stands_in else { return finding };
+        let open = match finding.verdict {
+            Verdict::Pass => stands_in.may_be_more,
+            Verdict::Fail => stands_in.may_be_less,
+            Verdict::NotApplicable(_) | Verdict::CannotTell(_) => false,
+        };
+        if open { Finding { verdict: Verdict::CannotTell(stands_in.missing), ..finding } } else { finding }
     }
 
-    fn sill(
-        &self,
-        rule: &Rule,
-        group: &Group<'_>,
-        datum: fn(&Rule, &crate::device::Size, &Catchment) -> Result<Length, Open>,
-    ) -> Measure {
-        let datum = datum(rule, group.size, self.area)?;
-        let above = Length::from_nm(group.set_height.nm() - datum.on_grid().nm());
-        let number = rule.bound.ok_or(Open::NotApplicable("the rule has no number"))?.amount();
-        Ok((Amount::Length(above), number))
+    /// How the sets count this area by which cases hold a layout to something; none for a case that counts as the project.
+    fn cases_held(&self) -> impl Iterator<Item = (&Case, Option<&AreaBasis>)> {
+        let counted = |case: &Case| case.basis.map(|basis| &self.roof.bases[basis].areas[self.index]);
+        self.roof.cases.iter().map(move |case| (case, counted(case)))
+    }
+
+    /// The greatest demand that a layout of this area is held to in any case.
+    fn demand_held(&self) -> Flow {
+        let demands = self.roof.situations(self.index).into_iter().map(|situation| situation.demand);
+        demands.fold(Flow::ZERO, Flow::max)
+    }
+
+    /// The greatest walls that a layout of this area is held to against those of the rule.
+    fn walls(&self, rule: &Rule) -> Measure {
+        if self.area.wall == Area::ZERO && self.area.facts.walls.is_empty() {
+            return Err(Open::NotApplicable("no wall sheds on the area"));
+        }
+        let by_project = self.area.wall * self.area.wall_share;
+        let walls = self.cases_held().map(|(_, basis)| basis.map_or(by_project, |basis| basis.wall));
+        let held = walls.fold(Area::ZERO, Area::max);
+        Ok((Amount::Area(held), Amount::Area(counted_walls(rule, self.area))))
     }
 
     fn counted(&self, required: u32, counts: impl Fn(&Group<'_>) -> bool) -> (Amount, Amount) {
@@ -210,34 +224,33 @@ impl Under<'_> {
         if first.is_some_and(|first| !std::ptr::eq(first, rule)) {
             return open(at, Open::NotApplicable("another storm of the set counts"));
         }
-        let held = if self.applied.binding { self.basis.intensity } else { storm.intensity };
+        let of_case = |(case, basis): (&Case, Option<&AreaBasis>)| {
+            basis.map_or(storm.intensity, |basis| basis.intensity) * case.rain
+        };
+        let held = self.cases_held().map(of_case).fold(Intensity::ZERO, Intensity::max);
         let required =
             rain(rule, storm, self.area).map(|rain| (Amount::Intensity(held), Amount::Intensity(rain.intensity)));
         judged(at, required, Amount::reaches, Bound::AtLeast)
     }
 
+    /// Whether what a layout is held to counts the primary drains as the rule has it: it may leave a credit out that the rule
+    /// gives, but not take one that the rule refuses, in every case.
     fn credit(&self, at: RuleAt, rule: &Rule) -> Finding {
-        if !is_credit(rule) {
-            return Finding {
-                at,
-                verdict: Verdict::Pass,
-                found: None,
-                required: Some(Required::Is(Amount::Yes(false))),
-            };
+        let gives = is_credit(rule);
+        if gives && self.area.facts.primary.flow.is_none() {
+            return open(at, Open::Missing(NO_FLOW));
         }
-        match self.area.facts.primary.flow {
-            None => open(at, NO_FLOW),
-            Some(_) => Finding {
-                at,
-                verdict: Verdict::Pass,
-                found: Some(Amount::Flow(self.basis.credited)),
-                required: Some(Required::Is(Amount::Yes(true))),
-            },
+        let credited = |(_, basis): (&Case, Option<&AreaBasis>)| basis.map_or(Flow::ZERO, |basis| basis.credited);
+        let taken = self.cases_held().map(credited).reduce(Flow::min).unwrap_or(Flow::ZERO);
+        let takes = taken > Flow::ZERO;
+        Finding {
+            at,
+            verdict: if takes && !gives { Verdict::Fail } else { Verdict::Pass },
+            found: Some(if takes { Amount::Flow(taken) } else { Amount::Yes(false) }),
+            required: Some(Required::Is(if gives { Amount::Word("allowed") } else { Amount::Yes(false) })),
         }
     }
 }
-
-const NO_FLOW: Open = Open::Missing("what the primary drains carry: primary = { flow = .. }");
 
 fn open(at: RuleAt, open: Open) -> Finding {
     let verdict = match open {
@@ -276,8 +289,27 @@ fn of(at: RuleAt, rule: &Rule, measured: Measure) -> Finding {
     }
 }
 
+/// The sills of a group against a rule: where the datum is not given, only what holds at any that it may be.
+fn sill(at: RuleAt, rule: &Rule, group: &Group<'_>, datum: Result<Datum, Open>) -> Finding {
+    let (datum, number) = match (datum, rule.bound.map(Bound::amount)) {
+        (Err(why), _) => return open(at, why),
+        (_, None) => return open(at, Open::NotApplicable("the rule has no number")),
+        (Ok(datum), Some(number)) => (datum, number),
+    };
+    let above = Length::from_nm(group.set_height.nm() - datum.height.on_grid().nm());
+    let finding = of(at, rule, Ok((Amount::Length(above), number)));
+    let lower_decides = matches!(
+        (finding.verdict, rule.bound),
+        (Verdict::Pass, Some(Bound::AtLeast(_))) | (Verdict::Fail, Some(Bound::AtMost(_)))
+    );
+    match datum.missing {
+        Some(missing) if lower_decides => open(at, Open::Missing(missing)),
+        _ => finding,
+    }
+}
+
 /// What a rule says of several openings: a failing one, else one that cannot be told, else the one that keeps it by least.
-fn of_worst(at: RuleAt, rule: &Rule, measured: impl Iterator<Item = Measure>) -> Finding {
+fn of_worst(at: RuleAt, rule: &Rule, of_each: impl Iterator<Item = Finding>) -> Finding {
     let rank = |finding: &Finding| match finding.verdict {
         Verdict::Fail => 0,
         Verdict::CannotTell(_) => 1,
@@ -293,5 +325,5 @@ fn of_worst(at: RuleAt, rule: &Rule, measured: impl Iterator<Item = Measure>) ->
         },
     };
     let none = open(at, Open::NotApplicable("no device"));
-    measured.map(|measured| of(at, rule, measured)).reduce(worse).unwrap_or(none)
+    of_each.reduce(worse).unwrap_or(none)
 }

@@ -102,13 +102,29 @@ pub enum Open {
 /// What was found and what is required of it.
 pub type Measure = Result<(Amount, Amount), Open>;
 
+/// A height above the low point that the number of a rule counts from.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Datum {
+    /// The height; where it is not given the least that it can be.
+    pub height: Length,
+    /// What would give it, where it is not given.
+    pub missing: Option<&'static str>,
+}
+
+impl Datum {
+    /// A datum at a known height.
+    pub fn at(height: Length) -> Self {
+        Self { height, missing: None }
+    }
+}
+
 /// What a kind of rule does.
 #[derive(Clone, Copy, Debug)]
 pub enum Role {
     /// Measures one opening: a binding set lets no size stand that fails.
     Opening(fn(&Rule, &Size, &Catchment) -> Measure),
     /// Says from which height above the low point the number counts for a size: sills keep it.
-    Sill(fn(&Rule, &Size, &Catchment) -> Result<Length, Open>),
+    Sill(fn(&Rule, &Size, &Catchment) -> Result<Datum, Open>),
     /// Says how many devices an area needs at least.
     Count(fn(&Rule, &Catchment) -> Result<u32, Open>),
     /// Says how many openings an edge needs at least, where any stands at it.

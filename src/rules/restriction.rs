@@ -50,7 +50,15 @@ impl<'b> Restriction<'b> {
 
     /// Whether a size may stand at a height by the rules.
     pub fn allows(&self, size: &Size, set_height: Length, area: &Catchment) -> bool {
-        self.on(Stand { heights: vec![set_height], highest: set_height }, size, area).is_ok()
+        self.broken_by(size, set_height, area).is_none()
+    }
+
+    /// The rule that a size breaks where it stands, the first of several.
+    pub fn broken_by(&self, size: &Size, set_height: Length, area: &Catchment) -> Option<RuleAt> {
+        match self.on(Stand { heights: vec![set_height], highest: set_height }, size, area) {
+            Err(Misfit::Rule(at)) => Some(at),
+            _ => None,
+        }
     }
 
     /// What the rules leave of the heights at which a size may stand.
@@ -58,9 +66,6 @@ impl<'b> Restriction<'b> {
     /// # Errors
     /// The rule that leaves none, as a misfit.
     pub fn on(&self, stand: Stand, size: &Size, area: &Catchment) -> Result<Stand, Misfit> {
-        if let Some(at) = self.broken {
-            return Err(Misfit::Rule(at));
-        }
         let mut stand = stand;
         for &(at, rule) in &self.of_sizes {
             match rule.kind.role {
@@ -71,7 +76,7 @@ impl<'b> Restriction<'b> {
                 }
                 Role::Sill(datum) => {
                     let Ok(datum) = datum(rule, size, area) else { continue };
-                    stand = sills_kept(stand, rule, datum).ok_or(Misfit::Rule(at))?;
+                    stand = sills_kept(stand, rule, datum.height).ok_or(Misfit::Rule(at))?;
                 }
                 _ => {}
             }
@@ -84,7 +89,7 @@ impl<'b> Restriction<'b> {
     pub fn sills(&self, size: &Size, area: &Catchment) -> (Length, Length) {
         let none = Length::from_m(f64::INFINITY);
         let ends = self.of_sizes.iter().filter_map(|(_, rule)| match rule.kind.role {
-            Role::Sill(datum) => end_of(rule, datum(rule, size, area).ok()?),
+            Role::Sill(datum) => end_of(rule, datum(rule, size, area).ok()?.height),
             _ => None,
         });
         ends.fold((-none, none), |(low, high), end| match end {

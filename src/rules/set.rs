@@ -158,13 +158,17 @@ impl Rulebook {
         bind.flat_map(of_set).map(|at| (at, self.rule(at)))
     }
 
-    /// The sets without one of their rules.
+    /// The sets without some of their rules.
     #[must_use]
-    pub fn without(&self, at: RuleAt) -> Self {
+    pub fn without(&self, rules: &[RuleAt]) -> Self {
         let mut left = self.clone();
-        let mut set = (*left.sets[at.set].set).clone();
-        set.rules.remove(at.rule);
-        left.sets[at.set].set = Arc::new(set);
+        for (set, applied) in left.sets.iter_mut().enumerate().filter(|(set, _)| rules.iter().any(|at| at.set == *set))
+        {
+            let mut kept = (*applied.set).clone();
+            let mut rule = 0..;
+            kept.rules.retain(|_| !rules.contains(&RuleAt { set, rule: rule.next().unwrap_or_default() }));
+            applied.set = Arc::new(kept);
+        }
         left
     }
 }

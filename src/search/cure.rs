@@ -25,7 +25,7 @@ use super::watch::Stopped;
 use super::{Options, Ranked};
 
 /// One thing that may be changed.
-#[derive(Clone, Copy, Debug, PartialEq)]
+#[derive(Clone, Debug, PartialEq)]
 pub enum Relaxation {
     /// The load limit raised by this much, in every case.
     Load(Load),
@@ -49,8 +49,8 @@ pub enum Relaxation {
     Freeboard(Length),
     /// The demand times this: less rain, or less roof that drains here.
     Demand(f64),
-    /// A rule of a binding set waived.
-    Rule(RuleAt),
+    /// Rules of binding sets waived: one, or the fewest found that cure together where none does alone.
+    Rules(Vec<RuleAt>),
 }
 
 /// A change of an area, most often one that makes a layout exist.
@@ -65,12 +65,15 @@ pub struct Cure {
 }
 
 /// The changes found for an area, and what by itself does nothing.
-#[derive(Clone, Debug)]
+#[derive(Clone, Debug, Default)]
 pub struct Cures {
     /// The changes, as they were tried.
     pub found: Vec<Cure>,
     /// Changes that were tried as far as they go without effect.
     pub useless: Vec<Relaxation>,
+    /// Binding rules that no layout keeps together, whatever the others: without any one of them some layout keeps the rest of
+    /// them. Empty where rules are not what stands in the way.
+    pub conflict: Vec<RuleAt>,
     /// Whether the search was ended before everything was tried.
     pub stopped: bool,
     /// What the cheapest layout costs now, where changes are to save; none where they are to cure.
@@ -87,6 +90,8 @@ pub struct Opened<'a> {
     pub cures: Vec<Opening<'a>>,
     /// Changes that were tried as far as they go without effect.
     pub useless: &'a [Relaxation],
+    /// Binding rules that no layout keeps together.
+    pub conflict: &'a [RuleAt],
     /// Whether the search was ended before everything was tried.
     pub stopped: bool,
     /// What the cheapest layout costs now, where changes are to save; none where they are to cure.
@@ -98,7 +103,8 @@ impl Cures {
     pub fn open(&self) -> Opened<'_> {
         let mut cures = opened(&self.found);
         cures.sort_by_key(|(_, layout)| layout.cost.map_or(i64::MAX, Money::millionths));
-        Opened { cures, useless: &self.useless, stopped: self.stopped, now: self.now }
+        let (useless, conflict) = (&self.useless, &self.conflict);
+        Opened { cures, useless, conflict, stopped: self.stopped, now: self.now }
     }
 }
 
@@ -139,17 +145,17 @@ impl Scale {
     fn least(
         &self,
         last: u32,
-        passes: impl Fn(Relaxation) -> Result<bool, Stopped>,
+        passes: impl Fn(&Relaxation) -> Result<bool, Stopped>,
     ) -> Result<Option<Relaxation>, Stopped> {
         let mut fails = 0;
         for mut found in self.looks(last) {
-            if !passes((self.of)(found))? {
+            if !passes(&(self.of)(found))? {
                 fails = found;
                 continue;
             }
             while found - fails > 1 {
                 let middle = fails + (found - fails) / 2;
-                if passes((self.of)(middle))? { found = middle } else { fails = middle }
+                if passes(&(self.of)(middle))? { found = middle } else { fails = middle }
             }
             return Ok(Some((self.of)(found)));
         }
@@ -161,28 +167,61 @@ impl Scale {
 pub fn cures(roof: &Roof, options: &Options, area: usize) -> Cures {
     if roof.areas[area].ponding.is_some_and(|ponding| ponding.is_unstable()) {
         // No level is allowed whatever is let out.
-        return Cures { found: Vec::new(), useless: Vec::new(), stopped: false, now: None };
+        return Cures::default();
     }
     let asked = Changed { roof: alone(roof, area), options: Options { keep: 1, ..options.clone() } };
     let scales = scales(&asked.roof, &asked.options);
-    let cures = asked.tried(scales, |scale| scale.least(scale.steps, |change| asked.with(change, any)));
-    without_each_rule(roof, &asked.options, area, cures)
+    let mut cures = asked.tried(scales, |scale| scale.least(scale.steps, |change| asked.with(change, any)));
+    cures.stopped |= waived(roof, &asked.options, area, &mut cures).is_err();
+    cures
 }
 
-/// The cures, and with them every binding rule without which the area has a layout.
-fn without_each_rule(roof: &Roof, options: &Options, area: usize, mut cures: Cures) -> Cures {
-    let places: Vec<RuleAt> = options.rules.binding().map(|(at, _)| at).collect();
-    for at in places {
-        let change = Relaxation::Rule(at);
-        let (whole, options) = relaxed(roof, options, change);
-        let roof = alone(&whole, area);
-        match any(&Problem::new(&roof, 0, &options).0) {
-            Ok(true) => cures.found.push(Cure { change, roof, options }),
-            Ok(false) => {}
-            Err(Stopped) => cures.stopped = true,
+/// Adds every binding rule without which the area has a layout, and where rules stand against each other, which; where none
+/// is enough alone, several that are together.
+///
+/// The rules against each other are found by leaving out one after another for as long as what is left has no layout; those to
+/// waive by taking one after another up again for as long as what is kept has one. Both depend on the order of the rules.
+fn waived(roof: &Roof, options: &Options, area: usize, cures: &mut Cures) -> Result<(), Stopped> {
+    let without = |rules: Vec<RuleAt>| {
+        let change = Relaxation::Rules(rules);
+        let (whole, options) = relaxed(roof, options, &change);
+        Cure { change, roof: alone(&whole, area), options }
+    };
+    let cures_it = |rules: &[RuleAt]| {
+        let cure = without(rules.to_vec());
+        any(&Problem::new(&cure.roof, 0, &cure.options).0)
+    };
+    let all: Vec<RuleAt> = options.rules.binding().map(|(at, _)| at).collect();
+    if all.is_empty() || !cures_it(&all)? {
+        return Ok(());
+    }
+    let mut alone_enough = false;
+    for &at in &all {
+        if cures_it(&[at])? {
+            cures.found.push(without(vec![at]));
+            alone_enough = true;
         }
     }
-    cures
+    let mut left_out = Vec::new();
+    for &at in &all {
+        left_out.push(at);
+        if cures_it(&left_out)? {
+            left_out.pop();
+        }
+    }
+    cures.conflict = all.iter().copied().filter(|at| !left_out.contains(at)).collect();
+    if !alone_enough {
+        let mut waived = all.clone();
+        for at in all {
+            let place = waived.iter().position(|waived| *waived == at).unwrap_or_default();
+            waived.remove(place);
+            if !cures_it(&waived)? {
+                waived.insert(place, at);
+            }
+        }
+        cures.found.push(without(waived));
+    }
+    Ok(())
 }
 
 /// The single changes of moderate size that make a cheaper layout exist than the cheapest now, each the least that saves as
@@ -197,7 +236,7 @@ pub fn binds(roof: &Roof, options: &Options, area: usize) -> Option<Cures> {
         return None;
     }
     let Ok(now) = cheapest(&now) else {
-        return Some(Cures { found: Vec::new(), useless: Vec::new(), stopped: true, now: None });
+        return Some(Cures { stopped: true, ..Cures::default() });
     };
     let now = now?;
     let mut scales = scales(&asked.roof, &asked.options);
@@ -206,9 +245,9 @@ pub fn binds(roof: &Roof, options: &Options, area: usize) -> Option<Cures> {
         let last = scale.moderate.min(scale.steps);
         let mut least = now;
         for step in scale.looks(last) {
-            least = least.min(asked.with((scale.of)(step), cheapest)?.unwrap_or(now));
+            least = least.min(asked.with(&(scale.of)(step), cheapest)?.unwrap_or(now));
         }
-        let as_cheap = |change| asked.with(change, |problem| any_under(problem, least));
+        let as_cheap = |change: &Relaxation| asked.with(change, |problem| any_under(problem, least));
         if least < now { scale.least(last, as_cheap) } else { Ok(None) }
     });
     Some(Cures { now: Some(Money::from_millionths(now)), ..cures })
@@ -228,19 +267,19 @@ struct Changed {
 
 impl Changed {
     fn by(&self, change: Relaxation) -> Cure {
-        let (roof, options) = relaxed(&self.roof, &self.options, change);
+        let (roof, options) = relaxed(&self.roof, &self.options, &change);
         Cure { change, roof, options }
     }
 
     /// What a question about the area so changed is answered.
-    fn with<T>(&self, change: Relaxation, question: impl FnOnce(&Problem<'_>) -> T) -> T {
+    fn with<T>(&self, change: &Relaxation, question: impl FnOnce(&Problem<'_>) -> T) -> T {
         let (roof, options) = relaxed(&self.roof, &self.options, change);
         question(&Problem::new(&roof, 0, &options).0)
     }
 
     /// What `found` makes of every scale.
     fn tried(&self, scales: Vec<Scale>, found: impl Fn(&Scale) -> Result<Option<Relaxation>, Stopped>) -> Cures {
-        let mut cures = Cures { found: Vec::new(), useless: Vec::new(), stopped: false, now: None };
+        let mut cures = Cures::default();
         for scale in scales {
             let of_limits =
                 cures.found.iter().any(|cure| matches!(cure.change, Relaxation::Load(_) | Relaxation::Depth(_)));
@@ -323,10 +362,10 @@ fn scales(roof: &Roof, options: &Options) -> Vec<Scale> {
 }
 
 /// A roof of one area and its options, with one thing changed; of a rule, a whole roof without it.
-pub fn relaxed(roof: &Roof, options: &Options, change: Relaxation) -> (Roof, Options) {
+pub fn relaxed(roof: &Roof, options: &Options, change: &Relaxation) -> (Roof, Options) {
     let (mut roof, mut options) = (roof.clone(), options.clone());
     let area = &mut roof.areas[0];
-    match change {
+    match *change {
         Relaxation::Load(more) => {
             area.every_limit().for_each(|limits| limits.load = limits.load.map(|load| load + more));
         }
@@ -362,8 +401,8 @@ pub fn relaxed(roof: &Roof, options: &Options, change: Relaxation) -> (Roof, Opt
                     (area.flow * factor, area.credited * factor, area.least * factor);
             }
         }
-        Relaxation::Rule(at) => {
-            let book = options.rules.without(at);
+        Relaxation::Rules(ref waived) => {
+            let book = options.rules.without(waived);
             roof.bases = rules::bases(&book, &roof);
             options.rules = book.into();
         }

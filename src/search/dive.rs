@@ -97,7 +97,7 @@ pub(super) fn dive(problem: &Problem<'_>, aim: Aim, best: Best) -> Dived {
         };
         dive.tighten();
         let there = Used::of_what_is_there(problem);
-        if class.is_none() && !problem.fixed.is_empty() {
+        if class.is_none() && !problem.fixed.is_empty() && problem.broken.is_none() {
             dive.offer(0, there);
         }
         for groups in 1..=problem.mix {

@@ -16,7 +16,13 @@ pub(super) fn why(mut problem: Problem<'_>) -> Result<Why<'_>, Stopped> {
             return Ok(Why::Freeboard { asked, best: greatest_freeboard(problem, asked)? });
         }
     }
-    let (least, rule) = (problem.least, problem.asked_for);
+    let there = problem.devices_there();
+    let nothing_fits = Why::NothingFits {
+        least: problem.least.saturating_add(there),
+        rule: problem.asked_for,
+        at_edge: problem.asked_at_edge.map(|at| (problem.least_at_edge, at)),
+        most: problem.most.saturating_add(there),
+    };
     let cases: Vec<usize> = (0..problem.situations.len()).collect();
     let held = |cases: &[usize]| any(&problem.with_cases(cases));
     let mut alone = Vec::new();
@@ -30,7 +36,7 @@ pub(super) fn why(mut problem: Problem<'_>) -> Result<Why<'_>, Stopped> {
     let found = dive(&nearest, Aim::Reach, Best::new(1, false)).complete()?;
     Ok(match found.first() {
         Some(best) => Why::Limits { best: Box::new(ranked(&nearest, best)), alone, together },
-        None => Why::NothingFits { least, rule },
+        None => nothing_fits,
     })
 }
 

@@ -15,9 +15,9 @@ use crate::roof::{Catchment, GivenGroup, MOST_GROUPS, MOST_OUTLETS, Roof, Situat
 use crate::rules::{self, Misfit, Restriction, RuleAt, Rulebook, Stand};
 use crate::units::Length;
 
-use super::Options;
 use super::Watch;
 use super::rank::{Criterion, Order};
+use super::{Broken, Options};
 
 /// A size that may stand in the area.
 #[derive(Clone, Debug)]
@@ -59,8 +59,12 @@ pub(super) struct Problem<'r> {
     /// Least and most devices that a layout adds to what is there; and the rule that asks for the least, where one does.
     pub(super) least: u32,
     pub(super) asked_for: Option<RuleAt>,
-    /// Least openings at the edge of a layout with any there, those that are there already among them.
+    /// Least openings at the edge of a layout with any there, those that are there already among them; and the rule that asks
+    /// for them.
     pub(super) least_at_edge: u32,
+    pub(super) asked_at_edge: Option<RuleAt>,
+    /// A binding rule that the area breaks whatever is added; then nothing is.
+    pub(super) broken: Option<Broken>,
     pub(super) most: u32,
     pub(super) mix: usize,
     /// Edge in nanometres; none where it is not limited.
@@ -113,7 +117,9 @@ impl<'r> Problem<'r> {
         let restriction = Restriction::new(&options.rules, &roof.bases, catchment, area);
         let mut tags: Vec<&str> = Vec::new();
         let (mut candidates, mut misfits) = (Vec::new(), Vec::new());
-        for (index, size) in sizes {
+        let fixed: Vec<Group<'r>> = catchment.existing.iter().map(GivenGroup::group).collect();
+        let broken = broken(&restriction, &fixed, catchment);
+        for (index, size) in sizes.filter(|_| broken.is_none()) {
             // Sizes of one device follow one another, so its tag is nearly always the last.
             let tag = tags.iter().rposition(|&known| known == &*size.tag).unwrap_or_else(|| {
                 tags.push(&size.tag);
@@ -127,7 +133,6 @@ impl<'r> Problem<'r> {
         }
         let priced = candidates.iter().all(|candidate| candidate.size.price.is_some());
         let situations = roof.situations(area);
-        let fixed: Vec<Group<'r>> = catchment.existing.iter().map(GivenGroup::group).collect();
         let there = devices(&fixed);
         let by_rule = restriction.least.filter(|(least, _)| least > catchment.count.start());
         let least = by_rule.map_or(*catchment.count.start(), |(least, _)| least);
@@ -138,6 +143,8 @@ impl<'r> Problem<'r> {
             least: least.saturating_sub(there),
             asked_for: by_rule.map(|(_, at)| at),
             least_at_edge: restriction.at_edge.map_or(0, |(least, _)| least),
+            asked_at_edge: restriction.at_edge.map(|(_, at)| at),
+            broken,
             most: catchment.count.end().saturating_sub(there),
             fixed,
             mix: options.mix,
@@ -243,7 +250,7 @@ impl<'r> Problem<'r> {
 
     /// Whether what is there already holds every case, and nothing has to be added.
     pub(super) fn is_served(&self) -> bool {
-        let enough = self.least == 0 && !self.is_short_at_edge(self.edge_taken_there().1);
+        let enough = self.broken.is_none() && self.least == 0 && !self.is_short_at_edge(self.edge_taken_there().1);
         !self.fixed.is_empty() && enough && self.carries(&self.table(&self.allowable_levels(None), |_| None), &[])
     }
 
@@ -371,6 +378,16 @@ fn candidate(size: &Size, index: usize, tag: u32, stand: Stand) -> Candidate<'_>
         highest: stand.highest,
         size,
     }
+}
+
+/// The binding rule that an area breaks by itself, or by what is there already.
+fn broken(restriction: &Restriction<'_>, there: &[Group<'_>], area: &Catchment) -> Option<Broken> {
+    let by_area = restriction.broken.map(|rule| Broken { rule, there: None });
+    let breaks = |(place, group): (usize, &Group<'_>)| {
+        let rule = restriction.broken_by(group.size, group.set_height, area)?;
+        Some(Broken { rule, there: Some(place) })
+    };
+    by_area.or_else(|| there.iter().enumerate().find_map(breaks))
 }
 
 /// Cases in groups of those that differ in their demand alone, in the order of the first of each.

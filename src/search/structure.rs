@@ -62,7 +62,8 @@ pub fn stiffened(
     let mut best: Option<(i64, Stiffened)> = None;
     let mut given = None;
     for raised in treads {
-        let (Relaxation::Load(raise), Some(openings)) = (raised.change, raised.layout().and_then(|layout| layout.cost))
+        let (&Relaxation::Load(raise), Some(openings)) =
+            (&raised.change, raised.layout().and_then(|layout| layout.cost))
         else {
             continue;
         };

@@ -78,7 +78,7 @@ pub fn tradeoff(roof: &Roof, options: &Options, area: usize, raises: &Raises) ->
     let options = Options { rank_by: vec![Criterion::Cost, Criterion::Load], keep: 1, fold: true, ..options.clone() };
     let at = |step: i32| {
         let change = Relaxation::Load(raises.load(step));
-        let (roof, options) = relaxed(&alone, &options, change);
+        let (roof, options) = relaxed(&alone, &options, &change);
         Cure { change, roof, options }
     };
     // The least cost at a step, and the least step at which the limits hold the load of its layout.

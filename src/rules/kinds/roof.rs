@@ -72,6 +72,9 @@ pub(super) static SHARED_PIPE: Kind = Kind {
         }
         let pipe = area.facts.primary.shared_pipe;
         let pipe = pipe.ok_or(Open::Missing("what the shared pipe carries: primary = { shared_pipe = .. }"))?;
-        Ok((Amount::Flow(pipe), Amount::Flow((basis.flow) * rule.times())))
+        match basis.stands_in {
+            Some(stands_in) => Err(Open::Missing(stands_in.missing)),
+            None => Ok((Amount::Flow(pipe), Amount::Flow(basis.flow * rule.times()))),
+        }
     }),
 };

@@ -2,12 +2,14 @@
 
 use crate::device::Place;
 use crate::rules::amount::Amount;
-use crate::rules::kind::{Bounds, Kind, Number, Open, Role, Takes, Term};
+use crate::rules::kind::{Bounds, Datum, Kind, Number, Open, Role, Takes, Term};
 use crate::rules::set::{Bound, Rule};
 use crate::units::{Area, Length};
 
 /// Heights that set heights count from.
 const DATUMS: [&str; 4] = ["low point", "roof at wall", "primary drain", "primary water"];
+
+const ROOF_AT_WALL: &str = "the roof at the wall: roof_at_wall = .., or slope = .. and distance = ..";
 
 pub(super) static SET_HEIGHT: Kind = Kind {
     name: "set-height",
@@ -29,15 +31,18 @@ pub(super) static SET_HEIGHT: Kind = Kind {
         let inlet = primary.set_height.unwrap_or(Length::ZERO);
         match rule.word("above") {
             Some("roof at wall") if !at_edge => Err(Open::NotApplicable("not at the wall")),
-            Some("roof at wall") => Ok(area.roof_at_wall),
-            Some("primary drain") => Ok(inlet),
+            Some("roof at wall") => Ok(Datum {
+                height: area.roof_at_wall,
+                missing: area.facts.roof_at_wall_assumed.then_some(ROOF_AT_WALL),
+            }),
+            Some("primary drain") => Ok(Datum::at(inlet)),
             Some("primary water") => {
                 let depth = primary
                     .depth
                     .ok_or(Open::Missing("the water that the primary drains need: primary = { depth = .. }"));
-                depth.map(|depth| inlet + depth)
+                depth.map(|depth| Datum::at(inlet + depth))
             }
-            _ => Ok(Length::ZERO),
+            _ => Ok(Datum::at(Length::ZERO)),
         }
     }),
 };
