@@ -854,6 +854,71 @@ error: a rule that asks for `storm` asks nothing
     );
 }
 
+/// Of two rules of sills, one set takes both just where some device stands somewhere so that neither is broken: tried in areas whose
+/// drain, water and roof at the wall lie as they may, at the ends that the numbers leave. Two sets of one rule each say whether it is.
+#[test]
+fn sills_that_no_set_takes_are_those_that_stand_nowhere() {
+    const DATUMS: [&str; 4] = ["low point", "roof at wall", "primary drain", "primary water"];
+    const DEVICES: [&str; 3] = ["", "\nfor = \"scuppers\"", "\nfor = \"drains\""];
+    let at = |sill: u32, device: &str| format!("{{ {device}, count = 1, set_height = \"{sill} in\" }}");
+    let groups: Vec<String> = [3, 5, 6, 8, 9]
+        .into_iter()
+        .flat_map(|sill| {
+            [
+                at(sill, "device = \"RS\", width = \"12 in\", height = \"4 in\""),
+                at(sill, "device = \"SP\", diameter = \"6 in\""),
+            ]
+        })
+        .collect();
+    let layouts: String = groups
+        .iter()
+        .enumerate()
+        .map(|(nth, group)| format!("[[layout]]\nname = \"{nth}\"\narea = \"a\"\ngroups = [{group}]\n"))
+        .collect();
+    let mut refused = 0;
+    for (above, under, of_least, of_most) in DATUMS.iter().flat_map(|above| {
+        DATUMS.iter().flat_map(move |under| {
+            DEVICES.iter().flat_map(move |least| DEVICES.iter().map(move |most| (above, under, least, most)))
+        })
+    }) {
+        let least = format!("\"set-height\"\nat_least = \"5 in\"\nabove = \"{above}\"{of_least}");
+        let most = format!("\"set-height\"\nat_most = \"3 in\"\nabove = \"{under}\"{of_most}");
+        let folder = Folder::new()
+            .with("both.toml", &set_of("both", &[&least, &most]))
+            .with("least.toml", &set_of("least", &[&least]))
+            .with("most.toml", &set_of("most", &[&most]));
+        let takes = input::read_rules(&[&folder.0.join("both.toml")]).is_ok();
+        refused += u32::from(!takes);
+        let mut stands = false;
+        for (drain, water, wall) in [(0, 0, 0), (3, 0, 0), (0, 3, 0), (0, 0, 3), (3, 3, 0)] {
+            let area = format!(
+                "area = \"5000 ft2\"\nroof_at_wall = \"{wall} in\"\n\
+                 primary = {{ set_height = \"{drain} in\", depth = \"{water} in\" }}"
+            );
+            let text = roof("\"least.toml\", \"most.toml\"", STORM, LIMIT, &area, &groups[0]);
+            let text = text.split("[[layout]]").next().expect("a project").to_string() + &layouts;
+            fs::write(folder.0.join("roof.toml"), text).expect("writable");
+            let project = folder.read();
+            for layout in &project.layouts {
+                let found = rules::findings(&project.options.rules, &project.roof, 0, &layout.groups());
+                let speaks = found.iter().all(|finding| !matches!(finding.verdict, Verdict::NotApplicable(_)));
+                stands |= speaks && found.iter().all(|finding| finding.verdict == Verdict::Pass);
+            }
+        }
+        // Rules for devices of other places never meet.
+        let meet = of_least.is_empty() || of_most.is_empty() || of_least == of_most;
+        // Nor does one of the roof at the wall meet drains.
+        let at_wall = *above == "roof at wall" || *under == "roof at wall";
+        let meet = meet && !(at_wall && (of_least.ends_with("drains\"") || of_most.ends_with("drains\"")));
+        assert!(
+            !meet || takes == stands,
+            "5 in above {above}{of_least}, 3 in above {under}{of_most}: {takes}, {stands}"
+        );
+        assert!(meet || !stands);
+    }
+    assert!(refused > 20, "{refused}");
+}
+
 /// What lies near a fault and is none: sills whose numbers count from heights of which either may be the higher, or are for other
 /// devices; numbers of zero that ask something; one way of counting, from two clauses.
 #[test]

@@ -16,7 +16,7 @@ use super::{Failure, Form, Units, coloured_messages, deliver, faults, width};
 /// project, `builtin:rules/ipc`.
 #[derive(Debug, clap::Args)]
 pub(super) struct Args {
-    /// The file of the set.
+    /// The file of the set; without it, what a rule can ask and which sets come with the program.
     #[arg(value_name = "FILE")]
     set: Option<PathBuf>,
     /// Put these sets beside it, row by row, the strictest number of each row marked; may be given several times.
