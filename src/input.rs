@@ -37,7 +37,7 @@ mod tolerance;
 
 pub use defaults::{DEFAULTS, Default};
 pub use fault::{Fault, Faults, Place, Severity, Source, Span};
-pub use start::start;
+pub use start::{start, start_rules};
 
 /// A project as its files give it.
 #[derive(Clone, Debug)]
@@ -102,18 +102,28 @@ pub fn read_catalog(path: &Path) -> Result<Catalog, Faults> {
     catalog.filter(|_| !faults.any_error()).ok_or(faults)
 }
 
-/// Reads a rule set.
+/// Reads rule sets, each by its path or by its name among those that come with the program, and what in them is probably not
+/// meant.
 ///
 /// # Errors
-/// Every fault of the file, each with its place.
-pub fn read_rules(path: &Path) -> Result<(RuleSet, Faults), Faults> {
+/// Every fault of every file, each with its place; two sets of one title are one.
+pub fn read_rules(paths: &[&Path]) -> Result<(Vec<RuleSet>, Faults), Faults> {
     let log = fault::Log::default();
-    let set = rules::read_alone(path, &log);
+    let sets = rules::read_alone(paths, &log);
     let faults = log.into_faults();
-    match set {
-        Some(set) if !faults.any_error() => Ok((set, faults)),
+    match sets {
+        Some(sets) if !faults.any_error() => Ok((sets, faults)),
         _ => Err(faults),
     }
+}
+
+/// The rule sets that come with the program, each with the name that a project gives.
+pub fn shipped_rules() -> Vec<(String, RuleSet)> {
+    let read = |name: String| {
+        let (sets, _) = read_rules(&[Path::new(&name)]).ok()?;
+        Some(name).zip(sets.into_iter().next())
+    };
+    shipped::Sort::RuleSet.names().into_iter().filter_map(read).collect()
 }
 
 /// Reads a project and all files that it names.

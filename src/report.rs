@@ -21,6 +21,7 @@ mod contents;
 mod cures;
 mod front;
 mod json;
+mod kinds;
 mod measure;
 mod mend;
 mod notes;
@@ -226,6 +227,11 @@ pub fn contents(sizes: &[Size], title: &str, system: System, format: Format, wid
 /// Writes what a rule set asks; of several, row by row beside one another.
 pub fn rule_sets(sets: &[RuleSet], system: System, format: Format, width: usize) -> String {
     codebook::write(sets, system, format, width)
+}
+
+/// Writes what a rule can ask, and rule sets by the names that a project gives.
+pub fn rule_kinds(sets: &[(String, RuleSet)], format: Format, width: usize) -> String {
+    kinds::write(sets, format, width)
 }
 
 /// A number for another program: no separator of thousands, no zeros at its end.

@@ -767,13 +767,13 @@ error: `rules` is an empty list
   |
   = help: name at least one, or take the key out
 
-error: `slope` and `distance` belong together
+error: `slope` stands without `distance`
   --> roof.toml:32:9
    |
 32 | slope = "1/4 in/ft"
-   |         ^^^^^^^^^^^ one of them
+   |         ^^^^^^^^^^^ how high the roof stands at the wall is not known
    |
-   = help: give slope = "0.25 in/ft" and distance = "20 ft", from the low point to the wall
+   = help: give distance = "20 ft" too, from the low point to the wall
 
 "#]]);
 }

@@ -161,19 +161,22 @@ fn advice_is_found_in_what_every_case_holds_to() {
 /// A height above a roof at the wall that nobody gave can be too low, never too high.
 #[test]
 fn a_datum_that_is_not_given_leaves_open_what_hangs_on_it() {
-    let rules = |above: &str, bound: &str| ("set-height", format!("above = \"{above}\"\n{bound}"));
+    // Each in a set of its own: together they would stand against each other.
     let asked = [
-        rules("roof at wall", "at_least = \"1 in\""),
-        rules("roof at wall", "at_least = \"3 in\""),
-        rules("roof at wall", "at_most = \"3 in\""),
-        rules("roof at wall", "at_most = \"1 in\""),
-        rules("low point", "at_least = \"2 in\""),
+        ("A", "roof at wall", "at_least = \"1 in\""),
+        ("B", "roof at wall", "at_least = \"3 in\""),
+        ("C", "roof at wall", "at_most = \"3 in\""),
+        ("D", "roof at wall", "at_most = \"1 in\""),
+        ("E", "low point", "at_least = \"2 in\""),
     ];
-    let asked: Vec<(&str, &str)> = asked.iter().map(|(asks, rest)| (*asks, rest.as_str())).collect();
+    let applied = asked.map(|(set, _, _)| format!("{{ file = \"{set}.toml\", apply = \"advice\" }}")).join(", ");
     let verdicts = |area: &str| {
-        let folder =
-            Folder::new(STORM, "[{ file = \"Town.toml\", apply = \"advice\" }]", area, DRAWN).set("Town", &asked);
-        ["1", "2", "3", "4", "5"].map(|clause| folder.verdict("check", "Town", clause).0)
+        let folder = Folder::new(STORM, &format!("[{applied}]"), area, DRAWN);
+        let with = |folder: Folder, (set, above, bound): (&str, &str, &str)| {
+            folder.set(set, &[("set-height", &format!("above = \"{above}\"\n{bound}"))])
+        };
+        let folder = asked.into_iter().fold(folder, with);
+        asked.map(|(set, _, _)| folder.verdict("check", set, "1").0)
     };
     assert_eq!(verdicts(""), ["cannot tell", "fail", "pass", "cannot tell", "pass"]);
     assert_eq!(verdicts("roof_at_wall = \"0 in\""), ["pass", "fail", "pass", "fail", "pass"]);

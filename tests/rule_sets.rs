@@ -79,10 +79,14 @@ rating = "drain.csv"
 "#;
 
 fn shipped(name: &str) -> RuleSet {
-    let (set, faults) = input::read_rules(Path::new(&format!("builtin:rules/{name}")))
-        .unwrap_or_else(|faults| panic!("{name}: {faults}"));
-    assert!(faults.0.is_empty(), "{name}: {faults}");
-    set
+    read(Path::new(&format!("builtin:rules/{name}")))
+}
+
+/// A rule set of a file without fault or warning.
+fn read(path: &Path) -> RuleSet {
+    let (mut sets, faults) = input::read_rules(&[path]).unwrap_or_else(|faults| panic!("{}: {faults}", path.display()));
+    assert!(faults.0.is_empty(), "{}: {faults}", path.display());
+    sets.remove(0)
 }
 
 fn folder_of_sets() -> PathBuf {
@@ -96,8 +100,7 @@ fn every_shipped_set_reads() {
     for entry in fs::read_dir(folder_of_sets()).expect("a folder") {
         let path = entry.expect("an entry").path();
         let name = path.file_stem().and_then(|name| name.to_str()).expect("a name");
-        let (set, faults) = input::read_rules(&path).unwrap_or_else(|faults| panic!("{name}: {faults}"));
-        assert!(faults.0.is_empty(), "{name}: {faults}");
+        let set = read(&path);
         assert!(set.title.len() <= 18, "{name}: the title heads a narrow column");
         titles.push(set.title.clone());
         if name == "template" {
@@ -129,7 +132,7 @@ fn every_shipped_set_reads() {
 /// The template shows every kind, and every key that each takes.
 #[test]
 fn the_template_shows_every_kind_with_every_key() {
-    let (set, _) = input::read_rules(&folder_of_sets().join("template.toml")).expect("reads");
+    let set = read(&folder_of_sets().join("template.toml"));
     for kind in KINDS {
         let of_kind: Vec<&Rule> = set.rules.iter().filter(|rule| rule.kind == kind).collect();
         assert!(!of_kind.is_empty(), "{}", kind.name);
@@ -143,9 +146,7 @@ fn the_template_shows_every_kind_with_every_key() {
 #[test]
 fn the_filled_in_template_reads() {
     let path = Path::new(env!("CARGO_MANIFEST_DIR")).join("examples/borough-amendment-rules.toml");
-    let (set, faults) = input::read_rules(&path).unwrap_or_else(|faults| panic!("{faults}"));
-    assert!(faults.0.is_empty());
-    assert_eq!(set.rules.len(), 6);
+    assert_eq!(read(&path).rules.len(), 6);
 }
 
 const SEEN: Known = Known::Read;
@@ -260,7 +261,7 @@ fn storms_are_as_published() {
         ("din-1986-100", vec![storm(5.0, 100.0, SEEN)]),
         ("as-nzs-3500-3", vec![storm(5.0, 100.0, SEEN)]),
         ("obc", vec![]),
-        ("obc-flow-control", vec![(None, None, None, None, Some(2.0), SEEN)]),
+        ("obc-flow-control", vec![(Some(15.0), None, None, None, Some(2.0), SEEN)]),
     ];
     for (name, storms) in wanted {
         let told = |rule: &Rule| -> Told {
@@ -404,6 +405,40 @@ fn twice_the_hourly_rate_instead_of_the_quarter_hour() {
     }
 }
 
+/// Twice the rain of 15 min, once for each way in which the project can know that: its design storm lasts so long, one of its
+/// further storms does and is met as often, its table says so at its own return period. What lasts an hour, or as long as nobody
+/// says, is not doubled: the design rain stands in, and the verdict cannot tell. Source: Ontario building code, quoted.
+#[test]
+fn twice_the_rain_of_a_quarter_hour() {
+    const TABLE: &str = "duration_min,10_yr_in_h,100_yr_in_h\n15,3,5\n60,1.5,2\n";
+    let further = |years: u32| {
+        format!(
+            "intensity = \"2 in/h\"\nduration = \"60 min\"\nreturn_period = \"10 yr\"\n\
+             storms = [{{ name = \"burst\", duration = \"15 min\", return_period = \"{years} yr\", intensity = \"4 in/h\" }}]"
+        )
+    };
+    let in_table = |minutes: u32, years: u32| {
+        format!("table = \"rain.csv\"\nduration = \"{minutes} min\"\nreturn_period = \"{years} yr\"")
+    };
+    for (storm, rain, verdict) in [
+        ("intensity = \"4 in/h\"\nduration = \"15 min\"".into(), 8.0, "pass"),
+        ("intensity = \"4 in/h\"\nduration = \"15 min\"\nreturn_period = \"10 yr\"".into(), 8.0, "pass"),
+        ("intensity = \"4 in/h\"\nduration = \"60 min\"".into(), 4.0, "cannot tell"),
+        ("intensity = \"4 in/h\"".into(), 4.0, "cannot tell"),
+        (further(10), 8.0, "pass"),
+        (further(100), 2.0, "cannot tell"),
+        (in_table(60, 10), 6.0, "pass"),
+        (in_table(60, 100), 10.0, "pass"),
+        (in_table(15, 100), 10.0, "pass"),
+    ] {
+        let text = roof("\"builtin:rules/obc-flow-control\"", &storm, LIMIT, AREA, TWO);
+        let (project, found) = findings(&Folder::new().with("rain.csv", TABLE).with("roof.toml", &text));
+        let counted = project.roof.bases[0].areas[0].intensity.m_per_s() * 3600.0 / IN;
+        assert_relative_eq!(counted, rain, max_relative = 1e-9);
+        assert_eq!(of_kind(&project, &found, "storm").verdict.name(), verdict, "{storm}");
+    }
+}
+
 /// A storm that the table does not reach is one of the project, where that has the same.
 #[test]
 fn a_storm_beyond_the_table_is_found_among_those_of_the_project() {
@@ -501,6 +536,8 @@ fn every_kind_in_every_verdict() {
     const WATER: &str = "area = \"5000 ft2\"\nprimary = { set_height = \"0.5 in\", depth = \"1.5 in\" }";
     const PARAPET: &str = "area = \"5000 ft2\"\nparapet = { height = \"10 in\", thickness = \"8 in\" }";
     const SLOPED: &str = "area = \"5000 ft2\"\nslope = \"0.25 in/ft\"\ndistance = \"4 ft\"";
+    const FLAT: &str = "area = \"5000 ft2\"\ndistance = \"4 ft\"";
+    const LEVEL: &str = "area = \"5000 ft2\"\nslope = \"0 in/ft\"\ndistance = \"4 ft\"";
     const EDGE: &str = "area = \"5000 ft2\"\nedge = \"60 ft\"";
     const APART: &str = "area = \"5000 ft2\"\noverflow_to = \"separate\"";
     const SHARED: &str = "area = \"5000 ft2\"\noverflow_to = \"with the primary\"";
@@ -518,6 +555,9 @@ fn every_kind_in_every_verdict() {
             "cannot tell",
             "rainfall table",
         ),
+        judged("asks = \"storm\"\nduration = \"15 min\"\ntimes = 2.0", AREA, "pass", ""),
+        judged("asks = \"storm\"\nduration = \"15 min\"\ntimes = 2.0", AREA, "fail", "").advice(),
+        judged("asks = \"storm\"\nduration = \"60 min\"\ntimes = 2.0", AREA, "cannot tell", "of this duration"),
         judged(
             "asks = \"storm\"\nduration = \"15 min\"\nreturn_period = \"100 yr\"\nreturn_period_4 = \"500 yr\"",
             AREA,
@@ -625,6 +665,10 @@ fn every_kind_in_every_verdict() {
         judged("asks = \"distance\"\nat_most = \"4 ft\"", SLOPED, "pass", ""),
         judged("asks = \"distance\"\nat_most = \"3.9 ft\"", SLOPED, "fail", ""),
         judged("asks = \"distance\"\nat_most = \"4 ft\"", AREA, "cannot tell", "way to the wall"),
+        judged("asks = \"distance\"\nat_most = \"4 ft\"", FLAT, "pass", ""),
+        judged("asks = \"distance\"\nat_most = \"3.9 ft\"", FLAT, "fail", ""),
+        judged("asks = \"slope\"\nat_least = \"1:80\"", FLAT, "cannot tell", "fall"),
+        judged("asks = \"slope\"\nat_least = \"1:80\"", LEVEL, "fail", ""),
         judged("asks = \"separate-discharge\"", APART, "pass", ""),
         judged("asks = \"separate-discharge\"", SHARED, "fail", ""),
         judged("asks = \"separate-discharge\"", AREA, "cannot tell", "overflow"),
@@ -663,6 +707,490 @@ fn verdicts_that_need_more_than_one_key() {
     let (_, found) = findings(&Folder::new().with("set.toml", set).with("roof.toml", &text));
     let verdicts: Vec<&str> = found.iter().map(|finding| finding.verdict.name()).collect();
     assert_eq!(verdicts, ["fail", "pass", "pass", "pass", "not applicable"]);
+}
+
+/// The program run in a folder.
+fn brimline(folder: &Folder, args: &[&str]) -> Command {
+    Command::new(cargo_bin!("brimline")).current_dir(&folder.0).env("NO_COLOR", "1").args(args)
+}
+
+/// What it says, where it ends well.
+fn said(folder: &Folder, args: &[&str]) -> String {
+    let output = brimline(folder, args).output().expect("runs");
+    assert!(output.status.success(), "{args:?}: {}", String::from_utf8_lossy(&output.stderr));
+    String::from_utf8(output.stdout).expect("UTF-8")
+}
+
+fn as_json(text: &str) -> serde_json::Value {
+    serde_json::from_str(text).expect("JSON")
+}
+
+/// A set of rules, each of what it asks and its keys.
+fn set_of(title: &str, rules: &[&str]) -> String {
+    let one = |rule: &&str| format!("[[rule]]\nasks = {rule}\nclause = \"1\"\nsource = \"x\"\nknown = \"read\"\n");
+    format!("title = \"{title}\"\n{}", rules.iter().map(one).collect::<String>())
+}
+
+/// Rules that no layout keeps together, that count in two ways, and that ask nothing or what no roof has.
+#[test]
+#[expect(clippy::too_many_lines, reason = "most lines are the messages")]
+fn rules_that_cannot_stand() {
+    let together = set_of(
+        "S",
+        &[
+            "\"set-height\"\nat_least = \"5 in\"\nabove = \"primary water\"",
+            "\"set-height\"\nat_most = \"3 in\"\nabove = \"primary drain\"\nfor = \"scuppers\"",
+            "\"walls\"\ncount = \"by corner\"",
+            "\"primary-credit\"\ncredited = true",
+            "\"walls\"\ncount = \"half of each\"",
+            "\"primary-credit\"\ncredited = false",
+            "\"depth\"\nat_most = \"4 in\"",
+        ],
+    );
+    let alone = set_of(
+        "S",
+        &[
+            "\"spacing\"\nat_most = \"0 ft\"",
+            "\"opening-width\"\nat_least = \"0 in\"",
+            "\"slope\"\nat_least = \"0 %\"",
+            "\"set-height\"\nat_least = \"0 in\"\nabove = \"low point\"",
+            "\"storm\"",
+        ],
+    );
+    let folder = Folder::new().with("together.toml", &together).with("alone.toml", &alone);
+    brimline(&folder, &["rules", "together.toml"]).assert().code(2).stdout_eq("").stderr_eq(
+        str![[r"
+error: no sill keeps both of these rules
+ --> together.toml:9:1
+  |
+2 | [[rule]]
+  | -------- this one
+...
+9 | [[rule]]
+  | ^^^^^^^^ and this one
+  |
+  = help: the least height of a sill may not be over its greatest: change one of the numbers
+
+error: two rules of one set ask for `walls`, each in its own way
+  --> together.toml:29:1
+   |
+17 | [[rule]]
+   | -------- this one
+...
+29 | [[rule]]
+   | ^^^^^^^^ and this one
+   |
+   = help: a set counts in one way: take one out, or write a set for each reading
+
+error: two rules of one set ask for `primary-credit`, each in its own way
+  --> together.toml:35:1
+   |
+23 | [[rule]]
+   | -------- this one
+...
+35 | [[rule]]
+   | ^^^^^^^^ and this one
+   |
+   = help: a set counts in one way: take one out, or write a set for each reading
+
+error: no layout keeps both of these rules: the lowest sill is over the deepest water
+  --> together.toml:41:1
+   |
+ 2 | [[rule]]
+   | -------- this one
+...
+41 | [[rule]]
+   | ^^^^^^^^ and this one
+   |
+   = help: water runs out over a sill: let it stand deeper, or the sill lower
+
+"]]
+        .raw(),
+    );
+    brimline(&folder, &["rules", "alone.toml"]).assert().code(2).stdout_eq("").stderr_eq(
+        str![[r#"
+error: `at_most` must be above zero
+ --> alone.toml:4:11
+  |
+4 | at_most = "0 ft"
+  |           ^^^^^^ not above zero
+  |
+  = help: write a value above zero
+
+error: `at_least` must be above zero
+  --> alone.toml:10:12
+   |
+10 | at_least = "0 in"
+   |            ^^^^^^ not above zero
+   |
+   = help: write a value above zero
+
+error: `at_least` must be above zero
+  --> alone.toml:16:12
+   |
+16 | at_least = "0 %"
+   |            ^^^^^ not above zero
+   |
+   = help: write a value above zero
+
+error: a rule that asks for `set-height` asks nothing
+  --> alone.toml:20:1
+   |
+20 | [[rule]]
+   | ^^^^^^^^ every sill keeps it
+   |
+   = help: give a number above zero, or count it from another height
+
+error: a rule that asks for `storm` asks nothing
+  --> alone.toml:27:1
+   |
+27 | [[rule]]
+   | ^^^^^^^^ the design rain as it is
+   |
+   = help: give a duration, an intensity or a factor
+
+"#]]
+        .raw(),
+    );
+}
+
+/// Of two rules of sills, one set takes both just where some device stands somewhere so that neither is broken: tried in areas whose
+/// drain, water and roof at the wall lie as they may, at the ends that the numbers leave. Two sets of one rule each say whether it is.
+#[test]
+fn sills_that_no_set_takes_are_those_that_stand_nowhere() {
+    const DATUMS: [&str; 4] = ["low point", "roof at wall", "primary drain", "primary water"];
+    const DEVICES: [&str; 3] = ["", "\nfor = \"scuppers\"", "\nfor = \"drains\""];
+    let at = |sill: u32, device: &str| format!("{{ {device}, count = 1, set_height = \"{sill} in\" }}");
+    let groups: Vec<String> = [3, 5, 6, 8, 9]
+        .into_iter()
+        .flat_map(|sill| {
+            [
+                at(sill, "device = \"RS\", width = \"12 in\", height = \"4 in\""),
+                at(sill, "device = \"SP\", diameter = \"6 in\""),
+            ]
+        })
+        .collect();
+    let layouts: String = groups
+        .iter()
+        .enumerate()
+        .map(|(nth, group)| format!("[[layout]]\nname = \"{nth}\"\narea = \"a\"\ngroups = [{group}]\n"))
+        .collect();
+    let mut refused = 0;
+    for (above, under, of_least, of_most) in DATUMS.iter().flat_map(|above| {
+        DATUMS.iter().flat_map(move |under| {
+            DEVICES.iter().flat_map(move |least| DEVICES.iter().map(move |most| (above, under, least, most)))
+        })
+    }) {
+        let least = format!("\"set-height\"\nat_least = \"5 in\"\nabove = \"{above}\"{of_least}");
+        let most = format!("\"set-height\"\nat_most = \"3 in\"\nabove = \"{under}\"{of_most}");
+        let folder = Folder::new()
+            .with("both.toml", &set_of("both", &[&least, &most]))
+            .with("least.toml", &set_of("least", &[&least]))
+            .with("most.toml", &set_of("most", &[&most]));
+        let takes = input::read_rules(&[&folder.0.join("both.toml")]).is_ok();
+        refused += u32::from(!takes);
+        let mut stands = false;
+        for (drain, water, wall) in [(0, 0, 0), (3, 0, 0), (0, 3, 0), (0, 0, 3), (3, 3, 0)] {
+            let area = format!(
+                "area = \"5000 ft2\"\nroof_at_wall = \"{wall} in\"\n\
+                 primary = {{ set_height = \"{drain} in\", depth = \"{water} in\" }}"
+            );
+            let text = roof("\"least.toml\", \"most.toml\"", STORM, LIMIT, &area, &groups[0]);
+            let text = text.split("[[layout]]").next().expect("a project").to_string() + &layouts;
+            fs::write(folder.0.join("roof.toml"), text).expect("writable");
+            let project = folder.read();
+            for layout in &project.layouts {
+                let found = rules::findings(&project.options.rules, &project.roof, 0, &layout.groups());
+                let speaks = found.iter().all(|finding| !matches!(finding.verdict, Verdict::NotApplicable(_)));
+                stands |= speaks && found.iter().all(|finding| finding.verdict == Verdict::Pass);
+            }
+        }
+        // Rules for devices of other places never meet.
+        let meet = of_least.is_empty() || of_most.is_empty() || of_least == of_most;
+        // Nor does one of the roof at the wall meet drains.
+        let at_wall = *above == "roof at wall" || *under == "roof at wall";
+        let meet = meet && !(at_wall && (of_least.ends_with("drains\"") || of_most.ends_with("drains\"")));
+        assert!(
+            !meet || takes == stands,
+            "5 in above {above}{of_least}, 3 in above {under}{of_most}: {takes}, {stands}"
+        );
+        assert!(meet || !stands);
+    }
+    assert!(refused > 20, "{refused}");
+}
+
+/// What lies near a fault and is none: sills whose numbers count from heights of which either may be the higher, or are for other
+/// devices; numbers of zero that ask something; one way of counting, from two clauses.
+#[test]
+fn rules_that_can_stand_together() {
+    for rules in [
+        [
+            "\"set-height\"\nat_least = \"5 in\"\nabove = \"low point\"",
+            "\"set-height\"\nat_most = \"5 in\"\nabove = \"low point\"",
+        ],
+        [
+            "\"set-height\"\nat_least = \"5 in\"\nabove = \"low point\"",
+            "\"set-height\"\nat_most = \"3 in\"\nabove = \"roof at wall\"",
+        ],
+        [
+            "\"set-height\"\nat_least = \"5 in\"\nabove = \"low point\"\nfor = \"drains\"",
+            "\"set-height\"\nat_most = \"3 in\"\nabove = \"low point\"\nfor = \"scuppers\"",
+        ],
+        ["\"set-height\"\nat_least = \"5 in\"\nabove = \"roof at wall\"", "\"depth\"\nat_most = \"4 in\""],
+        ["\"set-height\"\nat_least = \"5 in\"\nabove = \"low point\"", "\"parapet-freeboard\"\nat_least = \"0 in\""],
+        ["\"freeboard\"\nat_least = \"0 in\"", "\"set-height\"\nat_least = \"0 in\"\nabove = \"primary water\""],
+        ["\"storm\"\ntimes = 2.0", "\"set-height\"\nat_most = \"0 in\"\nabove = \"roof at wall\""],
+    ] {
+        let folder = Folder::new().with("set.toml", &set_of("S", &rules));
+        assert_eq!(read(&folder.0.join("set.toml")).rules.len(), 2);
+    }
+    let twice = set_of("S", &["\"walls\"\ncount = \"none\"", "\"walls\"\ncount = \"none\""]);
+    let folder = Folder::new().with("set.toml", &twice);
+    let (sets, faults) = input::read_rules(&[&folder.0.join("set.toml")]).unwrap_or_else(|faults| panic!("{faults}"));
+    assert_eq!((sets.len(), faults.0.len(), faults.any_error()), (1, 1, false), "one warning: {faults}");
+}
+
+/// A set by its name alone, one that only the reader may copy, and a catalog where a set belongs.
+#[test]
+fn names_of_sets_that_there_are_not() {
+    let rules = "\"builtin:ipc\", \"builtin:rules/template\", \"builtin:overflow-drains\"";
+    let folder = Folder::new().with("roof.toml", &roof(rules, STORM, LIMIT, AREA, TWO));
+    let output = brimline(&folder, &["size", "roof.toml"]).output().expect("runs");
+    assert_eq!(output.status.code(), Some(2));
+    let told = String::from_utf8(output.stderr).expect("UTF-8");
+    let told: Vec<&str> = told.split("\n\n").collect();
+    assert_eq!(told.len(), 3, "{told:?}");
+    for (told, name) in told.iter().zip(["builtin:ipc", "builtin:rules/template", "builtin:overflow-drains"]) {
+        assert!(told.starts_with(&format!("error: there is no rule set `{name}`\n")), "{told}");
+        assert!(told.contains("builtin:rules/fm-1-54") && told.contains("`brimline start FILE --rules`"), "{told}");
+        assert!(!told.contains("builtin:made-to-measure"), "{told}");
+    }
+    assert!(told[0].contains("help: did you mean `builtin:rules/ipc`? "), "{}", told[0]);
+    // Nor is a rule set a catalog.
+    let other = roof("\"builtin:rules/ipc\"", STORM, LIMIT, AREA, TWO).replace("devices.toml", "builtin:rules/ipc");
+    let output = brimline(&folder.with("roof.toml", &other), &["size", "roof.toml"]).output().expect("runs");
+    let told = String::from_utf8(output.stderr).expect("UTF-8");
+    assert!(told.contains("there is no catalog `builtin:rules/ipc`"), "{told}");
+}
+
+/// A firm's first set: written once, never over a file, the same as the one in the folder; it reads without a word on stderr.
+#[test]
+fn a_set_to_fill_in_is_written() {
+    let folder = Folder::new();
+    let told = said(&folder, &["start", "town/rules.toml", "--rules"]);
+    assert_eq!(told, "wrote town/rules.toml\nFill it in, then run: brimline rules town/rules.toml\n");
+    let (here, ours) = (folder.0.join("town/rules.toml"), folder_of_sets().join("template.toml"));
+    assert_eq!(fs::read_to_string(&here).expect("written"), fs::read_to_string(ours).expect("readable"));
+    brimline(&folder, &["rules", "town/rules.toml"]).assert().code(0).stderr_eq("");
+    fs::write(&here, "mine").expect("writable");
+    brimline(&folder, &["start", "town/rules.toml", "--rules"]).assert().code(2).stdout_eq("").stderr_eq(str![[r"
+error: `town/rules.toml` is there already
+  = help: give another name or folder: nothing is overwritten
+
+"]]);
+    assert_eq!(fs::read_to_string(&here).expect("readable"), "mine");
+}
+
+/// `rules` alone: every kind with every key, every set of the folder with its counts, in every form.
+#[test]
+fn what_a_rule_can_ask_and_which_sets_there_are() {
+    let folder = Folder::new();
+    let forms =
+        ["table", "md", "csv", "json"].map(|form| said(&folder, &["rules", "--format", form]).replace("\\_", "_"));
+    for (form, text) in ["table", "md", "csv", "json"].iter().zip(&forms) {
+        for kind in KINDS {
+            assert!(text.contains(kind.name), "{form}: {}", kind.name);
+            assert!(kind.terms.iter().all(|term| text.contains(term.key)), "{form}: {}", kind.name);
+        }
+    }
+    assert!(forms[0].lines().all(|line| line.chars().count() <= 120));
+    let document = as_json(&forms[3]);
+    let names: Vec<&str> = document["kinds"]
+        .as_array()
+        .expect("a list")
+        .iter()
+        .map(|kind| kind["predicate"].as_str().expect("a word"))
+        .collect();
+    assert_eq!(names, KINDS.map(|kind| kind.name));
+    let sill =
+        document["kinds"].as_array().and_then(|kinds| kinds.iter().find(|kind| kind["predicate"] == "set-height"));
+    let sill = sill.expect("sills");
+    assert_eq!(sill["bounds"], serde_json::json!(["at_least", "at_most"]));
+    assert_eq!(sill["takes"][1]["words"], serde_json::json!(["scuppers", "drains"]));
+    assert_eq!((&sill["takes"][0]["needed"], &sill["takes"][1]["needed"]), (&true.into(), &false.into()));
+    let mut count = 0;
+    for set in document["sets"].as_array().expect("a list") {
+        let name = set["name"].as_str().expect("a name");
+        let file = name.strip_prefix("builtin:rules/").expect("a name of a set");
+        let text = fs::read_to_string(folder_of_sets().join(format!("{file}.toml"))).expect("in the folder");
+        let (rules, recalled) = (text.matches("[[rule]]").count(), text.matches("= \"recalled\"").count());
+        assert_eq!((&set["rules"], &set["recalled"]), (&rules.into(), &recalled.into()), "{name}");
+        assert!(text.contains(&format!("= \"{}\"", set["title"].as_str().expect("a title"))), "{name}");
+        assert!(forms.iter().all(|form| form.contains(name)), "{name}");
+        count += 1;
+    }
+    assert_eq!(count, 15);
+}
+
+/// Documents are SI with their units whatever is asked for; words are in inches only where that is asked for.
+#[test]
+fn terms_of_rules_in_documents() {
+    let rules = [
+        "\"storm\"\nduration = \"15 min\"\nreturn_period = \"100 yr\"\ntimes = 2.0",
+        "\"storm\"\nintensity = \"36 mm/h\"",
+        "\"set-height\"\nat_most = \"4 in\"\nabove = \"roof at wall\"\nfor = \"scuppers\"",
+        "\"count\"\nat_least = 2\nfirst = \"100 m2\"\nfor_each = \"50 m2\"",
+        "\"primary-credit\"\ncredited = false",
+    ];
+    let folder = Folder::new().with("set.toml", &set_of("S", &rules));
+    let terms = [
+        serde_json::json!({ "duration_s": 900.0, "return_period_yr": 100.0, "times": 2.0 }),
+        serde_json::json!({ "intensity_m_s": 1e-5 }),
+        serde_json::json!({ "above": "roof at wall", "for": "scuppers" }),
+        serde_json::json!({ "first_m2": 100.0, "for_each_m2": 50.0 }),
+        serde_json::json!({ "credited": false }),
+    ];
+    for (units, words) in [(None, "at most 101.6 mm"), (Some("si"), "at most 101.6 mm"), (Some("us"), "at most 4 in")] {
+        let args: Vec<&str> = ["rules", "set.toml", "--format", "json"]
+            .into_iter()
+            .chain(units.into_iter().flat_map(|units| ["--units", units]))
+            .collect();
+        let document = as_json(&said(&folder, &args));
+        let rules = document["sets"][0]["rules"].as_array().expect("a list");
+        for (rule, terms) in rules.iter().zip(&terms) {
+            let (found, wanted) = (rule["terms"].as_object().expect("a table"), terms.as_object().expect("a table"));
+            assert_eq!(found.keys().collect::<Vec<_>>(), wanted.keys().collect::<Vec<_>>());
+            for (key, wanted) in wanted {
+                match wanted.as_f64() {
+                    Some(wanted) => assert_relative_eq!(found[key].as_f64().expect(key), wanted, max_relative = 1e-12),
+                    None => assert_eq!(&found[key], wanted),
+                }
+            }
+        }
+        assert_relative_eq!(rules[2]["required"]["value"].as_f64().expect("a number"), 0.1016, max_relative = 1e-12);
+        assert_eq!(rules[2]["required"]["unit"], "m");
+        assert!(rules[2]["asks"].as_str().is_some_and(|asks| asks.ends_with(words)), "{}", rules[2]["asks"]);
+    }
+    let text = said(&folder, &["rules", "set.toml", "--format", "csv"]);
+    let mut reader = csv::Reader::from_reader(text.as_bytes());
+    let head = reader.headers().expect("a head").clone();
+    let rows: Vec<csv::StringRecord> = reader.records().map(|row| row.expect("as many cells as the head")).collect();
+    let cell = |row: usize, key: &str| &rows[row - 1][head.iter().position(|known| known == key).expect(key)];
+    let number = |row: usize, head: &str| cell(row, head).parse::<f64>().expect("a number");
+    assert_relative_eq!(number(1, "duration_s"), 900.0, max_relative = 1e-12);
+    assert_relative_eq!(number(1, "return_period_yr"), 100.0, max_relative = 1e-12);
+    assert_relative_eq!(number(3, "value"), 0.1016, max_relative = 1e-12);
+    assert_eq!((cell(3, "bound"), cell(3, "unit"), cell(3, "for")), ("at most", "m", "scuppers"));
+}
+
+/// Sets side by side: of two storms either is asked, of two widths both; a count that grows with the area is ranked where one asks
+/// no fewer of every area; two sets of one title are told apart by nobody.
+#[test]
+fn sets_side_by_side() {
+    let count = |least: u32, each: u32| format!("\"count\"\nat_least = {least}\nfor_each = \"{each} ft2\"");
+    let one = set_of(
+        "one",
+        &[
+            "\"storm\"\nduration = \"15 min\"",
+            "\"storm\"\nduration = \"15 min\"\ntimes = 2.0",
+            "\"width-by-drain\"\nat_least = 2.0\nof = \"diameter\"",
+            "\"width-by-drain\"\nat_least = 3.0\nof = \"diameter\"",
+            &count(2, 5000),
+        ],
+    );
+    let folder = Folder::new()
+        .with("one.toml", &one)
+        .with(
+            "fewer.toml",
+            &set_of("fewer", &[&count(2, 9000), "\"width-by-drain\"\nat_least = 2.5\nof = \"diameter\""]),
+        )
+        .with("other.toml", &set_of("other", &[&count(3, 9000)]))
+        .with("again.toml", &set_of("one", &["\"limits\""]));
+    let table = said(&folder, &["rules", "one.toml", "--against", "fewer.toml", "--format", "md"]);
+    assert!(table.contains("asked (1); or 2 times (1)"), "{table}");
+    assert!(table.contains("at least 2 times (1); and at least 3 times (1) \\*"), "{table}");
+    assert!(!table.contains("is not ranked where"), "{table}");
+    let strictest = |against: &str| {
+        let document = as_json(&said(&folder, &["rules", "one.toml", "--against", against, "--format", "json"]));
+        let of_set = |set: usize| {
+            let rules = document["sets"][set]["rules"].as_array().expect("a list").iter();
+            let counts = rules.filter(|rule| rule["predicate"] == "count");
+            counts.map(|rule| rule["strictest"].as_bool().expect("yes or no")).collect::<Vec<_>>()
+        };
+        (of_set(0), of_set(1))
+    };
+    assert_eq!(strictest("fewer.toml"), (vec![true], vec![false]));
+    assert_eq!(
+        strictest("other.toml"),
+        (vec![false], vec![false]),
+        "2 on 5,000 ft2 against 3; 4 on 12,000 against 4; 5 on 18,000 against 4"
+    );
+    let table = said(&folder, &["rules", "one.toml", "--against", "other.toml"]);
+    assert!(table.contains("A number of devices is not ranked where"), "{table}");
+    brimline(&folder, &["rules", "one.toml", "--against", "fewer.toml", "--against", "again.toml"])
+        .assert()
+        .code(2)
+        .stdout_eq("")
+        .stderr_eq(
+            str![[r#"
+warning: two rules ask for `width-by-drain` in the same terms
+  --> one.toml:22:1
+   |
+15 | [[rule]]
+   | -------- first here
+...
+22 | [[rule]]
+   | ^^^^^^^^ again here
+   |
+   = help: both are asked; take one out where one was meant
+
+error: two rule sets have the title `one`
+ --> again.toml:1:9
+  |
+1 | title = "one"
+  |         ^^^^^ again here
+  |
+ ::: one.toml:1:9
+  |
+1 | title = "one"
+  |         ----- first here
+  |
+  = help: reports name a set by its title: give every set its own
+
+"#]]
+            .raw(),
+        );
+    brimline(&folder, &["rules", "--against", "one.toml"]).assert().code(2).stdout_eq("");
+}
+
+/// However many sets stand side by side, no word is broken: the page has the words of the Markdown, in which nothing is wrapped.
+#[test]
+fn no_word_is_broken_side_by_side() {
+    let names: Vec<String> = fs::read_dir(folder_of_sets())
+        .expect("a folder")
+        .filter_map(|entry| Some(entry.ok()?.path().file_stem()?.to_str()?.to_string()))
+        .filter(|name| name != "template")
+        .map(|name| format!("builtin:rules/{name}"))
+        .collect();
+    let folder = Folder::new();
+    for many in [2, 3, 4, 5, 8, names.len()] {
+        let mut args = vec!["rules", &names[0]];
+        for name in &names[1..many] {
+            args.extend(["--against", name]);
+        }
+        let page = said(&folder, &args);
+        args.extend(["--format", "md"]);
+        let whole = said(&folder, &args);
+        let words = |text: &str| {
+            let text = text.replace(['│', '┆', '|', '\\'], " ");
+            let mut words: Vec<String> = text.split_whitespace().map(str::to_string).collect();
+            words.retain(|word| word.chars().any(char::is_alphanumeric));
+            words.sort();
+            words
+        };
+        assert_eq!(words(&page), words(&whole), "{many} sets:\n{page}");
+        assert!(page.lines().all(|line| line.chars().count() <= 120), "{many} sets:\n{page}");
+    }
 }
 
 /// A set with every kind of fault, and one that has the title of another: all told in one run, each at its place.
@@ -767,15 +1295,15 @@ error: there is no rule set `builtin:rules/icp`
 4 | rules = ["bad.toml", "one.toml", "two.toml", "empty.toml", "builtin:rules/icp", "builtin:through-wall-scupper",
   |                                                            ^^^^^^^^^^^^^^^^^^^ named here
   |
-  = help: did you mean `builtin:rules/ipc`? builtin:rules/asce-7-16, builtin:rules/asce-7-22, builtin:rules/ibc-2018, builtin:rules/ibc-2021, builtin:rules/ipc, builtin:rules/upc-family, builtin:rules/irc-by-width, builtin:rules/irc-by-area, builtin:rules/high-wind-coast, builtin:rules/fm-1-54, builtin:rules/en-12056-3-bs-8490, builtin:rules/din-1986-100, builtin:rules/as-nzs-3500-3, builtin:rules/obc or builtin:rules/obc-flow-control would pass
+  = help: did you mean `builtin:rules/ipc`? builtin:rules/asce-7-16, builtin:rules/asce-7-22, builtin:rules/ibc-2018, builtin:rules/ibc-2021, builtin:rules/ipc, builtin:rules/upc-family, builtin:rules/irc-by-width, builtin:rules/irc-by-area, builtin:rules/high-wind-coast, builtin:rules/fm-1-54, builtin:rules/en-12056-3-bs-8490, builtin:rules/din-1986-100, builtin:rules/as-nzs-3500-3, builtin:rules/obc or builtin:rules/obc-flow-control would pass; `brimline start FILE --rules` writes one to fill in
 
-error: there is no catalog `builtin:through-wall-scupper`
+error: there is no rule set `builtin:through-wall-scupper`
  --> roof.toml:4:81
   |
 4 | rules = ["bad.toml", "one.toml", "two.toml", "empty.toml", "builtin:rules/icp", "builtin:through-wall-scupper",
   |                                                                                 ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ named here
   |
-  = help: did you mean `builtin:through-wall-scuppers`? builtin:through-wall-scuppers, builtin:made-to-measure, builtin:overflow-drains, builtin:sleeves-drains-and-edges, builtin:published-scupper-table, builtin:through-wall-scuppers-metric or builtin:overflow-drains-metric would pass
+  = help: builtin:rules/asce-7-16, builtin:rules/asce-7-22, builtin:rules/ibc-2018, builtin:rules/ibc-2021, builtin:rules/ipc, builtin:rules/upc-family, builtin:rules/irc-by-width, builtin:rules/irc-by-area, builtin:rules/high-wind-coast, builtin:rules/fm-1-54, builtin:rules/en-12056-3-bs-8490, builtin:rules/din-1986-100, builtin:rules/as-nzs-3500-3, builtin:rules/obc or builtin:rules/obc-flow-control would pass; `brimline start FILE --rules` writes one to fill in
 
 error: two rule sets have the title `T`
  --> roof.toml:5:14

@@ -225,7 +225,7 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
     let edge = otherwise("edge", "area.edge");
     let gap = otherwise("gap", "area.gap");
     let surface = read_surface(section);
-    let sloped = section.get("slope").is_some() || section.get("distance").is_some();
+    let sloped = section.get("slope").is_some();
     let roof_at_wall =
         if sloped { section.get("roof_at_wall") } else { otherwise("roof_at_wall", "area.roof_at_wall") };
     let edge = edge.map(|cell| cell.length());
@@ -338,11 +338,19 @@ fn read_walls<'a>(
 /// How the surface of an area lies.
 fn read_surface(section: &Section<'_>) -> Option<Surface> {
     let low_point = section.get("low_point").map(|cell| cell.length());
-    let (slope, distance) = (section.get("slope"), section.get("distance"));
-    let rise = match (slope, distance) {
-        (None, None) => None,
-        (Some(slope), Some(distance)) => {
-            let (fall, distance) = (slope.slope(), distance.positive_length());
+    let to_wall = section.get("distance").map(|cell| cell.positive_length());
+    let rise = match section.get("slope") {
+        None => Some(None),
+        Some(cell) if to_wall.is_none() => {
+            cell.at_fault(
+                "`slope` stands without `distance`",
+                "how high the roof stands at the wall is not known",
+                "give distance = \"20 ft\" too, from the low point to the wall",
+            );
+            None
+        }
+        Some(slope) => {
+            let fall = slope.slope();
             if let Some(cell) = section.get("roof_at_wall") {
                 cell.at_fault(
                     "`roof_at_wall` stands beside `slope` and `distance`",
@@ -351,18 +359,10 @@ fn read_surface(section: &Section<'_>) -> Option<Surface> {
                 );
                 return None;
             }
-            Some(fall.zip(distance).map(|(slope, distance)| Rise { slope, distance }))
-        }
-        (Some(cell), None) | (None, Some(cell)) => {
-            cell.at_fault(
-                "`slope` and `distance` belong together",
-                "one of them",
-                "give slope = \"0.25 in/ft\" and distance = \"20 ft\", from the low point to the wall",
-            );
-            return None;
+            fall.zip(to_wall.flatten()).map(|(slope, distance)| Some(Rise { slope, distance }))
         }
     };
-    Some(Surface { low_point: optional(low_point)?, rise: optional(rise)? })
+    Some(Surface { low_point: optional(low_point)?, to_wall: optional(to_wall)?, rise: rise? })
 }
 
 /// Refuses an area whose parapet has no thickness where a scupper would follow a law that needs it.

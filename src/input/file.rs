@@ -10,7 +10,7 @@ use toml::de::DeTable;
 
 use super::fault::{Fault, Log, Source, Span};
 use super::section::{Cell, any_of, near};
-use super::shipped;
+use super::shipped::{self, Sort};
 
 /// A file named in another, found from where that one lies.
 pub(super) fn beside(holder: &Path, named: &str) -> PathBuf {
@@ -19,6 +19,17 @@ pub(super) fn beside(holder: &Path, named: &str) -> PathBuf {
 
 /// Reads a file as text. `named_in` is the value that names it, none for a file named on the command line.
 pub(super) fn read(path: &Path, as_written: &str, named_in: Option<&Cell<'_>>, log: &Log) -> Option<Arc<Source>> {
+    read_of(Sort::Catalog, path, as_written, named_in, log)
+}
+
+/// Reads a file as text; one that comes with the program must be of the sort that is asked for there.
+pub(super) fn read_of(
+    sort: Sort,
+    path: &Path,
+    as_written: &str,
+    named_in: Option<&Cell<'_>>,
+    log: &Log,
+) -> Option<Arc<Source>> {
     let refuse = |title: String, help: &str| {
         let fault = Fault::error(title).help(help);
         log.put(match named_in {
@@ -28,14 +39,14 @@ pub(super) fn read(path: &Path, as_written: &str, named_in: Option<&Cell<'_>>, l
         None
     };
     if shipped::is_shipped(path) {
-        let Some(text) = shipped::text(path) else {
-            let (sort, names) = shipped::sort_of(as_written);
+        let Some(text) = shipped::text(path, sort) else {
+            let names = sort.names();
             let names: Vec<&str> = names.iter().map(String::as_str).collect();
-            let did_you = near(as_written, names.iter().copied())
-                .map_or(String::new(), |near| format!("did you mean `{near}`? "));
+            let did_you =
+                near_shipped(as_written, &names).map_or(String::new(), |near| format!("did you mean `{near}`? "));
             return refuse(
-                format!("there is no {sort} `{as_written}`"),
-                &format!("{did_you}{} would pass", any_of(&names)),
+                format!("there is no {} `{as_written}`", sort.name()),
+                &format!("{did_you}{} would pass{}", any_of(&names), sort.otherwise()),
             );
         };
         let source = Arc::new(Source { path: as_written.to_string(), text: text.to_string() });
@@ -73,6 +84,14 @@ pub(super) fn read(path: &Path, as_written: &str, named_in: Option<&Cell<'_>>, l
             refuse(format!("`{as_written}` is not UTF-8 text: line {line}, column {column}"), "save it as UTF-8")
         }
     }
+}
+
+/// The name of a file of the program that is spelt most like one that there is not, by its last part alone.
+fn near_shipped<'n>(written: &str, names: &[&'n str]) -> Option<&'n str> {
+    let last = |name: &'n str| name.rsplit(['/', ':']).next().unwrap_or(name);
+    let written = written.rsplit(['/', ':']).next().unwrap_or(written);
+    let near = near(written, names.iter().map(|name| last(name)))?;
+    names.iter().copied().find(|name| last(name) == near)
 }
 
 /// Parses a TOML file; every fault of its form is logged, and what can be read all the same is given. What is read borrows

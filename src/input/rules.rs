@@ -4,13 +4,17 @@
 use std::path::Path;
 use std::sync::Arc;
 
-use crate::rules::{Amount, Applied, Bound, Bounds, KINDS, Kind, Known, Number, Rule, RuleSet, Rulebook, Takes};
+use crate::rules::{
+    Amount, Applied, Bound, Bounds, Clash, KINDS, Kind, Known, Number, Rule, RuleSet, Rulebook, Takes, asks_nothing,
+    clash,
+};
 use crate::units::{Area, Dimension, Intensity, ReturnPeriod, Time};
 
-use super::fault::{Fault, Log, Span};
+use super::fault::{Fault, Log, Source, Span};
 use super::file;
 use super::section::{Cell, Keys, Reader, Section, any_of};
 use super::setting::MOST_DEVICES;
+use super::shipped;
 
 static SET: Keys =
     Keys { table: "a rule set", known: &["title", "standard", "year", "note", "rule"], unsupported: &[] };
@@ -47,9 +51,11 @@ static RULE: Keys = Keys {
 /// Keys that a rule of any kind takes.
 const COMMON: [&str; 5] = ["asks", "clause", "source", "known", "note"];
 
+/// Keys that look a storm up, which an intensity needs not.
+const LOOK_UP: [&str; 4] = ["duration", "return_period", "return_period_3", "return_period_4"];
+
 /// Keys that say nothing without another.
-const GO_WITH: [(&str, &str); 5] = [
-    ("duration", "return_period"),
+const GO_WITH: [(&str, &str); 4] = [
     ("return_period", "duration"),
     ("return_period_3", "duration"),
     ("return_period_4", "duration"),
@@ -65,12 +71,12 @@ pub(super) fn read_all(project: &Path, section: &Section<'_>) -> Option<Rulebook
         cell.at_fault("`rules` is an empty list", "no rule set stands here", "name at least one, or take the key out");
         return None;
     }
-    let mut titles: Vec<(String, Span)> = Vec::new();
+    let mut titles = Titles::default();
     let sets: Vec<Option<Applied>> = cell.items().iter().map(|item| read_applied(project, item, &mut titles)).collect();
     sets.into_iter().collect::<Option<_>>().map(|sets| Rulebook { sets })
 }
 
-fn read_applied(project: &Path, item: &Cell<'_>, titles: &mut Vec<(String, Span)>) -> Option<Applied> {
+fn read_applied(project: &Path, item: &Cell<'_>, titles: &mut Titles) -> Option<Applied> {
     let (named, binding) = if item.is_table() {
         let entry = item.section(&APPLIED)?;
         let apply = entry.get("apply").map_or(Some(true), |cell| cell.word(&[("binding", true), ("advice", false)]));
@@ -79,27 +85,49 @@ fn read_applied(project: &Path, item: &Cell<'_>, titles: &mut Vec<(String, Span)
         (*item, Some(true))
     };
     let written = named.text()?;
-    let set = read_file(&file::beside(project, written), written, Some(&named), item.reader.log)?;
-    if let Some((_, first)) = titles.iter().find(|(title, _)| *title == set.title) {
-        let fault = Fault::error(format!("two rule sets have the title `{}`", set.title))
-            .at(item.reader.source, named.span(), "again here")
-            .at(item.reader.source, first.clone(), "first here")
-            .help("reports name a set by its title: give every set its own");
-        item.reader.log.put(fault);
-        return None;
-    }
-    titles.push((set.title.clone(), named.span()));
+    let (set, _) = read_file(&file::beside(project, written), written, Some(&named), item.reader.log)?;
+    titles.take(&set.title, item.reader.source, named.span(), item.reader.log)?;
     Some(Applied { set: Arc::new(set), binding: binding? })
 }
 
-/// A rule set by itself.
-pub(super) fn read_alone(path: &Path, log: &Log) -> Option<RuleSet> {
-    let written = path.display().to_string();
-    read_file(&file::beside(Path::new(""), &written), &written, None, log)
+/// The titles of the sets of one report, and where each was given.
+#[derive(Default)]
+struct Titles(Vec<(String, Arc<Source>, Span)>);
+
+impl Titles {
+    /// Takes in a title; refuses one that another set has.
+    fn take(&mut self, title: &str, source: &Arc<Source>, span: Span, log: &Log) -> Option<()> {
+        if let Some((_, first_in, first)) = self.0.iter().find(|(known, _, _)| known == title) {
+            let fault = Fault::error(format!("two rule sets have the title `{title}`"))
+                .at(source, span, "again here")
+                .at(first_in, first.clone(), "first here")
+                .help("reports name a set by its title: give every set its own");
+            log.put(fault);
+            return None;
+        }
+        self.0.push((title.to_string(), Arc::clone(source), span));
+        Some(())
+    }
 }
 
-fn read_file(path: &Path, written: &str, named_in: Option<&Cell<'_>>, log: &Log) -> Option<RuleSet> {
-    let source = file::read(path, written, named_in, log)?;
+/// Rule sets by themselves, each title once.
+pub(super) fn read_alone(paths: &[&Path], log: &Log) -> Option<Vec<RuleSet>> {
+    let mut titles = Titles::default();
+    let read = |path: &&Path| {
+        let written = path.display().to_string();
+        let (set, (source, span)) = read_file(&file::beside(Path::new(""), &written), &written, None, log)?;
+        titles.take(&set.title, &source, span, log)?;
+        Some(set)
+    };
+    let sets: Vec<Option<RuleSet>> = paths.iter().map(read).collect();
+    sets.into_iter().collect()
+}
+
+/// A set, and where its title stands.
+type Read = (RuleSet, (Arc<Source>, Span));
+
+fn read_file(path: &Path, written: &str, named_in: Option<&Cell<'_>>, log: &Log) -> Option<Read> {
+    let source = file::read_of(shipped::Sort::RuleSet, path, written, named_in, log)?;
     let mut mended = String::new();
     let table = file::parse(&source, &mut mended, log);
     let section = Section::open(Reader { source: &source, log }, &SET, table.get_ref(), 0..0);
@@ -108,7 +136,7 @@ fn read_file(path: &Path, written: &str, named_in: Option<&Cell<'_>>, log: &Log)
         None => Some(None),
     };
     let title = section.need("title", "give the set a title: title = \"Plumbing code, as adopted\"");
-    let title = title.and_then(|cell| cell.text()).map(str::to_string);
+    let title = title.and_then(|cell| Some((cell.text()?.to_string(), cell.span())));
     let (standard, note) = (text(&section, "standard"), text(&section, "note"));
     let year = section.get("year").map_or(Some(None), |cell| cell.whole(1800, 2200).map(Some));
     if section.get("rule").is_none() {
@@ -116,25 +144,56 @@ fn read_file(path: &Path, written: &str, named_in: Option<&Cell<'_>>, log: &Log)
     }
     let tables = section.sections("rule", &RULE, "a list of rules, each under [[rule]]").unwrap_or_default();
     let rules: Vec<Option<Rule>> = tables.iter().map(|table| read_rule(table.as_ref()?)).collect();
-    same_twice(&tables, &rules);
-    let rules = rules.into_iter().collect::<Option<Vec<_>>>().filter(|rules| !rules.is_empty());
-    Some(RuleSet { title: title?, standard: standard?, year: year?, note: note?, rules: rules? })
+    let together = stand_together(&tables, &rules);
+    let rules = rules.into_iter().collect::<Option<Vec<_>>>().filter(|rules| together && !rules.is_empty());
+    let (title, span) = title?;
+    Some((RuleSet { title, standard: standard?, year: year?, note: note?, rules: rules? }, (source, span)))
 }
 
-/// Warns of two rules that ask the same with the same terms, where only one of their numbers can hold.
-fn same_twice(tables: &[Option<Section<'_>>], rules: &[Option<Rule>]) {
+/// Refuses rules that cannot stand in one set, and warns of two that ask the same with the same terms, where only one of their
+/// numbers can hold.
+fn stand_together(tables: &[Option<Section<'_>>], rules: &[Option<Rule>]) -> bool {
     let known: Vec<_> =
         tables.iter().zip(rules).filter_map(|(table, rule)| table.as_ref().zip(rule.as_ref())).collect();
+    let mut together = true;
     for (place, (table, rule)) in known.iter().enumerate() {
+        let before = || known[..place].iter();
+        let put = |fault: Fault, here: &str, first: &Section<'_>, there: &str| {
+            let fault = fault.at(table.reader.source, table.span.clone(), here);
+            table.reader.log.put(fault.at(first.reader.source, first.span.clone(), there));
+        };
+        if let Some((first, why)) = before().find_map(|(first, other)| Some((first, clash(rule, other)?))) {
+            let (title, help) = in_words(why, rule.kind);
+            put(Fault::error(title).help(help), "and this one", first, "this one");
+            together = false;
+            continue;
+        }
         let way = |rule: &Rule| matches!(rule.bound, Some(Bound::AtLeast(_)));
         let same = |other: &Rule| other.kind == rule.kind && other.terms == rule.terms && way(other) == way(rule);
-        if let Some((first, _)) = known[..place].iter().find(|(_, other)| same(other)) {
+        if let Some((first, _)) = before().find(|(_, other)| same(other)) {
             let fault = Fault::warning(format!("two rules ask for `{}` in the same terms", rule.kind.name))
-                .at(table.reader.source, table.span.clone(), "again here")
-                .at(table.reader.source, first.span.clone(), "first here")
                 .help("both are asked; take one out where one was meant");
-            table.reader.log.put(fault);
+            put(fault, "again here", first, "first here");
         }
+    }
+    together
+}
+
+/// Why two rules cannot stand in one set, and what would pass.
+fn in_words(clash: Clash, kind: &Kind) -> (String, &'static str) {
+    match clash {
+        Clash::CountedOnce => (
+            format!("two rules of one set ask for `{}`, each in its own way", kind.name),
+            "a set counts in one way: take one out, or write a set for each reading",
+        ),
+        Clash::NoSill => (
+            "no sill keeps both of these rules".into(),
+            "the least height of a sill may not be over its greatest: change one of the numbers",
+        ),
+        Clash::SillOverWater => (
+            "no layout keeps both of these rules: the lowest sill is over the deepest water".into(),
+            "water runs out over a sill: let it stand deeper, or the sill lower",
+        ),
     }
 }
 
@@ -158,19 +217,22 @@ fn read_rule(section: &Section<'_>) -> Option<Rule> {
     let (bound, terms) = (read_bound(section, kind), read_terms(section, kind));
     let rule =
         Rule { kind, bound: bound?, terms: terms?, clause: clause?, source: source?, known: known?, note: note? };
+    if own && together && asks_nothing(&rule) {
+        let (label, help) = match rule.bound {
+            Some(_) => ("every sill keeps it", "give a number above zero, or count it from another height"),
+            None => ("the design rain as it is", "give a duration, an intensity or a factor"),
+        };
+        let title = format!("a rule that asks for `{}` asks nothing", kind.name);
+        section.reader.fault(section.span.clone(), title, label, help);
+        return None;
+    }
     (own && together).then_some(rule)
 }
 
 /// Refuses the keys that a kind does not take.
 fn only_its_keys(section: &Section<'_>, kind: &Kind) -> bool {
     let mut fits = true;
-    let bounds: &[&str] = match kind.bounds {
-        Bounds::None => &[],
-        Bounds::Least => &["at_least"],
-        Bounds::Most => &["at_most"],
-        Bounds::Either => &["at_least", "at_most"],
-    };
-    let own: Vec<&str> = bounds.iter().copied().chain(kind.terms.iter().map(|term| term.key)).collect();
+    let own: Vec<&str> = kind.bounds.keys().iter().copied().chain(kind.terms.iter().map(|term| term.key)).collect();
     for &key in RULE.known.iter().filter(|key| !COMMON.contains(key) && !own.contains(key)) {
         if let Some(cell) = section.get(key) {
             let takes = if own.is_empty() { "nothing else".to_string() } else { any_of(&own) };
@@ -189,21 +251,22 @@ fn only_its_keys(section: &Section<'_>, kind: &Kind) -> bool {
 fn keys_go_together(section: &Section<'_>, kind: &Kind) -> bool {
     let takes = |key: &str| kind.terms.iter().any(|term| term.key == key);
     let mut sound = true;
-    for (key, with) in GO_WITH.into_iter().filter(|&(key, _)| takes(key)) {
-        let Some(cell) = section.get(key) else { continue };
-        if takes("intensity") && section.get("intensity").is_some() {
+    let fixed = takes("intensity") && section.get("intensity").is_some();
+    for key in LOOK_UP.into_iter().filter(|_| fixed) {
+        if let Some(cell) = section.get(key) {
             let title = format!("`{key}` stands beside `intensity`");
             cell.at_fault(title, "an intensity needs none", "give the intensity, or the storm to look it up by");
-        } else if section.get(with).is_none() {
-            cell.at_fault(
-                format!("`{key}` stands without `{with}`"),
-                "not heeded by itself",
-                format!("give `{with}` too"),
-            );
-        } else {
-            continue;
+            sound = false;
         }
-        sound = false;
+    }
+    for (key, with) in GO_WITH.into_iter().filter(|&(key, _)| takes(key) && !(fixed && LOOK_UP.contains(&key))) {
+        if let Some(cell) = section.get(key)
+            && section.get(with).is_none()
+        {
+            let title = format!("`{key}` stands without `{with}`");
+            cell.at_fault(title, "not heeded by itself", format!("give `{with}` too"));
+            sound = false;
+        }
     }
     sound
 }
@@ -211,10 +274,11 @@ fn keys_go_together(section: &Section<'_>, kind: &Kind) -> bool {
 fn read_bound(section: &Section<'_>, kind: &Kind) -> Option<Option<Bound>> {
     let (least, most) = (section.get("at_least"), section.get("at_most"));
     let number = |cell: Cell<'_>| match kind.number {
-        Number::Length => cell.length().map(Amount::Length),
+        Number::Length => cell.positive_length().map(Amount::Length),
+        Number::Height => cell.length().map(Amount::Length),
         Number::Count => cell.whole(1, MOST_DEVICES).map(Amount::Count),
         Number::Times => cell.number_positive().map(Amount::Times),
-        Number::Slope => cell.slope().map(Amount::Slope),
+        Number::Slope => cell.positive_slope().map(Amount::Slope),
     };
     match (kind.bounds, least, most) {
         (Bounds::None, _, _) => Some(None),
@@ -236,12 +300,7 @@ fn read_bound(section: &Section<'_>, kind: &Kind) -> Option<Option<Bound>> {
                 Bounds::Either => ("at_least", " or `at_most`"),
                 _ => ("at_least", ""),
             };
-            let example = match kind.number {
-                Number::Length => "\"4 in\"",
-                Number::Count => "2",
-                Number::Times => "1.0",
-                Number::Slope => "\"0.25 in/ft\"",
-            };
+            let example = kind.number.example();
             section.missing(
                 &format!("a rule that asks for `{}` has no number", kind.name),
                 &format!("give `{key}`{or}, such as {key} = {example}"),

@@ -348,6 +348,11 @@ impl<'a> Cell<'a> {
             .filter(|&fall| self.not_negative(fall))
     }
 
+    /// A fall above zero, as a ratio.
+    pub(super) fn positive_slope(&self) -> Option<f64> {
+        self.slope().filter(|&fall| self.above_zero(fall))
+    }
+
     /// A length of zero or more.
     pub(super) fn length(&self) -> Option<Length> {
         self.quantity::<Length>(Dimension::Length).filter(|length| self.not_negative(length.m()))

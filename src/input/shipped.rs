@@ -3,6 +3,9 @@
 
 use std::path::{Path, PathBuf};
 
+/// A rule set to copy and fill in. It is no file that a project may name: its numbers are invented.
+pub(super) const RULES_TO_FILL_IN: &str = include_str!("../../catalogs/rules/template.toml");
+
 /// What a path begins with that names a file of the program.
 const MARK: &str = "builtin:";
 
@@ -58,17 +61,45 @@ pub(super) fn is_shipped(path: &Path) -> bool {
     path.starts_with(MARK)
 }
 
-/// The text of a file of the program.
-pub(super) fn text(path: &Path) -> Option<&'static str> {
-    let under = path.strip_prefix(MARK).ok()?.to_str()?.replace('\\', "/");
-    FILES.iter().find(|(name, _)| *name == under).map(|&(_, text)| text)
+/// Sorts of files of the program.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(super) enum Sort {
+    /// A catalog, or a table that one names.
+    Catalog,
+    /// A rule set.
+    RuleSet,
 }
 
-/// What a text asks for that names a file of the program, and how the files of that sort are named in a project.
-pub(super) fn sort_of(named: &str) -> (&'static str, Vec<String>) {
-    let is_set = |name: &str| name.starts_with(RULES);
-    let asks_set = named.strip_prefix(MARK).is_some_and(is_set);
-    let files = FILES.iter().filter_map(|(name, _)| name.strip_suffix(".toml"));
-    let names = files.filter(|name| is_set(name) == asks_set).map(|name| format!("{MARK}{name}"));
-    (if asks_set { "rule set" } else { "catalog" }, names.collect())
+impl Sort {
+    /// What messages call one.
+    pub(super) fn name(self) -> &'static str {
+        match self {
+            Self::Catalog => "catalog",
+            Self::RuleSet => "rule set",
+        }
+    }
+
+    /// What else there is for one who finds none that fits, behind the names.
+    pub(super) fn otherwise(self) -> &'static str {
+        match self {
+            Self::Catalog => "",
+            Self::RuleSet => "; `brimline start FILE --rules` writes one to fill in",
+        }
+    }
+
+    /// How those of this sort are named in a project.
+    pub(super) fn names(self) -> Vec<String> {
+        let files = FILES.iter().filter_map(|(name, _)| name.strip_suffix(".toml"));
+        files.filter(|name| self.has(name)).map(|name| format!("{MARK}{name}")).collect()
+    }
+
+    fn has(self, name: &str) -> bool {
+        name.starts_with(RULES) == (self == Self::RuleSet)
+    }
+}
+
+/// The text of a file of the program, where it is of the sort.
+pub(super) fn text(path: &Path, sort: Sort) -> Option<&'static str> {
+    let under = path.strip_prefix(MARK).ok()?.to_str()?.replace('\\', "/");
+    FILES.iter().find(|(name, _)| *name == under && sort.has(name)).map(|&(_, text)| text)
 }

@@ -1,4 +1,5 @@
-//! A first project with its catalogs beside it, for someone to change line by line. Nothing that exists is overwritten.
+//! A first project with its catalogs beside it, or a first rule set, for someone to change line by line. Nothing that exists is
+//! overwritten.
 
 use std::fs::{self, OpenOptions};
 use std::io::{self, Write};
@@ -41,6 +42,14 @@ pub fn start(project: &Path, system: System) -> Result<Vec<PathBuf>, (PathBuf, i
         write_new(path, text).map_err(|error| (path.clone(), error))?;
     }
     Ok(missing.into_iter().map(|(path, _)| path).collect())
+}
+
+/// Writes a commented rule set that reads as it is, with every kind of rule and every key once.
+///
+/// # Errors
+/// [`io::ErrorKind::AlreadyExists`] where a file is there already, which is left as it is; any other error of writing.
+pub fn start_rules(set: &Path) -> io::Result<()> {
+    write_new(set, shipped::RULES_TO_FILL_IN)
 }
 
 fn write_new(path: &Path, text: &str) -> io::Result<()> {

@@ -1,8 +1,9 @@
 //! The report of `rules`: a rule set read aloud, or several side by side.
 
-use serde::Serialize;
+use serde::ser::SerializeMap;
+use serde::{Serialize, Serializer};
 
-use crate::rules::{Amount, Bound, Family, Known, Rule, RuleSet};
+use crate::rules::{Amount, Bound, Family, KINDS, Known, Role, Rule, RuleSet, Term, at_least_as_strict};
 use crate::units::System;
 
 use super::page::{self, Block, Table};
@@ -119,22 +120,13 @@ fn cell(rule: &Rule, words: Words) -> String {
     if text.is_empty() { "asked".into() } else { text.into() }
 }
 
-/// Which of the rules of a row is the strictest, by their number; all of the strictest where they are equal, none where they
-/// cannot be compared or are all equal.
-fn strictest(rules: &[Option<Vec<&Rule>>]) -> Vec<bool> {
-    let none = vec![false; rules.len()];
+/// The rules of a row that ask at least as much as every other in it; none where they cannot be compared, or all ask the same.
+fn strictest<'s>(rules: &[Option<Vec<&'s Rule>>]) -> Vec<&'s Rule> {
     let each: Vec<&Rule> = rules.iter().flatten().flatten().copied().collect();
-    let beside = |rule: &Rule| rule.kind.terms.iter().any(|term| !term.parts && rule.term(term.key).is_some());
-    let bounds: Option<Vec<Bound>> = each.iter().map(|rule| rule.bound.filter(|_| !beside(rule))).collect();
-    let Some(bounds) = bounds.filter(|bounds| bounds.len() > 1) else { return none };
-    // The strictest keeps what every other asks.
-    let keeps_all = |amount: Amount| bounds.iter().all(|bound| bound.holds(amount));
-    let strict = |rules: &Option<Vec<&Rule>>| {
-        rules.iter().flatten().any(|rule| rule.bound.is_some_and(|bound| keeps_all(bound.amount())))
-    };
-    let marks: Vec<bool> = rules.iter().map(strict).collect();
-    let all_asked = rules.iter().zip(&marks).all(|(rules, mark)| rules.is_none() || *mark);
-    if all_asked && rules.iter().all(Option::is_some) { none } else { marks }
+    let keeps = |rule: &&Rule| each.iter().all(|other| at_least_as_strict(rule, other) == Some(true));
+    let strict: Vec<&Rule> = each.iter().copied().filter(keeps).collect();
+    let all_the_same = strict.len() == each.len() && rules.iter().all(Option::is_some);
+    if each.len() < 2 || all_the_same { Vec::new() } else { strict }
 }
 
 /// Every row that a set asks for, in the order of families, each with the rules of each set.
@@ -161,36 +153,34 @@ fn rows<'s>(sets: &'s [RuleSet], words: Words) -> Vec<Beside<'s>> {
     keys.into_iter().map(|(key, rule)| (rule, sets.iter().map(|set| of_set(&key, set)).collect())).collect()
 }
 
+/// Most sets that stand in columns of their own: of more, columns would break words.
+const MOST_COLUMNS: usize = 3;
+
 fn beside(sets: &[RuleSet], words: Words) -> Vec<Block> {
     let titles: Vec<&str> = sets.iter().map(|set| set.title.as_str()).collect();
     let rows = rows(sets, words);
-    let mut columns =
-        vec![("asks".to_string(), false, rows.iter().map(|(rule, _)| row_in_words(rule, words)).collect::<Vec<_>>())];
-    let marks: Vec<Vec<bool>> = rows.iter().map(|(_, rules)| strictest(rules)).collect();
-    for (place, set) in sets.iter().enumerate() {
-        let told = |(row, (_, rules)): (usize, &Beside<'_>)| match &rules[place] {
-            None => "-".to_string(),
-            Some(rules) => {
-                let one = |rule: &&Rule| {
-                    let recalled = if rule.known == Known::Recalled { " \u{2021}" } else { "" };
-                    format!("{} ({}){recalled}", cell(rule, words), rule.clause)
-                };
-                let mark = if marks[row][place] { STRICTEST } else { "" };
-                format!("{}{mark}", rules.iter().map(one).collect::<Vec<_>>().join("; or "))
-            }
-        };
-        columns.push((set.title.clone(), false, rows.iter().enumerate().map(told).collect()));
-    }
+    let marks: Vec<Vec<&Rule>> = rows.iter().map(|(_, rules)| strictest(rules)).collect();
+    let table = if sets.len() <= MOST_COLUMNS { in_columns } else { one_below_another };
     let mut blocks = vec![Block::Title(format!("Rule sets side by side: {}", list(&titles)))];
-    blocks.push(Block::Table(Table::of(columns)));
+    blocks.push(Block::Table(table(sets, &rows, &marks, words)));
     let mut under = Vec::new();
-    if marks.iter().flatten().any(|&mark| mark) {
+    if marks.iter().any(|marks| !marks.is_empty()) {
         under.push("* the strictest of its row.".to_string());
     }
     under.push(
         "Storms and walls are not ranked: which asks most hangs on the rain and the walls of a roof, and `size` shows it."
             .into(),
     );
+    let open = |(row, _): &Beside<'_>, marks: &Vec<&Rule>, several: bool| {
+        several && marks.is_empty() && matches!(row.kind.role, Role::Count(_))
+    };
+    let several = |rules: &[Option<Vec<&Rule>>]| {
+        let each: Vec<&Rule> = rules.iter().flatten().flatten().copied().collect();
+        each.iter().any(|rule| each.iter().any(|other| at_least_as_strict(rule, other) != Some(true)))
+    };
+    if rows.iter().zip(&marks).any(|(row, marks)| open(row, marks, several(&row.1))) {
+        under.push("A number of devices is not ranked where which asks more hangs on the size of the area.".into());
+    }
     if sets.iter().flat_map(|set| &set.rules).any(|rule| rule.known == Known::Recalled) {
         under.push("\u{2021} recalled.".into());
     }
@@ -200,23 +190,125 @@ fn beside(sets: &[RuleSet], words: Words) -> Vec<Block> {
     blocks
 }
 
+/// What stands behind a rule: that it is recalled, that it is the strictest.
+fn mark(rule: &Rule, marks: &[&Rule]) -> String {
+    let recalled = if rule.known == Known::Recalled { " \u{2021}" } else { "" };
+    let strict = marks.iter().any(|marked| std::ptr::eq(*marked, rule));
+    format!("{recalled}{}", if strict { STRICTEST } else { "" })
+}
+
+/// Sets side by side, each a column.
+fn in_columns(sets: &[RuleSet], rows: &[Beside<'_>], marks: &[Vec<&Rule>], words: Words) -> Table {
+    let asks = rows.iter().map(|(rule, _)| row_in_words(rule, words)).collect::<Vec<_>>();
+    let mut columns = vec![("asks".to_string(), false, asks)];
+    for (place, set) in sets.iter().enumerate() {
+        let told = |((_, rules), marks): (&Beside<'_>, &Vec<&Rule>)| match &rules[place] {
+            None => "-".to_string(),
+            Some(rules) => {
+                let one = |rule: &&Rule| format!("{} ({}){}", cell(rule, words), rule.clause, mark(rule, marks));
+                // Of several storms the first that can be found counts; of all else each is asked.
+                let joined = if matches!(rules[0].kind.role, Role::Rain) { "; or " } else { "; and " };
+                rules.iter().map(one).collect::<Vec<_>>().join(joined)
+            }
+        };
+        columns.push((set.title.clone(), false, rows.iter().zip(marks).map(told).collect()));
+    }
+    Table::of(columns)
+}
+
+/// Sets one below another, row by row: those that ask, then the others.
+fn one_below_another(sets: &[RuleSet], rows: &[Beside<'_>], marks: &[Vec<&Rule>], words: Words) -> Table {
+    let mut lines: Vec<[String; 4]> = Vec::new();
+    for ((row, rules), marks) in rows.iter().zip(marks) {
+        let mut asks = Some(row_in_words(row, words));
+        let mut line = |set: &str, asked: String, clause: &str| {
+            lines.push([asks.take().unwrap_or_default(), set.into(), asked, clause.into()]);
+        };
+        for (set, rules) in sets.iter().zip(rules) {
+            for (nth, rule) in rules.iter().flatten().enumerate() {
+                let or = match (nth, rule.kind.role) {
+                    (0, _) => "",
+                    (_, Role::Rain) => "or ",
+                    _ => "and ",
+                };
+                line(&set.title, format!("{or}{}{}", cell(rule, words), mark(rule, marks)), &rule.clause);
+            }
+        }
+        if rules.iter().any(Option::is_none) {
+            line("the others", "-".into(), "-");
+        }
+    }
+    let column = |head: &str, place: usize| {
+        (head.to_string(), false, lines.iter().map(|line| line[place].clone()).collect::<Vec<_>>())
+    };
+    Table::of(vec![column("asks", 0), column("rule set", 1), column("number", 2), column("clause", 3)])
+}
+
 fn csv(sets: &[RuleSet], words: Words) -> String {
-    let mut rows =
-        vec![["set", "predicate", "asks", "number", "clause", "source", "known"].map(str::to_string).to_vec()];
+    let terms = every_term();
+    let mut head = ["set", "predicate", "asks", "bound", "value", "unit"].map(str::to_string).to_vec();
+    head.extend(terms.iter().map(|term| term.field()));
+    head.extend(["clause", "source", "known"].map(str::to_string));
+    let mut rows = vec![head];
     for set in sets {
         for rule in &set.rules {
-            rows.push(vec![
+            let number = rule.bound.map(|bound| (way(bound), bound.amount().si()));
+            let (value, unit) = number.and_then(|(_, si)| si).unzip();
+            let mut row = vec![
                 set.title.clone(),
                 rule.kind.name.into(),
                 rules::subject(rule, words),
-                rule.bound.map_or(String::new(), |bound| rules::asked(bound, words)),
-                rule.clause.clone(),
-                rule.source.clone(),
-                rule.known.name().into(),
-            ]);
+                number.map_or("", |(way, _)| way).into(),
+                value.map_or(String::new(), |value: f64| value.to_string()),
+                unit.unwrap_or_default().into(),
+            ];
+            row.extend(terms.iter().map(|term| match rule.term(term.key) {
+                None => String::new(),
+                Some(Amount::Yes(yes)) => yes.to_string(),
+                Some(Amount::Word(word)) => word.into(),
+                Some(amount) => amount.si().map_or(String::new(), |(value, _)| value.to_string()),
+            }));
+            row.extend([rule.clause.clone(), rule.source.clone(), rule.known.name().into()]);
+            rows.push(row);
         }
     }
     written(&rows)
+}
+
+fn way(bound: Bound) -> &'static str {
+    match bound {
+        Bound::AtLeast(_) => "at least",
+        Bound::AtMost(_) => "at most",
+    }
+}
+
+/// Every term that a kind takes, once.
+fn every_term() -> Vec<&'static Term> {
+    let mut terms: Vec<&Term> = Vec::new();
+    for term in KINDS.iter().flat_map(|kind| kind.terms) {
+        if !terms.iter().any(|known| known.key == term.key) {
+            terms.push(term);
+        }
+    }
+    terms
+}
+
+/// The terms of a rule in a document, each under its key with its unit.
+struct Terms<'a>(&'a Rule);
+
+impl Serialize for Terms<'_> {
+    fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
+        let mut map = serializer.serialize_map(None)?;
+        for term in self.0.kind.terms {
+            let Some(amount) = self.0.term(term.key) else { continue };
+            match (amount, amount.si()) {
+                (Amount::Yes(yes), _) => map.serialize_entry(&term.field(), &yes)?,
+                (Amount::Word(word), _) => map.serialize_entry(&term.field(), word)?,
+                (_, si) => map.serialize_entry(&term.field(), &si.map(|(value, _)| value))?,
+            }
+        }
+        map.end()
+    }
 }
 
 #[derive(Serialize)]
@@ -240,6 +332,7 @@ struct OfRule<'a> {
     predicate: &'static str,
     asks: String,
     required: Option<rules::OfAmount>,
+    terms: Terms<'a>,
     strictest: bool,
     clause: &'a str,
     source: &'a str,
@@ -248,33 +341,30 @@ struct OfRule<'a> {
 
 fn json(sets: &[RuleSet], words: Words) -> String {
     let rows = rows(sets, words);
-    let marks: Vec<Vec<bool>> = rows.iter().map(|(_, rules)| strictest(rules)).collect();
-    let marked = |place: usize, rule: &Rule| {
-        let has = |(_, rules): &Beside<'_>| rules[place].iter().flatten().any(|known| std::ptr::eq(*known, rule));
-        rows.iter().zip(&marks).any(|(row, marks)| marks[place] && has(row))
-    };
-    let of_set = |(place, set): (usize, &'_ RuleSet)| OfSet {
-        title: &sets[place].title,
-        standard: sets[place].standard.as_deref(),
+    let marks: Vec<&Rule> = rows.iter().flat_map(|(_, rules)| strictest(rules)).collect();
+    let of_set = sets.iter().map(|set| OfSet {
+        title: &set.title,
+        standard: set.standard.as_deref(),
         year: set.year,
-        note: sets[place].note.as_deref(),
-        rules: sets[place]
+        note: set.note.as_deref(),
+        rules: set
             .rules
             .iter()
             .map(|rule| OfRule {
                 predicate: rule.kind.name,
                 asks: rules::says(rule, words),
                 required: rule.bound.map(rules::of_bound),
-                strictest: marked(place, rule),
+                terms: Terms(rule),
+                strictest: marks.iter().any(|marked| std::ptr::eq(*marked, rule)),
                 clause: &rule.clause,
                 source: &rule.source,
                 known: rule.known.name(),
             })
             .collect(),
-    };
+    });
     let document = Document {
         format: "brimline rules 1",
-        sets: sets.iter().enumerate().map(of_set).collect(),
+        sets: of_set.collect(),
         cautions: trust(&sets.iter().collect::<Vec<_>>()),
     };
     let mut text = serde_json::to_string_pretty(&document).unwrap_or_default();

@@ -143,7 +143,7 @@ mod tests {
             gap: Length::ZERO,
             parapet: Parapet::default(),
             roof_at_wall: Length::ZERO,
-            surface: Surface { low_point: None, rise },
+            surface: Surface { rise, ..Surface::default() },
             receives: Vec::new(),
             ponding: None,
             kinds: None,

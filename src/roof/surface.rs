@@ -7,6 +7,8 @@ use crate::units::{Area, Length, Volume};
 pub struct Surface {
     /// Elevation of the low point above the project's datum, where given.
     pub low_point: Option<Length>,
+    /// From the low point to the wall in plan, where given; with a slope or without one.
+    pub to_wall: Option<Length>,
     /// The even slope from the low point up to the wall, where given.
     pub rise: Option<Rise>,
 }
@@ -87,7 +89,7 @@ mod tests {
     #[test]
     fn a_wedge_holds_less_than_a_level_roof() {
         let rise = Rise { slope: 0.02, distance: Length::from_m(10.0) };
-        let (wedge, area) = (Surface { low_point: None, rise: Some(rise) }, Area::from_m2(100.0));
+        let (wedge, area) = (Surface { rise: Some(rise), ..Surface::default() }, Area::from_m2(100.0));
         for (level, stored) in [(0.1, 2.5), (0.2, 10.0), (0.3, 20.0)] {
             assert_relative_eq!(wedge.volume(area, Length::from_m(level)).m3(), stored, max_relative = 1e-12);
             assert_relative_eq!(wedge.level(area, Volume::from_m3(stored)).m(), level, max_relative = 1e-12);

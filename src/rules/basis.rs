@@ -9,8 +9,9 @@
 //! # Which rain
 //!
 //! Of the storms of a set the first that can be found counts: one of a fixed intensity; else one that stands in the rainfall
-//! table; else one of the project whose duration and return period are stated the same. Where none can be found the design
-//! rain of the project stands in, and verdicts that go by it say that they cannot tell.
+//! table; else one of the project whose duration and return period are stated the same. A storm that has a duration and no return
+//! period is looked up at that of the project's. Where none can be found the design rain of the project stands in, and verdicts
+//! that go by it say that they cannot tell.
 
 use crate::roof::{AreaBasis, Basis, Case, Catchment, Reading, Risk, Roof, StandsIn, Storm, Wall, WallRule, demand};
 use crate::units::{Area, Flow, Intensity, Length, ReturnPeriod, Time};
@@ -122,20 +123,28 @@ pub fn rain(rule: &Rule, storm: &Storm, area: &Catchment) -> Result<Rain, Open> 
     let Some(Amount::Time(duration)) = rule.term("duration") else {
         return Ok(Rain { intensity: storm.intensity * times, reading: None });
     };
-    let period = return_period(rule, area)?;
-    let in_table = storm.rainfall.as_ref().and_then(|table| table.intensity(duration, period).ok());
+    // A rule that says how long and not how often leaves that to the project.
+    let often = ["return_period", "return_period_3", "return_period_4"].iter().any(|key| rule.term(key).is_some());
+    let period = if often { Some(return_period(rule, area)?) } else { storm.return_period };
+    let in_table =
+        storm.rainfall.as_ref().zip(period).and_then(|(table, period)| table.intensity(duration, period).ok());
     if let Some(reading) = in_table {
         return Ok(Rain { intensity: reading.intensity * (storm.climate * times), reading: Some(reading) });
     }
     let same = |stated: Option<Time>, stated_period: Option<ReturnPeriod>| {
         let near = |a: f64, b: f64| (a - b).abs() <= 1e-9 * b;
         stated.is_some_and(|stated| near(stated.s(), duration.s()))
-            && stated_period.is_some_and(|stated| near(stated.years(), period.years()))
+            && match (stated_period, period) {
+                (Some(stated), Some(period)) => near(stated.years(), period.years()),
+                (stated, period) => stated.is_none() && period.is_none(),
+            }
     };
     let main = same(storm.duration, storm.return_period).then_some(storm.intensity);
     let further = storm.further.iter().find(|further| same(further.duration, further.return_period));
     let found = main.or(further.map(|further| further.intensity * (1.0 / further.factor)));
-    let missing = Open::Missing(if storm.rainfall.is_some() {
+    let missing = Open::Missing(if !often {
+        "its rain: a rainfall table that has this duration, or a storm of the project with it"
+    } else if storm.rainfall.is_some() {
         "its rain: the rainfall table does not reach so far, and no storm of the project is the same"
     } else {
         "its rain: a rainfall table, or a storm of the project with this duration and return period"

@@ -43,17 +43,53 @@ pub enum Bounds {
     Either,
 }
 
+impl Bounds {
+    /// The keys under which the number may stand.
+    pub fn keys(self) -> &'static [&'static str] {
+        match self {
+            Self::None => &[],
+            Self::Least => &["at_least"],
+            Self::Most => &["at_most"],
+            Self::Either => &["at_least", "at_most"],
+        }
+    }
+}
+
 /// What the number of a kind is.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Number {
-    /// A length.
+    /// A length above zero: one of zero would ask nothing, or what no roof has.
     Length,
+    /// A height, of which zero asks something too: to stand no lower, or to leave nothing free.
+    Height,
     /// How many.
     Count,
     /// A factor.
     Times,
     /// A fall.
     Slope,
+}
+
+impl Number {
+    /// Its name in documents.
+    pub fn name(self) -> &'static str {
+        match self {
+            Self::Length | Self::Height => "length",
+            Self::Count => "count",
+            Self::Times => "factor",
+            Self::Slope => "slope",
+        }
+    }
+
+    /// One as a file gives it.
+    pub fn example(self) -> &'static str {
+        match self {
+            Self::Length | Self::Height => "\"4 in\"",
+            Self::Count => "2",
+            Self::Times => "1.0",
+            Self::Slope => "\"0.25 in/ft\"",
+        }
+    }
 }
 
 /// A key of a rule besides its number.
@@ -88,6 +124,53 @@ pub enum Takes {
     Yes,
     /// One of these words.
     Word(&'static [&'static str]),
+}
+
+impl Takes {
+    /// The unit of its number in documents; none of what is no number, or has no unit.
+    pub fn unit(self) -> Option<&'static str> {
+        match self {
+            Self::Area => Some("m2"),
+            Self::Time => Some("s"),
+            Self::ReturnPeriod => Some("yr"),
+            Self::Intensity => Some("m_s"),
+            Self::Times | Self::Yes | Self::Word(_) => None,
+        }
+    }
+
+    /// Its name in documents.
+    pub fn name(self) -> &'static str {
+        match self {
+            Self::Area => "area",
+            Self::Time => "duration",
+            Self::ReturnPeriod => "return period",
+            Self::Intensity => "intensity",
+            Self::Times => "factor",
+            Self::Yes => "true or false",
+            Self::Word(_) => "word",
+        }
+    }
+
+    /// What may stand there, as a file gives it.
+    pub fn examples(self) -> Vec<String> {
+        let words: &[&str] = match self {
+            Self::Area => &["\"5000 ft2\""],
+            Self::Time => &["\"15 min\""],
+            Self::ReturnPeriod => &["\"100 yr\""],
+            Self::Intensity => &["\"5 in/h\""],
+            Self::Times => &["2.0"],
+            Self::Yes => &["true", "false"],
+            Self::Word(words) => return words.iter().map(|word| format!("\"{word}\"")).collect(),
+        };
+        words.iter().map(ToString::to_string).collect()
+    }
+}
+
+impl Term {
+    /// Its key in documents, its unit behind it.
+    pub fn field(&self) -> String {
+        self.takes.unit().map_or(self.key.into(), |unit| format!("{}_{unit}", self.key))
+    }
 }
 
 /// Why something cannot be measured.

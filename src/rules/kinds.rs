@@ -8,6 +8,8 @@ mod roof;
 mod standing;
 mod water;
 
+pub(super) use standing::never_under;
+
 /// Every kind, in the order that messages list them.
 pub static KINDS: [&Kind; 22] = [
     &demand::RAIN,

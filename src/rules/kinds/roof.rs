@@ -41,8 +41,8 @@ pub(super) static DISTANCE: Kind = Kind {
     number: Number::Length,
     terms: &[],
     role: Role::Area(|rule, area, _| {
-        let rise = area.surface.rise.ok_or(Open::Missing("the way to the wall: slope = .. and distance = .."))?;
-        Ok((Amount::Length(rise.distance), Amount::Length(length(rule)?)))
+        let to_wall = area.surface.to_wall.ok_or(Open::Missing("the way to the wall: distance = .."))?;
+        Ok((Amount::Length(to_wall), Amount::Length(length(rule)?)))
     }),
 };
 

@@ -11,11 +11,17 @@ const DATUMS: [&str; 4] = ["low point", "roof at wall", "primary drain", "primar
 
 const ROOF_AT_WALL: &str = "the roof at the wall: roof_at_wall = .., or slope = .. and distance = ..";
 
+/// Whether one datum of set heights never stands under another: the low point is lowest, and what the primary drains need
+/// stands over them.
+pub(in crate::rules) fn never_under(datum: &str, other: &str) -> bool {
+    datum == other || other == "low point" || (datum == "primary water" && other == "primary drain")
+}
+
 pub(super) static SET_HEIGHT: Kind = Kind {
     name: "set-height",
     says: "sill",
     bounds: Bounds::Either,
-    number: Number::Length,
+    number: Number::Height,
     terms: &[
         Term { key: "above", takes: Takes::Word(&DATUMS), needed: true, says: " above the {}", parts: true },
         Term { key: "for", takes: Takes::Word(&["scuppers", "drains"]), needed: false, says: ", of {}", parts: true },
@@ -89,7 +95,7 @@ pub(super) static SPACING: Kind = Kind {
     role: Role::AtEdge(|rule, area| {
         let edge = area.edge.ok_or(Open::Missing("the length of the edge: edge = .."))?;
         match rule.bound.map(Bound::amount) {
-            Some(Amount::Length(most)) if most > Length::ZERO => Ok(begun(edge / most).max(1)),
+            Some(Amount::Length(most)) => Ok(begun(edge / most).max(1)),
             _ => Err(Open::NotApplicable("the rule has no number")),
         }
     }),

@@ -26,7 +26,7 @@ pub(super) static PARAPET_FREEBOARD: Kind = Kind {
     name: "parapet-freeboard",
     says: "water to the top of the parapet",
     bounds: Bounds::Least,
-    number: Number::Length,
+    number: Number::Height,
     terms: &[],
     role: Role::Depth(|rule, area| {
         let top = area.parapet.height.ok_or(Open::Missing("the height of the parapet: parapet = { height = .. }"))?;
@@ -38,7 +38,7 @@ pub(super) static FREEBOARD: Kind = Kind {
     name: "freeboard",
     says: "water to the top of every closed opening",
     bounds: Bounds::Least,
-    number: Number::Length,
+    number: Number::Height,
     terms: &[],
     role: Role::Freeboard,
 };
