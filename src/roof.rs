@@ -8,7 +8,7 @@ use std::ops::RangeInclusive;
 use std::sync::Arc;
 
 use crate::device::{Choice, Kind, Law, Site, Size};
-use crate::units::{Area, Flow, Intensity, Length, Load, ReturnPeriod, System, Time};
+use crate::units::{Area, Flow, Intensity, Length, Load, Money, ReturnPeriod, System, Time};
 
 mod basis;
 pub mod channel;
@@ -239,9 +239,11 @@ pub struct Catchment {
     pub set_heights: Option<Vec<Length>>,
     /// What holds in each case of the roof, in their order.
     pub limits: Vec<Limits>,
-    /// What is there already and stays: it costs nothing and stands where it stands. A search of an area heeds it; plans, fronts
+    /// What is there already: it costs nothing and stands where it stands. A search of an area heeds it; plans, fronts
     /// and made widths do not, and input refuses them beside it.
     pub existing: Vec<GivenGroup>,
+    /// What closing one device of what is there costs, where a search may close any of it; none where all of it stays.
+    pub replace: Option<Money>,
     /// The gutter or valley between its far end and its devices, where there is one.
     pub channel: Option<channel::Channel>,
     /// What rule sets ask about it.

@@ -928,6 +928,63 @@ error: a trade-off does not heed `existing` in this version, and `north bay` has
 }
 
 #[test]
+fn a_leave_to_close_that_is_none() {
+    let with = |line: &str| project(&[("edge = \"120 ft\"", &format!("edge = \"120 ft\"\n{line}"))]);
+    with("replace = true").refuses(str![[r#"
+error: `replace = true` lets a search close what is there, and the area has no `existing`
+  --> roof.toml:31:11
+   |
+31 | replace = true
+   |           ^^^^ nothing to be closed
+   |
+   = help: say what is there: existing = "as found", or give a price, which `check --mend` reckons with
+
+"#]]);
+    with("replace = false").refuses(str![[r#"
+error: `replace` is a price, or true
+  --> roof.toml:31:11
+   |
+31 | replace = false
+   |           ^^^^^ what is there stays where the key is absent
+   |
+   = help: take it out, or give what closing one opening costs: replace = 250
+
+"#]]);
+    with("replace = \"250\"").refuses(str![[r#"
+error: `replace` must be a bare number, or true
+  --> roof.toml:31:11
+   |
+31 | replace = "250"
+   |           ^^^^^ a text stands here
+   |
+   = help: write a bare number, or true
+
+"#]]);
+    // 7 x 7 x 7 x 7 x 7 ways of closing none to six of each.
+    let groups: Vec<String> = (0..5)
+        .map(|place| {
+            THERE[1..THERE.len() - 1]
+                .replace("count = 2", "count = 6")
+                .replace("2 in\" }", &format!("2.{place} in\" }}"))
+        })
+        .collect();
+    existing(
+        &format!("[{}]", groups.join(", ")),
+        &[("[[area]]\nname = \"south", "replace = 10\n[[area]]\nname = \"south")],
+    )
+    .refuses(str![[r#"
+error: what is there may be closed in more than 10000 ways
+  --> roof.toml:34:11
+   |
+34 | replace = 10
+   |           ^^ each is tried
+   |
+   = help: put openings of one size and one height into one group, or take `replace` out of the area
+
+"#]]);
+}
+
+#[test]
 fn a_price_of_closing_an_opening_that_is_none() {
     project(&[("units =", "replace = \"250\"\nunits ="), ("edge = \"120 ft\"", "edge = \"120 ft\"\nreplace = -5")])
         .refuses(str![[r#"

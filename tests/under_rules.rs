@@ -210,6 +210,7 @@ fn area(dice: &mut Dice, cases: usize) -> Catchment {
         set_heights: Some((0..3).map(|step| grid((start + step) as f64)).collect()),
         limits: vec![limits; cases],
         existing: Vec::new(),
+        replace: None,
         channel: None,
         facts: Facts {
             limits,

@@ -293,6 +293,7 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
             set_heights: set_heights?,
             limits: limits?.in_case,
             existing: Vec::new(),
+            replace: None,
             channel: optional(channel)?,
             facts: facts?,
         })
@@ -389,16 +390,51 @@ fn thickness_given(
     }
 }
 
-/// What closing or removing one opening costs in each area: its own price, else the project's; none where neither is given.
-pub(super) fn replace_prices(project: &Section<'_>) -> Option<Vec<Option<Money>>> {
-    let price = |section: &Section<'_>| {
-        optional(section.get("replace").map(|cell| cell.number_not_negative())).map(|price| price.map(Money::nearest))
-    };
-    let of_project = price(project);
+/// What an area says of closing its openings.
+#[derive(Clone, Copy)]
+pub(super) struct Replace {
+    /// What closing or removing one opening costs: its own price, else the project's; none where neither is given.
+    pub(super) price: Option<Money>,
+    /// Whether the area itself says so, which lets a search close what is there.
+    pub(super) allowed: bool,
+}
+
+/// What each area says of closing its openings, in their order; none where one is at fault.
+pub(super) fn replace_all(project: &Section<'_>) -> Option<Vec<Replace>> {
+    let price = |cell: &Cell<'_>| cell.number_not_negative().map(Money::nearest);
+    let of_project = optional(project.get("replace").map(|cell| price(&cell)));
     let tables = project.sections("area", &AREA, "a list of areas, each under [[area]]").unwrap_or_default();
-    let own: Vec<_> = tables.iter().flatten().map(price).collect();
+    let of_area = |table: &Section<'_>| {
+        let Some(cell) = table.get("replace") else { return Some((None, false)) };
+        match cell.as_yes_or_no() {
+            None if cell.is_number() => Some((Some(price(&cell)?), true)),
+            None => {
+                cell.refuse("a bare number, or true");
+                None
+            }
+            Some(true) if table.get("existing").is_some() => Some((None, true)),
+            Some(true) => {
+                cell.at_fault(
+                    "`replace = true` lets a search close what is there, and the area has no `existing`",
+                    "nothing to be closed",
+                    "say what is there: existing = \"as found\", or give a price, which `check --mend` reckons with",
+                );
+                None
+            }
+            Some(false) => {
+                cell.at_fault(
+                    "`replace` is a price, or true",
+                    "what is there stays where the key is absent",
+                    "take it out, or give what closing one opening costs: replace = 250",
+                );
+                None
+            }
+        }
+    };
+    let own: Vec<_> = tables.iter().flatten().map(of_area).collect();
     let of_project = of_project?;
-    own.into_iter().map(|own| own.map(|own| own.or(of_project))).collect()
+    let with_project = |(own, allowed): (Option<Money>, bool)| Replace { price: own.or(of_project), allowed };
+    own.into_iter().map(|own| own.map(with_project)).collect()
 }
 
 /// Whether the flow in every channel stays subcritical, in every case; where it does not, that is told with its numbers.
@@ -635,6 +671,7 @@ fn without_size(receives: Vec<Receipt>) -> Catchment {
         set_heights: None,
         limits: Vec::new(),
         existing: Vec::new(),
+        replace: None,
         channel: None,
         facts: Facts::default(),
     }

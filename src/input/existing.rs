@@ -1,6 +1,7 @@
 //! What is there already in an area: groups of its own, or a layout of the project by its name.
 //!
-//! It is read as a given layout is, and costs nothing. Whether it could be built so is not asked: it stands.
+//! It is read as a given layout is, and costs nothing. Whether it could be built so is not asked: it stands. Where the area has
+//! `replace` of its own a search may close it, device by device.
 
 use std::path::Path;
 
@@ -15,6 +16,9 @@ use super::section::{Cell, Section, any_of, near};
 
 /// Most groups that are there already: a layout of the search fits beside them.
 const MOST: usize = MOST_OUTLETS - MOST_GROUPS;
+
+/// Most ways of closing what is there that a search tries: of each group none of it, or one more, up to all.
+const MOST_WAYS: u64 = 10_000;
 
 /// What belongs under the key.
 const WANTED: &str = "the name of a layout, or a list, such as [{ device = \"RS\", width = \"12 in\", height = \"4 in\", count = 2, set_height = \"2 in\" }]";
@@ -47,7 +51,9 @@ pub(super) fn read_all(
             None => against.groups(path, table.as_ref()?, "existing", WANTED, area),
         }?;
         let fits = fits(&cell, &areas[area], &groups);
-        (goes_together(&cell, beside) && fits).then(|| groups.into_iter().map(free).collect())
+        let few =
+            table.as_ref().and_then(|table| table.get("replace")).is_none_or(|closing| few_ways(&closing, &groups));
+        (goes_together(&cell, beside) && fits && few).then(|| groups.into_iter().map(free).collect())
     };
     let all: Vec<Option<Vec<GivenGroup>>> = tables.iter().enumerate().map(of_area).collect();
     all.into_iter().collect()
@@ -96,6 +102,19 @@ fn fits(cell: &Cell<'_>, area: &Catchment, groups: &[GivenGroup]) -> bool {
         );
     }
     !over
+}
+
+/// Whether the ways of closing some of it are few enough to be tried.
+fn few_ways(closing: &Cell<'_>, groups: &[GivenGroup]) -> bool {
+    let ways = groups.iter().fold(1_u64, |ways, group| ways.saturating_mul(u64::from(group.count) + 1));
+    if ways > MOST_WAYS {
+        closing.at_fault(
+            format!("what is there may be closed in more than {MOST_WAYS} ways"),
+            "each is tried",
+            "put openings of one size and one height into one group, or take `replace` out of the area",
+        );
+    }
+    ways <= MOST_WAYS
 }
 
 /// Whether nothing is asked for that does not heed what is there.

@@ -270,12 +270,19 @@ impl Words {
     }
 
     /// All groups of a layout; a set height that they share is said once.
-    /// Of one that adds to what is there already, what it adds.
+    /// Of one that adds to what is there already, what it adds; where that may be closed, what it closes and keeps too.
     pub(super) fn layout(self, layout: &Ranked<'_>) -> String {
-        if layout.added().is_empty() {
-            return "nothing added".into();
+        let of = |placed: &[Placed<'_>]| self.groups(&placed.iter().map(|placed| placed.group).collect::<Vec<_>>());
+        let (added, kept) = layout.groups.split_at(layout.added().len());
+        let adds = if added.is_empty() { "nothing added".into() } else { of(added) };
+        match &layout.closed {
+            None => adds,
+            Some(closed) if closed.groups.is_empty() => format!("{adds}; all kept"),
+            Some(closed) => {
+                let kept = if kept.is_empty() { "none".into() } else { of(kept) };
+                format!("{adds}; {} closed, {kept} kept", self.groups(&closed.groups))
+            }
         }
-        self.groups(&layout.added().iter().map(|placed| placed.group).collect::<Vec<_>>())
     }
 
     /// Groups of one layout.

@@ -289,7 +289,7 @@ struct Gate {
 }
 
 /// The first criterion of a problem, where it is a sum that every further device raises.
-fn lead(problem: &Problem<'_>) -> Option<Criterion> {
+pub(super) fn lead(problem: &Problem<'_>) -> Option<Criterion> {
     let first = problem.order.criteria()[0];
     matches!(first, Criterion::Cost | Criterion::Count | Criterion::Width).then_some(first)
 }

@@ -311,6 +311,7 @@ fn told(problem: &Problem<'_>, groups: &[Built]) -> Box<Ranked<'static>> {
     Box::new(Ranked {
         groups: Vec::new(),
         kept: 0,
+        closed: None,
         cost: told.cost,
         states: told.states,
         allowed: told.allowed,

@@ -17,6 +17,7 @@ use crate::units::Length;
 
 use super::Options;
 use super::Watch;
+use super::closing::Closing;
 use super::rank::{Criterion, Order};
 
 /// A size that may stand in the area.
@@ -48,7 +49,7 @@ impl Candidate<'_> {
 }
 
 /// One area, the cases it is searched for, and what is asked of a layout.
-#[derive(Debug)]
+#[derive(Clone, Debug)]
 pub(super) struct Problem<'r> {
     pub(super) situations: Vec<Situation<'r>>,
     /// The highest level that each situation allows, to any layout.
@@ -56,6 +57,10 @@ pub(super) struct Problem<'r> {
     pub(super) candidates: Vec<Candidate<'r>>,
     /// What is there already and stays, behind the groups of every layout.
     pub(super) fixed: Vec<Group<'r>>,
+    /// What of what is there may be closed, and is; none where all of it stays.
+    pub(super) closing: Option<Closing<'r>>,
+    /// Least and most devices of a layout, those that stay among them.
+    in_all: (u32, u32),
     /// Least and most devices that a layout adds to what is there; and the rule that asks for the least, where one does.
     pub(super) least: u32,
     pub(super) asked_for: Option<RuleAt>,
@@ -128,17 +133,19 @@ impl<'r> Problem<'r> {
         let priced = candidates.iter().all(|candidate| candidate.size.price.is_some());
         let situations = roof.situations(area);
         let fixed: Vec<Group<'r>> = catchment.existing.iter().map(GivenGroup::group).collect();
-        let there = devices(&fixed);
         let by_rule = restriction.least.filter(|(least, _)| least > catchment.count.start());
         let least = by_rule.map_or(*catchment.count.start(), |(least, _)| least);
-        let problem = Self {
+        let closing = catchment.replace.filter(|_| !fixed.is_empty());
+        let mut problem = Self {
             allowed: situations.iter().map(Situation::allowable_level).collect(),
             situations,
             candidates,
-            least: least.saturating_sub(there),
+            closing: closing.map(|price| Closing { way: vec![0; fixed.len()], there: fixed.clone(), price }),
+            in_all: (least, *catchment.count.end()),
+            least: 0,
             asked_for: by_rule.map(|(_, at)| at),
             least_at_edge: restriction.at_edge.map_or(0, |(least, _)| least),
-            most: catchment.count.end().saturating_sub(there),
+            most: 0,
             fixed,
             mix: options.mix,
             edge: limited_edge(catchment),
@@ -149,7 +156,15 @@ impl<'r> Problem<'r> {
             catchment,
             rules: Arc::clone(&options.rules),
         };
+        problem.count_what_is_added();
         (problem, misfits)
+    }
+
+    /// Brings the least and the most that a layout adds to what stays.
+    pub(super) fn count_what_is_added(&mut self) {
+        let there = self.devices_there();
+        self.least = self.in_all.0.saturating_sub(there);
+        self.most = self.in_all.1.saturating_sub(there);
     }
 
     /// Whether any case asks for freeboard.
@@ -315,20 +330,13 @@ impl<'r> Problem<'r> {
         Problem {
             situations: keep.iter().map(|&case| self.situations[case]).collect(),
             allowed: keep.iter().map(|&case| self.allowed[case]).collect(),
-            candidates: self.candidates.clone(),
-            fixed: self.fixed.clone(),
-            asked: self.asked,
-            order: self.order.clone(),
-            watch: self.watch.clone(),
-            rules: Arc::clone(&self.rules),
-            ..*self
+            ..self.clone()
         }
     }
 
     /// This area, with only the sizes of these indices among the roof's.
     pub(super) fn with_sizes(&self, keep: &[usize]) -> Problem<'r> {
-        let all: Vec<usize> = (0..self.situations.len()).collect();
-        let mut problem = self.with_cases(&all);
+        let mut problem = self.clone();
         problem.candidates.retain(|candidate| keep.contains(&candidate.index));
         problem
     }

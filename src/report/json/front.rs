@@ -55,7 +55,6 @@ struct PlanGroup<'a> {
 }
 
 pub(super) fn rows<'a>(sized: &Sized<'a, '_>, fronted: &'a Fronted<'_>) -> Vec<Row<'a>> {
-    let site = sized.roof.site(fronted.front.area, None);
     let opened = fronted.front.rows.iter().zip(&fronted.opened);
     let row = |(row, ranked): (&crate::search::Unbeaten<'_>, &'a crate::search::Ranked<'_>)| Row {
         cost: row.cost.map(Money::amount),
@@ -64,7 +63,7 @@ pub(super) fn rows<'a>(sized: &Sized<'a, '_>, fronted: &'a Fronted<'_>) -> Vec<R
         count: row.count,
         width_m: row.width.m(),
         beyond_range: !ranked.beyond.is_empty(),
-        groups: ranked.groups.iter().map(|placed| group(placed, &site)).collect(),
+        groups: ranked.groups.iter().map(|placed| group(placed, sized.roof, fronted.front.area)).collect(),
     };
     opened.map(row).collect()
 }
