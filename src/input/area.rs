@@ -82,6 +82,10 @@ pub(super) struct Areas {
     pub(super) complete: Option<Vec<Catchment>>,
     /// Kinds that may stand in each area whose kinds can be read, none for any.
     pub(super) kinds: Vec<Option<Vec<Kind>>>,
+    /// Every area for layouts to be read against: in the place of one at fault another of its name, in which any height stands.
+    pub(super) standing: Vec<Catchment>,
+    /// Whether every area has a name that can be read: only then is an area known not to be there.
+    pub(super) all_named: bool,
 }
 
 pub(super) fn read_all(project: &Section<'_>, setting: &Setting<'_>, assumed: &mut Vec<Assumed>) -> Areas {
@@ -101,7 +105,9 @@ pub(super) fn read_all(project: &Section<'_>, setting: &Setting<'_>, assumed: &m
     if tables.iter().flatten().any(|table| table.get("count").is_none()) {
         blocked_under_count(project, setting, setting.search.count.as_ref(), setting.search.count_at.as_ref(), None);
     }
-    let receipts = find_receipts(&given, tables.iter().all(|table| is_named(table.as_ref())));
+    let all_named = !tables.is_empty() && tables.iter().all(|table| is_named(table.as_ref()));
+    let receipts = find_receipts(&given, all_named);
+    let standing = given.iter().map(standing).collect();
     let runs_one_way = report_circles(project, &given, &receipts);
     let kinds = given.iter().filter_map(|given| given.kinds.clone()).collect();
     let complete = given
@@ -113,7 +119,7 @@ pub(super) fn read_all(project: &Section<'_>, setting: &Setting<'_>, assumed: &m
         .collect::<Option<Vec<_>>>()
         .filter(|areas| runs_one_way && !areas.is_empty());
     taken.tell(assumed, tables.len());
-    Areas { complete, kinds }
+    Areas { complete, kinds, standing, all_named }
 }
 
 /// What each area receives, by the index of the other; none where there is no such area, which is told where all are named.
@@ -650,6 +656,15 @@ fn report_circles(project: &Section<'_>, given: &[Given<'_>], receipts: &[Vec<Op
         }
     }
     runs_one_way
+}
+
+/// An area for layouts to be read against.
+fn standing(given: &Given<'_>) -> Catchment {
+    given.area.clone().unwrap_or_else(|| {
+        // Far under every sill, so that no height is told to be wrong where the datum is.
+        let surface = Surface { low_point: Some(Length::from_m(-1e5)), rise: None };
+        Catchment { name: given.name.clone().unwrap_or_default(), surface, ..without_size(Vec::new()) }
+    })
 }
 
 /// An area that only passes on what it receives.

@@ -137,7 +137,8 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
     let areas = area::read_all(section, &setting, &mut assumed);
     prices(section, &search, &areas.kinds, &catalogs);
     let replace = area::replace_all(section);
-    let layouts = areas.complete.as_deref().and_then(|areas| layout::read_all(path, section, areas, &catalogs));
+    // An area at fault does not hide what is wrong with layouts.
+    let layouts = layout::read_all(path, section, &areas, &catalogs);
     let beside = existing::Beside {
         plan: search.plan.is_some_and(|plan| plan.is_some()),
         structure: section.get("structure").is_some(),
