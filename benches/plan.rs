@@ -46,6 +46,7 @@ fn area(index: u32, unlike: bool) -> Catchment {
         set_heights: Some(vec![Length::inches(2.0)]),
         limits: vec![load(26), load(32)],
         existing: Vec::new(),
+        replace: None,
         channel: None,
         facts: Facts::default(),
     }

@@ -61,6 +61,7 @@ fn area(index: u32) -> Catchment {
         set_heights: Some((8..=16).map(|quarter| Length::from_nm(quarter * 6_350_000)).collect()),
         limits: vec![load(28), load(34), load(30)],
         existing: Vec::new(),
+        replace: None,
         channel: None,
         facts: Facts::default(),
     }

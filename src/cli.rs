@@ -163,6 +163,21 @@ fn without_set_height(roof: &Roof, areas: &[usize]) -> Option<Failure> {
     ))
 }
 
+/// Refuses what does not heed that devices that are there already may be closed.
+fn closes_nothing(project: &Project, areas: &[usize], what: &str) -> Result<(), Failure> {
+    let roof = &project.roof;
+    match areas.iter().find(|&&area| roof.areas[area].replace.is_some()) {
+        None => Ok(()),
+        Some(&area) => Err(Failure::said(
+            &format!(
+                "{what} does not heed in this version that what is there may be closed, as in `{}`",
+                roof.areas[area].name
+            ),
+            "leave the area out with --area, or take `replace` out of it",
+        )),
+    }
+}
+
 /// Whether messages on stderr take colour: on a terminal, unless `NO_COLOR` is set.
 fn coloured_messages() -> bool {
     io::stderr().is_terminal() && std::env::var_os("NO_COLOR").is_none_or(|value| value.is_empty())

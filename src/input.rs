@@ -4,7 +4,7 @@ use std::path::Path;
 
 use crate::device::Size;
 use crate::review::Tolerances;
-use crate::roof::{Given, Roof};
+use crate::roof::{Catchment, Given, Roof};
 use crate::rules::RuleSet;
 use crate::search::{Options, PlanAsked, Structure};
 use crate::units::Money;
@@ -63,9 +63,10 @@ pub struct Project {
 }
 
 impl Project {
-    /// What is taken where a change of a layout closes openings: nothing, in the areas that give no price for it.
-    pub fn assumed_of_mends(&self) -> Option<Assumed> {
-        let free = self.replace.iter().zip(&self.roof.areas).filter(|(price, _)| price.is_none());
+    /// What is taken for the price of closing openings in those of the areas that give none: nothing.
+    pub fn assumed_of_closing(&self, concerned: impl Fn(&Catchment) -> bool) -> Option<Assumed> {
+        let areas = self.replace.iter().zip(&self.roof.areas);
+        let free = areas.filter(|(price, area)| price.is_none() && concerned(area));
         let areas: Vec<String> = free.map(|(_, area)| area.name.clone()).collect();
         let all = areas.len() == self.roof.areas.len();
         let default = defaults::default("area.replace");

@@ -20,6 +20,7 @@ mod codebook;
 mod contents;
 mod cures;
 mod front;
+mod heights;
 mod json;
 mod kinds;
 mod measure;

@@ -8,7 +8,7 @@ use std::ops::RangeInclusive;
 use std::sync::Arc;
 
 use crate::device::{Choice, Kind, Law, Site, Size};
-use crate::units::{Area, Flow, Intensity, Length, Load, ReturnPeriod, System, Time};
+use crate::units::{Area, Flow, Intensity, Length, Load, Money, ReturnPeriod, System, Time};
 
 mod basis;
 pub mod channel;
@@ -239,8 +239,10 @@ pub struct Catchment {
     pub set_heights: Option<Vec<Length>>,
     /// What holds in each case of the roof, in their order.
     pub limits: Vec<Limits>,
-    /// What is there already and stays: it costs nothing, stands where it stands, and counts for none of the sizes of a plan.
+    /// What is there already: it costs nothing, stands where it stands, and counts for none of the sizes of a plan.
     pub existing: Vec<GivenGroup>,
+    /// What closing one device of what is there costs, where a search may close any of it; none where all of it stays.
+    pub replace: Option<Money>,
     /// The gutter or valley between its far end and its devices, where there is one.
     pub channel: Option<channel::Channel>,
     /// What rule sets ask about it.

@@ -18,6 +18,7 @@ use crate::units::{Length, Money};
 
 mod alike;
 mod best;
+mod closing;
 mod cure;
 mod dive;
 mod front;
@@ -36,13 +37,14 @@ pub use front::{Front, PlanFront, Unbeaten, UnbeatenPlan, front, plan_front};
 pub use measure::{Fitted, Measured};
 pub use plan::{Asked as PlanAsked, Plan, Plans, StiffenedArea, StiffenedPlan, plan, stiffened_plan};
 pub use rank::Criterion;
-pub use standing::{Placed, Ranked, UnderLaw, standing, under_every_law};
+pub use standing::{Closed, Placed, Ranked, UnderLaw, standing, under_every_law};
 pub use structure::{Stiffened, Structure, stiffened};
 pub use tradeoff::{PlanAt, Raises, plan_tradeoff, tradeoff};
 pub use watch::{Stopped, Watch};
 
-use best::{Best, Found, reported};
-use dive::{Aim, dive, least};
+use best::{Found, reported};
+use closing::Chosen;
+use dive::Aim;
 use problem::Problem;
 
 /// What is asked of the search.
@@ -159,6 +161,9 @@ pub struct Answer<'r> {
     pub area: usize,
     /// How its search ended.
     pub outcome: Outcome<'r>,
+    /// Where the first layout closes what is there: what a search finds that keeps all of it, its first layout alone, and none
+    /// where nothing holds so.
+    pub keeping: Option<Outcome<'r>>,
 }
 
 /// Ranks the layouts of the given areas, in their order.
@@ -176,7 +181,7 @@ pub fn size<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<Answe
         options.watch.expect(1);
         let outcome = size_area(roof, area, options);
         options.watch.advance();
-        return vec![Answer { area, outcome }];
+        return vec![answered(roof, options, area, outcome)];
     }
     let answer = |(&area, best): (&usize, Sought<'r>)| {
         let outcome = if best.finished && best.layouts.is_empty() {
@@ -185,9 +190,19 @@ pub fn size<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<Answe
         } else {
             best.outcome()
         };
-        Answer { area, outcome }
+        answered(roof, options, area, outcome)
     };
     areas.par_iter().zip(best_of_each(roof, options, areas)).map(answer).collect()
+}
+
+/// An answer, with what keeping all that is there comes to where the first layout does not.
+fn answered<'r>(roof: &'r Roof, options: &Options, area: usize, outcome: Outcome<'r>) -> Answer<'r> {
+    let closes = outcome.layouts().first().and_then(|layout| layout.closed.as_ref());
+    let keeping = closes.filter(|closed| !closed.groups.is_empty()).map(|_| {
+        let options = Options { keep: 1, ..options.clone() };
+        best_of(&Problem::new(roof, area, &options).0.keeping_all(), &options).outcome()
+    });
+    Answer { area, outcome, keeping }
 }
 
 /// What a search of one area by itself finds.
@@ -232,15 +247,16 @@ fn best_of_each<'r>(roof: &'r Roof, options: &Options, areas: &[usize]) -> Vec<S
 fn best_of<'r>(problem: &Problem<'r>, options: &Options) -> Sought<'r> {
     let deciding = problem.deciding();
     let searched = deciding.as_ref().unwrap_or(problem);
-    let dived = dive(searched, Aim::Rank, Best::new(options.keep, options.fold));
-    let layouts = measured(problem, dived.found.iter().map(|found| (ranked(problem, found), found)));
-    let bound = if dived.finished { None } else { least(problem) };
-    Sought { layouts, finished: dived.finished, bound }
+    let (chosen, finished) = closing::best(searched, Aim::Rank, options.keep, options.fold);
+    let layouts = measured(problem, chosen.iter().map(|chosen| (ranked(problem, chosen), &chosen.found)));
+    let bound = if finished { None } else { closing::least(problem) };
+    Sought { layouts, finished, bound }
 }
 
 /// Why an area has no layout.
 fn none<'r>(problem: Problem<'r>, misfits: Vec<(&'r Size, Misfit)>) -> Outcome<'r> {
-    if let Some(broken) = problem.broken {
+    // What may be closed breaks a rule only as long as it stays.
+    if let Some(broken) = problem.broken.filter(|broken| broken.there.is_none() || problem.closing.is_none()) {
         return Outcome::Infeasible(Why::Breaks(broken));
     }
     let nothing_stands = problem.candidates.is_empty() && problem.fixed.is_empty();
@@ -250,7 +266,8 @@ fn none<'r>(problem: Problem<'r>, misfits: Vec<(&'r Size, Misfit)>) -> Outcome<'
 
 /// The layouts, each with what it comes to where openings are made to measure.
 fn measured<'r, 'f>(problem: &Problem<'r>, layouts: impl Iterator<Item = (Ranked<'r>, &'f Found)>) -> Vec<Ranked<'r>> {
-    if problem.candidates.iter().all(|candidate| candidate.size.made.is_none()) {
+    // Beside what may be closed nothing is made to measure.
+    if problem.closing.is_some() || problem.candidates.iter().all(|candidate| candidate.size.made.is_none()) {
         return layouts.map(|(layout, _)| layout).collect();
     }
     let highest = |found: &Found| problem.liftable(&found.groups).iter().map(|group| group.highest).collect::<Vec<_>>();
@@ -263,7 +280,17 @@ fn measured<'r, 'f>(problem: &Problem<'r>, layouts: impl Iterator<Item = (Ranked
 }
 
 /// All that is reported of a layout on the grid.
-fn ranked<'r>(problem: &Problem<'r>, found: &Found) -> Ranked<'r> {
+fn ranked<'r>(problem: &Problem<'r>, chosen: &Chosen) -> Ranked<'r> {
+    let Some(closing) = &problem.closing else { return of_found(problem, &chosen.found) };
+    let way = problem.closed_by(chosen.way.clone());
+    let closed = Closed { groups: closing.closed_by(&chosen.way), cost: closing.cost_of(&chosen.way) };
+    let layout = of_found(&way, &chosen.found);
+    let cost = layout.cost.map(|added| [added, closed.cost].into_iter().sum());
+    Ranked { cost, closed: Some(closed), ..layout }
+}
+
+/// All that is reported of what is added to what stays.
+fn of_found<'r>(problem: &Problem<'r>, found: &Found) -> Ranked<'r> {
     let liftable = problem.liftable(&found.groups);
     let groups = reported(problem, &found.groups);
     let standing = standing(&groups, &liftable, &problem.situations, &problem.allowed, problem.asked);

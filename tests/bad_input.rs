@@ -759,6 +759,14 @@ fn an_empty_list_of_rules_and_half_a_slope() {
             ),
         )
         .refuses(str![[r#"
+error: `layout` is an empty list
+ --> roof.toml:2:10
+  |
+2 | layout = []
+  |          ^^ nothing stands here
+  |
+  = help: write a list of layouts, each under [[layout]]
+
 error: `rules` is an empty list
  --> roof.toml:3:9
   |
@@ -875,6 +883,177 @@ error: at most 13 groups are there already
    |       ^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^...^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ 14 stand here
    |
    = help: put openings of one size and one height into one group
+
+"#]]);
+}
+
+/// What is wrong with layouts is told beside an area at fault, whose name is known all the same and whose datum is not.
+#[test]
+fn layouts_beside_an_area_at_fault() {
+    let group = |height: &str| {
+        format!(
+            "groups = [{{ device = \"RS\", width = \"12 in\", height = \"4 in\", count = 2, set_height = \"{height}\" }}]\n"
+        )
+    };
+    let layouts = format!(
+        "[[layout]]\nname = \"drawn\"\narea = \"north bay\"\n{}[[layout]]\nname = \"drawn\"\narea = \"north bay\"\n{}\
+         [[layout]]\nname = \"other\"\narea = \"nort bay\"\n{}",
+        group("elevation 100 ft"),
+        group("2 in").replace("RS", "RX"),
+        group("2 in")
+    );
+    project(&[
+        ("area = \"9600 ft2\"", "area = \"-9600 ft2\"\nlow_point = \"high\""),
+        ("[[case]]\nname = \"as designed\"", &format!("{layouts}[[case]]\nname = \"as designed\"")),
+    ])
+    .refuses(str![[r#"
+error: `north bay` has two layouts named `drawn`
+  --> roof.toml:24:8
+   |
+20 | name = "drawn"
+   |        ------- first here
+...
+24 | name = "drawn"
+   |        ^^^^^^^ again here
+   |
+   = help: give each layout of an area a name of its own
+
+error: no catalog has a device `RX`
+  --> roof.toml:26:22
+   |
+26 | groups = [{ device = "RX", width = "12 in", height = "4 in", count = 2, set_height = "2 in" }]
+   |                      ^^^^ here
+   |
+   = help: did you mean "RS"? the catalogs have OD or RS
+
+error: there is no area `nort bay`
+  --> roof.toml:29:8
+   |
+29 | area = "nort bay"
+   |        ^^^^^^^^^^ here
+   |
+   = help: did you mean "north bay"? areas are north bay or south bay
+
+error: `area` must be above zero
+  --> roof.toml:40:8
+   |
+40 | area = "-9600 ft2"
+   |        ^^^^^^^^^^^ not above zero
+   |
+   = help: write a value above zero
+
+error: `low_point`: `high` does not begin with a number
+  --> roof.toml:41:13
+   |
+41 | low_point = "high"
+   |             ^^^^^^ a length belongs here
+   |
+   = help: write a number and a unit, such as "6 in"
+
+"#]]);
+}
+
+#[test]
+fn a_quantity_below_zero_on_the_command_line() {
+    let said = |arguments: &[&str], message: snapbox::data::Inline| {
+        Folder::new().brimline(arguments).code(2).stdout_eq("").stderr_eq(message);
+    };
+    said(
+        &["rate", "open-scupper", "--width", "-1in"],
+        str![[r#"
+error: --width: `-1in` is not above zero
+  = help: give a value above zero
+
+"#]],
+    );
+    said(
+        &["rate", "open-scupper", "--width", "6 in", "--head", "-2 in"],
+        str![[r#"
+error: --head: `-2 in` is neither a head above zero nor a range of heads
+  = help: write "3 in", or FROM..TO..STEP such as "1 in..8 in..1 in"
+
+"#]],
+    );
+    said(
+        &["tradeoff", "roof.toml", "--up", "-2 psf"],
+        str![[r#"
+error: --up: `-2 psf` is not above zero
+  = help: give a value above zero
+
+"#]],
+    );
+    said(
+        &["size", "roof.toml", "--time-limit", "-3 s"],
+        str![[r#"
+error: --time-limit: `-3 s` is not above zero
+  = help: give a value above zero
+
+"#]],
+    );
+    said(
+        &["size", "roof.toml", "--keep", "-3"],
+        str![[r#"
+error: invalid value '-3' for '--keep <N>': -3 is not in 1..=10000
+
+For more information, try '--help'.
+
+"#]],
+    );
+}
+
+#[test]
+fn a_leave_to_close_that_is_none() {
+    let with = |line: &str| project(&[("edge = \"120 ft\"", &format!("edge = \"120 ft\"\n{line}"))]);
+    with("replace = true").refuses(str![[r#"
+error: `replace = true` lets a search close what is there, and the area has no `existing`
+  --> roof.toml:31:11
+   |
+31 | replace = true
+   |           ^^^^ nothing to be closed
+   |
+   = help: say what is there: existing = "as found", or give a price, which `check --mend` reckons with
+
+"#]]);
+    with("replace = false").refuses(str![[r#"
+error: `replace` is a price, or true
+  --> roof.toml:31:11
+   |
+31 | replace = false
+   |           ^^^^^ what is there stays where the key is absent
+   |
+   = help: take it out, or give what closing one opening costs: replace = 250
+
+"#]]);
+    with("replace = \"250\"").refuses(str![[r#"
+error: `replace` must be a bare number, or true
+  --> roof.toml:31:11
+   |
+31 | replace = "250"
+   |           ^^^^^ a text stands here
+   |
+   = help: write a bare number, or true
+
+"#]]);
+    // 7 x 7 x 7 x 7 x 7 ways of closing none to six of each.
+    let groups: Vec<String> = (0..5)
+        .map(|place| {
+            THERE[1..THERE.len() - 1]
+                .replace("count = 2", "count = 6")
+                .replace("2 in\" }", &format!("2.{place} in\" }}"))
+        })
+        .collect();
+    existing(
+        &format!("[{}]", groups.join(", ")),
+        &[("[[area]]\nname = \"south", "replace = 10\n[[area]]\nname = \"south")],
+    )
+    .refuses(str![[r#"
+error: what is there may be closed in more than 10000 ways
+  --> roof.toml:34:11
+   |
+34 | replace = 10
+   |           ^^ each is tried
+   |
+   = help: put openings of one size and one height into one group, or take `replace` out of the area
 
 "#]]);
 }

@@ -153,6 +153,7 @@ fn roof(dice: &mut Dice) -> Roof {
         set_heights: Some((0..=2).map(|step| on_grid(Length::inches((grid_start + step) as f64 * 0.75))).collect()),
         limits,
         existing: Vec::new(),
+        replace: None,
         facts: Facts::default(),
         channel: dice.one_in(12).then(|| Channel {
             width: on_grid(dice.inches(8, 40)),
@@ -377,21 +378,24 @@ fn everything(roof: &Roof, options: &Options) -> Vec<Tried> {
     tried.sort_by(order);
     let mut families = HashSet::new();
     if options.fold {
-        tried.retain(|tried| {
-            let mut family: Vec<(&str, u32)> = Vec::new();
-            for &(index, count) in &tried.groups {
-                let tag = &*roof.sizes[index].tag;
-                match family.iter_mut().find(|(known, _)| *known == tag) {
-                    Some((_, total)) => *total += count,
-                    None => family.push((tag, count)),
-                }
-            }
-            family.sort_unstable();
-            families.insert(format!("{family:?}"))
-        });
+        tried.retain(|tried| families.insert(family(roof, &tried.groups)));
     }
     tried.truncate(options.keep);
     tried
+}
+
+/// How many of each tag.
+fn family(roof: &Roof, groups: &[(usize, u32)]) -> String {
+    let mut family: Vec<(&str, u32)> = Vec::new();
+    for &(index, count) in groups {
+        let tag = &*roof.sizes[index].tag;
+        match family.iter_mut().find(|(known, _)| *known == tag) {
+            Some((_, total)) => *total += count,
+            None => family.push((tag, count)),
+        }
+    }
+    family.sort_unstable();
+    format!("{family:?}")
 }
 
 #[test]
@@ -489,6 +493,245 @@ fn what_is_added_to_what_is_there_is_what_trying_everything_adds() {
     assert!(enough, "nothing {nothing}, added {added}, none {infeasible}: the roofs are not varied enough");
 }
 
+/// Every way of closing some of what is there: how many of each group.
+fn every_closing(existing: &[GivenGroup]) -> Vec<Vec<u32>> {
+    let mut all = vec![Vec::new()];
+    for group in existing {
+        all = all.iter().flat_map(|way: &Vec<u32>| (0..=group.count).map(|n| [&way[..], &[n]].concat())).collect();
+    }
+    all
+}
+
+/// The roof after some of what is there is closed.
+fn after_closing(roof: &Roof, way: &[u32]) -> Roof {
+    let mut roof = roof.clone();
+    let area = &mut roof.areas[0];
+    area.replace = None;
+    for (group, closed) in area.existing.iter_mut().zip(way) {
+        group.count -= closed;
+    }
+    area.existing.retain(|group| group.count > 0);
+    roof
+}
+
+/// What is closed and what is added by trying every closing with every choice: each with its key, the price of closing counted in.
+fn every_replacement(roof: &Roof, options: &Options) -> Vec<(Vec<u32>, Tried)> {
+    let price = roof.areas[0].replace.expect("may be closed");
+    let rest = Criterion::ALL.into_iter().filter(|criterion| !options.rank_by.contains(criterion));
+    let criteria: Vec<Criterion> = options.rank_by.iter().copied().chain(rest).collect();
+    let of_cost = criteria.iter().position(|&criterion| criterion == Criterion::Cost).expect("among them");
+    let mut all = Vec::new();
+    for way in every_closing(&roof.areas[0].existing) {
+        let left = after_closing(roof, &way);
+        let situations = left.situations(0);
+        for groups in every_choice(&left, options) {
+            if let Some(mut tried) = try_layout(&left, options, &situations, &groups) {
+                tried.key[of_cost] += (price * way.iter().sum::<u32>()).amount();
+                all.push((way.clone(), tried));
+            }
+        }
+    }
+    all.sort_by(|(way, a), (other, b)| {
+        let keys = a.key.iter().zip(&b.key).map(|(a, b)| a.total_cmp(b)).find(|ordering| ordering.is_ne());
+        let closed = |way: &[u32]| way.iter().sum::<u32>();
+        let by_way = || closed(way).cmp(&closed(other)).then_with(|| way.cmp(other));
+        keys.unwrap_or(Ordering::Equal).then_with(by_way).then_with(|| a.groups.cmp(&b.groups))
+    });
+    all
+}
+
+/// The best of each family of additions, as many as are kept.
+fn best_replacements(roof: &Roof, options: &Options) -> Vec<(Vec<u32>, Tried)> {
+    let mut all = every_replacement(roof, options);
+    let mut families = HashSet::new();
+    if options.fold {
+        all.retain(|(_, tried)| families.insert(family(roof, &tried.groups)));
+    }
+    all.truncate(options.keep);
+    all
+}
+
+/// A roof with something there that may be closed, for nothing or at a price.
+fn roof_with_closing(dice: &mut Dice) -> (Roof, Options) {
+    let (mut roof, options) = (roof(dice), options(dice));
+    there_already(&mut roof, 0, dice);
+    let area = &mut roof.areas[0];
+    for group in &mut area.existing {
+        group.count += dice.upto(1) as u32;
+        // Often so high that they take edge and carry little.
+        group.set_height = on_grid(group.set_height + Length::inches(dice.pick(&[0.0, 2.0])));
+    }
+    let at_edge = area.existing.iter().filter(|group| group.size.place == Place::Edge);
+    let taken = brimline::rules::edge_used(at_edge.map(|group| (&group.size, group.count)), area);
+    // Now and then an edge that is all taken; never none at all, where nothing could be there.
+    let enough = Length::from_nm(taken).max(Length::inches(1.0));
+    area.edge = area.edge.map(|edge| if dice.one_in(2) { enough } else { edge.max(enough) });
+    area.replace = Some(Money::nearest(dice.pick(&[0.0, 0.0, 60.0, 250.0, 900.0])));
+    (roof, options)
+}
+
+/// What may be closed is closed and added to as trying every closing with every choice finds, to the last key.
+#[test]
+fn what_is_replaced_is_what_trying_every_closing_replaces() {
+    let (mut closing, mut closing_alone, mut opened, mut infeasible) = (0, 0, 0, 0);
+    for seed in 1..=1200_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15) ^ 0x7777);
+        let (roof, options) = roof_with_closing(&mut dice);
+        let area = &roof.areas[0];
+        let expected = best_replacements(&roof, &options);
+        let kept_whole = Roof { areas: vec![Catchment { replace: None, ..area.clone() }], ..roof.clone() };
+        let answer = search::size(&roof, &options, &[0]).remove(0);
+        let layouts = answer.outcome.layouts();
+        let index = |size: &Size| roof.sizes.iter().position(|known| std::ptr::eq(known, size)).unwrap();
+        let told = |layout: &search::Ranked<'_>| {
+            let (new, there) = layout.groups.split_at(layout.groups.len() - layout.kept);
+            let closed = layout.closed.as_ref().expect("may be closed");
+            let same = |group: &Group<'_>, given: &GivenGroup| std::ptr::eq(group.size, &raw const given.size);
+            let of = |given: &GivenGroup| {
+                closed.groups.iter().find(|group| same(group, given)).map_or(0, |group| group.count)
+            };
+            let way: Vec<u32> = area.existing.iter().map(of).collect();
+            let stays: Vec<u32> = area.existing.iter().zip(&way).map(|(given, closed)| given.count - closed).collect();
+            assert_eq!(there.iter().map(|placed| placed.group.count).sum::<u32>(), stays.iter().sum::<u32>());
+            for placed in there {
+                let given = area.existing.iter().position(|given| same(&placed.group, given)).expect("was there");
+                assert!(placed.group.count == stays[given] && placed.from == placed.to, "seed {seed}");
+            }
+            let price = area.replace.expect("given") * way.iter().sum::<u32>();
+            assert_eq!(closed.cost, price, "seed {seed}");
+            let of_new: i64 =
+                new.iter().map(|p| (p.group.size.price.expect("priced") * p.group.count).millionths()).sum();
+            assert_eq!(layout.cost.expect("priced").millionths(), of_new + price.millionths(), "seed {seed}");
+            let asked = Asked { freeboard: options.freeboard };
+            let all: Vec<Group<'_>> = layout.groups.iter().map(|placed| placed.group).collect();
+            assert!(roof.situations(0).iter().all(|situation| layout::holds(&all, situation, asked)), "seed {seed}");
+            let added: Vec<_> = new.iter().map(|p| (index(p.group.size), p.group.count, p.group.set_height)).collect();
+            (way, added)
+        };
+        let found: Vec<_> = layouts.iter().map(told).collect();
+        let wanted: Vec<_> = expected
+            .iter()
+            .map(|(way, tried)| {
+                let groups = tried.groups.iter().zip(&tried.reported);
+                (way.clone(), groups.map(|(&(index, count), &height)| (index, count, height)).collect::<Vec<_>>())
+            })
+            .collect();
+        assert_eq!(found, wanted, "seed {seed}, {options:?}");
+        let closes = |way: &[u32]| way.iter().sum::<u32>() > 0;
+        closing += u32::from(found.first().is_some_and(|(way, _)| closes(way)));
+        closing_alone += u32::from(found.iter().any(|(way, added)| closes(way) && added.is_empty()));
+        // What keeping everything comes to is told where the first closes.
+        let keeping = best_of_kept(&kept_whole, &options);
+        match &answer.keeping {
+            Some(outcome) => {
+                assert!(closes(&found[0].0), "seed {seed}");
+                let first = outcome.layouts().first();
+                let first = first.map(|layout| layout.groups.iter().take(layout.groups.len() - layout.kept));
+                let first = first.map(|new| new.map(|p| (index_of(&roof, p.group.size), p.group.count)).collect());
+                assert_eq!(first, keeping, "seed {seed}");
+                opened += u32::from(keeping.is_none());
+            }
+            None => assert!(found.first().is_none_or(|(way, _)| !closes(way)), "seed {seed}"),
+        }
+        if let Outcome::Infeasible(why) = &answer.outcome {
+            infeasible += 1;
+            check_why_of_all(&roof, &options, why, seed);
+        }
+    }
+    let enough = closing > 150 && closing_alone > 20 && opened > 30 && infeasible > 150;
+    assert!(enough, "{closing} close, {closing_alone} alone, {opened} open, {infeasible} do not hold");
+}
+
+fn index_of(roof: &Roof, size: &Size) -> usize {
+    roof.sizes.iter().position(|known| std::ptr::eq(known, size)).expect("of the roof")
+}
+
+/// The first layout where all that is there is kept.
+fn best_of_kept(roof: &Roof, options: &Options) -> Option<Vec<(usize, u32)>> {
+    everything(roof, options).first().map(|tried| tried.groups.clone())
+}
+
+/// Leave to close is never dearer than to keep, and a price above every saving is no leave at all.
+#[test]
+fn leave_to_close_never_costs() {
+    let (mut cheaper, mut opened, mut dear) = (0, 0, 0);
+    for seed in 1..=1500_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15) ^ 0x1212);
+        let (roof, mut options) = roof_with_closing(&mut dice);
+        options.rank_by = vec![Criterion::Cost];
+        let at = |replace: Option<Money>| Roof {
+            areas: vec![Catchment { replace, ..roof.areas[0].clone() }],
+            ..roof.clone()
+        };
+        let told = |roof: &Roof| {
+            let answer = search::size(roof, &options, &[0]).remove(0);
+            let one = |layout: &search::Ranked<'_>| {
+                let groups = layout.groups.iter();
+                let groups = groups.map(|p| format!("{} {:?} {:?}", p.group.count, p.group.size, p.group.set_height));
+                (layout.cost.expect("priced").millionths(), groups.collect::<Vec<_>>())
+            };
+            answer.outcome.layouts().iter().map(one).collect::<Vec<_>>()
+        };
+        let (kept, closed, dearest) = (told(&at(None)), told(&roof), told(&at(Some(Money::nearest(1e6)))));
+        if let Some((cost, _)) = kept.first() {
+            assert!(closed[0].0 <= *cost, "seed {seed}");
+            cheaper += u32::from(closed[0].0 < *cost);
+            // A saving is less than what every device of the roof costs.
+            let cheap = dearest.iter().filter(|(cost, _)| *cost < Money::nearest(1e6).millionths());
+            assert!(cheap.eq(&kept), "seed {seed}");
+            dear += 1;
+        } else {
+            opened += u32::from(!closed.is_empty());
+        }
+    }
+    assert!(cheaper > 5 && opened > 50 && dear > 100, "{cheaper} cheaper, {opened} open, {dear} in all");
+}
+
+/// Cures and what binds, where what is there may be closed: the least changes by trying every closing with every choice.
+#[test]
+fn cures_and_what_binds_heed_what_may_be_closed() {
+    let (mut cured, mut binding) = (0, 0);
+    for seed in 1..=260_u64 {
+        let mut dice = Dice(seed.wrapping_mul(0x9e37_79b9_7f4a_7c15) ^ 0x4242);
+        let (roof, mut options) = roof_with_closing(&mut dice);
+        options.mix = options.mix.min(2);
+        options.rank_by = vec![Criterion::Cost];
+        let least = |roof: &Roof, options: &Options| {
+            let options = Options { keep: 1, fold: false, ..options.clone() };
+            best_replacements(roof, &options).first().map(|(_, tried)| tried.key[0])
+        };
+        let changes = match least(&roof, &options) {
+            Some(_) => search::binds(&roof, &options, 0).expect("all priced"),
+            None => search::cures(&roof, &options, 0),
+        };
+        for change in changes.found {
+            if matches!(change.change, Relaxation::Devices(more) if more > 2) {
+                continue;
+            }
+            let told = change.layout().and_then(|layout| layout.cost).expect("opens a layout").amount();
+            assert_eq!(
+                least(&change.roof, &Options { rank_by: vec![Criterion::Cost], ..change.options.clone() }),
+                Some(told),
+                "seed {seed}: {:?}",
+                change.change
+            );
+            let Some(less) = a_step_less(&change.change) else { continue };
+            let (changed, options) = search::relaxed(&roof, &options, &less);
+            match changes.now {
+                Some(_) => {
+                    assert!(least(&changed, &options) > Some(told), "seed {seed}: {less:?} saves as much");
+                    binding += 1;
+                }
+                None => {
+                    assert!(least(&changed, &options).is_none(), "seed {seed}: {less:?} cures too");
+                    cured += 1;
+                }
+            }
+        }
+    }
+    assert!(cured > 60 && binding > 60, "{cured} cures, {binding} bind");
+}
+
 /// Areas alike but for what is there are asked together which sizes are worth trying: the answers are those of each alone.
 #[test]
 fn what_is_there_does_not_change_the_answer_of_another_area() {
@@ -534,9 +777,24 @@ fn with_what_is_there<'r>(roof: &'r Roof, area: usize, added: &[Group<'r>]) -> V
 
 /// The reasons that the search gives, against every layout that fits.
 fn check_why(roof: &Roof, options: &Options, why: &Why<'_>, seed: u64) {
+    check_why_of(roof, std::slice::from_ref(roof), options, why, seed);
+}
+
+/// The same where what is there may be closed: against every layout that fits after any closing.
+fn check_why_of_all(roof: &Roof, options: &Options, why: &Why<'_>, seed: u64) {
+    let closings = every_closing(&roof.areas[0].existing);
+    let after: Vec<Roof> = closings.iter().map(|way| after_closing(roof, way)).collect();
+    check_why_of(roof, &after, options, why, seed);
+}
+
+fn check_why_of(roof: &Roof, standing: &[Roof], options: &Options, why: &Why<'_>, seed: u64) {
     let situations = roof.situations(0);
-    let choices = every_choice(roof, options);
-    let fitting: Vec<_> = choices.iter().filter_map(|groups| fit(roof, groups)).map(|(l, _)| at_lowest(&l)).collect();
+    let of_one = |roof: &'_ Roof| -> Vec<Vec<(usize, u32)>> { every_choice(roof, options) };
+    let fitting: Vec<Vec<Group<'_>>> = standing
+        .iter()
+        .flat_map(|roof| of_one(roof).into_iter().filter_map(move |groups| fit(roof, &groups)))
+        .map(|(liftable, _)| at_lowest(&liftable))
+        .collect();
     let held = |groups: &[Group<'_>], cases: &[usize]| {
         cases.iter().all(|&case| layout::holds(groups, &situations[case], Asked::default()))
     };
@@ -932,6 +1190,7 @@ fn treads_are_the_least_costs_at_every_step() {
         let (mut roof, options) = (roof(&mut dice), options(&mut dice));
         if dice.one_in(3) {
             there_already(&mut roof, 0, &mut dice);
+            roof.areas[0].replace = dice.one_in(2).then(|| Money::nearest(50.0 * dice.upto(6) as f64));
         }
         if roof.sizes.iter().any(|size| size.price.is_none()) {
             continue;

@@ -123,6 +123,7 @@ fn roof(dice: &mut Dice, mix: usize) -> (Roof, Options) {
         set_heights: Some((0..=2).map(|step| inches(1.0 + f64::from(step) * 0.75)).collect()),
         limits,
         existing: Vec::new(),
+        replace: None,
         channel: None,
         facts: Facts::default(),
     };

@@ -333,6 +333,77 @@ fn what_is_added_to_what_is_there_by_hand() {
     assert_eq!((added["count"].as_u64(), inches(added), first["cost"].as_f64()), (Some(2), 7.0, Some(740.0)));
 }
 
+/// The same mill where the edge decides. 26 psf is 5 in of water: an opening of W in passes 2.9 W 3^1.5 = 15.07 W gpm at 2 in, 2.9 W
+/// = 34.8 gpm of 12 in at 4 in, of 199.5 gpm. Of 18 in of edge one of 12 in at 3 in, 98.4 gpm, leaves 6, which pass 90.4: too little,
+/// so it goes, and 14 in come for 440. Of 30 in two of 12 in at 4 in leave 6; with one closed 164.7 gpm are missing, 11 in for 410;
+/// with both 14 in.
+#[test]
+fn what_is_replaced_by_hand() {
+    let devices = "[[device]]\ntag = \"NS\"\nkind = \"open scupper\"\nwidth = { from = \"6 in\", to = \"30 in\", step = \"1 in\" }\n\
+                   price = { each = 300, per_width = \"10 / in\" }\n";
+    let project = |top: &str, edge: u32, count: u32, height: u32, replace: &str| {
+        format!(
+            "units = \"us\"\ncatalogs = [\"devices.toml\"]\n{top}[storm]\nintensity = \"6 in/h\"\n[limit]\nload = \"26 psf\"\n\
+             [search]\nset_height = [\"2 in\", \"3 in\"]\n[[area]]\nname = \"mill\"\narea = \"3200 ft2\"\nedge = \"{edge} in\"\n\
+             existing = [{{ device = \"NS\", width = \"12 in\", count = {count}, set_height = \"{height} in\" }}]\n{replace}"
+        )
+    };
+    let inches = |group: &Value| (group["width_m"].as_f64().expect("a width") / 0.0254 * 1e6).round() / 1e6;
+    let told = |name: &str, project: &str| {
+        let area = sized(&folder(name, devices, project))["areas"][0].clone();
+        let first = area["layouts"][0].clone();
+        let count = |group: &Value| (group["count"].as_u64().expect("a count"), inches(group));
+        let list = |groups: &Value| groups.as_array().expect("groups").iter().map(count).collect::<Vec<_>>();
+        let closed = &first["closed"];
+        (first["cost"].as_f64(), list(&first["groups"]), list(&closed["groups"]), closed["cost"].as_f64(), area)
+    };
+    let (cost, groups, closed, closing, area) = told("replace-one", &project("", 18, 1, 3, "replace = 50\n"));
+    assert_eq!((cost, groups, closed, closing), (Some(490.0), vec![(1, 14.0)], vec![(1, 12.0)], Some(50.0)));
+    assert_eq!(area["with_nothing_closed"]["outcome"], "infeasible");
+    let at_project = told("replace-true", &project("replace = 50\n", 18, 1, 3, "replace = true\n"));
+    assert_eq!(at_project.4, area, "at the project's price");
+    // A foot more of edge: it stays, and 7 in are added for 370.
+    let (cost, groups, closed, closing, area) = told("replace-none", &project("", 30, 1, 3, "replace = 50\n"));
+    assert_eq!((cost, groups, closed, closing), (Some(370.0), vec![(1, 7.0), (1, 12.0)], vec![], Some(0.0)));
+    assert_eq!(area.get("with_nothing_closed"), None);
+    // One of two is closed.
+    let (cost, groups, closed, closing, _) = told("replace-some", &project("", 30, 2, 4, "replace = 50\n"));
+    let wanted = (Some(460.0), vec![(1, 11.0), (1, 12.0)], vec![(1, 12.0)], Some(50.0));
+    assert_eq!((cost, groups, closed, closing), wanted);
+    // The project's price alone lets nothing be closed.
+    let kept = folder("replace-kept", devices, &project("replace = 50\n", 18, 1, 3, ""));
+    let mut command = Command::new(snapbox::cmd::cargo_bin!("brimline"));
+    let output = command.args(["size", kept.to_str().expect("UTF-8")]).output().expect("starts");
+    assert_eq!(output.status.code(), Some(1));
+}
+
+/// Sills in every height that an area gives, of sized as of given layouts: 3 in above a low point at 31.50 ft, where the roof rises
+/// 1/4 in/ft over 8 ft to 2 in at the wall, is at 31.75 ft = 9.6774 m and 1 in = 0.0254 m above that roof.
+#[test]
+fn sills_are_told_in_every_height() {
+    let devices =
+        "[[device]]\ntag = \"NS\"\nkind = \"open scupper\"\nwidth = [\"20 in\", \"24 in\"]\nprice = { each = 300 }\n";
+    let project = "units = \"us\"\ncatalogs = [\"devices.toml\"]\n[storm]\nintensity = \"6 in/h\"\n[limit]\nload = \"26 psf\"\n\
+                   [search]\nset_height = [\"3 in\"]\n[[area]]\nname = \"mill\"\narea = \"1200 ft2\"\nlow_point = \"31.50 ft\"\n\
+                   slope = \"0.25 in/ft\"\ndistance = \"8 ft\"\n[[layout]]\nname = \"drawn\"\narea = \"mill\"\n\
+                   groups = [{ device = \"NS\", width = \"24 in\", count = 1, set_height = \"3 in\" }]\n";
+    let path = folder("heights", devices, project);
+    let run = |arguments: &[&str]| {
+        let mut command = Command::new(snapbox::cmd::cargo_bin!("brimline"));
+        let output = command.arg(arguments[0]).arg(&path).args(&arguments[1..]).output().expect("starts");
+        String::from_utf8(output.stdout).expect("UTF-8")
+    };
+    for command in ["size", "check"] {
+        let document: Value = serde_json::from_str(&run(&[command, "--format", "json"])).expect("JSON");
+        let group = &document["areas"][0]["layouts"][0]["groups"][0];
+        let heights = ["set_height_m", "elevation_m", "above_roof_at_wall_m"].map(|key| group[key].as_f64());
+        assert_eq!(heights, [Some(0.0762), Some(9.6774), Some(0.0254)], "{command}");
+        let said = "at 3 in above the low point, elevation 31.75 ft and 1 in above the roof at the wall";
+        let text = run(&[command]).split_whitespace().collect::<Vec<_>>().join(" ");
+        assert!(text.contains(said), "{command}: {text}");
+    }
+}
+
 /// Where no price for closing is given none is taken, and that is said of the areas it holds for.
 #[test]
 fn what_is_taken_for_closing_is_said() {

@@ -198,6 +198,7 @@ fn roof(given: &Given) -> Roof {
         set_heights: Some(vec![Length::inches(SET_HEIGHT)]),
         limits: ask.psf.map(|psf| Limits { load: Some(Load::psf(f64::from(psf))), depth: None }).to_vec(),
         existing: Vec::new(),
+        replace: None,
         channel: None,
         facts: Facts::default(),
     };

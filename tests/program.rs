@@ -468,7 +468,7 @@ fn the_catalogs_of_the_program_need_no_file() {
 
 #[test]
 fn a_front_counts_what_is_added_and_shows_what_is_there() {
-    let document = json("old-roof-survey", &["--front", "--area", "dye house"]);
+    let document = json("old-roof-survey", &["--front", "--area", "covered yard"]);
     let rows = document["areas"][0]["front"].as_array().expect("a front");
     assert!(rows.len() > 1, "{rows:?}");
     for row in rows {

@@ -557,7 +557,7 @@ fn every_kind_in_every_verdict() {
         ),
         judged("asks = \"storm\"\nduration = \"15 min\"\ntimes = 2.0", AREA, "pass", ""),
         judged("asks = \"storm\"\nduration = \"15 min\"\ntimes = 2.0", AREA, "fail", "").advice(),
-        judged("asks = \"storm\"\nduration = \"60 min\"\ntimes = 2.0", AREA, "cannot tell", "of this duration"),
+        judged("asks = \"storm\"\nduration = \"60 min\"\ntimes = 2.0", AREA, "cannot tell", "that has this duration"),
         judged(
             "asks = \"storm\"\nduration = \"15 min\"\nreturn_period = \"100 yr\"\nreturn_period_4 = \"500 yr\"",
             AREA,

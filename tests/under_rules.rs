@@ -6,7 +6,9 @@ use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Place, RingDrain, Size};
 use brimline::roof::layout::{self, Asked, Group};
-use brimline::roof::{Case, Catchment, Facts, Limits, Parapet, Primary, Roof, Situation, Storm, Surface, demand};
+use brimline::roof::{
+    Case, Catchment, Facts, GivenGroup, Limits, Parapet, Primary, Roof, Situation, Storm, Surface, demand,
+};
 use brimline::rules::{
     self, Amount, Applied, Bound, KINDS, Kind as RuleKind, Known, Rule, RuleAt, RuleSet, Rulebook, Verdict,
 };
@@ -212,6 +214,7 @@ fn area(dice: &mut Dice, cases: usize) -> Catchment {
         set_heights: Some((0..3).map(|step| grid((start + step) as f64)).collect()),
         limits: vec![limits; cases],
         existing: Vec::new(),
+        replace: None,
         channel: None,
         facts: Facts {
             limits,
@@ -297,13 +300,16 @@ fn holds(roof: &Roof, options: &Options, index: usize, asks: &[Asks], groups: &G
         let Some(set_height) = lowest(roof, area, asks, size) else { return false };
         stand.push(Group { size: &roof.sizes[size], count, set_height });
     }
-    let all: u32 = groups.iter().map(|&(_, count)| count).sum();
+    stand.extend(area.existing.iter().map(GivenGroup::group));
+    let all: u32 = stand.iter().map(|group| group.count).sum();
     let at_edge = || stand.iter().filter(|group| group.size.place == Place::Edge);
     let openings: u32 = at_edge().map(|group| group.count).sum();
     let used: i64 = at_edge().map(|group| group.size.clear_width().nm() * i64::from(group.count)).sum();
     let gaps = area.gap.nm() * i64::from(openings.saturating_sub(1));
     let fits = openings == 0 || area.edge.is_none_or(|edge| used + gaps <= edge.nm());
-    if !area.count.contains(&all) || !fits || !asks.iter().all(|asks| asks.enough(openings, all, area)) {
+    // What is there may be more than an area may have: then nothing is added.
+    let many = all > *area.count.end() && !groups.is_empty();
+    if all < *area.count.start() || many || !fits || !asks.iter().all(|asks| asks.enough(openings, all, area)) {
         return false;
     }
     let own = roof.cases.len() - asks.len();
@@ -442,6 +448,101 @@ fn binding_sets_leave_what_trying_everything_leaves() {
     assert!(some > 300 && none > 300, "{some} with layouts, {none} without");
     assert!(waived > 100 && with_rules_alone > 150, "{waived} rules waived, {with_rules_alone} where rules forbid");
     assert!(together > 50, "{together} roofs with rules against each other");
+}
+
+/// What is there already and may be closed, under binding sets: the sets restrict what stays and what is added; the layouts
+/// listed are those of trying every closing with everything that may be added.
+#[test]
+fn what_may_be_closed_under_binding_sets_is_what_trying_everything_closes() {
+    let (mut closing, mut closing_alone, mut none) = (0, 0, 0);
+    for seed in 1..=600_u64 {
+        let mut dice = dice(seed + 90_000);
+        let asks = asks(&mut dice);
+        let (mut roof, options) = roof(&mut dice, 1, &asks);
+        let sizes = sizes(&mut dice);
+        let area = &mut roof.areas[0];
+        for size in sizes.into_iter().take(1 + usize::from(dice.one_in(2))) {
+            let size = Size { price: Some(Money::default()), ..size };
+            area.existing.push(GivenGroup { size, count: 1 + dice.upto(1) as u32, set_height: dice.inches(1, 4) });
+        }
+        let at_edge = area.existing.iter().filter(|group| group.size.place == Place::Edge);
+        let taken = rules::edge_used(at_edge.map(|group| (&group.size, group.count)), area);
+        area.edge = area.edge.map(|edge| Length::from_nm(edge.nm().max(taken)));
+        let price = Money::from_millionths(i64::try_from(dice.upto(2)).expect("small") * 150_000_000);
+        area.replace = Some(price);
+        let existing = area.existing.clone();
+        let mut tried: BTreeSet<(Vec<u32>, Groups, i64)> = BTreeSet::new();
+        let ways = existing.iter().fold(vec![Vec::new()], |ways: Vec<Vec<u32>>, group| {
+            ways.iter().flat_map(|way| (0..=group.count).map(|closed| [&way[..], &[closed]].concat())).collect()
+        });
+        for way in ways {
+            let mut left = roof.clone();
+            let there = existing.iter().zip(&way).map(|(group, closed)| {
+                let count = group.count - closed;
+                GivenGroup { count, ..group.clone() }
+            });
+            left.areas[0].existing = there.filter(|group| group.count > 0).collect();
+            let choices = every(&left, 0).into_iter().chain([Vec::new()]);
+            let closed: u32 = way.iter().sum();
+            let kept = &left.areas[0].existing;
+            let stays = |one: &Asks| kept.iter().all(|group| one.allows(&group.size, group.set_height, &left.areas[0]));
+            if !asks.iter().all(stays) {
+                continue;
+            }
+            let holding = choices.filter(|groups| holds(&left, &options, 0, &asks, groups));
+            tried.extend(holding.map(|groups| {
+                let cost = cost(&left, &groups) + (price * closed).millionths();
+                (way.clone(), groups, cost)
+            }));
+        }
+        let answer = search::size(&roof, &options, &[0]).remove(0);
+        let place = |size: &Size| roof.sizes.iter().position(|known| std::ptr::eq(known, size)).expect("one of them");
+        let told = |layout: &search::Ranked<'_>| {
+            let closed = layout.closed.as_ref().expect("may be closed");
+            let of = |given: &GivenGroup| {
+                let mut groups = closed.groups.iter();
+                let found = groups.find(|group| std::ptr::eq(group.size, &raw const given.size));
+                found.map_or(0, |group| group.count)
+            };
+            // The roof's own, whose groups a layout points to.
+            let way: Vec<u32> = roof.areas[0].existing.iter().map(of).collect();
+            let added = &layout.groups[..layout.groups.len() - layout.kept];
+            let added: Groups = added.iter().map(|placed| (place(placed.group.size), placed.group.count)).collect();
+            (way, added, layout.cost.expect("priced").millionths())
+        };
+        let found: BTreeSet<_> = answer.outcome.layouts().iter().map(told).collect();
+        assert_eq!(found, tried, "seed {seed}: {asks:?}");
+        assert!(answer.outcome.layouts().is_sorted_by_key(|layout| layout.cost), "seed {seed}");
+        closing += usize::from(tried.iter().any(|(way, _, _)| way.iter().any(|&closed| closed > 0)));
+        closing_alone +=
+            usize::from(tried.iter().any(|(way, added, _)| added.is_empty() && way.iter().any(|&n| n > 0)));
+        none += usize::from(tried.is_empty());
+    }
+    assert!(closing > 150 && closing_alone > 20 && none > 80, "{closing} close, {closing_alone} alone, {none} without");
+}
+
+/// Areas alike are asked together which sizes are worth trying: under sets, and the freeboard that one asks, each answers as it
+/// does alone.
+#[test]
+fn areas_alike_under_binding_sets_answer_as_each_alone() {
+    let mut freeboards = 0;
+    for seed in 1..=500_u64 {
+        let mut dice = dice(seed + 130_000);
+        let mut asks = asks(&mut dice);
+        asks[0].freeboard = Some(grid(2.0));
+        let (roof, options) = roof(&mut dice, 2, &asks);
+        let options = Options { keep: 3, fold: true, freeboard: None, ..options };
+        let told = |answer: &search::Answer<'_>| {
+            let layouts = answer.outcome.layouts().iter();
+            layouts.map(|layout| format!("{:?} {:?}", layout.cost, layout.groups)).collect::<Vec<_>>()
+        };
+        for together in search::size(&roof, &options, &[0, 1]) {
+            let alone = search::size(&roof, &options, &[together.area]);
+            assert_eq!(told(&together), told(&alone[0]), "seed {seed}, area {}", together.area);
+            freeboards += usize::from(!alone[0].outcome.layouts().is_empty());
+        }
+    }
+    assert!(freeboards > 100, "{freeboards} areas with layouts");
 }
 
 impl Asks {

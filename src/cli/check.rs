@@ -61,8 +61,13 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     });
     let storage = if args.storage { Some(routed(&project.roof, &given)?) } else { None };
     let mends = if args.mend { Some(mends(&project, &areas, &checked)?) } else { None };
-    let assumed: Vec<Assumed> =
-        project.assumed.iter().cloned().chain(mends.as_ref().and_then(|_| project.assumed_of_mends())).collect();
+    // A mend may close openings of any area, a search only where the area says so.
+    let closing = match (&mends, &best) {
+        (Some(_), _) => project.assumed_of_closing(|_| true),
+        (None, Some(_)) => project.assumed_of_closing(|area| area.replace.is_some()),
+        (None, None) => None,
+    };
+    let assumed: Vec<Assumed> = project.assumed.iter().cloned().chain(closing).collect();
     let mended: Vec<Given> = mends.iter().flatten().flatten().map(|mend| mend.given.clone()).collect();
     let mended = review::check(&project.roof, &project.options, &mended);
     let checks = Checks {

@@ -18,43 +18,43 @@ pub(super) struct Args {
     /// Kind of device: open-scupper, closed-scupper, pipe-scupper, overflow-drain, standpipe or roof-edge.
     kind: Option<String>,
     /// Clear width; of a roof edge its length.
-    #[arg(long, value_name = "LENGTH")]
+    #[arg(long, value_name = "LENGTH", allow_hyphen_values = true)]
     width: Option<String>,
     /// Clear height of a closed scupper.
-    #[arg(long, value_name = "LENGTH")]
+    #[arg(long, value_name = "LENGTH", allow_hyphen_values = true)]
     height: Option<String>,
     /// Inside diameter of a pipe or standpipe, or of a drain's throat.
-    #[arg(long, value_name = "LENGTH")]
+    #[arg(long, value_name = "LENGTH", allow_hyphen_values = true)]
     diameter: Option<String>,
     /// Thickness of the parapet, for the laws of a thick wall.
-    #[arg(long, value_name = "LENGTH")]
+    #[arg(long, value_name = "LENGTH", allow_hyphen_values = true)]
     thickness: Option<String>,
     /// Diameter of a drain's ring dam.
-    #[arg(long, value_name = "LENGTH")]
+    #[arg(long, value_name = "LENGTH", allow_hyphen_values = true)]
     dam: Option<String>,
     /// Height of the ring dam above the throat.
-    #[arg(long, value_name = "LENGTH")]
+    #[arg(long, value_name = "LENGTH", allow_hyphen_values = true)]
     dam_height: Option<String>,
     /// Free area of a drain's dome.
-    #[arg(long, value_name = "AREA")]
+    #[arg(long, value_name = "AREA", allow_hyphen_values = true)]
     free_area: Option<String>,
     /// Height of the sill above the roof before it, for the law kindsvater-carter.
-    #[arg(long, value_name = "LENGTH", default_value = "2 in")]
+    #[arg(long, value_name = "LENGTH", allow_hyphen_values = true, default_value = "2 in")]
     sill: String,
     /// Manning roughness of a throat.
-    #[arg(long, value_name = "N", default_value_t = Choice::default().roughness)]
+    #[arg(long, value_name = "N", allow_hyphen_values = true, default_value_t = Choice::default().roughness)]
     roughness: f64,
     /// Entrance loss of a throat in velocity heads.
-    #[arg(long, value_name = "KE", default_value_t = Choice::default().entrance_loss)]
+    #[arg(long, value_name = "KE", allow_hyphen_values = true, default_value_t = Choice::default().entrance_loss)]
     entrance_loss: f64,
     /// The flow law, or `all`.
     #[arg(long, value_name = "LAW")]
     law: Option<String>,
     /// One head, or FROM..TO..STEP with units on each.
-    #[arg(long, value_name = "HEAD", default_value = "1 in..8 in..1 in")]
+    #[arg(long, value_name = "HEAD", allow_hyphen_values = true, default_value = "1 in..8 in..1 in")]
     head: String,
     /// Show the head that this flow needs, in place of flows.
-    #[arg(long, value_name = "FLOW")]
+    #[arg(long, value_name = "FLOW", allow_hyphen_values = true)]
     flow: Option<String>,
     /// A device of a catalog, by its tag; its sizes are told apart by --width, --height and --diameter.
     #[arg(long, value_name = "TAG", requires = "catalog", conflicts_with = "kind")]

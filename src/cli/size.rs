@@ -4,7 +4,7 @@ use std::process::ExitCode;
 
 use rayon::prelude::*;
 
-use crate::input::Project;
+use crate::input::{Assumed, Project};
 use crate::report::{self, Format, Fronted, Sized, Strengthened, Weighed};
 use crate::search::{self, Answer, Cures, Options, Outcome, Stiffened, Stopped};
 
@@ -22,7 +22,7 @@ pub(super) struct Args {
     #[command(flatten)]
     of: OfProject,
     /// How many layouts to list for each area, in place of the project's `keep`.
-    #[arg(long, value_name = "N", value_parser = clap::value_parser!(u32).range(1..=10_000))]
+    #[arg(long, value_name = "N", allow_hyphen_values = true, value_parser = clap::value_parser!(u32).range(1..=10_000))]
     keep: Option<u32>,
     /// List every layout, not only the best with the same number of each device.
     #[arg(long)]
@@ -54,6 +54,9 @@ fn strengthened(found: &Result<Option<Stiffened>, Stopped>) -> Weighed<'_> {
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
     let (project, areas) = args.of.read()?;
     super::without_set_height(&project.roof, &areas).map_or(Ok(()), Err)?;
+    if args.front {
+        super::closes_nothing(&project, &areas, "--front")?;
+    }
     let watched = args.ending.watch()?;
     let mut options = project.options.clone();
     options.watch = watched.watch.clone();
@@ -92,10 +95,12 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         Some(search::plan_front(&project.roof, &options, *asked, &areas, cheapest))
     });
     drop(watched);
+    let closing = project.assumed_of_closing(|area| area.replace.is_some());
+    let assumed: Vec<Assumed> = project.assumed.iter().cloned().chain(closing).collect();
     let sized = Sized {
         roof: &project.roof,
         options: &options,
-        assumed: &project.assumed,
+        assumed: &assumed,
         answers: &answers,
         work: args.work,
         laws: &laws,

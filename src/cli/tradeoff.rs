@@ -20,13 +20,13 @@ pub(super) struct Args {
     #[command(flatten)]
     of: OfProject,
     /// The greatest raise of the load limits; 20 psf or 1 kPa where not given.
-    #[arg(long, value_name = "LOAD")]
+    #[arg(long, value_name = "LOAD", allow_hyphen_values = true)]
     up: Option<String>,
     /// How far under the given limits to look as well.
-    #[arg(long, value_name = "LOAD")]
+    #[arg(long, value_name = "LOAD", allow_hyphen_values = true)]
     down: Option<String>,
     /// Step of the plan; that of the structure, else 1 psf or 50 Pa, where not given.
-    #[arg(long, value_name = "LOAD")]
+    #[arg(long, value_name = "LOAD", allow_hyphen_values = true)]
     step: Option<String>,
     #[command(flatten)]
     ending: Ending,

@@ -24,7 +24,7 @@ const TICK: Duration = Duration::from_millis(100);
 pub(super) struct Ending {
     /// End the search after this time, such as "30 s", with the best found until then and what is proven of the rest. Ctrl-c
     /// does the same at once; a second ctrl-c ends the program.
-    #[arg(long, value_name = "TIME")]
+    #[arg(long, value_name = "TIME", allow_hyphen_values = true)]
     time_limit: Option<String>,
 }
 

@@ -82,6 +82,10 @@ pub(super) struct Areas {
     pub(super) complete: Option<Vec<Catchment>>,
     /// Kinds that may stand in each area whose kinds can be read, none for any.
     pub(super) kinds: Vec<Option<Vec<Kind>>>,
+    /// Every area for layouts to be read against: in the place of one at fault another of its name, in which any height stands.
+    pub(super) standing: Vec<Catchment>,
+    /// Whether every area has a name that can be read: only then is an area known not to be there.
+    pub(super) all_named: bool,
 }
 
 pub(super) fn read_all(project: &Section<'_>, setting: &Setting<'_>, assumed: &mut Vec<Assumed>) -> Areas {
@@ -101,7 +105,9 @@ pub(super) fn read_all(project: &Section<'_>, setting: &Setting<'_>, assumed: &m
     if tables.iter().flatten().any(|table| table.get("count").is_none()) {
         blocked_under_count(project, setting, setting.search.count.as_ref(), setting.search.count_at.as_ref(), None);
     }
-    let receipts = find_receipts(&given, tables.iter().all(|table| is_named(table.as_ref())));
+    let all_named = !tables.is_empty() && tables.iter().all(|table| is_named(table.as_ref()));
+    let receipts = find_receipts(&given, all_named);
+    let standing = given.iter().map(standing).collect();
     let runs_one_way = report_circles(project, &given, &receipts);
     let kinds = given.iter().filter_map(|given| given.kinds.clone()).collect();
     let complete = given
@@ -113,7 +119,7 @@ pub(super) fn read_all(project: &Section<'_>, setting: &Setting<'_>, assumed: &m
         .collect::<Option<Vec<_>>>()
         .filter(|areas| runs_one_way && !areas.is_empty());
     taken.tell(assumed, tables.len());
-    Areas { complete, kinds }
+    Areas { complete, kinds, standing, all_named }
 }
 
 /// What each area receives, by the index of the other; none where there is no such area, which is told where all are named.
@@ -294,6 +300,7 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
             set_heights: set_heights?,
             limits: limits?.in_case,
             existing: Vec::new(),
+            replace: None,
             channel: optional(channel)?,
             facts: Facts { roof_at_wall_assumed, ..facts? },
         })
@@ -390,16 +397,51 @@ fn thickness_given(
     }
 }
 
-/// What closing or removing one opening costs in each area: its own price, else the project's; none where neither is given.
-pub(super) fn replace_prices(project: &Section<'_>) -> Option<Vec<Option<Money>>> {
-    let price = |section: &Section<'_>| {
-        optional(section.get("replace").map(|cell| cell.number_not_negative())).map(|price| price.map(Money::nearest))
-    };
-    let of_project = price(project);
+/// What an area says of closing its openings.
+#[derive(Clone, Copy)]
+pub(super) struct Replace {
+    /// What closing or removing one opening costs: its own price, else the project's; none where neither is given.
+    pub(super) price: Option<Money>,
+    /// Whether the area itself says so, which lets a search close what is there.
+    pub(super) allowed: bool,
+}
+
+/// What each area says of closing its openings, in their order; none where one is at fault.
+pub(super) fn replace_all(project: &Section<'_>) -> Option<Vec<Replace>> {
+    let price = |cell: &Cell<'_>| cell.number_not_negative().map(Money::nearest);
+    let of_project = optional(project.get("replace").map(|cell| price(&cell)));
     let tables = project.sections("area", &AREA, "a list of areas, each under [[area]]").unwrap_or_default();
-    let own: Vec<_> = tables.iter().flatten().map(price).collect();
+    let of_area = |table: &Section<'_>| {
+        let Some(cell) = table.get("replace") else { return Some((None, false)) };
+        match cell.as_yes_or_no() {
+            None if cell.is_number() => Some((Some(price(&cell)?), true)),
+            None => {
+                cell.refuse("a bare number, or true");
+                None
+            }
+            Some(true) if table.get("existing").is_some() => Some((None, true)),
+            Some(true) => {
+                cell.at_fault(
+                    "`replace = true` lets a search close what is there, and the area has no `existing`",
+                    "nothing to be closed",
+                    "say what is there: existing = \"as found\", or give a price, which `check --mend` reckons with",
+                );
+                None
+            }
+            Some(false) => {
+                cell.at_fault(
+                    "`replace` is a price, or true",
+                    "what is there stays where the key is absent",
+                    "take it out, or give what closing one opening costs: replace = 250",
+                );
+                None
+            }
+        }
+    };
+    let own: Vec<_> = tables.iter().flatten().map(of_area).collect();
     let of_project = of_project?;
-    own.into_iter().map(|own| own.map(|own| own.or(of_project))).collect()
+    let with_project = |(own, allowed): (Option<Money>, bool)| Replace { price: own.or(of_project), allowed };
+    own.into_iter().map(|own| own.map(with_project)).collect()
 }
 
 /// Whether the flow in every channel stays subcritical, in every case; where it does not, that is told with its numbers.
@@ -617,6 +659,15 @@ fn report_circles(project: &Section<'_>, given: &[Given<'_>], receipts: &[Vec<Op
     runs_one_way
 }
 
+/// An area for layouts to be read against.
+fn standing(given: &Given<'_>) -> Catchment {
+    given.area.clone().unwrap_or_else(|| {
+        // Far under every sill, so that no height is told to be wrong where the datum is.
+        let surface = Surface { low_point: Some(Length::from_m(-1e5)), ..Surface::default() };
+        Catchment { name: given.name.clone().unwrap_or_default(), surface, ..without_size(Vec::new()) }
+    })
+}
+
 /// An area that only passes on what it receives.
 fn without_size(receives: Vec<Receipt>) -> Catchment {
     Catchment {
@@ -636,6 +687,7 @@ fn without_size(receives: Vec<Receipt>) -> Catchment {
         set_heights: None,
         limits: Vec::new(),
         existing: Vec::new(),
+        replace: None,
         channel: None,
         facts: Facts::default(),
     }

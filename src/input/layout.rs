@@ -10,8 +10,9 @@ use crate::device::{Device, Size};
 use crate::roof::{Catchment, Given, GivenGroup, MOST_OUTLETS};
 use crate::units::Length;
 
+use super::area::Areas;
 use super::catalog::{self, Catalogs};
-use super::fault::Fault;
+use super::fault::{Fault, Span};
 use super::height::{self, Datum};
 use super::schedule;
 use super::section::{Cell, Keys, Section, any_of, near};
@@ -63,23 +64,24 @@ pub(super) struct Against<'s> {
     by_tag: HashMap<&'s str, Vec<usize>>,
     /// Whether all catalogs were read: only then is a device known to be in none.
     complete: bool,
+    /// Whether every area has a name that can be read: only then is an area known not to be there.
+    all_named: bool,
 }
 
+/// A layout's area and name, and where the name stands.
+type LayoutName = (usize, String, Span);
+
 /// Every layout that the project gives; none where one is at fault.
-pub(super) fn read_all(
-    path: &Path,
-    project: &Section<'_>,
-    areas: &[Catchment],
-    catalogs: &Catalogs,
-) -> Option<Vec<Given>> {
-    let against = Against::new(areas, catalogs);
+pub(super) fn read_all(path: &Path, project: &Section<'_>, areas: &Areas, catalogs: &Catalogs) -> Option<Vec<Given>> {
+    let against = Against { all_named: areas.all_named, ..Against::new(&areas.standing, catalogs) };
     let mut layouts = Vec::new();
+    let mut names = Vec::new();
     let mut sound = true;
     if project.get("layout").is_some() {
         let tables = project.sections("layout", &LAYOUT, "a list of layouts, each under [[layout]]");
         sound &= tables.is_some();
         for table in tables.unwrap_or_default() {
-            match table.and_then(|table| against.layout(path, &table, &layouts)) {
+            match table.and_then(|table| against.layout(path, &table, &mut names)) {
                 Some(layout) => layouts.push(layout),
                 None => sound = false,
             }
@@ -98,7 +100,7 @@ impl<'s> Against<'s> {
             by_tag.entry(&size.tag).or_default().push(index);
         }
         let by_name = areas.iter().enumerate().map(|(index, area)| (area.name.as_str(), index)).collect();
-        Self { areas, by_name, sizes: &catalogs.sizes, by_tag, complete: catalogs.complete }
+        Self { areas, by_name, sizes: &catalogs.sizes, by_tag, complete: catalogs.complete, all_named: true }
     }
 }
 
@@ -119,7 +121,7 @@ impl Against<'_> {
         groups.into_iter().collect()
     }
 
-    fn layout(&self, path: &Path, table: &Section<'_>, before: &[Given]) -> Option<Given> {
+    fn layout(&self, path: &Path, table: &Section<'_>, names: &mut Vec<LayoutName>) -> Option<Given> {
         let _ = table.get("note").and_then(|cell| cell.text());
         let name = table.need("name", "name the layout: name = \"as drawn\"");
         let area = table
@@ -133,20 +135,11 @@ impl Against<'_> {
             );
         }
         let groups = table.sections("groups", &GROUP, wanted);
-        let (name_cell, area) = (name, area?);
-        let name = name_cell.and_then(|cell| cell.text());
+        let area = area?;
+        let name = name.and_then(|cell| self.own_name(&cell, area, names));
         let read = |group: &Option<Section<'_>>| self.group(path, group.as_ref()?, area);
         let groups: Vec<Option<GivenGroup>> = groups?.iter().map(read).collect();
         let (name, groups) = (name?, groups.into_iter().collect::<Option<Vec<_>>>()?);
-        let cell = name_cell?;
-        if before.iter().any(|known| known.area == area && known.name == name) {
-            put(
-                &cell,
-                Fault::error(format!("`{}` has two layouts named `{name}`", self.areas[area].name))
-                    .help("give each layout of an area a name of its own"),
-            );
-            return None;
-        }
         if let Some(cell) = table.get("groups").filter(|_| groups.len() > MOST_OUTLETS) {
             cell.at_fault(
                 format!("a layout has at most {MOST_OUTLETS} groups"),
@@ -155,7 +148,22 @@ impl Against<'_> {
             );
             return None;
         }
-        Some(Given { name: name.to_string(), area, groups })
+        Some(Given { name, area, groups })
+    }
+
+    /// The name of a layout, that no other of its area has.
+    fn own_name(&self, cell: &Cell<'_>, area: usize, names: &mut Vec<LayoutName>) -> Option<String> {
+        let name = cell.text()?;
+        if let Some((_, _, first)) = names.iter().find(|(of, known, _)| *of == area && known == name) {
+            let fault = Fault::error(format!("`{}` has two layouts named `{name}`", self.areas[area].name))
+                .at(cell.reader.source, cell.span(), "again here")
+                .at(cell.reader.source, first.clone(), "first here")
+                .help("give each layout of an area a name of its own");
+            cell.reader.log.put(fault);
+            return None;
+        }
+        names.push((area, name.to_string(), cell.span()));
+        Some(name.to_string())
     }
 
     fn group(&self, path: &Path, group: &Section<'_>, area: usize) -> Option<GivenGroup> {
@@ -192,7 +200,7 @@ impl Against<'_> {
 
     pub(super) fn area(&self, name: &str, refuse: impl FnOnce(Fault)) -> Option<usize> {
         let found = self.by_name.get(name).copied();
-        if found.is_none() {
+        if found.is_none() && self.all_named {
             let names: Vec<&str> = self.areas.iter().map(|area| area.name.as_str()).collect();
             let did_you =
                 near(name, names.iter().copied()).map_or(String::new(), |near| format!("did you mean \"{near}\"? "));

@@ -136,15 +136,23 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
     set_named_as_case(section, &cases, book.as_ref());
     let areas = area::read_all(section, &setting, &mut assumed);
     prices(section, &search, &areas.kinds, &catalogs);
-    let replace = area::replace_prices(section);
-    let layouts = areas.complete.as_deref().and_then(|areas| layout::read_all(path, section, areas, &catalogs));
+    let replace = area::replace_all(section);
+    // An area at fault does not hide what is wrong with layouts.
+    let layouts = layout::read_all(path, section, &areas, &catalogs);
+    let beside = existing::Beside {
+        plan: search.plan.is_some_and(|plan| plan.is_some()),
+        measure: catalogs.sizes.iter().any(|size| size.made.is_some()),
+    };
     let existing = areas
         .complete
         .as_deref()
         .zip(layouts.as_deref())
-        .and_then(|(areas, layouts)| existing::read_all(path, section, areas, &catalogs, layouts));
+        .and_then(|(areas, layouts)| existing::read_all(path, section, areas, &catalogs, layouts, &beside));
     let (mut areas, storm) = (areas.complete?, storm?);
-    for (area, there) in areas.iter_mut().zip(existing?) {
+    let replace = replace?;
+    for ((area, there), replace) in areas.iter_mut().zip(existing?).zip(&replace) {
+        let closes = replace.allowed && !there.is_empty();
+        area.replace = closes.then(|| replace.price.unwrap_or_default());
         area.existing = there;
     }
     let roof = Roof {
@@ -172,7 +180,7 @@ fn read_sections(path: &Path, section: &Section<'_>) -> Option<Project> {
         structure,
         tolerances: tolerances?,
         layouts: layouts?,
-        replace: replace?,
+        replace: replace.iter().map(|replace| replace.price).collect(),
         assumed,
         warnings: Faults::default(),
     })

@@ -304,13 +304,24 @@ impl<'a> Cell<'a> {
 
     /// True or false.
     pub(super) fn yes_or_no(&self) -> Option<bool> {
+        let yes = self.as_yes_or_no();
+        if yes.is_none() {
+            self.refuse("true or false");
+        }
+        yes
+    }
+
+    /// Whether the value is `true` or `false`; none where it is neither.
+    pub(super) fn as_yes_or_no(&self) -> Option<bool> {
         match self.value {
             DeValue::Boolean(yes) => Some(*yes),
-            _ => {
-                self.refuse("true or false");
-                None
-            }
+            _ => None,
         }
+    }
+
+    /// Whether the value is a bare number.
+    pub(super) fn is_number(&self) -> bool {
+        matches!(self.value, DeValue::Integer(_) | DeValue::Float(_))
     }
 
     /// A quantity with its unit.

@@ -3,18 +3,16 @@
 use rayon::prelude::*;
 use serde::Serialize;
 
-use crate::device::Place;
 use crate::input::Assumed;
 use crate::review::{Checked, Effect, Failing, Input, Mend, Routed, Sensitivity, Storage, Tolerances};
-use crate::roof::layout::Group;
 use crate::roof::{Roof, Situation};
 use crate::search::{Answer, Options, Ranked};
 use crate::units::{Length, Load, Money};
 
 use super::json;
 use super::page::{self, Block, Table};
-use super::words::{self, Words, list};
-use super::{Format, mend, notes, plain, ponding, ranking, rules, sensitivity, storage, written};
+use super::words::{self, Words};
+use super::{Format, heights, mend, notes, plain, ponding, ranking, rules, sensitivity, storage, written};
 
 /// What a report of given layouts is made of.
 #[derive(Clone, Copy, Debug)]
@@ -126,17 +124,12 @@ fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut 
     for (place, _) in checks.checked.iter().enumerate().filter(|(_, checked)| checked.given.area == area) {
         blocks.extend(mend::blocks(checks, place, words));
     }
-    let sills: Vec<String> = checked.iter().flat_map(|checked| sills(roof, checked, words)).collect();
-    if !sills.is_empty() {
-        blocks.push(Block::Text("Where the sills stand:".into()));
-        blocks.push(Block::List(sills));
-    }
+    blocks.extend(heights::blocks(roof, area, &named, words));
     let loads: Vec<String> = checked.iter().filter_map(|checked| up_the_slope(roof, checked, words)).collect();
     if !loads.is_empty() {
         blocks.push(Block::Text("Up the slope, in the governing case:".into()));
         blocks.push(Block::List(loads));
     }
-    let named: Vec<_> = checked.iter().map(|checked| (checked.given.name.clone(), &checked.standing)).collect();
     blocks.extend(ranking::beside(roof, area, &named, words));
     blocks.extend(sensitivities(checks, area, words));
     if let Some(stored) = checks.storage {
@@ -304,26 +297,6 @@ fn limit_passed(situation: &Situation<'_>, water: &crate::roof::layout::Water, c
         LimitKind::Depth => format!("depth {} in {case}, the limit is {limit}", words.depth(water.depth())),
         LimitKind::Parapet => format!("water up to {} in {case}, {limit}", words.depth(water.level)),
     }
-}
-
-/// Each sill above everything that the area gives a height for; nothing where that is the low point alone.
-fn sills(roof: &Roof, checked: &Checked<'_>, words: Words) -> Vec<String> {
-    let area = &roof.areas[checked.given.area];
-    let told = area.surface.low_point.is_some() || area.roof_at_wall > Length::ZERO;
-    let one = |group: &Group<'_>| {
-        let mut parts = vec![format!("{} above the low point", words.size(group.set_height))];
-        if let Some(low_point) = area.surface.low_point {
-            parts.push(format!("elevation {}", words.elevation(low_point + group.set_height)));
-        }
-        if area.roof_at_wall > Length::ZERO && group.size.place == Place::Edge {
-            let above = group.set_height - area.roof_at_wall;
-            let side = if above < Length::ZERO { "under" } else { "above" };
-            let distance = if above < Length::ZERO { -above } else { above };
-            parts.push(format!("{} {side} the roof at the wall", words.size(distance)));
-        }
-        format!("{}: {} at {}", checked.given.name, words.name(group.size), list(&parts))
-    };
-    if told { checked.given.groups().iter().map(one).collect() } else { Vec::new() }
 }
 
 /// How the load falls off up the slope, and how far water stands.
@@ -497,6 +470,8 @@ struct OfStep<'a> {
 struct OfBest<'a> {
     cost: Option<f64>,
     groups: Vec<json::Group<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    closed: Option<json::Closing<'a>>,
     governing: json::Governing<'a>,
     cases: Vec<json::Case<'a>>,
 }
@@ -526,6 +501,7 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
     let best = |area: usize, best: &'a Ranked<'_>| OfBest {
         cost: best.cost.map(Money::amount),
         groups: json::groups(roof, area, best),
+        closed: json::closed(roof, area, best),
         governing: json::governing(roof, best),
         cases: json::cases(roof, area, best),
     };

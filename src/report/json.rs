@@ -4,7 +4,7 @@ use std::ops::Not;
 
 use serde::Serialize;
 
-use crate::device::{Kind, Site, Size};
+use crate::device::{Kind, Size};
 use crate::roof::Roof;
 use crate::roof::layout::CaseState;
 use crate::rules::{RuleAt, Rulebook};
@@ -12,7 +12,7 @@ use crate::search::{Answer, Fitted, Least, Measured, Opened, Opening, Outcome, P
 use crate::units::{Length, Money};
 
 use super::words::{self, Words};
-use super::{Asked, Sized, cascade, notes, ponding, ranking, reasons, rules, storm};
+use super::{Asked, Sized, cascade, heights, notes, ponding, ranking, reasons, rules, storm};
 
 mod front;
 
@@ -75,6 +75,23 @@ struct Area<'a> {
     layouts: Vec<Layout<'a>>,
     #[serde(skip_serializing_if = "Option::is_none")]
     front: Option<Vec<front::Row<'a>>>,
+    /// What keeping all that is there comes to, where the first layout closes some of it.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    with_nothing_closed: Option<WithNothingClosed<'a>>,
+}
+
+#[derive(Serialize)]
+struct WithNothingClosed<'a> {
+    outcome: &'static str,
+    cost: Option<f64>,
+    groups: Vec<Group<'a>>,
+}
+
+/// What a layout closes of what is there.
+#[derive(Serialize)]
+pub(super) struct Closing<'a> {
+    cost: f64,
+    groups: Vec<Group<'a>>,
 }
 
 /// The area with its load limit raised to where openings and strength together cost least.
@@ -102,6 +119,8 @@ struct CureFound<'a> {
     /// The rules waived.
     #[serde(skip_serializing_if = "Vec::is_empty")]
     rules: Vec<rules::NamedRule<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    closed: Option<Closing<'a>>,
 }
 
 #[derive(Serialize)]
@@ -172,6 +191,8 @@ struct Layout<'a> {
     rank: usize,
     cost: Option<f64>,
     groups: Vec<Group<'a>>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    closed: Option<Closing<'a>>,
     governing: Governing<'a>,
     cases: Vec<Case<'a>>,
     beyond_range: bool,
@@ -219,6 +240,10 @@ pub(super) struct Group<'a> {
     set_height_m: f64,
     set_height_from_m: f64,
     set_height_to_m: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    elevation_m: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    above_roof_at_wall_m: Option<f64>,
     law: &'static str,
     law_source: &'static str,
     /// Whether it is there already.
@@ -380,12 +405,12 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
     let strengthened = sized.structure.and_then(|(_, found)| {
         let weighed = sized.place(answer.area).and_then(|place| found.get(place))?;
         let found = weighed.as_ref().ok()?.as_ref()?;
-        let site = found.stiffened.raised.roof.site(0, None);
+        let raised = &found.stiffened.raised.roof;
         Some(Stiffened {
             load_limit_more_pa: found.stiffened.raise.pa(),
             strength_cost: found.stiffened.strength.amount(),
             cost: found.layout.cost.map(Money::amount),
-            groups: found.layout.groups.iter().map(|placed| group(placed, &site)).collect(),
+            groups: found.layout.groups.iter().map(|placed| group(placed, raised, 0)).collect(),
         })
     });
     let book = &*sized.options.rules;
@@ -417,6 +442,7 @@ fn area<'a>(sized: &Sized<'a, '_>, answer: &'a Answer<'_>) -> Area<'a> {
             .front_of(answer.area)
             .filter(|fronted| fronted.front.finished)
             .map(|fronted| front::rows(sized, fronted)),
+        with_nothing_closed: with_nothing_closed(sized.roof, answer),
     }
 }
 
@@ -442,6 +468,7 @@ fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranke
         rank,
         cost: ranked.cost.map(crate::units::Money::amount),
         groups: groups(sized.roof, area, ranked),
+        closed: closed(sized.roof, area, ranked),
         governing: governing(sized.roof, ranked),
         cases: cases(sized.roof, area, ranked),
         beyond_range: !ranked.beyond.is_empty(),
@@ -466,14 +493,13 @@ fn made<'a>(sized: &Sized<'a, '_>, area: usize, ranked: &Ranked<'_>, made: &'a M
 /// A layout in widths of its own.
 fn made_layout<'a>(sized: &Sized<'a, '_>, area: usize, fitted: &'a Fitted) -> MadeLayout<'a> {
     let layout = fitted.layout();
-    let site = sized.roof.site(area, None);
     MadeLayout {
         cost: layout.cost.map(Money::amount),
         saved: fitted.saved.map(Money::amount),
         narrower_m: fitted.narrower.m(),
         unrounded_widths_m: fitted.unrounded.iter().map(|width| width.m()).collect(),
         unrounded_cost: fitted.unrounded_cost.map(Money::amount),
-        groups: layout.groups.iter().map(|placed| group(placed, &site)).collect(),
+        groups: layout.groups.iter().map(|placed| group(placed, sized.roof, area)).collect(),
         governing: governing(sized.roof, &layout),
         cases: cases(sized.roof, area, &layout),
         beyond_range: !layout.beyond.is_empty(),
@@ -481,17 +507,33 @@ fn made_layout<'a>(sized: &Sized<'a, '_>, area: usize, fitted: &'a Fitted) -> Ma
     }
 }
 
-/// The groups of a layout.
-pub(super) fn groups<'a>(roof: &'a Roof, area: usize, ranked: &'a Ranked<'_>) -> Vec<Group<'a>> {
-    let site = roof.site(area, None);
-    groups_at(ranked, &site)
+/// The groups of a layout, those that are there already marked.
+pub(super) fn groups<'a>(roof: &Roof, area: usize, ranked: &Ranked<'a>) -> Vec<Group<'a>> {
+    let added = ranked.added().len();
+    let one = |(place, placed): (usize, &Placed<'a>)| Group { existing: place >= added, ..group(placed, roof, area) };
+    ranked.groups.iter().enumerate().map(one).collect()
 }
 
-/// The groups of a layout at a site, those that are there already marked.
-fn groups_at<'a>(ranked: &Ranked<'a>, site: &Site) -> Vec<Group<'a>> {
-    let added = ranked.added().len();
-    let one = |(place, placed): (usize, &Placed<'a>)| Group { existing: place >= added, ..group(placed, site) };
-    ranked.groups.iter().enumerate().map(one).collect()
+/// What a layout closes of what is there; none where all of that has to stay.
+pub(super) fn closed<'a>(roof: &Roof, area: usize, ranked: &Ranked<'a>) -> Option<Closing<'a>> {
+    let closed = ranked.closed.as_ref()?;
+    let one = |&there: &crate::roof::layout::Group<'a>| {
+        let placed = Placed { group: there, from: there.set_height, to: there.set_height };
+        Group { existing: true, ..group(&placed, roof, area) }
+    };
+    Some(Closing { cost: closed.cost.amount(), groups: closed.groups.iter().map(one).collect() })
+}
+
+/// What keeping all that is there comes to, where the first layout closes some of it.
+fn with_nothing_closed<'a>(roof: &'a Roof, answer: &'a Answer<'_>) -> Option<WithNothingClosed<'a>> {
+    let keeping = answer.keeping.as_ref()?;
+    let first = keeping.layouts().first();
+    let outcome = match keeping {
+        Outcome::Optimal(layouts) if layouts.is_empty() => "infeasible",
+        keeping => words::outcome(keeping),
+    };
+    let groups = first.map_or(Vec::new(), |layout| groups(roof, answer.area, layout));
+    Some(WithNothingClosed { outcome, cost: first.and_then(|layout| layout.cost).map(Money::amount), groups })
 }
 
 /// What governs a layout.
@@ -540,13 +582,12 @@ pub(super) fn cases<'a>(roof: &'a Roof, area: usize, ranked: &Ranked<'_>) -> Vec
 fn found_cures<'a>(opened: &'a Opened<'_>, book: &'a Rulebook) -> Vec<CureFound<'a>> {
     let found = |(cure, layout): &'a Opening<'_>| {
         let (change, amount) = super::cures::amount(&cure.change);
-        let site = cure.roof.site(0, None);
-        let groups = groups_at(layout, &site);
+        let (groups, closed) = (groups(&cure.roof, 0, layout), closed(&cure.roof, 0, layout));
         let rules = match &cure.change {
             Relaxation::Rules(waived) => waived.iter().map(|&at| rules::named_rule(book, at)).collect(),
             _ => Vec::new(),
         };
-        CureFound { change, amount, cost: layout.cost.map(Money::amount), groups, rules }
+        CureFound { change, amount, cost: layout.cost.map(Money::amount), groups, rules, closed }
     };
     opened.cures.iter().map(found).collect()
 }
@@ -563,9 +604,9 @@ fn under_law<'a>(sized: &Sized<'a, '_>, under: &UnderLaw) -> Under<'a> {
     }
 }
 
-pub(super) fn group<'a>(placed: &Placed<'a>, site: &Site) -> Group<'a> {
-    let size = placed.group.size;
-    let law = size.law_at(site);
+pub(super) fn group<'a>(placed: &Placed<'a>, roof: &Roof, area: usize) -> Group<'a> {
+    let (size, catchment) = (placed.group.size, &roof.areas[area]);
+    let law = size.law_at(&roof.site(area, None));
     let round = size.device.kind() == Kind::PipeScupper;
     Group {
         device: &size.tag,
@@ -577,6 +618,8 @@ pub(super) fn group<'a>(placed: &Placed<'a>, site: &Site) -> Group<'a> {
         set_height_m: placed.group.set_height.m(),
         set_height_from_m: placed.from.m(),
         set_height_to_m: placed.to.m(),
+        elevation_m: heights::elevation(catchment, placed.group.set_height).map(Length::m),
+        above_roof_at_wall_m: heights::above_roof_at_wall(catchment, &placed.group).map(Length::m),
         law: law.name(),
         law_source: law.account(size.device.kind()).source,
         existing: false,

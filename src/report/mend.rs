@@ -226,10 +226,9 @@ pub(super) fn of_layout<'a>(checks: &Checks<'a, '_>, place: usize) -> Option<Vec
 }
 
 fn of_mend<'a>(checks: &Checks<'a, '_>, mend: &'a Mend) -> OfMend<'a> {
-    let site = checks.roof.site(mend.given.area, None);
     let placed = |(given, &(from, to)): (&'a GivenGroup, &(Length, Length))| {
         let group: Group<'a> = given.group();
-        json::group(&Placed { group, from, to }, &site)
+        json::group(&Placed { group, from, to }, checks.roof, mend.given.area)
     };
     OfMend {
         kind: mend.change.name(),

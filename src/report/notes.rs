@@ -200,6 +200,19 @@ pub(super) fn assumptions(told: &Told<'_, '_>) -> Vec<String> {
             if told.options.fold { " Of layouts with the same number of each device the best is listed." } else { "" }
         ));
     }
+    let closing = told.areas.iter().any(|&area| told.roof.areas[area].replace.is_some());
+    if told.searched && closing {
+        let families = if told.options.fold {
+            " With the same number of each device added the best closing is listed."
+        } else {
+            ""
+        };
+        lines.push(format!(
+            "Where what is there may be closed, the price of that counts in the cost; count, width, sizes and set height are those \
+             of what is added. Of equals the layout that closes fewest openings stands first, then the one that keeps most of what \
+             is given first.{families}"
+        ));
+    }
     lines.extend(storm::interpolated(&told.roof.storm));
     lines.push("In a window all groups rise together, each stopping at the top of its own range.".into());
     if told.fronts {

@@ -4,11 +4,11 @@ use crate::device::{Kind, Law};
 use crate::hydraulics::limits::Range;
 use crate::roof::{Case, GivenGroup, Limits, Roof, demand};
 use crate::search::{Answer, Outcome, Ranked, UnderLaw};
-use crate::units::{Area, Length, Load};
+use crate::units::{Area, Length, Load, Money};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Sized, cascade, cures, front, measure, notes, plan, ponding, reasons, rules, storm, work};
+use super::{Sized, cascade, cures, front, heights, measure, notes, plan, ponding, reasons, rules, storm, work};
 
 /// The mark behind a layout that leaves the published range of its law.
 const BEYOND: &str = "\u{2020}";
@@ -59,11 +59,33 @@ pub(super) fn area_head(roof: &Roof, area: usize, words: Words) -> [Block; 3] {
 /// What is there already, where anything is: what a search adds to.
 pub(super) fn there_already(roof: &Roof, area: usize, words: Words) -> Option<Block> {
     let there: Vec<_> = roof.areas[area].existing.iter().map(GivenGroup::group).collect();
-    let text = format!(
-        "There already: {}. All of it is kept at no cost, moves no sill and may be what is blocked; layouts say what is added.",
-        words.groups(&there)
-    );
+    let heeded = match roof.areas[area].replace {
+        None => {
+            "All of it is kept at no cost, moves no sill and may be what is blocked; layouts say what is added.".into()
+        }
+        Some(price) => format!(
+            "Any of it may be closed, each opening {}; what is kept costs nothing, moves no sill and may be what is blocked. \
+             Layouts say what is added, what is closed and what is kept.",
+            if price > Money::default() { format!("for {}", words::money(price)) } else { "at no cost".into() }
+        ),
+    };
+    let text = format!("There already: {}. {heeded}", words.groups(&there));
     (!there.is_empty()).then_some(Block::Text(text))
+}
+
+/// What the layouts come to that close nothing, where the first does close.
+fn keeping_all(answer: &Answer<'_>, words: Words) -> Option<Block> {
+    let text = match (answer.keeping.as_ref()?.layouts().first(), &answer.keeping) {
+        (Some(layout), _) => {
+            let cost = layout.cost.map_or(String::new(), |cost| format!(", {}", words::money(cost)));
+            format!("With nothing closed the first would be {}{cost}.", words.layout(layout))
+        }
+        (None, Some(Outcome::Stopped { .. })) => {
+            "The search was ended before it was known what keeping all of it comes to.".into()
+        }
+        (None, _) => "With nothing closed no layout holds.".into(),
+    };
+    Some(Block::Text(text))
 }
 
 /// What a case does to the design.
@@ -100,7 +122,10 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
     let roof = sized.roof;
     blocks.extend(area_head(roof, answer.area, words));
     blocks.extend(there_already(roof, answer.area, words));
-    if answer.outcome.layouts().iter().any(|layout| layout.added().is_empty()) {
+    let holds_as_is = |layout: &Ranked<'_>| {
+        layout.added().is_empty() && layout.closed.as_ref().is_none_or(|closed| closed.groups.is_empty())
+    };
+    if answer.outcome.layouts().iter().any(holds_as_is) {
         blocks.push(Block::Text("What is there holds: nothing need be added.".into()));
     }
     match &answer.outcome {
@@ -121,6 +146,10 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
         }
         layouts => {
             ranking(sized, answer.area, layouts, words, blocks);
+            blocks.extend(keeping_all(answer, words));
+            let named: Vec<_> = (1..).map(|rank: usize| rank.to_string()).zip(layouts).collect();
+            blocks.extend(heights::blocks(roof, answer.area, &named, words));
+            blocks.extend(beside(roof, answer.area, &named, words));
             blocks.extend(measure::blocks(sized, answer.area, layouts, words));
             let named: Vec<_> = (1..).map(|rank: usize| format!("layout {rank}")).zip(layouts).collect();
             blocks.extend(rules::blocks(roof, sized.options, answer.area, &named, 1, words));
@@ -269,6 +298,10 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
         |layout: &Ranked<'_>| layout.governing.map_or("overwhelmed", |governing| governing.limit.name());
     let columns = [
         column("cost".into(), true, "cost", &|layout| layout.cost.map_or("-".into(), words::money)),
+        column("closing".into(), true, "of the cost for closing", &|layout| {
+            let closed = layout.closed.as_ref().filter(|closed| !closed.groups.is_empty());
+            closed.map_or("-".into(), |closed| words::money(closed.cost))
+        }),
         column(format!("depth {}", words.small_unit()), true, "water depth", &|layout| {
             water(layout).map_or("-".into(), |water| words.bare_depth(water.level))
         }),
@@ -330,8 +363,6 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
     for text in marks(&layouts.iter().collect::<Vec<_>>(), words) {
         blocks.push(Block::Text(text));
     }
-    let named: Vec<_> = (1..).map(|rank: usize| rank.to_string()).zip(layouts).collect();
-    blocks.extend(beside(sized.roof, area, &named, words));
 }
 
 /// A layout with its rank or its name.

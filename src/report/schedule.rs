@@ -1,5 +1,5 @@
-//! The ranked layouts as a schedule: CSV, one row for each group of each layout, in the units of the project. A layout in widths
-//! made to measure follows the one of the grid, with its rank.
+//! The ranked layouts as a schedule: CSV, one row for each group of each layout, in the units of the project: what is added, what is
+//! there and stays, what is closed. A layout in widths made to measure follows the one of the grid, with its rank.
 
 use crate::device::Kind;
 use crate::search::{Answer, Measured, Outcome, Placed, Ranked};
@@ -75,9 +75,15 @@ fn listed(
     for (index, layout) in layouts.iter().enumerate() {
         let mut add = |outcome: &str, layout: &Ranked<'_>| {
             let compared = if sized.fronts.is_empty() { Vec::new() } else { compared(sized, layout, list, words) };
-            for (place, placed) in layout.groups.iter().enumerate() {
+            let stands = layout.groups.iter().enumerate().map(|(place, &placed)| {
                 let outcome = if place < layout.added().len() { outcome } else { "existing" };
-                let row = row(sized, answer.area, outcome, index + 1, layout, placed, words);
+                (outcome, placed)
+            });
+            let closed = layout.closed.iter().flat_map(|closed| &closed.groups);
+            let closed =
+                closed.map(|&group| ("closed", Placed { group, from: group.set_height, to: group.set_height }));
+            for (outcome, placed) in stands.chain(closed) {
+                let row = row(sized, answer.area, outcome, index + 1, layout, &placed, words);
                 rows.push(row.into_iter().chain(compared.iter().cloned()).collect());
             }
         };

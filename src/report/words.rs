@@ -275,9 +275,19 @@ impl Words {
     }
 
     /// All groups of a layout; a set height that they share is said once.
-    /// Of one that adds to what is there already, what it adds.
+    /// Of one that adds to what is there already, what it adds; where that may be closed, what it closes and keeps too.
     pub(super) fn layout(self, layout: &Ranked<'_>) -> String {
-        self.groups(&layout.added().iter().map(|placed| placed.group).collect::<Vec<_>>())
+        let of = |placed: &[Placed<'_>]| self.groups(&placed.iter().map(|placed| placed.group).collect::<Vec<_>>());
+        let (added, kept) = layout.groups.split_at(layout.added().len());
+        let adds = of(added);
+        match &layout.closed {
+            None => adds,
+            Some(closed) if closed.groups.is_empty() => format!("{adds}; all kept"),
+            Some(closed) => {
+                let kept = if kept.is_empty() { "none".into() } else { of(kept) };
+                format!("{adds}; {} closed, {kept} kept", self.groups(&closed.groups))
+            }
+        }
     }
 
     /// Groups of one layout; none where what is there already is enough.

@@ -151,6 +151,7 @@ mod tests {
             set_heights: None,
             limits: Vec::new(),
             existing: Vec::new(),
+            replace: None,
             channel: None,
             facts: Facts::default(),
         }

@@ -172,6 +172,7 @@ mod tests {
             set_heights: None,
             limits: Vec::new(),
             existing: Vec::new(),
+            replace: None,
             channel: None,
             facts: Facts::default(),
         }

@@ -111,7 +111,7 @@ pub(super) fn with_longest_edge(roof: &Roof, group: &[usize]) -> usize {
 /// The sizes, by index, that need to be tried in a group of areas where so many layouts are kept.
 pub(super) fn worth_trying(roof: &Roof, options: &Options, group: &[usize]) -> Vec<usize> {
     let (problem, _) = Problem::new(roof, with_longest_edge(roof, group), options);
-    if options.freeboard.is_some() {
+    if problem.asks_freeboard() {
         // Under each lowest top the sizes carry something else; the search of each area sees to it.
         return problem.candidates.iter().map(|candidate| candidate.index).collect();
     }

@@ -79,15 +79,25 @@ impl Found {
         })
     }
 
+    /// What it has of a criterion, the less the better.
+    pub(super) fn value(&self, criterion: Criterion, problem: &Problem<'_>) -> i64 {
+        match criterion {
+            Criterion::Load => self.levels(problem).worst,
+            Criterion::Utilisation => self.levels(problem).utilisation,
+            Criterion::SetHeight => -self.set_height(problem),
+            sum => self.sums.value(sum),
+        }
+    }
+
+    /// How many of each tag, as one number; the same for all where families are not told apart.
+    pub(super) fn family(&self) -> u128 {
+        self.family
+    }
+
     /// The order of two layouts by all criteria, then by catalog order.
     fn compare(&self, other: &Self, problem: &Problem<'_>) -> Ordering {
-        let by = |criterion: Criterion| match criterion {
-            Criterion::Load => self.levels(problem).worst.cmp(&other.levels(problem).worst),
-            Criterion::Utilisation => self.levels(problem).utilisation.cmp(&other.levels(problem).utilisation),
-            Criterion::SetHeight => other.set_height(problem).cmp(&self.set_height(problem)),
-            sum => self.sums.value(sum).cmp(&other.sums.value(sum)),
-        };
-        let decided = problem.order.criteria().iter().map(|&criterion| by(criterion)).find(|ordering| ordering.is_ne());
+        let by = |&criterion: &Criterion| self.value(criterion, problem).cmp(&other.value(criterion, problem));
+        let decided = problem.order.criteria().iter().map(by).find(|ordering| ordering.is_ne());
         decided.unwrap_or_else(|| self.groups.cmp(&other.groups))
     }
 
@@ -193,9 +203,9 @@ impl Best {
         Self { keep, fold, ceiling: i64::MAX, found: Vec::with_capacity(keep.min(1024) + 1), changes: 0 }
     }
 
-    /// One layout with at most so much of the leading criterion.
-    pub(super) fn under(ceiling: i64) -> Self {
-        Self { ceiling, ..Self::new(1, false) }
+    /// The same of layouts with at most so much of the leading criterion.
+    pub(super) fn capped(self, ceiling: i64) -> Self {
+        Self { ceiling, ..self }
     }
 
     /// The layout that every new family must beat; none while there is room.

@@ -16,9 +16,9 @@ use crate::roof::{Basis, Roof, load_of};
 use crate::rules::{self, RuleAt};
 use crate::units::{Length, Load, Money, System};
 
-use super::best::Best;
-use super::dive::{Aim, dive};
-use super::infeasible::{any, any_under};
+use super::closing::{self, any_under};
+use super::dive::Aim;
+use super::infeasible::any;
 use super::problem::Problem;
 use super::rank::Criterion;
 use super::watch::Stopped;
@@ -255,8 +255,7 @@ pub fn binds(roof: &Roof, options: &Options, area: usize) -> Option<Cures> {
 
 /// Least cost of any layout, millionths; none where there is none.
 fn cheapest(problem: &Problem<'_>) -> Result<Option<i64>, Stopped> {
-    let found = dive(problem, Aim::Rank, Best::new(1, false)).complete()?;
-    Ok(found.first().map(|found| found.sums().cost))
+    Ok(closing::complete(problem, Aim::Rank)?.map(|chosen| chosen.cost(problem)))
 }
 
 /// An area by itself and what is asked of the search there, to be changed.

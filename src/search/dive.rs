@@ -70,7 +70,7 @@ pub(super) fn dive(problem: &Problem<'_>, aim: Aim, best: Best) -> Dived {
     let mut best = best;
     let mut ended = problem.watch.is_due();
     for class in problem.classes() {
-        if ended {
+        if ended || problem.broken.is_some() {
             break;
         }
         best.change_class();
@@ -97,7 +97,7 @@ pub(super) fn dive(problem: &Problem<'_>, aim: Aim, best: Best) -> Dived {
         };
         dive.tighten();
         let there = Used::of_what_is_there(problem);
-        if class.is_none() && !problem.fixed.is_empty() && problem.broken.is_none() {
+        if class.is_none() && !problem.fixed.is_empty() {
             dive.offer(0, there);
         }
         for groups in 1..=problem.mix {
@@ -283,7 +283,7 @@ struct Gate {
 }
 
 /// The first criterion of a problem, where it is a sum that every further device raises.
-fn lead(problem: &Problem<'_>) -> Option<Criterion> {
+pub(super) fn lead(problem: &Problem<'_>) -> Option<Criterion> {
     let first = problem.order.criteria()[0];
     matches!(first, Criterion::Cost | Criterion::Count | Criterion::Width).then_some(first)
 }

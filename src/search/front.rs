@@ -30,7 +30,7 @@ use crate::units::{Length, Load, Money};
 use super::best::{Found, Groups};
 use super::problem::{Candidate, Problem};
 use super::rank::{Criterion, Sums};
-use super::{Options, Ranked, ranked};
+use super::{Options, Ranked, of_found};
 
 mod roofwide;
 mod screens;
@@ -73,7 +73,7 @@ pub struct Front<'r> {
 impl<'r> Front<'r> {
     /// All that is reported of the first rows, at most so many, as [`super::size`] tells it.
     pub fn opened(&self, most: usize) -> Vec<Ranked<'r>> {
-        let open = |kept: &Kept| ranked(&self.problem, &Found::new(kept.groups.clone(), kept.sums, 0));
+        let open = |kept: &Kept| of_found(&self.problem, &Found::new(kept.groups.clone(), kept.sums, 0));
         self.kept[..self.kept.len().min(most)].par_iter().map(open).collect()
     }
 }

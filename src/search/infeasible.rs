@@ -2,8 +2,8 @@
 
 use crate::units::Length;
 
-use super::best::Best;
-use super::dive::{Aim, dive};
+use super::closing::{self, any_under};
+use super::dive::Aim;
 use super::problem::Problem;
 use super::watch::Stopped;
 use super::{Why, ranked};
@@ -33,9 +33,8 @@ pub(super) fn why(mut problem: Problem<'_>) -> Result<Why<'_>, Stopped> {
     }
     let together = if alone.is_empty() { conflict(&cases, held)? } else { Vec::new() };
     let nearest = problem.by_utilisation();
-    let found = dive(&nearest, Aim::Reach, Best::new(1, false)).complete()?;
-    Ok(match found.first() {
-        Some(best) => Why::Limits { best: Box::new(ranked(&nearest, best)), alone, together },
+    Ok(match closing::complete(&nearest, Aim::Reach)? {
+        Some(best) => Why::Limits { best: Box::new(ranked(&nearest, &best)), alone, together },
         None => nothing_fits,
     })
 }
@@ -43,13 +42,6 @@ pub(super) fn why(mut problem: Problem<'_>) -> Result<Why<'_>, Stopped> {
 /// Whether any layout holds.
 pub(super) fn any(problem: &Problem<'_>) -> Result<bool, Stopped> {
     any_under(problem, i64::MAX)
-}
-
-/// Whether any layout holds with at most so much of the leading criterion.
-pub(super) fn any_under(problem: &Problem<'_>, ceiling: i64) -> Result<bool, Stopped> {
-    let dived = dive(problem, Aim::Any, Best::under(ceiling));
-    // One that is found holds, whatever was not tried.
-    if dived.found.is_empty() { dived.complete().map(|_| false) } else { Ok(true) }
 }
 
 /// The first two cases that no layout holds together; all cases where every two can be.
@@ -79,6 +71,6 @@ fn greatest_freeboard(mut problem: Problem<'_>, asked: Length) -> Result<Option<
         if any(&problem)? { kept = middle } else { missed = middle }
     }
     problem.asked.freeboard = Some(Length::from_m(kept));
-    let found = dive(&problem, Aim::Rank, Best::new(1, false)).complete()?;
-    Ok(found.first().map(|best| (Length::from_m(kept), Box::new(ranked(&problem, best)))))
+    let found = closing::complete(&problem, Aim::Rank)?;
+    Ok(found.map(|best| (Length::from_m(kept), Box::new(ranked(&problem, &best)))))
 }

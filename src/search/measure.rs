@@ -315,6 +315,7 @@ fn told(problem: &Problem<'_>, groups: &[Built]) -> Box<Ranked<'static>> {
     Box::new(Ranked {
         groups: Vec::new(),
         kept: problem.fixed.len(),
+        closed: None,
         cost: told.cost,
         states: told.states,
         allowed: told.allowed,

@@ -16,6 +16,7 @@ use crate::rules::{self, Misfit, Restriction, RuleAt, Rulebook, Stand};
 use crate::units::Length;
 
 use super::Watch;
+use super::closing::Closing;
 use super::rank::{Criterion, Order};
 use super::{Broken, Options};
 
@@ -48,7 +49,7 @@ impl Candidate<'_> {
 }
 
 /// One area, the cases it is searched for, and what is asked of a layout.
-#[derive(Debug)]
+#[derive(Clone, Debug)]
 pub(super) struct Problem<'r> {
     pub(super) situations: Vec<Situation<'r>>,
     /// The highest level that each situation allows, to any layout.
@@ -56,6 +57,10 @@ pub(super) struct Problem<'r> {
     pub(super) candidates: Vec<Candidate<'r>>,
     /// What is there already and stays, behind the groups of every layout.
     pub(super) fixed: Vec<Group<'r>>,
+    /// What of what is there may be closed, and is; none where all of it stays.
+    pub(super) closing: Option<Closing<'r>>,
+    /// Least and most devices of a layout, those that stay among them.
+    in_all: (u32, u32),
     /// Least and most devices that a layout adds to what is there; and the rule that asks for the least, where one does.
     pub(super) least: u32,
     pub(super) asked_for: Option<RuleAt>,
@@ -63,7 +68,7 @@ pub(super) struct Problem<'r> {
     /// for them.
     pub(super) least_at_edge: u32,
     pub(super) asked_at_edge: Option<RuleAt>,
-    /// A binding rule that the area breaks whatever is added; then nothing is.
+    /// A binding rule that the area or what stays breaks whatever is added; then no layout holds.
     pub(super) broken: Option<Broken>,
     pub(super) most: u32,
     pub(super) mix: usize,
@@ -119,7 +124,9 @@ impl<'r> Problem<'r> {
         let (mut candidates, mut misfits) = (Vec::new(), Vec::new());
         let fixed: Vec<Group<'r>> = catchment.existing.iter().map(GivenGroup::group).collect();
         let broken = broken(&restriction, &fixed, catchment);
-        for (index, size) in sizes.filter(|_| broken.is_none()) {
+        // Where what breaks a rule may be closed, other ways of closing have candidates.
+        let tried = broken.is_none_or(|broken| broken.there.is_some() && catchment.replace.is_some());
+        for (index, size) in sizes.filter(|_| tried) {
             // Sizes of one device follow one another, so its tag is nearly always the last.
             let tag = tags.iter().rposition(|&known| known == &*size.tag).unwrap_or_else(|| {
                 tags.push(&size.tag);
@@ -133,19 +140,25 @@ impl<'r> Problem<'r> {
         }
         let priced = candidates.iter().all(|candidate| candidate.size.price.is_some());
         let situations = roof.situations(area);
-        let there = devices(&fixed);
         let by_rule = restriction.least.filter(|(least, _)| least > catchment.count.start());
         let least = by_rule.map_or(*catchment.count.start(), |(least, _)| least);
-        let problem = Self {
+        let closing = catchment.replace.filter(|_| !fixed.is_empty()).map(|price| {
+            let breaks =
+                fixed.iter().map(|group| restriction.broken_by(group.size, group.set_height, catchment)).collect();
+            Closing { way: vec![0; fixed.len()], there: fixed.clone(), breaks, price }
+        });
+        let mut problem = Self {
             allowed: situations.iter().map(Situation::allowable_level).collect(),
             situations,
             candidates,
-            least: least.saturating_sub(there),
+            closing,
+            in_all: (least, *catchment.count.end()),
+            least: 0,
             asked_for: by_rule.map(|(_, at)| at),
             least_at_edge: restriction.at_edge.map_or(0, |(least, _)| least),
             asked_at_edge: restriction.at_edge.map(|(_, at)| at),
             broken,
-            most: catchment.count.end().saturating_sub(there),
+            most: 0,
             fixed,
             mix: options.mix,
             edge: limited_edge(catchment),
@@ -156,7 +169,15 @@ impl<'r> Problem<'r> {
             catchment,
             rules: Arc::clone(&options.rules),
         };
+        problem.count_what_is_added();
         (problem, misfits)
+    }
+
+    /// Brings the least and the most that a layout adds to what stays.
+    pub(super) fn count_what_is_added(&mut self) {
+        let there = self.devices_there();
+        self.least = self.in_all.0.saturating_sub(there);
+        self.most = self.in_all.1.saturating_sub(there);
     }
 
     /// Whether any case asks for freeboard.
@@ -332,20 +353,13 @@ impl<'r> Problem<'r> {
         Problem {
             situations: keep.iter().map(|&case| self.situations[case]).collect(),
             allowed: keep.iter().map(|&case| self.allowed[case]).collect(),
-            candidates: self.candidates.clone(),
-            fixed: self.fixed.clone(),
-            asked: self.asked,
-            order: self.order.clone(),
-            watch: self.watch.clone(),
-            rules: Arc::clone(&self.rules),
-            ..*self
+            ..self.clone()
         }
     }
 
     /// This area, with only the sizes of these indices among the roof's.
     pub(super) fn with_sizes(&self, keep: &[usize]) -> Problem<'r> {
-        let all: Vec<usize> = (0..self.situations.len()).collect();
-        let mut problem = self.with_cases(&all);
+        let mut problem = self.clone();
         problem.candidates.retain(|candidate| keep.contains(&candidate.index));
         problem
     }

@@ -20,6 +20,15 @@ pub struct Placed<'r> {
     pub to: Length,
 }
 
+/// What a layout closes of what is there.
+#[derive(Clone, Debug)]
+pub struct Closed<'r> {
+    /// The devices that are closed, group by group in the order of the file; empty where all are kept.
+    pub groups: Vec<Group<'r>>,
+    /// What closing them costs.
+    pub cost: Money,
+}
+
 /// A layout and all that is known of it.
 #[derive(Clone, Debug)]
 pub struct Ranked<'r> {
@@ -27,7 +36,9 @@ pub struct Ranked<'r> {
     pub groups: Vec<Placed<'r>>,
     /// How many of the last groups are there already and are kept.
     pub kept: usize,
-    /// Its cost; none where one of its devices has no price.
+    /// What it closes of what is there; none where all of that has to stay.
+    pub closed: Option<Closed<'r>>,
+    /// Its cost, that of closing included; none where one of its devices has no price.
     pub cost: Option<Money>,
     /// How it stands in each case, in the order of the cases.
     pub states: Vec<CaseState>,
@@ -93,6 +104,7 @@ pub(super) fn described<'g>(placed: Vec<Placed<'g>>, situations: &[Situation<'_>
     let (case, governing) = governing(&states);
     Ranked {
         kept: 0,
+        closed: None,
         cost: layout::cost(&groups),
         case,
         governing,

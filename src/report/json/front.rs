@@ -7,7 +7,7 @@ use crate::search::{PlanFront, UnbeatenPlan};
 use crate::units::Money;
 
 use super::super::{Fronted, Sized};
-use super::{Group, PlanSize, groups_at, plan_size};
+use super::{Group, PlanSize, groups, plan_size};
 
 /// A layout of an area.
 #[derive(Serialize)]
@@ -55,7 +55,6 @@ struct PlanGroup<'a> {
 }
 
 pub(super) fn rows<'a>(sized: &Sized<'a, '_>, fronted: &'a Fronted<'_>) -> Vec<Row<'a>> {
-    let site = sized.roof.site(fronted.front.area, None);
     let opened = fronted.front.rows.iter().zip(&fronted.opened);
     let row = |(row, ranked): (&crate::search::Unbeaten<'_>, &'a crate::search::Ranked<'_>)| Row {
         cost: row.cost.map(Money::amount),
@@ -64,7 +63,7 @@ pub(super) fn rows<'a>(sized: &Sized<'a, '_>, fronted: &'a Fronted<'_>) -> Vec<R
         count: row.count,
         width_m: row.width.m(),
         beyond_range: !ranked.beyond.is_empty(),
-        groups: groups_at(ranked, &site),
+        groups: groups(sized.roof, fronted.front.area, ranked),
     };
     opened.map(row).collect()
 }
