@@ -195,12 +195,18 @@ fn width(file: Option<&PathBuf>) -> usize {
 
 /// Writes a result to a file, or to stdout.
 fn deliver(text: &str, file: Option<&PathBuf>) -> Result<(), Failure> {
+    written(file, |out| out.write_all(text.as_bytes()))
+}
+
+/// Lets a result be written to a file, or to stdout.
+fn written(file: Option<&PathBuf>, write: impl FnOnce(&mut dyn Write) -> io::Result<()>) -> Result<(), Failure> {
     match file {
-        Some(path) => std::fs::write(path, text)
+        Some(path) => std::fs::File::create(path)
+            .and_then(|mut out| write(&mut out))
             .map_err(|error| Failure::Message(format!("error: cannot write `{}`: {error}", path.display()))),
         None => {
             let mut out = io::stdout().lock();
-            out.write_all(text.as_bytes())?;
+            write(&mut out)?;
             Ok(out.flush()?)
         }
     }
@@ -250,6 +256,15 @@ impl OfProject {
     fn deliver(&self, report: impl FnOnce(Format, usize) -> String) -> Result<(), Failure> {
         let output = self.output.as_ref();
         deliver(&report(Format::from(self.format), width(output)), output)
+    }
+
+    /// The same of a report that is too long to be held: it writes itself.
+    fn deliver_written(
+        &self,
+        report: impl FnOnce(Format, usize, &mut dyn Write) -> io::Result<()>,
+    ) -> Result<(), Failure> {
+        let output = self.output.as_ref();
+        written(output, |out| report(Format::from(self.format), width(output), out))
     }
 
     /// Indices of the areas asked for, in the order of the file; all of them where none is named.

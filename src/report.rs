@@ -3,6 +3,8 @@
 //! Nothing here computes a level or a rank; it says what the model and the search hand over, in the units of the project
 //! (JSON: SI, with the unit in each key), with the assumptions that were made and the cautions that apply to this very roof.
 
+use std::io;
+
 use crate::device::{Law, Site, Size};
 use crate::input::Assumed;
 use crate::roof::Roof;
@@ -156,10 +158,16 @@ pub fn size(sized: &Sized<'_, '_>, format: Format, width: usize) -> String {
     }
 }
 
-/// Writes how given layouts stand.
-pub fn check(checks: &Checks<'_, '_>, format: Format, width: usize) -> String {
-    check::write(checks, format, width)
+/// Writes how given layouts stand; of JSON and CSV, which may be long, no more is held than is being written.
+///
+/// # Errors
+/// Those of the writer.
+pub fn check(checks: &Checks<'_, '_>, format: Format, width: usize, out: &mut dyn io::Write) -> io::Result<()> {
+    check::write(checks, format, width, &mut io::BufWriter::with_capacity(BLOCK, out))
 }
+
+/// How much of a long report is handed on at once, bytes.
+const BLOCK: usize = 1 << 16;
 
 /// Writes what given layouts could take.
 pub fn backsolve(backsolved: &Backsolved<'_, '_>, format: Format, width: usize) -> String {
@@ -237,8 +245,30 @@ pub fn rule_kinds(sets: &[(String, RuleSet)], format: Format, width: usize) -> S
 
 /// A number for another program: no separator of thousands, no zeros at its end.
 fn plain(value: f64, decimals: usize) -> String {
-    let text = format!("{value:.decimals$}");
-    if text.contains('.') { text.trim_end_matches('0').trim_end_matches('.').to_string() } else { text }
+    without_zeros(fixed(value, decimals))
+}
+
+/// A number without the zeros at the end of its decimals.
+fn without_zeros(mut number: String) -> String {
+    if number.contains('.') {
+        number.truncate(number.trim_end_matches('0').trim_end_matches('.').len());
+    }
+    number
+}
+
+/// A number with so many decimals, rounded as `format!` rounds it, which takes its time over what is short: 2.5 with four.
+fn fixed(value: f64, decimals: usize) -> String {
+    let scale = 10_u32.pow(decimals.min(9) as u32);
+    let scaled = value.abs() * f64::from(scale);
+    let whole = scaled as u64;
+    let part = scaled - whole as f64;
+    // The product is off by far less than what stands between it and a tie: the last digit is known.
+    let known = (1..=9).contains(&decimals) && scaled < 1e9 && (part - 0.5).abs() > 1e-6;
+    if !known {
+        return format!("{value:.decimals$}");
+    }
+    let (sign, units) = (if value.is_sign_negative() { "-" } else { "" }, whole + u64::from(part > 0.5));
+    format!("{sign}{}.{:0decimals$}", units / u64::from(scale), units % u64::from(scale))
 }
 
 /// Rows as CSV.
@@ -249,4 +279,21 @@ fn written(rows: &[Vec<String>]) -> String {
         let _ = writer.write_record(row);
     }
     writer.into_inner().ok().and_then(|bytes| String::from_utf8(bytes).ok()).unwrap_or_default()
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn decimals_are_those_of_the_standard_library() {
+        let whole = (0..20_000).map(|step| f64::from(step) / 64.0);
+        let others = (0..20_000).map(|step| f64::from(step * step) * 0.000_123_457 - 900.0);
+        let odd = [-0.0, -1e-9, 0.5, 0.005, 0.015, 2.675, 1e8, 123_456.789_05, 1e300, f64::INFINITY, f64::NAN];
+        for value in whole.chain(others).chain(odd) {
+            for decimals in 0..=6 {
+                assert_eq!(fixed(value, decimals), format!("{value:.decimals$}"), "{value:?}");
+            }
+        }
+    }
 }

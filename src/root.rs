@@ -40,13 +40,18 @@ pub enum RootError {
     },
 }
 
-struct Scalar<F>(F);
+/// A function of one variable, with its values at the ends of its ground, which are known already.
+struct Scalar<F> {
+    f: F,
+    ends: [(f64, f64); 2],
+}
 
 impl<F: Fn(f64) -> f64> CostFunction for Scalar<F> {
     type Param = f64;
     type Output = f64;
     fn cost(&self, x: &f64) -> Result<f64, Error> {
-        let value = (self.0)(*x);
+        let known = self.ends.iter().find(|(end, _)| end == x);
+        let value = known.map_or_else(|| (self.f)(*x), |&(_, value)| value);
         if value.is_finite() { Ok(value) } else { Err(RootError::NotFinite(*x).into()) }
     }
 }
@@ -59,7 +64,8 @@ impl<F: Fn(f64) -> f64> CostFunction for Scalar<F> {
 /// [`RootError::NoCrossing`] unless `f(low) < 0 <= f(high)`; [`RootError::NotFinite`] for a value that is not.
 pub fn crossing(f: impl Fn(f64) -> f64, low: f64, high: f64) -> Result<(f64, f64), RootError> {
     let (at_low, at_high) = (f(low), f(high));
-    for (x, value) in [(low, at_low), (high, at_high)] {
+    let ends = [(low, at_low), (high, at_high)];
+    for (x, value) in ends {
         if !(x.is_finite() && value.is_finite()) {
             return Err(RootError::NotFinite(x));
         }
@@ -67,7 +73,7 @@ pub fn crossing(f: impl Fn(f64) -> f64, low: f64, high: f64) -> Result<(f64, f64
     if !(low < high && at_low < 0.0 && at_high >= 0.0) {
         return Err(RootError::NoCrossing { low, at_low, high, at_high });
     }
-    let near = Executor::new(Scalar(&f), BrentRoot::new(low, high, BRENT_WIDTH))
+    let near = Executor::new(Scalar { f: &f, ends }, BrentRoot::new(low, high, BRENT_WIDTH))
         .configure(|state| state.max_iters(MOST_STEPS))
         .ctrlc(false)
         .run()
@@ -82,7 +88,8 @@ pub fn crossing(f: impl Fn(f64) -> f64, low: f64, high: f64) -> Result<(f64, f64
 /// [`RootError::NotFinite`] for an end, a width or a value that is not finite; [`RootError::NoCrossing`] unless `low < high`.
 pub fn least(f: impl Fn(f64) -> f64, low: f64, high: f64, width: f64) -> Result<f64, RootError> {
     let (at_low, at_high) = (f(low), f(high));
-    for (x, value) in [(low, at_low), (high, at_high), (width, width)] {
+    let ends = [(low, at_low), (high, at_high)];
+    for (x, value) in ends.into_iter().chain([(width, width)]) {
         if !(x.is_finite() && value.is_finite()) {
             return Err(RootError::NotFinite(x));
         }
@@ -94,7 +101,7 @@ pub fn least(f: impl Fn(f64) -> f64, low: f64, high: f64, width: f64) -> Result<
     // argmin's tolerance is a part of the sum of two inner points: of less than twice the farther end.
     let part = (width / (2.0 * low.abs().max(high.abs()))).max(f64::EPSILON);
     let golden = GoldenSectionSearch::new(low, high).and_then(|search| search.with_tolerance(part));
-    let near = Executor::new(Scalar(&f), golden.map_err(|_| refused)?)
+    let near = Executor::new(Scalar { f: &f, ends }, golden.map_err(|_| refused)?)
         .configure(|state| state.param(low + (high - low) * GOLDEN).max_iters(MOST_STEPS))
         .ctrlc(false)
         .run()
@@ -172,8 +179,10 @@ impl<F: Fn([f64; 2]) -> f64> CostFunction for Plane<F> {
 }
 
 /// Closes the bracket around `near` to two neighbouring numbers.
+///
+/// Where `f` is smooth, `near` is nearly always right to a few last bits: that is tried before `BRENT_WIDTH`, which is promised.
 fn settle(f: &impl Fn(f64) -> f64, mut below: f64, mut reached: f64, near: f64) -> (f64, f64) {
-    let mut reach = near.abs() * f64::EPSILON * 4.0 + BRENT_WIDTH;
+    let mut reach = (near.abs() * f64::EPSILON * 4.0).max(BRENT_WIDTH * f64::EPSILON);
     loop {
         let (left, right) = (near - reach, near + reach);
         if left > below && left < reached {

@@ -82,7 +82,7 @@ pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
         mends: mends.as_deref(),
         mended: &mended,
     };
-    args.of.deliver(|format, width| report::check(&checks, format, width))?;
+    args.of.deliver_written(|format, width, out| report::check(&checks, format, width, out))?;
     Ok(ExitCode::from(u8::from(checked.iter().any(|checked| !checked.passes()))))
 }
 

@@ -95,15 +95,17 @@ fn near_shipped<'n>(written: &str, names: &[&'n str]) -> Option<&'n str> {
 }
 
 /// Parses a TOML file; every fault of its form is logged, and what can be read all the same is given. What is read borrows
-/// from `mended`: the text with blanks in place of lines that the parser cannot get past.
-pub(super) fn parse<'a>(source: &Arc<Source>, mended: &'a mut String, log: &Log) -> Spanned<DeTable<'a>> {
+/// from the source, or from `mended`: the text with blanks in place of lines that the parser cannot get past.
+pub(super) fn parse<'a>(source: &'a Arc<Source>, mended: &'a mut String, log: &Log) -> Spanned<DeTable<'a>> {
+    let (table, errors) = DeTable::parse_recoverable(&source.text);
+    if errors.is_empty() {
+        return table;
+    }
     mended.clone_from(&source.text);
     let mut errors = take_out_dead_ends(mended);
     let (table, more) = DeTable::parse_recoverable(mended);
     errors.extend(more);
-    if !errors.is_empty() {
-        report(source, errors, log);
-    }
+    report(source, errors, log);
     table
 }
 

@@ -56,6 +56,13 @@ pub(super) struct Wanted {
     pub(super) diameter: Option<Length>,
 }
 
+impl Wanted {
+    /// Whole nanometres, which compare as the dimensions do.
+    pub(super) fn nm(self) -> [Option<i64>; 3] {
+        [self.width, self.height, self.diameter].map(|length| length.map(Length::nm))
+    }
+}
+
 /// What a layout is read against.
 pub(super) struct Against<'s> {
     pub(super) areas: &'s [Catchment],

@@ -74,7 +74,7 @@ struct Row {
 }
 
 fn parse(source: &Arc<Source>, log: &Log) -> Option<Rainfall> {
-    let mut records = records(source).into_iter();
+    let mut records = records(source);
     let mut table = Table { source, log, columns: Vec::new(), heads: Vec::new() };
     let Some(head) = records.next() else {
         table.refuse(0..0, format!("`{}` is empty", source.path), "no row stands here", FORM);

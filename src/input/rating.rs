@@ -65,7 +65,7 @@ struct Table<'t> {
 
 fn parse(source: &Arc<Source>, log: &Log) -> Option<Ratings> {
     let table = Table { source, log };
-    let mut records = records(source).into_iter();
+    let mut records = records(source);
     let Some(head) = records.next() else {
         table.refuse(0..0, format!("`{}` is empty", source.path), "no row stands here", FORM);
         return None;

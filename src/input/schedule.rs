@@ -3,10 +3,13 @@
 //! Rows of one area and one layout belong together, wherever they stand; a row's sill is given above the low point or as an
 //! elevation.
 
-use std::collections::HashMap;
+use std::collections::hash_map::Entry as Entered;
 use std::path::Path;
 use std::sync::Arc;
 
+use rustc_hash::FxHashMap;
+
+use crate::device::Size;
 use crate::roof::{Given, GivenGroup, MOST_OUTLETS};
 use crate::units::Length;
 
@@ -63,12 +66,15 @@ struct Schedule<'s, 'l> {
     columns: Vec<(Column, f64)>,
 }
 
+/// The sizes that rows were of, by device and dimensions: a long schedule names few of them, again and again.
+type Known<'t> = FxHashMap<(&'t str, [Option<i64>; 3]), Size>;
+
 /// Adds the layouts of the schedule that a project names.
 pub(super) fn read(against: &Against<'_>, path: &Path, named: &Cell<'_>, layouts: &mut Vec<Given>) -> Option<()> {
     let name = named.text()?;
     let log = named.reader.log;
     let source = file::read(&file::beside(path, name), name, Some(named), log)?;
-    let mut rows = records(&source).into_iter();
+    let mut rows = records(&source);
     let refuse = |span: Span, title: &str, help: &str| {
         log.put(Fault::error(title).at(&source, span, "here").help(help));
     };
@@ -81,16 +87,17 @@ pub(super) fn read(against: &Against<'_>, path: &Path, named: &Cell<'_>, layouts
     }
     let schedule = Schedule { source: &source, log, columns: columns(&head, &source, log)? };
     // The layouts of this file by area and name; a name that stands in another place already is told once.
-    let mut places: HashMap<(usize, String), usize> = HashMap::new();
+    let mut places: FxHashMap<(usize, &str), usize> = FxHashMap::default();
+    let mut known = Known::default();
     let before = layouts.len();
     let mut sound = true;
     for row in rows {
-        let Some((area, layout, group)) = schedule.row(against, &row) else {
+        let Some((area, layout, group)) = schedule.row(against, &row, &mut known) else {
             sound = false;
             continue;
         };
-        let place = *places.entry((area, layout)).or_insert_with_key(|(area, layout)| {
-            layouts.push(Given { name: layout.clone(), area: *area, groups: Vec::new() });
+        let place = *places.entry((area, layout)).or_insert_with(|| {
+            layouts.push(Given { name: layout.to_string(), area, groups: Vec::new() });
             layouts.len() - 1
         });
         let (given, others) = (&mut layouts[place].groups, place);
@@ -175,7 +182,12 @@ impl Schedule<'_, '_> {
     }
 
     /// One row: its area, the name of its layout, and its group.
-    fn row(&self, against: &Against<'_>, row: &[Entry<'_>]) -> Option<(usize, String, GivenGroup)> {
+    fn row<'t>(
+        &self,
+        against: &Against<'_>,
+        row: &[Entry<'t>],
+        known: &mut Known<'t>,
+    ) -> Option<(usize, &'t str, GivenGroup)> {
         if row.len() != self.columns.len() {
             let title = format!("this row has {} cells; the head has {}", row.len(), self.columns.len());
             self.refuse(whole(row), Fault::error(title).help("a comma parts cells: put names with a comma in quotes"));
@@ -213,12 +225,15 @@ impl Schedule<'_, '_> {
             height: dimension(Column::Height)?,
             diameter: dimension(Column::Diameter)?,
         };
-        let size = match against.size(device.text, wanted) {
-            Ok(size) => size,
-            Err(fault) => {
-                self.refuse(device.span.clone(), fault);
-                return None;
-            }
+        let size = match known.entry((device.text, wanted.nm())) {
+            Entered::Occupied(known) => known.get().clone(),
+            Entered::Vacant(unknown) => match against.size(device.text, wanted) {
+                Ok(size) => unknown.insert(size).clone(),
+                Err(fault) => {
+                    self.refuse(device.span.clone(), fault);
+                    return None;
+                }
+            },
         };
         let count = needed(Column::Count)?.0;
         let Some(whole) = count.text.parse::<u32>().ok().filter(|count| (1..=MOST_DEVICES).contains(count)) else {
@@ -228,7 +243,7 @@ impl Schedule<'_, '_> {
         };
         let set_height =
             self.set_height(against, row, area, cell(Column::SetHeight), cell(Column::Elevation), number)?;
-        Some((area, layout.text.to_string(), GivenGroup { size, count: whole, set_height }))
+        Some((area, layout.text, GivenGroup { size, count: whole, set_height }))
     }
 
     /// The height of a row's sill above the low point.

@@ -39,16 +39,14 @@ pub(super) fn is_headless(head: &[Entry<'_>], source: &Arc<Source>, log: &Log, f
 ///
 /// No cell of numbers runs over the end of a line, so a row is a line: a quote that is not closed spoils its own row, and
 /// does not swallow those below.
-pub(super) fn records(source: &Source) -> Vec<Vec<Entry<'_>>> {
-    let mut records = Vec::new();
+pub(super) fn records(source: &Source) -> impl Iterator<Item = Vec<Entry<'_>>> {
     let mut at = 0;
-    for line in source.text.split_inclusive(['\n', '\r']) {
-        if !line.trim().is_empty() && !line.trim_start().starts_with('#') {
-            records.push(entries(line.trim_end_matches(['\n', '\r']), at));
-        }
+    let lines = source.text.split_inclusive(['\n', '\r']).map(move |line| {
         at += line.len();
-    }
-    records
+        (at - line.len(), line)
+    });
+    let told = lines.filter(|(_, line)| !line.trim().is_empty() && !line.trim_start().starts_with('#'));
+    told.map(|(start, line)| entries(line.trim_end_matches(['\n', '\r']), start))
 }
 
 /// The cells of a line with their places; blanks and a pair of quotes around a cell are left out, and a comma between quotes

@@ -1,7 +1,9 @@
 //! The report of `check`: the given layouts of each area side by side, what each leaves, and what fails.
 
+use std::io::{self, Write};
+
 use rayon::prelude::*;
-use serde::Serialize;
+use serde::{Serialize, Serializer};
 
 use crate::input::Assumed;
 use crate::review::{Checked, Effect, Failing, Input, Mend, Routed, Sensitivity, Storage, Tolerances};
@@ -12,7 +14,7 @@ use crate::units::{Length, Load, Money};
 use super::json;
 use super::page::{self, Block, Table};
 use super::words::{self, Words};
-use super::{Format, heights, mend, notes, plain, ponding, ranking, rules, sensitivity, storage, written};
+use super::{Format, heights, mend, notes, plain, ponding, ranking, rules, sensitivity, storage};
 
 /// What a report of given layouts is made of.
 #[derive(Clone, Copy, Debug)]
@@ -40,8 +42,13 @@ pub struct Checks<'a, 'r> {
 }
 
 impl<'a, 'r> Checks<'a, 'r> {
-    fn of_area(&self, area: usize) -> impl Iterator<Item = &'a Checked<'r>> {
-        self.checked.iter().filter(move |checked| checked.given.area == area)
+    /// The places of the layouts of each area of the roof, in order.
+    fn places(&self) -> Vec<Vec<usize>> {
+        let mut places = vec![Vec::new(); self.roof.areas.len()];
+        for (place, checked) in self.checked.iter().enumerate() {
+            places[checked.given.area].push(place);
+        }
+        places
     }
 
     /// The best that a search finds for an area.
@@ -71,13 +78,14 @@ impl<'a, 'r> Checks<'a, 'r> {
     }
 }
 
-pub(super) fn write(checks: &Checks<'_, '_>, format: Format, width: usize) -> String {
+pub(super) fn write<W: Write>(checks: &Checks<'_, '_>, format: Format, width: usize, out: &mut W) -> io::Result<()> {
     match format {
-        Format::Table => page::text(&blocks(checks), width),
-        Format::Markdown => page::markdown(&blocks(checks)),
-        Format::Json => document(checks),
-        Format::Csv => rows(checks),
+        Format::Table => out.write_all(page::text(&blocks(checks), width).as_bytes())?,
+        Format::Markdown => out.write_all(page::markdown(&blocks(checks)).as_bytes())?,
+        Format::Json => document(checks, out)?,
+        Format::Csv => rows(checks, out)?,
     }
+    out.flush()
 }
 
 fn blocks(checks: &Checks<'_, '_>) -> Vec<Block> {
@@ -86,8 +94,9 @@ fn blocks(checks: &Checks<'_, '_>) -> Vec<Block> {
         vec![Block::Title(format!("{}: given layouts, {}", checks.roof.title, rules::drains_in_title(checks.roof)))];
     blocks.extend(ranking::situation(checks.roof, words));
     blocks.extend(rules::over(checks.roof, checks.options, words));
+    let places = checks.places();
     for &area in checks.areas {
-        area_blocks(checks, area, words, &mut blocks);
+        area_blocks(checks, area, &places[area], words, &mut blocks);
     }
     blocks.extend(mend::survey(checks, words));
     let told = checks.told();
@@ -95,13 +104,14 @@ fn blocks(checks: &Checks<'_, '_>) -> Vec<Block> {
     blocks
 }
 
-fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut Vec<Block>) {
+/// The blocks of an area, whose layouts stand at some places.
+fn area_blocks(checks: &Checks<'_, '_>, area: usize, places: &[usize], words: Words, blocks: &mut Vec<Block>) {
     let roof = checks.roof;
     blocks.extend(ranking::area_head(roof, area, words));
     if checks.best_of(area).is_some() {
         blocks.extend(ranking::there_already(roof, area, words));
     }
-    let checked: Vec<_> = checks.of_area(area).collect();
+    let checked: Vec<_> = places.iter().map(|&place| &checks.checked[place]).collect();
     if checked.is_empty() {
         blocks.push(Block::Text("No layout is given here.".into()));
         return;
@@ -121,9 +131,7 @@ fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut 
     if !lines.is_empty() {
         blocks.push(Block::List(lines));
     }
-    for (place, _) in checks.checked.iter().enumerate().filter(|(_, checked)| checked.given.area == area) {
-        blocks.extend(mend::blocks(checks, place, words));
-    }
+    blocks.extend(places.iter().flat_map(|&place| mend::blocks(checks, place, words)));
     blocks.extend(heights::blocks(roof, area, &named, words));
     let loads: Vec<String> = checked.iter().filter_map(|checked| up_the_slope(roof, checked, words)).collect();
     if !loads.is_empty() {
@@ -131,19 +139,19 @@ fn area_blocks(checks: &Checks<'_, '_>, area: usize, words: Words, blocks: &mut 
         blocks.push(Block::List(loads));
     }
     blocks.extend(ranking::beside(roof, area, &named, words));
-    blocks.extend(sensitivities(checks, area, words));
+    blocks.extend(sensitivities(checks, places, words));
     if let Some(stored) = checks.storage {
-        let here = checks.checked.iter().enumerate().filter(|(_, checked)| checked.given.area == area);
-        let routed: Vec<_> = here.map(|(place, checked)| (checked, checks.routed(place))).collect();
+        let routed: Vec<_> = places.iter().map(|&place| (&checks.checked[place], checks.routed(place))).collect();
         blocks.extend(storage::blocks(roof, area, &routed, stored, words));
     }
 }
 
-/// What a step of each input does to the layouts of an area.
-fn sensitivities(checks: &Checks<'_, '_>, area: usize, words: Words) -> Vec<Block> {
+/// What a step of each input does to the layouts at some places.
+fn sensitivities(checks: &Checks<'_, '_>, places: &[usize], words: Words) -> Vec<Block> {
     let Some((found, tolerances)) = checks.sensitivities else { return Vec::new() };
-    let here = checks.checked.iter().zip(found).filter(|(checked, _)| checked.given.area == area);
-    here.flat_map(|(checked, found)| sensitivity::blocks(checks.roof, checked, found, tolerances, words)).collect()
+    let of_layout =
+        |&place: &usize| sensitivity::blocks(checks.roof, &checks.checked[place], &found[place], tolerances, words);
+    places.iter().flat_map(of_layout).collect()
 }
 
 fn table(checks: &Checks<'_, '_>, area: usize, checked: &[&Checked<'_>], words: Words) -> Table {
@@ -328,7 +336,10 @@ fn up_the_slope(roof: &Roof, checked: &Checked<'_>, words: Words) -> Option<Stri
     ))
 }
 
-fn rows(checks: &Checks<'_, '_>) -> String {
+/// Layouts whose rows are made at once, side by side.
+const AT_ONCE: usize = 4096;
+
+fn rows(checks: &Checks<'_, '_>, out: &mut impl Write) -> io::Result<()> {
     let words = Words(checks.roof.system);
     let (small, load) = (words.small_unit(), words.load_unit().to_lowercase());
     let head = [
@@ -354,9 +365,11 @@ fn rows(checks: &Checks<'_, '_>) -> String {
     if checks.mends.is_some() {
         head.extend(["mend", "mend_cost"].map(String::from));
     }
-    let mut rows = vec![head];
+    let mut writer = csv::Writer::from_writer(out);
+    writer.write_record(&head).map_err(of_writer)?;
     let length = |length: Option<Length>| length.map_or(String::new(), |length| plain(words.small(length), 4));
-    let of_layout = |(place, checked): (usize, &Checked<'_>)| {
+    let of_layout = |place: usize| {
+        let checked = &checks.checked[place];
         let mut rows = Vec::with_capacity(checked.given.groups.len());
         let standing = &checked.standing;
         let water = standing.states[standing.case].water;
@@ -397,17 +410,39 @@ fn rows(checks: &Checks<'_, '_>) -> String {
         }
         rows
     };
-    rows.extend(checks.checked.par_iter().enumerate().flat_map_iter(of_layout).collect::<Vec<_>>());
-    written(&rows)
+    let places: Vec<usize> = (0..checks.checked.len()).collect();
+    for some in places.chunks(AT_ONCE) {
+        for row in some.par_iter().copied().flat_map_iter(of_layout).collect::<Vec<_>>() {
+            writer.write_record(&row).map_err(of_writer)?;
+        }
+    }
+    writer.flush()
+}
+
+/// What went wrong beneath: a reader that went away must be told from all else.
+fn of_writer(error: csv::Error) -> io::Error {
+    match error.into_kind() {
+        csv::ErrorKind::Io(error) => error,
+        other => io::Error::other(format!("{other:?}")),
+    }
+}
+
+/// A list of a document that is made item by item, as it is written.
+struct Listed<F>(F);
+
+impl<F: Fn() -> I, I: Iterator<Item: Serialize>> Serialize for Listed<F> {
+    fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
+        serializer.collect_seq((self.0)())
+    }
 }
 
 #[derive(Serialize)]
-struct Document<'a> {
+struct Document<'a, Areas: Serialize> {
     format: &'static str,
     title: &'a str,
     #[serde(skip_serializing_if = "Vec::is_empty")]
     rule_sets: Vec<rules::Over<'a>>,
-    areas: Vec<OfArea<'a>>,
+    areas: Areas,
     #[serde(skip_serializing_if = "Option::is_none")]
     worst_first: Option<Vec<mend::OfFailing<'a>>>,
     assumptions: Vec<String>,
@@ -415,13 +450,13 @@ struct Document<'a> {
 }
 
 #[derive(Serialize)]
-struct OfArea<'a> {
+struct OfArea<'a, Layouts: Serialize> {
     name: &'a str,
     demand_m3_s: f64,
     #[serde(skip_serializing_if = "Option::is_none")]
     ponding: Option<ponding::OfArea>,
     framing_analysis: Vec<String>,
-    layouts: Vec<OfLayout<'a>>,
+    layouts: Layouts,
     #[serde(skip_serializing_if = "Option::is_none")]
     best: Option<OfBest<'a>>,
 }
@@ -476,10 +511,11 @@ struct OfBest<'a> {
     cases: Vec<json::Case<'a>>,
 }
 
-fn document<'a>(checks: &Checks<'a, '_>) -> String {
+fn document<'a>(checks: &Checks<'a, '_>, out: &mut impl Write) -> io::Result<()> {
     let words = Words(checks.roof.system);
     let roof = checks.roof;
-    let layout = |place: usize, checked: &'a Checked<'_>| {
+    let layout = |&place: &usize| {
+        let checked = &checks.checked[place];
         let (area, standing) = (checked.given.area, &checked.standing);
         let failing = |failing| failing_in_words(roof, checks.options, checked, failing, words);
         OfLayout {
@@ -506,30 +542,29 @@ fn document<'a>(checks: &Checks<'a, '_>) -> String {
         cases: json::cases(roof, area, best),
     };
     let told = checks.told();
-    let mut by_area: Vec<Vec<OfLayout<'a>>> = roof.areas.iter().map(|_| Vec::new()).collect();
-    for (place, checked) in checks.checked.iter().enumerate() {
-        by_area[checked.given.area].push(layout(place, checked));
-    }
+    let places = checks.places();
     let area = |&area: &usize| OfArea {
         name: &roof.areas[area].name,
         demand_m3_s: roof.demands[area].m3_per_s(),
         ponding: ponding::of_area(&roof.areas[area]),
         framing_analysis: ponding::reasons(&roof.areas[area], words),
-        layouts: std::mem::take(&mut by_area[area]),
+        layouts: Listed({
+            let (places, layout) = (&places[area], &layout);
+            move || places.iter().map(layout)
+        }),
         best: checks.best_of(area).map(|found| best(area, found)),
     };
     let document = Document {
         format: "brimline check 1",
         title: &roof.title,
         rule_sets: rules::over_in_document(checks.roof, &checks.options.rules),
-        areas: checks.areas.iter().map(area).collect(),
+        areas: Listed(|| checks.areas.iter().map(&area)),
         worst_first: mend::worst_first(checks),
         assumptions: notes::assumptions(&told),
         cautions: notes::cautions(&told),
     };
-    let mut text = serde_json::to_string_pretty(&document).unwrap_or_default();
-    text.push('\n');
-    text
+    serde_json::to_writer_pretty(&mut *out, &document)?;
+    out.write_all(b"\n")
 }
 
 fn of_sensitivity<'a>(roof: &'a Roof, found: &Sensitivity) -> OfSensitivity<'a> {

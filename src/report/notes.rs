@@ -162,8 +162,11 @@ fn following(told: &Told<'_, '_>, words: Words) -> Vec<String> {
             } else if size.following.capacity().is_some() {
                 parts.push("what follows it carries all that it passes".into());
             }
+            if parts.is_empty() {
+                continue;
+            }
             let line = format!("{}: {}.", words.name(size), list(&parts));
-            if !parts.is_empty() && !lines.contains(&line) {
+            if !lines.contains(&line) {
                 lines.push(line);
             }
         }

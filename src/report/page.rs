@@ -55,16 +55,17 @@ impl Table {
     /// The columns of text that give way on a terminal so wide, the widest first, and the least that each may become: as many
     /// as it takes.
     fn yielding(&self, width: usize) -> Vec<(usize, u16)> {
+        let contents: Vec<usize> = (0..self.head.len()).map(|index| self.content(index)).collect();
         let mut texts: Vec<usize> = (0..self.head.len()).filter(|&index| !self.numbers[index]).collect();
-        texts.sort_by_key(|&index| std::cmp::Reverse(self.content(index)));
-        let all: usize = (0..self.head.len()).map(|index| self.content(index) + PADDING + 1).sum::<usize>() + 1;
+        texts.sort_by_key(|&index| std::cmp::Reverse(contents[index]));
+        let all: usize = contents.iter().map(|content| content + PADDING + 1).sum::<usize>() + 1;
         let mut yielding = Vec::new();
         let mut left = all;
         for (place, index) in texts.into_iter().enumerate() {
             if place > 0 && left <= width {
                 break;
             }
-            let content = self.content(index) + PADDING;
+            let content = contents[index] + PADDING;
             let least = content.min(usize::from(if place == 0 { TEXT_COLUMN } else { NARROW_COLUMN }));
             left -= content - least;
             yielding.push((index, u16::try_from(least).unwrap_or(TEXT_COLUMN)));

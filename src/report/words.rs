@@ -6,9 +6,11 @@ use crate::roof::{LimitKind, Limits};
 use crate::search::{Criterion, Outcome, Placed, Ranked};
 use crate::units::{Area, Flow, Intensity, Length, Load, Money, System, Time};
 
+use super::{fixed, without_zeros};
+
 /// A number with its decimals, thousands parted by commas.
 pub(super) fn grouped(value: f64, decimals: usize) -> String {
-    let text = format!("{value:.decimals$}");
+    let text = fixed(value, decimals);
     let (sign, digits) = text.strip_prefix('-').map_or(("", text.as_str()), |digits| ("-", digits));
     let (whole, part) = digits.split_once('.').map_or((digits, None), |(whole, part)| (whole, Some(part)));
     let mut out = String::with_capacity(text.len() + text.len() / 3);
@@ -27,8 +29,7 @@ pub(super) fn grouped(value: f64, decimals: usize) -> String {
 
 /// A number with at most so many decimals and no zeros behind them.
 pub(super) fn trimmed(value: f64, decimals: usize) -> String {
-    let text = grouped(value, decimals);
-    if text.contains('.') { text.trim_end_matches('0').trim_end_matches('.').to_string() } else { text }
+    without_zeros(grouped(value, decimals))
 }
 
 /// How a search ended, in one word of every form of a report.

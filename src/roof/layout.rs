@@ -229,14 +229,16 @@ impl<'s, 'r> Lift<'s, 'r> {
 /// and falls once it has stopped, so it too, held at the lowest heights, ends once: the lifts that pass are one stretch.
 pub fn highest_lift(groups: &[Liftable<'_>], situations: &[Situation<'_>], asked: Asked) -> Option<Length> {
     let lowest: Vec<Group<'_>> = groups.iter().map(|group| group.group).collect();
-    let lifts = situations.iter().map(|situation| Lift::new(&lowest, situation));
-    let lifts = RefCell::new(lifts.collect::<Vec<_>>());
+    let lifts: Vec<_> = situations.iter().map(|situation| Lift::new(&lowest, situation)).collect();
+    let standing = RefCell::new((lowest, lifts));
     let least_spare = |lift: f64| {
-        let lifted: Vec<_> = groups.iter().map(|group| group.lifted(Length::from_m(lift))).collect();
-        let mut lifts = lifts.borrow_mut();
+        let (lifted, lifts) = &mut *standing.borrow_mut();
+        for (lifted, group) in lifted.iter_mut().zip(groups) {
+            *lifted = group.lifted(Length::from_m(lift));
+        }
         let spares = lifts.iter_mut().map(|lift| {
-            lift.stand(&lifted);
-            spare_of(&lift.pool, &lifted, lift.situation, lift.allowed, asked)
+            lift.stand(lifted);
+            spare_of(&lift.pool, lifted, lift.situation, lift.allowed, asked)
         });
         spares.fold(f64::INFINITY, f64::min)
     };

@@ -85,8 +85,8 @@ pub const MOST_GROUPS: usize = 3;
 pub const MOST_OUTLETS: usize = 16;
 
 impl Pool {
-    fn flows(&self, level: Length) -> [(f64, u32); MOST_OUTLETS] {
-        let mut flows = [(0.0, 0); MOST_OUTLETS];
+    fn flows<const N: usize>(&self, level: Length) -> [(f64, u32); N] {
+        let mut flows = [(0.0, 0); N];
         for (slot, outlet) in flows.iter_mut().zip(&self.outlets) {
             *slot = (self.each(outlet, level).flow.m3_per_s(), outlet.count);
         }
@@ -100,12 +100,17 @@ impl Pool {
 
     /// Flow that leaves at a level.
     pub fn capacity(&self, level: Length) -> Flow {
-        Flow::from_m3_per_s(working_capacity(&self.flows(level), self.outlets.len(), self.blocked))
+        // Nearly every layout has few groups, and this is asked more often than anything else.
+        let (groups, blocked) = (self.outlets.len(), self.blocked);
+        Flow::from_m3_per_s(match groups {
+            0..=MOST_GROUPS => working_capacity(&self.flows::<MOST_GROUPS>(level), groups, blocked),
+            _ => working_capacity(&self.flows::<MOST_OUTLETS>(level), groups, blocked),
+        })
     }
 
     /// What each group carries at a level, in their order.
     pub fn shares(&self, level: Length) -> Vec<Share> {
-        let left = working(&self.flows(level), self.outlets.len(), self.blocked);
+        let left = working(&self.flows::<MOST_OUTLETS>(level), self.outlets.len(), self.blocked);
         let share = |(outlet, &working): (&Outlet, &u32)| Share {
             head: Head::above(outlet.sill, level),
             each: self.each(outlet, level),

@@ -200,6 +200,8 @@ pub(super) struct Best {
 
 impl Best {
     pub(super) fn new(keep: usize, fold: bool) -> Self {
+        // Of one layout alone the best of its family is the best of all.
+        let fold = fold && keep > 1;
         Self { keep, fold, ceiling: i64::MAX, found: Vec::with_capacity(keep.min(1024) + 1), changes: 0 }
     }
 
