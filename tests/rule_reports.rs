@@ -141,6 +141,32 @@ fn a_credit_that_is_refused_is_found_where_every_case_takes_it() {
     assert_eq!(both.verdict("check", "Refuses", "1").0, "pass");
 }
 
+/// Where the primary drains are counted to carry all, nothing is left that the overflow could be overwhelmed by.
+#[test]
+fn a_credit_of_all_the_demand_leaves_no_water() {
+    let asks = [("primary-credit", "credited = true"), ("depth", "at_most = \"6 in\""), ("limits", "")];
+    let folder = Folder::new(STORM, "[\"Town.toml\"]", "primary = { flow = \"900 gpm\" }", DRAWN).set("Town", &asks);
+    let (verdict, found, _) = folder.verdict("check", "Town", "2");
+    assert_eq!((verdict.as_str(), found.as_f64()), ("pass", Some(0.0)));
+    assert_eq!(folder.verdict("check", "Town", "3").0, "pass");
+    assert!(!folder.says("check").contains("overwhelmed"));
+    assert!(!folder.says("size").contains("overwhelmed"));
+}
+
+/// A cap on the depth by a rule set is no limit of the area's: it is not moved, and holds while others are.
+#[test]
+fn a_cap_of_a_rule_set_is_not_solved_for() {
+    let folder = Folder::new(STORM, "[\"Town.toml\"]", "", DRAWN).set("Town", &[("depth", "at_most = \"8 in\"")]);
+    let said = folder.says("backsolve");
+    assert!(said.contains("load limit") && !said.contains("depth limit"), "{said}");
+    let tight = Folder::new(STORM, "[\"Town.toml\"]", "", DRAWN).set("Town", &[("depth", "at_most = \"3 in\"")]);
+    assert!(
+        tight.says("backsolve").contains("load limit \u{2506} 35 psf \u{2506} no value holds"),
+        "{}",
+        tight.says("backsolve")
+    );
+}
+
 /// Advice on the rain goes by the hardest that any case holds the layout to, not by the design storm alone.
 #[test]
 fn advice_is_found_in_what_every_case_holds_to() {

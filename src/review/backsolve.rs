@@ -97,7 +97,7 @@ pub fn backsolve(roof: &Roof, options: &Options, given: &Given, unknown: Unknown
         Unknown::SetHeight => Solved::SetHeight(back.set_height()),
         Unknown::Width => Solved::Width(back.width()),
         Unknown::Count => Solved::Count((0..back.groups.len()).map(|group| back.count(group)).collect()),
-        Unknown::Limit => back.limit(),
+        Unknown::Limit => back.limit(roof, given.area),
         Unknown::Blocked => Solved::Blocked(back.blocked()),
     }
 }
@@ -194,32 +194,37 @@ impl Back<'_> {
         Some(passes)
     }
 
-    /// By how much the limits may be moved: by the case that is nearest to its limit, or farthest over.
-    fn limit(&self) -> Solved {
+    /// By how much the limits of the area may be moved: by the case that is nearest to its limit, or farthest over. The depth that a
+    /// rule set caps stays.
+    fn limit(&self, roof: &Roof, area: usize) -> Solved {
+        let own = &roof.areas[area].limits;
         let waters: Option<Vec<_>> =
             self.situations.iter().map(|situation| crate::roof::layout::state(&self.groups, situation).water).collect();
         let waters = waters.unwrap_or_default();
         let pairs = || waters.iter().zip(&self.situations);
         let loads = pairs().filter_map(|(water, situation)| Some((water.load - situation.limits.load?).pa()));
-        let depths = pairs().filter_map(|(water, situation)| Some((water.depth() - situation.limits.depth?).m()));
+        let depths = waters.iter().zip(own).filter_map(|(water, own)| Some((water.depth() - own.depth?).m()));
         let finite = |value: &f64| value.is_finite();
         let load = loads.reduce(f64::max).filter(finite).map(Load::from_pa);
         let depth = depths.reduce(f64::max).filter(finite).map(Length::from_m);
-        let given = |has: fn(&Limits) -> bool| self.situations.iter().any(|situation| has(&situation.limits));
+        let given = |has: fn(&Limits) -> bool| own.iter().any(has);
+        let cap = |situation: &Situation<'_>| roof.bases[situation.case.basis?].areas[area].depth;
         // Far beyond any roof, so that the others alone decide.
-        let without_loads = || self.holds_with(|limits| limits.load = limits.load.map(|_| Load::from_pa(1e8)));
-        let without_depths = || self.holds_with(|limits| limits.depth = limits.depth.map(|_| Length::from_m(1e4)));
+        let without_loads =
+            || self.holds_with(|here| Limits { load: here.limits.load.map(|_| Load::from_pa(1e8)), ..here.limits });
+        let without_depths =
+            || self.holds_with(|here| Limits { depth: cap(here).or(Some(Length::from_m(1e4))), ..here.limits });
         Solved::Limit {
             load: given(|limits| limits.load.is_some()).then(|| load.filter(|_| without_loads())),
             depth: given(|limits| limits.depth.is_some()).then(|| depth.filter(|_| without_depths())),
         }
     }
 
-    /// Whether every case holds with its limits changed.
-    fn holds_with(&self, change: impl Fn(&mut Limits)) -> bool {
+    /// Whether every case holds under other limits.
+    fn holds_with(&self, limits: impl Fn(&Situation<'_>) -> Limits) -> bool {
         let mut situations = self.situations.clone();
         for situation in &mut situations {
-            change(&mut situation.limits);
+            situation.limits = limits(situation);
         }
         least_spare(&self.groups, &situations, self.asked) >= 0.0
     }

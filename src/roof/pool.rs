@@ -128,7 +128,8 @@ impl Pool {
         Some(Flow::from_m3_per_s(working_capacity(&flows, self.outlets.len(), self.blocked)))
     }
 
-    /// The least level at which the demand leaves; none where it never does: every table at its end.
+    /// The least level at which the demand leaves, the low point where there is none; none where it never does: every table at
+    /// its end.
     ///
     /// It is the least number `y` with `capacity(y) >= demand`, to the last bit.
     ///
@@ -136,6 +137,9 @@ impl Pool {
     /// [`RootError`] where a capacity is not finite, which no device gives.
     pub fn level(&self, demand: Flow) -> Result<Option<Length>, RootError> {
         let lowest = self.outlets.iter().map(|outlet| outlet.sill).fold(Length::from_m(f64::INFINITY), Length::min);
+        if demand <= Flow::ZERO {
+            return Ok(Some(Length::ZERO));
+        }
         if self.greatest().is_some_and(|most| most < demand) {
             return Ok(None);
         }
