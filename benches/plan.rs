@@ -4,7 +4,7 @@
 use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Kind, Size};
-use brimline::roof::{Case, Catchment, Facts, Limits, Parapet, Roof, Storm, Surface, demand};
+use brimline::roof::{Case, Catchment, Limits, Roof, Storm, demand};
 use brimline::search::{self, Answer, Criterion, Options, PlanAsked, Raises, Watch};
 use brimline::units::{Area, Length, Load, Money, System};
 
@@ -32,23 +32,13 @@ fn area(index: u32, unlike: bool) -> Catchment {
     Catchment {
         name: format!("area {index}"),
         area: Area::from_m2(150.0 + f64::from(index * 137 % 1201)),
-        wall: Area::ZERO,
-        wall_share: 0.5,
         edge: unlike.then(|| Length::from_m(6.0 + f64::from(index % 13))),
         gap: Length::inches(if unlike { 12.0 } else { 0.0 }),
-        parapet: Parapet::default(),
-        roof_at_wall: Length::ZERO,
-        surface: Surface::default(),
-        receives: Vec::new(),
-        ponding: None,
         kinds: (unlike && index.is_multiple_of(5)).then(|| vec![Kind::ClosedScupper]),
         count: 1..=30,
         set_heights: Some(vec![Length::inches(2.0)]),
         limits: vec![load(26), load(32)],
-        existing: Vec::new(),
-        replace: None,
-        channel: None,
-        facts: Facts::default(),
+        ..Catchment::default()
     }
 }
 

@@ -4,9 +4,7 @@ use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Size};
 use brimline::roof::layout::{self, Group};
-use brimline::roof::{
-    Case, Catchment, Facts, Limits, Parapet, Roof, Situation, Storm, Surface, demand, working_capacity,
-};
+use brimline::roof::{Case, Catchment, Limits, Parapet, Roof, Situation, Storm, demand, working_capacity};
 use brimline::search::{self, Answer, Criterion, Options, Outcome, Watch};
 use brimline::units::{Area, Length, Load, Money, System};
 
@@ -47,23 +45,13 @@ fn area(index: u32) -> Catchment {
     Catchment {
         name: format!("area {index}"),
         area: Area::from_m2(700.0 + f64::from(index * 37 % 401)),
-        wall: Area::ZERO,
-        wall_share: 0.5,
         edge: Some(Length::from_m(30.0)),
         gap: Length::inches(24.0),
         parapet: Parapet { height: Some(Length::inches(24.0)), thickness: None },
-        roof_at_wall: Length::ZERO,
-        surface: Surface::default(),
-        receives: Vec::new(),
-        ponding: None,
-        kinds: None,
         count: 1..=12,
         set_heights: Some((8..=16).map(|quarter| Length::from_nm(quarter * 6_350_000)).collect()),
         limits: vec![load(28), load(34), load(30)],
-        existing: Vec::new(),
-        replace: None,
-        channel: None,
-        facts: Facts::default(),
+        ..Catchment::default()
     }
 }
 

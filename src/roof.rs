@@ -249,6 +249,33 @@ pub struct Catchment {
     pub facts: Facts,
 }
 
+/// An area of no size without anything on it or at its edge: one device to eight may stand in it, half of a wall counts.
+impl Default for Catchment {
+    fn default() -> Self {
+        Self {
+            name: String::new(),
+            area: Area::ZERO,
+            wall: Area::ZERO,
+            wall_share: 0.5,
+            edge: None,
+            gap: Length::ZERO,
+            parapet: Parapet::default(),
+            roof_at_wall: Length::ZERO,
+            surface: Surface::default(),
+            receives: Vec::new(),
+            ponding: None,
+            kinds: None,
+            count: 1..=8,
+            set_heights: None,
+            limits: Vec::new(),
+            existing: Vec::new(),
+            replace: None,
+            channel: None,
+            facts: Facts::default(),
+        }
+    }
+}
+
 impl Catchment {
     /// Its limits in every case, and those that rule sets hold it to, to be changed alike.
     pub(crate) fn every_limit(&mut self) -> impl Iterator<Item = &mut Limits> {

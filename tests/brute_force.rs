@@ -11,7 +11,7 @@ use std::sync::Arc;
 use brimline::device::{Choice, Device, Kind, Law, Place, Rating, Size};
 use brimline::roof::channel::Channel;
 use brimline::roof::layout::{self, Asked, Group, Liftable};
-use brimline::roof::{Case, Catchment, Facts, GivenGroup, Limits, Parapet, Ponding, Roof, Situation, Storm, Surface};
+use brimline::roof::{Case, Catchment, GivenGroup, Limits, Parapet, Ponding, Roof, Situation, Storm};
 use brimline::search::{self, Criterion, Least, Options, Outcome, PlanAsked, PlanFront, Relaxation, Watch, Why};
 use brimline::units::{Area, Dimension, Flow, Intensity, Length, Load, Money, System};
 
@@ -136,8 +136,6 @@ fn roof(dice: &mut Dice) -> Roof {
     let catchment = Catchment {
         name: "area".into(),
         area: Area::from_m2(20.0 + dice.upto(900) as f64),
-        wall: Area::ZERO,
-        wall_share: 0.5,
         edge: dice.one_in(2).then(|| on_grid(dice.inches(0, 60))),
         gap: on_grid(dice.inches(0, 6)),
         parapet: Parapet {
@@ -145,22 +143,18 @@ fn roof(dice: &mut Dice) -> Roof {
             thickness: Some(Length::inches(8.0)),
         },
         roof_at_wall: on_grid(dice.inches(0, 2)),
-        surface: Surface::default(),
-        receives: Vec::new(),
         ponding: ponding(dice),
         kinds: dice.one_in(5).then(|| vec![Kind::ClosedScupper, Kind::Rated]),
         count: least..=least + dice.upto(3) as u32,
         set_heights: Some((0..=2).map(|step| on_grid(Length::inches((grid_start + step) as f64 * 0.75))).collect()),
         limits,
-        existing: Vec::new(),
-        replace: None,
-        facts: Facts::default(),
         channel: dice.one_in(12).then(|| Channel {
             width: on_grid(dice.inches(8, 40)),
             length: Length::from_m(5.0 + dice.upto(20) as f64),
             slope: dice.pick(&[0.0, 0.0, 0.001]),
             roughness: 0.013,
         }),
+        ..Catchment::default()
     };
     let storm = Storm { intensity: Intensity::from_m_per_s(3e-5), ..Storm::default() };
     let demands = vec![storm.intensity * catchment.area];

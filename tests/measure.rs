@@ -5,7 +5,7 @@ use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Head, Kind, Law, Made, Place, Rating, Site, Size, Tariff};
 use brimline::roof::layout::{self, Asked, Group};
-use brimline::roof::{Case, Catchment, Facts, GivenGroup, Limits, Parapet, Roof, Situation, Storm, Surface};
+use brimline::roof::{Case, Catchment, GivenGroup, Limits, Parapet, Roof, Situation, Storm};
 use brimline::search::{self, Criterion, Fitted, Measured, Options, Outcome, Ranked, Watch};
 use brimline::units::{Area, Dimension, Flow, Intensity, Length, Load, Money, System, read_price};
 
@@ -109,23 +109,13 @@ fn roof(dice: &mut Dice, mix: usize) -> (Roof, Options) {
     let catchment = Catchment {
         name: "area".into(),
         area: Area::from_m2(60.0 + dice.upto(500) as f64),
-        wall: Area::ZERO,
-        wall_share: 0.5,
         edge: dice.one_in(3).then(|| inches(20.0 + dice.upto(60) as f64)),
         gap: inches(dice.pick(&[0.0, 3.0])),
         parapet: Parapet { height: None, thickness: Some(inches(8.0)) },
-        roof_at_wall: Length::ZERO,
-        surface: Surface::default(),
-        receives: Vec::new(),
-        ponding: None,
-        kinds: None,
         count: if mix == 3 { 3 } else { 1 }..=1 + dice.upto(3) as u32 + mix as u32,
         set_heights: Some((0..=2).map(|step| inches(1.0 + f64::from(step) * 0.75)).collect()),
         limits,
-        existing: Vec::new(),
-        replace: None,
-        channel: None,
-        facts: Facts::default(),
+        ..Catchment::default()
     };
     let mut catchment = catchment;
     if dice.one_in(3) {

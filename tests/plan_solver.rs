@@ -7,9 +7,9 @@
 use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Size};
-use brimline::roof::{Case, Catchment, Facts, Limits, Parapet, Roof, Storm, Surface, demand};
+use brimline::roof::{Case, Catchment, Limits, Roof, Storm, demand};
 use brimline::search::{self, Criterion, Options, PlanAsked, Watch};
-use brimline::units::{Area, Length, Load, Money, System};
+use brimline::units::{Length, Load, Money, System};
 use good_lp::{Constraint, Expression, ProblemVariables, Solution, SolverModel, Variable, microlp, variable};
 
 /// A small generator of its own, so that a failing seed can be run again anywhere.
@@ -184,23 +184,12 @@ fn roof(given: &Given) -> Roof {
     let area = |ask: &Ask| Catchment {
         name: "area".into(),
         area: format!("{} ft2", ask.area_ft2).parse().expect("an area"),
-        wall: Area::ZERO,
-        wall_share: 0.5,
         edge: ask.edge_in.map(inches),
         gap: inches(given.gap),
-        parapet: Parapet::default(),
-        roof_at_wall: Length::ZERO,
-        surface: Surface::default(),
-        receives: Vec::new(),
-        ponding: None,
-        kinds: None,
         count: 1..=given.most_devices,
         set_heights: Some(vec![Length::inches(SET_HEIGHT)]),
         limits: ask.psf.map(|psf| Limits { load: Some(Load::psf(f64::from(psf))), depth: None }).to_vec(),
-        existing: Vec::new(),
-        replace: None,
-        channel: None,
-        facts: Facts::default(),
+        ..Catchment::default()
     };
     let areas: Vec<Catchment> = given.areas.iter().map(area).collect();
     let storm = Storm { intensity: format!("{RAIN} in/h").parse().expect("an intensity"), ..Storm::default() };

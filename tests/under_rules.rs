@@ -6,9 +6,7 @@ use std::sync::Arc;
 
 use brimline::device::{Choice, Device, Place, RingDrain, Size};
 use brimline::roof::layout::{self, Asked, Group};
-use brimline::roof::{
-    Case, Catchment, Facts, GivenGroup, Limits, Parapet, Primary, Roof, Situation, Storm, Surface, demand,
-};
+use brimline::roof::{Case, Catchment, Facts, GivenGroup, Limits, Parapet, Primary, Roof, Situation, Storm, demand};
 use brimline::rules::{
     self, Amount, Applied, Bound, KINDS, Kind as RuleKind, Known, Rule, RuleAt, RuleSet, Rulebook, Verdict,
 };
@@ -201,26 +199,19 @@ fn area(dice: &mut Dice, cases: usize) -> Catchment {
         name: "area".into(),
         area: Area::from_m2(30.0 + dice.upto(700) as f64),
         wall: Area::from_m2(dice.upto(2) as f64 * 150.0),
-        wall_share: 0.5,
         edge: (!dice.one_in(3)).then(|| dice.inches(100, 500)),
         gap: grid(6.0),
         parapet: Parapet { height: dice.one_in(2).then(|| dice.inches(8, 14)), thickness: None },
         roof_at_wall: dice.inches(0, 1),
-        surface: Surface::default(),
-        receives: Vec::new(),
-        ponding: None,
-        kinds: None,
         count: least..=least + 3,
         set_heights: Some((0..3).map(|step| grid((start + step) as f64)).collect()),
         limits: vec![limits; cases],
-        existing: Vec::new(),
-        replace: None,
-        channel: None,
         facts: Facts {
             limits,
             primary: Primary { drain: (!dice.one_in(3)).then(|| dice.inches(3, 6)), ..Primary::default() },
             ..Facts::default()
         },
+        ..Catchment::default()
     }
 }
 

@@ -10,7 +10,7 @@ use crate::units::{Area, Dimension, Flow, Length, Money};
 
 use super::Assumed;
 use super::catalog::Offer;
-use super::defaults::{COUNT, SHARE, WALL_SHARE, default};
+use super::defaults::{SHARE, WALL_SHARE, default};
 use super::facts;
 use super::fault::{Fault, Span};
 use super::flow;
@@ -670,25 +670,5 @@ fn standing(given: &Given<'_>) -> Catchment {
 
 /// An area that only passes on what it receives.
 fn without_size(receives: Vec<Receipt>) -> Catchment {
-    Catchment {
-        name: String::new(),
-        area: Area::ZERO,
-        wall: Area::ZERO,
-        wall_share: WALL_SHARE,
-        edge: None,
-        gap: Length::ZERO,
-        parapet: Parapet::default(),
-        roof_at_wall: Length::ZERO,
-        surface: Surface::default(),
-        receives,
-        ponding: None,
-        kinds: None,
-        count: COUNT,
-        set_heights: None,
-        limits: Vec::new(),
-        existing: Vec::new(),
-        replace: None,
-        channel: None,
-        facts: Facts::default(),
-    }
+    Catchment { receives, ..Catchment::default() }
 }

@@ -129,7 +129,7 @@ fn drained<I: Fn(Time) -> Flow, O: Fn(Volume) -> Flow>(
 mod tests {
     use super::*;
     use crate::device::{Device, Site, Size};
-    use crate::roof::{Case, Facts, Limits, Parapet, Ponding, Rise, Surface};
+    use crate::roof::{Case, Limits, Ponding, Rise, Surface};
     use crate::units::{Area, Intensity};
     use approx::assert_relative_eq;
 
@@ -137,23 +137,8 @@ mod tests {
         Catchment {
             name: "roof".into(),
             area: Area::from_m2(m2),
-            wall: Area::ZERO,
-            wall_share: 0.5,
-            edge: None,
-            gap: Length::ZERO,
-            parapet: Parapet::default(),
-            roof_at_wall: Length::ZERO,
             surface: Surface { rise, ..Surface::default() },
-            receives: Vec::new(),
-            ponding: None,
-            kinds: None,
-            count: 1..=8,
-            set_heights: None,
-            limits: Vec::new(),
-            existing: Vec::new(),
-            replace: None,
-            channel: None,
-            facts: Facts::default(),
+            ..Catchment::default()
         }
     }
 

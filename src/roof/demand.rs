@@ -145,8 +145,8 @@ fn downstream(areas: &[Catchment], lowest: impl IntoIterator<Item = usize>) -> R
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::roof::{Facts, Parapet, Surface};
-    use crate::units::{Intensity, Length};
+
+    use crate::units::Intensity;
     use approx::assert_relative_eq;
 
     fn storm(inches_per_hour: &str) -> Storm {
@@ -156,25 +156,10 @@ mod tests {
 
     fn area(roof_ft2: u32, wall_ft2: u32, receives: &[(usize, f64)]) -> Catchment {
         Catchment {
-            name: String::new(),
             area: format!("{roof_ft2} ft2").parse().unwrap(),
             wall: format!("{wall_ft2} ft2").parse().unwrap(),
-            wall_share: 0.5,
-            edge: None,
-            gap: Length::ZERO,
-            parapet: Parapet::default(),
-            roof_at_wall: Length::ZERO,
-            surface: Surface::default(),
             receives: receives.iter().map(|&(from, share)| Receipt { from, share, what: Passed::All }).collect(),
-            ponding: None,
-            kinds: None,
-            count: 1..=8,
-            set_heights: None,
-            limits: Vec::new(),
-            existing: Vec::new(),
-            replace: None,
-            channel: None,
-            facts: Facts::default(),
+            ..Catchment::default()
         }
     }
 
