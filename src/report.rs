@@ -16,15 +16,18 @@ use crate::search::{
 use crate::units::{Flow, Length, Load, System};
 
 mod backsolve;
+mod beside;
 mod cascade;
 mod check;
 mod codebook;
 mod contents;
 mod cures;
 mod front;
+mod head;
 mod heights;
 mod json;
 mod kinds;
+mod marks;
 mod measure;
 mod mend;
 mod notes;

@@ -11,7 +11,7 @@ use crate::units::{Area, Intensity, Length, Load, ReturnPeriod};
 
 use super::page::{self, Block, Table};
 use super::words::{self, Words, list, trimmed};
-use super::{Format, check, json, notes, ranking, rules, written};
+use super::{Format, check, head, json, marks, notes, rules, written};
 
 /// What a report of values solved for is made of.
 #[derive(Clone, Copy, Debug)]
@@ -54,15 +54,15 @@ fn blocks(backsolved: &Backsolved<'_, '_>) -> Vec<Block> {
     let words = Words(backsolved.roof.system);
     let roof = backsolved.roof;
     let mut blocks = vec![Block::Title(format!("{}: what given layouts could take", roof.title))];
-    blocks.extend(ranking::situation(roof, words));
+    blocks.extend(head::situation(roof, words));
     blocks.extend(rules::over(roof, backsolved.options, words));
     let mut area_before = None;
     for (checked, solved) in backsolved.layouts {
         if area_before.replace(checked.given.area) != Some(checked.given.area) {
-            blocks.extend(ranking::area_head(roof, checked.given.area, words));
+            blocks.extend(head::area_head(roof, checked.given.area, words));
         }
         let passes = if checked.passes() { "passes" } else { "fails" };
-        let layout = ranking::marked(&checked.standing, words);
+        let layout = marks::marked(&checked.standing, words);
         blocks.push(Block::Text(format!("\"{}\", {layout}, {passes}.", checked.given.name)));
         if !checked.passes() {
             let failing = |failing| check::failing_in_words(roof, backsolved.options, checked, failing, words);

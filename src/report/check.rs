@@ -14,7 +14,7 @@ use crate::units::{Length, Load, Money};
 use super::json;
 use super::page::{self, Block, Table};
 use super::words::{self, Words};
-use super::{Format, heights, mend, notes, plain, ponding, ranking, rules, sensitivity, storage};
+use super::{Format, beside, head, heights, marks, mend, notes, plain, ponding, rules, sensitivity, storage};
 
 /// What a report of given layouts is made of.
 #[derive(Clone, Copy, Debug)]
@@ -92,7 +92,7 @@ fn blocks(checks: &Checks<'_, '_>) -> Vec<Block> {
     let words = Words(checks.roof.system);
     let mut blocks =
         vec![Block::Title(format!("{}: given layouts, {}", checks.roof.title, rules::drains_in_title(checks.roof)))];
-    blocks.extend(ranking::situation(checks.roof, words));
+    blocks.extend(head::situation(checks.roof, words));
     blocks.extend(rules::over(checks.roof, checks.options, words));
     let places = checks.places();
     for &area in checks.areas {
@@ -107,9 +107,9 @@ fn blocks(checks: &Checks<'_, '_>) -> Vec<Block> {
 /// The blocks of an area, whose layouts stand at some places.
 fn area_blocks(checks: &Checks<'_, '_>, area: usize, places: &[usize], words: Words, blocks: &mut Vec<Block>) {
     let roof = checks.roof;
-    blocks.extend(ranking::area_head(roof, area, words));
+    blocks.extend(head::area_head(roof, area, words));
     if checks.best_of(area).is_some() {
-        blocks.extend(ranking::there_already(roof, area, words));
+        blocks.extend(head::there_already(roof, area, words));
     }
     let checked: Vec<_> = places.iter().map(|&place| &checks.checked[place]).collect();
     if checked.is_empty() {
@@ -118,7 +118,7 @@ fn area_blocks(checks: &Checks<'_, '_>, area: usize, places: &[usize], words: Wo
     }
     blocks.push(Block::Table(table(checks, area, &checked, words)));
     let standings: Vec<&Ranked<'_>> = checked.iter().map(|checked| &checked.standing).collect();
-    blocks.extend(ranking::marks(&standings, words).into_iter().map(Block::Text));
+    blocks.extend(marks::marks(&standings, words).into_iter().map(Block::Text));
     if checked.iter().any(|checked| checked.standing.cost.is_none()) {
         blocks
             .push(Block::Text("A layout with a device or a size that no catalog has a price for has no cost.".into()));
@@ -138,7 +138,7 @@ fn area_blocks(checks: &Checks<'_, '_>, area: usize, places: &[usize], words: Wo
         blocks.push(Block::Text("Up the slope, in the governing case:".into()));
         blocks.push(Block::List(loads));
     }
-    blocks.extend(ranking::beside(roof, area, &named, words));
+    blocks.extend(beside::beside(roof, area, &named, words));
     blocks.extend(sensitivities(checks, places, words));
     if let Some(stored) = checks.storage {
         let routed: Vec<_> = places.iter().map(|&place| (&checks.checked[place], checks.routed(place))).collect();
@@ -170,7 +170,7 @@ fn table(checks: &Checks<'_, '_>, area: usize, checked: &[&Checked<'_>], words: 
     };
     let mut columns = vec![
         ("layout".into(), false, rows().map(|(name, _, _)| name).collect::<Vec<_>>()),
-        ("groups".into(), false, column(&|standing| ranking::marked(standing, words))),
+        ("groups".into(), false, column(&|standing| marks::marked(standing, words))),
         ("verdict".into(), false, rows().map(verdict).collect()),
         ("cost".into(), true, column(&|standing| standing.cost.map_or("-".into(), words::money))),
         (

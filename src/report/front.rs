@@ -8,7 +8,7 @@ use crate::units::{Length, Load, Money};
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list};
-use super::{Fronted, Sized, ranking};
+use super::{Fronted, Sized, marks};
 
 /// Rows that a table shows; JSON and CSV have all.
 pub const FRONT_ROWS: usize = 20;
@@ -53,7 +53,7 @@ pub(super) fn area(sized: &Sized<'_, '_>, fronted: &Fronted<'_>, words: Words, b
     let shared = shared_height(rows);
     let layout = |(row, layout): (&Unbeaten<'_>, &Ranked<'_>)| {
         let text = if shared.is_some() { words.sizes(&row.groups) } else { words.groups(&row.groups) };
-        text + &ranking::marks_of(layout)
+        text + &marks::marks_of(layout)
     };
     let mut columns = vec![("layout".into(), false, rows.iter().zip(shown).map(layout).collect())];
     columns.extend(figures(rows, words));
@@ -67,7 +67,7 @@ pub(super) fn area(sized: &Sized<'_, '_>, fronted: &Fronted<'_>, words: Words, b
     if !under.is_empty() {
         blocks.push(Block::Text(under.join(" ")));
     }
-    blocks.extend(ranking::marks(&shown.iter().collect::<Vec<_>>(), words).into_iter().map(Block::Text));
+    blocks.extend(marks::marks(&shown.iter().collect::<Vec<_>>(), words).into_iter().map(Block::Text));
 }
 
 /// The plans of the sizes of the cheapest that are not beaten.

@@ -5,8 +5,8 @@ use crate::roof::layout::Group;
 use crate::roof::{Catchment, Roof};
 use crate::units::Length;
 
+use super::beside::Named;
 use super::page::Block;
-use super::ranking::Named;
 use super::words::{Words, list};
 
 /// Every sill of the layouts with all its heights; nothing where an area gives no height but those above its low point.

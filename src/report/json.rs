@@ -12,7 +12,7 @@ use crate::search::{Answer, Fitted, Least, Measured, Opened, Opening, Outcome, P
 use crate::units::{Length, Money};
 
 use super::words::{self, Words};
-use super::{Asked, Sized, cascade, heights, notes, ponding, ranking, reasons, rules, storm};
+use super::{Asked, Sized, cascade, heights, marks, notes, ponding, reasons, rules, storm};
 
 mod front;
 
@@ -457,8 +457,8 @@ fn bound_of(bound: Least) -> AtLeast {
 fn layout<'a>(sized: &Sized<'a, '_>, area: usize, rank: usize, ranked: &'a Ranked<'_>) -> Layout<'a> {
     let words = Words(sized.roof.system);
     let mut remarks: Vec<String> =
-        ranked.beyond.iter().map(|&(range, value)| ranking::out_of_range(range, value, words)).collect();
-    if ranked.chord > notes::CHORD_TOLD {
+        ranked.beyond.iter().map(|&(range, value)| marks::out_of_range(range, value, words)).collect();
+    if ranked.chord > marks::CHORD_TOLD {
         remarks.push("straight lines between rated rows decide by more than 2 % of flow".into());
     }
     // The first layout under every law where that is asked for; else each under the laws of a thick wall.

@@ -7,7 +7,7 @@ use crate::units::{Length, Money};
 
 use super::page::Block;
 use super::words::{self, Words, list};
-use super::{Sized, ranking, work};
+use super::{Sized, beside, marks, work};
 
 /// The lines of an area; none where nothing in its layouts is made to measure.
 pub(super) fn blocks(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Words) -> Vec<Block> {
@@ -28,9 +28,9 @@ pub(super) fn blocks(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>],
     let title = format!("Made to measure, rounded up to {}{cheapest}:", words.size(made.1.round));
     let mut blocks = vec![Block::Text(title), Block::List(lines)];
     let all: Vec<&Ranked<'_>> = fitted.iter().map(|(_, layout)| layout).collect();
-    blocks.extend(ranking::marks(&all, words).into_iter().map(Block::Text));
+    blocks.extend(marks::marks(&all, words).into_iter().map(Block::Text));
     let named: Vec<_> = fitted.iter().map(|(rank, layout)| (rank.to_string(), layout)).collect();
-    let thick = ranking::thick_walls(sized.roof, area, &named, words);
+    let thick = beside::thick_walls(sized.roof, area, &named, words);
     if !thick.is_empty() {
         blocks.push(Block::Text("Made to measure, under the laws of a thick wall:".into()));
         blocks.push(Block::List(thick));
@@ -87,7 +87,7 @@ fn in_words(sized: &Sized<'_, '_>, fitted: &Fitted, words: Words) -> String {
     };
     format!(
         "{}{better}{unrounded}; {}set height {}",
-        ranking::marked(&layout, words),
+        marks::marked(&layout, words),
         governing(sized, &layout, words),
         words.window(&layout.groups),
     )

@@ -11,7 +11,7 @@ use crate::units::{Length, Money};
 use super::check::{Checks, utilisation};
 use super::page::{Block, Table};
 use super::words::{self, Words, list};
-use super::{json, notes};
+use super::{json, marks};
 
 /// Sills lower than this are told to be low: less than codes ask for as a rule.
 const LOW: Length = Length::mm(50.0);
@@ -115,7 +115,7 @@ fn doubts(mend: &Mend) -> String {
     if mend.beyond {
         text += ", beyond the published range of its law";
     }
-    if mend.chord > notes::CHORD_TOLD {
+    if mend.chord > marks::CHORD_TOLD {
         text += ", by straight lines between rated rows";
     }
     if !mend.breaks_under.is_empty() {

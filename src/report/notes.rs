@@ -15,9 +15,6 @@ use super::page::Block;
 use super::words::{self, Words, list, ranked_by, trimmed};
 use super::{cascade, rules, storm};
 
-/// Excess of straight lines over logarithmic ones, as a part of the demand, from which it is told.
-pub(super) const CHORD_TOLD: f64 = 0.02;
-
 /// Head under which surface tension, membrane edges and levels decide: 1 in. Common practice.
 const LOW_HEAD: Length = Length::inches(1.0);
 /// Set height under which an overflow runs in ordinary storms: 2 in, or 50 mm where metric. ASCE 7-22 and training notes of the UPC, from memory.

@@ -1,19 +1,16 @@
 //! The report of `size`: for each area its demand and its limit in words, then the ranked layouts, or why there are none.
 
 use crate::device::{Kind, Law};
-use crate::hydraulics::limits::Range;
-use crate::roof::{Case, GivenGroup, Limits, Roof, demand};
+use crate::roof::Roof;
 use crate::search::{Answer, Outcome, Ranked, UnderLaw};
-use crate::units::{Area, Length, Load, Money};
+use crate::units::Load;
 
+use super::beside::beside;
+use super::head::{area_head, situation, there_already};
+use super::marks::{marked, marks};
 use super::page::{Block, Table};
-use super::words::{self, Words, list, trimmed};
-use super::{Sized, cascade, cures, front, heights, measure, notes, plan, ponding, reasons, rules, storm, work};
-
-/// The mark behind a layout that leaves the published range of its law.
-const BEYOND: &str = "\u{2020}";
-/// The mark behind a layout whose flow rests on straight lines between rated rows.
-const CHORD: &str = "\u{2021}";
+use super::words::{self, Words};
+use super::{Sized, cures, front, heights, measure, notes, plan, reasons, rules, work};
 
 pub(super) fn page(sized: &Sized<'_, '_>) -> Vec<Block> {
     let words = Words(sized.roof.system);
@@ -32,47 +29,6 @@ pub(super) fn page(sized: &Sized<'_, '_>) -> Vec<Block> {
     blocks
 }
 
-/// The storm, the cases that a layout must withstand, and what runs onto what.
-pub(super) fn situation(roof: &Roof, words: Words) -> Vec<Block> {
-    let mut blocks = vec![Block::Text(storm::line(&roof.storm, words))];
-    // A further storm is told once, not case by case.
-    let given = roof.cases.iter().filter(|case| case.storm.is_none() && !rules::is_own_case(roof, case));
-    let cases: Vec<_> = given.map(|case| case_in_words(case, roof, words)).collect();
-    if roof.cases.len() > 1 || roof.cases[0] != Case::as_designed() {
-        blocks.push(Block::Text("Cases that a layout must withstand:".into()));
-        blocks.push(Block::List(cases));
-    }
-    blocks.extend(storm::further(roof, words));
-    blocks.extend(cascade::blocks(roof, words));
-    blocks
-}
-
-/// An area's name, demand and limit.
-pub(super) fn area_head(roof: &Roof, area: usize, words: Words) -> [Block; 3] {
-    [
-        Block::Heading(roof.areas[area].name.clone()),
-        Block::Text(demand_in_words(roof, area, words)),
-        Block::Text(limit_in_words(roof, area, words)),
-    ]
-}
-
-/// What is there already, where anything is: what a search adds to.
-pub(super) fn there_already(roof: &Roof, area: usize, words: Words) -> Option<Block> {
-    let there: Vec<_> = roof.areas[area].existing.iter().map(GivenGroup::group).collect();
-    let heeded = match roof.areas[area].replace {
-        None => {
-            "All of it is kept at no cost, moves no sill and may be what is blocked; layouts say what is added.".into()
-        }
-        Some(price) => format!(
-            "Any of it may be closed, each opening {}; what is kept costs nothing, moves no sill and may be what is blocked. \
-             Layouts say what is added, what is closed and what is kept.",
-            if price > Money::default() { format!("for {}", words::money(price)) } else { "at no cost".into() }
-        ),
-    };
-    let text = format!("There already: {}. {heeded}", words.groups(&there));
-    (!there.is_empty()).then_some(Block::Text(text))
-}
-
 /// What the layouts come to that close nothing, where the first does close.
 fn keeping_all(answer: &Answer<'_>, words: Words) -> Option<Block> {
     let text = match (answer.keeping.as_ref()?.layouts().first(), &answer.keeping) {
@@ -86,36 +42,6 @@ fn keeping_all(answer: &Answer<'_>, words: Words) -> Option<Block> {
         (None, _) => "With nothing closed no layout holds.".into(),
     };
     Some(Block::Text(text))
-}
-
-/// What a case does to the design.
-fn case_in_words(case: &Case, roof: &Roof, words: Words) -> String {
-    let mut parts = Vec::new();
-    match case.blocked {
-        0 => {}
-        1 => parts.push("the device that carries most carries nothing".to_string()),
-        many => parts.push(format!("the {many} devices that carry most carry nothing")),
-    }
-    if case.sill_error > Length::ZERO {
-        parts.push(format!("every sill stands {} higher", words.size(case.sill_error)));
-    }
-    if case.opening_loss > Length::ZERO {
-        parts.push(format!("{} is lost on each side of every scupper", words.size(case.opening_loss)));
-    }
-    let changed = |factor: f64| (factor - 1.0).abs() > 1e-12;
-    if changed(case.rain) {
-        parts.push(format!("rain times {}{}", trimmed(case.rain, 3), storm::recurrence(case, &roof.storm)));
-    }
-    if changed(case.discharge) {
-        parts.push(format!("flow of every device times {}", trimmed(case.discharge, 3)));
-    }
-    if let Some(basis) = case.basis {
-        parts.push(format!("counted by {}", roof.bases[basis].case.name));
-    }
-    if parts.is_empty() {
-        parts.push("as drawn, under the storm as given".into());
-    }
-    format!("{}: {}", case.name, list(&parts))
 }
 
 fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut Vec<Block>) {
@@ -181,89 +107,6 @@ fn strengthened(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks
     }
     let weighed = sized.place(answer.area).and_then(|place| found.get(place));
     blocks.extend(weighed.map(|weighed| Block::Text(super::structure::told(weighed, structure, words))));
-}
-
-/// What the area must pass, and the same by the constant that practice writes.
-fn demand_in_words(roof: &Roof, area: usize, words: Words) -> String {
-    let catchment = &roof.areas[area];
-    let catching = demand::catching(catchment);
-    let mut parts = vec![format!("{} of roof", words.area(catchment.area))];
-    if catchment.wall > Area::ZERO {
-        let share = trimmed(catchment.wall_share, 3);
-        parts.push(format!("{share} of {} of wall", words.area(catchment.wall)));
-    }
-    let mut text = format!(
-        "Demand {}: {} on {}",
-        words.flow(roof.demands[area]),
-        words.intensity(roof.storm.intensity),
-        list(&parts)
-    );
-    text += &cascade::received(roof, area, words);
-    if roof.system == crate::units::System::Us {
-        let by_hand = 0.0104 * catching.to_ft2() * roof.storm.intensity.to_inches_per_hour();
-        text += &format!(
-            ". By hand 0.0104 x {} x {} = {} gpm{}",
-            words.bare_area(catching),
-            trimmed(roof.storm.intensity.to_inches_per_hour(), 3),
-            words::gpm_by_hand(by_hand),
-            if catchment.receives.is_empty() { "" } else { " for its own rain" }
-        );
-    }
-    text + "."
-}
-
-/// The limits in effect, case by case where they differ.
-fn limit_in_words(roof: &Roof, area: usize, words: Words) -> String {
-    let catchment = &roof.areas[area];
-    let water = |limits: Limits| {
-        let level = roof.situation(area, 0);
-        let level = crate::roof::Situation { limits, ..level };
-        let allowed = level.allowable_level();
-        if allowed > Length::ZERO {
-            return format!(
-                "{}, water up to {} {}",
-                words.limits(limits),
-                words.depth_down(allowed),
-                words.small_unit()
-            );
-        }
-        let free = level.reach(Length::ZERO).map_or(String::new(), |reach| {
-            format!(": with a free outlet its channel already stands {} deep", words.depth(reach.deepest))
-        });
-        format!("{}, which leaves no level at the devices{free}", words.limits(limits))
-    };
-    let mut text = String::from("Limit: ");
-    let first = catchment.limits[0];
-    text += &water(first);
-    // Under every storm a case has the same limits.
-    let of_main = |case: &usize| roof.cases[*case].storm.is_none();
-    for (case, limits) in catchment.limits.iter().enumerate().skip(1).filter(|(case, _)| of_main(case)) {
-        let before = catchment.limits[..case].iter().position(|known| known == limits);
-        if before.is_none() {
-            let alike: Vec<_> = (case..catchment.limits.len())
-                .filter(|other| of_main(other) && catchment.limits[*other] == *limits)
-                .map(|other| format!("\"{}\"", roof.cases[other].name))
-                .collect();
-            text += &format!("; in {}: {}", list(&alike), water(*limits));
-        }
-    }
-    if let Some(counted) = ponding::counted(catchment, words) {
-        text += &format!("; {counted}");
-    }
-    if let Some(height) = catchment.parapet.height {
-        text += &format!("; the parapet's top at {}", words.size(height));
-    }
-    if let Some(edge) = catchment.edge {
-        text += &format!("; {} of edge for openings", words.long(edge));
-    }
-    if let Some(channel) = catchment.channel {
-        text += &format!(
-            "; held along a channel {} wide and {} long, whose tailwater is the level at the devices",
-            words.long(channel.width),
-            words.long(channel.length)
-        );
-    }
-    text + "."
 }
 
 /// One column of the ranking: its head, whether it is of numbers, its cells, and how a constant one is said.
@@ -365,81 +208,6 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
     }
 }
 
-/// A layout with its rank or its name.
-pub(super) type Named<'l, 'r> = (String, &'l Ranked<'r>);
-
-/// What is told of layouts besides their ranking: conductor heads that back up, and how they stand in a thick wall.
-pub(super) fn beside(roof: &Roof, area: usize, layouts: &[Named<'_, '_>], words: Words) -> Vec<Block> {
-    let mut blocks = Vec::new();
-    let backing = backing_up(roof, layouts, words);
-    if !backing.is_empty() {
-        blocks
-            .push(Block::Text("Conductor heads that would back up, were all that the device passes credited:".into()));
-        blocks.push(Block::List(backing));
-    }
-    let thick = thick_walls(roof, area, layouts, words);
-    if !thick.is_empty() {
-        blocks.push(Block::Text("Under the laws of a thick wall, in the governing case:".into()));
-        blocks.push(Block::List(thick));
-    }
-    blocks
-}
-
-/// One line for each layout and group whose conductor head would back up over the sill, at its worst.
-fn backing_up(roof: &Roof, layouts: &[Named<'_, '_>], words: Words) -> Vec<String> {
-    let mut lines = Vec::new();
-    for (called, layout) in layouts {
-        for (place, placed) in layout.groups.iter().enumerate() {
-            let risen = layout
-                .states
-                .iter()
-                .enumerate()
-                .filter_map(|(case, state)| Some((state.groups[place].backs_up?, case)));
-            if let Some((rise, case)) = risen.max_by(|a, b| a.0.m().total_cmp(&b.0.m())) {
-                let (name, case) = (words.name(placed.group.size), &roof.cases[case].name);
-                lines.push(format!("{called}: {name} to {} above its sill in \"{case}\"", words.depth(rise)));
-            }
-        }
-    }
-    lines
-}
-
-/// One line for each layout: its level under the laws of a thick wall, and whether that breaks a limit.
-pub(super) fn thick_walls(roof: &Roof, area: usize, layouts: &[Named<'_, '_>], words: Words) -> Vec<String> {
-    let Some(thickness) = roof.areas[area].parapet.thickness else { return Vec::new() };
-    if roof.areas[area].ponding.is_some_and(|ponding| ponding.is_unstable()) {
-        return Vec::new();
-    }
-    let wall = format!(" ({} parapet)", words.size(thickness));
-    let one = |(index, under): (usize, &UnderLaw)| {
-        let (wall, is) = if index == 0 { (wall.as_str(), "the level is ") } else { ("", "") };
-        format!("under `{}`{wall} {is}{}", under.law.name(), under_in_words(roof, area, under, words))
-    };
-    let told = layouts.iter().filter(|(_, layout)| !layout.thick_wall.is_empty());
-    told.map(|(called, layout)| {
-        format!("{called}: {}", layout.thick_wall.iter().enumerate().map(one).collect::<Vec<_>>().join("; "))
-    })
-    .collect()
-}
-
-/// The level under another law, beside what is allowed where it passes that.
-fn under_in_words(roof: &Roof, area: usize, under: &UnderLaw, words: Words) -> String {
-    let Some(water) = under.water else { return "without end: overwhelmed".into() };
-    let level = words.depth(water.level);
-    let breaks = |case: usize| {
-        let allowed = roof.situation(area, case).allowable_level();
-        if case == under.case {
-            format!(", over the {} limit", words.depth(allowed))
-        } else {
-            format!(", and \"{}\" passes its {}", roof.cases[case].name, words.depth(allowed))
-        }
-    };
-    // The governing case is told first where it breaks, though another may stand before it.
-    let own = water.governing.utilisation > 1.0;
-    let broken = if own { Some(under.case) } else { under.breaks };
-    level + &broken.map_or(String::new(), breaks)
-}
-
 /// The first layout of an area under every law that it can follow.
 fn every_law(roof: &Roof, area: usize, first: &Ranked<'_>, laws: &[UnderLaw], words: Words, blocks: &mut Vec<Block>) {
     let kind = |law: Law| {
@@ -467,52 +235,4 @@ fn every_law(roof: &Roof, area: usize, first: &Ranked<'_>, laws: &[UnderLaw], wo
         ("holds".into(), false, cell(&holds)),
         ("source".into(), false, cell(&|under| under.law.account(kind(under.law)).source.into())),
     ])));
-}
-
-pub(super) fn marked(layout: &Ranked<'_>, words: Words) -> String {
-    words.layout(layout) + &marks_of(layout)
-}
-
-/// The marks that stand behind a layout.
-pub(super) fn marks_of(layout: &Ranked<'_>) -> String {
-    let mut text = String::new();
-    if !layout.beyond.is_empty() {
-        text += &format!(" {BEYOND}");
-    }
-    if layout.chord > notes::CHORD_TOLD {
-        text += &format!(" {CHORD}");
-    }
-    text
-}
-
-pub(super) fn marks(layouts: &[&Ranked<'_>], words: Words) -> Vec<String> {
-    let mut texts = Vec::new();
-    let mut beyond: Vec<(&Range, f64)> = Vec::new();
-    for &(range, value) in layouts.iter().flat_map(|layout| &layout.beyond) {
-        let low = value < range.low;
-        match beyond.iter_mut().find(|(known, other)| std::ptr::eq(*known, range) && (*other < range.low) == low) {
-            Some((_, known)) => *known = if low { known.min(value) } else { known.max(value) },
-            None => beyond.push((range, value)),
-        }
-    }
-    if !beyond.is_empty() {
-        let parts: Vec<_> = beyond.iter().map(|&(range, value)| out_of_range(range, value, words)).collect();
-        texts.push(format!("{BEYOND} beyond the published range of its law, as far as {}.", list(&parts)));
-    }
-    let most = layouts.iter().map(|layout| layout.chord).fold(0.0, f64::max);
-    if most > notes::CHORD_TOLD {
-        texts.push(format!(
-            "{CHORD} straight lines and logarithms between rated rows differ by up to {} % of the flow.",
-            trimmed(most * 100.0, 1)
-        ));
-    }
-    texts
-}
-
-/// A value that lies outside a range, and the end that it passes.
-pub(super) fn out_of_range(range: &Range, value: f64, words: Words) -> String {
-    let shown = |value: f64| if range.unit.is_empty() { trimmed(value, 3) } else { words.depth(Length::from_m(value)) };
-    let end = |value: f64| if range.unit.is_empty() { trimmed(value, 3) } else { words.size(Length::from_m(value)) };
-    let (side, limit) = if value < range.low { ("under", range.low) } else { ("over", range.high) };
-    format!("{} {} {side} {} ({})", range.what, shown(value), end(limit), range.law)
 }

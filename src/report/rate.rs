@@ -6,8 +6,8 @@ use crate::device::{Curve, Head, Law, Regime, Site, Size};
 use crate::root::crossing;
 use crate::units::{Flow, Length, System};
 
+use super::marks::out_of_range;
 use super::page::{self, Block, Table};
-use super::ranking::out_of_range;
 use super::words::{Words, list};
 use super::{Format, Rated};
 
