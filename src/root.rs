@@ -180,7 +180,8 @@ impl<F: Fn([f64; 2]) -> f64> CostFunction for Plane<F> {
 
 /// Closes the bracket around `near` to two neighbouring numbers.
 ///
-/// Where `f` is smooth, `near` is nearly always right to a few last bits: that is tried before `BRENT_WIDTH`, which is promised.
+/// Where `f` is smooth, `near` is nearly always right to a few last bits: that is tried before `BRENT_WIDTH`, which is
+/// promised.
 fn settle(f: &impl Fn(f64) -> f64, mut below: f64, mut reached: f64, near: f64) -> (f64, f64) {
     let mut reach = (near.abs() * f64::EPSILON * 4.0).max(BRENT_WIDTH * f64::EPSILON);
     loop {

@@ -3,8 +3,12 @@
 //! It is exact over the declared grid: every size of every catalog, every count, up to `mix` groups; a layout is left out
 //! only by a bound that is proven where it is used (`dive`). Cost does not depend on the set height and the load rises with
 //! it, so a layout is its sizes and counts, with a window of set heights that starts at the lowest. Openings that are made to
-//! measure are searched on that grid too; the layouts kept are then fitted with widths of their own (`measure`). The answer does not
-//! depend on the number of threads, and equal input gives equal answers to the last bit.
+//! measure are searched on that grid too; the layouts kept are then fitted with widths of their own (`measure`). The answer
+//! does not depend on the number of threads, and equal input gives equal answers to the last bit.
+//!
+//! Where freeboard is asked this is an answer for sills at the lowest of their set heights: a higher sill also has a higher
+//! top, and where other devices pass most of the water, lifting one opening alone may win freeboard. Such layouts are not
+//! looked for; what is found holds, and more may.
 
 use std::sync::Arc;
 

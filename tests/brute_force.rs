@@ -508,7 +508,8 @@ fn after_closing(roof: &Roof, way: &[u32]) -> Roof {
     roof
 }
 
-/// What is closed and what is added by trying every closing with every choice: each with its key, the price of closing counted in.
+/// What is closed and what is added by trying every closing with every choice: each with its key, the price of closing counted
+/// in.
 fn every_replacement(roof: &Roof, options: &Options) -> Vec<(Vec<u32>, Tried)> {
     let price = roof.areas[0].replace.expect("may be closed");
     let rest = Criterion::ALL.into_iter().filter(|criterion| !options.rank_by.contains(criterion));

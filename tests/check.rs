@@ -538,8 +538,8 @@ fn storage_is_told_beside_a_verdict_that_it_does_not_change() {
     assert!(lasting("").check(1)["areas"][0]["layouts"][0].get("storage").is_none(), "only where it is asked for");
 }
 
-/// 26 psf on a roof that sags 0.02 in/psf: 4.48 in of water and 0.52 in of ponding head. A layout that stands at 4.48 in uses all
-/// of it: 2.9 x 12 x 2.48^1.5 = 135.9 gpm over a sill at 2 in. By hand.
+/// 26 psf on a roof that sags 0.02 in/psf: 4.48 in of water and 0.52 in of ponding head. A layout that stands at 4.48 in uses
+/// all of it: 2.9 x 12 x 2.48^1.5 = 135.9 gpm over a sill at 2 in. By hand.
 #[test]
 fn a_flexible_roof_is_checked_with_its_ponding_head() {
     let ft2 = 135.912 * 231.0 * 60.0 / 6.0 / 144.0;
@@ -636,8 +636,8 @@ fn no_limit_is_told_where_another_fails() {
 }
 
 /// 600 less 300 l/(s ha) on 2,500 m2 are 75 l/s, and 75 mm allowed less the 35 mm that the primary needs are 40 mm of head.
-/// Source: example of the German practice after DIN 1986-100, as practice notes quote it. 300 l/(s ha) are 108 mm/h. The width that
-/// just carries it is Q / (C H^1.5) with C of the practice form, 2.9 gpm and inches: 1.818 m^0.5/s. By hand.
+/// Source: example of the German practice after DIN 1986-100, as practice notes quote it. 300 l/(s ha) are 108 mm/h. The width
+/// that just carries it is Q / (C H^1.5) with C of the practice form, 2.9 gpm and inches: 1.818 m^0.5/s. By hand.
 #[test]
 fn the_usable_head_is_what_the_limit_leaves_over_the_sill() {
     let text = "title = \"x\"\nunits = \"si\"\ncatalogs = [\"devices.toml\"]\nstorm = { intensity = \"108 mm/h\" }\nlimit = { depth = \"75 mm\" }\n\

@@ -278,8 +278,8 @@ fn inlet_constants_are_those_of_the_table() {
     of(false).zip(&inlet::BOX_EDGES).for_each(|(row, edge)| same(row, edge.constants()));
 }
 
-/// The general-purpose library fluids 1.3.1. Left out: its contracted Kindsvater-Carter adds 0.1 mm to the head where the method
-/// says 1 mm; its SIA weirs raise the wrong sum; Ackers and the V-notch have no counterpart here.
+/// The general-purpose library fluids 1.3.1. Left out: its contracted Kindsvater-Carter adds 0.1 mm to the head where the
+/// method says 1 mm; its SIA weirs raise the wrong sum; Ackers and the V-notch have no counterpart here.
 #[test]
 fn library_values_are_met() {
     let argument = |row: Row, name: &str| -> f64 {

@@ -299,8 +299,8 @@ fn sized(path: &Path) -> Value {
 }
 
 /// The roof of [`one_roof_by_hand`] with its opening kept: 7 in at 2 in are added. With one blocked, the strongest: of two of
-/// 7 in, 105.5 gpm each, one is blocked, which leaves 98.4 + 105.5 = 203.9 of 199.5 gpm; of 6 in, 90.4 gpm each, three are needed
-/// since then the opening that is there is the blocked one.
+/// 7 in, 105.5 gpm each, one is blocked, which leaves 98.4 + 105.5 = 203.9 of 199.5 gpm; of 6 in, 90.4 gpm each, three are
+/// needed since then the opening that is there is the blocked one.
 #[test]
 fn what_is_added_to_what_is_there_by_hand() {
     let devices = "[[device]]\ntag = \"NS\"\nkind = \"open scupper\"\nwidth = { from = \"6 in\", to = \"30 in\", step = \"1 in\" }\n\
@@ -333,10 +333,10 @@ fn what_is_added_to_what_is_there_by_hand() {
     assert_eq!((added["count"].as_u64(), inches(added), first["cost"].as_f64()), (Some(2), 7.0, Some(740.0)));
 }
 
-/// The same mill where the edge decides. 26 psf is 5 in of water: an opening of W in passes 2.9 W 3^1.5 = 15.07 W gpm at 2 in, 2.9 W
-/// = 34.8 gpm of 12 in at 4 in, of 199.5 gpm. Of 18 in of edge one of 12 in at 3 in, 98.4 gpm, leaves 6, which pass 90.4: too little,
-/// so it goes, and 14 in come for 440. Of 30 in two of 12 in at 4 in leave 6; with one closed 164.7 gpm are missing, 11 in for 410;
-/// with both 14 in.
+/// The same mill where the edge decides. 26 psf is 5 in of water: an opening of W in passes 2.9 W 3^1.5 = 15.07 W gpm at 2 in,
+/// 2.9 W = 34.8 gpm of 12 in at 4 in, of 199.5 gpm. Of 18 in of edge one of 12 in at 3 in, 98.4 gpm, leaves 6, which pass 90.4:
+/// too little, so it goes, and 14 in come for 440. Of 30 in two of 12 in at 4 in leave 6; with one closed 164.7 gpm are
+/// missing, 11 in for 410; with both 14 in.
 #[test]
 fn what_is_replaced_by_hand() {
     let devices = "[[device]]\ntag = \"NS\"\nkind = \"open scupper\"\nwidth = { from = \"6 in\", to = \"30 in\", step = \"1 in\" }\n\
@@ -377,8 +377,8 @@ fn what_is_replaced_by_hand() {
     assert_eq!(output.status.code(), Some(1));
 }
 
-/// Sills in every height that an area gives, of sized as of given layouts: 3 in above a low point at 31.50 ft, where the roof rises
-/// 1/4 in/ft over 8 ft to 2 in at the wall, is at 31.75 ft = 9.6774 m and 1 in = 0.0254 m above that roof.
+/// Sills in every height that an area gives, of sized as of given layouts: 3 in above a low point at 31.50 ft, where the roof
+/// rises 1/4 in/ft over 8 ft to 2 in at the wall, is at 31.75 ft = 9.6774 m and 1 in = 0.0254 m above that roof.
 #[test]
 fn sills_are_told_in_every_height() {
     let devices =

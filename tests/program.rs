@@ -227,7 +227,8 @@ fn an_area_without_a_layout_says_why_and_the_others_are_answered() {
     assert_eq!(document["areas"][1]["outcome"], "optimal");
 }
 
-/// The limit that is named as a cure, written into the file, makes the layout that it promised; a tenth of a psf less makes none.
+/// The limit that is named as a cure, written into the file, makes the layout that it promised; a tenth of a psf less makes
+/// none.
 #[test]
 fn a_cure_written_into_the_file_cures() {
     let example = "examples/light-roof-infeasible.toml";

@@ -1,5 +1,5 @@
-//! Rule sets that come with the program: that each reads, and every number in it as it was published. Then every kind of rule in
-//! every verdict that it can have, from files to findings; and all that can be wrong with a file of rules, told in one run.
+//! Rule sets that come with the program: that each reads, and every number in it as it was published. Then every kind of rule
+//! in every verdict that it can have, from files to findings; and all that can be wrong with a file of rules, told in one run.
 //!
 //! What a number is known from stands beside it: seen in print, quoted in print, or from memory.
 
@@ -237,7 +237,8 @@ fn numbers_are_as_published() {
 /// Storms as published: minutes, years, years in risk category III and IV, factor.
 ///
 /// - ASCE 7-16 8.2, seen; 7-22 Table 8.2-1, from memory.
-/// - IBC 2009 and up to 2018, seen and quoted: the hourly rate. IBC 2021 1611.1, seen in one state's edition: 15 min, or twice the hourly.
+/// - IBC 2009 and up to 2018, seen and quoted: the hourly rate. IBC 2021 1611.1, seen in one state's edition: 15 min, or twice
+/// the hourly.
 /// - IPC 1106.1, quoted. UPC: rate of the primary drains quoted, 60 min from memory.
 /// - FM 1-54 of older editions, as the load standard's commentary of 2005 quotes it.
 /// - DIN r(5,100), quoted. NCC 2019 3.5.3.2, seen: 5 min, 100 years.
@@ -276,9 +277,9 @@ fn storms_are_as_published() {
     }
 }
 
-/// Walls and credit as published: half of each (ASCE 7 symbols, IPC 1106.4, quoted), by corner (UPC, 50 and 35 % quoted), greatest
-/// elevation (a handbook, quoted), wind driven (from memory), half of the largest (Ontario, quoted). The German form alone
-/// credits the primary drains.
+/// Walls and credit as published: half of each (ASCE 7 symbols, IPC 1106.4, quoted), by corner (UPC, 50 and 35 % quoted),
+/// greatest elevation (a handbook, quoted), wind driven (from memory), half of the largest (Ontario, quoted). The German form
+/// alone credits the primary drains.
 #[test]
 fn walls_and_credit_are_as_published() {
     for (name, walls, credit) in [
@@ -369,8 +370,8 @@ fn openings_by_area() {
     }
 }
 
-/// 600 l/(s ha) less the 300 that the primary drains are built for, on 2500 m2: 75 l/s. Of 75 mm the primary needs 35: 40 mm are left.
-/// Source: worked example of trade articles on DIN 1986-100 in its 2016 edition, quoted.
+/// 600 l/(s ha) less the 300 that the primary drains are built for, on 2500 m2: 75 l/s. Of 75 mm the primary needs 35: 40 mm
+/// are left. Source: worked example of trade articles on DIN 1986-100 in its 2016 edition, quoted.
 #[test]
 fn worked_example_with_the_primary_credited() {
     let storm = "intensity = \"600 l/(s ha)\"\nduration = \"5 min\"\nreturn_period = \"100 yr\"";
@@ -406,8 +407,8 @@ fn twice_the_hourly_rate_instead_of_the_quarter_hour() {
 }
 
 /// Twice the rain of 15 min, once for each way in which the project can know that: its design storm lasts so long, one of its
-/// further storms does and is met as often, its table says so at its own return period. What lasts an hour, or as long as nobody
-/// says, is not doubled: the design rain stands in, and the verdict cannot tell. Source: Ontario building code, quoted.
+/// further storms does and is met as often, its table says so at its own return period. What lasts an hour, or as long as
+/// nobody says, is not doubled: the design rain stands in, and the verdict cannot tell. Source: Ontario building code, quoted.
 #[test]
 fn twice_the_rain_of_a_quarter_hour() {
     const TABLE: &str = "duration_min,10_yr_in_h,100_yr_in_h\n15,3,5\n60,1.5,2\n";
@@ -450,8 +451,8 @@ fn a_storm_beyond_the_table_is_found_among_those_of_the_project() {
     assert_relative_eq!(project.roof.bases[0].areas[0].intensity.m_per_s() * 3600.0 / IN, 9.0, max_relative = 1e-9);
 }
 
-/// Of 900 and 600 ft2 at a corner half of each is 750, 35 % of the sum 525, half of the largest 450; half of what a diagonal view
-/// shows 541. Source: the clauses as in the sets; the sums by hand.
+/// Of 900 and 600 ft2 at a corner half of each is 750, 35 % of the sum 525, half of the largest 450; half of what a diagonal
+/// view shows 541. Source: the clauses as in the sets; the sums by hand.
 #[test]
 fn walls_at_a_corner_by_each_set() {
     let area = "area = \"5000 ft2\"\nwalls = [{ area = \"900 ft2\", side = \"north\" }, { area = \"600 ft2\", side = \"east\" }]";
@@ -470,8 +471,8 @@ fn walls_at_a_corner_by_each_set() {
     }
 }
 
-/// One rule over one layout: what the rule asks, how its set acts, limits of the project, keys of the area, groups; verdict, and
-/// words of why where there are any.
+/// One rule over one layout: what the rule asks, how its set acts, limits of the project, keys of the area, groups; verdict,
+/// and words of why where there are any.
 struct Judged {
     rule: &'static str,
     advice: bool,
@@ -525,8 +526,8 @@ impl Judged {
     }
 }
 
-/// Every kind in every verdict that it can have. 6 in/h on 5000 ft2 are 312 gpm: 156 through each of two scuppers of 12 in, by hand
-/// (156 / (2.9 x 12))^(2/3) = 2.72 in of head and 4.72 in of water.
+/// Every kind in every verdict that it can have. 6 in/h on 5000 ft2 are 312 gpm: 156 through each of two scuppers of 12 in, by
+/// hand (156 / (2.9 x 12))^(2/3) = 2.72 in of head and 4.72 in of water.
 #[test]
 #[expect(clippy::too_many_lines, reason = "one table")]
 fn every_kind_in_every_verdict() {
@@ -854,8 +855,9 @@ error: a rule that asks for `storm` asks nothing
     );
 }
 
-/// Of two rules of sills, one set takes both just where some device stands somewhere so that neither is broken: tried in areas whose
-/// drain, water and roof at the wall lie as they may, at the ends that the numbers leave. Two sets of one rule each say whether it is.
+/// Of two rules of sills, one set takes both just where some device stands somewhere so that neither is broken: tried in areas
+/// whose drain, water and roof at the wall lie as they may, at the ends that the numbers leave. Two sets of one rule each say
+/// whether it is.
 #[test]
 fn sills_that_no_set_takes_are_those_that_stand_nowhere() {
     const DATUMS: [&str; 4] = ["low point", "roof at wall", "primary drain", "primary water"];
@@ -919,8 +921,8 @@ fn sills_that_no_set_takes_are_those_that_stand_nowhere() {
     assert!(refused > 20, "{refused}");
 }
 
-/// What lies near a fault and is none: sills whose numbers count from heights of which either may be the higher, or are for other
-/// devices; numbers of zero that ask something; one way of counting, from two clauses.
+/// What lies near a fault and is none: sills whose numbers count from heights of which either may be the higher, or are for
+/// other devices; numbers of zero that ask something; one way of counting, from two clauses.
 #[test]
 fn rules_that_can_stand_together() {
     for rules in [
@@ -1083,8 +1085,8 @@ fn terms_of_rules_in_documents() {
     assert_eq!((cell(3, "bound"), cell(3, "unit"), cell(3, "for")), ("at most", "m", "scuppers"));
 }
 
-/// Sets side by side: of two storms either is asked, of two widths both; a count that grows with the area is ranked where one asks
-/// no fewer of every area; two sets of one title are told apart by nobody.
+/// Sets side by side: of two storms either is asked, of two widths both; a count that grows with the area is ranked where one
+/// asks no fewer of every area; two sets of one title are told apart by nobody.
 #[test]
 fn sets_side_by_side() {
     let count = |least: u32, each: u32| format!("\"count\"\nat_least = {least}\nfor_each = \"{each} ft2\"");
@@ -1163,7 +1165,8 @@ error: two rule sets have the title `one`
     brimline(&folder, &["rules", "--against", "one.toml"]).assert().code(2).stdout_eq("");
 }
 
-/// However many sets stand side by side, no word is broken: the page has the words of the Markdown, in which nothing is wrapped.
+/// However many sets stand side by side, no word is broken: the page has the words of the Markdown, in which nothing is
+/// wrapped.
 #[test]
 fn no_word_is_broken_side_by_side() {
     let names: Vec<String> = fs::read_dir(folder_of_sets())

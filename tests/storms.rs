@@ -195,8 +195,8 @@ fn the_rain_of_a_case_is_told_as_a_return_period() {
     assert!(text.contains("rain times 1.05, more seldom than once in 100 years"), "{text}");
 }
 
-/// The example's cascade by hand, each flow as the ft2 of roof whose rain it is: a plant room of 2,000 (1,800 and half of 400), a
-/// workshop of 4,200, a loading roof of 2,600. The workshop gets all of the plant room by its primary drains or half by its
+/// The example's cascade by hand, each flow as the ft2 of roof whose rain it is: a plant room of 2,000 (1,800 and half of 400),
+/// a workshop of 4,200, a loading roof of 2,600. The workshop gets all of the plant room by its primary drains or half by its
 /// overflow: all, 6,200. The loading roof gets three quarters of the workshop's overflow and half of the plant room's: by the
 /// overflow 0.75 (4,200 + 1,000) + 1,000 = 4,900, by the primary drains 0.75 x 6,200 = 4,650; so 7,500.
 #[test]

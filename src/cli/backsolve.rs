@@ -12,8 +12,9 @@ use super::{Failure, OfProject};
 
 /// Work backwards from given layouts: the one value at which each just holds every case, all else as given.
 ///
-/// How much rain, how much roof, how high a sill, how narrow an opening, how few devices, how low a limit, how many blocked. The
-/// layouts are those of the project, each a [[layout]] or rows of a `schedule`. Exit code 0: done; 2: the input cannot be used.
+/// How much rain, how much roof, how high a sill, how narrow an opening, how few devices, how low a limit, how many blocked.
+/// The layouts are those of the project, each a [[layout]] or rows of a `schedule`. Exit code 0: done; 2: the input cannot be
+/// used.
 #[derive(Debug, clap::Args)]
 pub(super) struct Args {
     #[command(flatten)]

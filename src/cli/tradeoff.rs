@@ -14,7 +14,8 @@ use super::{Failure, OfProject, quantity};
 /// Least cost against the load limit: what a stronger or a weaker roof saves or costs in openings.
 ///
 /// Each area's least cost is followed as its load limits are raised, every change of it found to 0.01 psf (or 1 Pa), or to the
-/// step in which strength can be built; where the project asks for a plan, so is the plan, step by step. Exit code 1: an area has no layout even at the greatest raise.
+/// step in which strength can be built; where the project asks for a plan, so is the plan, step by step. Exit code 1: an area
+/// has no layout even at the greatest raise.
 #[derive(Debug, clap::Args)]
 pub(super) struct Args {
     #[command(flatten)]

@@ -1,8 +1,8 @@
 //! The published table of round scuppers, read between its rows and its diameters.
 //!
-//! Flows in gal/min for heads of 1 to 8 in above the invert. From memory, rounded to about 5 gal/min in its source. Between heads
-//! it is read on logarithms. A diameter between two columns is read on the straight line between them; one outside is scaled from the nearest column by the same
-//! head over diameter and Q ~ D^2.5, and marked.
+//! Flows in gal/min for heads of 1 to 8 in above the invert. From memory, rounded to about 5 gal/min in its source. Between
+//! heads it is read on logarithms. A diameter between two columns is read on the straight line between them; one outside is
+//! scaled from the nearest column by the same head over diameter and Q ~ D^2.5, and marked.
 
 use crate::hydraulics::limits;
 use crate::units::{Flow, Length};

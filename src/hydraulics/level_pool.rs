@@ -62,15 +62,15 @@ impl<I: Fn(Time) -> Flow, O: Fn(Volume) -> Flow> LevelPool<I, O> {
         Moment { at, stored, gain: (self.inflow)(at) - (self.outflow)(stored) }
     }
 
-    /// Follows the pond from one moment to a time, or to the first step at whose end `ends` is true: every moment on the way, the
-    /// first and the last among them.
+    /// Follows the pond from one moment to a time, or to the first step at whose end `ends` is true: every moment on the way,
+    /// the first and the last among them.
     ///
     /// # Errors
     /// [`RoutingError`] where a flow is not finite, or steps become too many.
     ///
     /// # Source
-    /// Equation: FHWA-NHI-10-009 (HEC-22, 3rd ed., 2009), section 8.6, whose storage-indicator method takes equal steps. Scheme:
-    /// Bogacki and Shampine, "A 3(2) pair of Runge-Kutta formulas" (1989), from memory.
+    /// Equation: FHWA-NHI-10-009 (HEC-22, 3rd ed., 2009), section 8.6, whose storage-indicator method takes equal steps.
+    /// Scheme: Bogacki and Shampine, "A 3(2) pair of Runge-Kutta formulas" (1989), from memory.
     pub fn route(
         &self,
         from: Moment,
@@ -169,8 +169,8 @@ mod tests {
             - 2.0 / root3 * (((2.0 * u + 1.0) / root3).atan() - std::f64::consts::PI / 6.0)
     }
 
-    /// Q = 0.02 m3/s, C b = 1.705 x 0.6, A = 500 m2: heq = 0.07257 m; 0.011685, 0.031557, 0.051372 and 0.067489 m after 300, 900,
-    /// 1800 and 3600 s, and 0.9 heq after 3160.0 s. Closed form by hand; its own values 0.26357 to 3.29215.
+    /// Q = 0.02 m3/s, C b = 1.705 x 0.6, A = 500 m2: heq = 0.07257 m; 0.011685, 0.031557, 0.051372 and 0.067489 m after 300,
+    /// 900, 1800 and 3600 s, and 0.9 heq after 3160.0 s. Closed form by hand; its own values 0.26357 to 3.29215.
     #[test]
     fn filling_over_a_weir_follows_the_closed_form() {
         let pond = pond(0.02, weir);
@@ -252,7 +252,8 @@ mod tests {
         above.map_or(rows[rows.len() - 1].1, ends)
     }
 
-    /// A detention basin under a design storm, routed by hand with the storage-indicator method at 0.057 h: peak outflow printed
+    /// A detention basin under a design storm, routed by hand with the storage-indicator method at 0.057 h: peak outflow
+    /// printed
     /// 0.52 m3/s at stage 11.46 m, with 794 m3; the tables give 0.518 at 11.454 m and 787 m3. Source: FHWA-NHI-10-009 (HEC-22,
     /// 3rd ed., 2009), Example 8-9.
     #[test]

@@ -102,7 +102,8 @@ pub(super) fn read_all(project: &Section<'_>, setting: &Setting<'_>, assumed: &m
             None => Given::default(),
         })
         .collect();
-    if tables.iter().flatten().any(|table| table.get("count").is_none()) {
+    let counts_alone = |table: &Section<'_>| table.get("count").is_none() && table.get("existing").is_none();
+    if tables.iter().flatten().any(counts_alone) {
         blocked_under_count(project, setting, setting.search.count.as_ref(), setting.search.count_at.as_ref(), None);
     }
     let all_named = !tables.is_empty() && tables.iter().all(|table| is_named(table.as_ref()));
@@ -271,7 +272,8 @@ fn read_area<'a>(section: &Section<'a>, setting: &Setting<'_>, names: &mut Names
     );
     let roof_at_wall_assumed = section.get("roof_at_wall").is_none() && !sloped;
     let receives = read_receives(section, taken, &called).unwrap_or_default();
-    if let Some(cell) = section.get("count") {
+    // Of what is there already more may stand than the greatest count.
+    if let Some(cell) = section.get("count").filter(|_| section.get("existing").is_none()) {
         blocked_under_count(section, setting, count.as_ref(), Some(&cell.span()), Some(&called));
     }
     if let (Some(kinds), Some(None), true) = (&kinds, &set_heights, setting.searched)

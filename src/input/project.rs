@@ -515,8 +515,8 @@ fn read_case(section: &Section<'_>, book: Option<&Rulebook>, names: &mut Names) 
     })
 }
 
-/// Refuses to rank by cost, or to weigh openings against strength, where a device that may stand somewhere has no price. Of each area, the kinds that may stand in
-/// it are given, an inner none for any.
+/// Refuses to rank by cost, or to weigh openings against strength, where a device that may stand somewhere has no price. Of
+/// each area, the kinds that may stand in it are given, an inner none for any.
 fn prices(section: &Section<'_>, search: &Search, kinds: &[Option<Vec<Kind>>], catalogs: &Catalogs) {
     let reader = section.reader;
     let by_cost = search.rank_by.as_ref().is_some_and(|rank_by| rank_by.contains(&Criterion::Cost));

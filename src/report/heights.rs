@@ -1,4 +1,5 @@
-//! Where sills stand, above everything that an area gives a height for: its low point, the roof at the wall, the project's datum.
+//! Where sills stand, above everything that an area gives a height for: its low point, the roof at the wall, the project's
+//! datum.
 
 use crate::device::Place;
 use crate::roof::layout::Group;

@@ -333,12 +333,17 @@ fn plans<'a>(sized: &Sized<'a, '_>, asked: &Asked<'a, '_>) -> Vec<Plan<'a>> {
         let (sizes, layouts) = (Vec::new(), Vec::new());
         let by_sizes = by_sizes();
         let outcome = if found.finished { "infeasible" } else { "stopped" };
-        return vec![Plan { outcome, cost: None, bound: None, sizes, layouts, by_sizes, stiffened: None, front: None }];
+        let stiffened = asked.stiffened.map(|found| stiffened(sized, found));
+        return vec![Plan { outcome, cost: None, bound: None, sizes, layouts, by_sizes, stiffened, front: None }];
     }
     let plan = |(index, plan): (usize, &'a crate::search::Plan<'_>)| Plan {
         outcome: if found.finished { "optimal" } else { "stopped" },
         cost: Some(plan.cost.amount()),
-        bound: if found.finished { Some(plan.cost.amount()) } else { found.bound.map(amount) },
+        bound: if found.finished {
+            found.plans.first().map(|first| first.cost.amount())
+        } else {
+            found.bound.map(amount)
+        },
         sizes: plan.sizes.iter().map(|size| plan_size(size)).collect(),
         layouts: sized
             .answers

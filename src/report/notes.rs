@@ -17,7 +17,8 @@ use super::{cascade, rules, storm};
 
 /// Head under which surface tension, membrane edges and levels decide: 1 in. Common practice.
 const LOW_HEAD: Length = Length::inches(1.0);
-/// Set height under which an overflow runs in ordinary storms: 2 in, or 50 mm where metric. ASCE 7-22 and training notes of the UPC, from memory.
+/// Set height under which an overflow runs in ordinary storms: 2 in, or 50 mm where metric. ASCE 7-22 and training notes of the
+/// UPC, from memory.
 const LOW_SILL: Length = Length::mm(50.0);
 
 /// What a report tells of: its areas and every layout in it.
@@ -234,10 +235,15 @@ pub(super) fn assumptions(told: &Told<'_, '_>) -> Vec<String> {
         lines.extend(measure::assumptions(told.roof, told.plan, words));
     }
     if let Some(freeboard) = told.options.freeboard {
+        let lowest = if told.searched { ", looked for with every sill at the lowest of its set heights" } else { "" };
         lines.push(format!(
-            "At least {} is kept between the water and the top of every closed opening.",
+            "At least {} is kept between the water and the top of every closed opening{lowest}.",
             words.size(freeboard)
         ));
+    } else if told.searched && rules::ask_freeboard(told.roof) {
+        lines.push(
+            "Freeboard that a rule set asks for is looked for with every sill at the lowest of its set heights.".into(),
+        );
     }
     lines
 }

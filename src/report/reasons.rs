@@ -90,7 +90,11 @@ pub(super) fn infeasible(sized: &Sized<'_, '_>, area: usize, why: &Why<'_>, word
                 let case = &roof.cases[least(layout)].name;
                 format!(": the best keeps {} in \"{case}\" with {}", words.depth(*kept), words.layout(layout))
             });
-            format!("Layouts hold {name} under its limits, but none with {} of freeboard{reached}.", words.size(*asked))
+            format!(
+                "Layouts hold {name} under its limits, but none with {} of freeboard while every sill is at the lowest of its set \
+                 heights{reached}. One opening lifted beside others that carry the water may keep it: `check` tells.",
+                words.size(*asked)
+            )
         }
         Why::Stopped => format!("Everything was tried for {name}, but the search for the reason was ended."),
     }

@@ -14,7 +14,7 @@ pub(super) use document::over as over_in_document;
 pub(super) use document::{
     NamedRule, OfAmount, OfRule, OfSet, Over, named_rule, of_bound, of_layout_in_document, of_sets,
 };
-pub(super) use over::{besides, cautions, credits, drains_in_title, is_own_case, over};
+pub(super) use over::{ask_freeboard, besides, cautions, credits, drains_in_title, is_own_case, over};
 pub(super) use verdicts::blocks;
 
 /// From this length on, lengths are told in feet or metres.

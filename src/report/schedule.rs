@@ -1,5 +1,5 @@
-//! The ranked layouts as a schedule: CSV, one row for each group of each layout, in the units of the project: what is added, what is
-//! there and stays, what is closed. A layout in widths made to measure follows the one of the grid, with its rank.
+//! The ranked layouts as a schedule: CSV, one row for each group of each layout, in the units of the project: what is added,
+//! what is there and stays, what is closed. A layout in widths made to measure follows the one of the grid, with its rank.
 
 use crate::device::Kind;
 use crate::search::{Answer, Measured, Outcome, Placed, Ranked};

@@ -1,8 +1,8 @@
 //! Backwards from a given layout: the one value at which it just holds every case, all else as given.
 //!
 //! What holds is what the search asks: the layout carries the demand at the highest level allowed, in every case, with the
-//! freeboard asked for. Less rain, less roof, lower sills, wider openings, more devices and less blocking can only help, so each
-//! unknown has one value that parts what holds from what does not; it is found on the same model to the last bit, and both
+//! freeboard asked for. Less rain, less roof, lower sills, wider openings, more devices and less blocking can only help, so
+//! each unknown has one value that parts what holds from what does not; it is found on the same model to the last bit, and both
 //! sides of it are looked at. Whether the layout can be built so (the edge, the parapet, the roof at the wall) is not asked
 //! here.
 
@@ -194,8 +194,8 @@ impl Back<'_> {
         Some(passes)
     }
 
-    /// By how much the limits of the area may be moved: by the case that is nearest to its limit, or farthest over. The depth that a
-    /// rule set caps stays.
+    /// By how much the limits of the area may be moved: by the case that is nearest to its limit, or farthest over. The depth
+    /// that a rule set caps stays.
     fn limit(&self, roof: &Roof, area: usize) -> Solved {
         let own = &roof.areas[area].limits;
         let waters: Option<Vec<_>> =

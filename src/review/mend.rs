@@ -2,9 +2,9 @@
 //!
 //! Four kinds of change are looked at, each by itself: openings of one size added, the openings of one group replaced by
 //! larger ones of its kind where they stand, the sills of one group lowered, one group replaced by openings of another size. A
-//! change must fit as a layout must: the kinds, the edge and its gaps, the parapet, the roof at the wall, binding rules. Whatever is told was
-//! held against the model as every given layout is ([`super::check`]). A layout that has as many groups as any may have is not
-//! added to.
+//! change must fit as a layout must: the kinds, the edge and its gaps, the parapet, the roof at the wall, binding rules.
+//! Whatever is told was held against the model as every given layout is ([`super::check`]). A layout that has as many groups as
+//! any may have is not added to.
 //!
 //! # What is left out, and why it may be
 //!
@@ -13,7 +13,8 @@
 //! 1. *Counts.* At the level that a case allows, the capacity is the sum of what single devices carry less the blocked ones,
 //!    that is of the n - k weakest. One device more never lowers that sum, and takes no less edge. So the counts that hold
 //!    are all from a least one on, found by halving, and only that one is cheapest.
-//! 2. *Set heights.* A lower sill carries no less at a level, and no cost depends on it: of the heights at which a size fits the
+//! 2. *Set heights.* A lower sill carries no less at a level, and no cost depends on it: of the heights at which a size fits
+//! the
 //!    lowest is enough. Where freeboard is asked, a lower opening has a lower top, which may lower the level for all: then
 //!    all heights are tried.
 //! 3. *Sills.* Without freeboard the heights of a group's sills that hold a case end once, at a root. With freeboard they are
@@ -95,8 +96,8 @@ impl Change {
     pub const NAMES: [&'static str; 4] = ["add", "widen", "lower", "replace"];
 }
 
-/// What mends each of the layouts, in their order: the best change of each kind that has one, the cheapest first; nothing of one
-/// that passes. `replace` is what closing or removing one opening costs in each area.
+/// What mends each of the layouts, in their order: the best change of each kind that has one, the cheapest first; nothing of
+/// one that passes. `replace` is what closing or removing one opening costs in each area.
 ///
 /// The areas must have set heights wherever a size without its own may stand.
 pub fn mends(roof: &Roof, options: &Options, replace: &[Money], layouts: &[Checked<'_>]) -> Vec<Vec<Mend>> {

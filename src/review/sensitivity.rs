@@ -1,8 +1,8 @@
 //! How much a given layout's load hangs on each input: a stated step of one input at a time, and all of them at once.
 //!
-//! In every input the model is monotone: more rain, more roof, narrower openings, higher sills, less discharge and more blocking
-//! never lower the water. So the worst of all combinations of tolerances is their corner, every one at its bad end, and the step at
-//! which a limit breaks is the one place where what holds ends.
+//! In every input the model is monotone: more rain, more roof, narrower openings, higher sills, less discharge and more
+//! blocking never lower the water. So the worst of all combinations of tolerances is their corner, every one at its bad end,
+//! and the step at which a limit breaks is the one place where what holds ends.
 
 use crate::device::{Law, Size};
 use crate::roof::layout::{self, Asked, Group, least_spare};

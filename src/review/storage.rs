@@ -1,7 +1,7 @@
 //! A storm through the storage of a roof, as a second opinion: no code gives credit for it, and no verdict heeds it.
 //!
-//! The storm of a case is one block: for its duration the whole demand of the case runs in, what other areas send arriving at once.
-//! Water stands level, as a wedge on an even slope and else on a level roof; the room that a sagging roof makes is not
+//! The storm of a case is one block: for its duration the whole demand of the case runs in, what other areas send arriving at
+//! once. Water stands level, as a wedge on an even slope and else on a level roof; the room that a sagging roof makes is not
 //! counted, nor the primary drains. Water runs in until it stands at the lowest sill that passes any; from there the layout's
 //! capacity is followed to the end of the storm, and then down to where hardly any head is left.
 
@@ -182,8 +182,8 @@ mod tests {
         assert_relative_eq!(routed.fills.unwrap().s(), 180.0, max_relative = 1e-9);
     }
 
-    /// The level rises over the sill as the closed form of a weir in a pond with vertical sides says, and a storm without end comes
-    /// to the steady level.
+    /// The level rises over the sill as the closed form of a weir in a pond with vertical sides says, and a storm without end
+    /// comes to the steady level.
     #[test]
     fn the_peak_follows_the_closed_form_and_comes_to_the_steady_level() {
         let area = catchment(400.0, None);

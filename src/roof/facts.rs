@@ -173,7 +173,8 @@ mod tests {
     }
 
     /// One wall 50 %, two at a corner 35 % of the sum, two of one height facing each other nothing, else half of the part
-    /// above the lower. Source: the uniform plumbing code family; 50 and 35 % as quoted in a training note, the rest from memory.
+    /// above the lower. Source: the uniform plumbing code family; 50 and 35 % as quoted in a training note, the rest from
+    /// memory.
     #[test]
     fn walls_by_corner() {
         let rule = WallRule::ByCorner;

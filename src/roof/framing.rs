@@ -161,8 +161,8 @@ mod tests {
         assert_relative_eq!(bay.deck_needed().to_in4_per_ft(), 0.015_625, max_relative = 1e-9);
     }
 
-    /// Exact constants of the flexibilities: 31.81 / 10^7 in ft and in4, 503.5 in m and mm4 with E = 200,000 N/mm2; both prints are
-    /// rounded. Source: unit weight / (pi^4 E).
+    /// Exact constants of the flexibilities: 31.81 / 10^7 in ft and in4, 503.5 in m and mm4 with E = 200,000 N/mm2; both prints
+    /// are rounded. Source: unit weight / (pi^4 E).
     #[test]
     fn the_printed_constant_is_the_exact_one_rounded_up() {
         let exact = PASCALS_PER_METRE / (PI * PI * PI * PI * STEEL);

@@ -84,8 +84,8 @@ mod tests {
         assert_eq!(rise.extent(Length::inches(9.0)), rise.distance);
     }
 
-    /// 100 m2 that rise 0.2 m to the wall: 0.1 m of level holds 100 x 0.1^2 / 0.4 = 2.5 m3, 0.3 m holds 100 x (0.3 - 0.1) = 20 m3.
-    /// By hand.
+    /// 100 m2 that rise 0.2 m to the wall: 0.1 m of level holds 100 x 0.1^2 / 0.4 = 2.5 m3, 0.3 m holds 100 x (0.3 - 0.1) = 20
+    /// m3. By hand.
     #[test]
     fn a_wedge_holds_less_than_a_level_roof() {
         let rise = Rise { slope: 0.02, distance: Length::from_m(10.0) };

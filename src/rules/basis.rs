@@ -9,9 +9,9 @@
 //! # Which rain
 //!
 //! Of the storms of a set the first that can be found counts: one of a fixed intensity; else one that stands in the rainfall
-//! table; else one of the project whose duration and return period are stated the same. A storm that has a duration and no return
-//! period is looked up at that of the project's. Where none can be found the design rain of the project stands in, and verdicts
-//! that go by it say that they cannot tell.
+//! table; else one of the project whose duration and return period are stated the same. A storm that has a duration and no
+//! return period is looked up at that of the project's. Where none can be found the design rain of the project stands in, and
+//! verdicts that go by it say that they cannot tell.
 
 use crate::roof::{AreaBasis, Basis, Case, Catchment, Reading, Risk, Roof, StandsIn, Storm, Wall, WallRule, demand};
 use crate::units::{Area, Flow, Intensity, Length, ReturnPeriod, Time};
@@ -181,7 +181,8 @@ fn walls(set: &RuleSet, area: &Catchment) -> Area {
     rule.map_or_else(by_project, |rule| counted_walls(rule, area))
 }
 
-/// The walls of an area by a rule; where only their sum is known, as one wall: no rule counts that as less than as much in several.
+/// The walls of an area by a rule; where only their sum is known, as one wall: no rule counts that as less than as much in
+/// several.
 pub(super) fn counted_walls(rule: &Rule, area: &Catchment) -> Area {
     let word = rule.word("count");
     let how = WallRule::NAMED.iter().find(|(name, _)| Some(*name) == word).map_or(WallRule::None, |&(_, how)| how);

@@ -4,8 +4,8 @@
 //!
 //! Of two rules of one kind that count the same way, that whose number keeps the other's. A count that grows with the area asks
 //! at least as much as another of an area of any size where its number is no less, its first part no greater and each further
-//! part no greater; where one of the three is the other way round, which asks more hangs on the area, and they are not compared.
-//! Nor are rules with other terms beside their number.
+//! part no greater; where one of the three is the other way round, which asks more hangs on the area, and they are not
+//! compared. Nor are rules with other terms beside their number.
 //!
 //! # What cannot be kept together
 //!
@@ -139,8 +139,9 @@ mod tests {
         count
     }
 
-    /// Where one count is said to ask as much as another, it asks no fewer of an area of any size; and of two that grow by parts in
-    /// the ratio of whole numbers, where it is said not to and the two differ only in one number, there is a size where it asks fewer.
+    /// Where one count is said to ask as much as another, it asks no fewer of an area of any size; and of two that grow by
+    /// parts in the ratio of whole numbers, where it is said not to and the two differ only in one number, there is a size
+    /// where it asks fewer.
     #[test]
     fn a_count_asks_as_much_as_another_of_any_area() {
         let counts: Vec<(u32, Option<f64>, Option<f64>)> = [1, 2, 3]
@@ -170,8 +171,8 @@ mod tests {
         assert!(compared > 100, "{compared}");
     }
 
-    /// Datums against one another, each as high as it may be over the low point: 0 or 3 in for each of the others, water at or over
-    /// its drain. One is never under another just where that holds in all.
+    /// Datums against one another, each as high as it may be over the low point: 0 or 3 in for each of the others, water at or
+    /// over its drain. One is never under another just where that holds in all.
     #[test]
     fn datums_by_every_way_they_can_lie() {
         let mut never: Vec<(&str, &str)> = Vec::new();

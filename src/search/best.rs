@@ -30,8 +30,8 @@ pub(super) struct Found {
 #[derive(Debug)]
 struct Levels {
     /// Greatest depth of all cases, along a channel the deepest, in whole nanometres; the greatest number where the layout is
-    /// overwhelmed. Load follows it: the ponding head is one, or rises with it. Layouts that differ by the last bits of a solved level are
-    /// equal, and what they cost decides.
+    /// overwhelmed. Load follows it: the ponding head is one, or rises with it. Layouts that differ by the last bits of a
+    /// solved level are equal, and what they cost decides.
     worst: i64,
     /// Governing utilisation of all cases in whole billionths; the greatest number where the layout is overwhelmed.
     utilisation: i64,

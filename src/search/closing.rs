@@ -8,20 +8,20 @@
 //!
 //! # One list of many
 //!
-//! Where families are folded, a family is what is added, however much is closed. Each way is asked for its best layouts, as many
-//! as are kept and folded as the whole list is. A layout of the whole list is the best of its family in every way, and fewer than
-//! are kept stand before it in its own: so it is among them. A family whose best a way has dropped has, in that way, as many
-//! families before it as are kept; each of these stands in the list no lower than there. So the lists put together, sorted, each
-//! family taken once and cut to length, are the list.
+//! Where families are folded, a family is what is added, however much is closed. Each way is asked for its best layouts, as
+//! many as are kept and folded as the whole list is. A layout of the whole list is the best of its family in every way, and
+//! fewer than are kept stand before it in its own: so it is among them. A family whose best a way has dropped has, in that way,
+//! as many families before it as are kept; each of these stands in the list no lower than there. So the lists put together,
+//! sorted, each family taken once and cut to length, are the list.
 //!
 //! A way in which something stays that breaks a binding rule has no layout.
 //!
 //! # What is left out, and why it may be
 //!
-//! In one way the price of closing is one number. Where cost, count or width ranks first, a layout with more of it than the last of
-//! a full list cannot rank: a way is searched under that ceiling, less what its closing costs. Ways are tried the fewest closed
-//! first, so that the price of closing never falls: once it alone is above the ceiling, no further way can rank. Nothing else is left
-//! out; closing more may make room on the edge, in the count and under the tops of openings.
+//! In one way the price of closing is one number. Where cost, count or width ranks first, a layout with more of it than the
+//! last of a full list cannot rank: a way is searched under that ceiling, less what its closing costs. Ways are tried the
+//! fewest closed first, so that the price of closing never falls: once it alone is above the ceiling, no further way can rank.
+//! Nothing else is left out; closing more may make room on the edge, in the count and under the tops of openings.
 
 use std::borrow::Cow;
 use std::cmp::Ordering;

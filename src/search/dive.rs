@@ -23,12 +23,13 @@
 //! Totals found before such a change are too great by then, never too small, so every bound above stays one.
 //!
 //! 5. *Sizes outdone.* A size is not tried where another of the same tag is cheaper, carries at least as much in every case,
-//!    takes no more edge, stands at the edge or not alike where a rule asks for a least number there, and cost ranks first: put in its place, device for device, it makes a cheaper layout of the same
-//!    family that holds as well. Where one layout alone is kept, the other may be of any tag. (What holds to the last bit of
-//!    a sum alone is not told apart here from what does not: the flows of both may be added in another order.)
+//!    takes no more edge, stands at the edge or not alike where a rule asks for a least number there, and cost ranks first: put
+//!    in its place, device for device, it makes a cheaper layout of the same family that holds as well. Where one layout alone
+//!    is kept, the other may be of any tag. (What holds to the last bit of a sum alone is not told apart here from what does
+//!    not: the flows of both may be added in another order.)
 //!
-//! Nothing else is left out. Where devices are there already, adding nothing is tried first. Layouts of one group are tried first, then of two, then of three: good layouts early make the
-//! bounds tight.
+//! Nothing else is left out. Where devices are there already, adding nothing is tried first. Layouts of one group are tried
+//! first, then of two, then of three: good layouts early make the bounds tight.
 
 use crate::roof::{MOST_GROUPS, Situation};
 use crate::units::{Length, Money};

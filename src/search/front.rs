@@ -42,7 +42,8 @@ pub use roofwide::{PlanFront, UnbeatenPlan, plan_front};
 /// A layout that no other beats in all of cost, load, count and width.
 #[derive(Clone, Debug)]
 pub struct Unbeaten<'r> {
-    /// Its groups at their lowest set heights, in catalog order; what is there already stands beside them and counts for nothing.
+    /// Its groups at their lowest set heights, in catalog order; what is there already stands beside them and counts for
+    /// nothing.
     pub groups: Vec<Group<'r>>,
     /// Its cost; none where a device that may stand in the area has no price.
     pub cost: Option<Money>,

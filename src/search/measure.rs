@@ -5,8 +5,8 @@
 //!
 //! First the unrounded widths of least price are found (`unrounded`), by argmin. They say what rounding costs, and where to
 //! look where more widths may be drawn than can all be tried. Then the best of the widths that may be drawn is found
-//! (`stairs`), which are whole steps of the rounding and both ends of a range. As long as there are no more than two thousand in
-//! a range (of three groups five hundred), all of them are in the game, and the outcome is exact: no other widths that may
+//! (`stairs`), which are whole steps of the rounding and both ends of a range. As long as there are no more than two thousand
+//! in a range (of three groups five hundred), all of them are in the game, and the outcome is exact: no other widths that may
 //! be drawn are better. Beyond that a window around the unrounded ones is searched, and last a step is taken off each width in
 //! turn for as long as all cases hold.
 //!

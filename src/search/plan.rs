@@ -61,8 +61,8 @@ pub struct Plan<'r> {
 pub struct Plans<'r> {
     /// The best plans, which differ in their sets of sizes; empty where no set serves every area.
     pub plans: Vec<Plan<'r>>,
-    /// Least cost with at most so many sizes, as far as that is proven, none where so few cannot serve every area; empty where sizes are neither limited
-    /// nor priced, as each area then has its own.
+    /// Least cost with at most so many sizes, as far as that is proven, none where so few cannot serve every area; empty where
+    /// sizes are neither limited nor priced, as each area then has its own.
     pub by_sizes: Vec<(u32, Option<Money>)>,
     /// Sum of what each area's cheapest layout costs by itself, whatever its sizes, without the price of sizes.
     pub alone: Option<Money>,

@@ -113,6 +113,12 @@ pub(in crate::report) fn credits(roof: &Roof) -> bool {
     !crediting(roof).is_empty()
 }
 
+/// Whether a case asks for freeboard by a rule set.
+pub(in crate::report) fn ask_freeboard(roof: &Roof) -> bool {
+    let asks = |basis: usize| roof.bases[basis].areas.iter().any(|area| area.freeboard.is_some());
+    roof.cases.iter().filter_map(|case| case.basis).any(asks)
+}
+
 /// What is assumed of the primary drains, behind the title of a report.
 pub(in crate::report) fn drains_in_title(roof: &Roof) -> &'static str {
     if credits(roof) { "primary drains credited where a rule set says so" } else { "primary drains blocked" }

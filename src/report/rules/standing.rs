@@ -35,7 +35,8 @@ pub(super) fn under(roof: &Roof, area: usize, set: usize, layout: &Ranked<'_>) -
     }
 }
 
-/// The set under which the most of the limits is used, the first of equals, among those whose demand is known; none where none is.
+/// The set under which the most of the limits is used, the first of equals, among those whose demand is known; none where none
+/// is.
 pub(super) fn governing(stands: &[Stands]) -> Option<usize> {
     let used = |set: usize| match (stands[set].depth, stands[set].utilisation) {
         (None, _) => f64::INFINITY,

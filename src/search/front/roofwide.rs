@@ -11,8 +11,8 @@
 //! each area's front are combined, and of the plans of some areas only those that are not beaten: whatever the other areas
 //! add, they add to both.
 //!
-//! No plan has less load than the greatest, over the areas, of the least load that an area can have. Loads under that are raised to
-//! it before areas are combined: no plan's load changes, and of an area with load to spare few layouts are left.
+//! No plan has less load than the greatest, over the areas, of the least load that an area can have. Loads under that are
+//! raised to it before areas are combined: no plan's load changes, and of an area with load to spare few layouts are left.
 
 use rayon::prelude::*;
 
@@ -44,8 +44,8 @@ pub struct UnbeatenPlan<'r> {
     pub width: Length,
     /// The sizes it uses, in catalog order.
     pub sizes: Vec<&'r Size>,
-    /// The layout of each area at its lowest set heights, in the order in which the areas were given; of an area with devices that
-    /// are there already, what is added.
+    /// The layout of each area at its lowest set heights, in the order in which the areas were given; of an area with devices
+    /// that are there already, what is added.
     pub layouts: Vec<Vec<Group<'r>>>,
 }
 

@@ -3,7 +3,8 @@
 /// Points met in the order of their first sum, asked for the least load of those that are no greater in the other two.
 ///
 /// For every count a staircase holds the points that are not beaten in the last sum and the load: the last sum rises, the
-/// load falls. A staircase serves a stretch of counts, as in a binary indexed tree (which counts from one), so that a question looks at a few.
+/// load falls. A staircase serves a stretch of counts, as in a binary indexed tree (which counts from one), so that a question
+/// looks at a few.
 pub(super) struct Sieve {
     staircases: Vec<Vec<Step>>,
 }

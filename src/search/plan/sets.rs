@@ -1,8 +1,8 @@
 //! The cheapest sets of sizes: of K sizes at most P, every area served by the cheapest layout that its set allows.
 //!
-//! Write d(a, i, j) for the cost of the cheapest layout of area a that is made of sizes i and j alone, i = j for one size; it is
-//! never more than d(a, i, i) or d(a, j, j). A set S costs f(S) = sum over a of min over i, j in S of d(a, i, j), and a price
-//! for each of its sizes.
+//! Write d(a, i, j) for the cost of the cheapest layout of area a that is made of sizes i and j alone, i = j for one size; it
+//! is never more than d(a, i, i) or d(a, j, j). A set S costs f(S) = sum over a of min over i, j in S of d(a, i, j), and a
+//! price for each of its sizes.
 //!
 //! # The bound
 //!
