@@ -252,6 +252,16 @@ impl OfProject {
         Ok((project, areas))
     }
 
+    /// Refuses flags whose results are no rows of a table, where the form is CSV.
+    fn has_rows_for(&self, flags: &[(bool, &str)]) -> Result<(), Failure> {
+        let lost: Vec<&str> = flags.iter().filter(|(given, _)| *given).map(|(_, flag)| *flag).collect();
+        if lost.is_empty() || !matches!(self.format, Form::Csv) {
+            return Ok(());
+        }
+        let what = format!("CSV has no rows for {}", lost.join(", "));
+        Err(Failure::said(&what, "take --format json, md or table, or leave it out"))
+    }
+
     /// Writes a report in the form asked for to where it is asked for.
     fn deliver(&self, report: impl FnOnce(Format, usize) -> String) -> Result<(), Failure> {
         let output = self.output.as_ref();

@@ -18,6 +18,7 @@ mod mend;
 mod sensitivity;
 mod storage;
 
+pub(crate) use backsolve::is_wide;
 pub use backsolve::{Solved, Unknown, WIDEST, backsolve};
 pub use mend::{Change, Mend, mends, worst_first};
 pub use sensitivity::{Effect, Input, Sensitivity, Tolerances, sensitivity};

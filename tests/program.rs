@@ -480,3 +480,33 @@ fn a_front_counts_what_is_added_and_shows_what_is_there() {
         assert_eq!(row["count"], count);
     }
 }
+
+/// The plan stands in the rows, at its own cost, which no row of the areas' own lists need have.
+#[test]
+fn the_plan_stands_in_csv_and_what_has_no_rows_is_refused() {
+    let text = stdout(&brimline(&["size", "examples/three-sizes.toml", "--format", "csv"]));
+    let plan = json("three-sizes", &[])["plan"].clone();
+    let mut rows = csv::Reader::from_reader(text.as_bytes());
+    let mut costs: Vec<(String, String)> = rows
+        .records()
+        .map(|row| row.expect("a row"))
+        .filter(|row| &row[1] == "plan")
+        .map(|row| (row[0].to_string(), row[3].to_string()))
+        .collect();
+    costs.dedup();
+    let wanted: Vec<(String, f64)> = plan["layouts"]
+        .as_array()
+        .expect("layouts")
+        .iter()
+        .map(|layout| (layout["area"].as_str().expect("a name").into(), layout["cost"].as_f64().expect("a cost")))
+        .collect();
+    let costs: Vec<(String, f64)> =
+        costs.into_iter().map(|(area, cost)| (area, cost.parse().expect("a number"))).collect();
+    assert_eq!(costs, wanted);
+    for (command, flag) in [("size", "--work"), ("size", "--binds"), ("check", "--sensitivity"), ("check", "--storage")]
+    {
+        let output = brimline(&[command, "examples/drawing-review.toml", flag, "--format", "csv"]);
+        assert_eq!(output.status.code(), Some(2), "{command} {flag}");
+        assert!(String::from_utf8_lossy(&output.stderr).contains(flag), "{command} {flag}");
+    }
+}

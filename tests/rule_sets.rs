@@ -238,7 +238,7 @@ fn numbers_are_as_published() {
 ///
 /// - ASCE 7-16 8.2, seen; 7-22 Table 8.2-1, from memory.
 /// - IBC 2009 and up to 2018, seen and quoted: the hourly rate. IBC 2021 1611.1, seen in one state's edition: 15 min, or twice
-/// the hourly.
+///   the hourly.
 /// - IPC 1106.1, quoted. UPC: rate of the primary drains quoted, 60 min from memory.
 /// - FM 1-54 of older editions, as the load standard's commentary of 2005 quotes it.
 /// - DIN r(5,100), quoted. NCC 2019 3.5.3.2, seen: 5 min, 100 years.

@@ -123,7 +123,7 @@ fn the_design_rain_and_a_further_storm_are_read_as_by_hand() {
          climate.",
         "- cloudburst: 7.661 in/h (for 12 min, once in 100 years): 6.964 in/h, read in rain.csv between 10 and 15 min, times \
          1.1 for climate; 1.137 times the rain above",
-        "Limit: load 36 psf, water up to 6.92 in; in \"one blocked\": load 42 psf, water up to 8.07 in.",
+        "Limit: load 36 psf, water up to 6.92 in; in \"one blocked\": load 42 psf, water up to 8.08 in.",
     ] {
         assert!(text.contains(told), "{text}\nlacks: {told}");
     }

@@ -42,6 +42,11 @@ pub(super) struct Args {
 }
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
+    args.of.has_rows_for(&[
+        (args.beside_best, "--beside-best"),
+        (args.sensitivity, "--sensitivity"),
+        (args.storage, "--storage"),
+    ])?;
     let (project, areas) = args.of.read()?;
     let given = args.given.of(&project, &areas)?;
     let best = if args.beside_best {

@@ -52,6 +52,7 @@ fn strengthened(found: &Result<Option<Stiffened>, Stopped>) -> Weighed<'_> {
 }
 
 pub(super) fn run(args: &Args) -> Result<ExitCode, Failure> {
+    args.of.has_rows_for(&[(args.work, "--work"), (args.laws, "--laws"), (args.binds, "--binds")])?;
     let (project, areas) = args.of.read()?;
     super::without_set_height(&project.roof, &areas).map_or(Ok(()), Err)?;
     if args.front {

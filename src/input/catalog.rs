@@ -193,9 +193,10 @@ impl Catalogs {
 /// A catalog by itself.
 pub(super) fn read_alone(path: &Path, log: &Log) -> Option<Catalog> {
     let as_written = path.display().to_string();
-    let source = file::read(path, &as_written, None, log)?;
+    let path = file::beside(Path::new(""), &as_written);
+    let source = file::read(&path, &as_written, None, log)?;
     let mut into = Catalogs::empty(System::Us);
-    let title = read_source(path, &as_written, &source, log, &mut into).0;
+    let title = read_source(&path, &as_written, &source, log, &mut into).0;
     into.measure(false, defaults::round(System::Us));
     Some(Catalog { title: title.unwrap_or(as_written), sizes: into.sizes })
 }

@@ -4,7 +4,8 @@
 
 use serde::Serialize;
 
-use crate::review::{Checked, Solved, WIDEST};
+use crate::device::Device;
+use crate::review::{self, Checked, Solved, WIDEST};
 use crate::roof::{Recurrence, Roof};
 use crate::search::Options;
 use crate::units::{Area, Intensity, Length, Load, ReturnPeriod};
@@ -139,17 +140,14 @@ fn lines(roof: &Roof, checked: &Checked<'_>, solved: &Solved, words: Words) -> V
         }
         Solved::Width(None) => vec![line("width", "-".into(), "no opening has a width to change".into(), "-".into())],
         Solved::Width(Some(change)) => {
-            let now: Vec<_> = given
-                .groups
-                .iter()
-                .filter_map(|group| group.size.device.width())
-                .map(|width| words.size(width))
-                .collect();
+            // A pipe has a diameter: it stays as it is.
+            let devices = given.groups.iter().map(|group| &group.size.device);
+            let widths = || devices.clone().filter(|device| review::is_wide(device)).filter_map(Device::width);
+            let now: Vec<_> = widths().map(|width| words.size(width)).collect();
             let holds = change.map_or_else(
                 || format!("no width up to {} more holds", words.long(WIDEST)),
                 |change| {
-                    let at = given.groups.iter().filter_map(|group| group.size.device.width());
-                    let at = at.map(|width| format!("{} {}", words.depth_up(width + change), words.small_unit()));
+                    let at = widths().map(|width| format!("{} {}", words.depth_up(width + change), words.small_unit()));
                     format!("at least {}", alike(at.collect()))
                 },
             );

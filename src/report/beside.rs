@@ -66,7 +66,15 @@ pub(super) fn thick_walls(roof: &Roof, area: usize, layouts: &[Named<'_, '_>], w
 /// The level under another law, beside what is allowed where it passes that.
 fn under_in_words(roof: &Roof, area: usize, under: &UnderLaw, words: Words) -> String {
     let Some(water) = under.water else { return "without end: overwhelmed".into() };
-    let level = words.depth(water.level);
+    let mut level = words.depth(water.level);
+    let limit = words.depth(roof.situation(area, under.case).allowable_level());
+    if water.governing.utilisation > 1.0 && level == limit {
+        // Over it by less than the last figure: never told to be at it.
+        level = format!("{} {}", words.depth_up(water.level), words.small_unit());
+        if level == limit {
+            level = format!("a little over {limit}");
+        }
+    }
     let breaks = |case: usize| {
         let allowed = roof.situation(area, case).allowable_level();
         if case == under.case {

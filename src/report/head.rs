@@ -60,7 +60,10 @@ fn case_in_words(case: &Case, roof: &Roof, words: Words) -> String {
         parts.push(format!("every sill stands {} higher", words.size(case.sill_error)));
     }
     if case.opening_loss > Length::ZERO {
-        parts.push(format!("{} is lost on each side of every scupper", words.size(case.opening_loss)));
+        parts.push(format!(
+            "{} is lost on each side of every scupper, and its sill rises by as much",
+            words.size(case.opening_loss)
+        ));
     }
     let changed = |factor: f64| (factor - 1.0).abs() > 1e-12;
     if changed(case.rain) {
@@ -115,12 +118,7 @@ fn limit_in_words(roof: &Roof, area: usize, words: Words) -> String {
         let level = crate::roof::Situation { limits, ..level };
         let allowed = level.allowable_level();
         if allowed > Length::ZERO {
-            return format!(
-                "{}, water up to {} {}",
-                words.limits(limits),
-                words.depth_down(allowed),
-                words.small_unit()
-            );
+            return format!("{}, water up to {}", words.limits(limits), words.depth(allowed));
         }
         let free = level.reach(Length::ZERO).map_or(String::new(), |reach| {
             format!(": with a free outlet its channel already stands {} deep", words.depth(reach.deepest))

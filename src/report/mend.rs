@@ -144,7 +144,9 @@ pub(super) fn survey(checks: &Checks<'_, '_>, words: Words) -> Vec<Block> {
         (
             "cheapest mend".into(),
             false,
-            column(&|place| mends[place].first().map_or("none".into(), |mend| change(layout(place), mend, words))),
+            column(&|place| {
+                mends[place].first().map_or("none".into(), |mend| change(layout(place), mend, words) + &doubts(mend))
+            }),
         ),
         (
             "cost".into(),
@@ -190,7 +192,7 @@ pub(super) fn cells(checks: &Checks<'_, '_>, place: usize, words: Words) -> Vec<
     let first = mends[place].first();
     let cost = first.and_then(|mend| mend.cost);
     vec![
-        first.map_or(String::new(), |mend| change(&checks.checked[place], mend, words)),
+        first.map_or(String::new(), |mend| change(&checks.checked[place], mend, words) + &doubts(mend)),
         cost.map_or(String::new(), |cost| super::plain(cost.amount(), 2)),
     ]
 }
@@ -206,6 +208,9 @@ pub(super) struct OfMend<'a> {
     case: &'a str,
     utilisation: f64,
     load_pa: f64,
+    beyond_range: bool,
+    /// Laws of a thick wall under which it passes a limit.
+    breaks_under: Vec<&'static str>,
     groups: Vec<json::Group<'a>>,
 }
 
@@ -241,6 +246,8 @@ fn of_mend<'a>(checks: &Checks<'a, '_>, mend: &'a Mend) -> OfMend<'a> {
         case: &checks.roof.cases[mend.case].name,
         utilisation: mend.governing.utilisation,
         load_pa: mend.water.load.pa(),
+        beyond_range: mend.beyond,
+        breaks_under: mend.breaks_under.iter().map(|law| law.name()).collect(),
         groups: mend.given.groups.iter().zip(&mend.windows).map(placed).collect(),
     }
 }

@@ -2,7 +2,7 @@
 
 use crate::device::Size;
 use crate::search::{Criterion, Outcome, Plan, Plans, StiffenedArea};
-use crate::units::{Load, Money};
+use crate::units::Money;
 
 use super::page::{Block, Table};
 use super::words::{self, Words, list};
@@ -42,8 +42,10 @@ pub(super) fn blocks(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, words: Words,
 fn stronger(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, given: Option<&Plan<'_>>, words: Words) -> Vec<Block> {
     let (Some(stiffened), Some((structure, _))) = (asked.stiffened, sized.structure) else { return Vec::new() };
     let price = super::structure::price(structure, words);
-    if stiffened.areas.iter().all(|area| area.raise == Load::ZERO) {
-        return vec![Block::Text(format!("No raise of load limits makes the plan cheaper at {price}."))];
+    let steps = words.given_load(structure.plan_step(sized.roof.system));
+    if given.is_some_and(|given| stiffened.cost >= given.cost) {
+        let text = format!("No raise of load limits in whole steps of {steps} makes the plan cheaper at {price}.");
+        return vec![Block::Text(text)];
     }
     let against = given.map_or("the limits as given have no plan".into(), |given| {
         let less = Money::from_millionths(given.cost.millionths() - stiffened.cost.millionths());
@@ -56,7 +58,7 @@ fn stronger(sized: &Sized<'_, '_>, asked: &Asked<'_, '_>, given: Option<&Plan<'_
     };
     vec![
         Block::Text(format!(
-            "With load limits raised where that pays, at {price}, the cheapest plan costs {}, {} of it strength ({against}): {}.",
+            "With load limits raised where that pays, in whole steps of {steps} at {price}, the cheapest plan costs {}, {} of it strength ({against}): {}.",
             words::money(stiffened.cost),
             words::money(stiffened.strength),
             names(stiffened.sizes.iter(), words)
@@ -177,7 +179,7 @@ fn by_sizes(found: &Plans<'_>) -> Vec<Block> {
         Block::Table(Table::of(vec![
             ("sizes".into(), true, rows().map(|row| found.by_sizes[row].0.to_string()).collect()),
             ("cost".into(), true, rows().map(|row| cost(found.by_sizes[row].1)).collect()),
-            ("saved by one more".into(), true, rows().map(saved).collect()),
+            ("less than the row above".into(), true, rows().map(saved).collect()),
         ])),
     ]
 }

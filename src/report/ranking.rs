@@ -185,7 +185,11 @@ fn ranking(sized: &Sized<'_, '_>, area: usize, layouts: &[Ranked<'_>], words: Wo
                 String::new()
             };
             if !without {
-                constants.push(format!("{} {}{unit}", column.constant, column.cells[0]));
+                let cell = &column.cells[0];
+                constants.push(match cell.strip_suffix(" only") {
+                    Some(one) => format!("{} {one}{unit} only", column.constant),
+                    None => format!("{} {cell}{unit}", column.constant),
+                });
             }
         } else {
             kept.push((column.head, column.numbers, column.cells));

@@ -57,7 +57,23 @@ pub(super) fn rows(sized: &Sized<'_, '_>) -> String {
             rows.push(row);
         }
     }
+    rows.extend(plan(sized, head.len(), words));
     written(&rows)
+}
+
+/// The cheapest plan behind the lists of the areas: each area's layout in it, in rows of that outcome.
+fn plan(sized: &Sized<'_, '_>, columns: usize, words: Words) -> Vec<Vec<String>> {
+    let plan = sized.plans.and_then(|asked| asked.found).and_then(|found| found.plans.first());
+    let mut rows = Vec::new();
+    for (answer, layout) in sized.answers.iter().zip(plan.iter().flat_map(|plan| &plan.layouts)) {
+        for (place, placed) in layout.groups.iter().enumerate() {
+            let outcome = if place < layout.added().len() { "plan" } else { "existing" };
+            let mut row = row(sized, answer.area, outcome, 1, layout, placed, words);
+            row.resize(columns, String::new());
+            rows.push(row);
+        }
+    }
+    rows
 }
 
 /// Place of the column that says why there is no layout.

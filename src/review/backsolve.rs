@@ -259,7 +259,7 @@ pub(super) fn greatest(spare: impl Fn(f64) -> f64, low: f64, high: f64) -> Optio
 }
 
 /// Whether a device has a width that may be made otherwise: that of an opening, not of a tested body or a pipe.
-pub(super) fn is_wide(device: &Device) -> bool {
+pub(crate) fn is_wide(device: &Device) -> bool {
     matches!(device, Device::Open { .. } | Device::Closed { .. } | Device::Edge { .. })
 }
 

@@ -14,8 +14,7 @@
 //!    that is of the n - k weakest. One device more never lowers that sum, and takes no less edge. So the counts that hold
 //!    are all from a least one on, found by halving, and only that one is cheapest.
 //! 2. *Set heights.* A lower sill carries no less at a level, and no cost depends on it: of the heights at which a size fits
-//! the
-//!    lowest is enough. Where freeboard is asked, a lower opening has a lower top, which may lower the level for all: then
+//!    the lowest is enough. Where freeboard is asked, a lower opening has a lower top, which may lower the level for all: then
 //!    all heights are tried.
 //! 3. *Sills.* Without freeboard the heights of a group's sills that hold a case end once, at a root. With freeboard they are
 //!    one stretch in each case: under the height at which its tops bind, all others lose head with it and it gains none; over

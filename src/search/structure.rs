@@ -28,6 +28,11 @@ impl Structure {
         Money::nearest(self.stiffen.for_si(area.m2() * raise.pa()))
     }
 
+    /// The step by which a plan raises areas: its own, else 1 psf or 50 Pa.
+    pub fn plan_step(&self, system: System) -> Load {
+        self.step.unwrap_or(Raises::coarse(system))
+    }
+
     /// The raises of one area: those that come in steps, or all by the finest that a trade-off goes by.
     pub fn raises(&self, system: System) -> Raises {
         Raises::between(self.step.unwrap_or(Raises::fine(system)), Load::ZERO, self.most)

@@ -255,6 +255,11 @@ pub enum Fault {
         /// What stands there.
         found: String,
     },
+    /// An area with one point before three digits, which could be a decimal point or part thousands.
+    Point {
+        /// The number as typed.
+        found: String,
+    },
     /// A comma where it could be a decimal point or a separator of thousands.
     Comma {
         /// The number as typed.
@@ -311,6 +316,7 @@ impl fmt::Display for Fault {
             Self::NotANumber { found, .. } => write!(f, "`{found}` is not a number"),
             Self::NotFinite { found, .. } => write!(f, "`{found}` is not a finite number"),
             Self::TooGreat { found } => write!(f, "`{found}` is too great"),
+            Self::Point { found } => write!(f, "the point in `{found}` can be read in two ways"),
             Self::Comma { found, .. } => write!(f, "the comma in `{found}` can be read in two ways"),
             Self::Several { found } => write!(f, "`{found}` is not one decimal number with one unit"),
             Self::NoUnit { found, needs } => write!(f, "`{found}` has no unit; this is {}", needs.with_article()),
@@ -337,6 +343,9 @@ impl Fault {
             }
             Self::NoNumber { .. } | Self::NotANumber { .. } | Self::NotFinite { .. } => "write a bare number".into(),
             Self::TooGreat { .. } => "no roof needs so much: check the number and its unit".into(),
+            Self::Point { found } => {
+                format!("write {found}0 if it is a decimal point, {} if it parts thousands", found.replace('.', ""))
+            }
             Self::Comma { as_point, taken_out, .. } => format!(
                 "write {as_point} if the comma is a decimal point, {taken_out} if it parts thousands; \
                  a comma passes only before whole groups of three digits in a whole number"
@@ -404,6 +413,9 @@ fn number_and_unit(text: &str, needs: Option<Dimension>) -> Result<(f64, &str), 
         let found = text.to_string();
         return Err(if not_finite { Fault::NotFinite { found, needs } } else { Fault::NoNumber { found, needs } });
     }
+    if needs == Some(Dimension::Area) && parts_thousands(number) {
+        return Err(Fault::Point { found: number.to_string() });
+    }
     let plain = without_commas(number)?;
     let Ok(value) = plain.parse::<f64>() else {
         // "2-1/2 in" is a fraction that a hyphen joins to its whole number.
@@ -415,6 +427,14 @@ fn number_and_unit(text: &str, needs: Option<Dimension>) -> Result<(f64, &str), 
         });
     };
     if value.is_finite() { Ok((value, unit)) } else { Err(Fault::NotFinite { found: text.to_string(), needs }) }
+}
+
+/// Whether the one point of a number may part thousands: three digits behind it, one to three before it.
+fn parts_thousands(number: &str) -> bool {
+    let Some((before, behind)) = number.split_once('.') else { return false };
+    let all_digits = |part: &str| part.bytes().all(|b| b.is_ascii_digit());
+    let opens = (1..=3).contains(&before.len()) && all_digits(before) && !before.starts_with('0');
+    opens && behind.len() == 3 && all_digits(behind)
 }
 
 /// Takes commas out of a whole number from 1,000 whose groups behind the first are whole; refuses any other comma.
@@ -526,6 +546,17 @@ mod tests {
 
     fn length(text: &str) -> Result<f64, Fault> {
         Dimension::Length.read(text)
+    }
+
+    #[test]
+    fn a_point_that_may_part_thousands() {
+        let fault = Dimension::Area.read("14.000 ft2").unwrap_err();
+        assert_eq!(fault.to_string(), "the point in `14.000` can be read in two ways");
+        assert_eq!(fault.help(), "write 14.0000 if it is a decimal point, 14000 if it parts thousands");
+        for text in ["14.00 ft2", "14.0000 ft2", "0.125 ft2", "1400.125 ft2", "14,000 ft2"] {
+            assert!(Dimension::Area.read(text).is_ok(), "{text}");
+        }
+        assert!(length("2.125 in").is_ok(), "an eighth of an inch is no thousand");
     }
 
     #[test]

@@ -63,8 +63,7 @@ pub fn stiffened_plan(
     areas: &[usize],
 ) -> Option<StiffenedPlan> {
     assert!(options.mix <= 2, "a plan is of layouts with one or two groups");
-    let step = structure.step.unwrap_or(Raises::coarse(roof.system));
-    let raises = Raises::between(step, Load::ZERO, structure.most);
+    let raises = Raises::between(structure.plan_step(roof.system), Load::ZERO, structure.most);
     let raised: Vec<(Load, Roof)> = raises.each().map(|raise| (raise, raised_by(roof, raise))).collect();
     let fields: Vec<Field<'_>> = raised.par_iter().map(|(_, roof)| Field::new(roof, options, areas)).collect();
     if !fields.first()?.is_priced() {
