@@ -222,6 +222,15 @@ fn what_is_there_already_is_held_to_binding_rules() {
         "{said}"
     );
     assert!(said.contains("without \"opening-width\" at least 8 in (Town, 1)"), "{said}");
+    assert!(said.contains("with `replace` in the area some of it may be closed"), "{said}");
+    // What breaks the rule may be closed, and is.
+    let closed = format!("{there}\nreplace = 100");
+    let closed = Folder::new(STORM, "[\"Town.toml\"]", &closed, "").set("Town", &asks);
+    let layout = &closed.json("size")["areas"][0]["layouts"][0];
+    assert_eq!(
+        (&layout["closed"]["cost"], layout["closed"]["groups"][0]["count"].as_u64()),
+        (&Value::from(300.0), Some(3))
+    );
     let advice = Folder::new(STORM, "[{ file = \"Town.toml\", apply = \"advice\" }]", there, "").set("Town", &asks);
     assert_eq!(advice.verdict("size", "Town", "1").0, "fail");
 }

@@ -69,6 +69,11 @@ fn area(sized: &Sized<'_, '_>, answer: &Answer<'_>, words: Words, blocks: &mut V
             if let Some(opened) = sized.changes_of(answer.area) {
                 blocks.extend(cures::blocks(opened, &sized.options.rules, words));
             }
+            let catchment = &roof.areas[answer.area];
+            if !catchment.existing.is_empty() && catchment.replace.is_none() {
+                let text = "All that is there was kept: with `replace` in the area some of it may be closed.";
+                blocks.push(Block::Text(text.into()));
+            }
         }
         layouts => {
             ranking(sized, answer.area, layouts, words, blocks);
