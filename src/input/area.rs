@@ -50,12 +50,11 @@ pub(super) static AREA: Keys = Keys {
         "risk_category",
         "overflow_to",
     ],
-    unsupported: &[],
 };
 
-static PARAPET: Keys = Keys { table: "`parapet`", known: &["height", "thickness"], unsupported: &[] };
+static PARAPET: Keys = Keys { table: "`parapet`", known: &["height", "thickness"] };
 
-static RECEIPT: Keys = Keys { table: "an entry of `receives`", known: &["from", "share", "what"], unsupported: &[] };
+static RECEIPT: Keys = Keys { table: "an entry of `receives`", known: &["from", "share", "what"] };
 
 /// What one area receives, with the name of the other still to be found.
 struct GivenReceipt<'a> {

@@ -16,7 +16,7 @@ use super::rating::{self, Ratings};
 use super::section::{Cell, Keys, Reader, Section, optional};
 use super::{file, flow};
 
-static CATALOG: Keys = Keys { table: "a catalog", known: &["title", "note", "device"], unsupported: &[] };
+static CATALOG: Keys = Keys { table: "a catalog", known: &["title", "note", "device"] };
 
 static DEVICE: Keys = Keys {
     table: "a [[device]]",
@@ -41,11 +41,9 @@ static DEVICE: Keys = Keys {
         "source",
         "note",
     ],
-    unsupported: &[],
 };
 
-static PRICE: Keys =
-    Keys { table: "`price`", known: &["each", "per_width", "per_height", "per_area"], unsupported: &[] };
+static PRICE: Keys = Keys { table: "`price`", known: &["each", "per_width", "per_height", "per_area"] };
 
 /// Most that one device may cost: ten thousand of them are still an amount.
 const MOST_AMOUNT: f64 = 9e8;

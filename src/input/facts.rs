@@ -5,10 +5,9 @@ use crate::units::{Area, Dimension, Flow};
 
 use super::section::{Cell, Keys, Section, optional};
 
-static WALL: Keys = Keys { table: "an entry of `walls`", known: &["area", "side"], unsupported: &[] };
+static WALL: Keys = Keys { table: "an entry of `walls`", known: &["area", "side"] };
 
-static PRIMARY: Keys =
-    Keys { table: "`primary`", known: &["drain", "set_height", "flow", "depth", "shared_pipe"], unsupported: &[] };
+static PRIMARY: Keys = Keys { table: "`primary`", known: &["drain", "set_height", "flow", "depth", "shared_pipe"] };
 
 /// What an area says for its rules, its walls read already; `limits` hold in every case that says nothing else.
 pub(super) fn read(

@@ -8,18 +8,14 @@ use crate::roof::channel::Channel;
 use super::defaults::{CHANNEL_ROUGHNESS, CHANNEL_SLOPE};
 use super::section::{Cell, Keys, Section, optional};
 
-pub(super) static FLOW: Keys = Keys {
-    table: "[flow]",
-    known: &["scupper", "pipe", "drain", "edge", "transition", "roughness", "entrance_loss"],
-    unsupported: &[],
-};
+pub(super) static FLOW: Keys =
+    Keys { table: "[flow]", known: &["scupper", "pipe", "drain", "edge", "transition", "roughness", "entrance_loss"] };
 
-static LEADER: Keys = Keys { table: "`leader`", known: &["diameter", "fill", "serves"], unsupported: &[] };
+static LEADER: Keys = Keys { table: "`leader`", known: &["diameter", "fill", "serves"] };
 
-static CONDUCTOR_HEAD: Keys =
-    Keys { table: "`conductor_head`", known: &["outlet", "depth", "lip", "overflow_width"], unsupported: &[] };
+static CONDUCTOR_HEAD: Keys = Keys { table: "`conductor_head`", known: &["outlet", "depth", "lip", "overflow_width"] };
 
-static CHANNEL: Keys = Keys { table: "`channel`", known: &["width", "length", "slope", "roughness"], unsupported: &[] };
+static CHANNEL: Keys = Keys { table: "`channel`", known: &["width", "length", "slope", "roughness"] };
 
 const TRANSITIONS: [(&str, Transition); 3] =
     [("lesser-of", Transition::LesserOf), ("linear", Transition::Linear), ("table", Transition::Table)];

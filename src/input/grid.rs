@@ -12,7 +12,7 @@ use super::section::{Cell, Keys};
 /// Most values that one grid may have, and most sizes in all catalogs.
 pub(super) const MOST: usize = 1_000_000;
 
-static RANGE: Keys = Keys { table: "a range", known: &["from", "to", "step"], unsupported: &[] };
+static RANGE: Keys = Keys { table: "a range", known: &["from", "to", "step"] };
 
 /// What values a grid may have.
 #[derive(Clone, Copy)]

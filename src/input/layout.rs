@@ -18,7 +18,7 @@ use super::schedule;
 use super::section::{Cell, Keys, Section, any_of, near};
 use super::setting::MOST_DEVICES;
 
-static LAYOUT: Keys = Keys { table: "a [[layout]]", known: &["name", "area", "groups", "note"], unsupported: &[] };
+static LAYOUT: Keys = Keys { table: "a [[layout]]", known: &["name", "area", "groups", "note"] };
 
 static GROUP: Keys = Keys {
     table: "a group",
@@ -45,7 +45,6 @@ static GROUP: Keys = Keys {
         "source",
         "note",
     ],
-    unsupported: &[],
 };
 
 /// Dimensions that a group asks of a catalog's device; none where it does not say.

@@ -6,15 +6,12 @@ use crate::units::{DeckInertia, Dimension, Flexibility, Inertia};
 
 use super::section::{Cell, Keys, Section, optional};
 
-static PONDING: Keys = Keys {
-    table: "`ponding`",
-    known: &["head", "flexibility", "primary", "secondary", "deck_inertia"],
-    unsupported: &[],
-};
+static PONDING: Keys =
+    Keys { table: "`ponding`", known: &["head", "flexibility", "primary", "secondary", "deck_inertia"] };
 
-static PRIMARY: Keys = Keys { table: "`primary`", known: &["span", "inertia", "web"], unsupported: &[] };
+static PRIMARY: Keys = Keys { table: "`primary`", known: &["span", "inertia", "web"] };
 
-static SECONDARY: Keys = Keys { table: "`secondary`", known: &["span", "spacing", "inertia", "web"], unsupported: &[] };
+static SECONDARY: Keys = Keys { table: "`secondary`", known: &["span", "spacing", "inertia", "web"] };
 
 /// What deflection adds to the water; none where it is at fault. That it is unstable is a warning: the area is answered, with
 /// no level that it allows.

@@ -38,7 +38,6 @@ static PROJECT: Keys = Keys {
         "rules",
         "risk_category",
     ],
-    unsupported: &[],
 };
 
 static SEARCH: Keys = Keys {
@@ -56,13 +55,11 @@ static SEARCH: Keys = Keys {
         "made_to_measure",
         "round",
     ],
-    unsupported: &[],
 };
 
 static CASE: Keys = Keys {
     table: "a [[case]]",
     known: &["name", "blocked", "sill_error", "opening_loss", "rain", "discharge", "limit", "rules"],
-    unsupported: &[],
 };
 
 /// Most distinct sizes of a plan that a file may ask for.

@@ -16,8 +16,7 @@ use super::section::{Cell, Keys, Reader, Section, any_of};
 use super::setting::MOST_DEVICES;
 use super::shipped;
 
-static SET: Keys =
-    Keys { table: "a rule set", known: &["title", "standard", "year", "note", "rule"], unsupported: &[] };
+static SET: Keys = Keys { table: "a rule set", known: &["title", "standard", "year", "note", "rule"] };
 
 /// Keys of every kind; which of them a rule takes is asked of its kind.
 static RULE: Keys = Keys {
@@ -45,7 +44,6 @@ static RULE: Keys = Keys {
         "for_each",
         "area_above",
     ],
-    unsupported: &[],
 };
 
 /// Keys that a rule of any kind takes.
@@ -62,7 +60,7 @@ const GO_WITH: [(&str, &str); 4] = [
     ("first", "for_each"),
 ];
 
-static APPLIED: Keys = Keys { table: "an entry of `rules`", known: &["file", "apply"], unsupported: &[] };
+static APPLIED: Keys = Keys { table: "an entry of `rules`", known: &["file", "apply"] };
 
 /// The sets that a project names; none over it where it names none.
 pub(super) fn read_all(project: &Path, section: &Section<'_>) -> Option<Rulebook> {

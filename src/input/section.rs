@@ -21,8 +21,6 @@ pub(super) struct Keys {
     pub(super) table: &'static str,
     /// Those it takes.
     pub(super) known: &'static [&'static str],
-    /// Those that are known but not supported, and what each is for.
-    pub(super) unsupported: &'static [(&'static str, &'static str)],
 }
 
 /// A file that is being read, and where its faults go.
@@ -123,15 +121,6 @@ impl<'a> Section<'a> {
         for key in table.keys() {
             let name: &str = key.get_ref();
             if keys.known.contains(&name) {
-                continue;
-            }
-            if let Some((_, purpose)) = keys.unsupported.iter().find(|(unsupported, _)| *unsupported == name) {
-                reader.fault(
-                    key.span(),
-                    format!("`{name}` in {} is not supported in this version", keys.table),
-                    format!("meant for {purpose}"),
-                    "take the key out: the answer would not heed it",
-                );
                 continue;
             }
             let help = match near(name, keys.known.iter().copied()) {

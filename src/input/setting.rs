@@ -14,9 +14,9 @@ use super::catalog::Catalogs;
 use super::fault::{Fault, Span};
 use super::section::{Cell, Keys, Section, optional};
 
-static LIMIT: Keys = Keys { table: "a limit", known: &["load", "depth"], unsupported: &[] };
+static LIMIT: Keys = Keys { table: "a limit", known: &["load", "depth"] };
 
-static COUNT_RANGE: Keys = Keys { table: "`count`", known: &["from", "to"], unsupported: &[] };
+static COUNT_RANGE: Keys = Keys { table: "`count`", known: &["from", "to"] };
 
 /// Most devices of one area that a file may ask for.
 pub(super) const MOST_DEVICES: u32 = 10_000;

@@ -13,14 +13,10 @@ use super::setting::{Names, unique};
 pub(super) static STORM: Keys = Keys {
     table: "[storm]",
     known: &["intensity", "table", "duration", "return_period", "climate", "storms", "source"],
-    unsupported: &[],
 };
 
-static FURTHER: Keys = Keys {
-    table: "an entry of `storms`",
-    known: &["name", "intensity", "duration", "return_period", "factor"],
-    unsupported: &[],
-};
+static FURTHER: Keys =
+    Keys { table: "an entry of `storms`", known: &["name", "intensity", "duration", "return_period", "factor"] };
 
 /// Factors for climate that are likely meant; others are warned about.
 const CLIMATES: std::ops::RangeInclusive<f64> = 1.0..=2.0;

@@ -7,8 +7,7 @@ use super::Assumed;
 use super::defaults::{self, MOST_RAISE_SI, MOST_RAISE_US};
 use super::section::{Keys, Section, optional};
 
-pub(super) static STRUCTURE: Keys =
-    Keys { table: "[structure]", known: &["stiffen", "step", "most"], unsupported: &[] };
+pub(super) static STRUCTURE: Keys = Keys { table: "[structure]", known: &["stiffen", "step", "most"] };
 
 /// Most steps up to the greatest raise: a plan is searched at each.
 const MOST_STEPS: f64 = 1000.0;

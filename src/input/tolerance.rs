@@ -6,7 +6,7 @@ use crate::units::System;
 use super::section::{Cell, Keys, Section};
 
 pub(super) static TOLERANCE: Keys =
-    Keys { table: "[tolerance]", known: &["rain", "area", "width", "sill", "discharge"], unsupported: &[] };
+    Keys { table: "[tolerance]", known: &["rain", "area", "width", "sill", "discharge"] };
 
 /// The tolerances, those that are not given as usual; none where one is at fault.
 pub(super) fn read(section: &Section<'_>, system: System) -> Option<Tolerances> {

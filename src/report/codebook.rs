@@ -41,7 +41,7 @@ fn heading(family: Family) -> &'static str {
 const FAMILIES: [Family; 5] = [Family::Demand, Family::Openings, Family::Standing, Family::Water, Family::Roof];
 
 fn aloud(set: &RuleSet, words: Words) -> Vec<Block> {
-    let mut blocks = vec![Block::Title(titled(set))];
+    let mut blocks = vec![Block::Title(rules::titled(set))];
     blocks.extend(set.note.clone().map(Block::Text));
     for family in FAMILIES {
         let rules: Vec<&Rule> = set.rules.iter().filter(|rule| rule.kind.role.family() == family).collect();
@@ -68,13 +68,6 @@ fn aloud(set: &RuleSet, words: Words) -> Vec<Block> {
     blocks.push(Block::Heading("How far to trust it".into()));
     blocks.push(Block::List(trust(&[set])));
     blocks
-}
-
-fn titled(set: &RuleSet) -> String {
-    let standard = set.standard.as_ref().filter(|standard| !set.title.contains(standard.as_str()));
-    let year = set.year.map(|year| year.to_string()).filter(|year| !set.title.contains(year));
-    let known: Vec<String> = standard.cloned().into_iter().chain(year).collect();
-    if known.is_empty() { set.title.clone() } else { format!("{} ({})", set.title, known.join(", ")) }
 }
 
 fn trust(sets: &[&RuleSet]) -> Vec<String> {
